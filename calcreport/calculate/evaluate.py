@@ -1,0 +1,400 @@
+"""Works a plan with one calculation's values: every line in page order, the arm taken, every check judged.
+
+`Calculation`, `Plan` and `Values` in, `Worked` out. A requirement not met, or a formula without a value,
+stops this calculation with words; the checks it did not reach are not evaluated.
+"""
+
+from __future__ import annotations
+
+import math
+from dataclasses import dataclass
+
+from calcreport.calculate.compile import NoValue, condition, formula, holds
+from calcreport.calculate.model import (
+    Comparison,
+    Plan,
+    PlannedBranches,
+    PlannedCheck,
+    PlannedEach,
+    PlannedFigure,
+    PlannedGives,
+    PlannedLine,
+    PlannedPart,
+    PlannedRequire,
+    PlannedRows,
+    PlannedText,
+    Stop,
+    Test,
+    Values,
+    Verdict,
+    Work,
+    Worked,
+    WorkedBranches,
+    WorkedCheck,
+    WorkedEach,
+    WorkedFigure,
+    WorkedGives,
+    WorkedLine,
+    WorkedPart,
+    WorkedRequire,
+    WorkedRows,
+    WorkedText,
+)
+from calcreport.core.expression import Compare, Condition, Expression, Logic, Name, Not, Number
+from calcreport.core.source import Citation, Span
+from calcreport.read.model import Calculation
+
+#: rows of one set at most
+MOST_ROWS = 1000
+
+
+class _Stopped(Exception):
+    """Leaves a calculation that cannot go on."""
+
+    def __init__(self, stop: Stop) -> None:
+        super().__init__(stop.words)
+        self.stop = stop
+
+
+@dataclass(frozen=True, slots=True)
+class _Side:
+    test: Compare
+    left: Work
+    right: Work
+
+
+class Program:
+    """A plan compiled once, run for every calculation made by its template."""
+
+    def __init__(self, plan: Plan) -> None:
+        self.plan = plan
+        self.sets = tuple(slot.sets for slot in plan.slots)
+        self._tests: dict[int, Test] = {}
+        self._works: dict[int, Work] = {}
+        self._sides: dict[int, tuple[_Side, ...]] = {}
+
+    def run(self, calculation: Calculation, values: Values, fingerprint: str) -> Worked:
+        """Work all lines; returns what was worked even where the calculation stops."""
+        run = _Run(self, values)
+        stop: Stop | None = None
+        lines: list[WorkedLine] = []
+        try:
+            for line in self.plan.lines:
+                found = run.line(line)
+                if found is not None:
+                    lines.append(found)
+        except _Stopped as stopped:
+            stop = stopped.stop
+            lines.extend(run.rescued())
+        checks = list(run.checks)
+        if stop is not None:
+            reached = {id(check.line) for check in checks}
+            left = [check for check in _planned_checks(self.plan.lines) if id(check) not in reached]
+            checks += [_not_evaluated(check, stop) for check in left]
+        return Worked(calculation, self.plan, values, tuple(lines), tuple(checks), stop, fingerprint, self.work)
+
+    def work(self, node: Expression) -> Work:
+        """Return a formula's callable, compiled at its first use."""
+        found = self._works.get(id(node))
+        if found is None:
+            found = self._works[id(node)] = formula(node, self.sets)
+        return found
+
+    def test(self, node: Condition) -> Test:
+        """Return a condition's callable, compiled at its first use."""
+        found = self._tests.get(id(node))
+        if found is None:
+            found = self._tests[id(node)] = condition(node, self.sets)
+        return found
+
+    def sides(self, node: Condition) -> tuple[_Side, ...]:
+        """Return the comparisons of a condition, compiled at their first use."""
+        found = self._sides.get(id(node))
+        if found is None:
+            compares = _comparisons(node)
+            found = tuple(_Side(c, formula(c.left, self.sets), formula(c.right, self.sets)) for c in compares)
+            self._sides[id(node)] = found
+        return found
+
+
+def _comparisons(node: Condition) -> tuple[Compare, ...]:
+    match node:
+        case Compare():
+            return (node,)
+        case Logic(_, left, right):
+            return _comparisons(left) + _comparisons(right)
+        case Not(body):
+            return _comparisons(body)
+        case _:
+            return ()
+
+
+def _planned_checks(lines: tuple[PlannedLine, ...]) -> list[PlannedCheck]:
+    found: list[PlannedCheck] = []
+    for line in lines:
+        match line:
+            case PlannedCheck():
+                found.append(line)
+            case PlannedBranches(arms):
+                for arm in arms:
+                    found += _planned_checks(arm.lines)
+            case PlannedEach(_, inner) | PlannedPart(_, _, inner):
+                found += _planned_checks(inner)
+    return found
+
+
+def _not_evaluated(check: PlannedCheck, stop: Stop) -> WorkedCheck:
+    return WorkedCheck(check, "not evaluated", None, None, "condition", stop.words, None, ())
+
+
+class _Run:
+    """One run of a program; `checks` gathers every check as it is judged."""
+
+    def __init__(self, program: Program, values: Values) -> None:
+        self.program, self.values = program, values
+        self.checks: list[WorkedCheck] = []
+        self.opened: tuple[tuple[int, int], ...] = ()
+        #: unfinished lists of the blocks a stop breaks out of, innermost last
+        self.unfinished: list[tuple[PlannedLine, list[WorkedLine]]] = []
+
+    def rescued(self) -> list[WorkedLine]:
+        """Return the lines worked inside blocks that a stop left unfinished, in page order."""
+        return [line for _, lines in self.unfinished for line in lines]
+
+    def lines(self, owner: PlannedLine, planned: tuple[PlannedLine, ...]) -> tuple[WorkedLine, ...]:
+        kept: list[WorkedLine] = []
+        self.unfinished.append((owner, kept))
+        for line in planned:
+            found = self.line(line)
+            if found is not None:
+                kept.append(found)
+        self.unfinished.pop()
+        return tuple(kept)
+
+    def line(self, line: PlannedLine) -> WorkedLine | None:
+        match line:
+            case PlannedGives():
+                return self.gives(line)
+            case PlannedCheck():
+                return self.check(line)
+            case PlannedText():
+                return WorkedText(line, self.opened)
+            case PlannedBranches():
+                return self.branches(line)
+            case PlannedEach():
+                return self.each(line)
+            case PlannedPart(_, _, lines):
+                return WorkedPart(line, self.lines(line, lines))
+            case PlannedRequire():
+                return self.require(line)
+            case PlannedRows():
+                return self.rows(line)
+            case PlannedFigure():
+                return WorkedFigure(line, self.opened)
+
+    # -------------------------------------------------------- values
+
+    def value(self, node: Expression, at: Span, cite: Citation) -> float:
+        """Work a formula; no value stops the calculation."""
+        try:
+            found = self.program.work(node)(self.values)
+        except NoValue as error:
+            raise _Stopped(Stop(at, str(error), cite.printed)) from error
+        except OverflowError as error:
+            raise _Stopped(Stop(at, "a value beyond all bounds", cite.printed)) from error
+        if not math.isfinite(found) or abs(found) > 1e100:
+            raise _Stopped(Stop(at, "a value beyond all bounds", cite.printed))
+        return found
+
+    def holds(self, node: Condition, at: Span, cite: Citation) -> bool:
+        """Test a condition; no value on a side stops the calculation."""
+        try:
+            return self.program.test(node)(self.values)
+        except (NoValue, OverflowError) as error:
+            raise _Stopped(Stop(at, str(error), cite.printed)) from error
+
+    def store(self, slot: int, value: float | str, worked: Expression) -> tuple[int, ...]:
+        if self.values.sets[slot]:
+            key = self.values.key(slot)
+            self.values.rows[slot][key] = value
+        else:
+            key = ()
+            self.values.plain[slot] = value
+        self.values.worked[slot, key] = worked
+        return key
+
+    def gives(self, line: PlannedGives) -> WorkedLine:
+        for number, arm in enumerate(line.arms):
+            if arm.when is None or self.holds(arm.when, line.span, line.cite):
+                break
+        node = arm.formula
+        symbol = self.program.plan.slots[line.slot].symbol
+        if symbol.kind == "word":
+            assert isinstance(node, Name)
+            key = self.store(line.slot, node.name, node)
+            return WorkedGives(line, number, key, self.opened, _no_work)
+        work = self.program.work(node)
+        key = self.store(line.slot, self.value(node, line.span, line.cite), node)
+        return WorkedGives(line, number, key, self.opened, work)
+
+    # -------------------------------------------------------- blocks
+
+    def branches(self, line: PlannedBranches) -> WorkedLine:
+        for number, arm in enumerate(line.arms):
+            if arm.when is None or self.holds(arm.when, line.span, Citation("", "")):
+                break
+        for other, passed in enumerate(line.arms):
+            if other != number:
+                because = line.arms[number].when or line.arms[0].when
+                for check in _planned_checks(passed.lines):
+                    self.checks.append(
+                        WorkedCheck(check, "not applicable", None, None, "condition", "", because, self.opened)
+                    )
+        return WorkedBranches(line, number, self.lines(line, arm.lines), self.opened)
+
+    def each(self, line: PlannedEach) -> WorkedLine:
+        names = self.values.row_names(line.rows)
+        rows: list[tuple[WorkedLine, ...]] = []
+        before, opened = self.values.open[line.rows], self.opened
+        for row in range(len(names)):
+            self.values.open[line.rows] = row
+            self.opened = (*opened, (line.rows, row))
+            rows.append(self.lines(line, line.lines))
+        self.values.open[line.rows], self.opened = before, opened
+        return WorkedEach(line, names, tuple(rows), self.opened)
+
+    def rows(self, line: PlannedRows) -> WorkedLine:
+        names: list[str] = []
+        taken: list[tuple[int, tuple[tuple[str, str], ...]]] = []
+        rows = self.program.plan.sets[line.rows]
+        outer = tuple(self.values.open[index] for index in rows.outer)
+        before = self.values.open[line.rows]
+        for number, entry in enumerate(line.entries):
+            for pairing in self.pairings(line, number):
+                if len(names) >= MOST_ROWS:
+                    raise _Stopped(Stop(line.span, f"more than {MOST_ROWS} rows", line.cite.printed))
+                self.values.open[line.rows] = len(names)
+                if entry.when is not None and not self.holds(entry.when, entry.span, line.cite):
+                    continue
+                name = entry.name or str(len(names) + 1)
+                for variable, row_name in pairing:
+                    name = name.replace("{" + variable + "}", row_name)
+                self.cells(line, number, dict(pairing))
+                names.append(name)
+                taken.append((number, pairing))
+        self.values.open[line.rows] = before
+        self.values.names[line.rows][outer] = tuple(names)
+        return WorkedRows(line, tuple(names), tuple(taken), self.opened)
+
+    def pairings(self, line: PlannedRows, number: int) -> list[tuple[tuple[str, str], ...]]:
+        """Return every pairing of an entry's `for` with the rows at hand; one empty pairing without `for`."""
+        entry = line.entries[number]
+        over = next((column.over for column in line.columns if column.over >= 0), -1)
+        names = self.values.row_names(over) if over >= 0 else ()
+        listed = self.program.plan.sets[over].row_names if over >= 0 else ()
+        found: list[tuple[tuple[str, str], ...]] = [()]
+        for variable, patterns in entry.pairing:
+            fits = [name for name in names if any(_fits(name, pattern, listed) for pattern in patterns)]
+            found = [(*pairing, (variable, name)) for pairing in found for name in fits]
+        return found
+
+    def cells(self, line: PlannedRows, number: int, pairing: dict[str, str]) -> None:
+        for column, cell in zip(line.columns, line.entries[number].cells, strict=True):
+            if not isinstance(cell, tuple):
+                self.store(column.slot, self.value(cell, line.span, line.cite), cell)
+                continue
+            mapped = {pairing.get(name, name): node for name, node in cell}
+            before = self.values.open[column.over]
+            for row, name in enumerate(self.values.row_names(column.over)):
+                node = mapped.get(name, column.other)
+                if node is None:
+                    raise _Stopped(Stop(line.span, f"no value for the row {name}", line.cite.printed))
+                self.values.open[column.over] = row
+                self.store(column.slot, self.value(node, line.span, line.cite), node)
+            self.values.open[column.over] = before
+
+    # -------------------------------------------------------- judging
+
+    def require(self, line: PlannedRequire) -> WorkedLine:
+        if not self.holds(line.condition, line.span, line.cite):
+            raise _Stopped(Stop(line.span, f"requirement not met: {line.says}", line.cite.printed))
+        return WorkedRequire(line, self.compared(line.condition, line.span, line.cite), self.opened)
+
+    def compared(self, node: Condition, at: Span, cite: Citation) -> tuple[Comparison, ...]:
+        found = []
+        for side in self.program.sides(node):
+            try:
+                left, right = side.left(self.values), side.right(self.values)
+            except (NoValue, OverflowError) as error:
+                raise _Stopped(Stop(at, str(error), cite.printed)) from error
+            found.append(Comparison(side.test, left, right, side.left, side.right))
+        return tuple(found)
+
+    def check(self, line: PlannedCheck) -> WorkedLine:
+        ok = self.holds(line.holds, line.span, line.cite)
+        sides = self.compared(line.holds, line.span, line.cite)
+        judged = [(_ratio(side), side) for side in sides]
+        chosen = _deciding(line.holds, judged, self.values)
+        ratio, side = chosen if chosen is not None else (None, None)
+        reason = ""
+        verdict: Verdict = "OK" if ok else "NG"
+        if side is not None and ratio is None and side.test.op not in ("=", "!="):
+            reason = "no ratio: the capacity is not above zero"
+        kind = _kind(side.test) if side is not None else "condition"
+        worked = WorkedCheck(line, verdict, side, ratio, kind, reason, None, self.opened)
+        self.checks.append(worked)
+        return worked
+
+
+def _no_work(values: Values) -> float:
+    raise NoValue("a word has no number")
+
+
+def _kind(test: Compare) -> str:
+    """Name the kind of check a comparison makes."""
+    if test.op in ("<", "<="):
+        if isinstance(test.right, Number) and test.right.value == 1 and isinstance(test.left, Name):
+            return "ratio"
+        return "demand / capacity"
+    return "required / provided" if test.op in (">", ">=") else "condition"
+
+
+def _ratio(side: Comparison) -> float | None:
+    """Return demand over capacity; None where there is none to show."""
+    if side.test.op in ("<", "<="):
+        demand, capacity = side.left, side.right
+    elif side.test.op in (">", ">="):
+        demand, capacity = side.right, side.left
+    else:
+        return None
+    if capacity > 0:
+        return max(demand, 0.0) / capacity
+    return 0.0 if demand <= 0 and demand <= capacity else None
+
+
+def _deciding(
+    node: Condition, judged: list[tuple[float | None, Comparison]], values: Values
+) -> tuple[float | None, Comparison] | None:
+    """Return the comparison that decides: of either route the easier, of joint demands the harder."""
+    match node:
+        case Compare():
+            return next(pair for pair in judged if pair[1].test is node)
+        case Logic(op, left, right):
+            found = [p for p in (_deciding(left, judged, values), _deciding(right, judged, values)) if p is not None]
+            if not found:
+                return None
+
+            def rank(pair: tuple[float | None, Comparison]) -> tuple[bool, float]:
+                side = pair[1]
+                failed = not holds(side.test, side.left, side.right, values)
+                return failed, math.inf if pair[0] is None else pair[0]
+
+            return min(found, key=rank) if op == "or" else max(found, key=rank)
+        case _:
+            return None
+
+
+def _fits(name: str, pattern: str, listed: tuple[str, ...]) -> bool:
+    if pattern.endswith("*"):
+        return name.startswith(pattern[:-1]) and name not in listed
+    return name == pattern

@@ -1,0 +1,266 @@
+"""What calculating hands on: every value, the arm each line took, every check, and where a calculation stopped.
+
+`Values` is filled while a calculation is worked and only read afterwards; the other records are frozen.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import dataclass, field
+from fractions import Fraction
+from typing import Literal, TypeAlias
+
+from calcreport.core.expression import Compare, Condition, Expression
+from calcreport.core.source import Span
+from calcreport.plan.model import (
+    FigureInput,
+    Plan,
+    PlannedArm,
+    PlannedBranches,
+    PlannedCheck,
+    PlannedEach,
+    PlannedFigure,
+    PlannedGiven,
+    PlannedGives,
+    PlannedLine,
+    PlannedPart,
+    PlannedRequire,
+    PlannedRows,
+    PlannedText,
+    RowSet,
+    Slot,
+)
+from calcreport.read.model import (
+    BarCallout,
+    Calculation,
+    GivenPairs,
+    GivenRows,
+    GivenValue,
+    LinkedValue,
+    Project,
+    Symbol,
+    ValueOrigin,
+)
+
+Value: TypeAlias = "float | str | None"
+Key: TypeAlias = tuple[int, ...]
+Verdict: TypeAlias = Literal["OK", "NG", "not evaluated", "not applicable"]
+
+
+@dataclass(slots=True)
+class Values:
+    """The values of one calculation by slot: base units for quantities, text for words, None for absent."""
+
+    #: values that have no rows
+    plain: list[Value]
+    #: values by row key, for slots that have rows
+    rows: list[dict[Key, Value]]
+    #: the open row of every set
+    open: list[int]
+    #: row names of every set by outer row key
+    names: list[dict[Key, tuple[str, ...]]]
+    #: sets of every slot
+    sets: tuple[tuple[int, ...], ...]
+    #: outer sets of every set
+    outer: tuple[tuple[int, ...], ...]
+    #: exact amounts of given values and of links by (slot, key)
+    given: dict[tuple[int, Key], Fraction] = field(default_factory=dict)
+    #: formula that gave a value, by (slot, key)
+    worked: dict[tuple[int, Key], Expression] = field(default_factory=dict)
+    #: exact values already worked again
+    exact: dict[tuple[int, Key], Fraction] = field(default_factory=dict)
+
+    def key(self, slot: int) -> Key:
+        """Return the key of a slot's open row."""
+        return tuple(self.open[index] for index in self.sets[slot])
+
+    def get(self, slot: int, key: Key = ()) -> Value:
+        """Return a value by its key."""
+        return self.rows[slot].get(key) if self.sets[slot] else self.plain[slot]
+
+    def number(self, slot: int, key: Key = ()) -> float:
+        """Return a value that must be a number."""
+        value = self.get(slot, key)
+        assert isinstance(value, float)
+        return value
+
+    def row_names(self, index: int) -> tuple[str, ...]:
+        """Return the names of a set's rows where its outer sets are open."""
+        return self.names[index].get(tuple(self.open[outer] for outer in self.outer[index]), ())
+
+
+Work: TypeAlias = Callable[[Values], float]
+Test: TypeAlias = Callable[[Values], bool]
+
+
+@dataclass(frozen=True, slots=True)
+class WorkedGives:
+    """A line worked: which arm, which row, and the compiled formula for working it again."""
+
+    line: PlannedGives
+    arm: int
+    key: Key
+    #: rows open while it was worked: (set, row)
+    open: tuple[tuple[int, int], ...]
+    work: Work
+
+
+@dataclass(frozen=True, slots=True)
+class WorkedText:
+    """Words with values in them."""
+
+    line: PlannedText
+    open: tuple[tuple[int, int], ...]
+
+
+@dataclass(frozen=True, slots=True)
+class WorkedBranches:
+    """A block of which one arm was worked."""
+
+    line: PlannedBranches
+    arm: int
+    lines: tuple[WorkedLine, ...]
+    open: tuple[tuple[int, int], ...]
+
+
+@dataclass(frozen=True, slots=True)
+class WorkedRows:
+    """A set made."""
+
+    line: PlannedRows
+    names: tuple[str, ...]
+    #: entry each row came from, and the set's rows its pairing took
+    entries: tuple[tuple[int, tuple[tuple[str, str], ...]], ...]
+    open: tuple[tuple[int, int], ...]
+
+
+@dataclass(frozen=True, slots=True)
+class WorkedEach:
+    """Lines worked for every row."""
+
+    line: PlannedEach
+    names: tuple[str, ...]
+    rows: tuple[tuple[WorkedLine, ...], ...]
+    open: tuple[tuple[int, int], ...]
+
+
+@dataclass(frozen=True, slots=True)
+class WorkedPart:
+    """A part's lines worked."""
+
+    line: PlannedPart
+    lines: tuple[WorkedLine, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class Comparison:
+    """The two sides a check was judged by, base units."""
+
+    test: Compare
+    left: float
+    right: float
+    work_left: Work
+    work_right: Work
+
+
+@dataclass(frozen=True, slots=True)
+class WorkedCheck:
+    """A check judged from unrounded values."""
+
+    line: PlannedCheck
+    verdict: Verdict
+    #: the comparison that decides; None for a condition without one, or a check not worked
+    by: Comparison | None
+    #: demand over capacity, or None where there is no division to show
+    ratio: float | None
+    kind: Literal["demand / capacity", "required / provided", "ratio", "condition"]
+    #: why it is not applicable or not evaluated, or NG without a ratio
+    reason: str
+    #: condition whose failure made it not applicable
+    excluded_by: Condition | None
+    open: tuple[tuple[int, int], ...]
+
+
+@dataclass(frozen=True, slots=True)
+class WorkedRequire:
+    """A requirement that was met."""
+
+    line: PlannedRequire
+    sides: tuple[Comparison, ...]
+    open: tuple[tuple[int, int], ...]
+
+
+@dataclass(frozen=True, slots=True)
+class WorkedFigure:
+    """A figure whose inputs have values now."""
+
+    line: PlannedFigure
+    open: tuple[tuple[int, int], ...]
+
+
+WorkedLine: TypeAlias = (
+    WorkedGives
+    | WorkedText
+    | WorkedBranches
+    | WorkedRows
+    | WorkedEach
+    | WorkedPart
+    | WorkedCheck
+    | WorkedRequire
+    | WorkedFigure
+)
+
+
+@dataclass(frozen=True, slots=True)
+class Stop:
+    """Where and why a calculation went no further."""
+
+    span: Span
+    #: 'requirement not met', 'division by zero' and the like, in words for the sheet
+    words: str
+    cite: str
+
+
+@dataclass(frozen=True, slots=True)
+class Worked:
+    """One calculation, worked."""
+
+    calculation: Calculation
+    plan: Plan
+    values: Values
+    lines: tuple[WorkedLine, ...]
+    #: every check in page order, those of a stopped calculation as not evaluated
+    checks: tuple[WorkedCheck, ...]
+    stop: Stop | None
+    #: sixteen hexadecimal digits over inputs and template text
+    fingerprint: str
+    #: returns the callable of a planned formula
+    compiled: Callable[[Expression], Work]
+
+    @property
+    def verdict(self) -> Verdict:
+        """NG if any check is, else not evaluated if any is, else OK."""
+        verdicts = {check.verdict for check in self.checks}
+        if "NG" in verdicts:
+            return "NG"
+        return "not evaluated" if self.stop or "not evaluated" in verdicts else "OK"
+
+
+@dataclass(frozen=True, slots=True)
+class WorkedProject:
+    """All calculations, in the project's order, with the order they were worked in."""
+
+    project: Project
+    calculations: tuple[Worked, ...]
+    order: tuple[int, ...]
+    fingerprint: str
+
+
+__all__ = [
+    "BarCallout", "Comparison", "FigureInput", "GivenPairs", "GivenRows", "GivenValue", "Key", "LinkedValue", "Plan",
+    "PlannedArm", "PlannedBranches", "PlannedCheck", "PlannedEach", "PlannedFigure", "PlannedGiven", "PlannedGives",
+    "PlannedLine", "PlannedPart", "PlannedRequire", "PlannedRows", "PlannedText", "Project", "RowSet", "Slot", "Stop",
+    "Symbol", "Test", "Value", "ValueOrigin", "Values", "Verdict", "Work", "Worked", "WorkedBranches", "WorkedCheck",
+    "WorkedEach", "WorkedFigure", "WorkedGives", "WorkedLine", "WorkedPart", "WorkedProject", "WorkedRequire",
+    "WorkedRows", "WorkedText",
+]  # fmt: skip

@@ -1,0 +1,170 @@
+"""Works all calculations of a project in the order their links ask for.
+
+`Inputs` and plans in, `WorkedProject` out. A link that is missing, in the wrong unit or in a circle is a problem
+and poisons the calculations that stand on it, not the others.
+"""
+
+from __future__ import annotations
+
+import hashlib
+from collections.abc import Callable
+
+from calcreport.calculate.evaluate import Program
+from calcreport.calculate.handing import find_path, hand_values
+from calcreport.calculate.model import Plan, Worked, WorkedProject
+from calcreport.core.problems import Problems, nearest
+from calcreport.core.quantity import Amount
+from calcreport.core.units import name_dimension
+from calcreport.read.model import BarCallout, Calculation, GivenPairs, GivenRows, GivenValue, Inputs, LinkedValue
+
+
+def work_project(
+    inputs: Inputs, plans: dict[int, Plan], problems: Problems, progress: Callable[[int, int], None]
+) -> WorkedProject:
+    """Work every calculation; `plans` are by the identity of the template."""
+    calculations = inputs.calculations
+    by_mark = {calculation.mark: place for place, calculation in enumerate(calculations)}
+    order = _order(calculations, by_mark, problems)
+    programs: dict[int, Program] = {}
+    worked: dict[str, Worked] = {}
+    for done, place in enumerate(order):
+        calculation = calculations[place]
+        plan = plans.get(id(calculation.template))
+        if plan is None or not _hold_links(calculation, worked, by_mark, problems):
+            continue
+        before = len(problems)
+        program = programs.setdefault(id(plan), Program(plan))
+        values = hand_values(calculation, plan, worked, problems)
+        if len(problems) == before:
+            worked[calculation.mark] = program.run(calculation, values, _fingerprint(calculation, worked))
+        progress(done + 1, len(order))
+    kept = tuple(worked[c.mark] for c in calculations if c.mark in worked)
+    marks = [w.calculation.mark for w in kept]
+    places = tuple(marks.index(calculations[p].mark) for p in order if calculations[p].mark in worked)
+    whole = hashlib.sha256("\n".join(w.fingerprint for w in kept).encode())
+    for source in inputs.project.files:
+        whole.update(source.text.encode())
+    return WorkedProject(inputs.project, kept, places, whole.hexdigest()[:16])
+
+
+def _links(calculation: Calculation) -> list[tuple[GivenValue, LinkedValue]]:
+    found: list[tuple[GivenValue, LinkedValue]] = []
+    for value in calculation.given:
+        cells: tuple[GivenValue, ...]
+        match value:
+            case GivenValue():
+                cells = (value,)
+            case GivenRows():
+                cells = tuple(cell for row in value.cells for cell in row)
+            case GivenPairs():
+                cells = tuple(cell for _, cell in value.cells)
+        found += [(cell, cell.value) for cell in cells if isinstance(cell.value, LinkedValue)]
+    return found
+
+
+def _order(calculations: tuple[Calculation, ...], by_mark: dict[str, int], problems: Problems) -> list[int]:
+    """Return the places in an order in which every link points back; circles are problems."""
+    order: list[int] = []
+    state: dict[int, int] = {}
+
+    def visit(place: int, path: list[int]) -> None:
+        stack = [(place, iter(_needed(calculations[place], by_mark)))]
+        state[place] = 1
+        path.append(place)
+        while stack:
+            at, needed = stack[-1]
+            step = next(needed, None)
+            if step is None:
+                state[at] = 2
+                order.append(at)
+                stack.pop()
+                path.pop()
+            elif state.get(step[0]) == 1:
+                circle = [calculations[p].mark for p in path[path.index(step[0]) :]]
+                problems.add("link-loop", step[1].span, "links go in a circle", expected="links that lead back to given values",
+                             found=" → ".join([*circle, circle[0]]))  # fmt: skip
+            elif step[0] not in state:
+                state[step[0]] = 1
+                path.append(step[0])
+                stack.append((step[0], iter(_needed(calculations[step[0]], by_mark))))
+
+    for place in range(len(calculations)):
+        if place not in state:
+            visit(place, [])
+    return order
+
+
+def _needed(calculation: Calculation, by_mark: dict[str, int]) -> list[tuple[int, LinkedValue]]:
+    return [(by_mark[link.mark], link) for _, link in _links(calculation) if link.mark in by_mark]
+
+
+def _hold_links(
+    calculation: Calculation, worked: dict[str, Worked], by_mark: dict[str, int], problems: Problems
+) -> bool:
+    """Tell whether every link of a calculation leads to a value of the right dimension."""
+    good = True
+    for value, link in _links(calculation):
+        if link.mark not in by_mark:
+            problems.add("unknown-name", link.span, f"there is no calculation `{link.mark[:40]}`",
+                         expected="the mark of a calculation of this project", found=link.mark[:40],
+                         hint=nearest(link.mark, by_mark))  # fmt: skip
+            good = False
+            continue
+        source = worked.get(link.mark)
+        if source is None:
+            good = False
+            continue
+        if source.stop is not None and link.path not in source.plan.by_path:
+            good = False
+        place = find_path(source, link.path, link.span, problems)
+        if place is None:
+            good = False
+            continue
+        symbol = source.plan.slots[place[0]].symbol
+        wanted = value.given.symbol
+        if wanted is None or wanted.kind != symbol.kind and "word" in (wanted.kind, symbol.kind):
+            good = False
+        elif wanted.unit and symbol.unit and wanted.unit.dimension != symbol.unit.dimension:
+            problems.add("unit-mismatch", link.span, f"`{link.mark}.{link.path}` is not what `{value.given.name}` takes",
+                         expected=f"{name_dimension(wanted.unit.dimension)} for {value.given.name}",
+                         found=f"{name_dimension(symbol.unit.dimension)}, in {symbol.unit.text}")  # fmt: skip
+            good = False
+    return good
+
+
+def _fingerprint(calculation: Calculation, worked: dict[str, Worked]) -> str:
+    """Return sixteen hexadecimal digits over the given values, exactly, and the text of the template's files."""
+    digest = hashlib.sha256()
+    template = calculation.template
+    digest.update(f"{template.name}\n{template.system}\n{template.year}\n".encode())
+    for source in template.files:
+        digest.update(source.text.encode())
+    for value in calculation.given:
+        digest.update(f"\n{value.given.name}=".encode())
+        match value:
+            case GivenValue():
+                digest.update(_canonical(value, worked))
+            case GivenRows():
+                for name, cells in zip(value.names, value.cells, strict=True):
+                    digest.update(f"|{name}:".encode() + b",".join(_canonical(cell, worked) for cell in cells))
+            case GivenPairs():
+                for names, cell in value.cells:
+                    digest.update("/".join(names).encode() + _canonical(cell, worked))
+    return digest.hexdigest()[:16]
+
+
+def _canonical(value: GivenValue, worked: dict[str, Worked]) -> bytes:
+    handed = value.value
+    match handed:
+        case Amount():
+            return f"{handed.value}".encode()
+        case BarCallout():
+            return handed.text.encode()
+        case LinkedValue():
+            source = worked[handed.mark]
+            slot = source.plan.by_path.get(handed.path.rpartition("].")[2], -1)
+            return f"{handed.mark}.{handed.path}={source.values.get(slot) if slot >= 0 else ''}".encode()
+        case None:
+            return b"none"
+        case _:
+            return handed.encode()

@@ -1,0 +1,125 @@
+"""Problems an author can cause: one record, one collector, one text form and one JSON form.
+
+Every stage adds to a `Problems`; nothing is raised for an author's mistake. What a slug means is told
+by `core.explanations`.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterable
+from dataclasses import dataclass
+from difflib import get_close_matches
+
+from calcreport.core.source import Span
+
+
+@dataclass(frozen=True, slots=True)
+class Problem:
+    """One mistake: where, what was expected and why, what was found, and one thing to try."""
+
+    #: stable name, explained by `calcreport explain`
+    slug: str
+    #: None only where no file is at fault (a missing folder, say)
+    span: Span | None
+    message: str
+    expected: str = ""
+    found: str = ""
+    hint: str = ""
+    #: further places with a word on each
+    related: tuple[tuple[Span, str], ...] = ()
+
+
+class Problems:
+    """Collects problems; the same slug at the same place is kept once."""
+
+    def __init__(self) -> None:
+        self._kept: list[Problem] = []
+        self._seen: set[tuple[str, str, int]] = set()
+
+    def add(
+        self,
+        slug: str,
+        span: Span | None,
+        message: str,
+        *,
+        expected: str = "",
+        found: str = "",
+        hint: str = "",
+        related: tuple[tuple[Span, str], ...] = (),
+    ) -> None:
+        """Keep a problem unless one of its slug already stands at its place."""
+        key = (slug, span.source.name, span.start) if span else (slug, message, 0)
+        if key not in self._seen:
+            self._seen.add(key)
+            self._kept.append(Problem(slug, span, message, expected, found, hint, related))
+
+    def __bool__(self) -> bool:
+        return bool(self._kept)
+
+    def __len__(self) -> int:
+        return len(self._kept)
+
+    def sorted(self) -> tuple[Problem, ...]:
+        """Return the problems by file and place."""
+        return tuple(
+            sorted(self._kept, key=lambda p: (p.span.source.name, p.span.start) if p.span else ("", 0))
+        )
+
+
+def nearest(name: str, names: Iterable[str]) -> str:
+    """Return a hint naming the spellings nearest to `name`, or ''."""
+    close = get_close_matches(name, list(names), n=3, cutoff=0.6)
+    return "did you mean " + " or ".join(close) + "?" if close else ""
+
+
+def render(problem: Problem) -> str:
+    """Return a problem as a terminal shows it: place, message, the line with a mark, then the rest."""
+    head = f"error[{problem.slug}]: {problem.message}"
+    rows: list[str] = []
+    if problem.span is None:
+        rows.append(head)
+    else:
+        span = problem.span
+        line, column = span.source.place(span.start)
+        rows.append(f"{span.source.name}:{line}:{column}: {head}")
+        text, shift = _window(span.source.line_text(line), column)
+        rows.append(f"{line:>5} | {text}")
+        length = max(1, min(span.end - span.start, len(text) - (column - 1 - shift)))
+        rows.append("      | " + " " * (column - 1 - shift) + "^" * length)
+    for label, words in (("expected", problem.expected), ("found", problem.found), ("hint", problem.hint)):
+        if words:
+            rows.append(f"  {label:<9} {words}")
+    for place, words in problem.related:
+        rows.append(f"  {'see':<9} {place.place}  {words}")
+    return "\n".join(_plain(row) for row in rows)
+
+
+def to_json(problem: Problem) -> dict[str, object]:
+    """Return a problem for machines."""
+    place: dict[str, object] = {}
+    if problem.span is not None:
+        line, column = problem.span.source.place(problem.span.start)
+        place = {"file": problem.span.source.name, "line": line, "column": column}
+    return {
+        "slug": problem.slug,
+        **place,
+        "message": problem.message,
+        "expected": problem.expected,
+        "found": problem.found,
+        "hint": problem.hint,
+        "related": [{"place": span.place, "says": words} for span, words in problem.related],
+    }
+
+
+def _window(text: str, column: int) -> tuple[str, int]:
+    """Cut a long line down to 150 characters about `column`; return it and how much was cut in front."""
+    text = text.replace("\t", " ")
+    if len(text) <= 150:
+        return text, 0
+    start = max(0, column - 76)
+    return text[start : start + 150], start
+
+
+def _plain(text: str) -> str:
+    """Keep a stranger's control characters off the terminal."""
+    return "".join(c if c == "\n" or c.isprintable() else "\N{REPLACEMENT CHARACTER}" for c in text)

@@ -1,0 +1,111 @@
+"""Blocks of a part -> measured pieces: one function a kind, chosen by type.
+
+`report.model` Block + lane -> tuple of `Piece`. Headings and paragraphs are set here, the numbered
+kinds and tables in their own modules. Figures are drawn by `layout.figures`.
+"""
+
+from __future__ import annotations
+
+from dataclasses import replace
+
+from calcreport.layout.checks import set_check
+from calcreport.layout.figures import draw
+from calcreport.layout.givens import set_givens
+from calcreport.layout.kit import Kit
+from calcreport.layout.lines import set_line, set_result_box, set_statement
+from calcreport.layout.model import Item, Placed, Stroke
+from calcreport.layout.pieces import Piece, Rows
+from calcreport.layout.sheet import FRAME, HAIRLINE, Lane
+from calcreport.layout.tables import set_table
+from calcreport.layout.words import HEADINGS, PLAIN, QUIET
+from calcreport.report.model import (
+    Block,
+    CheckLine,
+    FigureBlock,
+    Givens,
+    Heading,
+    Line,
+    Paragraph,
+    ResultBox,
+    Statement,
+    Table,
+)
+
+#: Words set wider than this are tiring to read.
+MEASURE = 430.0
+#: Paragraphs of more lines than this may part between sheets, two lines at least on each.
+WHOLE = 6
+
+
+def set_block(kit: Kit, block: Block, lane: Lane) -> tuple[Piece, ...]:
+    """Set one block in a lane."""
+    match block:
+        case Line():
+            return (set_line(kit, block, lane),)
+        case CheckLine():
+            return (set_check(kit, block, lane),)
+        case Statement():
+            return (set_statement(kit, block, lane),)
+        case ResultBox():
+            return (set_result_box(kit, block, lane),)
+        case Givens():
+            return set_givens(kit, block, lane)
+        case Table():
+            return set_table(kit, block, lane)
+        case Heading():
+            return (set_heading(kit, block, lane),)
+        case Paragraph():
+            return set_paragraph(kit, block, lane)
+        case FigureBlock():
+            return (set_figure(kit, block, lane),)
+
+
+def stands_alone(block: Block) -> bool:
+    """Tell whether a block needs the whole lane and so never stands beside a figure."""
+    loud = isinstance(block, CheckLine) and block.verdict == "NG"
+    return loud or isinstance(block, Table | FigureBlock | ResultBox)
+
+
+def set_heading(kit: Kit, heading: Heading, lane: Lane) -> Piece:
+    """Set a heading; it stays with what follows."""
+    style = HEADINGS.get(heading.level, HEADINGS[3])
+    rows = Rows()
+    rows.words(kit.lettering.set((heading.text,), style, lane.width), style, lane.left)
+    return Piece(rows.y, tuple(rows.items), 10.0 - heading.level, keep=True)
+
+
+def set_paragraph(kit: Kit, paragraph: Paragraph, lane: Lane) -> tuple[Piece, ...]:
+    """Set running text: a note smaller, a caution and an assumption beside a bar."""
+    style = QUIET if paragraph.kind == "note" else PLAIN
+    barred = paragraph.kind in ("caution", "assumption")
+    left = lane.left + (8.0 if barred else 0.0)
+    width = min(lane.right - left, MEASURE)
+    lines = kit.lettering.set(paragraph.words, style, width)
+    groups = (lines,) if len(lines) <= WHOLE else tuple((line,) for line in lines)
+    pieces: list[Piece] = []
+    for place, group in enumerate(groups):
+        rows = Rows()
+        rows.words(group, style, left)
+        items: list[Item] = list(rows.items)
+        if barred:
+            weight = FRAME * 1.4 if paragraph.kind == "caution" else HAIRLINE
+            items.insert(0, Stroke(((lane.left + 1.0, 0.0), (lane.left + 1.0, rows.y)), weight))
+        keep = len(groups) > 1 and place in (0, len(groups) - 2)
+        pieces.append(Piece(rows.y, tuple(items), 4.5 if place == 0 else 0.0, keep=keep))
+    return tuple(pieces)
+
+
+def set_figure(kit: Kit, block: FigureBlock, lane: Lane) -> Piece:
+    """Draw a figure at the left of the lane, its caption under it."""
+    formulas = kit.lettering.formulas
+    box = draw(formulas, block.figure, lane.width)
+    rows = Rows(2.0)
+    rows.items.append(Placed(lane.left, rows.y + box.ascent, box))
+    rows.y += box.ascent + box.descent + 3.0
+    rows.words(kit.lettering.set(block.caption, QUIET, lane.width), QUIET, lane.left)
+    return Piece(rows.y, tuple(rows.items), 6.0)
+
+
+def narrowed(lane: Lane, width: float) -> Lane:
+    """Return the lane left of a figure of that width."""
+    return replace(lane, right=lane.right - width - 12.0)

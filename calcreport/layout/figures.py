@@ -1,0 +1,19 @@
+"""Figures by kind: a record of dimensions -> a drawn `Box`, origin top left.
+
+Everything is to scale from the figures' own values; labels are printed as given.
+"""
+
+from __future__ import annotations
+
+from calcreport.layout.mathbox import Formulas
+from calcreport.layout.model import Box
+from calcreport.layout.section_figure import draw_section
+from calcreport.layout.span_figure import draw_span
+from calcreport.report.model import Figure, SectionFigure
+
+
+def draw(formulas: Formulas, figure: Figure, width: float) -> Box:
+    """Draw a figure no wider than `width` points where its labels allow."""
+    if isinstance(figure, SectionFigure):
+        return draw_section(formulas, figure, width)
+    return draw_span(formulas, figure, width)

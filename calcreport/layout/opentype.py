@@ -1,0 +1,158 @@
+"""Layout tables of a font file: pair kerning, script alternates, small capitals.
+
+In: a `FontFile`. Out: glyphs for glyphs, and distances in font units. Reads one subtable the first time it is
+needed. Knows no text setting; the MATH table is `mathtable`.
+Layout of the tables: the published OpenType specification (ISO/IEC 14496-22).
+"""
+
+from __future__ import annotations
+
+from bisect import bisect_right
+from collections.abc import Iterator, Sequence
+from struct import unpack_from
+
+from calcreport.core.fontfile import FontFile
+
+_SINGLE, _ALTERNATE, _PAIR = 1, 3, 2
+_EXTENSION = {"GSUB": 7, "GPOS": 9}
+
+
+def coverage(data: bytes, at: int) -> dict[int, int]:
+    """Read a coverage table: glyph to its index."""
+    form, count = unpack_from(">2H", data, at)
+    if form == 1:
+        return dict(zip(unpack_from(f">{count}H", data, at + 4), range(count), strict=True))
+    numbers = unpack_from(f">{3 * count}H", data, at + 4)
+    found: dict[int, int] = {}
+    for start, end, index in zip(numbers[0::3], numbers[1::3], numbers[2::3], strict=True):
+        found.update(zip(range(start, end + 1), range(index, index + end - start + 1), strict=True))
+    return found
+
+
+class _Classes:
+    """A class definition, kept as ranges of glyphs: most glyphs of a font are never asked for."""
+
+    __slots__ = ("_firsts", "_lasts", "_groups")
+
+    def __init__(self, data: bytes, at: int) -> None:
+        form, first = unpack_from(">2H", data, at)
+        if form == 1:
+            count = unpack_from(">H", data, at + 4)[0]
+            self._firsts: Sequence[int] = range(first, first + count)
+            self._lasts: Sequence[int] = self._firsts
+            self._groups: Sequence[int] = unpack_from(f">{count}H", data, at + 6)
+            return
+        numbers = unpack_from(f">{3 * first}H", data, at + 4)
+        self._firsts, self._lasts, self._groups = numbers[0::3], numbers[1::3], numbers[2::3]
+
+    def of(self, glyph: int) -> int:
+        """Give the class of a glyph; 0 is that of all glyphs not listed."""
+        i = bisect_right(self._firsts, glyph) - 1
+        return self._groups[i] if i >= 0 and glyph <= self._lasts[i] else 0
+
+
+def _subtables(font: FontFile, tag: str, feature: str, kind: int, script: bytes = b"DFLT") -> Iterator[int]:
+    """Give where the subtables of one kind start, for a feature of a script in its default language."""
+    if tag not in font.tables:
+        return
+    data, base = font.data, font.offset(tag)
+    scripts, features, lookups = (base + o for o in unpack_from(">3H", data, base + 4))
+    tags = unpack_from(">" + "4sH" * unpack_from(">H", data, scripts)[0], data, scripts + 2)
+    place = scripts + dict(zip(tags[0::2], tags[1::2], strict=True)).get(script, tags[1])
+    language = place + unpack_from(">H", data, place)[0]
+    chosen = unpack_from(f">{unpack_from('>H', data, language + 4)[0]}H", data, language + 6)
+    for i in chosen:
+        name, at = unpack_from(">4sH", data, features + 2 + 6 * i)
+        if name != feature.encode():
+            continue
+        for n in unpack_from(f">{unpack_from('>H', data, features + at + 2)[0]}H", data, features + at + 4):
+            lookup = lookups + unpack_from(">H", data, lookups + 2 + 2 * n)[0]
+            form, _, count = unpack_from(">3H", data, lookup)
+            for offset in unpack_from(f">{count}H", data, lookup + 6):
+                place, real = lookup + offset, form
+                if form == _EXTENSION[tag]:
+                    real, step = unpack_from(">HI", data, place + 2)
+                    place += step
+                if real == kind:
+                    yield place
+
+
+def substitutes(font: FontFile, feature: str, script: bytes = b"DFLT") -> dict[int, tuple[int, ...]]:
+    """Read what a feature puts for each glyph: one glyph, or its alternates in order."""
+    data = font.data
+    found: dict[int, tuple[int, ...]] = {}
+    for at in _subtables(font, "GSUB", feature, _SINGLE, script):
+        form, place, value = unpack_from(">HHh", data, at)
+        covered = coverage(data, at + place)
+        if form == 1:
+            found.update((glyph, ((glyph + value) & 0xFFFF,)) for glyph in covered)
+        else:
+            others = unpack_from(f">{len(covered)}H", data, at + 6)
+            found.update((glyph, (others[i],)) for glyph, i in covered.items())
+    for at in _subtables(font, "GSUB", feature, _ALTERNATE, script):
+        covered = coverage(data, at + unpack_from(">H", data, at + 2)[0])
+        for glyph, i in covered.items():
+            group = at + unpack_from(">H", data, at + 6 + 2 * i)[0]
+            found[glyph] = unpack_from(f">{unpack_from('>H', data, group)[0]}H", data, group + 2)
+    return found
+
+
+class Kerning:
+    """Distances to add between two glyphs, in font units."""
+
+    __slots__ = ("_font", "_places", "_covered", "_classes", "_pairs")
+
+    def __init__(self, font: FontFile) -> None:
+        """Take a font; its pair tables are read when a first pair needs them."""
+        self._font = font
+        self._places: tuple[int, ...] | None = None
+        self._covered: dict[int, dict[int, int]] = {}
+        self._classes: dict[int, tuple[_Classes, _Classes]] = {}
+        self._pairs: dict[tuple[int, int], int] = {}
+
+    def between(self, left: int, right: int) -> int:
+        """Give the distance to add between two neighbours, 0 for most."""
+        pair = (left, right)
+        found = self._pairs.get(pair)
+        if found is None:
+            found = self._pairs[pair] = self._find(left, right)
+        return found
+
+    def _find(self, left: int, right: int) -> int:
+        """Search the pair tables in order; the first that covers the left glyph with this pair decides."""
+        if self._places is None:
+            self._places = tuple(_subtables(self._font, "GPOS", "kern", _PAIR))
+        data = self._font.data
+        for at in self._places:
+            form, offset, one, two = unpack_from(">4H", data, at)
+            if at not in self._covered:
+                if (one, two) != (4, 0):
+                    raise ValueError("pair kerning other than a change of the first advance")
+                self._covered[at] = coverage(data, at + offset)
+            index = self._covered[at].get(left)
+            if index is None:
+                continue
+            place = self._cell(at, left, right) if form == 2 else self._place_in_set(at, index, right)
+            if place:
+                found: int = unpack_from(">h", data, place)[0]
+                return found
+        return 0
+
+    def _cell(self, at: int, left: int, right: int) -> int:
+        """Find the value of a pair in a table by classes."""
+        data = self._font.data
+        if at not in self._classes:
+            first, second = unpack_from(">2H", data, at + 8)
+            self._classes[at] = (_Classes(data, at + first), _Classes(data, at + second))
+        rows, columns = self._classes[at]
+        width: int = unpack_from(">H", data, at + 14)[0]
+        return at + 16 + 2 * (rows.of(left) * width + columns.of(right))
+
+    def _place_in_set(self, at: int, index: int, right: int) -> int:
+        """Find the value of a pair listed by its second glyph; 0 for none."""
+        data = self._font.data
+        group = at + unpack_from(">H", data, at + 10 + 2 * index)[0]
+        count = unpack_from(">H", data, group)[0]
+        seconds = unpack_from(">" + "H2x" * count, data, group + 2)
+        i = bisect_right(seconds, right) - 1
+        return group + 4 + 4 * i if i >= 0 and seconds[i] == right else 0

@@ -1,0 +1,225 @@
+"""Tables: column widths, rows, and the heading row that repeats where a table runs on.
+
+`report.model.Table` + lane -> `Piece`s: title, heading row, one piece a row. Columns keep their
+natural width while the lane holds them; else the wide ones share what is left and their words wrap,
+in smaller letters if even the longest words do not fit.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, replace
+
+from calcreport.layout.kit import Kit
+from calcreport.layout.marks import loud_side
+from calcreport.layout.model import Anchor, Box, Item, Placed, Stroke
+from calcreport.layout.pieces import Piece, Rows
+from calcreport.layout.sheet import HAIRLINE, OUTLINE, Lane
+from calcreport.layout.words import STRONG, TextStyle
+from calcreport.report.model import Column, Table, TableRow, Words
+
+#: Gap between columns, room above and below the text of a row, weight of the rules between rows.
+GUTTER, ABOVE, BELOW, FAINT = 10.0, 2.4, 0.3, 0.2
+#: A word wider than this share of the lane may part rather than keep other columns narrow.
+LONGEST = 0.3
+
+
+@dataclass(frozen=True, slots=True)
+class Letters:
+    """The styles of a table's cells, of its governing and failing rows, and of its headings."""
+
+    plain: TextStyle
+    heavy: TextStyle
+    heading: TextStyle
+
+
+_LETTERS = tuple(
+    Letters(
+        TextStyle("regular", size, leading),
+        TextStyle("semibold", size, leading),
+        TextStyle("semibold", max(6.5, size - 1.0), leading),
+    )
+    for size, leading in ((8.5, 10.5), (7.5, 9.2), (6.5, 8.0))
+)
+
+
+@dataclass(frozen=True, slots=True)
+class Grid:
+    """Columns at fixed places, with the letters their cells are set in."""
+
+    columns: tuple[Column, ...]
+    lefts: tuple[float, ...]
+    widths: tuple[float, ...]
+    letters: Letters
+    lane: Lane
+
+
+def set_table(kit: Kit, table: Table, lane: Lane) -> tuple[Piece, ...]:
+    """Set a table; rows stay whole, and neither the first two nor the last two part."""
+    grid = grid_of(kit, table, lane)
+    title = _title(kit, table, lane, "")
+    head = _head(kit, grid)
+    again = _joined(_title(kit, table, lane, ", continued"), head) if table.title else head
+    opening = _joined(title, head) if title else head
+    opening, marks = _numbered(kit, table, opening, grid)
+    pieces: list[Piece] = [replace(opening, before=6.0, keep=bool(table.rows))]
+    last = len(table.rows) - 1
+    for place, row in enumerate(table.rows):
+        piece = _row(kit, grid, row, again)
+        if place == last:
+            items = (*piece.items, *piece.closing)
+        else:
+            foot = piece.height
+            items = piece.items if row.emphasis == "loud" else (*piece.items, _rule(grid, foot, FAINT))
+        pieces.append(replace(piece, items=items, keep=last > 1 and place in (0, last - 1)))
+    needed = marks - sum(piece.height for piece in pieces)
+    if needed > 0:
+        pieces[-1] = replace(pieces[-1], height=pieces[-1].height + needed)
+    return tuple(pieces)
+
+
+def grid_of(kit: Kit, table: Table, lane: Lane) -> Grid:
+    """Find the column widths of a table in a lane."""
+    columns = table.columns
+    room = lane.width - GUTTER * (len(columns) - 1)
+    for letters in _LETTERS:
+        natural = _widths(kit, table, letters, whole=True)
+        if sum(natural) <= room:
+            widths = _stretched(columns, natural, room)
+            break
+        most = LONGEST * lane.width
+        least = tuple(min(most, wide) for wide in _widths(kit, table, letters, whole=False))
+        if sum(least) <= room:
+            widths = _shrunk(natural, least, room)
+            break
+    else:
+        widths = tuple(room * wide / sum(least) for wide in least)
+    lefts = tuple(lane.left + sum(widths[:place]) + GUTTER * place for place in range(len(columns)))
+    return Grid(columns, lefts, widths, letters, lane)
+
+
+def _widths(kit: Kit, table: Table, letters: Letters, whole: bool) -> tuple[float, ...]:
+    """Return each column's natural width, or the least that parts no word."""
+    measure = kit.lettering.natural if whole else kit.lettering.longest
+    widths = [measure(column.heading, letters.heading) for column in table.columns]
+    for row in table.rows:
+        face = letters.heavy if row.emphasis else letters.plain
+        for place, cell in enumerate(row.cells):
+            if cell:
+                widths[place] = max(widths[place], measure(cell, face))
+    return tuple(width + 0.1 for width in widths)
+
+
+def _stretched(columns: tuple[Column, ...], natural: tuple[float, ...], room: float) -> tuple[float, ...]:
+    shares = sum(column.stretch for column in columns)
+    if not shares:
+        return natural
+    spare = room - sum(natural)
+    return tuple(
+        width + spare * column.stretch / shares for width, column in zip(natural, columns, strict=True)
+    )
+
+
+def _shrunk(natural: tuple[float, ...], least: tuple[float, ...], room: float) -> tuple[float, ...]:
+    """Let columns narrower than an even share keep their width, and cap the others alike."""
+    low, high = 0.0, max(natural)
+    for _ in range(40):
+        cap = (low + high) / 2
+        total = sum(max(few, min(wide, cap)) for wide, few in zip(natural, least, strict=True))
+        low, high = (cap, high) if total <= room else (low, cap)
+    return tuple(max(few, min(wide, low)) for wide, few in zip(natural, least, strict=True))
+
+
+def _cells(kit: Kit, grid: Grid, cells: tuple[Words, ...], style: TextStyle, rows: Rows) -> None:
+    """Set the cells of one row side by side from the rows' present y."""
+    set_cells = [
+        kit.lettering.fitting(cell, style, grid.widths[place] + 0.05) for place, cell in enumerate(cells)
+    ]
+    top = rows.y
+    first = max((lines[0].ascent for lines in set_cells if lines), default=style.rise)
+    foot = top
+    for place, lines in enumerate(set_cells):
+        rows.y = top + first - (lines[0].ascent if lines else 0.0)
+        for line in lines:
+            x = _aligned(grid, place, line)
+            baseline = rows.y + line.ascent
+            rows.items.append(Placed(x, baseline, line))
+            rows.y = baseline + max(line.descent, style.leading - line.ascent)
+        foot = max(foot, rows.y)
+    rows.y = foot
+
+
+def _aligned(grid: Grid, place: int, line: Box) -> float:
+    spare = grid.widths[place] - line.width
+    share = {"left": 0.0, "centre": 0.5, "right": 1.0}[grid.columns[place].align]
+    return grid.lefts[place] + max(0.0, spare) * share
+
+
+def _rule(grid: Grid, y: float, weight: float = HAIRLINE) -> Stroke:
+    right = grid.lefts[-1] + grid.widths[-1]
+    return Stroke(((grid.lane.left - 3.0, y), (right + 3.0, y)), weight)
+
+
+def _head(kit: Kit, grid: Grid) -> Piece:
+    """Set the heading row between its rules, headings standing on the lower one."""
+    style = grid.letters.heading
+    columns = [
+        kit.lettering.set(column.heading, style, grid.widths[place] + 0.05)
+        for place, column in enumerate(grid.columns)
+    ]
+    most = max((len(lines) for lines in columns), default=0)
+    height = ABOVE + BELOW + 0.6 + most * style.leading
+    items: list[Item] = [_rule(grid, 0.0, OUTLINE)] if most else []
+    for place, lines in enumerate(columns):
+        y = height - BELOW - 0.6 - len(lines) * style.leading + style.rise
+        for line in lines:
+            items.append(Placed(_aligned(grid, place, line), y, line))
+            y += style.leading
+    items.append(_rule(grid, height, OUTLINE if not most else HAIRLINE))
+    return Piece(height, tuple(items))
+
+
+def _title(kit: Kit, table: Table, lane: Lane, suffix: str) -> Piece | None:
+    if not table.title:
+        return None
+    rows = Rows()
+    rows.words(kit.lettering.set((*table.title, suffix), STRONG, lane.width), STRONG, lane.left)
+    return Piece(rows.y + 2.0, tuple(rows.items))
+
+
+def _joined(above: Piece | None, below: Piece) -> Piece:
+    """Return one piece of two, the second under the first."""
+    if above is None:
+        return below
+    moved = Placed(0.0, above.height, Box(0.0, 0.0, below.height, below.items))
+    return Piece(above.height + below.height, (*above.items, moved))
+
+
+def _numbered(kit: Kit, table: Table, opening: Piece, grid: Grid) -> tuple[Piece, float]:
+    """Give the opening of a numbered table its number, source and anchor; return their height too.
+
+    Ring and source rows may reach down beside the first rows of the table.
+    """
+    rows = Rows(opening.height)
+    rows.items.extend(opening.items)
+    if not kit.sheet.lanes:
+        if table.anchor:
+            rows.items.insert(0, Anchor(table.anchor, grid.lane.left, 0.0))
+        return replace(opening, items=tuple(rows.items)), 0.0
+    baseline = STRONG.leading - 3.0 if table.title else ABOVE + grid.letters.heading.rise
+    piece = kit.marks.numbered(rows, baseline, table.number, table.anchor, table.source, "", grid.lane)
+    return replace(piece, height=opening.height), piece.height
+
+
+def _row(kit: Kit, grid: Grid, row: TableRow, again: Piece) -> Piece:
+    """Set one row with its rules; an NG row is barred at the frame and ruled off."""
+    rows = Rows(ABOVE)
+    _cells(kit, grid, row.cells, grid.letters.heavy if row.emphasis else grid.letters.plain, rows)
+    rows.y += BELOW
+    items: list[Item] = [Anchor(row.anchor, grid.lane.left, 0.0)] if row.anchor else []
+    items.extend(rows.items)
+    if row.emphasis == "loud":
+        items.extend((_rule(grid, 0.0, OUTLINE), _rule(grid, rows.y, OUTLINE)))
+        items.append(loud_side(kit.sheet, rows.y))
+    if row.delta:
+        items.extend(kit.marks.delta(row.delta, rows.y, grid.lane, -1.9))
+    return Piece(rows.y, tuple(items), again=again, closing=(_rule(grid, rows.y),))

@@ -1,0 +1,210 @@
+"""Pages as PDF bytes: page objects, fonts, page labels, bookmarks, links, metadata, attached files.
+
+In: `layout.model.Pages` and the font files its glyphs come from. Out: the bytes of a PDF 1.7 file, the same
+for the same pages. Decides nothing: every place and every glyph is given. The numbering of objects and the
+cross-reference table are ReportLab's; the objects themselves are written here and in the modules beside.
+Method: ISO 32000-1.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterable, Mapping
+from dataclasses import dataclass
+
+from reportlab.pdfbase import pdfdoc  # type: ignore[import-untyped]
+
+from calcreport.core.fontfile import FontFile
+from calcreport.layout.model import Face, Page, Pages
+from calcreport.output.content import FONT_NAMES, Area, Content, ContentWriter
+from calcreport.output.embed import embed_font
+from calcreport.output.metadata import information, xmp_packet
+from calcreport.output.outline import outline_objects
+from calcreport.output.syntax import name, number, reference, stream, string, text_string
+
+
+@dataclass(frozen=True, slots=True)
+class Attachment:
+    """A file carried inside the PDF."""
+
+    name: str
+    data: bytes
+    #: 'Source', 'Data', 'Supplement', 'Unspecified': what it is to the document (ISO 19005-3, Annex E)
+    relationship: str
+    #: 'application/yaml'
+    mime: str
+    description: str = ""
+
+
+class _File:
+    """Numbered objects, and the file made of them at the end."""
+
+    def __init__(self, language: str) -> None:
+        self._document = pdfdoc.PDFDocument(invariant=1, pdfVersion=(1, 7), lang=language)
+
+    @property
+    def next(self) -> int:
+        """The number the next object will have."""
+        return int(self._document.objectcounter) + 1
+
+    def reserve(self) -> int:
+        """Give the number of an object that follows later."""
+        number = self.next
+        self._document.Reference(b"null", f"object{number}")
+        return number
+
+    def put(self, number: int, data: bytes) -> None:
+        """Give a reserved object its bytes."""
+        self._document.idToObject[f"object{number}"] = data
+
+    def add(self, data: bytes) -> int:
+        """Add an object; give its number."""
+        number = self.reserve()
+        self.put(number, data)
+        return number
+
+    def finish(
+        self, catalog: dict[str, bytes], info: dict[str, bytes], fingerprint: Iterable[bytes]
+    ) -> bytes:
+        """Write the file; what it holds decides its identifier."""
+        document = self._document
+        document.Catalog = pdfdoc.PDFObjectReference(f"object{self.add(_dictionary(catalog))}")
+        document.info = pdfdoc.PDFObjectReference(f"object{self.add(_dictionary(info))}")
+        for data in fingerprint:
+            document.updateSignature(data)
+        return bytes(document.format())
+
+
+def _dictionary(entries: dict[str, bytes]) -> bytes:
+    return b"<<%b>>" % b"".join(name(key) + b" " + value for key, value in entries.items())
+
+
+def write_pdf(
+    pages: Pages, fonts: Mapping[Face, FontFile], attachments: tuple[Attachment, ...] = ()
+) -> bytes:
+    """Write all pages.
+
+    ValueError when a link or bookmark leads nowhere, two anchors share a name, or the date is no ISO date.
+    """
+    file = _File(pages.language)
+    writer = ContentWriter()
+    resources, tree = file.reserve(), file.reserve()
+    numbers = [file.reserve() for _ in pages.pages]
+    written = [_contents(file, writer, page, pages.height) for page in pages.pages]
+    places = _places(pages, numbers, [content for _, content in written])
+    box = b"%b %b" % (number(pages.width), number(pages.height))
+    for page_number, (streams, content) in zip(numbers, written, strict=True):
+        links = b" ".join(reference(file.add(_link(area, places))) for area in content.links)
+        file.put(
+            page_number,
+            b"<</Type/Page/Parent %b/MediaBox[0 0 %b]/Resources %b/Contents[%b]%b>>"
+            % (
+                reference(tree),
+                box,
+                reference(resources),
+                b" ".join(map(reference, streams)),
+                b"/Annots[%b]" % links if links else b"",
+            ),
+        )
+    kids = b" ".join(map(reference, numbers))
+    file.put(tree, b"<</Type/Pages/Count %d/Kids[%b]>>" % (len(numbers), kids))
+    file.put(resources, _resources(file, writer, fonts))
+    catalog = {
+        "Type": b"/Catalog",
+        "Pages": reference(tree),
+        "Lang": text_string(pages.language),
+        "Metadata": reference(
+            file.add(stream(xmp_packet(pages), b"/Type/Metadata/Subtype/XML", compress=False))
+        ),
+        "PageLabels": b"<</Nums[%b]>>"
+        % b" ".join(b"%d<</P%b>>" % (i, text_string(page.label)) for i, page in enumerate(pages.pages)),
+        "PageMode": b"/UseOutlines" if pages.bookmarks else b"/UseNone",
+        "ViewerPreferences": b"<</DisplayDocTitle true>>",
+        **_names(file, pages, places, attachments),
+    }
+    if pages.bookmarks:
+        catalog["Outlines"] = reference(file.next)
+        for entry in outline_objects(pages.bookmarks, file.next, lambda target: _place(places, target)):
+            file.add(entry)
+    info = information(pages)
+    return file.finish(catalog, info, (*info.values(), *(content.data for _, content in written)))
+
+
+def _contents(
+    file: _File, writer: ContentWriter, page: Page, height: float
+) -> tuple[tuple[int, ...], Content]:
+    """Write the body and the title block of a page as two streams; give their numbers and what they hold."""
+    body, block = writer.write(page.body, height), writer.write(page.title_block, height)
+    streams = tuple(file.add(stream(content.data)) for content in (body, block))
+    return streams, Content(body.data + block.data, body.links + block.links, body.anchors + block.anchors)
+
+
+def _places(pages: Pages, numbers: list[int], written: list[Content]) -> dict[str, bytes]:
+    """Give the destination of every page label and anchor; a label stands before an anchor of its name."""
+    top = number(pages.height)
+    labels = {
+        page.label: b"[%b/XYZ 0 %b 0]" % (reference(n), top)
+        for page, n in zip(pages.pages, numbers, strict=True)
+    }
+    if len(labels) != len(numbers):
+        raise ValueError("two pages have the same label")
+    anchors: dict[str, bytes] = {}
+    for n, content in zip(numbers, written, strict=True):
+        for anchor, x, y in content.anchors:
+            if anchor in anchors:
+                raise ValueError(f"two anchors are named {anchor!r}")
+            anchors[anchor] = b"[%b/XYZ %b %b 0]" % (reference(n), number(x), number(y))
+    return anchors | labels
+
+
+def _place(places: Mapping[str, bytes], target: str) -> bytes:
+    found = places.get(target)
+    if found is None:
+        raise ValueError(f"nothing is named {target!r}, to which a link or bookmark leads")
+    return found
+
+
+def _link(area: Area, places: Mapping[str, bytes]) -> bytes:
+    """Write a link without border, to be printed."""
+    corners = b" ".join(number(v) for v in (area.left, area.bottom, area.right, area.top))
+    return b"<</Type/Annot/Subtype/Link/Rect[%b]/Border[0 0 0]/F 4/Dest%b>>" % (
+        corners,
+        _place(places, area.target),
+    )
+
+
+def _resources(file: _File, writer: ContentWriter, fonts: Mapping[Face, FontFile]) -> bytes:
+    """Embed the fonts that were used; write the resources all pages share."""
+    entries = b"".join(
+        FONT_NAMES[face] + b" " + reference(embed_font(fonts[face], used, file.add))
+        for face, used in writer.used.items()
+        if used
+    )
+    return b"<</Font<<%b>>>>" % entries
+
+
+def _names(
+    file: _File, pages: Pages, places: Mapping[str, bytes], attachments: tuple[Attachment, ...]
+) -> dict[str, bytes]:
+    """Write named destinations of the page labels, and attached files by name."""
+    labels = sorted((page.label.encode(), places[page.label]) for page in pages.pages)
+    trees = b"/Dests<</Names[%b]>>" % b" ".join(string(label) + place for label, place in labels)
+    if not attachments:
+        return {"Names": b"<<%b>>" % trees}
+    files = sorted((item.name.encode(), reference(file.add(_attachment(file, item)))) for item in attachments)
+    trees += b"/EmbeddedFiles<</Names[%b]>>" % b" ".join(string(key) + b" " + ref for key, ref in files)
+    return {"Names": b"<<%b>>" % trees, "AF": b"[%b]" % b" ".join(ref for _, ref in files)}
+
+
+def _attachment(file: _File, item: Attachment) -> bytes:
+    """Write the specification of an attached file."""
+    entries = b"/Type/EmbeddedFile/Subtype%b/Params<</Size %d>>" % (name(item.mime), len(item.data))
+    body = reference(file.add(stream(item.data, entries)))
+    title = text_string(item.name)
+    return b"<</Type/Filespec/F%b/UF%b/Desc%b/AFRelationship%b/EF<</F %b/UF %b>>>>" % (
+        title,
+        title,
+        text_string(item.description),
+        name(item.relationship),
+        body,
+        body,
+    )

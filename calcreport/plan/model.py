@@ -1,0 +1,227 @@
+"""What planning hands on: a template with every name bound to a slot, in page order, dimensions held. No values.
+
+A plan belongs to a template settled for one system and year, and serves every calculation made by it.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from typing import Literal, TypeAlias
+
+from calcreport.core.expression import Condition, Expression
+from calcreport.core.source import Citation, Span
+from calcreport.read.model import Given, Symbol, Template
+
+
+@dataclass(frozen=True, slots=True)
+class Slot:
+    """A place for one value, or for one value a row where `sets` are not empty."""
+
+    index: int
+    symbol: Symbol
+    #: the name a project and `trace` use: 'phiM_n', 'curve.M_n'
+    path: str
+    #: numbers of the sets the value varies over, outer first
+    sets: tuple[int, ...]
+    #: the project may leave it out
+    may_be_absent: bool
+    span: Span
+
+
+@dataclass(frozen=True, slots=True)
+class RowSet:
+    """A set of rows; its rows may differ for each row of the `outer` sets it was made inside."""
+
+    index: int
+    name: str
+    outer: tuple[int, ...]
+    #: permitted row names, () for any
+    row_names: tuple[str, ...]
+    span: Span
+
+
+@dataclass(frozen=True, slots=True)
+class PlannedGiven:
+    """A given with the slots it fills."""
+
+    given: Given
+    #: slot of a value; -1 for rows
+    slot: int
+    #: set of rows; -1 for a value
+    rows: int
+    #: slots of a row's columns, in the given's order (each with its own callout outputs)
+    columns: tuple[PlannedGiven, ...]
+    #: slots of the values read off a callout, in the order of `given.gives`
+    outputs: tuple[int, ...]
+    #: sets of a value given for pairs, in order
+    over: tuple[int, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class PlannedText:
+    """Words; a piece that is a number is the slot whose value is shown there."""
+
+    kind: Literal["heading", "note", "caution", "assume", "use"]
+    pieces: tuple[str | int, ...]
+    cite: Citation | None
+    span: Span
+
+
+@dataclass(frozen=True, slots=True)
+class PlannedArm:
+    """One case of a line."""
+
+    when: Condition | None
+    formula: Expression
+
+
+@dataclass(frozen=True, slots=True)
+class PlannedGives:
+    """A line that fills one slot."""
+
+    slot: int
+    arms: tuple[PlannedArm, ...]
+    cite: Citation
+    as_cited: tuple[Expression, Expression] | None
+    #: a value handed to a part: 'd = h - 3 in'
+    handed: bool
+    span: Span
+
+
+@dataclass(frozen=True, slots=True)
+class PlannedBranchArm:
+    """One arm of a block."""
+
+    when: Condition | None
+    lines: tuple[PlannedLine, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class PlannedBranches:
+    """A block of lines by cases."""
+
+    arms: tuple[PlannedBranchArm, ...]
+    span: Span
+
+
+@dataclass(frozen=True, slots=True)
+class PlannedColumn:
+    """A column made here; `over` is -1, or the set its cells map."""
+
+    slot: int
+    over: int
+    other: Expression | None
+
+
+@dataclass(frozen=True, slots=True)
+class PlannedEntry:
+    """A listed row."""
+
+    name: str
+    pairing: tuple[tuple[str, tuple[str, ...]], ...]
+    #: a formula, or formulas by row name, for each column in order
+    cells: tuple[Expression | tuple[tuple[str, Expression], ...], ...]
+    when: Condition | None
+    span: Span
+
+
+@dataclass(frozen=True, slots=True)
+class PlannedRows:
+    """A set made here."""
+
+    rows: int
+    columns: tuple[PlannedColumn, ...]
+    entries: tuple[PlannedEntry, ...]
+    says: str
+    cite: Citation
+    span: Span
+
+
+@dataclass(frozen=True, slots=True)
+class PlannedEach:
+    """Lines once a row."""
+
+    rows: int
+    lines: tuple[PlannedLine, ...]
+    table: tuple[int, ...]
+    show: Literal["", "every", "figure"]
+    span: Span
+
+
+@dataclass(frozen=True, slots=True)
+class PlannedPart:
+    """A part's lines in place."""
+
+    title: str
+    stem: str
+    lines: tuple[PlannedLine, ...]
+    span: Span
+
+
+@dataclass(frozen=True, slots=True)
+class PlannedCheck:
+    """A check; `name` carries the stem of the part it stands in."""
+
+    name: str
+    holds: Condition
+    says: str
+    cite: Citation
+    span: Span
+
+
+@dataclass(frozen=True, slots=True)
+class PlannedRequire:
+    """A condition to go on."""
+
+    condition: Condition
+    says: str
+    cite: Citation
+    span: Span
+
+
+@dataclass(frozen=True, slots=True)
+class FigureInput:
+    """One input of a figure: a slot, a set, a formula, or a word of the figure's own (each else empty)."""
+
+    name: str
+    slot: int = -1
+    rows: int = -1
+    formula: Expression | None = None
+    word: str = ""
+
+
+@dataclass(frozen=True, slots=True)
+class PlannedFigure:
+    """A figure with its inputs bound."""
+
+    kind: str
+    inputs: tuple[FigureInput, ...]
+    span: Span
+
+
+PlannedLine: TypeAlias = (
+    PlannedText
+    | PlannedGives
+    | PlannedBranches
+    | PlannedRows
+    | PlannedEach
+    | PlannedPart
+    | PlannedCheck
+    | PlannedRequire
+    | PlannedFigure
+)
+
+
+@dataclass(frozen=True, slots=True)
+class Plan:
+    """A template ready to be worked."""
+
+    template: Template
+    slots: tuple[Slot, ...]
+    sets: tuple[RowSet, ...]
+    givens: tuple[PlannedGiven, ...]
+    lines: tuple[PlannedLine, ...]
+    #: limit states decided here, parts included
+    covers: tuple[str, ...]
+    #: slot by path, for links, trace and tests
+    by_path: dict[str, int]

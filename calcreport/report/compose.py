@@ -1,0 +1,107 @@
+"""The whole report: parts in order, each with its title-block facts and blocks.
+
+`WorkedProject` in, `Report` out. Order and fronts are decided here; wording in `fronts`, `summary`, `calculation`.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import dataclass
+
+from calcreport.calculate.model import Worked, WorkedProject
+from calcreport.core.version import PROGRAM
+from calcreport.report import fronts
+from calcreport.report.calculation import Composer, SymbolForms
+from calcreport.report.forms import CalculationForms, find_forms
+from calcreport.report.model import Block, Index, IndexEntry, Part, Report, TitleFacts
+from calcreport.report.notation import Notation
+from calcreport.report.script import Script, write_script
+from calcreport.report.summary import Summary, SummarySheets, result_words, summarise, worst_checks
+
+
+@dataclass(frozen=True, slots=True)
+class Composed:
+    """A report with what the values file and the terminal say of it too."""
+
+    report: Report
+    summary: Summary
+    forms: dict[str, CalculationForms]
+    scripts: dict[str, Script]
+
+
+def compose(project: WorkedProject, progress: Callable[[int, int], None]) -> Composed:
+    """Compose the package."""
+    scripts = {worked.calculation.mark: write_script(worked) for worked in project.calculations}
+    forms = find_forms(project)
+    entries = fronts.register(project, scripts)
+    summary = summarise(project, entries)
+    shared: dict[int, SymbolForms] = {}
+    parts: list[Part] = []
+    for done, worked in enumerate(project.calculations, 1):
+        symbols = shared.setdefault(id(worked.plan), SymbolForms(Notation(worked.plan.slots)))
+        mark = worked.calculation.mark
+        blocks = Composer(scripts[mark], forms, scripts, symbols).blocks()
+        parts.append(_calculation(project, worked, scripts[mark], blocks))
+        progress(done, len(project.calculations))
+    sheets = SummarySheets(project, forms, scripts).blocks(summary, entries)
+    report = _report(project, summary, tuple(parts), sheets, fronts.assumptions(entries))
+    return Composed(report, summary, forms, scripts)
+
+
+def _report(
+    project: WorkedProject, summary: Summary, calculations: tuple[Part, ...], summary_blocks: tuple[Block, ...], register: tuple[Block, ...]
+) -> Report:
+    facts = project.project
+    loud = bool(summary.failed or summary.not_evaluated)
+    cover = Part("COVER", "Cover", "cover", _facts(project, "Cover"),
+                 cover=fronts.cover(project, result_words(summary), loud))  # fmt: skip
+    front = [
+        _front(project, "REVISIONS", "Revision record", fronts.revisions(project)),
+        _front(project, "CRITERIA", "Design criteria", fronts.criteria(project)),
+        _front(project, "ASSUMPTIONS", "Assumption register", register),
+        _front(project, "SUMMARY", "Check summary", summary_blocks),
+    ]
+    back = [
+        _front(project, "A", "Appendix A: input echo", fronts.echo(facts.files), "appendix"),
+        _front(project, "B", "Appendix B: program disclosure", fronts.disclosure(project), "appendix"),
+    ]
+    listed = (cover, front[0], *front[1:], *calculations, *back)
+    entries = tuple(_entry(project, part) for part in listed)
+    index = Part("INDEX", "Index", "index", _facts(project, "Index"), index=Index(entries))
+    parts = (cover, front[0], index, *front[1:], *calculations, *back)
+    return Report(facts.title, facts.office, f"Structural calculations, {facts.number}", "en-US", facts.date, facts.paper, parts)
+
+
+def _entry(project: WorkedProject, part: Part) -> IndexEntry:
+    return IndexEntry(part.mark, part.title, part.mark, "NG" if part.strip else "", part.facts.revision, part.facts.date)
+
+
+def _front(project: WorkedProject, mark: str, title: str, blocks: tuple[Block, ...], kind: str = "front") -> Part:
+    return Part(mark, title, "appendix" if kind == "appendix" else "front", _facts(project, title), blocks)
+
+
+def _facts(project: WorkedProject, subject: str, code: str = "", fingerprint: str = "") -> TitleFacts:
+    facts = project.project
+    issue = facts.issues[-1] if facts.issues else None
+    return TitleFacts(
+        project=facts.title, project_number=facts.number, subject=subject, code=code, status=facts.status.upper(),
+        status_note=fronts.STATUS_NOTES[facts.status], revision=f"rev {issue.number}" if issue else "rev 1",
+        date=fronts.date_words(issue.date if issue else facts.date), fingerprint=fingerprint, program=PROGRAM,
+    )  # fmt: skip
+
+
+def _calculation(project: WorkedProject, worked: Worked, script: Script, blocks: tuple[Block, ...]) -> Part:
+    calculation, template = worked.calculation, worked.calculation.template
+    system = "in.-lb" if template.system == "us" else "SI"
+    facts = _facts(project, f"{calculation.mark}  {calculation.title}", f"{template.code} ({system})",
+                   f"input {fronts.grouped(worked.fingerprint[:8])}")  # fmt: skip
+    return Part(calculation.mark, calculation.title, "calculation", facts, blocks, strip=_strip(worked, script))
+
+
+def _strip(worked: Worked, script: Script) -> str:
+    """Return the words of the strip over a calculation that holds an NG, or did not run to its end."""
+    failed = [check for check in worst_checks(worked) if check.verdict == "NG"]
+    if failed:
+        words = ", ".join(f"line {script.check_line.get(id(c), 0)} {c.line.name}" for c in failed)
+        return f"{len(failed)} CHECK{'S' if len(failed) > 1 else ''} NG IN THIS CALCULATION: {words}"
+    return "NOT EVALUATED TO THE END: " + worked.stop.words if worked.stop else ""

@@ -1,0 +1,176 @@
+"""Figures from a calculation's own values: the section with its bars, the span with its loads and moments.
+
+A worked figure and forms in, a figure record out. Kinds and their inputs are declared here; places on paper are not.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import dataclass
+
+from calcreport.calculate.model import FigureInput, Key, WorkedFigure
+
+from calcreport.report.display import show_symbol
+from calcreport.report.forms import CalculationForms
+from calcreport.report.model import (
+    Bar,
+    BeamLoad,
+    Figure,
+    Formula,
+    Letters,
+    Row,
+    SectionFigure,
+    SpanFigure,
+)
+from calcreport.report.notation import relation, show_figure
+
+#: inputs of every kind, needed and optional
+KINDS: dict[str, tuple[tuple[str, ...], tuple[str, ...]]] = {
+    "beam section": (("b", "h", "c_c", "d_s", "face", "layers", "n", "d_b", "y"), ("c", "a", "eps_cu", "eps_t")),
+    "span": (("l", "loads", "w", "P", "x_P", "M_u"), ("pinned", "roller", "fixed", "x_u", "V_u")),
+}
+_STATIONS = 48
+
+
+@dataclass(frozen=True, slots=True)
+class _Inputs:
+    """Reads a figure's inputs."""
+
+    forms: CalculationForms
+    inputs: dict[str, FigureInput]
+    open: dict[int, int]
+
+    def has(self, name: str) -> bool:
+        """Tell whether an input was handed and has a value."""
+        given = self.inputs.get(name)
+        if given is None:
+            return False
+        return given.slot < 0 or self.forms.worked.values.get(given.slot, self.key(given.slot)) is not None
+
+    def key(self, slot: int, *rows: tuple[int, int]) -> Key:
+        """Return a slot's key in the open rows and those named."""
+        opened = {**self.open, **dict(rows)}
+        return tuple(opened.get(index, 0) for index in self.forms.worked.values.sets[slot])
+
+    def number(self, name: str, *rows: tuple[int, int]) -> float:
+        """Return a number in base units."""
+        given = self.inputs[name]
+        values = self.forms.worked.values
+        if given.slot >= 0:
+            return values.number(given.slot, self.key(given.slot, *rows))
+        if given.formula is None:
+            return 0.0
+        return self.forms.worked.compiled(given.formula)(values)
+
+    def word(self, name: str) -> str:
+        """Return a word."""
+        given = self.inputs[name]
+        return str(self.forms.worked.values.get(given.slot, ())) if given.slot >= 0 else given.word
+
+    def rows(self, name: str) -> tuple[str, ...]:
+        """Return the row names of a set handed over."""
+        return self.forms.worked.values.row_names(self.inputs[name].rows)
+
+    def label(self, name: str, *rows: tuple[int, int], symbol: bool = True) -> Formula:
+        """Return `b = 16 in.` with the printed figure."""
+        slot = self.inputs[name].slot
+        declared = self.forms.worked.plan.slots[slot].symbol
+        figure = show_figure(self.forms.figure(slot, self.key(slot, *rows)), declared.unit)
+        return Row((show_symbol(declared), relation("="), figure)) if symbol else figure
+
+
+def draw(worked: WorkedFigure, forms: CalculationForms) -> Figure | None:
+    """Return the figure, or None where an input it needs has no value."""
+    inputs = _Inputs(forms, {given.name: given for given in worked.line.inputs}, dict(worked.open))
+    needed, _ = KINDS[worked.line.kind]
+    if not all(inputs.has(name) for name in needed):
+        return None
+    makers: dict[str, Callable[[_Inputs], Figure]] = {"beam section": _section, "span": _span}
+    return makers[worked.line.kind](inputs)
+
+
+def _section(inputs: _Inputs) -> Figure:
+    """Return a beam section: bars where the lines put them, depths from the compression face."""
+    names, rows = inputs.rows("layers"), inputs.inputs["layers"].rows
+    bars = []
+    for row, _ in enumerate(names):
+        at = rows, row
+        callout = _callout(inputs, at)
+        bars.append(Bar(int(inputs.number("n", at)), _mm(inputs.number("d_b", at)), _mm(inputs.number("y", at)), callout))
+    labels: list[tuple[str, Formula]] = [("b", inputs.label("b")), ("h", inputs.label("h"))]
+    for name, label in (("c", "c"), ("a", "a"), ("eps_cu", "strain_top"), ("eps_t", "strain_steel")):
+        if inputs.has(name):
+            labels.append((label, inputs.label(name)))
+    steel = " + ".join(bar.callout for bar in bars)
+    labels.append(("steel", Letters(steel)))
+    face = inputs.word("face")
+    b, h = inputs.number("b"), inputs.number("h")
+    return SectionFigure(
+        width=_mm(b), depth=_mm(h), cover=_mm(inputs.number("c_c")), stirrup_diameter=_mm(inputs.number("d_s")),
+        bars=tuple(bars), tension_face="top" if face == "top" else "bottom",
+        neutral_axis=_mm(inputs.number("c")) if inputs.has("c") else None,
+        block_depth=_mm(inputs.number("a")) if inputs.has("a") else None,
+        labels=tuple(labels),
+        alternative=f"Section to scale with {steel} near the {face} face, with strains and the stress block.",
+    )  # fmt: skip
+
+
+def _callout(inputs: _Inputs, row: tuple[int, int]) -> str:
+    """Return the callout of a layer: the word value among the set's columns, else the count."""
+    values, plan = inputs.forms.worked.values, inputs.forms.worked.plan
+    for slot in plan.slots:
+        if slot.sets == (row[0],) and slot.symbol.unit is None:
+            found = values.get(slot.index, (row[1],))
+            if isinstance(found, str):
+                return found
+    return f"{int(inputs.number('n', row))} bars"
+
+
+def _mm(metres: float) -> float:
+    return metres * 1000.0
+
+
+def _span(inputs: _Inputs) -> Figure:
+    """Return a span with its unfactored loads and the governing factored moments."""
+    length = inputs.number("l")
+    rows, names = inputs.inputs["loads"].rows, inputs.rows("loads")
+    kinds = (("fixed", "fixed"), ("pinned", "pinned"), ("roller", "roller"))
+    supports = tuple((inputs.number(name), kind) for name, kind in kinds if inputs.has(name))
+    cantilever = any(kind == "fixed" for _, kind in supports)
+    spread = [inputs.number("w", (rows, row)) for row in range(len(names))]
+    points = [inputs.number("P", (rows, row)) for row in range(len(names))]
+    most = max([*map(abs, spread), 1e-12]), max([*map(abs, points), 1e-12])
+    loads: list[BeamLoad] = []
+    for row, name in enumerate(names):
+        if spread[row]:
+            loads.append(BeamLoad(0.0, length, abs(spread[row]) / most[0], _load_label(inputs, "w", (rows, row), name)))
+        if points[row]:
+            at = inputs.number("x_P")
+            loads.append(BeamLoad(at, at, abs(points[row]) / most[1], _load_label(inputs, "P", (rows, row), name)))
+    place = inputs.number("x_u") if inputs.has("x_u") else 0.0
+    moment = inputs.number("M_u")
+    shape = _shape(length, sum(spread), sum(points), inputs.number("x_P"), cantilever)
+    scale = moment / shape(place) if shape(place) else 0.0
+    curve = tuple((length * i / _STATIONS, scale * shape(length * i / _STATIONS)) for i in range(_STATIONS + 1))
+    return SpanFigure(
+        span=length, supports=supports, loads=tuple(loads), moments=curve, moment_labels=((place, inputs.label("M_u")),),
+        span_label=inputs.label("l"),
+        alternative="Span with its supports, loads by case and the factored moment diagram.",
+    )  # fmt: skip
+
+
+def _load_label(inputs: _Inputs, name: str, row: tuple[int, int], case: str) -> Formula:
+    return Row((Letters(f"{case}: "), inputs.label(name, row, symbol=False)))
+
+
+def _shape(length: float, w: float, p: float, at: float, cantilever: bool) -> Callable[[float], float]:
+    """Return the bending moment of a simple span or cantilever along it (statics), sagging positive."""
+
+    def simple(x: float) -> float:
+        point = p * (length - at) * x / length if x <= at else p * at * (length - x) / length
+        return w * x * (length - x) / 2 + point
+
+    def hanging(x: float) -> float:
+        return -(w * (length - x) ** 2 / 2 + p * max(at - x, 0.0))
+
+    return hanging if cantilever else simple

@@ -1,0 +1,456 @@
+"""What a package says, in order: blocks of words, lines, tables and figures; formulas as trees.
+
+Nothing here knows pages, fonts or points. Made by `report.compose`, laid out by `layout`.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from typing import Literal, TypeAlias
+
+# ---------------------------------------------------------------- formulas
+
+
+@dataclass(frozen=True, slots=True)
+class Letters:
+    """A run of characters of one style: a symbol's letters, a number, a unit, a word."""
+
+    text: str
+    #: 'italic' one-letter variables; 'upright' digits, units, function names and word subscripts
+    style: Literal["italic", "upright"] = "upright"
+
+
+@dataclass(frozen=True, slots=True)
+class Operator:
+    """A sign that takes its spacing from its kind, as in TeX: + = ( , and so on."""
+
+    text: str
+    kind: Literal["binary", "relation", "open", "close", "punctuation", "prefix"]
+
+
+@dataclass(frozen=True, slots=True)
+class Space:
+    """A gap: 'unit' between number and unit, 'thin' inside a product."""
+
+    kind: Literal["unit", "thin"]
+
+
+@dataclass(frozen=True, slots=True)
+class Row:
+    """Items side by side on one baseline."""
+
+    items: tuple[Formula, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class Fraction:
+    """One thing over another with a rule between."""
+
+    above: Formula
+    below: Formula
+
+
+@dataclass(frozen=True, slots=True)
+class Root:
+    """A square root (no index) or an n-th root."""
+
+    body: Formula
+    index: Formula | None = None
+
+
+@dataclass(frozen=True, slots=True)
+class Script:
+    """A base with a subscript, a superscript, or both stacked (f'c has the prime above the c)."""
+
+    base: Formula
+    below: Formula | None = None
+    above: Formula | None = None
+
+
+@dataclass(frozen=True, slots=True)
+class Fence:
+    """A body between delimiters that grow with it; either may be '' (the open side of a brace)."""
+
+    opening: str
+    body: Formula
+    closing: str
+
+
+@dataclass(frozen=True, slots=True)
+class Stack:
+    """Rows under one another, left aligned: arguments of a long max or min, cases after a brace."""
+
+    rows: tuple[Formula, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class Big:
+    """A large operator with what stands below and above it: a sum over a set, a maximum."""
+
+    sign: Formula
+    below: Formula | None = None
+    above: Formula | None = None
+
+
+Formula: TypeAlias = (
+    Letters | Operator | Space | Row | Fraction | Root | Script | Fence | Stack | Big
+)
+
+
+# ---------------------------------------------------------------- words
+
+
+@dataclass(frozen=True, slots=True)
+class Strong:
+    """Words in the heavier face."""
+
+    text: str
+
+
+@dataclass(frozen=True, slots=True)
+class Reference:
+    """Words that lead to an anchor elsewhere in the package, such as '14' to 'B1.14'."""
+
+    text: str
+    target: str
+
+
+#: Running text: plain words, heavier words, inline formulas and references, in order.
+Words: TypeAlias = "tuple[str | Strong | Reference | Formula, ...]"
+
+
+# ---------------------------------------------------------------- blocks
+
+
+@dataclass(frozen=True, slots=True)
+class SourceLane:
+    """What stands right of a line: where it comes from."""
+
+    #: citation such as '22.2.2.4.1', 'statics', 'project file', or '' for none
+    citation: str
+    #: lines each value came from, as references; printed on the second row
+    comes_from: tuple[Reference, ...] = ()
+
+
+@dataclass(frozen=True, slots=True)
+class Heading:
+    """A title inside a calculation or a front sheet; level 1 is the larger."""
+
+    text: str
+    level: int = 2
+
+
+@dataclass(frozen=True, slots=True)
+class Paragraph:
+    """Running text; a caution is set off, a note is quiet."""
+
+    words: Words
+    kind: Literal["plain", "note", "caution", "assumption"] = "plain"
+
+
+@dataclass(frozen=True, slots=True)
+class GivenRow:
+    """One given value: line number, symbol, meaning, value with unit, where it came from."""
+
+    number: int
+    anchor: str
+    symbol: Formula
+    says: Words
+    value: Formula
+    source: Words
+    #: changed since the last issue: the revision to print in the margin, or ''
+    delta: str = ""
+
+
+@dataclass(frozen=True, slots=True)
+class Givens:
+    """The table of given values at the start of a calculation, a tick ring each."""
+
+    rows: tuple[GivenRow, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class Line:
+    """One numbered line: words, then symbol = formula = substitution = result.
+
+    `formula`, `substitution` and `coherent` are right-hand sides without their equals sign; any may
+    be None when it would repeat its neighbour. `result` is set right-aligned at the result edge.
+    """
+
+    number: int
+    anchor: str
+    says: Words
+    symbol: Formula
+    formula: Formula | None
+    substitution: Formula | None
+    #: result in the units of the substituted values, where the declared unit differs
+    coherent: Formula | None
+    result: Formula
+    source: SourceLane
+    #: the condition that chose this form, with numbers, printed above the formula; or None
+    because: Formula | None = None
+    delta: str = ""
+
+
+@dataclass(frozen=True, slots=True)
+class Statement:
+    """A numbered condition or requirement that gives no value: `f_y <= 80 ksi: 60 <= 80`."""
+
+    number: int
+    anchor: str
+    says: Words
+    formula: Formula
+    source: SourceLane
+    delta: str = ""
+
+
+@dataclass(frozen=True, slots=True)
+class CheckLine:
+    """One check: `|M_u| / phi M_n = 512.6 / 562`, ratio and verdict."""
+
+    number: int
+    anchor: str
+    name: str
+    formula: Formula
+    substitution: Formula | None
+    #: '0.912', or '' where the check is a bare condition or not evaluated
+    ratio: str
+    verdict: Literal["OK", "NG", "not evaluated", "not applicable"]
+    #: a reason in words: why not applicable, why NG without a division; or ()
+    reason: Words
+    source: SourceLane
+    delta: str = ""
+
+
+@dataclass(frozen=True, slots=True)
+class ResultBox:
+    """The result to use, ruled round: `use` lines."""
+
+    number: int
+    anchor: str
+    words: Words
+    source: SourceLane
+    delta: str = ""
+
+
+@dataclass(frozen=True, slots=True)
+class Column:
+    """One column of a table."""
+
+    heading: Words
+    align: Literal["left", "right", "centre"] = "left"
+    #: share of the width left over after natural widths; 0 keeps the natural width
+    stretch: float = 0.0
+
+
+@dataclass(frozen=True, slots=True)
+class TableRow:
+    """Cells of one row; a governing row is set in the heavier face, a loud one is an NG."""
+
+    cells: tuple[Words, ...]
+    emphasis: Literal["", "governing", "loud"] = ""
+    anchor: str = ""
+    delta: str = ""
+
+
+@dataclass(frozen=True, slots=True)
+class Table:
+    """A table; its heading row repeats on every sheet it runs over."""
+
+    columns: tuple[Column, ...]
+    rows: tuple[TableRow, ...]
+    title: Words = ()
+    #: line number in the number lane, 0 for none
+    number: int = 0
+    anchor: str = ""
+    source: SourceLane = SourceLane("")
+
+
+@dataclass(frozen=True, slots=True)
+class Bar:
+    """A group of like bars in one layer of a section, lengths in millimetres."""
+
+    count: int
+    diameter: float
+    #: from the face named top to the bar centres
+    depth: float
+    callout: str
+
+
+@dataclass(frozen=True, slots=True)
+class SectionFigure:
+    """A rectangular section with its bars, strain and stress diagrams; all lengths in millimetres.
+
+    Depths run from the compression face. Labels are printed as given (same figures as the lines).
+    """
+
+    width: float
+    depth: float
+    cover: float
+    stirrup_diameter: float
+    bars: tuple[Bar, ...]
+    #: 'top' or 'bottom': the face that is in tension
+    tension_face: Literal["top", "bottom"]
+    neutral_axis: float | None
+    block_depth: float | None
+    #: printed labels by name: 'b', 'h', 'd', 'c', 'a', 'strain_top', 'strain_steel', 'stress', 'steel'
+    labels: tuple[tuple[str, Formula], ...]
+    alternative: str  # a sentence for readers who cannot see it
+
+
+@dataclass(frozen=True, slots=True)
+class BeamLoad:
+    """A load on a span figure: uniform from `start` to `end`, or a point load (start == end)."""
+
+    start: float
+    end: float
+    #: intensity relative to the largest of its kind, 0..1, for the height of the arrows
+    size: float
+    label: Formula
+
+
+@dataclass(frozen=True, slots=True)
+class SpanFigure:
+    """A line member with supports and loads and its moment diagram, to scale along the span.
+
+    `span` and positions are in metres; `moments` are (position, moment) in any one unit, sagging
+    positive, drawn on the tension side.
+    """
+
+    span: float
+    #: (position, 'pinned' | 'roller' | 'fixed')
+    supports: tuple[tuple[float, str], ...]
+    loads: tuple[BeamLoad, ...]
+    moments: tuple[tuple[float, float], ...]
+    #: (position, label) printed at the diagram
+    moment_labels: tuple[tuple[float, Formula], ...]
+    span_label: Formula
+    alternative: str
+
+
+Figure: TypeAlias = SectionFigure | SpanFigure
+
+
+@dataclass(frozen=True, slots=True)
+class FigureBlock:
+    """A figure; `beside` sets it right in the work lane with the following lines left of it."""
+
+    figure: Figure
+    beside: bool = True
+    caption: Words = ()
+
+
+Block: TypeAlias = (
+    Heading
+    | Paragraph
+    | Givens
+    | Line
+    | Statement
+    | CheckLine
+    | ResultBox
+    | Table
+    | FigureBlock
+)
+
+
+# ---------------------------------------------------------------- parts
+
+
+@dataclass(frozen=True, slots=True)
+class TitleFacts:
+    """What the title block at the foot of a part's sheets says besides the sheet number."""
+
+    project: str
+    project_number: str
+    #: 'B12  Level 2 beam, grid B, 2 to 5' or 'CHECK SUMMARY'
+    subject: str
+    #: 'ACI 318-19 (in.-lb)' or ''
+    code: str
+    #: 'FOR REVIEW'
+    status: str
+    #: 'not for construction' or ''
+    status_note: str
+    #: 'rev 1'
+    revision: str
+    #: last changed, such as '2 Nov 2026'
+    date: str
+    #: 'input 3fa2 81c0' for a calculation, '' on the fronts
+    fingerprint: str
+    #: 'calcreport 0.1.0'
+    program: str
+
+
+@dataclass(frozen=True, slots=True)
+class CoverFacts:
+    """Everything the cover says; laid out as ruled cells by `layout.cover`."""
+
+    title: str
+    #: lines of the project header: address, number, client, permit no. (blank)
+    header: tuple[str, ...]
+    issue: str
+    date: str
+    status: str
+    status_note: str
+    #: (marks, words): what this package holds
+    scope: tuple[tuple[str, str], ...]
+    #: (what, where it is): what this package leaves to others
+    elsewhere: tuple[tuple[str, str], ...]
+    #: lines of the basis: adopted code, material code, loads, criteria
+    basis: tuple[str, ...]
+    #: the result in one line, and further lines (open assumptions, changes)
+    result: tuple[Words, ...]
+    result_is_loud: bool
+    cautions: tuple[str, ...]
+    #: words inside the empty seal area's foot, outside the clear square
+    seal_words: str
+    office: tuple[str, ...]
+    fingerprint: str
+
+
+@dataclass(frozen=True, slots=True)
+class IndexEntry:
+    """One row of the index; sheets are found by the layout."""
+
+    mark: str
+    title: str
+    part: str  # Part.mark it leads to
+    #: 'NG' marks a part that holds a failing check; '' otherwise
+    flag: str
+    revision: str
+    date: str
+
+
+@dataclass(frozen=True, slots=True)
+class Index:
+    """The index of sheets: the layout fills in sheet numbers."""
+
+    entries: tuple[IndexEntry, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class Part:
+    """Sheets numbered together: a calculation, or one of the fronts and appendices."""
+
+    #: 'B12', 'SUMMARY', 'A'; printed as 'B12-2' of 5
+    mark: str
+    title: str
+    kind: Literal["cover", "index", "front", "calculation", "appendix"]
+    facts: TitleFacts
+    blocks: tuple[Block, ...] = ()
+    cover: CoverFacts | None = None
+    index: Index | None = None
+    #: words of the strip under the top frame edge: '1 CHECK NG IN THIS CALCULATION: LINE 31, SHEAR'
+    strip: str = ""
+
+
+@dataclass(frozen=True, slots=True)
+class Report:
+    """The whole package in order, before any page exists."""
+
+    title: str
+    author: str  # office name for the document information
+    subject: str
+    language: str  # 'en-US'
+    date: str  # ISO date of the issue, for document information
+    paper: Literal["letter", "a4"]
+    parts: tuple[Part, ...]

@@ -1,0 +1,336 @@
+"""The order in which a calculation is told, with its line numbers: what stands in full, what in a table.
+
+`Worked` in, a flat list of numbered items out. Both the sheets and the values file follow it. Knows neither
+digits nor formulas.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, field
+from typing import TypeAlias
+
+from calcreport.calculate.model import (
+    Key,
+    PlannedGiven,
+    PlannedGives,
+    Stop,
+    Worked,
+    WorkedBranches,
+    WorkedCheck,
+    WorkedEach,
+    WorkedFigure,
+    WorkedGives,
+    WorkedLine,
+    WorkedPart,
+    WorkedRequire,
+    WorkedRows,
+    WorkedText,
+)
+
+
+@dataclass(frozen=True, slots=True)
+class SayGivens:
+    """The given values that have no rows, a line number each."""
+
+    rows: tuple[tuple[int, PlannedGiven], ...]
+
+
+@dataclass(frozen=True, slots=True)
+class SayRows:
+    """A set of given rows as a table."""
+
+    number: int
+    given: PlannedGiven
+
+
+@dataclass(frozen=True, slots=True)
+class SayText:
+    """Words."""
+
+    worked: WorkedText
+
+
+@dataclass(frozen=True, slots=True)
+class SayHeading:
+    """A heading the program itself sets: a part's title, a row's name."""
+
+    text: str
+    level: int
+
+
+@dataclass(frozen=True, slots=True)
+class SayLine:
+    """A line in full."""
+
+    number: int
+    worked: WorkedGives
+
+
+@dataclass(frozen=True, slots=True)
+class SayFormula:
+    """A formula once, for rows that follow in a table; one worked line for each arm taken."""
+
+    number: int
+    arms: tuple[WorkedGives, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class SayMade:
+    """A set made here, as a table."""
+
+    number: int
+    worked: WorkedRows
+
+
+@dataclass(frozen=True, slots=True)
+class SayTable:
+    """Results of every row of a set; `governing` is the row told in full, or -1."""
+
+    number: int
+    worked: WorkedEach
+    columns: tuple[int, ...]
+    checks: tuple[str, ...]
+    governing: int
+
+
+@dataclass(frozen=True, slots=True)
+class SayBranch:
+    """The condition that chose a block."""
+
+    worked: WorkedBranches
+
+
+@dataclass(frozen=True, slots=True)
+class SayCheck:
+    """A check in full."""
+
+    number: int
+    worked: WorkedCheck
+
+
+@dataclass(frozen=True, slots=True)
+class SayRequire:
+    """A requirement that was met."""
+
+    number: int
+    worked: WorkedRequire
+
+
+@dataclass(frozen=True, slots=True)
+class SayFigure:
+    """A figure."""
+
+    worked: WorkedFigure
+
+
+@dataclass(frozen=True, slots=True)
+class SayStop:
+    """Where the calculation stopped."""
+
+    number: int
+    stop: Stop
+
+
+Item: TypeAlias = (
+    SayGivens | SayRows | SayText | SayHeading | SayLine | SayFormula | SayMade | SayTable | SayBranch | SayCheck
+    | SayRequire | SayFigure | SayStop
+)  # fmt: skip
+
+
+@dataclass(frozen=True, slots=True)
+class Script:
+    """One calculation's items, and the line number that tells each value and each check."""
+
+    worked: Worked
+    items: tuple[Item, ...]
+    #: line number by (slot, key); rows told only in a table have the table's formula line
+    line_of: dict[tuple[int, Key], int]
+    #: line number by the identity of a worked check
+    check_line: dict[int, int]
+
+
+@dataclass(slots=True)
+class _Writer:
+    worked: Worked
+    items: list[Item] = field(default_factory=list)
+    line_of: dict[tuple[int, Key], int] = field(default_factory=dict)
+    check_line: dict[int, int] = field(default_factory=dict)
+    number: int = 0
+
+    def next(self) -> int:
+        self.number += 1
+        return self.number
+
+
+def write_script(worked: Worked) -> Script:
+    """Return the items of a calculation in printed order."""
+    writer = _Writer(worked)
+    _givens(writer)
+    _lines(writer, worked.lines)
+    if worked.stop is not None:
+        writer.items.append(SayStop(writer.next(), worked.stop))
+    return Script(worked, tuple(writer.items), writer.line_of, writer.check_line)
+
+
+def _givens(writer: _Writer) -> None:
+    plain = [given for given in writer.worked.plan.givens if given.rows < 0 and not given.over]
+    rows = []
+    for given in plain:
+        number = writer.next()
+        rows.append((number, given))
+        for slot in (given.slot, *given.outputs):
+            writer.line_of[slot, ()] = number
+    if rows:
+        writer.items.append(SayGivens(tuple(rows)))
+    for given in writer.worked.plan.givens:
+        if given.rows >= 0 or given.over:
+            _given_table(writer, given)
+
+
+def _given_table(writer: _Writer, given: PlannedGiven) -> None:
+    number = writer.next()
+    writer.items.append(SayRows(number, given))
+    values = writer.worked.values
+    columns = given.columns if given.rows >= 0 else (given,)
+    for column in columns:
+        for slot in (column.slot, *column.outputs):
+            for key in values.rows[slot]:
+                writer.line_of[slot, key] = number
+
+
+def _lines(writer: _Writer, lines: tuple[WorkedLine, ...]) -> None:
+    for line in lines:
+        match line:
+            case WorkedGives():
+                number = writer.next()
+                writer.items.append(SayLine(number, line))
+                writer.line_of[line.line.slot, line.key] = number
+            case WorkedText():
+                writer.items.append(SayText(line))
+            case WorkedPart():
+                if line.line.title:
+                    writer.items.append(SayHeading(line.line.title, 2))
+                _lines(writer, line.lines)
+            case WorkedBranches():
+                if line.lines:
+                    writer.items.append(SayBranch(line))
+                _lines(writer, line.lines)
+            case WorkedEach():
+                _each(writer, line)
+            case WorkedRows():
+                number = writer.next()
+                writer.items.append(SayMade(number, line))
+                for column in line.line.columns:
+                    for key in writer.worked.values.rows[column.slot]:
+                        writer.line_of.setdefault((column.slot, key), number)
+            case WorkedCheck():
+                number = writer.next()
+                writer.items.append(SayCheck(number, line))
+                writer.check_line[id(line)] = number
+            case WorkedRequire():
+                writer.items.append(SayRequire(writer.next(), line))
+            case WorkedFigure():
+                writer.items.append(SayFigure(line))
+
+
+def checks_below(lines: tuple[WorkedLine, ...]) -> list[WorkedCheck]:
+    """Return every check worked in these lines, at any depth."""
+    found: list[WorkedCheck] = []
+    for line in lines:
+        match line:
+            case WorkedCheck():
+                found.append(line)
+            case WorkedPart() | WorkedBranches():
+                found += checks_below(line.lines)
+            case WorkedEach():
+                for row in line.rows:
+                    found += checks_below(row)
+    return found
+
+
+def _plain(lines: tuple[WorkedLine, ...]) -> bool:
+    """Tell whether a row holds single lines only, so that a table can tell it."""
+    return all(isinstance(line, WorkedGives | WorkedText) for line in lines)
+
+
+def _each(writer: _Writer, each: WorkedEach) -> None:
+    rows = each.rows
+    name = writer.worked.plan.sets[each.line.rows].name
+    if each.line.show == "every" or len(rows) <= 1:
+        _rows_in_full(writer, each, name, range(len(rows)))
+    elif any(checks_below(row) for row in rows):
+        governing = max(range(len(rows)), key=lambda row: _worst(rows[row]))
+        _rows_in_full(writer, each, name, [governing])
+        _number_rest(writer, each)
+        _table(writer, each, governing)
+    elif all(_plain(row) for row in rows):
+        _formulas_once(writer, each)
+        _table(writer, each, -1)
+    else:
+        _rows_in_full(writer, each, name, range(len(rows)))
+        if each.line.table:
+            _table(writer, each, -1)
+
+
+def _worst(lines: tuple[WorkedLine, ...]) -> tuple[bool, float]:
+    """Rank a row by its worst check: NG first, then by ratio."""
+    checks = checks_below(lines)
+    failed = any(check.verdict == "NG" for check in checks)
+    return failed, max((check.ratio for check in checks if check.ratio is not None), default=-1.0)
+
+
+def _rows_in_full(writer: _Writer, each: WorkedEach, name: str, rows: range | list[int]) -> None:
+    for row in rows:
+        writer.items.append(SayHeading(f"{name} {each.names[row]}", 3))
+        _lines(writer, each.rows[row])
+
+
+def _number_rest(writer: _Writer, each: WorkedEach) -> None:
+    """Give the lines of rows told only in the table the number of the row told in full."""
+    told = {slot: number for (slot, _), number in writer.line_of.items()}
+    checks = {check.line.name: writer.check_line.get(id(check)) for row in each.rows for check in checks_below(row)
+              if id(check) in writer.check_line}  # fmt: skip
+    for row in each.rows:
+        for line in _gives_below(row):
+            writer.line_of.setdefault((line.line.slot, line.key), told.get(line.line.slot, writer.number))
+        for check in checks_below(row):
+            writer.check_line.setdefault(id(check), checks.get(check.line.name) or writer.number)
+
+
+def _gives_below(lines: tuple[WorkedLine, ...]) -> list[WorkedGives]:
+    found: list[WorkedGives] = []
+    for line in lines:
+        match line:
+            case WorkedGives():
+                found.append(line)
+            case WorkedPart() | WorkedBranches():
+                found += _gives_below(line.lines)
+            case WorkedEach():
+                for row in line.rows:
+                    found += _gives_below(row)
+    return found
+
+
+def _formulas_once(writer: _Writer, each: WorkedEach) -> None:
+    for place, line in enumerate(each.rows[0]):
+        if isinstance(line, WorkedText):
+            writer.items.append(SayText(line))
+            continue
+        worked = [row[place] for row in each.rows]
+        gives = [one for one in worked if isinstance(one, WorkedGives)]
+        arms = tuple({one.arm: one for one in reversed(gives)}[arm] for arm in sorted({one.arm for one in gives}))
+        number = writer.next()
+        writer.items.append(SayFormula(number, arms))
+        for one in gives:
+            writer.line_of[one.line.slot, one.key] = number
+
+
+def _table(writer: _Writer, each: WorkedEach, governing: int) -> None:
+    columns = each.line.table or tuple(_slots_given(each))
+    checks = tuple(dict.fromkeys(check.line.name for row in each.rows for check in checks_below(row)))
+    writer.items.append(SayTable(writer.next(), each, columns, checks, governing))
+
+
+def _slots_given(each: WorkedEach) -> list[int]:
+    planned = [line for line in each.line.lines if isinstance(line, PlannedGives)]
+    return [line.slot for line in planned]

@@ -1,0 +1,232 @@
+"""The check summary: what needs eyes first, then a row a member, then every check and limit state.
+
+Worked calculations with forms in, blocks and counts out.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+from calcreport.calculate.model import Comparison, Worked, WorkedCheck, WorkedProject
+from calcreport.core.units import ONE
+from calcreport.report.digits import number_text
+from calcreport.report.display import unit_text
+from calcreport.report.forms import CalculationForms, is_size, side_unit
+from calcreport.report.fronts import RegisterEntry
+from calcreport.report.model import Block, Column, Heading, Paragraph, Reference, Strong, Table, TableRow, Words
+from calcreport.report.script import Script
+
+CLOSING = "Computed demand does not exceed computed capacity for the checks listed"
+
+
+@dataclass(frozen=True, slots=True)
+class Summary:
+    """The counts a cover and a terminal state."""
+
+    calculations: int
+    checks: int
+    failed: tuple[tuple[str, str], ...]
+    not_evaluated: int
+    #: (limit state, marks) without anyone's word
+    not_covered: tuple[tuple[str, tuple[str, ...]], ...]
+    open_assumptions: int
+
+
+def worst_checks(worked: Worked) -> tuple[WorkedCheck, ...]:
+    """Return one check of each name, its worst row, in page order."""
+    found: dict[str, WorkedCheck] = {}
+    for check in worked.checks:
+        before = found.get(check.line.name)
+        if before is None or _rank(check) > _rank(before):
+            found[check.line.name] = check
+    return tuple(found.values())
+
+
+def _rank(check: WorkedCheck) -> tuple[int, float]:
+    order = {"not applicable": 0, "OK": 1, "not evaluated": 2, "NG": 3}
+    return order[check.verdict], check.ratio if check.ratio is not None else -1.0
+
+
+def governing(worked: Worked) -> WorkedCheck | None:
+    """Return the check that governs a calculation."""
+    judged = [check for check in worst_checks(worked) if check.verdict != "not applicable"]
+    return max(judged, key=_rank, default=None)
+
+
+def summarise(project: WorkedProject, entries: tuple[RegisterEntry, ...]) -> Summary:
+    """Return the counts."""
+    failed, pending, checks = [], 0, 0
+    for worked in project.calculations:
+        for check in worst_checks(worked):
+            checks += check.verdict != "not applicable"
+            pending += check.verdict == "not evaluated"
+            if check.verdict == "NG":
+                failed.append((worked.calculation.mark, check.line.name))
+    open_count = sum(entry.state.startswith("to be") for entry in entries)
+    return Summary(len(project.calculations), checks, tuple(failed), pending, not_covered(project), open_count)
+
+
+def not_covered(project: WorkedProject) -> tuple[tuple[str, tuple[str, ...]], ...]:
+    """Return the limit states left out by templates for which the project has no word."""
+    said = {d.limit_state for d in project.project.dispositions if d.limit_state}
+    found: dict[str, list[str]] = {}
+    for worked in project.calculations:
+        mark = worked.calculation.mark
+        for state in worked.plan.template.excludes:
+            if f"{mark} {state}" not in said and state not in said:
+                found.setdefault(state, []).append(mark)
+    return tuple((state, tuple(marks)) for state, marks in found.items())
+
+
+def result_words(summary: Summary) -> tuple[Words, ...]:
+    """Return the result as the cover states it."""
+    failed = ", ".join(f"{mark} {name}" for mark, name in summary.failed)
+    counts: list[str | Strong] = []
+    if summary.failed:
+        counts.append(Strong(f"{len(summary.failed)} NG ({failed})"))
+    else:
+        counts.append("0 NG")
+    counts.append(f"    {summary.not_evaluated} not evaluated    {len(summary.not_covered)} limit states not covered"
+                  f"    {summary.open_assumptions} assumptions open")  # fmt: skip
+    return (tuple(counts), (_closing(summary),))
+
+
+def _closing(summary: Summary) -> str:
+    if summary.failed or summary.not_evaluated:
+        return CLOSING + ", except those marked NG or not evaluated."
+    return CLOSING + "."
+
+
+class SummarySheets:
+    """Composes the check summary."""
+
+    def __init__(self, project: WorkedProject, forms: dict[str, CalculationForms], scripts: dict[str, Script]) -> None:
+        self.project, self.forms, self.scripts = project, forms, scripts
+
+    def blocks(self, summary: Summary, entries: tuple[RegisterEntry, ...]) -> tuple[Block, ...]:
+        """Return all blocks of the summary."""
+        counts = (f"{summary.calculations} calculations, {summary.checks} checks.  ", Strong(f"{len(summary.failed)} NG"),
+                  f",  {summary.not_evaluated} not evaluated,  {len(summary.not_covered)} limit states not covered.")  # fmt: skip
+        blocks: list[Block] = [Paragraph(counts, "plain")]
+        blocks += self.attention(summary, entries)
+        blocks += self.members()
+        blocks += self.grid()
+        blocks.append(Paragraph((_closing(summary),), "plain"))
+        return tuple(blocks)
+
+    def attention(self, summary: Summary, entries: tuple[RegisterEntry, ...]) -> list[Block]:
+        """Return what needs eyes: NG, not evaluated, not covered, unverified."""
+        rows: list[TableRow] = []
+        for worked in self.project.calculations:
+            mark = worked.calculation.mark
+            for check in worst_checks(worked):
+                if check.verdict in ("NG", "not evaluated"):
+                    words = self.sides(check, mark) if check.verdict == "NG" else f"not evaluated: {check.reason}"
+                    rows.append(TableRow(((mark,), (check.line.name,), (words,), (self.ratio(check, mark),), self.place(check, mark)), "loud"))
+        for entry in entries:
+            if entry.state.startswith("to be"):
+                rows.append(TableRow(((entry.number,), ("assumption",), (f"{entry.says} ({entry.state})",), ("",), entry.where)))
+        for state, marks in summary.not_covered:
+            text = "not covered; engineer to state who covers it"
+            rows.append(TableRow(((_short(marks),), (state,), (text,), ("",), ("",))))
+        if not rows:
+            return []
+        columns = (Column(("Mark",), stretch=0.6), Column(("What",), stretch=1.0), Column(("State",), stretch=2.0),
+                   Column(("Ratio",), "right"), Column(("Where",)))  # fmt: skip
+        return [Heading("Needs attention", 2), Table(columns, tuple(rows))]
+
+    def members(self) -> list[Block]:
+        """Return a row a calculation with its governing check, highest ratio first."""
+        ranked = sorted(self.project.calculations, key=lambda w: _rank(g) if (g := governing(w)) else (0, -1.0), reverse=True)
+        rows = []
+        for worked in ranked:
+            mark, check = worked.calculation.mark, governing(worked)
+            if check is None:
+                rows.append(TableRow(((mark,), (worked.calculation.title,), ("no checks: gives values to others",), ("",), ("",), ("",), ("",))))
+                continue
+            demand, capacity = self.demand(check, mark)
+            emphasis = "loud" if check.verdict == "NG" else ""
+            rows.append(
+                TableRow(((mark,), (worked.calculation.title,), (check.line.name,), (demand,), (capacity,),
+                          (self.ratio(check, mark) + (" NG" if check.verdict == "NG" else ""),), self.place(check, mark)), emphasis)  # type: ignore[arg-type]
+            )  # fmt: skip
+        columns = (Column(("Mark",)), Column(("Calculation",), stretch=1.4), Column(("Governing check",), stretch=1.0),
+                   Column(("Demand or required",), "right"), Column(("Capacity or provided",), "right"),
+                   Column(("Ratio",), "right"), Column(("Where",)))  # fmt: skip
+        return [Heading("Governing check of every calculation", 2), Table(columns, tuple(rows))]
+
+    def grid(self) -> list[Block]:
+        """Return every check of every calculation by template, and who covers what a template leaves out."""
+        blocks: list[Block] = []
+        groups: dict[str, list[Worked]] = {}
+        for worked in self.project.calculations:
+            if worked.checks:
+                groups.setdefault(worked.calculation.template.title, []).append(worked)
+        for title, members in groups.items():
+            names = list(dict.fromkeys(check.line.name for worked in members for check in worst_checks(worked)))
+            rows = [self.grid_row(worked, names) for worked in members]
+            blocks.append(Heading(title, 2))
+            blocks.append(Table((Column(("Mark",)), *(Column((name,), "right", 1.0) for name in names)), tuple(rows)))
+        said = [d for d in self.project.project.dispositions if d.limit_state]
+        if said:
+            rows = [TableRow(((d.limit_state,), (d.says,))) for d in said]
+            blocks.append(Heading("Limit states covered elsewhere, by the engineer's word", 2))
+            blocks.append(Table((Column(("Limit state",)), Column(("Covered by",), stretch=1.0)), tuple(rows)))
+        return blocks
+
+    def grid_row(self, worked: Worked, names: list[str]) -> TableRow:
+        mark, chief = worked.calculation.mark, governing(worked)
+        cells: list[Words] = [(mark,)]
+        by_name = {check.line.name: check for check in worst_checks(worked)}
+        for name in names:
+            check = by_name.get(name)
+            if check is None:
+                cells.append(("–",))
+                continue
+            text = self.ratio(check, mark) or check.verdict
+            if check.verdict == "NG":
+                cells.append((Strong(f"{text} NG"),))
+            elif check is chief:
+                cells.append((Strong(text),))
+            else:
+                cells.append((text if check.verdict != "not applicable" else "n.a.",))
+        return TableRow(tuple(cells), "loud" if worked.verdict == "NG" else "")
+
+    # -------------------------------------------------------- pieces
+
+    def ratio(self, check: WorkedCheck, mark: str) -> str:
+        """Return a check's printed ratio, or ''."""
+        figure = self.forms[mark].ratio(check)
+        return number_text(figure) if figure else ""
+
+    def demand(self, check: WorkedCheck, mark: str) -> tuple[str, str]:
+        """Return demand and capacity as printed, with their unit."""
+        if check.by is None:
+            return "", ""
+        left, right = self.side(check.by, check, mark, "left"), self.side(check.by, check, mark, "right")
+        return (left, right) if check.by.test.op in ("<", "<=") else (right, left)
+
+    def side(self, by: Comparison, check: WorkedCheck, mark: str, side: str) -> str:
+        forms = self.forms[mark]
+        figure = forms.side(by.test, check.open, side)
+        if figure is None:
+            return ""
+        node = by.test.left if side == "left" else by.test.right
+        unit = side_unit(by.test, forms)
+        power = f" × 10^{figure.exponent}" if figure.exponent else ""
+        text = number_text(figure, unsigned=is_size(node)) + power
+        return f"{text} {unit_text(unit)}" if unit is not ONE and unit_text(unit) else text
+
+    def sides(self, check: WorkedCheck, mark: str) -> str:
+        """Return `118.4 kip > 116.3 kip` for a failing check."""
+        demand, capacity = self.demand(check, mark)
+        return f"{demand} against {capacity}" if demand else check.reason
+
+    def place(self, check: WorkedCheck, mark: str) -> Words:
+        """Return where a check stands."""
+        number = self.scripts[mark].check_line.get(id(check))
+        return (Reference(f"{mark} line {number}", f"{mark}.{number}"),) if number else (mark,)
+
+
+def _short(marks: tuple[str, ...]) -> str:
+    return " ".join(marks) if len(marks) <= 6 else f"{' '.join(marks[:5])} and {len(marks) - 5} more"

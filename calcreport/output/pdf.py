@@ -15,7 +15,7 @@ from reportlab.pdfbase import pdfdoc  # type: ignore[import-untyped]
 
 from calcreport.core.fontfile import FontFile
 from calcreport.layout.model import Face, Page, Pages
-from calcreport.output.content import FONT_NAMES, Area, Content, ContentWriter
+from calcreport.output.content import FONT_NAMES, Area, ContentWriter
 from calcreport.output.embed import embed_font
 from calcreport.output.metadata import information, xmp_packet
 from calcreport.output.outline import outline_objects
@@ -62,20 +62,15 @@ class _File:
         self.put(number, data)
         return number
 
-    def finish(
-        self, catalog: dict[str, bytes], info: dict[str, bytes], fingerprint: Iterable[bytes]
-    ) -> bytes:
-        """Write the file; what it holds decides its identifier."""
-        document = self._document
-        document.Catalog = pdfdoc.PDFObjectReference(f"object{self.add(_dictionary(catalog))}")
-        document.info = pdfdoc.PDFObjectReference(f"object{self.add(_dictionary(info))}")
-        for data in fingerprint:
-            document.updateSignature(data)
-        return bytes(document.format())
+    def mark(self, data: bytes) -> None:
+        """Let data decide, with all else marked, the identifier of the file."""
+        self._document.updateSignature(data)
 
-
-def _dictionary(entries: dict[str, bytes]) -> bytes:
-    return b"<<%b>>" % b"".join(name(key) + b" " + value for key, value in entries.items())
+    def finish(self, catalog: int, info: int) -> bytes:
+        """Write the file; the two objects are its catalog and its information dictionary."""
+        self._document.Catalog = pdfdoc.PDFObjectReference(f"object{catalog}")
+        self._document.info = pdfdoc.PDFObjectReference(f"object{info}")
+        return bytes(self._document.format())
 
 
 def write_pdf(
@@ -83,76 +78,101 @@ def write_pdf(
 ) -> bytes:
     """Write all pages.
 
-    ValueError when a link or bookmark leads nowhere, two anchors share a name, or the date is no ISO date.
+    ValueError when there are none, a link or bookmark leads nowhere, two anchors or two labels share a name,
+    a bookmark skips a level, or the date is no ISO date.
     """
+    if not pages.pages:
+        raise ValueError("there are no pages to write")
     file = _File(pages.language)
     writer = ContentWriter()
-    resources, tree = file.reserve(), file.reserve()
+    info = _dictionary(information(pages))
+    file.mark(info)
+    tree, resources = file.reserve(), file.reserve()
     numbers = [file.reserve() for _ in pages.pages]
-    written = [_contents(file, writer, page, pages.height) for page in pages.pages]
-    places = _places(pages, numbers, [content for _, content in written])
-    box = b"%b %b" % (number(pages.width), number(pages.height))
-    for page_number, (streams, content) in zip(numbers, written, strict=True):
-        links = b" ".join(reference(file.add(_link(area, places))) for area in content.links)
-        file.put(
-            page_number,
-            b"<</Type/Page/Parent %b/MediaBox[0 0 %b]/Resources %b/Contents[%b]%b>>"
-            % (
-                reference(tree),
-                box,
-                reference(resources),
-                b" ".join(map(reference, streams)),
-                b"/Annots[%b]" % links if links else b"",
-            ),
-        )
-    kids = b" ".join(map(reference, numbers))
-    file.put(tree, b"<</Type/Pages/Count %d/Kids[%b]>>" % (len(numbers), kids))
+    sheets = [_sheet(file, writer, page, pages.height) for page in pages.pages]
+    places = _places(pages, numbers, sheets)
+    page = b"<</Type/Page/Parent %b/MediaBox[0 0 %b %b]/Resources %b/Contents[%%b]%%b>>" % (
+        reference(tree),
+        number(pages.width),
+        number(pages.height),
+        reference(resources),
+    )
+    for own, sheet in zip(numbers, sheets, strict=True):
+        links = b" ".join(reference(file.add(_link(area, places))) for area in sheet.links)
+        file.put(own, page % (_references(sheet.streams), b"/Annots[%b]" % links if links else b""))
+    file.put(tree, b"<</Type/Pages/Count %d/Kids[%b]>>" % (len(numbers), _references(numbers)))
     file.put(resources, _resources(file, writer, fonts))
-    catalog = {
-        "Type": b"/Catalog",
-        "Pages": reference(tree),
+    catalog = {"Type": b"/Catalog", "Pages": reference(tree), **_particulars(file, pages)}
+    catalog |= _names(file, pages, places, attachments)
+    catalog |= _outline(file, pages, places)
+    return file.finish(file.add(_dictionary(catalog)), file.add(info))
+
+
+def _dictionary(entries: Mapping[str, bytes]) -> bytes:
+    return b"<<%b>>" % b"".join(name(key) + b" " + value for key, value in entries.items())
+
+
+def _references(numbers: Iterable[int]) -> bytes:
+    return b" ".join(map(reference, numbers))
+
+
+@dataclass(frozen=True, slots=True)
+class _Sheet:
+    """A page whose content is written: the numbers of its streams, and what lies on it besides ink."""
+
+    streams: tuple[int, ...]
+    links: tuple[Area, ...]
+    anchors: tuple[tuple[str, float, float], ...]
+
+
+def _sheet(file: _File, writer: ContentWriter, page: Page, height: float) -> _Sheet:
+    """Write the body and the title block of a page as two streams."""
+    parts = writer.write(page.body, height), writer.write(page.title_block, height)
+    for content in parts:
+        file.mark(content.data)
+    streams = tuple(file.add(stream(content.data)) for content in parts)
+    body, block = parts
+    return _Sheet(streams, body.links + block.links, body.anchors + block.anchors)
+
+
+def _particulars(file: _File, pages: Pages) -> dict[str, bytes]:
+    """Write the catalog's entries on language, metadata, page labels and how the file opens."""
+    packet = stream(xmp_packet(pages), b"/Type/Metadata/Subtype/XML", compress=False)
+    labels = (b"%d<</P%b>>" % (i, text_string(page.label)) for i, page in enumerate(pages.pages))
+    return {
         "Lang": text_string(pages.language),
-        "Metadata": reference(
-            file.add(stream(xmp_packet(pages), b"/Type/Metadata/Subtype/XML", compress=False))
-        ),
-        "PageLabels": b"<</Nums[%b]>>"
-        % b" ".join(b"%d<</P%b>>" % (i, text_string(page.label)) for i, page in enumerate(pages.pages)),
+        "Metadata": reference(file.add(packet)),
+        "PageLabels": b"<</Nums[%b]>>" % b" ".join(labels),
         "PageMode": b"/UseOutlines" if pages.bookmarks else b"/UseNone",
         "ViewerPreferences": b"<</DisplayDocTitle true>>",
-        **_names(file, pages, places, attachments),
     }
-    if pages.bookmarks:
-        catalog["Outlines"] = reference(file.next)
-        for entry in outline_objects(pages.bookmarks, file.next, lambda target: _place(places, target)):
-            file.add(entry)
-    info = information(pages)
-    return file.finish(catalog, info, (*info.values(), *(content.data for _, content in written)))
 
 
-def _contents(
-    file: _File, writer: ContentWriter, page: Page, height: float
-) -> tuple[tuple[int, ...], Content]:
-    """Write the body and the title block of a page as two streams; give their numbers and what they hold."""
-    body, block = writer.write(page.body, height), writer.write(page.title_block, height)
-    streams = tuple(file.add(stream(content.data)) for content in (body, block))
-    return streams, Content(body.data + block.data, body.links + block.links, body.anchors + block.anchors)
+def _outline(file: _File, pages: Pages, places: Mapping[str, bytes]) -> dict[str, bytes]:
+    """Write the bookmarks."""
+    if not pages.bookmarks:
+        return {}
+    root = file.next
+    for entry in outline_objects(pages.bookmarks, root, lambda target: _place(places, target)):
+        file.add(entry)
+    return {"Outlines": reference(root)}
 
 
-def _places(pages: Pages, numbers: list[int], written: list[Content]) -> dict[str, bytes]:
+def _places(pages: Pages, numbers: list[int], sheets: list[_Sheet]) -> dict[str, bytes]:
     """Give the destination of every page label and anchor; a label stands before an anchor of its name."""
     top = number(pages.height)
     labels = {
-        page.label: b"[%b/XYZ 0 %b 0]" % (reference(n), top)
-        for page, n in zip(pages.pages, numbers, strict=True)
+        page.label: b"[%b/XYZ 0 %b 0]" % (reference(own), top)
+        for page, own in zip(pages.pages, numbers, strict=True)
     }
     if len(labels) != len(numbers):
         raise ValueError("two pages have the same label")
     anchors: dict[str, bytes] = {}
-    for n, content in zip(numbers, written, strict=True):
-        for anchor, x, y in content.anchors:
+    for own, sheet in zip(numbers, sheets, strict=True):
+        for anchor, x, y in sheet.anchors:
             if anchor in anchors:
                 raise ValueError(f"two anchors are named {anchor!r}")
-            anchors[anchor] = b"[%b/XYZ %b %b 0]" % (reference(n), number(x), number(y))
+            anchors[anchor] = b"[%b/XYZ %b %b 0]" % (reference(own), number(x), number(y))
     return anchors | labels
 
 
@@ -198,6 +218,7 @@ def _names(
 def _attachment(file: _File, item: Attachment) -> bytes:
     """Write the specification of an attached file."""
     entries = b"/Type/EmbeddedFile/Subtype%b/Params<</Size %d>>" % (name(item.mime), len(item.data))
+    file.mark(item.data)
     body = reference(file.add(stream(item.data, entries)))
     title = text_string(item.name)
     return b"<</Type/Filespec/F%b/UF%b/Desc%b/AFRelationship%b/EF<</F %b/UF %b>>>>" % (

@@ -291,23 +291,24 @@ def _number_rest(writer: _Writer, each: WorkedEach) -> None:
     checks = {check.line.name: writer.check_line.get(id(check)) for row in each.rows for check in checks_below(row)
               if id(check) in writer.check_line}  # fmt: skip
     for row in each.rows:
-        for line in _gives_below(row):
+        for line in gives_below(row):
             writer.line_of.setdefault((line.line.slot, line.key), told.get(line.line.slot, writer.number))
         for check in checks_below(row):
             writer.check_line.setdefault(id(check), checks.get(check.line.name) or writer.number)
 
 
-def _gives_below(lines: tuple[WorkedLine, ...]) -> list[WorkedGives]:
+def gives_below(lines: tuple[WorkedLine, ...]) -> list[WorkedGives]:
+    """Return every line worked in these lines, at any depth."""
     found: list[WorkedGives] = []
     for line in lines:
         match line:
             case WorkedGives():
                 found.append(line)
             case WorkedPart() | WorkedBranches():
-                found += _gives_below(line.lines)
+                found += gives_below(line.lines)
             case WorkedEach():
                 for row in line.rows:
-                    found += _gives_below(row)
+                    found += gives_below(row)
     return found
 
 

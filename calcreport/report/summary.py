@@ -230,3 +230,21 @@ class SummarySheets:
 
 def _short(marks: tuple[str, ...]) -> str:
     return " ".join(marks) if len(marks) <= 6 else f"{' '.join(marks[:5])} and {len(marks) - 5} more"
+
+
+def summary_lines(project: WorkedProject, forms: dict[str, CalculationForms], summary: Summary) -> list[str]:
+    """Return the check summary as a terminal shows it: a line a calculation, then the counts."""
+    lines = []
+    for worked in project.calculations:
+        check = governing(worked)
+        mark = worked.calculation.mark
+        if check is None:
+            lines.append(f"{mark:<8} {'':>8}      {worked.calculation.title}")
+            continue
+        figure = forms[mark].ratio(check)
+        ratio = number_text(figure) if figure else ""
+        lines.append(f"{mark:<8} {ratio:>8}  {check.verdict:<3} {worked.calculation.title}: {check.line.name}")
+    lines.append(f"{summary.checks} checks: {len(summary.failed)} NG, {summary.not_evaluated} not evaluated; "
+                 f"{len(summary.not_covered)} limit states not covered, {summary.open_assumptions} assumptions to be verified")  # fmt: skip
+    lines.append(_closing(summary))
+    return lines

@@ -43,12 +43,16 @@ def brackets(*items: Formula | str) -> Fence:
 
 
 A, B, C, D, H, PHI, LAMBDA = (variable(letter) for letter in "abcdhφλ")
-A_S, F_Y, M_N, B_W, D_T = (symbol(*pair) for pair in (("A", "s"), ("f", "y"), ("M", "n"), ("b", "w"), ("d", "t")))
+A_S, F_Y, M_N, B_W, D_T = (
+    symbol(*pair) for pair in (("A", "s"), ("f", "y"), ("M", "n"), ("b", "w"), ("d", "t"))
+)
 F_C, EPS_T, V_C = symbol("f", "c", "′"), symbol("ε", "t"), symbol("V", "c")
 HALF_A = Fraction(A, Letters("2"))
 
 MOMENT = row(M_N, EQUALS, A_S, THIN, F_Y, THIN, brackets(D, MINUS, HALF_A))
-BLOCK = row(A, EQUALS, Fraction(row(A_S, THIN, F_Y), row("0.85", THIN, F_C, THIN, B)), EQUALS, "4.902", UNIT, "in.")
+BLOCK = row(
+    A, EQUALS, Fraction(row(A_S, THIN, F_Y), row("0.85", THIN, F_C, THIN, B)), EQUALS, "4.902", UNIT, "in."
+)
 SHEAR = row(V_C, EQUALS, "2", THIN, LAMBDA, THIN, Root(F_C), THIN, B_W, THIN, D)
 STRAIN = row(EPS_T, EQUALS, Fraction(row("0.003", THIN, brackets(D_T, MINUS, C)), C), EQUALS, "0.01085")
 CASES = row(
@@ -59,7 +63,11 @@ CASES = row(
         Stack(
             (
                 row("0.85", THIN, "for", THIN, F_C, AT_MOST, "4,000", UNIT, "psi"),
-                row("0.85", MINUS, Fraction(row("0.05", THIN, brackets(F_C, MINUS, "4,000")), Letters("1,000"))),
+                row(
+                    "0.85",
+                    MINUS,
+                    Fraction(row("0.05", THIN, brackets(F_C, MINUS, "4,000")), Letters("1,000")),
+                ),
                 row("0.65", THIN, "for", THIN, F_C, AT_LEAST, "8,000", UNIT, "psi"),
             )
         ),
@@ -100,7 +108,12 @@ LARGEST = row(
     "max",
     Fence(
         "(",
-        Stack((row(Fraction(row("3", THIN, Root(F_C)), F_Y), THIN, B_W, THIN, D), row(Fraction(Letters("200"), F_Y), THIN, B_W, THIN, D))),
+        Stack(
+            (
+                row(Fraction(row("3", THIN, Root(F_C)), F_Y), THIN, B_W, THIN, D),
+                row(Fraction(Letters("200"), F_Y), THIN, B_W, THIN, D),
+            )
+        ),
         ")",
     ),
 )
@@ -119,13 +132,28 @@ NUMBERS = row(
     UNIT,
     "kip·ft",
 )
-RATIO = row(Fence("|", symbol("M", "u"), "|"), SLASH, PHI, M_N, EQUALS, Fraction(Fence("|", symbol("M", "u"), "|"), row(PHI, M_N)))
+RATIO = row(
+    Fence("|", symbol("M", "u"), "|"),
+    SLASH,
+    PHI,
+    M_N,
+    EQUALS,
+    Fraction(Fence("|", symbol("M", "u"), "|"), row(PHI, M_N)),
+)
 LENGTH = row(
     symbol("ℓ", "d"),
     EQUALS,
     Fraction(
         row("3", THIN, F_Y, THIN, symbol("ψ", "t")),
-        row("40", THIN, LAMBDA, THIN, Root(F_C), THIN, Fence("(", Fraction(row(symbol("c", "b"), PLUS, symbol("K", "tr")), symbol("d", "b")), ")")),
+        row(
+            "40",
+            THIN,
+            LAMBDA,
+            THIN,
+            Root(F_C),
+            THIN,
+            Fence("(", Fraction(row(symbol("c", "b"), PLUS, symbol("K", "tr")), symbol("d", "b")), ")"),
+        ),
     ),
     THIN,
     symbol("d", "b"),

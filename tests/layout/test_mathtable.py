@@ -61,7 +61,13 @@ def test_sizes_and_pieces_of_growing_signs(table: MathTable, font: TTFont) -> No
         )
         parts = construction.GlyphAssembly.PartRecords if construction.GlyphAssembly else ()
         assert table.parts(ids[name]) == tuple(
-            Part(ids[p.glyph], p.StartConnectorLength, p.EndConnectorLength, p.FullAdvance, bool(p.PartFlags & 1))
+            Part(
+                ids[p.glyph],
+                p.StartConnectorLength,
+                p.EndConnectorLength,
+                p.FullAdvance,
+                bool(p.PartFlags & 1),
+            )
             for p in parts
         )
     assert table.min_overlap == variants.MinConnectorOverlap

@@ -5,8 +5,8 @@ from __future__ import annotations
 import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
-from ink import inked, texts
-from specimen import m
+from inked import inked, texts
+from specimen import over
 
 from calcreport.layout.fonts import Fonts
 from calcreport.layout.model import Link
@@ -61,7 +61,7 @@ def test_references_become_link_areas_over_their_letters(lettering: Lettering, f
 
 def test_a_tall_formula_raises_its_line(lettering: Lettering) -> None:
     plain = lettering.set(("words",), PLAIN, 200.0)[0]
-    high = lettering.set(("with ", m("f′_c b_w")), PLAIN, 200.0)[0]
+    high = lettering.set(("with ", over("V_u", "φV_n")), PLAIN, 200.0)[0]
     assert high.ascent + high.descent > plain.ascent + plain.descent
 
 

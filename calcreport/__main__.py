@@ -1,0 +1,65 @@
+"""The command line: arguments in, an exit code out. What each command does stands in `commands`."""
+
+from __future__ import annotations
+
+import argparse
+import os
+import sys
+from collections.abc import Sequence
+
+from calcreport.core.late import load_command
+from calcreport.core.version import PROGRAM
+
+_EPILOG = "exit codes: 0 done, every check OK; 1 done, a check is NG or something differs; 2 the input has problems"
+
+
+def make_parser() -> argparse.ArgumentParser:
+    """Return the parser of all commands."""
+    parser = argparse.ArgumentParser(
+        prog="calcreport", description="Calculation packages for structural concrete, from plain text.", epilog=_EPILOG
+    )
+    parser.add_argument("--version", action="version", version=PROGRAM)
+    commands = parser.add_subparsers(dest="command", required=True, metavar="COMMAND")
+    new = commands.add_parser("new", help="start a small project that builds")
+    new.add_argument("folder", metavar="DIR")
+    build = commands.add_parser("build", help="build the package as PDF")
+    _project(build)
+    build.add_argument("-o", "--output", metavar="PDF", help="where to write it; beside the project file if not told")
+    lint = commands.add_parser("lint", help="report every problem of a project or a template with its place")
+    lint.add_argument("file", metavar="FILE", help="a project file, a template file, or a template's name")
+    lint.add_argument("--json", action="store_true", help="problems for machines")
+    values = commands.add_parser("values", help="print every value and check, no PDF")
+    _project(values)
+    trace = commands.add_parser("trace", help="print the tree of lines behind one number")
+    trace.add_argument("project", metavar="PROJECT")
+    trace.add_argument("value", metavar="MARK.SYMBOL", help="such as B1.phiM_n")
+    templates = commands.add_parser("templates", help="list the templates, or tell what one needs and decides")
+    templates.add_argument("name", nargs="?", metavar="NAME")
+    explain = commands.add_parser("explain", help="tell what a problem means and how to mend it")
+    explain.add_argument("slug", nargs="?", metavar="SLUG")
+    return parser
+
+
+def _project(parser: argparse.ArgumentParser) -> None:
+    parser.add_argument("project", metavar="PROJECT", help="a project file, or a folder that holds project.yaml")
+    parser.add_argument("--json", action="store_true", help="for machines")
+
+
+def main(arguments: Sequence[str] | None = None) -> int:
+    """Run a command; returns its exit code."""
+    parsed = make_parser().parse_args(arguments)
+    try:
+        code = load_command(parsed.command).run(parsed)
+        sys.stdout.flush()
+        return int(code)
+    except BrokenPipeError:
+        # a reader that went away, such as `head`, is no fault; keep the interpreter from saying otherwise
+        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
+        return 1
+    except KeyboardInterrupt:
+        print("stopped; nothing was written", file=sys.stderr)
+        return 2
+
+
+if __name__ == "__main__":
+    sys.exit(main())

@@ -1,0 +1,1 @@
+"""One module a command; each has `run(arguments) -> exit code`."""

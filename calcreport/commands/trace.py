@@ -1,0 +1,33 @@
+"""`calcreport trace`: the tree of lines behind one number."""
+
+from __future__ import annotations
+
+from argparse import Namespace
+
+from calcreport.commands.desk import open_project, say_problems
+from calcreport.core.problems import Problems, nearest
+from calcreport.driver import report
+from calcreport.report.traced import trace_lines
+
+
+def run(arguments: Namespace) -> int:
+    """Print the tree for MARK.SYMBOL."""
+    opened = open_project(arguments.project)
+    if isinstance(opened, tuple):
+        return say_problems(opened)
+    result = report(opened.world, opened.source)
+    if result.composed is None:
+        return say_problems(result.problems)
+    mark, _, symbol = arguments.value.partition(".")
+    script = result.composed.scripts.get(mark)
+    known = script.worked.plan.by_path if script else result.composed.scripts
+    lines = trace_lines(mark, symbol, result.composed.scripts, result.composed.forms) if script and symbol in known else ()
+    if not lines:
+        problems = Problems()
+        wanted = symbol if script else mark
+        problems.add("unknown-name", None, f"there is no value `{arguments.value}`", expected="MARK.SYMBOL, such as B1.phiM_n",
+                     found=arguments.value, hint=nearest(wanted, known))  # fmt: skip
+        return say_problems(problems.sorted())
+    for line in lines:
+        print(line)
+    return 0

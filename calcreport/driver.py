@@ -1,0 +1,127 @@
+"""The order of the stages up to the report, and when to stop.
+
+A World and a project's text in; problems, worked values and a composed report out. `publish` goes on to paper.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import dataclass
+
+from calcreport.calculate.cases import run_case
+from calcreport.calculate.model import Worked, WorkedProject
+from calcreport.calculate.project import work_project
+from calcreport.core.problems import Problem, Problems
+from calcreport.core.source import Source
+from calcreport.core.world import World
+from calcreport.plan.dimensions import hold_dimensions
+from calcreport.plan.link import link
+from calcreport.plan.model import Plan
+from calcreport.plan.proofs import prove_cited
+from calcreport.read.cases import read_cases
+from calcreport.read.library import Library
+from calcreport.read.model import Inputs, Template
+from calcreport.read.project import ProjectReader
+from calcreport.report.compose import Composed, compose
+
+Progress = Callable[[str, int, int], None]
+
+
+def silent(stage: str, done: int, total: int) -> None:
+    """Show no progress."""
+
+
+@dataclass(frozen=True, slots=True)
+class Result:
+    """How far a project came: every field after the first problem is None."""
+
+    problems: tuple[Problem, ...]
+    #: all that could be worked, also beside problems
+    worked: WorkedProject | None = None
+    composed: Composed | None = None
+
+
+@dataclass(frozen=True, slots=True)
+class TemplateReport:
+    """What `lint` found of a template: problems, and what its cases touch."""
+
+    problems: tuple[Problem, ...]
+    variants: tuple[str, ...]
+    cases: int
+
+
+def work(world: World, source: Source, progress: Progress = silent) -> Result:
+    """Read, plan and work a project; calculations without problems are worked even beside problems."""
+    problems = Problems()
+    library = Library(world, problems)
+    inputs = ProjectReader(world, library, problems).read(source)
+    if inputs is None:
+        return Result(problems.sorted())
+    plans = _plans(inputs, problems)
+    worked = work_project(inputs, plans, problems, lambda done, total: progress("working", done, total))
+    return Result(problems.sorted(), worked)
+
+
+def report(world: World, source: Source, progress: Progress = silent) -> Result:
+    """Go on to the composed report; stops where there is a problem."""
+    result = work(world, source, progress)
+    if result.problems or result.worked is None:
+        return result
+    composed = compose(result.worked, lambda done, total: progress("composing", done, total))
+    return Result((), result.worked, composed)
+
+
+def _plans(inputs: Inputs, problems: Problems) -> dict[int, Plan]:
+    plans: dict[int, Plan] = {}
+    for template in {id(c.template): c.template for c in inputs.calculations}.values():
+        plan = make_plan(template, problems)
+        if plan is not None:
+            plans[id(template)] = plan
+    return plans
+
+
+def make_plan(template: Template, problems: Problems) -> Plan | None:
+    """Plan a template: names bound, dimensions held, cited equations proved on request only."""
+    before = len(problems)
+    plan = link(template, problems)
+    if plan is not None:
+        hold_dimensions(plan, problems)
+    return plan if len(problems) == before else None
+
+
+def lint_template(world: World, name: str) -> TemplateReport:
+    """Report every problem of a template in every system and year it offers, then run its cases."""
+    problems = Problems()
+    library = Library(world, problems)
+    head = library.head(name, None)
+    variants: list[str] = []
+    plans: dict[int, Plan] = {}
+    for system, code in head.codes if head else ():
+        for year in (head.years if head else ()) or ("",):
+            editions = tuple(sorted(((code, year), ("*", ""))))
+            template = library.template(name, system, editions, None)
+            variants.append(f"{system} {year}".strip())
+            plan = make_plan(template, problems) if template is not None else None
+            if template is not None and plan is not None:
+                plans[id(template)] = plan
+                prove_cited(plan, problems)
+    cases = _run_cases(world, name, library, plans, problems) if not problems else 0
+    return TemplateReport(problems.sorted(), tuple(variants), cases)
+
+
+def _run_cases(world: World, name: str, library: Library, plans: dict[int, Plan], problems: Problems) -> int:
+    source = world.template_text(f"{name}.cases.yaml")
+    if isinstance(source, str):
+        return 0
+    cases = read_cases(name, source, library, problems)
+    for case in cases:
+        template = case.calculation.template
+        plan = plans.get(id(template)) or make_plan(template, problems)
+        if plan is not None:
+            run_case(case, plan, problems)
+    return len(cases)
+
+
+def worked_calculation(project: WorkedProject, mark: str) -> Worked | None:
+    """Return a calculation by its mark."""
+    return next((w for w in project.calculations if w.calculation.mark == mark), None)

@@ -1,0 +1,109 @@
+"""The tree of lines behind one number, as text: each value with its formula, its line and what it came from.
+
+Scripts and forms in, lines of text out.
+"""
+
+from __future__ import annotations
+
+from calcreport.calculate.model import GivenPairs, GivenRows, GivenValue, Key, LinkedValue
+from calcreport.core.expression import Name, Node, Over, children
+from calcreport.report.digits import number_text
+from calcreport.report.forms import CalculationForms, link_place
+from calcreport.report.script import Script
+
+#: a tree deeper or longer than this is cut, and says so
+DEEPEST, LONGEST = 40, 400
+
+
+def trace_lines(mark: str, symbol: str, scripts: dict[str, Script], forms: dict[str, CalculationForms]) -> tuple[str, ...]:
+    """Return the tree of `MARK.SYMBOL`; a value with rows is traced for its first row."""
+    tracer = _Tracer(scripts, forms)
+    slot = scripts[mark].worked.plan.by_path[symbol]
+    values = scripts[mark].worked.values
+    key = next(iter(values.rows[slot]), None) if values.sets[slot] else ()
+    if key is None or values.get(slot, key) is None:
+        return ()
+    tracer.value(mark, slot, key, "", "")
+    return tuple(tracer.lines[:LONGEST]) + (("…",) if len(tracer.lines) > LONGEST else ())
+
+
+class _Tracer:
+    def __init__(self, scripts: dict[str, Script], forms: dict[str, CalculationForms]) -> None:
+        self.scripts, self.forms = scripts, forms
+        self.lines: list[str] = []
+        self.told: set[tuple[str, int, Key]] = set()
+
+    def value(self, mark: str, slot: int, key: Key, lead: str, branch: str) -> None:
+        """Add a value's line and, below it, what it came from; a value told before is named only."""
+        worked = self.scripts[mark].worked
+        formula = worked.values.worked.get((slot, key))
+        number = self.scripts[mark].line_of.get((slot, key), 0)
+        text = f"{worked.plan.slots[slot].path} = {self.shown(mark, slot, key)}"
+        how = f"  = {formula.span.text.strip()}" if formula is not None else f"  {self.origin(mark, slot, key)}"
+        place = mark, slot, key
+        again = place in self.told and formula is not None
+        self.lines.append(f"{lead}{branch}{mark}.{number}  {text}{'  (above)' if again else how}")
+        if again or len(lead) > 3 * DEEPEST:
+            return
+        self.told.add(place)
+        inner = lead + ("   " if branch in ("", "└─ ") else "│  ") if branch else lead
+        for last, (other_mark, other, other_key) in self.sources(mark, slot, key):
+            self.value(other_mark, other, other_key, inner, "└─ " if last else "├─ ")
+
+    def sources(self, mark: str, slot: int, key: Key) -> list[tuple[bool, tuple[str, int, Key]]]:
+        """Return what a value came from, the last one marked."""
+        worked = self.scripts[mark].worked
+        found: list[tuple[str, int, Key]] = []
+        formula = worked.values.worked.get((slot, key))
+        if formula is not None:
+            rows = dict(zip(worked.values.sets[slot], key, strict=True))
+            self.collect(formula, mark, rows, found)
+        else:
+            link = self.link(mark, slot)
+            if link is not None:
+                found.append((link.mark, *link_place(link, self.scripts[link.mark].worked)))
+        unique = list(dict.fromkeys(found))
+        return [(place == len(unique) - 1, one) for place, one in enumerate(unique)]
+
+    def collect(self, node: Node, mark: str, rows: dict[int, int], found: list[tuple[str, int, Key]]) -> None:
+        values = self.scripts[mark].worked.values
+        if isinstance(node, Name) and node.slot >= 0:
+            found.append((mark, node.slot, tuple(rows[s] for s in values.sets[node.slot])))
+        elif isinstance(node, Over):
+            outer = tuple(rows[s] for s in values.outer[node.bound])
+            for row in range(len(values.names[node.bound].get(outer, ()))):
+                self.collect(node.body, mark, {**rows, node.bound: row}, found)
+        else:
+            for child in children(node):
+                self.collect(child, mark, rows, found)
+
+    def shown(self, mark: str, slot: int, key: Key) -> str:
+        value = self.scripts[mark].worked.values.get(slot, key)
+        if not isinstance(value, float):
+            return str(value)
+        figure = self.forms[mark].figure(slot, key)
+        unit = self.scripts[mark].worked.plan.slots[slot].symbol.unit
+        power = f"e{figure.exponent}" if figure.exponent else ""
+        text = number_text(figure).replace("−", "-") + power
+        return text if unit is None or unit.text == "1" else f"{text} {unit.text}"
+
+    def link(self, mark: str, slot: int) -> LinkedValue | None:
+        worked = self.scripts[mark].worked
+        for given, planned in zip(worked.calculation.given, worked.plan.givens, strict=True):
+            if isinstance(given, GivenValue) and planned.slot == slot and isinstance(given.value, LinkedValue):
+                return given.value
+        return None
+
+    def origin(self, mark: str, slot: int, key: Key) -> str:
+        worked = self.scripts[mark].worked
+        for given, planned in zip(worked.calculation.given, worked.plan.givens, strict=True):
+            match given:
+                case GivenValue() if slot in (planned.slot, *planned.outputs):
+                    return f"[{given.origin.kind} {given.origin.words}]".replace(" ]", "]")
+                case GivenRows() | GivenPairs() if slot == planned.slot or any(
+                    slot in (c.slot, *c.outputs) for c in planned.columns
+                ):
+                    return "[project file]"
+                case _:
+                    pass
+        return ""

@@ -1,0 +1,167 @@
+"""The values file: every value and check with its line, printed form, citation and origin; and a plain text of it.
+
+Worked calculations with forms and scripts in, one JSON-ready object or lines of text out.
+"""
+
+from __future__ import annotations
+
+from typing import Any
+
+from calcreport.calculate.model import Key, Worked, WorkedCheck, WorkedGives, WorkedProject
+from calcreport.core.expression import names
+from calcreport.core.units import ONE
+from calcreport.core.version import PROGRAM
+from calcreport.report.digits import number_text
+from calcreport.report.forms import CalculationForms, is_size, side_unit
+from calcreport.report.script import SayLine, SayTable, Script, gives_below
+
+FORMAT = 1
+
+
+def values_file(
+    project: WorkedProject, forms: dict[str, CalculationForms], scripts: dict[str, Script], sheets: dict[str, int]
+) -> dict[str, Any]:
+    """Return the values file as an object."""
+    calculations: dict[str, Any] = {}
+    for worked in project.calculations:
+        mark = worked.calculation.mark
+        calculations[mark] = {
+            "template": worked.calculation.template.name,
+            "title": worked.calculation.title,
+            "sheets": sheets.get(mark, 0),
+            "fingerprint": worked.fingerprint,
+            "verdict": worked.verdict,
+            "stopped": worked.stop.words if worked.stop else None,
+            "lines": _lines(scripts[mark], forms[mark]),
+            "checks": [_check(check, scripts[mark], forms[mark]) for check in worked.checks],
+        }
+    header = {"title": project.project.title, "number": project.project.number, "status": project.project.status,
+              "date": project.project.date, "fingerprint": project.fingerprint}  # fmt: skip
+    return {"program": PROGRAM, "format": FORMAT, "project": header, "calculations": calculations}
+
+
+def _lines(script: Script, forms: CalculationForms) -> list[dict[str, Any]]:
+    found: list[dict[str, Any]] = []
+    values = script.worked.values
+    for (slot, key), _ in sorted(values.given.items(), key=lambda item: (script.line_of.get(item[0], 0), item[0])):
+        found.append(_value(slot, key, script, forms))
+    for item in script.items:
+        match item:
+            case SayLine(_, worked):
+                found.append(_gives(worked, script, forms))
+            case SayTable(_, each):
+                rows = [gives for row in each.rows for gives in gives_below(row)]
+                told = {(line["gives"], tuple(line.get("rows", ()))) for line in found}
+                for worked in rows:
+                    entry = _gives(worked, script, forms)
+                    if (entry["gives"], tuple(entry.get("rows", ()))) not in told:
+                        found.append(entry)
+    return found
+
+
+def _value(slot: int, key: Key, script: Script, forms: CalculationForms) -> dict[str, Any]:
+    symbol = script.worked.plan.slots[slot]
+    unit = symbol.symbol.unit or ONE
+    value = script.worked.values.get(slot, key)
+    entry: dict[str, Any] = {"line": script.line_of.get((slot, key), 0), "gives": symbol.path}
+    if symbol.sets:
+        entry["rows"] = _row_names(symbol.sets, key, script)
+    if isinstance(value, float):
+        figure = forms.figure(slot, key)
+        power = f" × 10^{figure.exponent}" if figure.exponent else ""
+        entry |= {"value": value / unit.size, "unit": unit.text, "shown": number_text(figure) + power}
+    else:
+        entry |= {"value": value, "unit": None, "shown": value}
+    return entry
+
+
+def _row_names(sets: tuple[int, ...], key: Key, script: Script) -> list[str]:
+    values, plan = script.worked.values, script.worked.plan
+    rows = dict(zip(sets, key, strict=True))
+    found = []
+    for index in sets:
+        outer = tuple(rows[o] for o in plan.sets[index].outer)
+        found.append(values.names[index][outer][rows[index]])
+    return found
+
+
+def _gives(worked: WorkedGives, script: Script, forms: CalculationForms) -> dict[str, Any]:
+    entry = _value(worked.line.slot, worked.key, script, forms)
+    formula = worked.line.arms[worked.arm].formula
+    entry["formula"] = formula.span.text.strip()
+    entry["cite"] = worked.line.cite.printed
+    rows = dict(worked.open)
+    shown: dict[str, str] = {}
+    origins: list[str] = []
+    for name in names(formula):
+        sets = script.worked.values.sets[name.slot] if name.slot >= 0 else ()
+        if name.slot < 0 or any(index not in rows for index in sets):
+            continue
+        key = tuple(rows[index] for index in sets)
+        value = _value(name.slot, key, script, forms)
+        shown[name.name] = f"{value['shown']} {value['unit'] or ''}".replace(" 1", "").strip()
+        origins.append(f"{forms.mark}.{value['line']}")
+    entry["shown_inputs"] = shown
+    entry["from"] = list(dict.fromkeys(origins))
+    return entry
+
+
+def _check(check: WorkedCheck, script: Script, forms: CalculationForms) -> dict[str, Any]:
+    entry: dict[str, Any] = {"name": check.line.name, "line": script.check_line.get(id(check), 0), "kind": check.kind}
+    by = check.by
+    if by is not None:
+        unit = side_unit(by.test, forms)
+        left, right = by.left / unit.size, by.right / unit.size
+        if check.kind in ("demand / capacity", "ratio"):
+            entry |= {"demand": left, "capacity": right}
+        elif check.kind == "required / provided":
+            entry |= {"required": right, "provided": left}
+        else:
+            entry |= {"left": left, "right": right}
+        entry["unit"] = unit.text
+        if is_size(by.test.left):
+            entry["of"] = "size"
+    entry |= {"ratio": check.ratio, "verdict": check.verdict, "cite": check.line.cite.printed}
+    if check.reason:
+        entry["reason"] = check.reason
+    if check.open:
+        entry["rows"] = [script.worked.plan.sets[s].name + " " + script.worked.values.row_names(s)[r] for s, r in check.open]
+    return entry
+
+
+def values_text(project: WorkedProject) -> list[str]:
+    """Return values and checks as plain lines, from the worked values alone."""
+    lines: list[str] = []
+    for worked in project.calculations:
+        calculation = worked.calculation
+        lines.append(f"{calculation.mark}  {calculation.title}  [{calculation.template.name}]  {worked.verdict}")
+        lines += _plain_values(worked)
+        for check in worked.checks:
+            ratio = f"{check.ratio:.4f}" if check.ratio is not None else ""
+            lines.append(f"  check {check.line.name:<34} {ratio:>9} {check.verdict}")
+        if worked.stop:
+            lines.append(f"  stopped: {worked.stop.words}")
+    return lines
+
+
+def _plain_values(worked: Worked) -> list[str]:
+    lines: list[str] = []
+    for slot in worked.plan.slots:
+        unit = slot.symbol.unit or ONE
+        if slot.sets:
+            found = [v for v in worked.values.rows[slot.index].values() if isinstance(v, float)]
+            if found:
+                lines.append(f"  {slot.path:<16} {', '.join(f'{v / unit.size:.6g}' for v in found)} {_unit(unit.text)}")
+            continue
+        value = worked.values.plain[slot.index]
+        if isinstance(value, float):
+            lines.append(f"  {slot.path:<16} {value / unit.size:.6g} {_unit(unit.text)}")
+        elif value is not None:
+            lines.append(f"  {slot.path:<16} {value}")
+    return lines
+
+
+def _unit(text: str) -> str:
+    return "" if text == "1" else text
+
+

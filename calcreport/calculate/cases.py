@@ -23,8 +23,13 @@ def run_case(case: Case, plan: Plan, problems: Problems) -> Worked | None:
     if case.stops or worked.stop:
         found = worked.stop.words if worked.stop else "no stop"
         if not case.stops or case.stops not in found:
-            problems.add("case-differs", case.span.part(0, 1), f"the case `{case.name}` stops elsewhere",
-                         expected=case.stops or "no stop", found=found)  # fmt: skip
+            problems.add(
+                "case-differs",
+                case.span.part(0, 1),
+                f"the case `{case.name}` stops elsewhere",
+                expected=case.stops or "no stop",
+                found=found,
+            )
     for expected in case.expected:
         _hold(case, expected, worked, problems)
     return worked
@@ -71,5 +76,10 @@ def _compare(case: Case, expected: Expected, value: float | None, size: float, p
 
 
 def _say(case: Case, expected: Expected, wanted: str, found: str, problems: Problems) -> None:
-    problems.add("case-differs", expected.span, f"`{expected.name}` of the case `{case.name}` differs",
-                 expected=wanted, found=found)  # fmt: skip
+    problems.add(
+        "case-differs",
+        expected.span,
+        f"`{expected.name}` of the case `{case.name}` differs",
+        expected=wanted,
+        found=found,
+    )

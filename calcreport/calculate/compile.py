@@ -94,7 +94,7 @@ def _power(base: float, exponent: float) -> float:
         raise NoValue("root of a negative value")
     if base == 0 and exponent < 0:
         raise NoValue("division by zero")
-    return base**exponent
+    return float(base**exponent)
 
 
 def _sqrt(value: float) -> float:
@@ -110,9 +110,15 @@ def _ln(value: float) -> float:
 
 
 _PLAIN: dict[str, Callable[[float], float]] = {
-    "abs": abs, "sqrt": _sqrt, "exp": math.exp, "ln": _ln, "sin": math.sin, "cos": math.cos, "tan": math.tan,
+    "abs": abs,
+    "sqrt": _sqrt,
+    "exp": math.exp,
+    "ln": _ln,
+    "sin": math.sin,
+    "cos": math.cos,
+    "tan": math.tan,
     "atan": math.atan,
-}  # fmt: skip
+}
 
 
 def _call(function: str, inner: list[Work]) -> Work:
@@ -176,9 +182,7 @@ def _over(node: Over, sets: tuple[tuple[int, ...], ...]) -> Work:
     return work
 
 
-def _linear(
-    node: Over, where: Compare, body: Work, otherwise: Work | None, sets: tuple[tuple[int, ...], ...]
-) -> Work:
+def _linear(node: Over, where: Compare, body: Work, otherwise: Work | None, sets: tuple[tuple[int, ...], ...]) -> Work:
     """Read y on the straight lines between rows, in rising order of x; outside them is no value."""
     x, at, index = formula(where.left, sets), formula(where.right, sets), node.bound
 

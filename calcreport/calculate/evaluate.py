@@ -12,6 +12,7 @@ from dataclasses import dataclass
 from calcreport.calculate.compile import NoValue, condition, formula, holds
 from calcreport.calculate.model import (
     Comparison,
+    Kind,
     Plan,
     PlannedBranches,
     PlannedCheck,
@@ -340,7 +341,7 @@ class _Run:
         verdict: Verdict = "OK" if ok else "NG"
         if side is not None and ratio is None and side.test.op not in ("=", "!="):
             reason = "no ratio: the capacity is not above zero"
-        kind = _kind(side.test) if side is not None else "condition"
+        kind: Kind = _kind(side.test) if side is not None else "condition"
         worked = WorkedCheck(line, verdict, side, ratio, kind, reason, None, self.opened)
         self.checks.append(worked)
         return worked
@@ -350,7 +351,7 @@ def _no_work(values: Values) -> float:
     raise NoValue("a word has no number")
 
 
-def _kind(test: Compare) -> str:
+def _kind(test: Compare) -> Kind:
     """Name the kind of check a comparison makes."""
     if test.op in ("<", "<="):
         if isinstance(test.right, Number) and test.right.value == 1 and isinstance(test.left, Name):

@@ -13,7 +13,7 @@ from calcreport.calculate.model import Key, Plan, PlannedGiven, Value, Values, W
 from calcreport.core.problems import Problems, nearest
 from calcreport.core.quantity import Amount
 from calcreport.core.source import Span
-from calcreport.read.model import BarCallout, Calculation, GivenPairs, GivenRows, GivenValue, Handed, LinkedValue
+from calcreport.read.model import BarCallout, Calculation, GivenPairs, GivenRows, GivenValue, LinkedValue
 
 _STEP = re.compile(r"([A-Za-z][\w.]*)\[([^\]]*)\]\.")
 
@@ -63,11 +63,11 @@ class _Hander:
             for slot, (_, output) in zip(planned.outputs, planned.given.gives, strict=True):
                 self.exact(slot, key, callout_output(handed, output))
 
-    def put(self, slot: int, handed: Handed, key: Key) -> None:
+    def put(self, slot: int, handed: Amount | str | BarCallout | None, key: Key) -> None:
         if isinstance(handed, Amount):
             self.exact(slot, key, handed.value)
         else:
-            self.store(slot, key, handed.text if isinstance(handed, BarCallout) else handed)  # type: ignore[union-attr]
+            self.store(slot, key, handed.text if isinstance(handed, BarCallout) else handed)
 
     def exact(self, slot: int, key: Key, amount: Fraction) -> None:
         self.values.given[slot, key] = amount
@@ -86,9 +86,14 @@ class _Hander:
         for row_names, cell in value.cells:
             for name, known in zip(row_names, names, strict=True):
                 if name not in known:
-                    self.problems.add("not-a-row", cell.span, f"`{value.given.name}` names a row `{name[:40]}` that is not given",
-                                      expected="one of " + ", ".join(known), found=name[:40],
-                                      hint=nearest(name, known))  # fmt: skip
+                    self.problems.add(
+                        "not-a-row",
+                        cell.span,
+                        f"`{value.given.name}` names a row `{name[:40]}` that is not given",
+                        expected="one of " + ", ".join(known),
+                        found=name[:40],
+                        hint=nearest(name, known),
+                    )
                     return
             key = tuple(known.index(name) for name, known in zip(row_names, names, strict=True))
             self.value(planned, cell, key)
@@ -99,8 +104,13 @@ class _Hander:
                 continue
             if worth is None:
                 words = ", ".join(known[row] for row, known in zip(key, names, strict=True))
-                self.problems.add("missing-value", value.span.part(0, 1), f"`{value.given.name}` has no value for {words}",
-                                  expected="a value for every pair of rows", found="none")  # fmt: skip
+                self.problems.add(
+                    "missing-value",
+                    value.span.part(0, 1),
+                    f"`{value.given.name}` has no value for {words}",
+                    expected="a value for every pair of rows",
+                    found="none",
+                )
                 return
             self.put(planned.slot, None if worth == "absent" else worth, key)
 
@@ -127,27 +137,47 @@ def find_path(worked: Worked, path: str, span: Span, problems: Problems) -> tupl
         rows = next((r for r in worked.plan.sets if r.name == step[1]), None)
         names = worked.values.names[rows.index].get(tuple(key[: len(rows.outer)]), ()) if rows else ()
         if step[2] not in names:
-            problems.add("not-a-row", span, f"{mark} has no row `{step[2][:40]}` in `{step[1][:40]}`",
-                         expected="one of " + ", ".join(names) if names else "a set of that calculation",
-                         found=step[2][:40], hint=nearest(step[2], names))  # fmt: skip
+            problems.add(
+                "not-a-row",
+                span,
+                f"{mark} has no row `{step[2][:40]}` in `{step[1][:40]}`",
+                expected="one of " + ", ".join(names) if names else "a set of that calculation",
+                found=step[2][:40],
+                hint=nearest(step[2], names),
+            )
             return None
         key.append(names.index(step[2]))
         rest = rest[step.end() :]
     slot = worked.plan.by_path.get(rest)
     if slot is None:
-        problems.add("unknown-name", span, f"{mark} gives no `{rest[:40]}`",
-                     expected="a symbol of that calculation", found=rest[:40],
-                     hint=nearest(rest, worked.plan.by_path))  # fmt: skip
+        problems.add(
+            "unknown-name",
+            span,
+            f"{mark} gives no `{rest[:40]}`",
+            expected="a symbol of that calculation",
+            found=rest[:40],
+            hint=nearest(rest, worked.plan.by_path),
+        )
         return None
     if len(worked.values.sets[slot]) != len(key):
-        names = [worked.plan.sets[s].name for s in worked.values.sets[slot]]
-        problems.add("row-leak", span, f"`{rest}` of {mark} has a value for every row",
-                     expected="the row, as in " + "".join(f"{n}[ROW]." for n in names) + rest, found=path[:40])  # fmt: skip
+        sets = [worked.plan.sets[s].name for s in worked.values.sets[slot]]
+        problems.add(
+            "row-leak",
+            span,
+            f"`{rest}` of {mark} has a value for every row",
+            expected="the row, as in " + "".join(f"{n}[ROW]." for n in sets) + rest,
+            found=path[:40],
+        )
         return None
     place = slot, tuple(key)
     if worked.values.get(*place) is None:
-        problems.add("unknown-name", span, f"`{rest}` of {mark} was not worked", expected="a value on its sheets",
-                     found="a branch not taken, or a value that may be absent")  # fmt: skip
+        problems.add(
+            "unknown-name",
+            span,
+            f"`{rest}` of {mark} was not worked",
+            expected="a value on its sheets",
+            found="a branch not taken, or a value that may be absent",
+        )
         return None
     return place
 

@@ -44,6 +44,7 @@ from calcreport.read.model import (
 
 Value: TypeAlias = "float | str | None"
 Key: TypeAlias = tuple[int, ...]
+Kind: TypeAlias = Literal["demand / capacity", "required / provided", "ratio", "condition"]
 Verdict: TypeAlias = Literal["OK", "NG", "not evaluated", "not applicable"]
 
 
@@ -173,7 +174,7 @@ class WorkedCheck:
     by: Comparison | None
     #: demand over capacity, or None where there is no division to show
     ratio: float | None
-    kind: Literal["demand / capacity", "required / provided", "ratio", "condition"]
+    kind: Kind
     #: why it is not applicable or not evaluated, or NG without a ratio
     reason: str
     #: condition whose failure made it not applicable
@@ -257,10 +258,48 @@ class WorkedProject:
 
 
 __all__ = [
-    "BarCallout", "Comparison", "FigureInput", "GivenPairs", "GivenRows", "GivenValue", "Key", "LinkedValue", "Plan",
-    "PlannedArm", "PlannedBranches", "PlannedCheck", "PlannedEach", "PlannedFigure", "PlannedGiven", "PlannedGives",
-    "PlannedLine", "PlannedPart", "PlannedRequire", "PlannedRows", "PlannedText", "Project", "RowSet", "Slot", "Stop",
-    "Symbol", "Test", "Value", "ValueOrigin", "Values", "Verdict", "Work", "Worked", "WorkedBranches", "WorkedCheck",
-    "WorkedEach", "WorkedFigure", "WorkedGives", "WorkedLine", "WorkedPart", "WorkedProject", "WorkedRequire",
-    "WorkedRows", "WorkedText",
-]  # fmt: skip
+    "BarCallout",
+    "Comparison",
+    "FigureInput",
+    "GivenPairs",
+    "GivenRows",
+    "GivenValue",
+    "Key",
+    "LinkedValue",
+    "Plan",
+    "PlannedArm",
+    "PlannedBranches",
+    "PlannedCheck",
+    "PlannedEach",
+    "PlannedFigure",
+    "PlannedGiven",
+    "PlannedGives",
+    "PlannedLine",
+    "PlannedPart",
+    "PlannedRequire",
+    "PlannedRows",
+    "PlannedText",
+    "Project",
+    "RowSet",
+    "Slot",
+    "Stop",
+    "Symbol",
+    "Test",
+    "Value",
+    "ValueOrigin",
+    "Values",
+    "Verdict",
+    "Work",
+    "Worked",
+    "WorkedBranches",
+    "WorkedCheck",
+    "WorkedEach",
+    "WorkedFigure",
+    "WorkedGives",
+    "WorkedLine",
+    "WorkedPart",
+    "WorkedProject",
+    "WorkedRequire",
+    "WorkedRows",
+    "WorkedText",
+]

@@ -81,8 +81,13 @@ def _order(calculations: tuple[Calculation, ...], by_mark: dict[str, int], probl
                 path.pop()
             elif state.get(step[0]) == 1:
                 circle = [calculations[p].mark for p in path[path.index(step[0]) :]]
-                problems.add("link-loop", step[1].span, "links go in a circle", expected="links that lead back to given values",
-                             found=" → ".join([*circle, circle[0]]))  # fmt: skip
+                problems.add(
+                    "link-loop",
+                    step[1].span,
+                    "links go in a circle",
+                    expected="links that lead back to given values",
+                    found=" → ".join([*circle, circle[0]]),
+                )
             elif step[0] not in state:
                 state[step[0]] = 1
                 path.append(step[0])
@@ -105,9 +110,14 @@ def _hold_links(
     good = True
     for value, link in _links(calculation):
         if link.mark not in by_mark:
-            problems.add("unknown-name", link.span, f"there is no calculation `{link.mark[:40]}`",
-                         expected="the mark of a calculation of this project", found=link.mark[:40],
-                         hint=nearest(link.mark, by_mark))  # fmt: skip
+            problems.add(
+                "unknown-name",
+                link.span,
+                f"there is no calculation `{link.mark[:40]}`",
+                expected="the mark of a calculation of this project",
+                found=link.mark[:40],
+                hint=nearest(link.mark, by_mark),
+            )
             good = False
             continue
         source = worked.get(link.mark)
@@ -122,12 +132,16 @@ def _hold_links(
             continue
         symbol = source.plan.slots[place[0]].symbol
         wanted = value.given.symbol
-        if wanted is None or wanted.kind != symbol.kind and "word" in (wanted.kind, symbol.kind):
+        if wanted is None or (wanted.kind != symbol.kind and "word" in (wanted.kind, symbol.kind)):
             good = False
         elif wanted.unit and symbol.unit and wanted.unit.dimension != symbol.unit.dimension:
-            problems.add("unit-mismatch", link.span, f"`{link.mark}.{link.path}` is not what `{value.given.name}` takes",
-                         expected=f"{name_dimension(wanted.unit.dimension)} for {value.given.name}",
-                         found=f"{name_dimension(symbol.unit.dimension)}, in {symbol.unit.text}")  # fmt: skip
+            problems.add(
+                "unit-mismatch",
+                link.span,
+                f"`{link.mark}.{link.path}` is not what `{value.given.name}` takes",
+                expected=f"{name_dimension(wanted.unit.dimension)} for {value.given.name}",
+                found=f"{name_dimension(symbol.unit.dimension)}, in {symbol.unit.text}",
+            )
             good = False
     return good
 

@@ -71,7 +71,7 @@ def set_heading(kit: Kit, heading: Heading, lane: Lane) -> Piece:
     style = HEADINGS.get(heading.level, HEADINGS[3])
     rows = Rows()
     rows.words(kit.lettering.set((heading.text,), style, lane.width), style, lane.left)
-    return Piece(rows.y, tuple(rows.items), 10.0 - heading.level, keep=True)
+    return Piece(rows.y, tuple(rows.items), 9.0 - heading.level, keep=True)
 
 
 def set_paragraph(kit: Kit, paragraph: Paragraph, lane: Lane) -> tuple[Piece, ...]:
@@ -91,8 +91,15 @@ def set_paragraph(kit: Kit, paragraph: Paragraph, lane: Lane) -> tuple[Piece, ..
             weight = FRAME * 1.4 if paragraph.kind == "caution" else HAIRLINE
             items.insert(0, Stroke(((lane.left + 1.0, 0.0), (lane.left + 1.0, rows.y)), weight))
         keep = len(groups) > 1 and place in (0, len(groups) - 2)
+        keep = keep or (place == len(groups) - 1 and _announces(paragraph))
         pieces.append(Piece(rows.y, tuple(items), 4.5 if place == 0 else 0.0, keep=keep))
     return tuple(pieces)
+
+
+def _announces(paragraph: Paragraph) -> bool:
+    """Tell whether words end with a colon, and so belong to what follows."""
+    last = paragraph.words[-1] if paragraph.words else ""
+    return isinstance(last, str) and last.rstrip().endswith(":")
 
 
 def set_figure(kit: Kit, block: FigureBlock, lane: Lane) -> Piece:

@@ -179,7 +179,7 @@ def _entry(lettering: Lettering, entry: tuple[str, str], left: float, right: flo
 
 def _heading(cells: _Cells, name: str) -> Piece:
     style = TextStyle("semibold", 9, 12)
-    items, foot = text_lines(cells.lettering.set((name,), style, 400.0), style, cells.left, 0.0)
+    items, foot = text_lines(cells.lettering.set((f"{name}, continued",), style, 240.0), style, cells.left, 0.0)
     return Piece(foot + 2.0, tuple(items), 10.0, keep=True)
 
 

@@ -16,7 +16,7 @@ from calcreport.layout.words import SMALL, SOURCE
 from calcreport.report.model import GivenRow, Givens
 
 #: Size of symbols and values, height of a row, its baseline, gap before the words.
-SIZE, PITCH, BASE, GAP = 9.5, 13.0, 9.3, 12.0
+SIZE, PITCH, BASE, GAP = 9.5, 12.5, 9.0, 12.0
 #: Widest value the words of all rows make room for; words of a wider one follow it, with at least this room.
 COLUMN, LEAST_WORDS = 90.0, 90.0
 

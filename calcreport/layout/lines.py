@@ -1,8 +1,9 @@
 """Numbered lines: symbol = formula = substitution = result, statements and boxed results.
 
-`report.model` Line, Statement, ResultBox + lane -> one `Piece` each. Formula, substitution and result
-share a row when they fit, else take two rows or three; equals signs stand under one another down the
-sheet, results end at one edge. Checks are in `layout.checks`.
+`report.model` Line, Statement, ResultBox + lane -> one `Piece` each. Words, formula, substitution and
+result share a row when they fit, else take two rows, three or four; equals signs stand under one another
+down the sheet, at a tab behind the words or near the left edge; results end at one edge. Checks are in
+`layout.checks`.
 """
 
 from __future__ import annotations
@@ -13,11 +14,11 @@ from calcreport.layout.kit import EQUALS_GAP, HANG, INDENT, RESULT_GAP, Kit
 from calcreport.layout.model import Box, Item, Stroke
 from calcreport.layout.pieces import Piece, Rows
 from calcreport.layout.sheet import OUTLINE, Lane
-from calcreport.layout.words import PLAIN, RESULT, SMALL
+from calcreport.layout.words import PLAIN, RESULT, SMALL, TextStyle
 from calcreport.report.model import Formula, Line, ResultBox, Statement
 
-#: Least height of a formula row.
-ROW = 13.5
+#: Least height of a formula row; share of the lane at which chains behind words have their equals signs.
+ROW, TAB = 13.5, 0.47
 
 
 @dataclass(frozen=True, slots=True)
@@ -29,50 +30,85 @@ class Part:
     sign: Box | None
 
 
+@dataclass(frozen=True, slots=True)
+class _Head:
+    """The words of a line and the condition that chose its form, broken into text rows."""
+
+    #: text rows above the last, with their style and left edge
+    above: tuple[tuple[Box, TextStyle, float], ...]
+    #: boxes of the last text row at their places, and the x they end at
+    last: tuple[tuple[float, Box], ...]
+    end: float
+
+
 def set_line(kit: Kit, line: Line, lane: Lane) -> Piece:
-    """Set a line; its citation, words, formula and result are one piece."""
+    """Set a line; its citation, words, formula and result are one piece.
+
+    Words, formula, substitution and result share one row where they fit, equals signs at a tab; else
+    the words stand above.
+    """
     rows = Rows()
-    words = kit.lettering.set(line.says, PLAIN, lane.width)
-    symbol = kit.math(line.symbol)
-    result = kit.math(line.result)
+    head = _head(kit, line, lane)
+    symbol, result = kit.math(line.symbol), kit.math(line.result)
     sides = tuple(side for side in (line.formula, line.substitution, line.coherent) if side)
-    if not sides and line.because is None and words and _fits_beside(kit, words, symbol, result, lane):
-        first = rows.words(words[:-1], PLAIN, lane.left)
-        start = lane.right - result.width - 2 * EQUALS_GAP - kit.equals.width - symbol.width
-        chain = ((lane.left, words[-1]), (start, symbol), *_after_equals(kit, result, lane.right))
-        last = rows.row(chain, PLAIN.leading)
-        baseline = first if len(words) > 1 else last
-    else:
-        baseline = _opening(kit, rows, line, words, lane)
-        start = max(kit.equals_at(lane), lane.left + INDENT + symbol.width + EQUALS_GAP)
-        inner = Lane(start, lane.right)
-        first = set_chain(kit, rows, symbol, chain_of(kit, sides, inner), result, inner)
+    baseline = -1.0
+    for box, style, x in head.above:
+        first = rows.words((box,), style, x)
         baseline = first if baseline < 0 else baseline
+    chain = _beside(kit, head, symbol, sides, result, lane)
+    if chain:
+        first = rows.row((*head.last, *chain), PLAIN.leading, 1.0)
+    else:
+        first = rows.row(head.last, PLAIN.leading, 0.0) if head.last else -1.0
+        start = max(kit.equals_at(lane), lane.left + INDENT + symbol.width + EQUALS_GAP)
+        inner = Lane(start if sides else _bare(kit, result, lane.right), lane.right)
+        under = set_chain(kit, rows, symbol, chain_of(kit, sides, inner), result, inner)
+        first = first if first >= 0 else under
+    baseline = first if baseline < 0 else baseline
     return kit.marks.numbered(rows, baseline, line.number, line.anchor, line.source, line.delta, lane)
 
 
-def _opening(kit: Kit, rows: Rows, line: Line, words: tuple[Box, ...], lane: Lane) -> float:
-    """Add the words, and the condition that chose this form behind or under them.
-
-    Return the first baseline, -1 where there is neither.
-    """
+def _head(kit: Kit, line: Line, lane: Lane) -> _Head:
+    """Break the words, and set the condition behind them or under them."""
+    words = kit.lettering.set(line.says, PLAIN, lane.width)
+    above = tuple((box, PLAIN, lane.left) for box in words[:-1])
+    last = ((lane.left, words[-1]),) if words else ()
+    end = lane.left + (words[-1].width if words else 0.0)
     if line.because is None:
-        return rows.words(words, PLAIN, lane.left) if words else -1.0
-    note = kit.lettering.set(("since ", line.because), SMALL, lane.width - INDENT)
-    if words and len(note) == 1 and words[-1].width + RESULT_GAP + note[0].width <= lane.width:
-        first = rows.words(words[:-1], PLAIN, lane.left)
-        start = lane.left + words[-1].width + RESULT_GAP
-        last = rows.row(((lane.left, words[-1]), (start, note[0])), PLAIN.leading, 0.0)
-        return first if len(words) > 1 else last
-    baseline = rows.words(words, PLAIN, lane.left) if words else -1.0
-    first = rows.words(note, SMALL, lane.left + INDENT)
-    return first if baseline < 0 else baseline
+        return _Head(above, last, end)
+    left = lane.left + INDENT
+    note = kit.lettering.set(("since ", line.because), SMALL, lane.right - left)
+    if last and len(note) == 1 and end + RESULT_GAP + note[0].width <= lane.right:
+        start = end + RESULT_GAP
+        return _Head(above, (*last, (start, note[0])), start + note[0].width)
+    above = (*above, *((box, PLAIN, lane.left) for box in words[-1:]), *((box, SMALL, left) for box in note[:-1]))
+    return _Head(above, ((left, note[-1]),), left + note[-1].width)
 
 
-def _fits_beside(kit: Kit, words: tuple[Box, ...], symbol: Box, result: Box, lane: Lane) -> bool:
-    """Tell whether `symbol = result` has room behind the last text line."""
-    need = symbol.width + result.width + kit.equals.width + 2 * EQUALS_GAP + RESULT_GAP
-    return words[-1].width + need <= lane.width
+def _beside(
+    kit: Kit, head: _Head, symbol: Box, sides: tuple[Formula, ...], result: Box, lane: Lane
+) -> tuple[tuple[float, Box], ...]:
+    """Place the chain behind the last text row, where it has room there; else return nothing."""
+    if not head.last or (sides and head.above):
+        return ()
+    least = head.end + RESULT_GAP + symbol.width + EQUALS_GAP
+    boxes = tuple(kit.math(side) for side in sides)
+    sign = kit.equals.width + 2 * EQUALS_GAP
+    need = sum(box.width + sign for box in boxes) + RESULT_GAP * bool(boxes) + sign - EQUALS_GAP + result.width
+    # At the tab if words and chain leave it free, else as far left or right of it as they ask.
+    start = max(least, min(lane.left + TAB * lane.width, lane.right - need)) if sides else lane.right - need
+    if start < least or start + need > lane.right + 0.01:
+        return ()
+    placed: list[tuple[float, Box]] = [(start - EQUALS_GAP - symbol.width, symbol)]
+    x = start
+    for box in boxes:
+        x = _put(placed, Part(box, kit.equals), x)
+    return (*placed, *_after_equals(kit, result, lane.right))
+
+
+def _bare(kit: Kit, result: Box, right: float) -> float:
+    """Return where the equals sign of `symbol = result` stands, the result ending at `right`."""
+    return right - result.width - EQUALS_GAP - kit.equals.width
 
 
 def _after_equals(kit: Kit, result: Box, right: float) -> tuple[tuple[float, Box], ...]:

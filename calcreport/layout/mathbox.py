@@ -127,7 +127,7 @@ class Formulas:
         # a sign looks one item ahead
         kinds.append(SPACE)
         table = GAPS_IN_SCRIPTS if style.level else GAPS
-        setters, nuclei = self._setters, style.nuclei
+        setters, nuclei, operators = self._setters, style.nuclei, style.operators
         placed: list[Item] = []
         x = ascent = descent = 0.0
         before, asked, done = table[OPEN], NONE, False
@@ -143,7 +143,8 @@ class Formulas:
             if made is Operator:
                 following = kinds[i + 1]
                 done = following != SPACE
-                box = style.operator(item.text, gap, before[following])  # type: ignore[union-attr]
+                sign = item.text, gap, before[following]  # type: ignore[union-attr]
+                box = operators.get(sign) or style.operator(*sign)
             else:
                 if gap:
                     space = style.space(gap)
@@ -228,5 +229,7 @@ class Formulas:
             return None
         if isinstance(formula, Letters):
             nucleus = style.nucleus(formula.text, formula.style)
-            return Scripted(nucleus.box, nucleus.first, formula.text[:1] in _PRIMES)
-        return Scripted(self._set(formula, style), 0)
+            reach = self.fonts.files["math"].bounds(nucleus.first)[3] * style.unit
+            return Scripted(nucleus.box, nucleus.first, reach, formula.text[:1] in _PRIMES)
+        box = self._set(formula, style)
+        return Scripted(box, 0, box.ascent)

@@ -19,8 +19,8 @@ _PLAIN_FENCE, _COVER, _SHORT = 1.3, 0.9, 0.5
 #: rows of a stack: from baseline to baseline, and least clear distance, in ems
 _PITCH, _CLEAR = 1.35, 0.3
 #: space beside a fraction (The TeXbook: 1.2 pt at 10), inside a fence round a stack, outside a fence that has
-#: grown, and between an index and the hook of its root, in ems
-_BESIDE, _STACK_GAP, _TALL_GAP, _HOOK_GAP = 0.12, 0.18, 0.12, 0.08
+#: grown, between an index and the hook of its root, and after the rule of a root, in ems
+_BESIDE, _STACK_GAP, _TALL_GAP, _HOOK_GAP, _AFTER_ROOT = 0.12, 0.18, 0.12, 0.08, 0.06
 
 
 def fraction(style: Style, above: Box, below: Box) -> Box:
@@ -62,7 +62,8 @@ def root(style: Style, body: Box, index: Box | None) -> Box:
     items.append(Stroke(((x - rule / 2, rule / 2 - top), (x + body.width, rule / 2 - top)), rule))
     items.append(Placed(x, 0.0, body))
     descent = max(body.descent, height - top)
-    return Box(x + body.width, highest + value["RadicalExtraAscender"], descent, tuple(items))
+    width = x + body.width + _AFTER_ROOT * style.size
+    return Box(width, highest + value["RadicalExtraAscender"], descent, tuple(items))
 
 
 def fence(style: Style, opening: str, body: Box, closing: str, holds_stack: bool) -> Box:

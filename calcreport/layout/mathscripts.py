@@ -12,6 +12,9 @@ from calcreport.layout.mathstyle import Nucleus, Style
 from calcreport.layout.mathtable import Corner
 from calcreport.layout.model import Box, Item, Placed
 
+#: a last step of so much, in font units, keeps scripts clear of an arm at the very top of a letter
+_ARM = 60
+
 
 @dataclass(frozen=True, slots=True)
 class Scripted:
@@ -19,6 +22,8 @@ class Scripted:
 
     box: Box
     first: int
+    #: how high the script stands where it comes near its base: its first glyph, or the box
+    reach: float
     #: a prime, which is read before the subscript: f'c, but b w squared
     prime: bool = False
 
@@ -40,7 +45,7 @@ def attach(style: Style, base: Nucleus, sub: Scripted | None, sup: Scripted | No
     if sub is not None:
         top = sub.box.ascent - down
         x = box.width - base.italic
-        x += _cut_in(style, base, sub, ("bottom_right", "top_left"), (top, -box.descent), -down)
+        x += _cut_in(style, base, sub, ("bottom_right", "top_left"), (sub.reach - down, -box.descent), -down)
         at = len(items) if sup is not None and sup.prime else 1
         items.insert(at, Placed(x, down, sub.box))
         ends.append(x + sub.box.width)
@@ -80,7 +85,23 @@ def _cut_in(
         return 0.0
     kern, small = style.fonts.math.kern, style.kin("script", True)
     return max(
-        kern(base.last, corners[0], edge / style.unit) * style.unit
+        _corner(style, base.last, corners[0], edge / style.unit) * style.unit
         + kern(script.first, corners[1], (edge - shift) / small.unit) * small.unit
         for edge in edges
     )
+
+
+def _corner(style: Style, glyph: int, corner: Corner, height: float) -> float:
+    """Give the distance the corner of a base asks for at a height, in font units.
+
+    The last step of a letter such as V or r keeps scripts clear of its arm at the very top, so a subscript
+    that only just enters it would be pushed far out; there the distance grows evenly from the step to the top.
+    """
+    table = style.fonts.math
+    heights, values = table.steps(glyph, corner)
+    past = corner == "bottom_right" and heights and height > heights[-1]
+    if not past or values[-1] <= 0 or values[-1] - values[-2] < _ARM:
+        return table.kern(glyph, corner, height)
+    top = max(style.fonts.files["math"].bounds(glyph)[3], height)
+    share = (height - heights[-1]) / (top - heights[-1])
+    return values[-2] + share * (values[-1] - values[-2])

@@ -46,6 +46,23 @@ class Nucleus:
     last: int
 
 
+class _Characters(dict[str, _Figures]):
+    """Figures of characters in the forms of one level of scripts, read on first use."""
+
+    def __init__(self, fonts: Fonts, level: int, italic: bool) -> None:
+        super().__init__()
+        self._fonts, self._level, self._italic = fonts, level, italic
+
+    def __missing__(self, character: str) -> _Figures:
+        fonts = self._fonts
+        glyph = fonts.slanted(character) if self._italic else fonts.characters["math"][character]
+        if self._level:
+            glyph = fonts.math.script(glyph, self._level)
+        _, bottom, _, top = fonts.files["math"].bounds(glyph)
+        found = self[character] = (glyph, fonts.advances["math"][glyph], max(top, 0), max(-bottom, 0))
+        return found
+
+
 class Style:
     """One size of one formula, with its constants in points."""
 
@@ -83,15 +100,16 @@ class Style:
         self.den_gap = self._part_figure(value, "FractionDenom{}GapMin", "inator")
         #: letters set before, by text and style
         self.nuclei: dict[tuple[str, str], Nucleus] = {}
-        self._operators: dict[tuple[str, int, int], Box] = {}
-        self._spaces: dict[int, Box] = {}
+        #: signs set before, by text and the gaps about them, and gaps; `mathbox` looks here first
+        self.operators: dict[tuple[str, int, int], Box] = {}
+        self.spaces: dict[int, Box] = {}
         #: boxes of letters with letters as scripts, kept by `mathbox`
         self.scripts: dict[object, Box] = {}
         self._kin: dict[tuple[str, bool], Style] = {}
         self._grown: dict[tuple[str, int], Box] = {}
         self._sizes: dict[str, tuple[tuple[int, float], ...]] = {}
-        self._upright: dict[str, _Figures] = {}
-        self._slanted: dict[str, _Figures] = {}
+        self._upright = _Characters(fonts, level, italic=False)
+        self._slanted = _Characters(fonts, level, italic=True)
 
     def _part_figure(self, value: dict[str, float], name: str, infix: str = "") -> float:
         """Give a figure of fractions: that of displayed ones, of small ones, or half way between.
@@ -152,43 +170,26 @@ class Style:
     def operator(self, text: str, before: int, after: int) -> Box:
         """Set a sign with the gaps about it; each gap holds a space, so that copied text keeps it."""
         key = (text, before, after)
-        found = self._operators.get(key)
+        found = self.operators.get(key)
         if found is None:
-            found = self._operators[key] = self._set_operator(_SIGNS.get(text, text), before, after)
+            found = self.operators[key] = self._set_operator(_SIGNS.get(text, text), before, after)
         return found
 
     def space(self, gap: int) -> Box:
         """Set a gap."""
-        found = self._spaces.get(gap)
+        found = self.spaces.get(gap)
         if found is None:
             run = Run(0.0, 0.0, "math", self.size, (self.fonts.characters["math"][" "],), " ")
-            found = self._spaces[gap] = Box(_GAPS[gap] * self.unit, 0.0, 0.0, (run,))
+            found = self.spaces[gap] = Box(_GAPS[gap] * self.unit, 0.0, 0.0, (run,))
         return found
-
-    def _figures(self, text: str, italic: bool) -> list[_Figures]:
-        """Give the figures of each character in this style."""
-        kept = self._slanted if italic else self._upright
-        figures = []
-        for character in text:
-            found = kept.get(character)
-            if found is None:
-                found = kept[character] = self._measure(character, italic)
-            figures.append(found)
-        return figures
-
-    def _measure(self, character: str, italic: bool) -> _Figures:
-        fonts = self.fonts
-        glyph = fonts.slanted(character) if italic else fonts.characters["math"][character]
-        if self.level:
-            glyph = fonts.math.script(glyph, self.level)
-        _, bottom, _, top = fonts.files["math"].bounds(glyph)
-        return glyph, fonts.advances["math"][glyph], max(top, 0), max(-bottom, 0)
 
     def _set_letters(self, text: str, italic: bool) -> Nucleus:
         if not text:
             return Nucleus(Box(0.0, 0.0, 0.0, ()), 0.0, 0, 0)
-        glyphs, advances, tops, bottoms = zip(*self._figures(text, italic), strict=True)
-        width = sum(advances)
+        kept = self._slanted if italic else self._upright
+        figures = [kept[character] for character in text]
+        glyphs = tuple([figure[0] for figure in figures])
+        width = sum([figure[1] for figure in figures])
         shifts: tuple[int, ...] = ()
         # numbers have no pairs to kern, and the face has no kerning for its script forms
         if not italic and not self.level and text[0].isalpha() and len(text) > 1:
@@ -199,12 +200,13 @@ class Style:
         lean = self.fonts.math.italics(glyphs[-1]) if italic else 0
         unit = self.unit
         run = Run(0.0, 0.0, "math", self.size, glyphs, text, shifts)
-        box = Box((width + lean) * unit, max(tops) * unit, max(bottoms) * unit, (run,))
+        top, bottom = max([figure[2] for figure in figures]), max([figure[3] for figure in figures])
+        box = Box((width + lean) * unit, top * unit, bottom * unit, (run,))
         return Nucleus(box, lean * unit, glyphs[0], glyphs[-1])
 
     def _set_operator(self, text: str, before: int, after: int) -> Box:
         space = self.fonts.characters["math"][" "]
-        glyphs, advances, tops, bottoms = zip(*self._figures(text, False), strict=True)
+        glyphs, advances, tops, bottoms = zip(*[self._upright[c] for c in text], strict=True)
         width = sum(advances) + _GAPS[before] + _GAPS[after]
         shifts: tuple[int, ...] = ()
         if before:

@@ -91,21 +91,25 @@ class MathTable:
 
     def kern(self, glyph: int, corner: Corner, height: float) -> int:
         """Give the distance to add at a corner of a glyph for what touches it at a height."""
+        heights, values = self.steps(glyph, corner)
+        return values[bisect_right(heights, height)]
+
+    def steps(self, glyph: int, corner: Corner) -> tuple[tuple[int, ...], tuple[int, ...]]:
+        """Give the heights at which a corner steps, and the distances below, between and above them."""
         data = self._font.data
         if self._kerns is None:
             at = self._info + unpack_from(">H", data, self._info + 6)[0]
             self._kerns = (at, coverage(data, at + unpack_from(">H", data, at)[0]))
         base, covered = self._kerns
         index = covered.get(glyph)
-        if index is None:
-            return 0
-        offset = unpack_from(">H", data, base + 4 + 8 * index + 2 * _CORNERS[corner])[0]
+        offset = 0
+        if index is not None:
+            offset = unpack_from(">H", data, base + 4 + 8 * index + 2 * _CORNERS[corner])[0]
         if not offset:
-            return 0
+            return (), (0,)
         count = unpack_from(">H", data, base + offset)[0]
-        values = unpack_from(">" + "h2x" * (2 * count + 1), data, base + offset + 2)
-        found: int = values[count + bisect_right(values, height, 0, count)]
-        return found
+        numbers = unpack_from(">" + "h2x" * (2 * count + 1), data, base + offset + 2)
+        return numbers[:count], numbers[count:]
 
     def script(self, glyph: int, level: int) -> int:
         """Give the form of a glyph drawn for scripts (level 1) or scripts of scripts (level 2)."""

@@ -11,7 +11,7 @@ from __future__ import annotations
 from collections.abc import Iterable
 from dataclasses import dataclass
 
-from calcreport.layout.cover import Cover, set_cover
+from calcreport.layout.cover import set_cover
 from calcreport.layout.flow import Body, flow
 from calcreport.layout.fonts import Fonts
 from calcreport.layout.index import Extent, index_blocks
@@ -60,11 +60,11 @@ def lay_out(report: Report, fonts: Fonts) -> Pages:
             bodies[part.mark] = _bodies(laned if _needs_lanes(part) else wide, part, part.blocks)
     covers = [part for part in report.parts if part.cover is not None]
     for part in covers:
-        bodies[part.mark] = _cover_bodies(wide, part, 0)[0]
+        bodies[part.mark] = _cover_bodies(wide, part, 0)
     _indexes(report, wide, bodies)
     count = sum(len(sheets) for sheets in bodies.values())
     for part in covers:
-        bodies[part.mark] = _cover_bodies(wide, part, count)[0]
+        bodies[part.mark] = _cover_bodies(wide, part, count)
     pages: list[Page] = []
     for part in report.parts:
         pages.extend(_pages(laned if _needs_lanes(part) else wide, part, bodies[part.mark]))
@@ -113,23 +113,26 @@ def _symbol_column(lettering: Lettering, blocks: tuple[Block, ...]) -> float:
     return max((box.width for box in boxes if box.width <= SYMBOL_CAP), default=20.0)
 
 
-def _cover_bodies(desk: _Desk, part: Part, count: int) -> tuple[tuple[Body, ...], Cover]:
-    """Lay out a cover; lists that do not fit it go on further sheets of its part."""
+def _cover_bodies(desk: _Desk, part: Part, count: int) -> tuple[Body, ...]:
+    """Lay out a cover; lists that do not fit it go on further sheets of its part, in two columns."""
     assert part.cover is not None
-    cover = set_cover(desk.sheet, desk.lettering, part.cover, sheet_label(part, 1), count)
-    bodies = [Body(cover.items, desk.sheet.foot)]
+    sheet = desk.sheet
+    cover = set_cover(sheet, desk.lettering, part.cover, sheet_label(part, 1), count)
+    bodies = [Body(cover.items, sheet.foot)]
+    column, y = 2, sheet.body_foot
     items: list[Item] = []
-    y = desk.sheet.body_top
     for piece in cover.rest:
-        if y + piece.before + piece.height > desk.sheet.body_foot:
-            bodies.append(Body(tuple(items), y))
-            items, y = [], desk.sheet.body_top
-        y += piece.before if items else 0.0
-        items.append(Placed(0.0, y, Box(desk.sheet.width, 0.0, piece.height, piece.items)))
+        if y + piece.before + piece.height > sheet.body_foot:
+            column, y = column + 1, sheet.body_top
+            if column > 1:
+                column, items = 0, []
+                bodies.append(Body((), sheet.body_foot))
+        y += piece.before if y > sheet.body_top else 0.0
+        x = column * (sheet.right - sheet.left) / 2
+        items.append(Placed(x, y, Box(sheet.width, 0.0, piece.height, piece.items)))
+        bodies[-1] = Body(tuple(items), sheet.body_foot)
         y += piece.height
-    if items:
-        bodies.append(Body(tuple(items), y))
-    return tuple(bodies), cover
+    return tuple(bodies)
 
 
 def _indexes(report: Report, desk: _Desk, bodies: dict[str, tuple[Body, ...]]) -> None:

@@ -11,12 +11,14 @@ from dataclasses import dataclass
 from calcreport.calculate.model import Worked, WorkedProject
 from calcreport.core.version import PROGRAM
 from calcreport.report import fronts
-from calcreport.report.calculation import Composer, SymbolForms
-from calcreport.report.forms import CalculationForms, find_forms
+from calcreport.report.calculation import Composer
+from calcreport.report.confirmations import find_forms
+from calcreport.report.forms import CalculationForms
 from calcreport.report.model import Block, Index, IndexEntry, Part, Report, TitleFacts
 from calcreport.report.notation import Notation
 from calcreport.report.script import Script, write_script
 from calcreport.report.summary import Summary, SummarySheets, result_words, summarise, worst_checks
+from calcreport.report.told import SymbolForms, Told
 
 
 @dataclass(frozen=True, slots=True)
@@ -40,7 +42,7 @@ def compose(project: WorkedProject, progress: Callable[[int, int], None]) -> Com
     for done, worked in enumerate(project.calculations, 1):
         symbols = shared.setdefault(id(worked.plan), SymbolForms(Notation(worked.plan.slots)))
         mark = worked.calculation.mark
-        blocks = Composer(scripts[mark], forms, scripts, symbols).blocks()
+        blocks = Composer(Told(scripts[mark], forms, scripts, symbols)).blocks()
         parts.append(_calculation(project, worked, scripts[mark], blocks))
         progress(done, len(project.calculations))
     sheets = SummarySheets(project, forms, scripts).blocks(summary, entries)
@@ -49,12 +51,17 @@ def compose(project: WorkedProject, progress: Callable[[int, int], None]) -> Com
 
 
 def _report(
-    project: WorkedProject, summary: Summary, calculations: tuple[Part, ...], summary_blocks: tuple[Block, ...], register: tuple[Block, ...]
+    project: WorkedProject,
+    summary: Summary,
+    calculations: tuple[Part, ...],
+    summary_blocks: tuple[Block, ...],
+    register: tuple[Block, ...],
 ) -> Report:
     facts = project.project
     loud = bool(summary.failed or summary.not_evaluated)
-    cover = Part("COVER", "Cover", "cover", _facts(project, "Cover"),
-                 cover=fronts.cover(project, result_words(summary), loud))  # fmt: skip
+    cover = Part(
+        "COVER", "Cover", "cover", _facts(project, "Cover"), cover=fronts.cover(project, result_words(summary), loud)
+    )
     front = [
         _front(project, "REVISIONS", "Revision record", fronts.revisions(project)),
         _front(project, "CRITERIA", "Design criteria", fronts.criteria(project)),
@@ -69,11 +76,15 @@ def _report(
     entries = tuple(_entry(project, part) for part in listed)
     index = Part("INDEX", "Index", "index", _facts(project, "Index"), index=Index(entries))
     parts = (cover, front[0], index, *front[1:], *calculations, *back)
-    return Report(facts.title, facts.office, f"Structural calculations, {facts.number}", "en-US", facts.date, facts.paper, parts)
+    return Report(
+        facts.title, facts.office, f"Structural calculations, {facts.number}", "en-US", facts.date, facts.paper, parts
+    )
 
 
 def _entry(project: WorkedProject, part: Part) -> IndexEntry:
-    return IndexEntry(part.mark, part.title, part.mark, "NG" if part.strip else "", part.facts.revision, part.facts.date)
+    return IndexEntry(
+        part.mark, part.title, part.mark, "NG" if part.strip else "", part.facts.revision, part.facts.date
+    )
 
 
 def _front(project: WorkedProject, mark: str, title: str, blocks: tuple[Block, ...], kind: str = "front") -> Part:
@@ -84,17 +95,28 @@ def _facts(project: WorkedProject, subject: str, code: str = "", fingerprint: st
     facts = project.project
     issue = facts.issues[-1] if facts.issues else None
     return TitleFacts(
-        project=facts.title, project_number=facts.number, subject=subject, code=code, status=facts.status.upper(),
-        status_note=fronts.STATUS_NOTES[facts.status], revision=f"rev {issue.number}" if issue else "rev 1",
-        date=fronts.date_words(issue.date if issue else facts.date), fingerprint=fingerprint, program=PROGRAM,
-    )  # fmt: skip
+        project=facts.title,
+        project_number=facts.number,
+        subject=subject,
+        code=code,
+        status=facts.status.upper(),
+        status_note=fronts.STATUS_NOTES[facts.status],
+        revision=f"rev {issue.number}" if issue else "rev 1",
+        date=fronts.date_words(issue.date if issue else facts.date),
+        fingerprint=fingerprint,
+        program=PROGRAM,
+    )
 
 
 def _calculation(project: WorkedProject, worked: Worked, script: Script, blocks: tuple[Block, ...]) -> Part:
     calculation, template = worked.calculation, worked.calculation.template
     system = "in.-lb" if template.system == "us" else "SI"
-    facts = _facts(project, f"{calculation.mark}  {calculation.title}", f"{template.code} ({system})",
-                   f"input {fronts.grouped(worked.fingerprint[:8])}")  # fmt: skip
+    facts = _facts(
+        project,
+        f"{calculation.mark}  {calculation.title}",
+        f"{template.code} ({system})",
+        f"input {fronts.grouped(worked.fingerprint[:8])}",
+    )
     return Part(calculation.mark, calculation.title, "calculation", facts, blocks, strip=_strip(worked, script))
 
 

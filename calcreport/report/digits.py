@@ -217,7 +217,11 @@ class Digits:
             figure = self.figures[name]
 
             def true(other: Id, name: Id = name, figure: Figure = figure) -> float:
-                return figure.number * figure.size / 10.0**figure.exponent if self.root(other) == name else self._printed(other)
+                return (
+                    figure.number * figure.size / 10.0**figure.exponent
+                    if self.root(other) == name
+                    else self._printed(other)
+                )
 
             after = line.work(true)
             moved = math.inf if before is None or after is None else abs(after - before)

@@ -15,11 +15,37 @@ from calcreport.report.model import Formula, Letters, Root, Row, Script
 Slots: TypeAlias = tuple[Slot, ...]
 
 _GREEK = {
-    "alpha": "α", "beta": "β", "gamma": "γ", "delta": "δ", "epsilon": "ε", "eps": "ε", "zeta": "ζ", "eta": "η",
-    "theta": "θ", "kappa": "κ", "lambda": "λ", "mu": "μ", "nu": "ν", "xi": "ξ", "pi": "π", "rho": "ρ", "sigma": "σ",
-    "tau": "τ", "phi": "φ", "chi": "χ", "psi": "ψ", "omega": "ω", "Gamma": "Γ", "Delta": "Δ", "Theta": "Θ",
-    "Lambda": "Λ", "Sigma": "Σ", "Phi": "Φ", "Psi": "Ψ", "Omega": "Ω",
-}  # fmt: skip
+    "alpha": "α",
+    "beta": "β",
+    "gamma": "γ",
+    "delta": "δ",
+    "epsilon": "ε",
+    "eps": "ε",
+    "zeta": "ζ",
+    "eta": "η",
+    "theta": "θ",
+    "kappa": "κ",
+    "lambda": "λ",
+    "mu": "μ",
+    "nu": "ν",
+    "xi": "ξ",
+    "pi": "π",
+    "rho": "ρ",
+    "sigma": "σ",
+    "tau": "τ",
+    "phi": "φ",
+    "chi": "χ",
+    "psi": "ψ",
+    "omega": "ω",
+    "Gamma": "Γ",
+    "Delta": "Δ",
+    "Theta": "Θ",
+    "Lambda": "Λ",
+    "Sigma": "Σ",
+    "Phi": "Φ",
+    "Psi": "Ψ",
+    "Omega": "Ω",
+}
 _GREEK_START = re.compile("(" + "|".join(sorted(_GREEK, key=len, reverse=True)) + r")(?=$|_|'|[A-Z]|\d)")
 PRIME = "′"
 
@@ -31,6 +57,8 @@ def show_symbol(symbol: Symbol) -> Formula:
 
 def show_name(text: str) -> Formula:
     """Return the display of `f_c'`, `phiM_n`, `A_s,min`, `√f_c'`."""
+    if " " in text:
+        return Letters(text)
     if text.startswith("√"):
         return Root(show_name(text[1:]))
     stem, _, rest = text.rpartition(".")

@@ -9,7 +9,6 @@ from collections.abc import Callable
 from dataclasses import dataclass
 
 from calcreport.calculate.model import FigureInput, Key, WorkedFigure
-
 from calcreport.report.display import show_symbol
 from calcreport.report.forms import CalculationForms
 from calcreport.report.model import (
@@ -27,7 +26,7 @@ from calcreport.report.notation import relation, show_figure
 #: inputs of every kind, needed and optional
 KINDS: dict[str, tuple[tuple[str, ...], tuple[str, ...]]] = {
     "beam section": (("b", "h", "c_c", "d_s", "face", "layers", "n", "d_b", "y"), ("c", "a", "eps_cu", "eps_t")),
-    "span": (("l", "loads", "w", "P", "x_P", "M_u"), ("pinned", "roller", "fixed", "x_u", "V_u")),
+    "span": (("l", "loads", "w", "P", "x_P", "M_u"), ("pinned", "roller", "fixed", "x_u", "w_u", "P_u")),
 }
 _STATIONS = 48
 
@@ -96,7 +95,9 @@ def _section(inputs: _Inputs) -> Figure:
     for row, _ in enumerate(names):
         at = rows, row
         callout = _callout(inputs, at)
-        bars.append(Bar(int(inputs.number("n", at)), _mm(inputs.number("d_b", at)), _mm(inputs.number("y", at)), callout))
+        bars.append(
+            Bar(int(inputs.number("n", at)), _mm(inputs.number("d_b", at)), _mm(inputs.number("y", at)), callout)
+        )
     labels: list[tuple[str, Formula]] = [("b", inputs.label("b")), ("h", inputs.label("h"))]
     for name, label in (("c", "c"), ("a", "a"), ("eps_cu", "strain_top"), ("eps_t", "strain_steel")):
         if inputs.has(name):
@@ -106,13 +107,17 @@ def _section(inputs: _Inputs) -> Figure:
     face = inputs.word("face")
     b, h = inputs.number("b"), inputs.number("h")
     return SectionFigure(
-        width=_mm(b), depth=_mm(h), cover=_mm(inputs.number("c_c")), stirrup_diameter=_mm(inputs.number("d_s")),
-        bars=tuple(bars), tension_face="top" if face == "top" else "bottom",
+        width=_mm(b),
+        depth=_mm(h),
+        cover=_mm(inputs.number("c_c")),
+        stirrup_diameter=_mm(inputs.number("d_s")),
+        bars=tuple(bars),
+        tension_face="top" if face == "top" else "bottom",
         neutral_axis=_mm(inputs.number("c")) if inputs.has("c") else None,
         block_depth=_mm(inputs.number("a")) if inputs.has("a") else None,
         labels=tuple(labels),
         alternative=f"Section to scale with {steel} near the {face} face, with strains and the stress block.",
-    )  # fmt: skip
+    )
 
 
 def _callout(inputs: _Inputs, row: tuple[int, int]) -> str:
@@ -149,14 +154,21 @@ def _span(inputs: _Inputs) -> Figure:
             loads.append(BeamLoad(at, at, abs(points[row]) / most[1], _load_label(inputs, "P", (rows, row), name)))
     place = inputs.number("x_u") if inputs.has("x_u") else 0.0
     moment = inputs.number("M_u")
-    shape = _shape(length, sum(spread), sum(points), inputs.number("x_P"), cantilever)
+    # without the factored loads the diagram takes the proportions of the loads as given
+    w = inputs.number("w_u") if inputs.has("w_u") else sum(spread)
+    p = inputs.number("P_u") if inputs.has("P_u") else sum(points)
+    shape = _shape(length, w, p, inputs.number("x_P"), cantilever)
     scale = moment / shape(place) if shape(place) else 0.0
     curve = tuple((length * i / _STATIONS, scale * shape(length * i / _STATIONS)) for i in range(_STATIONS + 1))
     return SpanFigure(
-        span=length, supports=supports, loads=tuple(loads), moments=curve, moment_labels=((place, inputs.label("M_u")),),
+        span=length,
+        supports=supports,
+        loads=tuple(loads),
+        moments=curve,
+        moment_labels=((place, inputs.label("M_u")),),
         span_label=inputs.label("l"),
         alternative="Span with its supports, loads by case and the factored moment diagram.",
-    )  # fmt: skip
+    )
 
 
 def _load_label(inputs: _Inputs, name: str, row: tuple[int, int], case: str) -> Formula:

@@ -9,7 +9,20 @@ from __future__ import annotations
 from dataclasses import dataclass
 from fractions import Fraction
 
-from calcreport.core.expression import Attach, Binary, Call, Expression, Name, Negate, Node, Number, Over, Strip, children, literal
+from calcreport.core.expression import (
+    Attach,
+    Binary,
+    Call,
+    Expression,
+    Name,
+    Negate,
+    Node,
+    Number,
+    Over,
+    Strip,
+    children,
+    literal,
+)
 from calcreport.core.units import NONE, Dimension, Unit, divide, make_unit, multiply, raised
 from calcreport.report.display import Slots
 
@@ -40,9 +53,14 @@ class Family:
 
 _STRESS: Dimension = (Fraction(-2), Fraction(1), Fraction(0))
 _NAMED = {
-    ("kip", "in", _STRESS): "ksi", ("lb", "in", _STRESS): "psi", ("kip", "ft", _STRESS): "ksf",
-    ("lb", "ft", _STRESS): "psf", ("N", "mm", _STRESS): "MPa", ("kN", "m", _STRESS): "kPa", ("N", "m", _STRESS): "Pa",
-}  # fmt: skip
+    ("kip", "in", _STRESS): "ksi",
+    ("lb", "in", _STRESS): "psi",
+    ("kip", "ft", _STRESS): "ksf",
+    ("lb", "ft", _STRESS): "psf",
+    ("N", "mm", _STRESS): "MPa",
+    ("kN", "m", _STRESS): "kPa",
+    ("N", "m", _STRESS): "Pa",
+}
 US = (Family("kip", "in"), Family("kip", "ft"), Family("lb", "in"), Family("lb", "ft"))
 SI = (Family("N", "mm"), Family("kN", "m"), Family("kN", "mm"), Family("N", "m"))
 

@@ -13,8 +13,20 @@ from calcreport.core.version import PROGRAM
 from calcreport.report.model import Block, Column, CoverFacts, Heading, Paragraph, Strong, Table, TableRow, Words
 from calcreport.report.script import SayText, Script
 
-MONTHS = ("January", "February", "March", "April", "May", "June", "July", "August", "September", "October", "November",
-          "December")  # fmt: skip
+MONTHS = (
+    "January",
+    "February",
+    "March",
+    "April",
+    "May",
+    "June",
+    "July",
+    "August",
+    "September",
+    "October",
+    "November",
+    "December",
+)
 STATUS_NOTES = {
     "preliminary": "not for permit, not for construction",
     "for review": "not for permit, not for construction",
@@ -71,16 +83,29 @@ def cover(project: WorkedProject, result: tuple[Words, ...], loud: bool) -> Cove
     basis += [f"{name}: {value}" for name, value in facts.criteria[:6]]
     issue = facts.issues[-1].number if facts.issues else "1"
     return CoverFacts(
-        title=facts.title, header=header, issue=f"Issue {issue}", date=date_words(facts.date),
-        status=facts.status.upper(), status_note=STATUS_NOTES[facts.status], scope=scope, elsewhere=facts.elsewhere,
-        basis=tuple(basis), result=result, result_is_loud=loud, cautions=CAUTIONS, seal_words=SEAL_WORDS,
-        office=tuple(line for line in (facts.office, facts.contact) if line), fingerprint=grouped(project.fingerprint),
-    )  # fmt: skip
+        title=facts.title,
+        header=header,
+        issue=f"Issue {issue}",
+        date=date_words(facts.date),
+        status=facts.status.upper(),
+        status_note=STATUS_NOTES[facts.status],
+        scope=scope,
+        elsewhere=facts.elsewhere,
+        basis=tuple(basis),
+        result=result,
+        result_is_loud=loud,
+        cautions=CAUTIONS,
+        seal_words=SEAL_WORDS,
+        office=tuple(line for line in (facts.office, facts.contact) if line),
+        fingerprint=grouped(project.fingerprint),
+    )
 
 
 def revisions(project: WorkedProject) -> tuple[Block, ...]:
     """Return the revision record."""
-    rows = tuple(TableRow(((issue.number,), (date_words(issue.date),), (issue.why,))) for issue in project.project.issues)
+    rows = tuple(
+        TableRow(((issue.number,), (date_words(issue.date),), (issue.why,))) for issue in project.project.issues
+    )
     columns = (Column(("Issue",)), Column(("Date",)), Column(("What changed and why",), stretch=1.0))
     return (Table(columns, rows),)
 
@@ -101,7 +126,10 @@ def criteria(project: WorkedProject) -> tuple[Block, ...]:
         blocks.append(Heading("Materials", 2))
         names = list(dict.fromkeys(name for _, properties in facts.materials for name, _ in properties))
         columns = (Column(("Mark",)), *(Column((name,)) for name in names))
-        table = [TableRow(((mark,), *((dict(properties).get(name, "–"),) for name in names))) for mark, properties in facts.materials]
+        table = [
+            TableRow(((mark,), *((dict(properties).get(name, "–"),) for name in names)))
+            for mark, properties in facts.materials
+        ]
         blocks.append(Table(columns, tuple(table)))
     caution = "The codes are taken in the editions named. Amendments of the authority having jurisdiction are not included unless listed above."
     blocks.append(Paragraph((caution,), "caution"))
@@ -136,9 +164,15 @@ def _plain(worked: WorkedText) -> str:
 
 def assumptions(entries: tuple[RegisterEntry, ...]) -> tuple[Block, ...]:
     """Return the assumption register."""
-    columns = (Column(("No.",)), Column(("Assumption",), stretch=2.0), Column(("State",), stretch=1.0), Column(("Concerns",), stretch=1.0))
+    columns = (
+        Column(("No.",)),
+        Column(("Assumption",), stretch=2.0),
+        Column(("State",), stretch=1.0),
+        Column(("Concerns",), stretch=1.0),
+    )
     rows = tuple(
-        TableRow(((e.number,), (e.says,), (e.state,), e.where), "loud" if e.state.startswith("to be") else "") for e in entries
+        TableRow(((e.number,), (e.says,), (e.state,), e.where), "loud" if e.state.startswith("to be") else "")
+        for e in entries
     )
     if not rows:
         return (Paragraph(("No assumption is registered.",), "plain"),)
@@ -148,12 +182,16 @@ def assumptions(entries: tuple[RegisterEntry, ...]) -> tuple[Block, ...]:
 def echo(files: tuple[Source, ...]) -> tuple[Block, ...]:
     """Return the project files line by line, as read."""
     blocks: list[Block] = [
-        Paragraph(("The project files as the program read them. They are the user's; the program does not verify them.",), "note")
+        Paragraph(
+            ("The project files as the program read them. They are the user's; the program does not verify them.",),
+            "note",
+        )
     ]
     for source in files:
         blocks.append(Heading(source.name, 2))
         rows = tuple(
-            TableRow(((str(number),), (_kept(text),))) for number, text in enumerate(source.text.rstrip("\n").split("\n"), 1)
+            TableRow(((str(number),), (_kept(text),)))
+            for number, text in enumerate(source.text.rstrip("\n").split("\n"), 1)
         )
         blocks.append(Table((Column(("line",), "right"), Column(("text",), stretch=1.0)), rows))
     return tuple(blocks)
@@ -168,26 +206,46 @@ def _kept(text: str) -> str:
 def disclosure(project: WorkedProject) -> tuple[Block, ...]:
     """Return the program disclosure: what computed this, from what, with which evidence and limits."""
     templates = {worked.calculation.template.name: worked for worked in project.calculations}
-    columns = (Column(("Template",)), Column(("Code",)), Column(("Title",), stretch=1.0), Column(("Calculations",), stretch=1.0))
+    columns = (
+        Column(("Template",)),
+        Column(("Code",)),
+        Column(("Title",), stretch=1.0),
+        Column(("Calculations",), stretch=1.0),
+    )
     rows = []
     for name, worked in sorted(templates.items()):
         marks = [w.calculation.mark for w in project.calculations if w.calculation.template.name == name]
         template = worked.calculation.template
         rows.append(TableRow(((name,), (template.code,), (template.title,), (" ".join(marks),))))
     paragraphs = (
-        ("Program. ", f"{PROGRAM}, open source, without warranty of any kind. It reads the project files echoed in "
-         "appendix A and templates of design-code rules, works every formula in double precision, and prints formula, "
-         "substituted values and result."),
-        ("Numbers. ", "Full precision is carried; rounding is for the eye. Verdicts come from unrounded values, and a "
-         "limit met exactly is OK. The printed inputs of a line, put into its printed formula, give its printed result."),
-        ("Evidence. ", "Every template has a case file beside it: given values and expected results, each with the "
-         "publication or hand computation it is taken from. The program's tests run all of them. Evidence of this kind is "
-         "not an independent check of this package; a checker is another person."),
-        ("Limits. ", "Each calculation names the limit states it decides and those it leaves out, and stops outside its "
-         "range. Loads, load path, edition and inputs are the engineer's choice and are not verified."),
-        ("Fingerprints. ", "The input fingerprint of a calculation is taken over its given values and the text of its "
-         "templates; that of the package over all of them. Equal fingerprints mean equal inputs, nothing more."),
-    )  # fmt: skip
+        (
+            "Program. ",
+            f"{PROGRAM}, without warranty of any kind. It reads the project files echoed in "
+            "appendix A and templates of design-code rules, works every formula in double precision, and prints formula, "
+            "substituted values and result.",
+        ),
+        (
+            "Numbers. ",
+            "Full precision is carried; rounding is for the eye. Verdicts come from unrounded values, and a "
+            "limit met exactly is OK. The printed inputs of a line, put into its printed formula, give its printed result.",
+        ),
+        (
+            "Evidence. ",
+            "Every template has a case file beside it: given values and expected results, each with the "
+            "publication or hand computation it is taken from. The program's tests run all of them. Evidence of this kind is "
+            "not an independent check of this package; a checker is another person.",
+        ),
+        (
+            "Limits. ",
+            "Each calculation names the limit states it decides and those it leaves out, and stops outside its "
+            "range. Loads, load path, edition and inputs are the engineer's choice and are not verified.",
+        ),
+        (
+            "Fingerprints. ",
+            "The input fingerprint of a calculation is taken over its given values and the text of its "
+            "templates; that of the package over all of them. Equal fingerprints mean equal inputs, nothing more.",
+        ),
+    )
     blocks: list[Block] = [Paragraph((Strong(head), text), "plain") for head, text in paragraphs]
     blocks += [Heading("Templates used", 2), Table(columns, tuple(rows))]
     return tuple(blocks)

@@ -92,9 +92,7 @@ class Big:
     above: Formula | None = None
 
 
-Formula: TypeAlias = (
-    Letters | Operator | Space | Row | Fraction | Root | Script | Fence | Stack | Big
-)
+Formula: TypeAlias = Letters | Operator | Space | Row | Fraction | Root | Script | Fence | Stack | Big
 
 
 # ---------------------------------------------------------------- words
@@ -243,12 +241,16 @@ class Column:
     stretch: float = 0.0
 
 
+#: how a row stands out: the governing one, or one that needs eyes
+Emphasis: TypeAlias = Literal["", "governing", "loud"]
+
+
 @dataclass(frozen=True, slots=True)
 class TableRow:
     """Cells of one row; a governing row is set in the heavier face, a loud one is an NG."""
 
     cells: tuple[Words, ...]
-    emphasis: Literal["", "governing", "loud"] = ""
+    emphasis: Emphasis = ""
     anchor: str = ""
     delta: str = ""
 
@@ -340,17 +342,7 @@ class FigureBlock:
     caption: Words = ()
 
 
-Block: TypeAlias = (
-    Heading
-    | Paragraph
-    | Givens
-    | Line
-    | Statement
-    | CheckLine
-    | ResultBox
-    | Table
-    | FigureBlock
-)
+Block: TypeAlias = Heading | Paragraph | Givens | Line | Statement | CheckLine | ResultBox | Table | FigureBlock
 
 
 # ---------------------------------------------------------------- parts

@@ -132,9 +132,20 @@ class SayStop:
 
 
 Item: TypeAlias = (
-    SayGivens | SayRows | SayText | SayHeading | SayLine | SayFormula | SayMade | SayTable | SayBranch | SayCheck
-    | SayRequire | SayFigure | SayStop
-)  # fmt: skip
+    SayGivens
+    | SayRows
+    | SayText
+    | SayHeading
+    | SayLine
+    | SayFormula
+    | SayMade
+    | SayTable
+    | SayBranch
+    | SayCheck
+    | SayRequire
+    | SayFigure
+    | SayStop
+)
 
 
 @dataclass(frozen=True, slots=True)
@@ -288,8 +299,12 @@ def _rows_in_full(writer: _Writer, each: WorkedEach, name: str, rows: range | li
 def _number_rest(writer: _Writer, each: WorkedEach) -> None:
     """Give the lines of rows told only in the table the number of the row told in full."""
     told = {slot: number for (slot, _), number in writer.line_of.items()}
-    checks = {check.line.name: writer.check_line.get(id(check)) for row in each.rows for check in checks_below(row)
-              if id(check) in writer.check_line}  # fmt: skip
+    checks = {
+        check.line.name: writer.check_line.get(id(check))
+        for row in each.rows
+        for check in checks_below(row)
+        if id(check) in writer.check_line
+    }
     for row in each.rows:
         for line in gives_below(row):
             writer.line_of.setdefault((line.line.slot, line.key), told.get(line.line.slot, writer.number))

@@ -13,7 +13,18 @@ from calcreport.report.digits import number_text
 from calcreport.report.display import unit_text
 from calcreport.report.forms import CalculationForms, is_size, side_unit
 from calcreport.report.fronts import RegisterEntry
-from calcreport.report.model import Block, Column, Heading, Paragraph, Reference, Strong, Table, TableRow, Words
+from calcreport.report.model import (
+    Block,
+    Column,
+    Emphasis,
+    Heading,
+    Paragraph,
+    Reference,
+    Strong,
+    Table,
+    TableRow,
+    Words,
+)
 from calcreport.report.script import Script
 
 CLOSING = "Computed demand does not exceed computed capacity for the checks listed"
@@ -86,8 +97,10 @@ def result_words(summary: Summary) -> tuple[Words, ...]:
         counts.append(Strong(f"{len(summary.failed)} NG ({failed})"))
     else:
         counts.append("0 NG")
-    counts.append(f"    {summary.not_evaluated} not evaluated    {len(summary.not_covered)} limit states not covered"
-                  f"    {summary.open_assumptions} assumptions open")  # fmt: skip
+    counts.append(
+        f"    {summary.not_evaluated} not evaluated    {len(summary.not_covered)} limit states not covered"
+        f"    {summary.open_assumptions} assumptions open"
+    )
     return (tuple(counts), (_closing(summary),))
 
 
@@ -105,8 +118,11 @@ class SummarySheets:
 
     def blocks(self, summary: Summary, entries: tuple[RegisterEntry, ...]) -> tuple[Block, ...]:
         """Return all blocks of the summary."""
-        counts = (f"{summary.calculations} calculations, {summary.checks} checks.  ", Strong(f"{len(summary.failed)} NG"),
-                  f",  {summary.not_evaluated} not evaluated,  {len(summary.not_covered)} limit states not covered.")  # fmt: skip
+        counts = (
+            f"{summary.calculations} calculations, {summary.checks} checks.  ",
+            Strong(f"{len(summary.failed)} NG"),
+            f",  {summary.not_evaluated} not evaluated,  {len(summary.not_covered)} limit states not covered.",
+        )
         blocks: list[Block] = [Paragraph(counts, "plain")]
         blocks += self.attention(summary, entries)
         blocks += self.members()
@@ -122,37 +138,85 @@ class SummarySheets:
             for check in worst_checks(worked):
                 if check.verdict in ("NG", "not evaluated"):
                     words = self.sides(check, mark) if check.verdict == "NG" else f"not evaluated: {check.reason}"
-                    rows.append(TableRow(((mark,), (check.line.name,), (words,), (self.ratio(check, mark),), self.place(check, mark)), "loud"))
+                    rows.append(
+                        TableRow(
+                            (
+                                (mark,),
+                                (check.line.name,),
+                                (words,),
+                                (self.ratio(check, mark),),
+                                self.place(check, mark),
+                            ),
+                            "loud",
+                        )
+                    )
         for entry in entries:
             if entry.state.startswith("to be"):
-                rows.append(TableRow(((entry.number,), ("assumption",), (f"{entry.says} ({entry.state})",), ("",), entry.where)))
+                rows.append(
+                    TableRow(((entry.number,), ("assumption",), (f"{entry.says} ({entry.state})",), ("",), entry.where))
+                )
         for state, marks in summary.not_covered:
             text = "not covered; engineer to state who covers it"
             rows.append(TableRow(((_short(marks),), (state,), (text,), ("",), ("",))))
         if not rows:
             return []
-        columns = (Column(("Mark",), stretch=0.6), Column(("What",), stretch=1.0), Column(("State",), stretch=2.0),
-                   Column(("Ratio",), "right"), Column(("Where",)))  # fmt: skip
+        columns = (
+            Column(("Mark",), stretch=0.6),
+            Column(("What",), stretch=1.0),
+            Column(("State",), stretch=2.0),
+            Column(("Ratio",), "right"),
+            Column(("Where",)),
+        )
         return [Heading("Needs attention", 2), Table(columns, tuple(rows))]
 
     def members(self) -> list[Block]:
         """Return a row a calculation with its governing check, highest ratio first."""
-        ranked = sorted(self.project.calculations, key=lambda w: _rank(g) if (g := governing(w)) else (0, -1.0), reverse=True)
+        ranked = sorted(
+            self.project.calculations, key=lambda w: _rank(g) if (g := governing(w)) else (0, -1.0), reverse=True
+        )
         rows = []
         for worked in ranked:
             mark, check = worked.calculation.mark, governing(worked)
             if check is None:
-                rows.append(TableRow(((mark,), (worked.calculation.title,), ("no checks: gives values to others",), ("",), ("",), ("",), ("",))))
+                rows.append(
+                    TableRow(
+                        (
+                            (mark,),
+                            (worked.calculation.title,),
+                            ("no checks: gives values to others",),
+                            ("",),
+                            ("",),
+                            ("",),
+                            ("",),
+                        )
+                    )
+                )
                 continue
             demand, capacity = self.demand(check, mark)
-            emphasis = "loud" if check.verdict == "NG" else ""
+            emphasis: Emphasis = "loud" if check.verdict == "NG" else ""
             rows.append(
-                TableRow(((mark,), (worked.calculation.title,), (check.line.name,), (demand,), (capacity,),
-                          (self.ratio(check, mark) + (" NG" if check.verdict == "NG" else ""),), self.place(check, mark)), emphasis)  # type: ignore[arg-type]
-            )  # fmt: skip
-        columns = (Column(("Mark",)), Column(("Calculation",), stretch=1.4), Column(("Governing check",), stretch=1.0),
-                   Column(("Demand or required",), "right"), Column(("Capacity or provided",), "right"),
-                   Column(("Ratio",), "right"), Column(("Where",)))  # fmt: skip
+                TableRow(
+                    (
+                        (mark,),
+                        (worked.calculation.title,),
+                        (check.line.name,),
+                        (demand,),
+                        (capacity,),
+                        (self.ratio(check, mark) + (" NG" if check.verdict == "NG" else ""),),
+                        self.place(check, mark),
+                    ),
+                    emphasis,
+                )
+            )
+        columns = (
+            Column(("Mark",)),
+            Column(("Calculation",), stretch=1.4),
+            Column(("Governing check",), stretch=1.0),
+            Column(("Demand or required",), "right"),
+            Column(("Capacity or provided",), "right"),
+            Column(("Ratio",), "right"),
+            Column(("Where",)),
+        )
         return [Heading("Governing check of every calculation", 2), Table(columns, tuple(rows))]
 
     def grid(self) -> list[Block]:
@@ -244,7 +308,9 @@ def summary_lines(project: WorkedProject, forms: dict[str, CalculationForms], su
         figure = forms[mark].ratio(check)
         ratio = number_text(figure) if figure else ""
         lines.append(f"{mark:<8} {ratio:>8}  {check.verdict:<3} {worked.calculation.title}: {check.line.name}")
-    lines.append(f"{summary.checks} checks: {len(summary.failed)} NG, {summary.not_evaluated} not evaluated; "
-                 f"{len(summary.not_covered)} limit states not covered, {summary.open_assumptions} assumptions to be verified")  # fmt: skip
+    lines.append(
+        f"{summary.checks} checks: {len(summary.failed)} NG, {summary.not_evaluated} not evaluated; "
+        f"{len(summary.not_covered)} limit states not covered, {summary.open_assumptions} assumptions to be verified"
+    )
     lines.append(_closing(summary))
     return lines

@@ -15,7 +15,9 @@ from calcreport.report.script import Script
 DEEPEST, LONGEST = 40, 400
 
 
-def trace_lines(mark: str, symbol: str, scripts: dict[str, Script], forms: dict[str, CalculationForms]) -> tuple[str, ...]:
+def trace_lines(
+    mark: str, symbol: str, scripts: dict[str, Script], forms: dict[str, CalculationForms]
+) -> tuple[str, ...]:
     """Return the tree of `MARK.SYMBOL`; a value with rows is traced for its first row."""
     tracer = _Tracer(scripts, forms)
     slot = scripts[mark].worked.plan.by_path[symbol]

@@ -35,8 +35,13 @@ def values_file(
             "lines": _lines(scripts[mark], forms[mark]),
             "checks": [_check(check, scripts[mark], forms[mark]) for check in worked.checks],
         }
-    header = {"title": project.project.title, "number": project.project.number, "status": project.project.status,
-              "date": project.project.date, "fingerprint": project.fingerprint}  # fmt: skip
+    header = {
+        "title": project.project.title,
+        "number": project.project.number,
+        "status": project.project.status,
+        "date": project.project.date,
+        "fingerprint": project.fingerprint,
+    }
     return {"program": PROGRAM, "format": FORMAT, "project": header, "calculations": calculations}
 
 
@@ -125,7 +130,9 @@ def _check(check: WorkedCheck, script: Script, forms: CalculationForms) -> dict[
     if check.reason:
         entry["reason"] = check.reason
     if check.open:
-        entry["rows"] = [script.worked.plan.sets[s].name + " " + script.worked.values.row_names(s)[r] for s, r in check.open]
+        entry["rows"] = [
+            script.worked.plan.sets[s].name + " " + script.worked.values.row_names(s)[r] for s, r in check.open
+        ]
     return entry
 
 
@@ -163,5 +170,3 @@ def _plain_values(worked: Worked) -> list[str]:
 
 def _unit(text: str) -> str:
     return "" if text == "1" else text
-
-

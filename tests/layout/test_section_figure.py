@@ -128,8 +128,8 @@ def test_labels_never_overlap_and_all_is_inside_the_box(
 
 
 def test_only_the_section_gives_way_to_a_narrow_lane(kit: Kit) -> None:
-    wide, narrow = drawn(kit, section(), 387.0), drawn(kit, section(), 186.0)
+    wide, narrow = drawn(kit, section(), 387.0), drawn(kit, section(), 168.0)
     assert narrow.width < wide.width <= 387.0
-    assert narrow.width == pytest.approx(186.0, abs=2.0)
+    assert narrow.width == pytest.approx(168.0, abs=2.0)
     (_, top), _, (_, foot), _ = outline(drawn(kit, section(), 60.0)).points
     assert foot - top == pytest.approx(LEAST)

@@ -1,0 +1,358 @@
+"""Which lines must confirm which printed figures: every worked line, comparison and ratio of a project.
+
+`WorkedProject` in, solved `CalculationForms` out by mark.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+
+from calcreport.calculate.model import (
+    Comparison,
+    GivenPairs,
+    GivenRows,
+    GivenValue,
+    Key,
+    LinkedValue,
+    PlannedBranches,
+    PlannedGives,
+    Values,
+    Work,
+    Worked,
+    WorkedBranches,
+    WorkedCheck,
+    WorkedEach,
+    WorkedGives,
+    WorkedLine,
+    WorkedPart,
+    WorkedProject,
+    WorkedRequire,
+)
+from calcreport.core.expression import Call, Compare, Expression, Name, Node, Over, children
+from calcreport.core.units import NONE, ONE, Unit
+from calcreport.report.digits import Digits, Id, Order, Sum, make_figure
+from calcreport.report.families import Family, factor_to
+from calcreport.report.forms import (
+    CalculationForms,
+    Opened,
+    holds,
+    is_size,
+    link_place,
+    ratio_figure,
+    reversed_sign,
+    side_unit,
+)
+from calcreport.report.notation import has_values
+
+
+def find_forms(project: WorkedProject) -> dict[str, CalculationForms]:
+    """Return the forms of every calculation by mark, solved over the whole project."""
+    digits = Digits()
+    forms: dict[str, CalculationForms] = {}
+    shared: dict[int, tuple[dict[int, Family], dict[tuple[int, int], tuple[Compare, ...]]]] = {}
+    for place in project.order:
+        worked = project.calculations[place]
+        families, chosen = shared.setdefault(id(worked.plan), ({}, {}))
+        one = CalculationForms(worked, digits, _copied(worked.values), families, chosen)
+        forms[one.mark] = one
+        _given_figures(one, forms)
+        _Lines(one).lines(worked.lines)
+    digits.solve()
+    return forms
+
+
+def _copied(values: Values) -> Values:
+    return Values(
+        list(values.plain),
+        [dict(rows) for rows in values.rows],
+        list(values.open),
+        values.names,
+        values.sets,
+        values.outer,
+        values.given,
+        values.worked,
+        values.exact,
+    )
+
+
+# ---------------------------------------------------------------- given values
+
+
+def _given_figures(forms: CalculationForms, others: dict[str, CalculationForms]) -> None:
+    """Add a figure for every value that was handed over."""
+    worked = forms.worked
+    linked = _linked(worked)
+    for (slot, key), exact in worked.values.given.items():
+        symbol = worked.plan.slots[slot].symbol
+        unit = symbol.unit or ONE
+        number = exact / unit.scale
+        least = symbol.places or 0
+        places = _decimals(number.denominator)
+        name = forms.id(slot, key)
+        link = linked.get((slot, key))
+        if link is not None:
+            _link_figure(forms, others, link, name, float(number), unit, least)
+            continue
+        forms.digits.add(name, make_figure(float(number), unit.size, least=least, exact_places=places))
+
+
+def _decimals(denominator: int) -> int | None:
+    """Return the decimals of a fraction that ends within six, else None."""
+    for places in range(7):
+        if 10**places % denominator == 0:
+            return places
+    return None
+
+
+def _linked(worked: Worked) -> dict[tuple[int, Key], LinkedValue]:
+    found: dict[tuple[int, Key], LinkedValue] = {}
+    planned = {given.given.name: given for given in worked.plan.givens}
+    for value in worked.calculation.given:
+        owner = planned[value.given.name]
+        match value:
+            case GivenValue(_, LinkedValue() as link):
+                found[owner.slot, ()] = link
+            case GivenRows():
+                for row, cells in enumerate(value.cells):
+                    for column, cell in zip(owner.columns, cells, strict=False):
+                        if isinstance(cell.value, LinkedValue):
+                            found[column.slot, (row,)] = cell.value
+            case GivenPairs():
+                names = [worked.values.names[index].get((), ()) for index in owner.over]
+                for row_names, cell in value.cells:
+                    if isinstance(cell.value, LinkedValue):
+                        key = tuple(n.index(r) for n, r in zip(names, row_names, strict=True))
+                        found[owner.slot, key] = cell.value
+            case GivenValue():
+                pass
+    return found
+
+
+def _link_figure(
+    forms: CalculationForms,
+    others: dict[str, CalculationForms],
+    link: LinkedValue,
+    name: Id,
+    number: float,
+    unit: Unit,
+    least: int,
+) -> None:
+    """Let a linked value share the form of the line it comes from, or confirm its conversion."""
+    source = others[link.mark]
+    slot, key = link_place(link, source.worked)
+    other = source.id(slot, key)
+    source_unit = source.worked.plan.slots[slot].symbol.unit or ONE
+    if source_unit.scale == unit.scale:
+        forms.digits.join(name, other)
+        return
+    forms.digits.add(name, make_figure(number, unit.size, least=least))
+    forms.digits.need(Sum(lambda printed: printed(other), (other,), name))
+
+
+# ---------------------------------------------------------------- lines
+
+
+class _Lines:
+    """Adds the figures and sums of worked lines."""
+
+    def __init__(self, forms: CalculationForms) -> None:
+        self.forms, self.digits = forms, forms.digits
+        self.values, self.slots = forms.worked.values, forms.worked.plan.slots
+
+    def lines(self, lines: tuple[WorkedLine, ...]) -> None:
+        for line in lines:
+            match line:
+                case WorkedGives():
+                    self.gives(line)
+                case WorkedPart():
+                    self.lines(line.lines)
+                case WorkedBranches():
+                    self.because(line.line, line.arm, line.open)
+                    self.lines(line.lines)
+                case WorkedEach():
+                    for row in line.rows:
+                        self.lines(row)
+                case WorkedCheck():
+                    self.check(line)
+                case WorkedRequire():
+                    for side in line.sides:
+                        if holds(side.test, side.left, side.right):
+                            self.comparison(side.test, line.open, side)
+                case _:
+                    self.made(line)
+
+    def made(self, line: WorkedLine) -> None:
+        """Add figures for the cells of a set made here."""
+        columns = getattr(getattr(line, "line", None), "columns", ())
+        for column in columns:
+            for key in self.values.rows[column.slot]:
+                node = self.values.worked.get((column.slot, key))
+                if node is not None and self.forms.id(column.slot, key) not in self.digits.figures:
+                    self.cell(column.slot, key, node)
+
+    def cell(self, slot: int, key: Key, node: Expression) -> None:
+        opened = tuple(zip(self.values.sets[slot], key, strict=True))
+        self.value(slot, key, node, opened, None)
+
+    def gives(self, line: WorkedGives) -> None:
+        arm = line.line.arms[line.arm]
+        if self.slots[line.line.slot].symbol.kind == "word":
+            return
+        self.because(line.line, line.arm, line.open)
+        self.value(line.line.slot, line.key, arm.formula, line.open, line.work)
+
+    def value(self, slot: int, key: Key, node: Expression, opened: Opened, work: Work | None) -> None:
+        """Add the figure of a value, joined with the one it copies, or with the sum that confirms it."""
+        symbol = self.slots[slot].symbol
+        unit = symbol.unit or ONE
+        number = self.values.number(slot, key) / unit.size
+        name = self.forms.id(slot, key)
+        self.digits.add(name, make_figure(number, unit.size, least=symbol.places or 0))
+        inputs = self.inputs(node, opened)
+        if not inputs:
+            return
+        copied = self.copied(node, inputs, slot, key)
+        if copied is not None:
+            self.digits.join(name, copied)
+            return
+        confirm = self.confirming(work or self.forms.worked.compiled(node), inputs, opened)
+        ids = tuple(i for _, _, i in inputs)
+        family = self.forms.family(node, unit)
+        if has_values(node) and unit.dimension != NONE and factor_to(unit, family) != 1:
+            middle = ("coherent", self.forms.mark, slot, key)
+            coherent = family.unit(unit.dimension)
+            assert coherent is not None
+            self.digits.add(middle, make_figure(self.values.number(slot, key) / coherent.size, coherent.size))
+            self.digits.need(Sum(confirm, ids, middle))
+            self.digits.need(Sum(lambda printed: printed(middle), (middle,), name))
+        else:
+            self.digits.need(Sum(confirm, ids, name))
+
+    def inputs(self, node: Node, opened: Opened) -> list[tuple[int, Key, Id]]:
+        """Return every number a formula takes in the open rows: slot, key and id."""
+        found: dict[Id, tuple[int, Key, Id]] = {}
+        self.collect(node, dict(opened), found)
+        return list(found.values())
+
+    def collect(self, node: Node, opened: dict[int, int], found: dict[Id, tuple[int, Key, Id]]) -> None:
+        if isinstance(node, Name):
+            if node.slot >= 0 and self.slots[node.slot].symbol.unit is not None:
+                key = tuple(opened[s] for s in self.values.sets[node.slot])
+                name = self.forms.id(node.slot, key)
+                if isinstance(self.values.get(node.slot, key), float):
+                    found[name] = node.slot, key, name
+            return
+        if isinstance(node, Over):
+            outer = tuple(opened[s] for s in self.values.outer[node.bound])
+            for row in range(len(self.values.names[node.bound].get(outer, ()))):
+                inner = {**opened, node.bound: row}
+                self.collect(node.body, inner, found)
+                if node.where is not None:
+                    self.collect(node.where, inner, found)
+            if node.otherwise is not None:
+                self.collect(node.otherwise, opened, found)
+            return
+        for child in children(node):
+            self.collect(child, opened, found)
+
+    def copied(self, node: Expression, inputs: list[tuple[int, Key, Id]], slot: int, key: Key) -> Id | None:
+        """Return the value a choosing formula copies: a name, or the row or argument that a max, min or pick takes."""
+        chooses = isinstance(node, Name) or (
+            isinstance(node, Over) and node.function in ("max", "min", "pick") and isinstance(node.body, Name)
+        )
+        if isinstance(node, Call) and node.function in ("max", "min"):
+            chooses = all(isinstance(argument, Name) for argument in node.arguments)
+        if not chooses:
+            return None
+        value, unit = self.values.number(slot, key), self.slots[slot].symbol.unit or ONE
+        for other, other_key, name in inputs:
+            other_unit = self.slots[other].symbol.unit or ONE
+            if self.values.number(other, other_key) == value and other_unit.scale == unit.scale:
+                return name
+        return None
+
+    def confirming(
+        self, work: Work, inputs: list[tuple[int, Key, Id]], opened: Opened
+    ) -> Callable[[Callable[[Id], float]], float | None]:
+        """Return a callable that works a formula with printed figures."""
+        shadow = self.forms.shadow
+
+        def confirm(printed: Callable[[Id], float]) -> float | None:
+            for slot, key, name in inputs:
+                if shadow.sets[slot]:
+                    shadow.rows[slot][key] = printed(name)
+                else:
+                    shadow.plain[slot] = printed(name)
+            for index, row in opened:
+                shadow.open[index] = row
+            try:
+                return work(shadow)
+            except ArithmeticError:
+                return None
+
+        return confirm
+
+    # -------------------------------------------------------- comparisons
+
+    def because(self, line: PlannedGives | PlannedBranches, chosen: int, opened: Opened) -> None:
+        for test in self.forms.because(line, chosen):
+            self.comparison(test, opened, None)
+
+    def comparison(self, test: Compare, opened: Opened, worked: Comparison | None, sign: str = "") -> None:
+        """Add the sides of a comparison that is printed with numbers, and that it must read true.
+
+        `sign` is how the sides must read where that is not the comparison's own sign.
+        """
+        sign = sign or test.op
+        unit = self.side_unit(test)
+        names: list[Id] = []
+        for side, node, work in (
+            ("left", test.left, worked.work_left if worked else None),
+            ("right", test.right, worked.work_right if worked else None),
+        ):
+            name: Id = ("side", self.forms.mark, id(test), opened, side)
+            names.append(name)
+            inputs = self.inputs(node, opened)
+            if is_size(node):
+                # |M_u| is read off M_u: its figure without the sign
+                node, sign = node.arguments[0], "="
+            if isinstance(node, Name) and inputs and (self.slots[node.slot].symbol.unit or ONE).scale == unit.scale:
+                self.digits.join(name, inputs[0][2])
+                continue
+            run = work or self.forms.worked.compiled(node)
+            for index, row in opened:
+                self.values.open[index] = row
+            try:
+                value = run(self.values)
+            except ArithmeticError:
+                return
+            self.digits.add(name, make_figure(value / unit.size, unit.size))
+            if inputs:
+                ids = tuple(i for _, _, i in inputs)
+                self.digits.need(Sum(self.confirming(run, inputs, opened), ids, name))
+        self.digits.need_order(Order(names[0], names[1], sign))
+
+    def side_unit(self, test: Compare) -> Unit:
+        """Return the unit both sides of a comparison are printed in."""
+        return side_unit(test, self.forms)
+
+    def check(self, check: WorkedCheck) -> None:
+        """Add the ratio of a check, or the sides of one that is a condition."""
+        by = check.by
+        if by is None:
+            return
+        sign = by.test.op if check.verdict == "OK" else reversed_sign(by.test)
+        self.comparison(by.test, check.open, by, sign)
+        if check.ratio is None or check.kind == "condition":
+            return
+        name: Id = ("ratio", self.forms.mark, id(check))
+        self.digits.add(name, ratio_figure(check.ratio))
+        inputs = self.inputs(by.test, check.open)
+        required = by.test.op in (">", ">=")
+
+        def ratio(values: Values) -> float:
+            demand, capacity = (by.work_right, by.work_left) if required else (by.work_left, by.work_right)
+            return max(demand(values), 0.0) / capacity(values)
+
+        if inputs:
+            self.digits.need(Sum(self.confirming(ratio, inputs, check.open), tuple(i for _, _, i in inputs), name))

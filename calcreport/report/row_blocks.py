@@ -1,0 +1,164 @@
+"""Rows as blocks: a formula stated once, a table of results, a set made on the sheet.
+
+A calculation as told in, blocks out.
+"""
+
+from __future__ import annotations
+
+from calcreport.calculate.model import (
+    PlannedGives,
+    WorkedGives,
+)
+from calcreport.core.expression import Name, Number
+from calcreport.report.digits import number_text
+from calcreport.report.model import (
+    Block,
+    Column,
+    Emphasis,
+    Formula,
+    Line,
+    Row,
+    SourceLane,
+    Statement,
+    Table,
+    TableRow,
+    Words,
+)
+from calcreport.report.notation import (
+    relation,
+)
+from calcreport.report.script import (
+    SayFormula,
+    SayMade,
+    SayTable,
+    checks_below,
+)
+from calcreport.report.told import Told
+
+
+class RowBlocks:
+    """Composes what is told once for many rows."""
+
+    def __init__(self, told: Told) -> None:
+        self.told = told
+        self.worked, self.forms, self.shared = told.worked, told.forms, told.shared
+        self.values, self.slots = told.values, told.slots
+
+    def formulas(self, item: SayFormula) -> tuple[Block, ...]:
+        """Return a formula once, for the table that follows; one statement for each arm taken."""
+        found: list[Block] = []
+        for place, gives in enumerate(item.arms):
+            line = gives.line
+            formula = line.arms[gives.arm].formula
+            symbol = self.slots[line.slot].symbol
+            shown: list[Formula] = [self.shared.symbol(line.slot), relation("="), self.shared.formula(formula)]
+            when = line.arms[gives.arm].when
+            words: Words = (symbol.says,) if place == 0 else ()
+            if when is not None:
+                words = (*words, " where " if place == 0 else "where ", self.shared.condition(when))
+            elif place:
+                words = ("otherwise",)
+            lane = self.told.source(line.cite.printed, formula, (), item.number) if place == 0 else SourceLane("")
+            number = item.number if place == 0 else 0
+            found.append(Statement(number, self.told.anchor(number) if number else "", words, Row(tuple(shown)), lane))
+        return tuple(found)
+
+    def table(self, item: SayTable) -> Block:
+        """Return the results of every row as a table, a ratio column for each check."""
+        each = item.worked
+        name = self.worked.plan.sets[each.line.rows].name
+        columns = [Column((name,)), *(self.told.column(slot) for slot in item.columns)]
+        columns += [Column((check,), "right") for check in item.checks]
+        rows = []
+        for place, row_name in enumerate(each.names):
+            opened = (*each.open, (each.line.rows, place))
+            cells: list[Words] = [(row_name,)]
+            for slot in item.columns:
+                cells.append(self.told.cell(slot, self.told.key(slot, opened)))
+            by_name = {check.line.name: check for check in checks_below(each.rows[place])}
+            failed = False
+            for check_name in item.checks:
+                check = by_name.get(check_name)
+                ratio = self.forms.ratio(check) if check else None
+                failed = failed or (check is not None and check.verdict == "NG")
+                text = number_text(ratio) if ratio else check.verdict if check else "–"
+                cells.append((f"{text} NG" if check and check.verdict == "NG" and ratio else text,))
+            emphasis: Emphasis = "loud" if failed else "governing" if place == item.governing else ""
+            rows.append(TableRow(tuple(cells), emphasis))
+        return Table(tuple(columns), tuple(rows), (), item.number, self.told.anchor(item.number))
+
+    def made(self, item: SayMade) -> tuple[Block, ...]:
+        """Return a set made here: a table of its rows, formulas shown where a cell holds one."""
+        worked, plan = item.worked, self.worked.plan
+        line = worked.line
+        simple = all(isinstance(cell, tuple | Number | Name) for e in line.entries for cell in e.cells)
+        columns = [Column((plan.sets[line.rows].name,))]
+        if simple:
+            columns += [self.made_column(column.slot, column.over) for column in line.columns]
+            rows = tuple(TableRow(((name,), *self.made_cells(item, row))) for row, name in enumerate(worked.names))
+            words: Words = (line.says,) if line.says else ()
+            return (
+                Table(
+                    tuple(columns),
+                    rows,
+                    words,
+                    item.number,
+                    self.told.anchor(item.number),
+                    SourceLane(line.cite.printed),
+                ),
+            )
+        found: list[Block] = []
+        for row, name in enumerate(worked.names):
+            for place, column in enumerate(line.columns):
+                found.append(self.made_line(item, row, name, column.slot, place, not found))
+        return tuple(found)
+
+    def made_column(self, slot: int, over: int) -> Column:
+        return self.told.column(slot) if over < 0 else Column((self.shared.symbol(slot), " (factors)"), "left")
+
+    def made_cells(self, item: SayMade, row: int) -> tuple[Words, ...]:
+        """Return the cells of a made row; a mapped cell prints as a sum: 1.2 D + 1.6 L."""
+        line = item.worked.line
+        opened = (*item.worked.open, (line.rows, row))
+        found: list[Words] = []
+        for column in line.columns:
+            if column.over < 0:
+                found.append(self.told.cell(column.slot, self.told.key(column.slot, opened)))
+                continue
+            terms: list[str] = []
+            for other, name in enumerate(self.values.names[column.over].get((), ())):
+                key = self.told.key(column.slot, (*opened, (column.over, other)))
+                if self.values.get(column.slot, key):
+                    figure = self.forms.figure(column.slot, key)
+                    terms.append(f"{number_text(figure)} {name}")
+            found.append((" + ".join(terms).replace("+ −", "− "),))
+        return tuple(found)
+
+    def made_line(self, item: SayMade, row: int, name: str, slot: int, place: int, first: bool) -> Block:
+        """Return one cell of a made row as a line with its formula."""
+        line = item.worked.line
+        opened = (*item.worked.open, (line.rows, row))
+        node = line.entries[item.worked.entries[row][0]].cells[place]
+        assert not isinstance(node, tuple)
+        gives = WorkedGives(
+            PlannedGives(slot, (), line.cite, None, False, line.span), 0, self.told.key(slot, opened), opened, _never
+        )
+        shown, substituted = self.told.steps(node, gives)
+        number = item.number if first else 0
+        symbol = self.slots[slot].symbol
+        says: Words = (f"{self.worked.plan.sets[line.rows].name} {name}: {symbol.says}",)
+        return Line(
+            number,
+            self.told.anchor(number) if number else "",
+            says,
+            self.shared.symbol(slot),
+            shown,
+            substituted,
+            self.told.coherent(gives, node),
+            self.told.value(slot, gives.key),
+            self.told.source(line.cite.printed, node, opened, item.number),
+        )
+
+
+def _never(values: object) -> float:
+    raise AssertionError

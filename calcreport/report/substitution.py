@@ -1,0 +1,139 @@
+"""Formulas with the printed figures of the open rows, in one family of units, each unit factor visible.
+
+Planned trees and figures in, `report.model` formulas out.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import dataclass
+from fractions import Fraction as F
+
+from calcreport.calculate.model import Values
+from calcreport.core.expression import Attach, Binary, Expression, Name, Number, Over, Strip
+from calcreport.core.units import Unit
+from calcreport.report.digits import Figure, number_text
+from calcreport.report.display import Slots
+from calcreport.report.families import Family, factor_to
+from calcreport.report.model import Fence, Formula, Letters, Operator, Row
+from calcreport.report.notation import (
+    ATOM,
+    PRODUCT,
+    SIGN,
+    SUM,
+    Notation,
+    Piece,
+    fenced,
+    grouped_text,
+    items_of,
+    number,
+    show_factor,
+    with_power,
+)
+
+
+@dataclass(frozen=True, slots=True)
+class Printed:
+    """What a substitution needs: values at hand, the figure of each, the words of word values."""
+
+    values: Values
+    figure: Callable[[int], Figure]
+    #: figure of the result of a whole sub-formula told elsewhere, by row
+    row_names: Callable[[int], tuple[str, ...]]
+
+
+class Substitution(Notation):
+    """Prints a formula with the printed figures of the open rows, in one family of units."""
+
+    def __init__(self, slots: Slots, printed: Printed, family: Family) -> None:
+        super().__init__(slots)
+        self.printed, self.family = printed, family
+        #: unit a value inside num(…) is wanted in; None outside
+        self.wanted: Unit | None = None
+
+    def name(self, node: Name) -> Piece:
+        """Print a value, with a factor where its unit is not of the family."""
+        symbol = self.slots[node.slot].symbol if node.slot >= 0 else None
+        if symbol is None or symbol.unit is None:
+            value = (
+                self.printed.values.get(node.slot, self.printed.values.key(node.slot)) if node.slot >= 0 else node.name
+            )
+            return Piece(Letters(str(value)), ATOM)
+        figure = self.printed.figure(node.slot)
+        shown: Piece
+        if figure.exponent:
+            shown = Piece(with_power(figure), PRODUCT, True, True)
+        else:
+            shown = Piece(number(number_text(figure)), ATOM, True, True, True)
+        if figure.mantissa < 0:
+            shown = Piece(shown.formula, SIGN)
+        return self.converted(shown, self.factor(symbol.unit))
+
+    def literal(self, node: Number) -> Piece:
+        """Print a literal as a bare number."""
+        shown = Piece(number(grouped_text(node.text)), ATOM, True, True, True)
+        return shown if node.unit is None else self.converted(shown, self.factor(node.unit))
+
+    def strip(self, node: Strip) -> Piece:
+        """Print what stands inside num(…) as numbers in its unit."""
+        before, self.wanted = self.wanted, node.unit
+        found = self.piece(node.body)
+        self.wanted = before
+        return found
+
+    def attach(self, node: Attach) -> Piece:
+        """Print what stands inside qty(…), with a factor where its unit is not of the family."""
+        return self.converted(self.piece(node.body), factor_to(node.unit, self.family))
+
+    def factor(self, unit: Unit) -> F:
+        """Return the factor a value in `unit` needs here."""
+        if self.wanted is not None and unit.dimension == self.wanted.dimension:
+            return unit.scale / self.wanted.scale
+        return factor_to(unit, self.family)
+
+    def converted(self, shown: Piece, factor: F) -> Piece:
+        """Return a number with its visible unit factor."""
+        if factor == 1:
+            return shown
+        if factor.numerator == 1:
+            inner: Formula = Row((*items_of(shown.formula), Letters("/"), number(show_factor(1 / factor))))
+        else:
+            inner = Row((*items_of(shown.formula), Operator("×", "binary"), number(show_factor(factor))))
+        return Piece(Fence("(", inner, ")"), ATOM, factored=True)
+
+    def over(self, node: Over) -> Piece:
+        """Write a sum out while it has at most six terms that are not zero; else name the row taken."""
+        values = self.printed.values
+        before = values.open[node.bound]
+        names = self.printed.row_names(node.bound)
+        terms: list[Piece] = []
+        for row in range(len(names)):
+            values.open[node.bound] = row
+            if self.is_zero(node.body):
+                continue
+            terms.append(self.piece(node.body))
+        values.open[node.bound] = before
+        if node.function != "sum" or not 0 < len(terms) <= 6 or node.where is not None:
+            return (
+                super().over(node) if terms or node.function != "sum" else Piece(Letters("0"), ATOM, True, True, True)
+            )
+        items: list[Formula] = []
+        for place, term in enumerate(terms):
+            items += [Operator("+", "binary")] if place else []
+            items.extend(items_of(fenced(term).formula if term.strength <= SIGN and place else term.formula))
+        first, last = terms[0], terms[-1]
+        if len(terms) == 1:
+            return first
+        return Piece(Row(tuple(items)), SUM, first.starts_digit, last.ends_digit)
+
+    def is_zero(self, node: Expression) -> bool:
+        """Tell whether a term of a sum vanishes: a factor of it is zero."""
+        match node:
+            case Binary("*", left, right):
+                return self.is_zero(left) or self.is_zero(right)
+            case Name(_, _, slot) if slot >= 0:
+                return self.printed.values.get(slot, self.printed.values.key(slot)) == 0
+            case Number(value):
+                return value == 0
+            case _:
+                return False

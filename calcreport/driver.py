@@ -1,6 +1,6 @@
-"""The order of the stages up to the report, and when to stop.
+"""The order of the stages that need no paper: read, plan, calculate; and when to stop.
 
-A World and a project's text in; problems, worked values and a composed report out. `publish` goes on to paper.
+A World and a project's text in; problems and worked values out. `publish` goes on to the report and to paper.
 """
 
 from __future__ import annotations
@@ -22,7 +22,6 @@ from calcreport.read.cases import read_cases
 from calcreport.read.library import Library
 from calcreport.read.model import Inputs, Template
 from calcreport.read.project import ProjectReader
-from calcreport.report.compose import Composed, compose
 
 Progress = Callable[[str, int, int], None]
 
@@ -38,7 +37,6 @@ class Result:
     problems: tuple[Problem, ...]
     #: all that could be worked, also beside problems
     worked: WorkedProject | None = None
-    composed: Composed | None = None
 
 
 @dataclass(frozen=True, slots=True)
@@ -60,15 +58,6 @@ def work(world: World, source: Source, progress: Progress = silent) -> Result:
     plans = _plans(inputs, problems)
     worked = work_project(inputs, plans, problems, lambda done, total: progress("working", done, total))
     return Result(problems.sorted(), worked)
-
-
-def report(world: World, source: Source, progress: Progress = silent) -> Result:
-    """Go on to the composed report; stops where there is a problem."""
-    result = work(world, source, progress)
-    if result.problems or result.worked is None:
-        return result
-    composed = compose(result.worked, lambda done, total: progress("composing", done, total))
-    return Result((), result.worked, composed)
 
 
 def _plans(inputs: Inputs, problems: Problems) -> dict[int, Plan]:

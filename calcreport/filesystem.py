@@ -5,22 +5,25 @@ The only module that opens files. A path that leaves its folder, through `..` or
 
 from __future__ import annotations
 
+import glob
 import os
-import tempfile
 from contextlib import suppress
 from dataclasses import dataclass
 from pathlib import Path
 
 from calcreport.core.source import Source
+from calcreport.core.world import NO_SUCH_FILE
 
 #: files larger than this are not read as text
 LARGEST_TEXT, LARGEST_BYTES = 8_000_000, 100_000_000
+#: an unfinished file this much older than a finished one (seconds) was left by a run that was killed
+_LEFT_BEHIND = 600.0
 
 
 def library_folder() -> Path:
     """Return the folder of the template library: inside the package as installed, beside it in a checkout."""
-    inside = Path(__file__).parent / "templates"
-    return inside if inside.is_dir() else Path(__file__).parent.parent / "templates"
+    within = Path(__file__).parent / "templates"
+    return within if within.is_dir() else Path(__file__).parent.parent / "templates"
 
 
 @dataclass(frozen=True, slots=True)
@@ -36,53 +39,65 @@ class Disk:
 
     def project_bytes(self, path: str) -> bytes | str:
         """Return the bytes of a file of the project folder, or why not."""
-        found = inside(self.folder, path)
-        return found if isinstance(found, str) else _read(found, LARGEST_BYTES)
+        real, why = inside(self.folder, path)
+        return why if real is None else _read(real, LARGEST_BYTES)
 
     def template_text(self, name: str) -> Source | str:
         """Return a file of the library, else of the project folder."""
         found = read_text(self.library, name)
         if isinstance(found, Source):
             return Source("templates/" + name, found.text)
-        return read_text(self.folder, name)
+        return read_text(self.folder, name) if found == NO_SUCH_FILE else found
 
     def template_names(self) -> tuple[str, ...]:
         """Return the names of the library's templates."""
         names = []
         for path in sorted(self.library.rglob("*.yaml")):
             name = path.relative_to(self.library).with_suffix("").as_posix()
-            table = path.name == "symbols.yaml" or path.name.startswith("bars-") or path.name.endswith(".cases.yaml")
-            if "/" in name and not table:
+            table = path.name in ("symbols.yaml", "project.yaml") or path.name.startswith("bars-")
+            if "/" in name and not table and not path.name.endswith(".cases.yaml"):
                 names.append(name)
         return tuple(names)
 
 
-def inside(folder: Path, path: str) -> Path | str:
-    """Return the real path of a file inside a folder, or why it may not be read."""
+def inside(folder: Path, path: str) -> tuple[Path | None, str]:
+    """Return the real path of a file inside a folder, or None and why it may not be read."""
     if not path or len(path) > 300 or "\0" in path or "\\" in path or Path(path).is_absolute():
-        return "not a path inside the folder"
-    real = Path(os.path.realpath(folder / path))
-    home = Path(os.path.realpath(folder))
-    if home != real and home not in real.parents:
-        return "it leads outside the folder"
-    if not real.is_file():
-        return "no such file"
-    return real
+        return None, "it is not a path inside the folder"
+    try:
+        real, home = Path(os.path.realpath(folder / path)), Path(os.path.realpath(folder))
+        if home != real and home not in real.parents:
+            return None, "it leads outside the folder"
+        if not real.exists():
+            return None, NO_SUCH_FILE
+        return (real, "") if real.is_file() else (None, "it is not a file")
+    except OSError as error:
+        return None, (error.strerror or "it cannot be read").lower()
 
 
 def read_text(folder: Path, path: str) -> Source | str:
     """Return a UTF-8 text file with its line ends made alike, or why it cannot be read."""
-    found = inside(folder, path)
-    if isinstance(found, str):
-        return found
-    data = _read(found, LARGEST_TEXT)
+    real, why = inside(folder, path)
+    if real is None:
+        return why
+    data = _read(real, LARGEST_TEXT)
     if isinstance(data, str):
         return data
     try:
         text = data.decode("utf-8")
     except UnicodeDecodeError as error:
-        return f"it is not UTF-8 text (byte {error.start})"
-    return Source(path, text.removeprefix("\ufeff").replace("\r\n", "\n"))
+        return f"it is not UTF-8 text: see line {data.count(10, 0, error.start) + 1}"
+    shown = folder.as_posix()
+    return Source(path, text.removeprefix("\ufeff").replace("\r\n", "\n"), "" if shown == "." else shown)
+
+
+def begins_with(path: Path, mark: bytes) -> bool:
+    """Tell whether a file can be read and begins with these bytes."""
+    try:
+        with path.open("rb") as file:
+            return file.read(len(mark)) == mark
+    except OSError:
+        return False
 
 
 def _read(path: Path, largest: int) -> bytes | str:
@@ -91,28 +106,50 @@ def _read(path: Path, largest: int) -> bytes | str:
             return f"it is larger than {largest:,} bytes"
         return path.read_bytes()
     except OSError as error:
-        return error.strerror or "it cannot be read"
+        return (error.strerror or "it cannot be read").lower()
 
 
 def replace_file(path: Path, data: bytes) -> str:
     """Write a file whole or not at all: beside it first, then moved into place. Returns '' or why not."""
+    beside = path.parent / f".{path.name[:80]}.{os.getpid()}.part"
     try:
-        handle, name = tempfile.mkstemp(prefix=f".{path.name}.", suffix=".part", dir=path.parent)
+        if path.exists() and not path.is_file():
+            return "something that is not a file stands there"
+        beside.unlink(missing_ok=True)
+        _write_beside(beside, data)
+        os.replace(beside, path)
     except OSError as error:
-        return error.strerror or "the folder cannot be written"
-    try:
-        with os.fdopen(handle, "wb") as file:
-            file.write(data)
-            file.flush()
-            os.fsync(file.fileno())
-        os.chmod(name, 0o644)
-        os.replace(name, path)
-    except OSError as error:
+        return (error.strerror or "the file cannot be written").lower()
+    finally:
         with suppress(OSError):
-            os.unlink(name)
-        return error.strerror or "the file cannot be written"
-    except BaseException:
-        with suppress(OSError):
-            os.unlink(name)
-        raise
+            beside.unlink(missing_ok=True)
+    _sweep(path)
     return ""
+
+
+def _write_beside(path: Path, data: bytes) -> None:
+    """Write a new file; where the system can, it has no name until it is whole, so a killed run leaves nothing."""
+    if hasattr(os, "O_TMPFILE"):
+        with suppress(OSError):
+            _write(os.open(path.parent, os.O_TMPFILE | os.O_WRONLY, 0o644), data, path)
+            return
+    _write(os.open(path, os.O_CREAT | os.O_EXCL | os.O_WRONLY, 0o644), data, None)
+
+
+def _write(handle: int, data: bytes, name: Path | None) -> None:
+    with os.fdopen(handle, "wb") as file:
+        file.write(data)
+        file.flush()
+        os.fsync(file.fileno())
+        if name is not None:
+            # with `src_dir_fd` this is the system call that can follow the link in /proc to the file itself
+            os.link(f"/proc/self/fd/{file.fileno()}", name, src_dir_fd=file.fileno(), follow_symlinks=True)
+
+
+def _sweep(path: Path) -> None:
+    """Remove what earlier runs that were killed left beside a file now written."""
+    with suppress(OSError):
+        written = path.stat().st_mtime
+        for left in path.parent.glob(f".{glob.escape(path.name[:80])}.*.part"):
+            if written - left.stat().st_mtime > _LEFT_BEHIND:
+                left.unlink(missing_ok=True)

@@ -1,34 +1,49 @@
-"""From a composed report to paper: pages laid out, PDF bytes written. The last stages, in their order."""
+"""From worked values to paper: the report composed, pages laid out, PDF bytes written. The last stages, in order."""
 
 from __future__ import annotations
 
 from dataclasses import dataclass
 
+from calcreport.calculate.model import WorkedProject
+from calcreport.core.problems import Problem
 from calcreport.core.source import Source
 from calcreport.core.world import World
-from calcreport.driver import Progress, Result, report, silent
+from calcreport.driver import Progress, silent, work
 from calcreport.layout.fonts import installed_fonts
 from calcreport.layout.model import Pages
 from calcreport.layout.paginate import lay_out
 from calcreport.output.pdf import write_pdf
+from calcreport.report.compose import Composed, compose
 
 
 @dataclass(frozen=True, slots=True)
 class Package:
-    """A built package; no pages and no bytes where there are problems."""
+    """How far a project came on the way to paper; every field after a problem is empty."""
 
-    result: Result
-    pages: Pages | None
-    data: bytes
+    problems: tuple[Problem, ...]
+    #: all that could be worked, also beside problems
+    worked: WorkedProject | None = None
+    composed: Composed | None = None
+    pages: Pages | None = None
+    data: bytes = b""
+
+
+def report(world: World, source: Source, progress: Progress = silent) -> Package:
+    """Go as far as the composed report."""
+    result = work(world, source, progress)
+    if result.problems or result.worked is None:
+        return Package(result.problems, result.worked)
+    composed = compose(result.worked, lambda done, total: progress("composing", done, total))
+    return Package((), result.worked, composed)
 
 
 def build(world: World, source: Source, progress: Progress = silent) -> Package:
     """Build the package of a project."""
-    result = report(world, source, progress)
-    if result.composed is None:
-        return Package(result, None, b"")
+    told = report(world, source, progress)
+    if told.composed is None:
+        return told
     progress("laying out", 0, 1)
     fonts = installed_fonts()
-    pages = lay_out(result.composed.report, fonts)
+    pages = lay_out(told.composed.report, fonts)
     progress("writing", 0, 1)
-    return Package(result, pages, write_pdf(pages, fonts.files))
+    return Package((), told.worked, told.composed, pages, write_pdf(pages, fonts.files))

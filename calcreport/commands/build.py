@@ -21,8 +21,8 @@ def run(arguments: Namespace) -> int:
     progress = ProgressLine()
     package = build(opened.world, opened.source, progress)
     progress.clear()
-    if package.result.problems:
-        return say_problems(package.result.problems, arguments.json)
+    if package.problems:
+        return say_problems(package.problems, arguments.json)
     target = Path(arguments.output) if arguments.output else opened.path.with_suffix(".pdf")
     failure = replace_file(target, package.data)
     if failure:
@@ -34,14 +34,14 @@ def run(arguments: Namespace) -> int:
 
 
 def _tell(package: Package, target: Path, as_json: bool) -> int:
-    assert package.result.worked is not None and package.result.composed is not None and package.pages is not None
-    summary = package.result.composed.summary
+    assert package.worked is not None and package.composed is not None and package.pages is not None
+    summary = package.composed.summary
     sheets = len(package.pages.pages)
     if as_json:
         print(json.dumps({"package": str(target), "sheets": sheets, "failed": [list(pair) for pair in summary.failed],
                           "not_evaluated": summary.not_evaluated}))  # fmt: skip
     else:
-        for line in summary_lines(package.result.worked, package.result.composed.forms, summary):
+        for line in summary_lines(package.worked, package.composed.forms, summary):
             print(line)
         print(f"{target}: {sheets} sheets")
     return 1 if summary.failed or summary.not_evaluated else 0

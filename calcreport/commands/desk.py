@@ -59,7 +59,7 @@ class ProgressLine:
 
     def __call__(self, stage: str, done: int, total: int) -> None:
         """Show how far a stage is; quiet for short work."""
-        if not self.watched or total < 20 and stage in ("working", "composing"):
+        if not self.watched or (total < 20 and stage in ("working", "composing")):
             return
         if total > 1 and done % max(1, total // 50) and done != total:
             return

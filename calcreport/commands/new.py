@@ -7,8 +7,8 @@ from pathlib import Path
 
 from calcreport.commands.desk import say_problems
 from calcreport.core.problems import Problems
-from calcreport.filesystem import library_folder, read_text, replace_file
 from calcreport.core.source import Source
+from calcreport.filesystem import library_folder, read_text, replace_file
 
 
 def run(arguments: Namespace) -> int:

@@ -6,7 +6,7 @@ from argparse import Namespace
 
 from calcreport.commands.desk import open_project, say_problems
 from calcreport.core.problems import Problems, nearest
-from calcreport.driver import report
+from calcreport.publish import report
 from calcreport.report.traced import trace_lines
 
 

@@ -29,12 +29,12 @@ def run(arguments: Namespace) -> int:
         return 1 if any(w.verdict != "OK" for w in result.worked.calculations) else 0
     package = build(opened.world, opened.source, progress)
     progress.clear()
-    if package.result.composed is None or package.pages is None or package.result.worked is None:
-        return say_problems(package.result.problems, True)
+    if package.composed is None or package.pages is None or package.worked is None:
+        return say_problems(package.problems, True)
     sheets: dict[str, int] = {}
     for page in package.pages.pages:
         sheets[page.part] = page.count
-    found = values_file(package.result.worked, package.result.composed.forms, package.result.composed.scripts, sheets)
+    found = values_file(package.worked, package.composed.forms, package.composed.scripts, sheets)
     print(json.dumps(found, indent=1, ensure_ascii=False))
-    summary = package.result.composed.summary
+    summary = package.composed.summary
     return 1 if summary.failed or summary.not_evaluated else 0

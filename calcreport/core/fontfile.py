@@ -18,16 +18,16 @@ class FontFile:
     """A TrueType file held in memory; glyph figures are read on first use and kept."""
 
     __slots__ = (
-        "data",
-        "tables",
-        "units_per_em",
-        "glyph_count",
-        "_long_loca",
-        "_metrics",
         "_advances",
         "_bounds",
         "_codes",
+        "_long_loca",
+        "_metrics",
         "_ranges",
+        "data",
+        "glyph_count",
+        "tables",
+        "units_per_em",
     )
 
     def __init__(self, data: bytes) -> None:

@@ -1,4 +1,4 @@
-"""Formula and condition text to trees, by precedence climbing.
+"""Formula and condition text to trees, by precedence climbing: one method a rule of the grammar, kept in one class.
 
 The grammar is that of the template guide. Bounds: 400 characters, depth 40, numbers of 18 digits.
 Text in, tree or None out; every mistake is a problem with its column. Evaluates nothing.
@@ -6,8 +6,6 @@ Text in, tree or None out; every mistake is a problem with its column. Evaluates
 
 from __future__ import annotations
 
-import re
-from dataclasses import dataclass
 from fractions import Fraction
 from typing import Literal, cast
 
@@ -30,31 +28,12 @@ from calcreport.core.expression import (
     Over,
     Strip,
 )
-from calcreport.core.problems import Problems, nearest
+from calcreport.core.problems import Problems
 from calcreport.core.source import Span
-from calcreport.core.units import SPELLINGS, Unit, make_unit, read_unit
+from calcreport.core.tokens import KEYWORDS, RELATIONS, Cursor, Stop, Token
+from calcreport.core.units import SPELLINGS, Unit, is_misspelled, make_unit, read_unit, say_unknown_unit
 
-LONGEST, DEEPEST = 400, 40
-
-_TOKEN = re.compile(
-    r"\s*(?:(?P<number>\d+(?:\.\d*)?(?:[eE][+-]?\d{1,2})?|\.\d+)"
-    r"|(?P<name>[A-Za-z][A-Za-z0-9_]*(?:\.[A-Za-z][A-Za-z0-9_]*)*)"
-    r"|(?P<sign><=|>=|!=|==|[-+*/^(),<>=%]))"
-)
-_KEYWORDS = frozenset({"and", "or", "not", "is", "given", "over", "where", "otherwise"})
-_RELATIONS = frozenset({"<", "<=", ">", ">=", "=", "!="})
-
-
-class _Stop(Exception):
-    """Leaves the parser after a problem was added."""
-
-
-@dataclass(slots=True)
-class _Token:
-    kind: Literal["number", "name", "sign", "end"]
-    text: str
-    start: int
-    end: int
+_NO_NAMES = (*FUNCTIONS, *sorted(OVER_FUNCTIONS - set(FUNCTIONS)), "num", "qty", "given")
 
 
 def read_formula(text: str, span: Span, problems: Problems, place: int = 0) -> Expression | None:
@@ -65,9 +44,9 @@ def read_formula(text: str, span: Span, problems: Problems, place: int = 0) -> E
     try:
         parser = _Parser(text, span, problems, place)
         tree = parser.sum()
-        parser.finish("a formula")
+        parser.finish("the formula")
         return tree
-    except _Stop:
+    except Stop:
         return None
 
 
@@ -76,87 +55,31 @@ def read_condition(text: str, span: Span, problems: Problems, place: int = 0) ->
     try:
         parser = _Parser(text, span, problems, place)
         tree = parser.condition()
-        parser.finish("a condition")
+        parser.finish("the condition")
         return tree
-    except _Stop:
+    except Stop:
         return None
 
 
-class _Parser:
+class _Parser(Cursor):
     def __init__(self, text: str, span: Span, problems: Problems, place: int) -> None:
-        self.text, self.span, self.problems, self.place = text, span, problems, place
-        self.depth = 0
-        if len(text) > LONGEST:
-            self.stop(0, len(text), "the formula is too long", f"{LONGEST} characters at most", f"{len(text)}")
-        if not text.strip():
-            self.stop(0, 1, "the formula is empty", "a formula", "nothing")
-        self.tokens = self.split()
-        self.at = 0
-
-    # -------------------------------------------------------- tokens
-
-    def split(self) -> list[_Token]:
-        tokens: list[_Token] = []
-        at, end = 0, len(self.text.rstrip())
-        while at < end:
-            match = _TOKEN.match(self.text, at)
-            if match is None:
-                start = at + len(self.text[at:]) - len(self.text[at:].lstrip())
-                self.stop(start, start + 1, "this character has no meaning in a formula",
-                          "numbers, symbols, + - * / ^ ( ) and comparisons", self.text[start])  # fmt: skip
-            assert match is not None and match.lastgroup is not None
-            kind = cast(Literal["number", "name", "sign"], match.lastgroup)
-            tokens.append(_Token(kind, match[kind], match.start(kind), match.end(kind)))
-            at = match.end()
-        tokens.append(_Token("end", "", len(self.text), len(self.text)))
-        return tokens
-
-    @property
-    def next(self) -> _Token:
-        return self.tokens[self.at]
-
-    def take(self) -> _Token:
-        token = self.tokens[self.at]
-        self.at += token.kind != "end"
-        return token
-
-    def accept(self, *texts: str) -> str:
-        if self.next.kind in ("sign", "name") and self.next.text in texts:
-            return self.take().text
-        return ""
-
-    def expect(self, text: str, why: str) -> None:
-        if not self.accept(text):
-            found = self.next.text or "the end"
-            self.stop(self.next.start, self.next.end, f"`{text}` is missing {why}", f"`{text}`", found)
+        super().__init__(text, span, problems)
+        self.place = place
 
     def finish(self, what: str) -> None:
         if self.next.kind == "end":
             return
-        hint = ""
-        before = self.tokens[self.at - 1]
+        before, hint = self.tokens[self.at - 1], ""
         if self.next.kind in ("number", "name") or self.next.text == "(":
             hint = "a product needs its sign: write *"
-        if self.next.text in ("<", "<=", ">", ">=", "=", "!="):
-            hint = "a comparison belongs in `when`, `holds` or `require`"
+        if self.next.text in RELATIONS:
+            hint = "a comparison belongs in `when`, `holds`, `require` or `where`"
         if self.next.text == "==":
             hint = "write ="
+        if self.next.text == ")":
+            hint = "this bracket was not opened"
         self.stop(self.next.start, self.next.end, f"{what} ends after `{before.text}`, but more follows",
-                  "an operator or the end", f"`{self.next.text}`", hint)  # fmt: skip
-
-    def stop(self, start: int, end: int, message: str, expected: str, found: str, hint: str = "") -> None:
-        self.problems.add("bad-formula", self.span.part(start, max(end, start + 1)), message,
-                          expected=expected, found=found, hint=hint)  # fmt: skip
-        raise _Stop
-
-    def since(self, start: int) -> Span:
-        return self.span.part(start, self.tokens[self.at - 1].end)
-
-    def deeper(self) -> None:
-        self.depth += 1
-        if self.depth > DEEPEST:
-            self.stop(self.next.start, self.next.end, "the formula is nested too deeply",
-                      f"{DEEPEST} levels at most", "more")  # fmt: skip
+                  "an operator, or the end", self.found(), hint)  # fmt: skip
 
     # -------------------------------------------------------- conditions
 
@@ -186,57 +109,63 @@ class _Parser:
         return self.bracketed() if self.opens_condition() else self.test()
 
     def bracketed(self) -> Condition:
-        self.expect("(", "")
+        self.take()
         body = self.condition()
         self.expect(")", "after the condition")
         return body
 
     def opens_condition(self) -> bool:
-        """Tell whether a parenthesis here holds a condition: a relation stands inside at depth one."""
+        """Tell whether a parenthesis here holds a condition: a relation stands inside, outside any `over`."""
         if self.next.text != "(":
             return False
-        depth = 0
+        depth, within = 0, 0
         for token in self.tokens[self.at :]:
             depth += (token.text == "(") - (token.text == ")")
             if depth == 0:
                 return False
-            if token.text in _RELATIONS or token.text in ("is", "and", "or", "not", "given"):
-                return not self.inside_over(token)
+            if depth < within:
+                within = 0
+            elif token.text == "over":
+                within = within or depth
+            elif not within and (token.text in RELATIONS or token.text in ("is", "and", "or", "not", "given")):
+                return True
         return False
-
-    def inside_over(self, inner: _Token) -> bool:
-        """Tell whether a token stands inside `… over S where …`."""
-        return any(t.text == "over" for t in self.tokens[self.at : self.tokens.index(inner)])
 
     def test(self) -> Condition:
         start = self.next.start
-        if self.next.text == "given" and self.tokens[self.at + 1].text == "(":
+        if self.next.text == "given" and self.after == "(":
             self.take()
             self.take()
             name = self.name()
             self.expect(")", "after given(")
             return IsGiven(name, self.since(start))
-        if self.next.kind == "name" and self.tokens[self.at + 1].text == "is":
-            name = self.name()
-            self.take()
-            word = self.take()
-            if word.kind not in ("name", "number"):
-                self.stop(word.start, word.end, "a word is missing after `is`", "a word", word.text or "the end")
-            end = word
-            while self.next.kind in ("name", "number") and self.next.text not in _KEYWORDS:
-                end = self.take()
-            return Is(name, self.text[word.start : end.end], self.since(start))
+        if self.next.kind == "name" and self.next.text not in KEYWORDS and self.after == "is":
+            return self.word_test(start)
         left = self.sum()
-        relation = self.accept(*_RELATIONS)
+        relation = self.accept(*RELATIONS)
         if not relation:
-            hint = "write =" if self.next.text == "==" else ""
+            hint = f"a yes/no value is asked with `is`: {left.name} is yes" if isinstance(left, Name) else ""
+            hint = "write =" if self.next.text == "==" else hint
             self.stop(self.next.start, self.next.end, "a comparison is missing",
-                      "one of < <= > >= = !=, or `is`", self.next.text or "the end", hint)  # fmt: skip
+                      "one of < <= > >= = !=, or `is`", self.found(), hint)  # fmt: skip
         right = self.sum()
-        if self.next.text in _RELATIONS:
+        if self.next.text in RELATIONS:
             self.stop(self.next.start, self.next.end, "two comparisons stand in one",
-                      "one comparison", self.next.text, "join two with `and`")  # fmt: skip
+                      "one comparison", self.found(), "join two with `and`")  # fmt: skip
         return Compare(cast(Literal["<"], relation), left, right, self.since(start))
+
+    def word_test(self, start: int) -> Condition:
+        name = self.name()
+        self.take()
+        word = self.take()
+        if word.kind not in ("name", "number") or word.text in KEYWORDS:
+            hint = f"write `not {name.name} is …`" if word.text == "not" else ""
+            self.stop(word.start, word.end, "a word is missing after `is`", "a word of its list",
+                      f"`{word.text}`" if word.text else "the end", hint)  # fmt: skip
+        end = word
+        while self.next.kind in ("name", "number") and self.next.text not in KEYWORDS:
+            end = self.take()
+        return Is(name, self.text[word.start : end.end], self.since(start))
 
     # -------------------------------------------------------- formulas
 
@@ -281,22 +210,23 @@ class _Parser:
         token = self.next
         if token.kind == "number":
             return self.number()
-        if token.kind == "name" and token.text not in _KEYWORDS:
-            if self.tokens[self.at + 1].text == "(":
-                return self.call()
-            return self.name()
+        if token.kind == "name" and token.text not in KEYWORDS:
+            return self.call() if self.after == "(" else self.name()
         if self.accept("("):
             body = self.sum()
             self.expect(")", "after the bracket")
             return body
+        hint = ""
+        if token.text in RELATIONS or token.text in ("is", "and", "or", "not", "given"):
+            hint = "a condition belongs in `when`, `holds`, `require` or `where`"
         self.stop(token.start, token.end, "a value is missing here", "a number, a symbol or a bracket",
-                  f"`{token.text}`" if token.text else "the end")  # fmt: skip
-        raise AssertionError
+                  self.found(), hint)  # fmt: skip
 
     def name(self) -> Name:
         token = self.take()
-        if token.kind != "name" or token.text in _KEYWORDS:
-            self.stop(token.start, token.end, "a symbol is missing here", "a symbol", token.text or "the end")
+        if token.kind != "name" or token.text in KEYWORDS:
+            self.stop(token.start, token.end, "a symbol is missing here", "a symbol",
+                      f"`{token.text}`" if token.text else "the end")  # fmt: skip
         return Name(token.text, self.span.part(token.start, token.end))
 
     def number(self) -> Number:
@@ -305,54 +235,56 @@ class _Parser:
             self.stop(token.start, token.end, "the number is too long", "18 digits at most", token.text[:30])
         unit: Unit | None = None
         follows = self.next
-        if follows.text == "%" or (follows.kind == "name" and follows.text not in _KEYWORDS):
-            unit = self.number_unit()
+        if follows.text == "%" or (follows.kind == "name" and follows.text not in KEYWORDS):
+            unit = self.number_unit(token)
         return Number(Fraction(token.text), token.text, unit, self.since(token.start))
 
-    def number_unit(self) -> Unit:
+    def number_unit(self, number: Token) -> Unit:
         token = self.take()
-        if token.text not in SPELLINGS:
+        if is_misspelled(token.text) and token.text not in SPELLINGS:
+            say_unknown_unit(token.text, self.span.part(token.start, token.end), self.problems)
+            raise Stop
+        if token.text not in SPELLINGS or self.next.text == "(":
             self.stop(token.start, token.end, "a number and a symbol stand side by side",
                       "an operator, or a listed unit", f"`{token.text}`",
-                      "a product needs its sign: write *; a compound unit needs qty(3, kip/ft)")  # fmt: skip
+                      f"a product needs its sign: write {number.text}*{token.text[:40]}")  # fmt: skip
         power = 1
-        if self.next.text == "^" and re.fullmatch(r"\d", self.tokens[self.at + 1].text):
-            self.take()
-            power = int(self.take().text)
+        if self.accept("^"):
+            digit = self.take()
+            if digit.text not in set("123456789"):
+                self.stop(digit.start, digit.end, "the power may be meant of the unit or of the value",
+                          "a unit with a whole power, such as 2 in^2", f"`{digit.text}`",
+                          f"write qty({number.text}, {token.text}^…), or ({number.text} {token.text})^…")  # fmt: skip
+            power = int(digit.text)
         return make_unit(((token.text, power),))
 
     def call(self) -> Expression:
         token = self.take()
-        self.expect("(", "after the function")
+        self.take()
         self.deeper()
-        if token.text in ("num", "qty"):
-            result = self.unit_call(token)
-        else:
-            result = self.function_call(token)
+        result = self.unit_call(token) if token.text in ("num", "qty") else self.function_call(token)
         self.depth -= 1
         return result
 
-    def unit_call(self, token: _Token) -> Expression:
+    def unit_call(self, token: Token) -> Expression:
         body = self.sum()
         self.expect(",", f"between value and unit of {token.text}(…)")
         start = self.next.start
-        depth = 0
-        while self.next.kind != "end" and not (depth == 0 and self.next.text == ")"):
-            depth += (self.next.text == "(") - (self.next.text == ")")
+        while self.next.kind != "end" and self.next.text != ")":
             self.take()
         end = self.next.start
         self.expect(")", f"after the unit of {token.text}(…)")
         unit = read_unit(self.text[start:end], self.span.part(start, end), self.problems)
         if unit is None:
-            raise _Stop
+            raise Stop
         span = self.since(token.start)
         return Strip(body, unit, span) if token.text == "num" else Attach(body, unit, span)
 
-    def function_call(self, token: _Token) -> Expression:
+    def function_call(self, token: Token) -> Expression:
         if token.text not in FUNCTIONS and token.text not in OVER_FUNCTIONS:
-            known = [*FUNCTIONS, *OVER_FUNCTIONS, "num", "qty", "given"]
-            self.stop(token.start, token.end, f"`{token.text}` is not a function", "a listed function",
-                      token.text, nearest(token.text, known))  # fmt: skip
+            hint = self.problems.near(token.text, _NO_NAMES) or "a product needs its sign: write * before the bracket"
+            self.stop(token.start, token.end, f"`{token.text}` is not a function",
+                      "one of " + ", ".join(_NO_NAMES), f"`{token.text}(`", hint)  # fmt: skip
         arguments = [self.sum()]
         if self.next.text == "over":
             return self.over(token, arguments[0])
@@ -364,17 +296,19 @@ class _Parser:
             self.stop(token.start, token.end, f"`{token.text}` needs a set", f"{token.text}(… over SET)", "no `over`")
         fewest, most = FUNCTIONS[token.text]
         if not fewest <= len(arguments) <= most:
-            self.stop(token.start, span.end - self.span.start, f"`{token.text}` takes other arguments",
-                      f"{fewest} to {most}" if most > fewest else f"{fewest}", f"{len(arguments)}")  # fmt: skip
+            wanted = f"{fewest} to {most} values" if most > fewest else f"{fewest} value{'s' if fewest > 1 else ''}"
+            hint = f"over the rows of a set, write {token.text}(… over SET)" if token.text in OVER_FUNCTIONS else ""
+            self.stop(token.start, token.start + span.end - span.start, f"`{token.text}` takes {wanted}",
+                      wanted, f"{len(arguments)}", hint)  # fmt: skip
         if token.text == "by_units":
             return arguments[min(self.place, 1)]
         return Call(token.text, tuple(arguments), span)
 
-    def over(self, token: _Token, body: Expression) -> Expression:
+    def over(self, token: Token, body: Expression) -> Expression:
         self.take()
         if token.text not in OVER_FUNCTIONS:
             self.stop(token.start, token.end, f"`{token.text}` does not work over a set",
-                      "one of " + " ".join(sorted(OVER_FUNCTIONS)), token.text)  # fmt: skip
+                      "one of " + ", ".join(sorted(OVER_FUNCTIONS)), f"`{token.text}`")  # fmt: skip
         rows = self.name()
         where = self.condition() if self.accept("where") else None
         otherwise = self.sum() if self.accept("otherwise") else None

@@ -9,8 +9,14 @@ from __future__ import annotations
 from collections.abc import Iterable
 from dataclasses import dataclass
 from difflib import get_close_matches
+from itertools import islice
 
-from calcreport.core.source import Span
+from calcreport.core.source import Source, Span
+
+#: problems kept of one run, and those among them that may ask for near spellings: bounds against files made to exhaust
+MOST_KEPT, MOST_HINTED = 500, 60
+#: names a near spelling is looked for among
+MOST_NAMES = 1000
 
 
 @dataclass(frozen=True, slots=True)
@@ -30,11 +36,12 @@ class Problem:
 
 
 class Problems:
-    """Collects problems; the same slug at the same place is kept once."""
+    """Collects problems; the same slug at the same place is kept once, and no more than `MOST_KEPT`."""
 
     def __init__(self) -> None:
         self._kept: list[Problem] = []
         self._seen: set[tuple[str, str, int]] = set()
+        self._sources: set[Source] = set()
 
     def add(
         self,
@@ -48,8 +55,10 @@ class Problems:
         related: tuple[tuple[Span, str], ...] = (),
     ) -> None:
         """Keep a problem unless one of its slug already stands at its place."""
-        key = (slug, span.source.name, span.start) if span else (slug, message, 0)
-        if key not in self._seen:
+        if span is not None:
+            self._sources.add(span.source)
+        key = (slug, span.source.shown, span.start) if span else (slug, message, 0)
+        if key not in self._seen and len(self._kept) < MOST_KEPT:
             self._seen.add(key)
             self._kept.append(Problem(slug, span, message, expected, found, hint, related))
 
@@ -59,17 +68,33 @@ class Problems:
     def __len__(self) -> int:
         return len(self._kept)
 
+    def stand_in(self, sources: Iterable[Source]) -> bool:
+        """Tell whether a problem was added in one of these files."""
+        return not self._sources.isdisjoint(sources)
+
+    def near(self, name: str, names: Iterable[str]) -> str:
+        """Return `nearest`, or '' once many problems are kept: looking for spellings takes its time."""
+        return nearest(name, names) if len(self._kept) < MOST_HINTED else ""
+
     def sorted(self) -> tuple[Problem, ...]:
-        """Return the problems by file and place."""
+        """Return the problems by file and place, those without a place first."""
         return tuple(
-            sorted(self._kept, key=lambda p: (p.span.source.name, p.span.start) if p.span else ("", 0))
+            sorted(self._kept, key=lambda p: (p.span.source.shown, p.span.start, p.span.end) if p.span else ("", 0, 0))
         )
 
 
 def nearest(name: str, names: Iterable[str]) -> str:
     """Return a hint naming the spellings nearest to `name`, or ''."""
-    close = get_close_matches(name, list(names), n=3, cutoff=0.6)
+    close = get_close_matches(name[:60], list(islice(names, MOST_NAMES)), n=3, cutoff=0.6)
     return "did you mean " + " or ".join(close) + "?" if close else ""
+
+
+def listed(words: Iterable[str], most: int = 24) -> str:
+    """Return words as `one of a, b, c`, cut short where there are many."""
+    kept = list(islice(words, most + 1))
+    if not kept:
+        return "nothing"
+    return ("one of " if len(kept) > 1 else "") + ", ".join(kept[:most]) + (", …" if len(kept) > most else "")
 
 
 def render(problem: Problem) -> str:
@@ -81,7 +106,7 @@ def render(problem: Problem) -> str:
     else:
         span = problem.span
         line, column = span.source.place(span.start)
-        rows.append(f"{span.source.name}:{line}:{column}: {head}")
+        rows.append(f"{span.source.shown}:{line}:{column}: {head}")
         text, shift = _window(span.source.line_text(line), column)
         rows.append(f"{line:>5} | {text}")
         length = max(1, min(span.end - span.start, len(text) - (column - 1 - shift)))
@@ -99,7 +124,7 @@ def to_json(problem: Problem) -> dict[str, object]:
     place: dict[str, object] = {}
     if problem.span is not None:
         line, column = problem.span.source.place(problem.span.start)
-        place = {"file": problem.span.source.name, "line": line, "column": column}
+        place = {"file": problem.span.source.shown, "line": line, "column": column}
     return {
         "slug": problem.slug,
         **place,

@@ -12,13 +12,20 @@ from dataclasses import dataclass, field
 
 @dataclass(frozen=True, eq=False)
 class Source:
-    """A text with the name it is shown under; two sources are the same only if they are one object."""
+    """A text with the name it is known by; two sources are the same only if they are one object."""
 
-    #: path as the user would type it
+    #: path inside its own folder: what a sheet prints, the same wherever the folder lies
     name: str
     text: str
+    #: folder as the user typed it, '' for the working folder and for the template library
+    folder: str = ""
     #: offsets at which lines begin; filled when a place is first asked for
     _starts: list[int] = field(default_factory=list, repr=False)
+
+    @property
+    def shown(self) -> str:
+        """The path as the user would type it, for problems."""
+        return f"{self.folder}/{self.name}" if self.folder else self.name
 
     def place(self, offset: int) -> tuple[int, int]:
         """Return line and column, both counted from 1, of a character offset."""
@@ -27,9 +34,9 @@ class Source:
         return line, offset - starts[line - 1] + 1
 
     def line_start(self, line: int) -> int:
-        """Return the offset at which a line counted from 1 begins; the last line's beyond the end."""
+        """Return the offset at which a line counted from 1 begins; the end of the text beyond the last."""
         starts = self._line_starts()
-        return starts[min(line, len(starts)) - 1]
+        return starts[line - 1] if line <= len(starts) else len(self.text)
 
     def _line_starts(self) -> list[int]:
         if not self._starts:
@@ -39,8 +46,11 @@ class Source:
 
     def line_text(self, line: int) -> str:
         """Return the text of a line counted from 1, without its end."""
-        lines = self.text.split("\n")
-        return lines[line - 1] if 0 < line <= len(lines) else ""
+        starts = self._line_starts()
+        if not 0 < line <= len(starts):
+            return ""
+        end = starts[line] - 1 if line < len(starts) else len(self.text)
+        return self.text[starts[line - 1] : end]
 
 
 @dataclass(frozen=True, slots=True)
@@ -50,12 +60,14 @@ class Span:
     source: Source
     start: int
     end: int
+    #: the text read differs from the text in the file (folded lines, doubled quotes): no part of it has a place
+    whole: bool = False
 
     @property
     def place(self) -> str:
         """The place as 'file:line:column'."""
         line, column = self.source.place(self.start)
-        return f"{self.source.name}:{line}:{column}"
+        return f"{self.source.shown}:{line}:{column}"
 
     @property
     def text(self) -> str:
@@ -64,6 +76,8 @@ class Span:
 
     def part(self, start: int, end: int) -> Span:
         """Return the stretch from `start` to `end`, counted from this span's own start."""
+        if self.whole:
+            return self
         return Span(self.source, self.start + start, self.start + end)
 
 

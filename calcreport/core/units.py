@@ -12,7 +12,7 @@ from fractions import Fraction as F
 from functools import lru_cache
 from typing import TypeAlias
 
-from calcreport.core.problems import Problems, nearest
+from calcreport.core.problems import Problems
 from calcreport.core.source import Span
 
 #: exponents of length, force and time
@@ -82,10 +82,12 @@ SPELLINGS = frozenset(_TABLE)
 _MEANT = {
     "inch": "in", "inches": "in", '"': "in", "foot": "ft", "feet": "ft", "'": "ft", "pound": "lb", "lbs": "lb",
     "k": "kip", "K": "kip", "kn": "kN", "KN": "kN", "Kn": "kN", "n": "N", "Mpa": "MPa", "mpa": "MPa", "MPA": "MPa",
-    "KPa": "kPa", "kpa": "kPa", "Nm": "N*m", "kNm": "kN*m", "kft": "kip*ft", "kipft": "kip*ft", "ftk": "kip*ft",
-    "PSI": "psi", "KSI": "ksi", "PSF": "psf", "PLF": "plf", "PCF": "pcf", "IN": "in", "FT": "ft", "MM": "mm",
-    "deg": "rad",
+    "KPa": "kPa", "kpa": "kPa", "Gpa": "GPa", "Nm": "N*m", "kNm": "kN*m", "kft": "kip*ft", "kipft": "kip*ft",
+    "ftk": "kip*ft", "PSI": "psi", "KSI": "ksi", "PSF": "psf", "PLF": "plf", "PCF": "pcf", "IN": "in", "FT": "ft",
+    "MM": "mm", "sf": "ft^2", "sqft": "ft^2", "sqin": "in^2", "cf": "ft^3", "cy": "yd^3",
+    "meter": "m", "metre": "m", "sec": "s", "hr": "h",
 }  # fmt: skip
+_ANGLES = frozenset({"deg", "degree", "degrees", "°"})
 
 _DIMENSION_NAMES: dict[Dimension, str] = {
     NONE: "a pure number",
@@ -147,7 +149,11 @@ def make_unit(factors: tuple[tuple[str, int], ...]) -> Unit:
 
 ONE = make_unit(())
 
-_UNIT = re.compile(r"\s*([*/])?\s*([A-Za-z%'\"]+|1)\s*(?:\^\s*(-?\d{1,2}))?")
+_UNIT = re.compile(r"\s*([*/])?\s*([A-Za-z%'\"°]+|1)\s*(?:\^\s*(-?[0-9]{1,2}))?")
+_LOOSE = re.compile(r"[A-Za-z]+(?:[- .·⋅]+[A-Za-z]+)+")
+_POWERED = re.compile(r"([A-Za-z]+)([2-4²³⁴])")
+_RAISED = str.maketrans("²³⁴", "234")
+LARGEST_POWER, MOST_FACTORS = 12, 8
 
 
 def read_unit(text: str, span: Span, problems: Problems) -> Unit | None:
@@ -155,24 +161,20 @@ def read_unit(text: str, span: Span, problems: Problems) -> Unit | None:
     factors: list[tuple[str, int]] = []
     at = 0
     stripped = text.rstrip()
-    while at < len(stripped):
+    while at < len(stripped) or not at:
         match = _UNIT.match(stripped, at)
-        bad = match is None or (match[1] is None) != (at == 0) or len(factors) > 8
-        if match is None or bad:
-            problems.add(
-                "unknown-unit",
-                span.part(at, len(text)),
-                f"`{text.strip()[:60]}` is not a unit",
-                expected="listed units joined by * and /, such as kip*ft or lb/ft^3",
-                found=stripped[at : at + 60] or "nothing",
-            )
+        if match is None or (match[1] is None) != (at == 0) or len(factors) >= MOST_FACTORS:
+            _say_no_unit(stripped, at, span, problems)
             return None
         name, power = match[2], int(match[3] or 1)
         if name not in _TABLE:
             say_unknown_unit(name, span.part(match.start(2), match.end(2)), problems)
             return None
-        if abs(power) > 12:
-            problems.add("unknown-unit", span, f"the exponent {power} is out of bounds", expected="12 at most")
+        if not 0 < abs(power) <= LARGEST_POWER:
+            problems.add(
+                "unknown-unit", span.part(match.start(2), match.end()), f"the exponent {power} is out of bounds",
+                expected=f"a whole number up to {LARGEST_POWER}", found=str(power),
+            )  # fmt: skip
             return None
         if name != "1":
             factors.append((name, -power if match[1] == "/" else power))
@@ -180,17 +182,35 @@ def read_unit(text: str, span: Span, problems: Problems) -> Unit | None:
     return make_unit(tuple(factors))
 
 
+def _say_no_unit(text: str, at: int, span: Span, problems: Problems) -> None:
+    """Add `unknown-unit` for text that is no product of spellings, with the form meant where it is plain."""
+    shown, hint = text.strip()[:60], ""
+    if _LOOSE.fullmatch(shown):
+        hint = "write " + "*".join(_MEANT.get(word, word) for word in re.findall("[A-Za-z]+", shown))
+    elif powered := _POWERED.fullmatch(shown):
+        hint = f"write {powered[1]}^{powered[2].translate(_RAISED)}"
+    problems.add(
+        "unknown-unit", span.part(at, max(len(text), 1)), f"`{shown}` is not a unit" if shown else "the unit is missing",
+        expected="listed units joined by * and /, such as kip*ft or lb/ft^3", found=text[at : at + 60] or "nothing",
+        hint=hint,
+    )  # fmt: skip
+
+
 def say_unknown_unit(name: str, span: Span, problems: Problems) -> None:
     """Add `unknown-unit` for one spelling, with the listed spelling meant where it is plain."""
     meant = _MEANT.get(name)
+    hint = f"write {meant}" if meant else problems.near(name, sorted(SPELLINGS))
+    if name in _ANGLES:
+        hint = "angles are read in rad: one degree is 0.0174533 rad"
     problems.add(
-        "unknown-unit",
-        span,
-        f"`{name[:40]}` is not a listed unit",
-        expected="one of the listed spellings (case matters)",
-        found=name[:40],
-        hint=f"write {meant}" if meant else nearest(name, SPELLINGS),
-    )
+        "unknown-unit", span, f"`{name[:40]}` is not a listed unit",
+        expected="one of the listed spellings (case matters)", found=name[:40], hint=hint,
+    )  # fmt: skip
+
+
+def is_misspelled(name: str) -> bool:
+    """Tell whether a word is a known misspelling of a listed unit, such as `kn`."""
+    return name in _MEANT or name in _ANGLES
 
 
 # ---------------------------------------------------------------- algebra
@@ -221,3 +241,9 @@ def name_dimension(dimension: Dimension) -> str:
         if power:
             pieces.append(name if power == 1 else f"{name}^{power}" if power.denominator == 1 else f"{name}^({power})")
     return "*".join(pieces)
+
+
+def dimension_words(dimension: Dimension) -> str:
+    """Return a dimension with its article: 'a force', 'an area', 'a pure number'."""
+    name = name_dimension(dimension)
+    return name if name.startswith("a ") else f"{'an' if name[0] in 'aeiou' else 'a'} {name}"

@@ -6,6 +6,9 @@ from typing import Protocol
 
 from calcreport.core.source import Source
 
+#: why a file cannot be read, where nothing stands under its name
+NO_SUCH_FILE = "no such file"
+
 
 class World(Protocol):
     """Reads files of the project folder and of the template library."""
@@ -17,7 +20,10 @@ class World(Protocol):
         """Return the bytes of a file inside the project folder, or why it cannot be read."""
 
     def template_text(self, name: str) -> Source | str:
-        """Return a template or table such as 'aci318/beam-flexure.yaml': library first, then project."""
+        """Return a template or table such as 'aci318/beam-flexure.yaml': library first, then project.
+
+        Where neither holds it the words are `NO_SUCH_FILE`.
+        """
 
     def template_names(self) -> tuple[str, ...]:
         """Return the names of all templates of the library, sorted."""

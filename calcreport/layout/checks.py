@@ -25,7 +25,7 @@ TAB, VERDICT = 112.0, 36.0
 def set_check(kit: Kit, check: CheckLine, lane: Lane) -> Piece:
     """Set one check, in one row where it fits."""
     loud = check.verdict == "NG"
-    rows = Rows(6.0 if loud else 3.0)
+    rows = Rows(5.5 if loud else 2.4)
     name = _name(kit, check.name)
     end = _verdict(kit, check, lane)
     tail = lane.right - min((x for x, _ in end), default=lane.right)
@@ -43,10 +43,8 @@ def set_check(kit: Kit, check: CheckLine, lane: Lane) -> Piece:
 def _closed(kit: Kit, rows: Rows, check: CheckLine, baseline: float, lane: Lane) -> Piece:
     """Rule the check off and add its marks."""
     loud = check.verdict == "NG"
-    rows.y += 6.0 if loud else 2.5
-    piece = kit.marks.numbered(
-        rows, baseline, check.number, check.anchor, check.source, check.delta, lane
-    )
+    rows.y += 5.5 if loud else 1.6
+    piece = kit.marks.numbered(rows, baseline, check.number, check.anchor, check.source, check.delta, lane)
     if loud:
         items = (*loud_bar(kit.sheet, piece.height), *piece.items)
         return replace(piece, items=items, ruled=True)
@@ -88,9 +86,7 @@ def boxed(label: Box, weight: float = 1.2) -> Box:
     return Box(right, -top + weight / 2, foot + weight / 2, items)
 
 
-def _one_row(
-    kit: Kit, rows: Rows, check: CheckLine, name: Box, end: list[tuple[float, Box]], lane: Lane
-) -> float:
+def _one_row(kit: Kit, rows: Rows, check: CheckLine, name: Box, end: list[tuple[float, Box]], lane: Lane) -> float:
     """Set the check in one row if it fits; return its baseline, or -1."""
     x = lane.left + max(TAB, name.width + 8.0)
     chain: list[tuple[float, Box]] = [(lane.left, name)]
@@ -105,7 +101,7 @@ def _one_row(
         x += 2 * EQUALS_GAP + sign.width + second.width
     if x + RESULT_GAP > lane.right:
         return -1.0
-    return rows.row((*chain, *end), ROW)
+    return rows.row((*chain, *end), ROW, 1.2)
 
 
 def _more_rows(
@@ -135,7 +131,7 @@ def _more_rows(
             x += part.box.width + EQUALS_GAP
         if place == len(shared) - 1:
             placed.extend(end)
-        rows.row(placed, ROW)
+        rows.row(placed, ROW, 1.2)
 
 
 def _sign(kit: Kit, formula: Formula) -> Box:

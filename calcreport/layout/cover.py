@@ -29,7 +29,12 @@ _BIG = tuple(TextStyle("semibold", size, 1.2 * size) for size in (13.0, 11.0, 9.
 _TEXT = TextStyle("regular", 10, 13.5)
 _MARKS = TextStyle("semibold", 9.5, 12.5)
 _PLACES = TextStyle("regular", 9.5, 12.5)
-_CAUTION = (TextStyle("regular", 9.5, 12.8), TextStyle("regular", 8.5, 11), TextStyle("regular", 8, 10.2), TextStyle("regular", 7, 8.8))
+_CAUTION = (
+    TextStyle("regular", 9.5, 12.8),
+    TextStyle("regular", 8.5, 11),
+    TextStyle("regular", 8, 10.2),
+    TextStyle("regular", 7, 8.8),
+)
 _SMALL = (TextStyle("regular", 8.5, 10.5), TextStyle("regular", 7.5, 9), TextStyle("regular", 6.5, 8))
 
 
@@ -156,9 +161,7 @@ def _lists(cells: _Cells, facts: CoverFacts, room: float) -> tuple[Piece, ...]:
     return tuple(rest)
 
 
-def _entries(
-    lettering: Lettering, entries: tuple[tuple[str, str], ...], left: float, right: float
-) -> list[Piece]:
+def _entries(lettering: Lettering, entries: tuple[tuple[str, str], ...], left: float, right: float) -> list[Piece]:
     """Set marks and the words about them at one tab; marks too wide for it stand above their words."""
     most = 0.5 * (right - left)
     widths = [lettering.natural((marks,), _MARKS) + 12.0 for marks, _ in entries]

@@ -15,6 +15,8 @@ from calcreport.layout.sheet import HAIRLINE, OUTLINE
 
 Point = tuple[float, float]
 
+#: Least distance of a label from whatever it keeps clear of.
+CLEAR = 1.3
 #: Long dash, gap, short dash, gap: centre lines and neutral axes.
 CHAIN = (5.0, 1.6, 1.0, 1.6)
 
@@ -30,12 +32,7 @@ class Area:
 
     def meets(self, other: Area) -> bool:
         """Tell whether two areas overlap."""
-        return (
-            self.left < other.right
-            and other.left < self.right
-            and self.top < other.foot
-            and other.top < self.foot
-        )
+        return self.left < other.right and other.left < self.right and self.top < other.foot and other.top < self.foot
 
 
 class Drawing:
@@ -104,7 +101,8 @@ class Drawing:
         return self._put(box, area)
 
     def _free(self, area: Area) -> bool:
-        return not any(area.meets(taken) for taken in self._areas)
+        wide = Area(area.left - CLEAR, area.top - CLEAR, area.right + CLEAR, area.foot + CLEAR)
+        return not any(wide.meets(taken) for taken in self._areas)
 
     def _put(self, box: Box, area: Area) -> Area:
         self._areas.append(area)

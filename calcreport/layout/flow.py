@@ -1,83 +1,55 @@
-"""Blocks of one part -> bodies of its sheets: what stands on which sheet, and where.
+"""Blocks of one part -> bodies of its sheets, in the pass that serves the reader and the paper best.
 
-Takes pieces in order, keeps headings with what follows, sets a figure at the right of the lane with
-the following lines left of it, and never parts a piece. A figure that finds no room waits for the next
-sheet while its lines go on; if they end before that, it is taken to the head of its sheet instead.
-Knows no sheet numbers and no title blocks.
+Takes the passes of `filling`: an open one first; where its last sheet is nearly empty, closer ones; and
+where a figure was left without lines, one with that figure taken to the head of its sheet. Knows no sheet
+numbers and no title blocks.
 """
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-from typing import TypeAlias
-
-from calcreport.layout.blocks import narrowed, set_block, stands_alone
-from calcreport.layout.figures import draw
+from calcreport.layout.filling import Body, Filling, Manner, Measured
 from calcreport.layout.kit import Kit
-from calcreport.layout.model import Box, Item, Placed
-from calcreport.layout.pieces import Piece, Rows, parted
-from calcreport.layout.sheet import Lane
-from calcreport.layout.words import QUIET
-from calcreport.report.model import Block, FigureBlock
+from calcreport.layout.pieces import Piece
+from calcreport.report.model import Block
 
-#: Width a figure beside lines is drawn in; one that its labels make wider than this share of the lane is
-#: set alone.
-WIDEST, BESIDE = 206.0, 0.62
-#: Lines do not begin beside the last points of a figure.
-SLACK = 14.0
+#: Width a figure beside lines is drawn in.
+WIDEST = 206.0
 #: A last sheet filled less than this is worth closing the gaps for.
-SPARSE = 0.16
-
-
-@dataclass(frozen=True, slots=True)
-class Manner:
-    """How closely a part is set."""
-
-    #: share of the gaps between pieces
-    gaps: float
-    #: width figures beside lines are drawn in
-    figure: float
-
+SPARSE = 0.36
 
 OPEN = Manner(1.0, WIDEST)
 #: Manners tried, in order, to bring a sparse last sheet back.
-CLOSER = (Manner(0.75, WIDEST), Manner(0.75, 186.0), Manner(0.75, 168.0), Manner(0.5, 168.0))
-
-
-@dataclass(frozen=True, slots=True)
-class Body:
-    """The items of one sheet's body, and the y they end at."""
-
-    items: tuple[Item, ...]
-    foot: float
-
-
-@dataclass(slots=True)
-class _Held:
-    """A piece waiting for the one it must stay with, and where it came from."""
-
-    piece: Piece
-    block: int
-    place: int
-    lane: Lane
-
-
-#: Pieces by block and lane, and figures by block, measured in earlier passes over the same part.
-_Measured: TypeAlias = tuple[dict[tuple[int, float], tuple[Piece, ...]], dict[tuple[int, float], Box]]
+CLOSER = (Manner(0.75, WIDEST), *(Manner(gaps, 168.0) for gaps in (0.75, 0.6, 0.5, 0.42, 0.36)))
 
 
 def flow(kit: Kit, blocks: tuple[Block, ...], top: float) -> tuple[Body, ...]:
     """Share the blocks out over sheets whose bodies begin at `top`; one sheet at least."""
-    measured: _Measured = ({}, {})
+    measured: Measured = ({}, {})
     order = tuple(range(len(blocks)))
     bodies = _run(kit, blocks, order, top, measured, OPEN)
     room = kit.sheet.body_foot - top
     if len(bodies) > 1 and bodies[-1].foot - top < SPARSE * room:
+        filled, gaps = _extent(measured)
         for manner in CLOSER:
-            closer = _run(kit, blocks, order, top, measured, manner)
-            if len(closer) < len(bodies):
-                return closer
+            if filled + manner.gaps * gaps <= (len(bodies) - 1) * room:
+                closer = _run(kit, blocks, order, top, measured, manner)
+                if len(closer) < len(bodies):
+                    return closer
     return bodies
+
+
+def _extent(measured: Measured) -> tuple[float, float]:
+    """Return the height of all pieces and of the gaps between them; lines beside figures count as half."""
+    by_block: dict[int, list[tuple[Piece, ...]]] = {}
+    for (block, _), pieces in measured[0].items():
+        by_block.setdefault(block, []).append(pieces)
+    widest = max((right for _, right in measured[0]), default=0.0)
+    filled = gaps = 0.0
+    for block, settings in by_block.items():
+        share = 1.0 if (block, widest) in measured[0] else 0.5
+        filled += share * min(sum(piece.height for piece in pieces) for pieces in settings)
+        gaps += sum(piece.before for piece in settings[0])
+    return filled, gaps
 
 
 def _run(
@@ -85,213 +57,17 @@ def _run(
     blocks: tuple[Block, ...],
     order: tuple[int, ...],
     top: float,
-    measured: _Measured,
+    measured: Measured,
     manner: Manner,
 ) -> tuple[Body, ...]:
     """Flow the blocks once, and once more with a figure moved up if it was left without lines."""
-    once = _Flow(kit, blocks, top, measured, manner)
+    once = Filling(kit, blocks, top, measured, manner)
     once.run(order)
     if once.stranded is None:
         return once.bodies()
     figure, before = once.stranded
     moved = tuple(block for block in order if block != figure)
     at = moved.index(before) if before in moved else len(moved)
-    twice = _Flow(kit, blocks, top, measured, manner)
+    twice = Filling(kit, blocks, top, measured, manner)
     twice.run((*moved[:at], figure, *moved[at:]))
     return twice.bodies()
-
-
-class _Flow:
-    """One pass over the blocks of a part."""
-
-    def __init__(
-        self,
-        kit: Kit,
-        blocks: tuple[Block, ...],
-        top: float,
-        measured: _Measured,
-        manner: Manner,
-    ) -> None:
-        self.kit, self.blocks, self.top = kit, blocks, top
-        self.gaps, self.width = manner.gaps, manner.figure
-        self.measured, self.drawn = measured
-        self.full = kit.sheet.text
-        self.sheets: list[list[Item]] = [[]]
-        self.feet: list[float] = [top]
-        self.y = top
-        self.first_block = 0
-        self.held: list[_Held] = []
-        self.last: tuple[float, Piece] | None = None
-        self.beside: tuple[float, Lane] | None = None
-        self.waiting: int | None = None
-        #: a figure that waited until the lines ended, and the first block of the sheet it waited on
-        self.stranded: tuple[int, int] | None = None
-
-    def run(self, order: tuple[int, ...]) -> None:
-        """Place every block."""
-        for place, block in enumerate(order):
-            record = self.blocks[block]
-            follower = self.blocks[order[place + 1]] if place + 1 < len(order) else None
-            if isinstance(record, FigureBlock) and record.beside and _lines_follow(follower):
-                if self._figure(block):
-                    continue
-            self._block(block)
-        if self.held:
-            self._settle()
-        if self.waiting is not None:
-            self.stranded = (self.waiting, self.first_block)
-            figure, self.waiting = self.waiting, None
-            self._break()
-            self._block(figure)
-            self._settle()
-        self._clear()
-        self.feet[-1] = self.y
-
-    def bodies(self) -> tuple[Body, ...]:
-        """Return what has been placed, a body a sheet."""
-        return tuple(Body(tuple(items), foot) for items, foot in zip(self.sheets, self.feet, strict=True))
-
-    def _lane(self, block: Block) -> Lane:
-        """Return the lane for a block that begins here; step below the figure if it cannot be beside."""
-        if self.beside is None:
-            return self.full
-        foot, lane = self.beside
-        y = self.y + sum(held.piece.height + held.piece.before for held in self.held)
-        if stands_alone(block) or y > foot - SLACK:
-            if not self.held:
-                self._clear()
-            return self.full
-        return lane
-
-    def _clear(self) -> None:
-        """Go on below the figure at the right."""
-        if self.beside is not None:
-            self.y = max(self.y, self.beside[0])
-            self.beside = None
-
-    def _pieces(self, block: int, lane: Lane) -> tuple[Piece, ...]:
-        key = (block, lane.right)
-        pieces = self.measured.get(key)
-        if pieces is None:
-            pieces = self.measured[key] = set_block(self.kit, self.blocks[block], lane)
-        return pieces
-
-    def _block(self, block: int) -> None:
-        lane = self._lane(self.blocks[block])
-        pieces = self._pieces(block, lane)
-        for place in range(len(pieces)):
-            self.held.append(_Held(pieces[place], block, place, lane))
-            if not pieces[place].keep:
-                sheet = len(self.sheets)
-                self._settle()
-                if len(self.sheets) > sheet and lane is not self._lane(self.blocks[block]):
-                    other = self._pieces(block, self._lane(self.blocks[block]))
-                    if len(other) == len(pieces):
-                        pieces, lane = other, self._lane(self.blocks[block])
-
-    def _settle(self) -> None:
-        """Place the pieces held, all on one sheet."""
-        held, self.held = self.held, []
-        if self.beside is not None and any(one.lane is self.full for one in held):
-            self._clear()
-        if not self._fits(held) and (self.sheets[-1] or self.beside):
-            self._break()
-            self.first_block = held[0].block
-            held = [self._again(one) for one in held]
-            self._set_again(held[0].piece)
-        if self._fits(held):
-            for one in held:
-                self._put(one.piece)
-            return
-        for one in held:
-            self._put_monster(one.piece)
-
-    def _again(self, held: _Held) -> _Held:
-        """Set a held piece anew where its lane is not the one of the sheet it now stands on."""
-        lane = self._lane(self.blocks[held.block])
-        if lane is held.lane:
-            return held
-        pieces = self._pieces(held.block, lane)
-        fresh = pieces[held.place] if held.place < len(pieces) else held.piece
-        return _Held(fresh, held.block, held.place, lane)
-
-    def _fits(self, held: list[_Held]) -> bool:
-        y = self.y
-        for one in held:
-            y += one.piece.height + (one.piece.before * self.gaps if y > self.top else 0.0)
-        return y <= self.kit.sheet.body_foot + 0.01
-
-    def _set_again(self, piece: Piece) -> None:
-        """Repeat the heading row a table piece asks for."""
-        if piece.again is not None:
-            self._put(piece.again)
-
-    def _put(self, piece: Piece) -> None:
-        if self.y > self.top:
-            self.y += piece.before * self.gaps
-        items = piece.items
-        if piece.opening and self.last is not None and not self.last[1].ruled:
-            items = (*piece.opening, *items)
-        box = Box(self.kit.sheet.width, 0.0, piece.height, items)
-        self.sheets[-1].append(Placed(0.0, self.y, box))
-        self.last = (self.y, piece)
-        self.y += piece.height
-
-    def _put_monster(self, piece: Piece) -> None:
-        """Place a piece higher than a sheet, in strips."""
-        room = self.kit.sheet.body_foot - self.top
-        for strip in parted(piece, room) if piece.height > room else (piece,):
-            gap = strip.before * self.gaps if self.y > self.top else 0.0
-            if self.y + gap + strip.height > self.kit.sheet.body_foot + 0.01:
-                self._break()
-            self._put(strip)
-
-    def _break(self) -> None:
-        """Begin a new sheet; a waiting figure stands at its head."""
-        if self.last is not None and self.last[1].closing:
-            y, piece = self.last
-            box = Box(self.kit.sheet.width, 0.0, piece.height, piece.closing)
-            self.sheets[-1].append(Placed(0.0, y, box))
-        self._clear()
-        self.feet[-1] = self.y
-        self.sheets.append([])
-        self.feet.append(self.top)
-        self.y, self.last = self.top, None
-        if self.waiting is not None:
-            figure, self.waiting = self.waiting, None
-            self._figure(figure)
-
-    def _figure(self, block: int) -> bool:
-        """Set a figure at the right of the lane, or let it wait; False if it is too wide for that."""
-        record = self.blocks[block]
-        assert isinstance(record, FigureBlock)
-        lane = self.full
-        box = self.drawn.get((block, self.width))
-        if box is None:
-            box = draw(self.kit.lettering.formulas, record.figure, self.width)
-            self.drawn[block, self.width] = box
-        if box.width > BESIDE * lane.width:
-            return False
-        caption = self.kit.lettering.set(record.caption, QUIET, box.width)
-        rows = Rows(box.descent + 3.0)
-        rows.words(caption, QUIET, lane.right - box.width)
-        above = sum(one.piece.height + one.piece.before for one in self.held)
-        start = max(self.y, self.beside[0] if self.beside else 0.0) + above
-        if start + 6.0 + rows.y > self.kit.sheet.body_foot and self.sheets[-1]:
-            if self.waiting is not None:
-                self._break()
-                return self._figure(block)
-            self.waiting = block
-            return True
-        self._clear()
-        if self.held:
-            self._settle()
-        top = self.y + (6.0 if self.y > self.top else 0.0)
-        items = (Placed(lane.right - box.width, 0.0, box), *rows.items)
-        self.sheets[-1].append(Placed(0.0, top, Box(lane.width, 0.0, rows.y, items)))
-        self.beside = (top + rows.y + 2.0, narrowed(lane, box.width))
-        return True
-
-
-def _lines_follow(block: Block | None) -> bool:
-    return block is not None and not stands_alone(block)

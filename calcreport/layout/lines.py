@@ -150,9 +150,7 @@ def rows_of(parts: list[Part], closing: float, width: float) -> list[list[Part]]
     return rows
 
 
-def set_chain(
-    kit: Kit, rows: Rows, symbol: Box, parts: list[Part], result: Box, inner: Lane
-) -> float:
+def set_chain(kit: Kit, rows: Rows, symbol: Box, parts: list[Part], result: Box, inner: Lane) -> float:
     """Add `symbol = part = part … = result`, first sign at `inner.left`; return the first baseline."""
     closing = RESULT_GAP + kit.equals.width + EQUALS_GAP + result.width
     shared = rows_of(parts, closing, inner.width)
@@ -166,7 +164,7 @@ def set_chain(
             x = _put(placed, part, x)
         if place == len(shared) - 1:
             placed.extend(_after_equals(kit, result, inner.right))
-        baseline = rows.row(placed, ROW)
+        baseline = rows.row(placed, ROW, 1.4)
         first = baseline if place == 0 else first
     return first
 
@@ -188,7 +186,8 @@ def set_statement(kit: Kit, statement: Statement, lane: Lane) -> Piece:
     words = kit.lettering.set(statement.says, PLAIN, lane.width)
     formula = kit.math(statement.formula)
     if len(words) == 1 and words[0].width + RESULT_GAP + formula.width <= lane.width:
-        start = lane.left + words[0].width + RESULT_GAP
+        tab = lane.left + TAB * lane.width - kit.symbols - EQUALS_GAP
+        start = max(lane.left + words[0].width + RESULT_GAP, min(tab, lane.right - formula.width))
         baseline = rows.row(((lane.left, words[0]), (start, formula)), PLAIN.leading)
     else:
         baseline = rows.words(words, PLAIN, lane.left) if words else -1.0
@@ -204,14 +203,12 @@ def set_statement(kit: Kit, statement: Statement, lane: Lane) -> Piece:
 
 def set_result_box(kit: Kit, result: ResultBox, lane: Lane) -> Piece:
     """Set the result to use, ruled round."""
-    rows = Rows(4.0)
+    rows = Rows(3.2)
     words = kit.lettering.set(result.words, RESULT, lane.width - 6.0)
-    baseline = rows.words(words, RESULT, lane.left + 3.0) if words else 4.0
-    left, right, foot = lane.left - 3.0, lane.right + 3.0, rows.y + 4.0
+    baseline = rows.words(words, RESULT, lane.left + 3.0) if words else 3.2
+    left, right, foot = lane.left - 3.0, lane.right + 3.0, rows.y + 3.0
     edges = ((left, 0.5), (right, 0.5), (right, foot), (left, foot))
     rules: list[Item] = [Stroke(edges, OUTLINE, closed=True)]
     rows.items[:0] = rules
     rows.y = foot + 0.5
-    return kit.marks.numbered(
-        rows, baseline, result.number, result.anchor, result.source, result.delta, lane
-    )
+    return kit.marks.numbered(rows, baseline, result.number, result.anchor, result.source, result.delta, lane)

@@ -95,7 +95,7 @@ def _corner(style: Style, glyph: int, corner: Corner, height: float) -> float:
     """Give the distance the corner of a base asks for at a height, in font units.
 
     The last step of a letter such as V or r keeps scripts clear of its arm at the very top, so a subscript
-    that only just enters it would be pushed far out; there the distance grows evenly from the step to the top.
+    that only just enters it would be pushed far out; there the distance grows evenly up to the top.
     """
     table = style.fonts.math
     heights, values = table.steps(glyph, corner)

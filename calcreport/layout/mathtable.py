@@ -19,21 +19,26 @@ Corner: TypeAlias = Literal["top_right", "top_left", "bottom_right", "bottom_lef
 _CORNERS: dict[Corner, int] = {"top_right": 0, "top_left": 1, "bottom_right": 2, "bottom_left": 3}
 
 #: names of the records that follow two percentages and two heights, in the order of the file
-_RECORDS = """
-    MathLeading AxisHeight AccentBaseHeight FlattenedAccentBaseHeight SubscriptShiftDown SubscriptTopMax
-    SubscriptBaselineDropMin SuperscriptShiftUp SuperscriptShiftUpCramped SuperscriptBottomMin
-    SuperscriptBaselineDropMax SubSuperscriptGapMin SuperscriptBottomMaxWithSubscript SpaceAfterScript
-    UpperLimitGapMin UpperLimitBaselineRiseMin LowerLimitGapMin LowerLimitBaselineDropMin StackTopShiftUp
-    StackTopDisplayStyleShiftUp StackBottomShiftDown StackBottomDisplayStyleShiftDown StackGapMin
-    StackDisplayStyleGapMin StretchStackTopShiftUp StretchStackBottomShiftDown StretchStackGapAboveMin
-    StretchStackGapBelowMin FractionNumeratorShiftUp FractionNumeratorDisplayStyleShiftUp
-    FractionDenominatorShiftDown FractionDenominatorDisplayStyleShiftDown FractionNumeratorGapMin
-    FractionNumDisplayStyleGapMin FractionRuleThickness FractionDenominatorGapMin
-    FractionDenomDisplayStyleGapMin SkewedFractionHorizontalGap SkewedFractionVerticalGap
-    OverbarVerticalGap OverbarRuleThickness OverbarExtraAscender UnderbarVerticalGap UnderbarRuleThickness
-    UnderbarExtraDescender RadicalVerticalGap RadicalDisplayStyleVerticalGap RadicalRuleThickness
-    RadicalExtraAscender RadicalKernBeforeDegree RadicalKernAfterDegree
-""".split()
+# fmt: off
+_RECORDS = (
+    "MathLeading", "AxisHeight", "AccentBaseHeight", "FlattenedAccentBaseHeight", "SubscriptShiftDown",
+    "SubscriptTopMax", "SubscriptBaselineDropMin", "SuperscriptShiftUp", "SuperscriptShiftUpCramped",
+    "SuperscriptBottomMin", "SuperscriptBaselineDropMax", "SubSuperscriptGapMin",
+    "SuperscriptBottomMaxWithSubscript", "SpaceAfterScript", "UpperLimitGapMin",
+    "UpperLimitBaselineRiseMin", "LowerLimitGapMin", "LowerLimitBaselineDropMin", "StackTopShiftUp",
+    "StackTopDisplayStyleShiftUp", "StackBottomShiftDown", "StackBottomDisplayStyleShiftDown",
+    "StackGapMin", "StackDisplayStyleGapMin", "StretchStackTopShiftUp", "StretchStackBottomShiftDown",
+    "StretchStackGapAboveMin", "StretchStackGapBelowMin", "FractionNumeratorShiftUp",
+    "FractionNumeratorDisplayStyleShiftUp", "FractionDenominatorShiftDown",
+    "FractionDenominatorDisplayStyleShiftDown", "FractionNumeratorGapMin",
+    "FractionNumDisplayStyleGapMin", "FractionRuleThickness", "FractionDenominatorGapMin",
+    "FractionDenomDisplayStyleGapMin", "SkewedFractionHorizontalGap", "SkewedFractionVerticalGap",
+    "OverbarVerticalGap", "OverbarRuleThickness", "OverbarExtraAscender", "UnderbarVerticalGap",
+    "UnderbarRuleThickness", "UnderbarExtraDescender", "RadicalVerticalGap",
+    "RadicalDisplayStyleVerticalGap", "RadicalRuleThickness", "RadicalExtraAscender",
+    "RadicalKernBeforeDegree", "RadicalKernAfterDegree",
+)
+# fmt: on
 
 
 @dataclass(frozen=True, slots=True)
@@ -51,7 +56,7 @@ class Part:
 class MathTable:
     """The figures a formula setter asks of its font, in font units."""
 
-    __slots__ = ("constants", "_font", "_info", "_italics", "_kerns", "_sizes", "_alternates", "min_overlap")
+    __slots__ = ("_alternates", "_font", "_info", "_italics", "_kerns", "_sizes", "constants", "min_overlap")
 
     def __init__(self, font: FontFile) -> None:
         """Read the constants; KeyError when the font has no MATH table."""

@@ -32,7 +32,7 @@ def coverage(data: bytes, at: int) -> dict[int, int]:
 class _Classes:
     """A class definition, kept as ranges of glyphs: most glyphs of a font are never asked for."""
 
-    __slots__ = ("_firsts", "_lasts", "_groups")
+    __slots__ = ("_firsts", "_groups", "_lasts")
 
     def __init__(self, data: bytes, at: int) -> None:
         form, first = unpack_from(">2H", data, at)
@@ -100,7 +100,7 @@ def substitutes(font: FontFile, feature: str, script: bytes = b"DFLT") -> dict[i
 class Kerning:
     """Distances to add between two glyphs, in font units."""
 
-    __slots__ = ("_font", "_places", "_covered", "_classes", "_pairs")
+    __slots__ = ("_classes", "_covered", "_font", "_pairs", "_places")
 
     def __init__(self, font: FontFile) -> None:
         """Take a font; its pair tables are read when a first pair needs them."""

@@ -12,7 +12,8 @@ from collections.abc import Iterable
 from dataclasses import dataclass
 
 from calcreport.layout.cover import set_cover
-from calcreport.layout.flow import Body, flow
+from calcreport.layout.filling import Body
+from calcreport.layout.flow import flow
 from calcreport.layout.fonts import Fonts
 from calcreport.layout.index import Extent, index_blocks
 from calcreport.layout.kit import MATH, SYMBOL_CAP, Kit
@@ -95,8 +96,7 @@ def _needs_lanes(part: Part) -> bool:
     """Tell whether a part has numbered lines, and so needs number lane and source lane."""
     numbered = (Line, CheckLine, Givens, Statement, ResultBox)
     return part.kind == "calculation" or any(
-        isinstance(block, numbered) or (isinstance(block, Table) and block.number > 0)
-        for block in part.blocks
+        isinstance(block, numbered) or (isinstance(block, Table) and block.number > 0) for block in part.blocks
     )
 
 

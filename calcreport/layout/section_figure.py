@@ -94,8 +94,7 @@ def _columns(figure: SectionFigure, labels: dict[str, Box]) -> Columns:
     stress = depth + (7.0 if "d" in labels else 1.0)
     needs = (
         stress + BLOCK + 9.0,
-        stress + BLOCK + 3.0 + wide.get("steel", 0.0),
-        stress + max(wide.get("stress", 0.0), wide.get("a", 0.0)),
+        stress + max(wide.get("stress", 0.0), wide.get("a", 0.0), wide.get("steel", 0.0)),
         depth + 3.0 + wide.get("d", 0.0),
     )
     return Columns(strain, squeezed, stretched, depth, stress, max(needs) + 0.5)
@@ -157,25 +156,30 @@ def _outer_dimensions(drawing: Drawing, frame: Frame, labels: dict[str, Box]) ->
 
 
 def _callouts(drawing: Drawing, formulas: Formulas, figure: SectionFigure, frame: Frame) -> None:
-    """Name each layer inside the section, on the side of its bars where the section's middle is."""
-    middle = (frame.left + frame.right) / 2
-    inside = frame.right - frame.left - 2 * (figure.cover + figure.stirrup_diameter) * frame.scale - 3.0
+    """Name each layer: the one nearest the middle inside the section if it has room, the others beside it."""
+    scale = frame.scale
     for _, y, radius in bar_places(figure):
-        drawing.keep_clear(frame.left, (y - radius) * frame.scale, frame.right, (y + radius) * frame.scale)
+        drawing.keep_clear(frame.left, (y - radius) * scale, frame.right, (y + radius) * scale)
+    for y in (frame.top, frame.foot):
+        drawing.keep_clear(frame.left, y, frame.right, y)
     if figure.neutral_axis is not None:
         axis = frame.at(figure.neutral_axis)
-        drawing.keep_clear(frame.left, axis - 1.5, frame.right, axis + 1.5)
-    for depth in sorted({bar.depth for bar in figure.bars}):
+        drawing.keep_clear(frame.left, axis, frame.right, axis)
+    inside = frame.right - frame.left - 2 * (figure.cover + figure.stirrup_diameter) * scale - 3.0
+    middle = figure.depth / 2
+    depths = sorted({bar.depth for bar in figure.bars}, key=lambda depth: abs(depth - middle))
+    named: set[bool] = set()
+    for depth in depths:
         layer = [bar for bar in figure.bars if bar.depth == depth]
-        text = " + ".join(bar.callout for bar in layer)
-        box = formulas.box(Letters(text), SIZE, "text")
-        radius = max(bar.diameter for bar in layer) / 2 * frame.scale
-        inwards = 1.0 if depth < figure.depth / 2 else -1.0
-        y = depth * frame.scale + inwards * (radius + 2.0 + (box.ascent + box.descent) / 2)
-        if box.width <= inside:
-            drawing.label(box, (middle, y, 0.5))
+        box = formulas.box(Letters(" + ".join(bar.callout for bar in layer)), SIZE, "text")
+        half = max(bar.diameter for bar in layer) / 2 * scale + 2.0 + (box.ascent + box.descent) / 2
+        inwards = depth * scale + (half if depth < middle else -half)
+        beside = (frame.right + 3.0, depth * scale, 0.0)
+        if box.width <= inside and (depth < middle) not in named:
+            drawing.label(box, ((frame.left + frame.right) / 2, inwards, 0.5), beside)
         else:
-            drawing.label(box, (frame.right + 3.0, depth * frame.scale, 0.0))
+            drawing.label(box, beside)
+        named.add(depth < middle)
 
 
 def tension_depths(figure: SectionFigure) -> tuple[float, float]:
@@ -193,16 +197,14 @@ def _depth(figure: SectionFigure, bar: Bar) -> float:
     return bar.depth if figure.tension_face == "bottom" else figure.depth - bar.depth
 
 
-def _diagrams(
-    drawing: Drawing, figure: SectionFigure, frame: Frame, labels: dict[str, Box], columns: Columns
-) -> None:
+def _diagrams(drawing: Drawing, figure: SectionFigure, frame: Frame, labels: dict[str, Box], columns: Columns) -> None:
     """Draw strains, effective depth and stresses right of the section."""
     axis = figure.neutral_axis or 0.0
     centroid, extreme = tension_depths(figure)
     strain_x, depth_x, stress_x = (frame.right + x for x in (columns.strain, columns.depth, columns.stress))
     across = (strain_x, columns.squeezed, columns.stretched)
     right = stress_x + BLOCK
-    drawing.keep_clear(frame.right, frame.at(axis) - 0.8, right, frame.at(axis) + 0.8)
+    drawing.keep_clear(frame.right, frame.at(axis), right, frame.at(axis))
     _strains(drawing, frame, labels, across, (axis, extreme))
     if "d" in labels:
         drawing.line(((strain_x + columns.squeezed + 2.0, frame.at(0.0)), (depth_x + 2.5, frame.at(0.0))))
@@ -255,7 +257,7 @@ def _stresses(
     steel = frame.at(centroid)
     drawing.arrow((x, steel), (x + BLOCK, steel), OUTLINE)
     if "steel" in labels:
-        drawing.label(labels["steel"], (x + BLOCK + 3.0, steel, 0.0), (x + 2.0, steel + frame.way * 7.0, 0.0))
+        drawing.label(labels["steel"], (x, steel + frame.way * 7.0, 0.0))
     if figure.block_depth is None:
         return
     face, end = frame.at(0.0), frame.at(figure.block_depth)

@@ -94,7 +94,7 @@ def sheet_of(paper: Literal["letter", "a4"], lanes: bool = True) -> Sheet:
         work=left + 10 * MM,
         source=right - 34 * MM,
         block=block,
-        body_top=top + 3 * MM,
-        body_foot=block - 2.5 * MM,
+        body_top=top + 2.5 * MM,
+        body_foot=block - 2 * MM,
         lanes=lanes,
     )

@@ -114,9 +114,7 @@ def _stretched(columns: tuple[Column, ...], natural: tuple[float, ...], room: fl
     if not shares:
         return natural
     spare = room - sum(natural)
-    return tuple(
-        width + spare * column.stretch / shares for width, column in zip(natural, columns, strict=True)
-    )
+    return tuple(width + spare * column.stretch / shares for width, column in zip(natural, columns, strict=True))
 
 
 def _shrunk(natural: tuple[float, ...], least: tuple[float, ...], room: float) -> tuple[float, ...]:
@@ -131,9 +129,7 @@ def _shrunk(natural: tuple[float, ...], least: tuple[float, ...], room: float) -
 
 def _cells(kit: Kit, grid: Grid, cells: tuple[Words, ...], style: TextStyle, rows: Rows) -> None:
     """Set the cells of one row side by side from the rows' present y."""
-    set_cells = [
-        kit.lettering.fitting(cell, style, grid.widths[place] + 0.05) for place, cell in enumerate(cells)
-    ]
+    set_cells = [kit.lettering.fitting(cell, style, grid.widths[place] + 0.05) for place, cell in enumerate(cells)]
     top = rows.y
     first = max((lines[0].ascent for lines in set_cells if lines), default=style.rise)
     foot = top
@@ -163,8 +159,7 @@ def _head(kit: Kit, grid: Grid) -> Piece:
     """Set the heading row between its rules, headings standing on the lower one."""
     style = grid.letters.heading
     columns = [
-        kit.lettering.set(column.heading, style, grid.widths[place] + 0.05)
-        for place, column in enumerate(grid.columns)
+        kit.lettering.set(column.heading, style, grid.widths[place] + 0.05) for place, column in enumerate(grid.columns)
     ]
     most = max((len(lines) for lines in columns), default=0)
     height = ABOVE + BELOW + 0.6 + most * style.leading

@@ -115,9 +115,7 @@ def clipped(lettering: Lettering, text: str, style: TextStyle, width: float) -> 
     return " ".join(words) + " …"
 
 
-def text_lines(
-    lines: tuple[Box, ...], style: TextStyle, x: float, top: float
-) -> tuple[list[Item], float]:
+def text_lines(lines: tuple[Box, ...], style: TextStyle, x: float, top: float) -> tuple[list[Item], float]:
     """Place text lines from `top` down; return them and the y below."""
     items: list[Item] = []
     for place, line in enumerate(lines):
@@ -153,9 +151,7 @@ def _project(sheet: Sheet, lettering: Lettering, facts: TitleFacts, right: float
     return items
 
 
-def _subject(
-    sheet: Sheet, lettering: Lettering, facts: TitleFacts, left: float, right: float
-) -> list[Item]:
+def _subject(sheet: Sheet, lettering: Lettering, facts: TitleFacts, left: float, right: float) -> list[Item]:
     """Name what is calculated, by which code, from which inputs, with which program."""
     x, width = left + _PAD, right - left - 2 * _PAD
     split = _split(sheet)

@@ -241,9 +241,7 @@ class Lettering:
             self._emit(items, (held, face, target), style, start, x)
         return Box(x, rise, fall, tuple(items))
 
-    def _emit(
-        self, items: list[Item], held: tuple[str, Face, str], style: TextStyle, start: float, end: float
-    ) -> None:
+    def _emit(self, items: list[Item], held: tuple[str, Face, str], style: TextStyle, start: float, end: float) -> None:
         """Add a run of letters from `start`, and its link area where it leads somewhere."""
         text, face, target = held
         items.extend(self.fonts.run(text, face, style.size, start, 0.0, style.manner))

@@ -1,6 +1,6 @@
 """YAML text to a tree of strings with places; refuses the dangerous subset. The only module that knows YAML.
 
-Refused: aliases, anchors, tags, merge keys, several documents, repeated keys, odd characters, a value
+Refused: aliases, anchors, tags, merge keys, escapes, several documents, repeated keys, odd characters, a value
 cut short by a comment sign. Nothing is typed here: `no`, `010` and `12:30` stay the text they are.
 """
 
@@ -8,12 +8,13 @@ from __future__ import annotations
 
 import re
 from dataclasses import dataclass
-from typing import TypeAlias
+from typing import NoReturn, TypeAlias
 
 import yaml
 
 from calcreport.core.problems import Problems
 from calcreport.core.source import Source, Span
+from calcreport.read.malformed import say_malformed
 
 #: bounds against files made to exhaust: characters, nodes, depth
 LARGEST, MOST_NODES, DEEPEST = 2_000_000, 200_000, 30
@@ -51,14 +52,23 @@ class Mapping:
         return None
 
 
-Node: TypeAlias = Scalar | Sequence | Mapping
+@dataclass(frozen=True, slots=True)
+class Told:
+    """A value about which a problem was told already; who reads it finds nothing and says nothing."""
+
+    span: Span
+
+
+Node: TypeAlias = Scalar | Sequence | Mapping | Told
 
 _ODD = re.compile("[\x00-\x08\x0b-\x1f\x7f-\x9f\u2028\u2029\ufeff\ud800-\udfff\ufffe\uffff]")
-_CUT = re.compile(r"[ \t]*#\d")
+_ODD_WORDS = {"\r": "a carriage return without a line feed", "\x00": "a null byte", "\ufeff": "a byte order mark inside the text",
+              "\x85": "a next-line sign", "\u2028": "a line separator", "\u2029": "a paragraph separator"}  # fmt: skip
+_CUT = re.compile(r"[ \t]*#\w")
 _LOADER = getattr(yaml, "CSafeLoader", yaml.SafeLoader)
 
 
-class _Stop(Exception):
+class _Stop(Exception):  # noqa: N818 - leaves the reader after a problem was added
     """Leaves the reader after a problem was added."""
 
 
@@ -67,31 +77,26 @@ def read_tree(source: Source, problems: Problems) -> Node | None:
     text = source.text
     if len(text) > LARGEST:
         problems.add("file-too-large", Span(source, 0, 1), "the file is too large",
-                     expected=f"{LARGEST:,} characters at most", found=f"{len(text):,}")  # fmt: skip
+                     expected=f"{LARGEST:,} characters at most", found=f"{len(text):,}",
+                     hint="share the work between files by `include`")  # fmt: skip
         return None
     odd = _ODD.search(text)
     if odd:
         at = Span(source, odd.start(), odd.end())
-        problems.add("odd-character", at, "a character that has no place in a text file",
-                     expected="printable text and line ends", found=f"U+{ord(odd[0]):04X}")  # fmt: skip
+        problems.add("odd-character", at, "this character has no place in a text file", expected="printable text and line ends",
+                     found=f"{_ODD_WORDS.get(odd[0], 'a control character')} (U+{ord(odd[0]):04X})",
+                     hint="delete it, or save the file as plain UTF-8 text")  # fmt: skip
         return None
+    before = len(problems)
     try:
         return _Reader(source, problems).read()
     except _Stop:
         return None
     except yaml.YAMLError as error:
-        mark = getattr(error, "problem_mark", None) or getattr(error, "context_mark", None)
-        at = _offset(source, mark.line, mark.column) if mark else 0
-        words = str(getattr(error, "problem", None) or getattr(error, "reason", None) or "it cannot be read")
-        problems.add("not-yaml", Span(source, at, at + 1), f"the file is not well formed: {words}",
-                     expected="YAML: `key: value`, lists with `- `, steady indents",
-                     found="see the place", hint="quote text that holds `: `, ` #`, or begins with a sign")  # fmt: skip
+        # a value cut short by a comment sign takes its closing bracket with it: one cause, one problem
+        if len(problems) == before:
+            say_malformed(error, source, problems)
         return None
-
-
-def _offset(source: Source, line: int, column: int) -> int:
-    """Return the character offset of a line and column counted from 0."""
-    return min(source.line_start(line + 1) + column, max(len(source.text), 0))
 
 
 class _Reader:
@@ -105,7 +110,7 @@ class _Reader:
         for event in self.events:
             if isinstance(event, yaml.DocumentStartEvent):
                 if root is not None:
-                    self.stop("not-yaml", event, "a second document begins here", "one document", "`---`")
+                    self.stop("not-yaml", event, "a second document begins here", "one document a file", "`---`")
                 root = self.node(next(self.events), 0)
         if root is None:
             self.problems.add("not-yaml", Span(self.source, 0, 1), "the file is empty",
@@ -113,11 +118,15 @@ class _Reader:
         return root
 
     def span(self, event: yaml.Event) -> Span:
-        start = _offset(self.source, event.start_mark.line, event.start_mark.column)
-        end = _offset(self.source, event.end_mark.line, event.end_mark.column)
-        return Span(self.source, start, max(end, start))
+        first, last = event.start_mark, event.end_mark
+        assert first is not None and last is not None
+        start = self.source.line_start(first.line + 1) + first.column
+        end = self.source.line_start(last.line + 1) + last.column
+        return Span(self.source, start, max(min(end, len(self.source.text)), start))
 
-    def stop(self, slug: str, event: yaml.Event, message: str, expected: str, found: str, hint: str = "") -> None:
+    def stop(
+        self, slug: str, event: yaml.Event, message: str, expected: str, found: str, hint: str = ""
+    ) -> NoReturn:
         self.problems.add(slug, self.span(event), message, expected=expected, found=found, hint=hint)
         raise _Stop
 
@@ -128,9 +137,10 @@ class _Reader:
                       f"{DEEPEST} levels and {MOST_NODES:,} values at most", "more")  # fmt: skip
         if isinstance(event, yaml.AliasEvent) or getattr(event, "anchor", None):
             self.stop("yaml-feature", event, "anchors and aliases are not read", "the value itself", "an anchor or alias",
-                      "write the value out, or share it through materials or criteria")  # fmt: skip
-        if getattr(event, "tag", None):
-            self.stop("yaml-feature", event, "tags are not read", "plain text", f"`{event.tag}`")
+                      "write the value out; text that begins with & or * needs quotes")  # fmt: skip
+        if tag := getattr(event, "tag", None):
+            self.stop("yaml-feature", event, "tags are not read", "the value without a tag", f"`{str(tag)[:40]}`",
+                      "text that begins with ! needs quotes")  # fmt: skip
         if isinstance(event, yaml.ScalarEvent):
             return self.scalar(event)
         if isinstance(event, yaml.SequenceStartEvent):
@@ -143,10 +153,12 @@ class _Reader:
         if quoted:
             span = Span(self.source, span.start + 1, max(span.end - 1, span.start + 1))
             if event.style == '"' and "\\" in span.text:
-                self.stop("yaml-feature", event, "escapes are not read", "plain quoted text", "a backslash")
-        elif event.style is None:
+                self.stop("yaml-feature", event, "escapes are not read", "plain quoted text", "a backslash",
+                          "write the text in single quotes")  # fmt: skip
+        elif not event.style:
             self.look_for_cut(span)
-        return Scalar(text, span, quoted)
+        # folded lines and doubled quotes: no part of the text has a place of its own
+        return Scalar(text, Span(span.source, span.start, span.end, span.text != text), quoted)
 
     def look_for_cut(self, span: Span) -> None:
         """Refuse `2 legs #4` unquoted: the reader of YAML takes ` #4` for a comment."""
@@ -154,11 +166,12 @@ class _Reader:
         if cut and (cut[0][0] in " \t" or span.end == span.start):
             start = cut.end() - 2
             end = self.source.text.find("\n", start)
-            tail = self.source.text[start : end if end >= 0 else None].rstrip(" ,}]")
+            tail = self.source.text[start : end if end >= 0 else None].rstrip()
+            lost = re.split(r"[,}\]]", tail)[0].rstrip()
             self.problems.add(
-                "comment-cut", Span(self.source, start, start + len(tail)), "the rest of this value is read as a comment",
+                "comment-cut", Span(self.source, start, start + len(tail)), "the rest of this line is read as a comment",
                 expected="text that holds # after a space, or begins with it, in quotes", found=tail[:60],
-                hint=f"write '{(span.text + cut[0][:-2] + tail).strip()[:60]}'",
+                hint=f"write '{(span.text + cut[0][:-2] + lost).strip()[:60]}', or put a space after # in a comment",
             )  # fmt: skip
 
     def sequence(self, start: yaml.Event, depth: int) -> Sequence:
@@ -173,15 +186,15 @@ class _Reader:
         while not isinstance(event := next(self.events), yaml.MappingEndEvent):
             key = self.node(event, depth + 1)
             if not isinstance(key, Scalar):
-                self.stop("not-yaml", event, "a key must be a word", "a word", "a list or mapping")
-            assert isinstance(key, Scalar)
+                self.stop("not-yaml", event, "a key must be a word", "a word", "a list or mapping",
+                          "text that begins with { or [ needs quotes")  # fmt: skip
             if key.text == "<<" and not key.quoted:
                 self.stop("yaml-feature", event, "merge keys are not read", "the keys themselves", "`<<`")
             value = self.node(next(self.events), depth + 1)
             if key.text in seen:
                 self.problems.add("repeated-key", key.span, f"`{key.text[:40]}` stands twice",
                                   expected="every key once", found="a second value",
-                                  related=((seen[key.text], "first here"),))  # fmt: skip
+                                  hint="keep one of the two", related=((seen[key.text], "first here"),))  # fmt: skip
                 continue
             seen[key.text] = key.span
             entries.append((key, value))

@@ -181,9 +181,7 @@ def span() -> SpanFigure:
     """Make the span of B1: 24 ft, a uniform and a point load, parabola and triangle added."""
     length, w, p = 7.315, 20.0, 60.0
     reach = [length * i / 24 for i in range(25)]
-    moments = tuple(
-        (x, w * x * (length - x) / 2 + (p / 2) * min(x, length - x) - 90.0 * (x / length)) for x in reach
-    )
+    moments = tuple((x, w * x * (length - x) / 2 + (p / 2) * min(x, length - x) - 90.0 * (x / length)) for x in reach)
     return SpanFigure(
         span=length,
         supports=((0.0, "pinned"), (length, "roller")),
@@ -243,7 +241,8 @@ def flexure() -> tuple[Block, ...]:
         line(19, ("Minimum steel, the greater of two",), "A_{s,min}",
              Row((Letters("max"), Fence("(", Row((
                  Fraction(Row((Letters("3"), Root(symbol("f′_c")))), symbol("f_y")), Space("thin"), m("b d"),
-                 Operator(",", "punctuation"), Fraction(Letters("200"), symbol("f_y")), Space("thin"), m("b d"))), ")"))),
+                 Operator(",", "punctuation"), Fraction(Letters("200"), symbol("f_y")),
+                 Space("thin"), m("b d"))), ")"))),
              Row((Letters("max"), Fence("(", Row((
                  Fraction(Row((Letters("3"), Root(Letters("4500")))), Letters("60,000")), m("(16)(25.436)"),
                  Operator(",", "punctuation"), Fraction(Letters("200"), Letters("60,000")), m("(16)(25.436)"))), ")"))),
@@ -403,7 +402,7 @@ def summary() -> tuple[Block, ...]:
             tuple(TableRow(tuple((cell,) for cell in row), "loud" if row[-1] == "NG" else "") for row in members),
             ("Members by ratio",),
         ),
-        Paragraph(("Computed demand does not exceed computed capacity for the checks listed, except those marked NG.",)),
+        Paragraph(("Computed demand does not exceed computed capacity for the checks listed, NG ones excepted.",)),
     )  # fmt: skip
 
 

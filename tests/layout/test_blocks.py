@@ -21,7 +21,7 @@ def test_every_kind_of_block_is_set_inside_the_lanes(kit: Kit, fonts: Fonts) -> 
             for ink in letters(piece, fonts):
                 if ink.left > kit.sheet.left:  # not a revision number in the margin
                     assert ink.right <= kit.sheet.right - 2.0
-                    assert 0.0 <= ink.top and ink.foot <= piece.height + 0.01
+                    assert ink.top >= 0.0 and ink.foot <= piece.height + 0.01
 
 
 def test_headings_stay_with_what_follows_and_grow_with_their_rank(kit: Kit) -> None:

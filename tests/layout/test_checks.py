@@ -72,4 +72,4 @@ def test_nothing_overlaps_in_any_lane(
             piece = set_check(kit, one, Lane(kit.sheet.text.left, kit.sheet.text.left + width))
             assert clashes(letters(piece, fonts)) == []
             for ink in inked(piece.items, fonts):
-                assert -2.0 <= ink.top and ink.foot <= piece.height + 2.0
+                assert ink.top >= -2.0 and ink.foot <= piece.height + 2.0

@@ -8,9 +8,11 @@ import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
 from inked import clashes, inked, texts
-from specimen import check, given as given_row, lane, line, m, over, section, span, value
+from specimen import check, lane, line, m, over, section, span, value
+from specimen import given as given_row
 
-from calcreport.layout.flow import Body, flow
+from calcreport.layout.filling import Body
+from calcreport.layout.flow import flow
 from calcreport.layout.fonts import Fonts
 from calcreport.layout.kit import Kit
 from calcreport.layout.model import Placed, Run
@@ -45,11 +47,16 @@ def sheet_of_text(bodies: tuple[Body, ...], text: str) -> list[int]:
     return [n for n, body in enumerate(bodies) if any(text in i.text for i in flat(body.items) if isinstance(i, Run))]
 
 
+def cite(n: int) -> SourceLane:
+    """Make a source lane that can be told from every other."""
+    return SourceLane(f"cite{n}x")
+
+
 MAKERS: dict[str, Callable[[int], Block]] = {
     "heading": lambda n: Heading(f"head{n}x", 1 + n % 3),
     "line": a_line,
-    "check": lambda n: check(n, f"check{n}x", over("V_u", "φV_n"), over("1", "2"), "0.5", "OK", SourceLane(f"cite{n}x")),
-    "ng": lambda n: check(n, f"check{n}x", over("V_u", "φV_n"), over("2", "1"), "2.0", "NG", SourceLane(f"cite{n}x")),
+    "check": lambda n: check(n, f"check{n}x", over("V_u", "φV_n"), over("1", "2"), "0.5", "OK", cite(n)),
+    "ng": lambda n: check(n, f"check{n}x", over("V_u", "φV_n"), over("2", "1"), "2.0", "NG", cite(n)),
     "paragraph": lambda n: Paragraph((f"para{n}x " + "and so on and on " * (n % 40),)),
     "table": lambda n: Table(
         (Column(("one",)), Column(("two",))),
@@ -104,7 +111,9 @@ def test_lines_fill_a_sheet_before_the_next_begins(kit: Kit) -> None:
 
 
 def test_a_figure_stands_right_of_the_lines_that_follow_it(kit: Kit, fonts: Fonts) -> None:
-    (body,) = flow(kit, (FigureBlock(section()), a_line(1), a_line(2), a_line(3), a_line(4), a_line(5)), kit.sheet.body_top)
+    (body,) = flow(
+        kit, (FigureBlock(section()), a_line(1), a_line(2), a_line(3), a_line(4), a_line(5)), kit.sheet.body_top
+    )
     inks = [ink for ink in inked(body.items, fonts) if ink.text]
     first = next(ink for ink in inks if "words1x" in ink.text)
     last = next(ink for ink in inks if "words5x" in ink.text)
@@ -117,33 +126,32 @@ def test_a_figure_stands_right_of_the_lines_that_follow_it(kit: Kit, fonts: Font
 
 
 def test_a_figure_without_room_waits_while_its_lines_go_on(kit: Kit) -> None:
-    fill = tuple(a_line(n) for n in range(1, 19))
-    after = tuple(a_line(n) for n in range(19, 26))
+    fill = tuple(a_line(n) for n in range(1, 38))
+    (alone,) = flow(kit, fill, kit.sheet.body_top)
+    assert kit.sheet.body_foot - alone.foot < 100.0  # no room for the figure, but for a line
+    after = tuple(a_line(n) for n in range(38, 60))
     bodies = flow(kit, (*fill, FigureBlock(section()), *after), kit.sheet.body_top)
     assert len(bodies) == 2
-    assert sheet_of_text(bodies, "words19x") == [0]  # the line after the figure stays on the first sheet
+    assert sheet_of_text(bodies, "words38x") == [0]  # the line after the figure stays on the first sheet
     assert sheet_of_text(bodies, "4-#9") == [1]
 
 
 def test_a_figure_is_not_left_alone_on_a_last_sheet(kit: Kit) -> None:
-    fill = tuple(a_line(n) for n in range(1, 18))
-    bodies = flow(kit, (*fill, FigureBlock(section()), a_line(18)), kit.sheet.body_top)
-    where = sheet_of_text(bodies, "4-#9")
-    others = {n for k in range(1, 19) for n in sheet_of_text(bodies, f"words{k}x")}
-    assert set(where) <= others
+    for count in (25, 30, 33, 35, 36):
+        fill = tuple(a_line(n) for n in range(1, count))
+        bodies = flow(kit, (*fill, FigureBlock(section()), a_line(count)), kit.sheet.body_top)
+        others = {n for k in range(1, count + 1) for n in sheet_of_text(bodies, f"words{k}x")}
+        assert set(sheet_of_text(bodies, "4-#9")) <= others
 
 
 def test_a_sparse_last_sheet_is_brought_back_by_closing_the_gaps(kit: Kit) -> None:
-    lengths = {}
-    for count in range(10, 30):
-        bodies = flow(kit, tuple(a_line(n) for n in range(1, count)), kit.sheet.body_top)
-        lengths[count] = len(bodies)
-        if len(bodies) == 2:
-            sparse = bodies[1].foot - kit.sheet.body_top
-            # one line takes 11.5 + 13.5 pt and more; closing 19 gaps of 4.5 pt by half wins 43 pt: one line
-            assert sparse > 30.0
-            break
-    assert 2 in lengths.values()
+    (whole,) = flow(kit, tuple(a_line(n) for n in range(1, 11)), kit.sheet.body_top)
+    pitch = (whole.foot - kit.sheet.body_top) / 9.77  # ten lines with nine gaps of 4 pt: 10 p - 4 = 9.77 p at p = 17.5
+    fit = int(kit.sheet.body_height / pitch)
+    more = int(kit.sheet.body_height / (pitch - 2.0))  # gaps closed by half
+    assert more > fit + 2
+    assert len(flow(kit, tuple(a_line(n) for n in range(more)), kit.sheet.body_top)) == 1
+    assert len(flow(kit, tuple(a_line(n) for n in range(more + 8)), kit.sheet.body_top)) == 2
 
 
 def test_the_heading_row_is_set_again_where_a_table_runs_on(kit: Kit) -> None:

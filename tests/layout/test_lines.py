@@ -11,13 +11,15 @@ from specimen import line, m, value
 
 from calcreport.layout.fonts import Fonts
 from calcreport.layout.kit import Kit
-from calcreport.layout.lines import Part, rows_of, set_line, set_result_box, set_statement
+from calcreport.layout.lines import TAB, Part, rows_of, set_line, set_result_box, set_statement
 from calcreport.layout.model import Anchor, Box
 from calcreport.layout.pieces import Piece, flat
 from calcreport.layout.sheet import Lane
 from calcreport.report.model import Line, Reference, ResultBox, SourceLane, Statement
 
-SHORT = line(10, ("Nominal strength",), "V_n", m("V_c + V_s"), m("58.8 + 73.1"), value("131.9", "kip"), source("22.5", 8))
+SHORT = line(
+    10, ("Nominal strength",), "V_n", m("V_c + V_s"), m("58.8 + 73.1"), value("131.9", "kip"), source("22.5", 8)
+)
 LONG = line(
     11, ("Sum",), "V_u",
     m("1.2 V_D + 1.6 V_L + 0.5 V_S + 1.2 V_{SDL} + 1.6 V_{corridor}"),
@@ -52,13 +54,24 @@ def test_a_longer_line_takes_two_rows_and_a_narrow_lane_three(kit: Kit, fonts: F
 
 
 def test_equals_signs_stand_under_one_another(kit: Kit, fonts: Fonts) -> None:
-    first, second = set_line(kit, SHORT, kit.sheet.text), set_line(kit, LONG, kit.sheet.text)
-    heads = {signs(piece, fonts)[0][1] for piece in (first, second)}
-    assert len(heads) == 1  # the same column in both lines
-    rows: dict[float, list[float]] = {}
-    for y, x in signs(second, fonts):
-        rows.setdefault(y, []).append(x)
-    assert {xs[0] for xs in rows.values()} == heads
+    other = replace(LONG, symbol=m("V_s"))
+    rows: dict[tuple[int, float], float] = {}
+    for number, one in enumerate((LONG, other)):
+        for y, x in signs(set_line(kit, one, kit.sheet.text), fonts):
+            rows.setdefault((number, y), x)
+    assert len(rows) == 4  # two rows each
+    assert len(set(rows.values())) == 1  # the same column in both lines
+
+
+def test_lines_of_one_row_have_their_equals_signs_at_a_tab(kit: Kit, fonts: Fonts) -> None:
+    text = kit.sheet.text
+    heads = {
+        signs(set_line(kit, one, text), fonts)[0][1]
+        for one in (SHORT, replace(SHORT, says=("Strength",)), replace(SHORT, symbol=m("V")))
+    }
+    assert heads == {round(text.left + TAB * text.width, 2)}
+    long = replace(SHORT, says=("Nominal strength of the section in one-way shear",))
+    assert signs(set_line(kit, long, text), fonts)[0][1] > text.left + TAB * text.width
 
 
 def test_results_end_at_one_edge(kit: Kit, fonts: Fonts) -> None:
@@ -80,12 +93,16 @@ def test_nothing_of_a_line_overlaps(kit: Kit, fonts: Fonts) -> None:
         for right in (wide.right, wide.left + 190.0, wide.left + 120.0):
             piece = set_line(kit, one, Lane(wide.left, right))
             assert clashes(letters(piece, fonts)) == []
-            work = [ink for ink in inked(piece.items, fonts) if ink.left > kit.sheet.work and ink.left < kit.sheet.source]
+            work = [
+                ink for ink in inked(piece.items, fonts) if ink.left > kit.sheet.work and ink.left < kit.sheet.source
+            ]
             assert max(ink.right for ink in work) <= right + 0.3
 
 
 def test_number_citation_and_references_stand_in_their_lanes(kit: Kit, fonts: Fonts) -> None:
-    many = replace(SHORT, source=SourceLane("ASCE/SEI 7-22: 2.3.1", tuple(Reference(str(n), f"B1.{n}") for n in range(10, 40))))
+    many = replace(
+        SHORT, source=SourceLane("ASCE/SEI 7-22: 2.3.1", tuple(Reference(str(n), f"B1.{n}") for n in range(10, 40)))
+    )
     piece = set_line(kit, many, kit.sheet.text)
     left = [ink for ink in inked(piece.items, fonts) if ink.right <= kit.sheet.work]
     right = [ink for ink in inked(piece.items, fonts) if ink.left >= kit.sheet.source]
@@ -117,7 +134,9 @@ def test_a_statement_keeps_words_and_condition_in_one_row_when_they_fit(kit: Kit
 
 
 def test_a_result_box_is_ruled_round_its_words(kit: Kit, fonts: Fonts) -> None:
-    box = ResultBox(23, "B1.23", ("Use 4-#9 at the bottom, #4 stirrups, and a good many words more " * 3,), source("", 20))
+    box = ResultBox(
+        23, "B1.23", ("Use 4-#9 at the bottom, #4 stirrups, and a good many words more " * 3,), source("", 20)
+    )
     piece = set_result_box(kit, box, kit.sheet.text)
     frame = max(inked(piece.items, fonts), key=lambda ink: (ink.right - ink.left) * (ink.foot - ink.top))
     for ink in letters(piece, fonts):

@@ -38,7 +38,7 @@ def test_every_reference_is_a_link_inside_the_source_lane(kit: Kit) -> None:
 def test_the_delta_stands_outside_the_frame_and_the_cloud_round_the_lane(kit: Kit, fonts: Fonts) -> None:
     inks = inked(kit.marks.delta("2", 40.0, kit.sheet.text, 1.6), fonts)
     triangle, number, round_it = inks
-    assert 0 < triangle.left and triangle.right < kit.sheet.left
+    assert triangle.left > 0 and triangle.right < kit.sheet.left
     assert triangle.left < number.left and number.right < triangle.right
     assert triangle.top < number.top and number.foot < triangle.foot
     assert kit.sheet.work < round_it.left and round_it.right < kit.sheet.source
@@ -58,4 +58,7 @@ def test_edges_are_the_rules_or_the_clear_side_of_a_figure(kit: Kit, wide_kit: K
     text = kit.sheet.text
     assert edges(kit.sheet, text) == (kit.sheet.work, kit.sheet.source)
     assert edges(kit.sheet, Lane(text.left, text.left + 150.0)) == (kit.sheet.work, text.left + 156.0)
-    assert edges(wide_kit.sheet, wide_kit.sheet.text) == (wide_kit.sheet.text.left - 5.0, wide_kit.sheet.text.right + 5.0)
+    assert edges(wide_kit.sheet, wide_kit.sheet.text) == (
+        wide_kit.sheet.text.left - 5.0,
+        wide_kit.sheet.text.right + 5.0,
+    )

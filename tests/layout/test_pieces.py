@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 from calcreport.layout.model import Anchor, Box, Circle, Link, Placed, Run, Stroke
 from calcreport.layout.pieces import Piece, Rows, flat, parted, reach, shifted
 from calcreport.layout.words import PLAIN
@@ -33,7 +35,8 @@ def test_every_kind_of_item_moves() -> None:
         Run(1.0, 2.0, "regular", 9.0, (1,), "a"), Circle(1.0, 2.0, 3.0, 0.35), Link(1.0, 2.0, 3.0, 4.0, "x"),
         Anchor("x", 1.0, 2.0), Placed(1.0, 2.0, LETTER),
     )  # fmt: skip
-    assert all((shifted(item, 10.0, 20.0).x, shifted(item, 10.0, 20.0).y) == (11.0, 22.0) for item in items)
+    for item in items:
+        assert shifted(item, 10.0, 20.0) == replace(item, x=11.0, y=22.0)
     assert shifted(Stroke(((0.0, 0.0), (1.0, 1.0)), 0.35), 2.0, 3.0) == Stroke(((2.0, 3.0), (3.0, 4.0)), 0.35)
 
 
@@ -53,7 +56,7 @@ def test_a_piece_higher_than_a_sheet_is_parted_between_its_rows() -> None:
     assert all(strip.height <= 300.0 for strip in strips)
     assert sum(len(strip.items) for strip in strips) == 50
     for strip in strips:
-        assert all(-1e-9 <= reach(item)[0] and reach(item)[1] <= 300.0 + 1e-9 for item in strip.items)
+        assert all(reach(item)[0] >= -1e-9 and reach(item)[1] <= 300.0 + 1e-9 for item in strip.items)
 
 
 def test_an_item_higher_than_a_sheet_still_ends_on_some_sheet() -> None:

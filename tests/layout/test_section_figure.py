@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import replace
+from itertools import pairwise
 
 import pytest
 from inked import clashes, inked
@@ -20,8 +21,17 @@ INCH = 25.4
 
 def outline(box: Box) -> Stroke:
     """Return the concrete outline: the closed figure of four corners with the largest area."""
-    shapes = [item for item in flat(box.items) if isinstance(item, Stroke) and item.closed and len(item.points) == 4]
-    return max(shapes, key=lambda item: abs(item.points[2][0] - item.points[0][0]) * abs(item.points[2][1] - item.points[0][1]))
+    return max(rectangles(box), key=area)
+
+
+def rectangles(box: Box) -> list[Stroke]:
+    items = [item for item in flat(box.items) if isinstance(item, Stroke)]
+    return [item for item in items if item.closed and item.fill is None and len(item.points) == 4]
+
+
+def area(shape: Stroke) -> float:
+    (left, top), _, (right, foot), _ = shape.points
+    return abs(right - left) * abs(foot - top)
 
 
 def discs(box: Box) -> list[Circle]:
@@ -47,17 +57,15 @@ def test_outline_and_bars_are_to_one_scale(kit: Kit) -> None:
     # cover 1.5 + stirrup 0.5 + half a bar 0.564 = 2.564 in. from either face, evenly spread between
     assert (xs[0] - left) / scale == pytest.approx(2.564 * INCH)
     assert (right - xs[-1]) / scale == pytest.approx(2.564 * INCH)
-    gaps = [b - a for a, b in zip(xs, xs[1:], strict=False)]
+    gaps = [b - a for a, b in pairwise(xs)]
     assert gaps == pytest.approx([gaps[0]] * 3)
 
 
 def test_the_block_is_as_deep_as_given_and_level_with_the_section(kit: Kit) -> None:
     box = drawn(kit, section())
-    concrete = outline(box)
-    (left, top), _, (right, foot), _ = concrete.points
+    _, _, (right, foot), (_, top) = (*outline(box).points[:3], outline(box).points[1])
     scale = (foot - top) / (28 * INCH)
-    blocks = [i for i in flat(box.items) if isinstance(i, Stroke) and i.closed and len(i.points) == 4 and i.points[0][0] > right]
-    (block,) = [b for b in blocks if b.fill is None]
+    (block,) = [shape for shape in rectangles(box) if shape.points[0][0] > right]
     assert block.points[0][1] == pytest.approx(top)
     assert (block.points[2][1] - block.points[0][1]) / scale == pytest.approx(3.922 * INCH)  # a = 3.922 in.
 
@@ -87,8 +95,7 @@ def test_tension_at_the_top_turns_depths_about(kit: Kit) -> None:
     box = drawn(kit, figure)
     (_, top), _, (_, foot), _ = outline(box).points
     scale = (foot - top) / (28 * INCH)
-    blocks = [i for i in flat(box.items) if isinstance(i, Stroke) and i.closed and len(i.points) == 4 and i.fill is None]
-    feet = [max(y for _, y in block.points) for block in blocks if block is not outline(box)]
+    feet = [max(y for _, y in block.points) for block in rectangles(box) if block is not outline(box)]
     assert foot in [pytest.approx(y) for y in feet]  # the block stands on the bottom face
     assert sum((bar.y - top) / scale < 120.0 for bar in discs(box)) == 7
 
@@ -123,8 +130,8 @@ def test_labels_never_overlap_and_all_is_inside_the_box(
     box = drawn(kit, figure, width)
     inks = inked(box.items, fonts)
     assert clashes(inks) == []
-    assert all(-0.5 <= ink.left and ink.right <= box.width + 0.5 for ink in inks)
-    assert all(-0.5 <= ink.top and ink.foot <= box.descent + 0.5 for ink in inks)
+    assert all(ink.left >= -0.5 and ink.right <= box.width + 0.5 for ink in inks)
+    assert all(ink.top >= -0.5 and ink.foot <= box.descent + 0.5 for ink in inks)
 
 
 def test_only_the_section_gives_way_to_a_narrow_lane(kit: Kit) -> None:

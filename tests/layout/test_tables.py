@@ -15,9 +15,7 @@ from calcreport.report.model import Column, SourceLane, Table, TableRow
 
 
 def table(cells: tuple[tuple[str, ...], ...], stretch: int = -1, **more: object) -> Table:
-    columns = tuple(
-        Column((f"column {n}",), stretch=1.0 if n == stretch else 0.0) for n in range(len(cells[0]))
-    )
+    columns = tuple(Column((f"column {n}",), stretch=1.0 if n == stretch else 0.0) for n in range(len(cells[0])))
     return Table(columns, tuple(TableRow(tuple((cell,) for cell in row)) for row in cells), **more)  # type: ignore[arg-type]
 
 
@@ -68,9 +66,7 @@ def test_source_rows_longer_than_the_table_push_on(kit: Kit) -> None:
 
 @settings(max_examples=40, deadline=None)
 @given(
-    st.lists(
-        st.tuples(*[st.text("ab c_/é", max_size=60)] * 4), min_size=1, max_size=4
-    ),
+    st.lists(st.tuples(*[st.text("ab c_/é", max_size=60)] * 4), min_size=1, max_size=4),
     st.floats(120.0, 500.0),
 )
 def test_no_cell_leaves_the_lane_or_meets_another(

@@ -23,12 +23,14 @@ from calcreport.report.model import TitleFacts
 
 PLAIN = facts("B1  Level 2 beam on grid B, 2 to 4: flexure at midspan")
 LONG = TitleFacts(
-    project="A project with a name far longer than any title block was ever ruled for, phase two, north wing, levels 2 to 9",
+    project="A project with a name far longer than any title block was ever ruled for, phase two, levels 2 to 9",
     project_number="Q-2604 / 117-B / submittal 14 / correspondence 2026-11-16 and following",
-    subject="B12  A beam whose title goes on about its place on the plan, the grids it runs between, what it carries and why",
+    subject="B12  A beam whose title goes on about its place on the plan, the grids it runs between, and why",
     code="A code with a long name and a longer year (in.-lb), as amended by the authority having jurisdiction",
-    status="ISSUED FOR CONSTRUCTION, SECOND PART", status_note="not for construction, not for permit, not for pricing, not for fabrication",
-    revision="revision 12", date="16 November 2026", fingerprint="input 3fa2 81c0 3fa2 81c0", program="calcreport 10.20.30",
+    status="ISSUED FOR CONSTRUCTION, SECOND PART",
+    status_note="not for construction, not for permit, not for fabrication",
+    revision="revision 12", date="16 November 2026", fingerprint="input 3fa2 81c0 3fa2 81c0",
+    program="calcreport 10.20.30",
 )  # fmt: skip
 
 
@@ -78,7 +80,9 @@ def test_the_strip_keeps_to_its_height_and_says_what_fails(kit: Kit, fonts: Font
 def test_lane_rules_begin_under_a_strip(kit: Kit, fonts: Fonts) -> None:
     plain, stripped = (inked(frame_box(kit.sheet, strip).items, fonts) for strip in (False, True))
     assert min(ink.top for ink in plain if ink.right - ink.left < 0.5) == pytest.approx(kit.sheet.top, abs=0.2)
-    assert min(ink.top for ink in stripped if ink.right - ink.left < 0.5) == pytest.approx(kit.sheet.top + 17.0, abs=0.2)
+    assert min(ink.top for ink in stripped if ink.right - ink.left < 0.5) == pytest.approx(
+        kit.sheet.top + 17.0, abs=0.2
+    )
 
 
 def test_no_word_says_that_anyone_has_looked(kit: Kit) -> None:

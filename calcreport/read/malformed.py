@@ -1,0 +1,105 @@
+"""Words for text that is no YAML: what the parser stumbled over, in terms of the file.
+
+A parser's error and the source in, one problem out. Knows the error's marks and phrases, imports no YAML.
+"""
+
+from __future__ import annotations
+
+import re
+from dataclasses import dataclass
+from typing import Protocol
+
+from calcreport.core.problems import Problems
+from calcreport.core.source import Source, Span
+
+
+class _Mark(Protocol):
+    """A place of the parser's, counted from 0."""
+
+    line: int
+    column: int
+
+
+@dataclass(frozen=True, slots=True)
+class _Words:
+    message: str
+    expected: str
+    hint: str = ""
+
+
+#: phrase of the parser: our words for it
+_KNOWN: tuple[tuple[str, _Words], ...] = (
+    ("mapping values are not allowed", _Words(
+        "`: ` has no place here", "one key and its value on a line, keys of one mapping under one another",
+        "text that holds `: ` needs quotes")),
+    ("tab character", _Words("a tab stands in the indent", "spaces", "replace tabs by spaces")),
+    ("cannot start any token", _Words(
+        "text cannot begin with this character", "a letter, a digit or a quote", "put the text in quotes")),
+    ("expected ',' or ']'", _Words(
+        "the list is not closed before this", "`,` or `]`", "close the bracket; text that holds , [ ] { } needs quotes")),
+    ("expected ',' or '}'", _Words(
+        "the mapping is not closed before this", "`,` or `}`", "close the brace; text that holds , [ ] { } needs quotes")),
+    ("unexpected end of stream", _Words("a quote is opened and not closed", "the closing quote")),
+    ("expected '-' indicator", _Words("an entry of the list is missing its `- `", "`- `, indented like the entries above")),
+    ("expected key", _Words(
+        "a key is missing here", "`key: value`, indented like the keys above",
+        "a quote inside quotes is written twice: ''")),
+    ("expected <block end>", _Words(
+        "the indent does not fit what stands above", "`key: value` or `- `, indented like the lines above")),
+    ("sequence entries are not allowed", _Words(
+        "a list begins on the line of its key", "each `- ` on a line of its own, under the key")),
+    ("expected <document start>", _Words("the indent is less than that of the first line", "lines that begin alike")),
+    ("expected node content", _Words("a value is missing here", "text, a list or a mapping",
+                                     "text that begins with , ] } needs quotes")),
+    ("escape character", _Words("escapes are not read", "plain text", "write the text in single quotes")),
+    ("block scalar", _Words("more text follows a | or > on its line", "the text on the lines below, indented",
+                            "text that begins with | or > needs quotes")),
+)  # fmt: skip
+_LOST = re.compile(r"[\s\[{,]#(?=\w)")
+
+
+def say_malformed(error: Exception, source: Source, problems: Problems) -> None:
+    """Add the problem behind a parser's error: `not-yaml`, or `comment-cut` where a # swallowed a bracket."""
+    mark: _Mark | None = getattr(error, "problem_mark", None)
+    opened: _Mark | None = getattr(error, "context_mark", None)
+    start = _offset(source, opened or mark)
+    at = _offset(source, mark or opened)
+    phrase = str(getattr(error, "problem", None) or getattr(error, "reason", None) or "it cannot be read")
+    lost = _lost(source, start, at)
+    if lost is not None:
+        tail = source.text[lost:].partition("\n")[0]
+        problems.add("comment-cut", Span(source, lost, lost + len(tail)), "the rest of this line is read as a comment",
+                     expected="text that holds # after a space, or begins with it, in quotes", found=tail[:60],
+                     hint="put the text in quotes, or a space after # in a comment")  # fmt: skip
+        return
+    about = f"{phrase} {getattr(error, 'context', None) or ''}"
+    words = next((words for known, words in _KNOWN if known in about), None)
+    if words is None:
+        words = _Words(f"the file is not well formed: {phrase}", "`key: value`, lists with `- `, steady indents")
+    found = source.text[at : at + 1]
+    if "cannot start any token" in phrase and found == "\t":
+        words = dict(_KNOWN)["tab character"]
+    if "quoted scalar" in about:
+        at = start
+    problems.add(
+        "not-yaml", Span(source, at, at + 1), words.message, expected=words.expected, hint=words.hint,
+        found={"": "the end of the file", "\n": "the end of the line", "\t": "a tab"}.get(found, f"`{found}`"),
+        related=((Span(source, start, start + 1), "opened here"),) if "closed" in words.message and start != at else (),
+    )  # fmt: skip
+
+
+def _offset(source: Source, mark: _Mark | None) -> int:
+    """Return the character offset of a mark."""
+    return min(source.line_start(mark.line + 1) + mark.column, len(source.text)) if mark else 0
+
+
+def _lost(source: Source, start: int, end: int) -> int | None:
+    """Return where a # hides text between what was opened and the place where the parser missed its end."""
+    if start == end:
+        start = source.text.rfind("\n", 0, max(end - 1, 0)) + 1
+    for match in _LOST.finditer(source.text, start, end):
+        line = source.text.rfind("\n", 0, match.end() - 1) + 1
+        before = source.text[line : match.end() - 1]
+        if before.strip() and before.count("'") % 2 == 0 and before.count('"') % 2 == 0 and "# " not in before:
+            return match.end() - 1
+    return None

@@ -1,0 +1,1 @@
+"""Speed and size against two general typesetters, on the same content: `python -m tests.bench [--quick]`."""

@@ -6,6 +6,7 @@ import argparse
 import os
 import sys
 from collections.abc import Sequence
+from io import TextIOWrapper
 
 from calcreport.core.late import load_command
 from calcreport.core.version import PROGRAM
@@ -48,6 +49,10 @@ def _project(parser: argparse.ArgumentParser) -> None:
 def main(arguments: Sequence[str] | None = None) -> int:
     """Run a command; returns its exit code."""
     parsed = make_parser().parse_args(arguments)
+    for stream in (sys.stdout, sys.stderr):
+        if isinstance(stream, TextIOWrapper):
+            # a terminal that lacks a letter shows its code rather than stopping the work
+            stream.reconfigure(errors="backslashreplace")
     try:
         code = load_command(parsed.command).run(parsed)
         sys.stdout.flush()

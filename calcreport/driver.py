@@ -5,7 +5,7 @@ A World and a project's text in; problems and worked values out. `publish` goes 
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Iterable
 from dataclasses import dataclass
 
 from calcreport.calculate.cases import run_case
@@ -19,7 +19,7 @@ from calcreport.plan.link import link
 from calcreport.plan.model import Plan
 from calcreport.plan.proofs import prove_cited
 from calcreport.read.cases import read_cases
-from calcreport.read.library import Library
+from calcreport.read.library import ANY, Library
 from calcreport.read.model import Inputs, Template
 from calcreport.read.project import ProjectReader
 
@@ -62,20 +62,25 @@ def work(world: World, source: Source, progress: Progress = silent) -> Result:
 
 def _plans(inputs: Inputs, problems: Problems) -> dict[int, Plan]:
     plans: dict[int, Plan] = {}
-    for template in {id(c.template): c.template for c in inputs.calculations}.values():
+    templates = {id(c.template): c.template for c in inputs.calculations}.values()
+    for template in sound_templates(templates, problems):
         plan = make_plan(template, problems)
         if plan is not None:
             plans[id(template)] = plan
     return plans
 
 
+def sound_templates(templates: Iterable[Template], problems: Problems) -> list[Template]:
+    """Return the templates whose files were read without a problem; others would only be misread further."""
+    return [template for template in templates if not problems.stand_in(template.files)]
+
+
 def make_plan(template: Template, problems: Problems) -> Plan | None:
     """Plan a template: names bound, dimensions held, cited equations proved on request only."""
-    before = len(problems)
+    before = problems.met
     plan = link(template, problems)
-    if plan is not None:
-        hold_dimensions(plan, problems)
-    return plan if len(problems) == before else None
+    hold_dimensions(plan, problems)
+    return plan if problems.met == before else None
 
 
 def lint_template(world: World, name: str) -> TemplateReport:
@@ -85,15 +90,17 @@ def lint_template(world: World, name: str) -> TemplateReport:
     head = library.head(name, None)
     variants: list[str] = []
     plans: dict[int, Plan] = {}
+    templates: list[Template] = []
     for system, code in head.codes if head else ():
         for year in (head.years if head else ()) or ("",):
-            editions = tuple(sorted(((code, year), ("*", ""))))
-            template = library.template(name, system, editions, None)
+            template = library.template(name, system, tuple(sorted(((code, year), (ANY, "")))), None)
             variants.append(f"{system} {year}".strip())
-            plan = make_plan(template, problems) if template is not None else None
-            if template is not None and plan is not None:
-                plans[id(template)] = plan
-                prove_cited(plan, problems)
+            templates += [template] if template is not None else []
+    for template in sound_templates(templates, problems):
+        plan = make_plan(template, problems)
+        if plan is not None:
+            plans[id(template)] = plan
+            prove_cited(plan, problems)
     cases = _run_cases(world, name, library, plans, problems) if not problems else 0
     return TemplateReport(problems.sorted(), tuple(variants), cases)
 

@@ -109,6 +109,15 @@ def _read(path: Path, largest: int) -> bytes | str:
         return (error.strerror or "it cannot be read").lower()
 
 
+def make_folder(path: Path) -> str:
+    """Make a folder, or take one that is empty. Returns '' or why not."""
+    try:
+        path.mkdir(parents=True, exist_ok=True)
+        return "files stand in it" if any(path.iterdir()) else ""
+    except OSError as error:
+        return (error.strerror or "it cannot be made").lower()
+
+
 def replace_file(path: Path, data: bytes) -> str:
     """Write a file whole or not at all: beside it first, then moved into place. Returns '' or why not."""
     beside = path.parent / f".{path.name[:80]}.{os.getpid()}.part"

@@ -7,17 +7,16 @@ from __future__ import annotations
 
 from calcreport.calculate.evaluate import Program
 from calcreport.calculate.handing import find_path, hand_values
-from calcreport.calculate.model import Plan, Worked
+from calcreport.calculate.model import Case, Expected, Plan, Worked
 from calcreport.core.problems import Problems
 from calcreport.core.quantity import Amount
-from calcreport.read.cases import Case, Expected
 
 
 def run_case(case: Case, plan: Plan, problems: Problems) -> Worked | None:
     """Work one case and add a `case-differs` for each expectation it misses."""
-    before = len(problems)
+    before = problems.met
     values = hand_values(case.calculation, plan, {}, problems)
-    if len(problems) > before:
+    if problems.met > before:
         return None
     worked = Program(plan).run(case.calculation, values, "")
     if case.stops or worked.stop:

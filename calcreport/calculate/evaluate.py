@@ -11,6 +11,7 @@ from dataclasses import dataclass
 
 from calcreport.calculate.compile import NoValue, condition, formula, holds
 from calcreport.calculate.model import (
+    Calculation,
     Comparison,
     Kind,
     Plan,
@@ -43,7 +44,6 @@ from calcreport.calculate.model import (
 )
 from calcreport.core.expression import Compare, Condition, Expression, Logic, Name, Not, Number
 from calcreport.core.source import Citation, Span
-from calcreport.read.model import Calculation
 
 #: rows of one set at most
 MOST_ROWS = 1000
@@ -229,14 +229,17 @@ class _Run:
             if arm.when is None or self.holds(arm.when, line.span, line.cite):
                 break
         node = arm.formula
-        symbol = self.program.plan.slots[line.slot].symbol
-        if symbol.kind == "word":
-            assert isinstance(node, Name)
-            key = self.store(line.slot, node.name, node)
-            return WorkedGives(line, number, key, self.opened, _no_work)
-        work = self.program.work(node)
-        key = self.store(line.slot, self.value(node, line.span, line.cite), node)
-        return WorkedGives(line, number, key, self.opened, work)
+        key = self.fill(line.slot, node, line.span, line.cite)
+        word = self.program.plan.slots[line.slot].symbol.kind == "word"
+        return WorkedGives(line, number, key, self.opened, _no_work if word else self.program.work(node))
+
+    def fill(self, slot: int, node: Expression, at: Span, cite: Citation) -> tuple[int, ...]:
+        """Work a formula into a slot; a word is a word of its list, or taken from another symbol."""
+        if self.program.plan.slots[slot].symbol.kind != "word":
+            return self.store(slot, self.value(node, at, cite), node)
+        assert isinstance(node, Name)
+        word = node.name if node.slot < 0 else str(self.values.get(node.slot, self.values.key(node.slot)))
+        return self.store(slot, word, node)
 
     # -------------------------------------------------------- blocks
 
@@ -302,7 +305,7 @@ class _Run:
     def cells(self, line: PlannedRows, number: int, pairing: dict[str, str]) -> None:
         for column, cell in zip(line.columns, line.entries[number].cells, strict=True):
             if not isinstance(cell, tuple):
-                self.store(column.slot, self.value(cell, line.span, line.cite), cell)
+                self.fill(column.slot, cell, line.span, line.cite)
                 continue
             mapped = {pairing.get(name, name): node for name, node in cell}
             before = self.values.open[column.over]
@@ -311,7 +314,7 @@ class _Run:
                 if node is None:
                     raise _Stopped(Stop(line.span, f"no value for the row {name}", line.cite.printed))
                 self.values.open[column.over] = row
-                self.store(column.slot, self.value(node, line.span, line.cite), node)
+                self.fill(column.slot, node, line.span, line.cite)
             self.values.open[column.over] = before
 
     # -------------------------------------------------------- judging

@@ -9,11 +9,23 @@ import re
 from fractions import Fraction
 
 from calcreport.calculate.exact import worked_slot
-from calcreport.calculate.model import Key, Plan, PlannedGiven, Value, Values, Worked
-from calcreport.core.problems import Problems, nearest
+from calcreport.calculate.model import (
+    BarCallout,
+    Calculation,
+    GivenPairs,
+    GivenRows,
+    GivenValue,
+    Key,
+    LinkedValue,
+    Plan,
+    PlannedGiven,
+    Value,
+    Values,
+    Worked,
+)
+from calcreport.core.problems import Problems
 from calcreport.core.quantity import Amount
 from calcreport.core.source import Span
-from calcreport.read.model import BarCallout, Calculation, GivenPairs, GivenRows, GivenValue, LinkedValue
 
 _STEP = re.compile(r"([A-Za-z][\w.]*)\[([^\]]*)\]\.")
 
@@ -92,7 +104,7 @@ class _Hander:
                         f"`{value.given.name}` names a row `{name[:40]}` that is not given",
                         expected="one of " + ", ".join(known),
                         found=name[:40],
-                        hint=nearest(name, known),
+                        hint=self.problems.near(name, known),
                     )
                     return
             key = tuple(known.index(name) for name, known in zip(row_names, names, strict=True))
@@ -143,7 +155,7 @@ def find_path(worked: Worked, path: str, span: Span, problems: Problems) -> tupl
                 f"{mark} has no row `{step[2][:40]}` in `{step[1][:40]}`",
                 expected="one of " + ", ".join(names) if names else "a set of that calculation",
                 found=step[2][:40],
-                hint=nearest(step[2], names),
+                hint=problems.near(step[2], names),
             )
             return None
         key.append(names.index(step[2]))
@@ -156,7 +168,7 @@ def find_path(worked: Worked, path: str, span: Span, problems: Problems) -> tupl
             f"{mark} gives no `{rest[:40]}`",
             expected="a symbol of that calculation",
             found=rest[:40],
-            hint=nearest(rest, worked.plan.by_path),
+            hint=problems.near(rest, worked.plan.by_path),
         )
         return None
     if len(worked.values.sets[slot]) != len(key):

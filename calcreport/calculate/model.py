@@ -13,7 +13,16 @@ from typing import Literal, TypeAlias
 from calcreport.core.expression import Compare, Condition, Expression
 from calcreport.core.source import Span
 from calcreport.plan.model import (
+    BarCallout,
+    Calculation,
+    Case,
+    Expected,
     FigureInput,
+    GivenPairs,
+    GivenRows,
+    GivenValue,
+    Inputs,
+    LinkedValue,
     Plan,
     PlannedArm,
     PlannedBranches,
@@ -27,17 +36,9 @@ from calcreport.plan.model import (
     PlannedRequire,
     PlannedRows,
     PlannedText,
+    Project,
     RowSet,
     Slot,
-)
-from calcreport.read.model import (
-    BarCallout,
-    Calculation,
-    GivenPairs,
-    GivenRows,
-    GivenValue,
-    LinkedValue,
-    Project,
     Symbol,
     ValueOrigin,
 )
@@ -259,11 +260,15 @@ class WorkedProject:
 
 __all__ = [
     "BarCallout",
+    "Calculation",
+    "Case",
     "Comparison",
+    "Expected",
     "FigureInput",
     "GivenPairs",
     "GivenRows",
     "GivenValue",
+    "Inputs",
     "Key",
     "LinkedValue",
     "Plan",

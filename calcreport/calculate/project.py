@@ -10,12 +10,24 @@ import hashlib
 from collections.abc import Callable
 
 from calcreport.calculate.evaluate import Program
+from calcreport.calculate.exact import worked_slot
 from calcreport.calculate.handing import find_path, hand_values
-from calcreport.calculate.model import Plan, Worked, WorkedProject
-from calcreport.core.problems import Problems, nearest
+from calcreport.calculate.model import (
+    BarCallout,
+    Calculation,
+    GivenPairs,
+    GivenRows,
+    GivenValue,
+    Inputs,
+    Key,
+    LinkedValue,
+    Plan,
+    Worked,
+    WorkedProject,
+)
+from calcreport.core.problems import Problems, listed
 from calcreport.core.quantity import Amount
-from calcreport.core.units import name_dimension
-from calcreport.read.model import BarCallout, Calculation, GivenPairs, GivenRows, GivenValue, Inputs, LinkedValue
+from calcreport.core.units import dimension_words
 
 
 def work_project(
@@ -30,17 +42,18 @@ def work_project(
     for done, place in enumerate(order):
         calculation = calculations[place]
         plan = plans.get(id(calculation.template))
-        if plan is None or not _hold_links(calculation, worked, by_mark, problems):
+        if plan is None or not _hold_links(calculation, worked, by_mark, inputs.poisoned, problems):
             continue
-        before = len(problems)
+        before = problems.met
         program = programs.setdefault(id(plan), Program(plan))
         values = hand_values(calculation, plan, worked, problems)
-        if len(problems) == before:
+        if problems.met == before:
             worked[calculation.mark] = program.run(calculation, values, _fingerprint(calculation, worked))
         progress(done + 1, len(order))
     kept = tuple(worked[c.mark] for c in calculations if c.mark in worked)
     marks = [w.calculation.mark for w in kept]
     places = tuple(marks.index(calculations[p].mark) for p in order if calculations[p].mark in worked)
+    _hold_dispositions(inputs, kept, problems)
     whole = hashlib.sha256("\n".join(w.fingerprint for w in kept).encode())
     for source in inputs.project.files:
         whole.update(source.text.encode())
@@ -104,11 +117,18 @@ def _needed(calculation: Calculation, by_mark: dict[str, int]) -> list[tuple[int
 
 
 def _hold_links(
-    calculation: Calculation, worked: dict[str, Worked], by_mark: dict[str, int], problems: Problems
+    calculation: Calculation,
+    worked: dict[str, Worked],
+    by_mark: dict[str, int],
+    poisoned: frozenset[str],
+    problems: Problems,
 ) -> bool:
     """Tell whether every link of a calculation leads to a value of the right dimension."""
     good = True
     for value, link in _links(calculation):
+        if link.mark in poisoned:
+            good = False
+            continue
         if link.mark not in by_mark:
             problems.add(
                 "unknown-name",
@@ -116,7 +136,7 @@ def _hold_links(
                 f"there is no calculation `{link.mark[:40]}`",
                 expected="the mark of a calculation of this project",
                 found=link.mark[:40],
-                hint=nearest(link.mark, by_mark),
+                hint=problems.near(link.mark, by_mark),
             )
             good = False
             continue
@@ -124,26 +144,50 @@ def _hold_links(
         if source is None:
             good = False
             continue
-        if source.stop is not None and link.path not in source.plan.by_path:
-            good = False
         place = find_path(source, link.path, link.span, problems)
-        if place is None:
-            good = False
-            continue
-        symbol = source.plan.slots[place[0]].symbol
-        wanted = value.given.symbol
-        if wanted is None or (wanted.kind != symbol.kind and "word" in (wanted.kind, symbol.kind)):
-            good = False
-        elif wanted.unit and symbol.unit and wanted.unit.dimension != symbol.unit.dimension:
-            problems.add(
-                "unit-mismatch",
-                link.span,
-                f"`{link.mark}.{link.path}` is not what `{value.given.name}` takes",
-                expected=f"{name_dimension(wanted.unit.dimension)} for {value.given.name}",
-                found=f"{name_dimension(symbol.unit.dimension)}, in {symbol.unit.text}",
-            )
-            good = False
+        good = place is not None and _fits(value, link, source, place, problems) and good
     return good
+
+
+def _fits(
+    value: GivenValue, link: LinkedValue, source: Worked, place: tuple[int, Key], problems: Problems
+) -> bool:
+    """Hold a linked value against the declaration it fills: dimension or words, count, range."""
+    given, found = value.given, source.values.get(*place)
+    wanted, symbol = given.symbol, source.plan.slots[place[0]].symbol
+    name = f"`{link.mark}.{link.path}`"
+    if wanted is None or wanted.unit is None or symbol.unit is None:
+        words = wanted.words if wanted else ()
+        if isinstance(found, str) and found in words:
+            return True
+        expected = listed(words) if words else dimension_words(wanted.unit.dimension) if wanted and wanted.unit else ""
+        shown = found if isinstance(found, str) else "a quantity"
+        problems.add("unit-mismatch", link.span, f"{name} is not what `{given.name}` takes", expected=expected, found=shown)
+        return False
+    if wanted.unit.dimension != symbol.unit.dimension:
+        problems.add(
+            "unit-mismatch",
+            link.span,
+            f"{name} is not what `{given.name}` takes",
+            expected=f"{dimension_words(wanted.unit.dimension)} for {given.name}",
+            found=f"{dimension_words(symbol.unit.dimension)}, in {symbol.unit.text}",
+        )
+        return False
+    exact = worked_slot(*place, source.values)
+    if wanted.kind == "count" and (exact < 0 or exact.denominator != 1):
+        problems.add("not-a-number", link.span, f"`{given.name}` is a count", expected="a whole number, 0 or more", found=name)
+        return False
+    if given.range is None or given.range.holds(exact):
+        return True
+    problems.add(
+        "out-of-range",
+        link.span,
+        f"{name} is outside what the template covers",
+        expected=f"{given.name} {given.range.text}",
+        found=f"{float(exact / symbol.unit.scale):.6g} {symbol.unit.text}",
+        related=((given.range.span, "the template states the range"),),
+    )
+    return False
 
 
 def _fingerprint(calculation: Calculation, worked: dict[str, Worked]) -> str:
@@ -182,3 +226,23 @@ def _canonical(value: GivenValue, worked: dict[str, Worked]) -> bytes:
             return b"none"
         case _:
             return handed.encode()
+
+
+def _hold_dispositions(inputs: Inputs, kept: tuple[Worked, ...], problems: Problems) -> None:
+    """Hold every word of the engineer against a check or a limit state that is there."""
+    if inputs.poisoned or len(kept) < len(inputs.calculations):
+        return
+    checks = {f"{w.calculation.mark}.{check.line.name}" for w in kept for check in w.checks}
+    states = {state for w in kept for state in w.plan.template.excludes}
+    states |= {f"{w.calculation.mark} {state}" for w in kept for state in w.plan.template.excludes}
+    for disposition in inputs.project.dispositions:
+        name, known = (disposition.check, checks) if disposition.check else (disposition.limit_state, states)
+        if name and name not in known:
+            problems.add(
+                "unknown-name",
+                disposition.span.part(0, 1),
+                f"nothing here is called `{name[:60]}`",
+                expected="MARK.check, or a limit state a template leaves out, alone or after a mark",
+                found=name[:60],
+                hint=problems.near(name, known),
+            )

@@ -3,12 +3,13 @@
 from __future__ import annotations
 
 import json
+import os
 from argparse import Namespace
 from pathlib import Path
 
-from calcreport.commands.desk import ProgressLine, open_project, say_problems
-from calcreport.core.problems import Problems
-from calcreport.filesystem import replace_file
+from calcreport.commands.desk import UNWRITTEN, ProgressLine, one_problem, open_project, say_problems
+from calcreport.core.problems import Problem
+from calcreport.filesystem import begins_with, replace_file
 from calcreport.publish import Package, build
 from calcreport.report.summary import summary_lines
 
@@ -17,20 +18,28 @@ def run(arguments: Namespace) -> int:
     """Build; an earlier PDF stays whole unless the new one is finished."""
     opened = open_project(arguments.project)
     if isinstance(opened, tuple):
-        return say_problems(opened, arguments.json)
+        return say_problems(opened, arguments.json, tail=UNWRITTEN)
     progress = ProgressLine()
     package = build(opened.world, opened.source, progress)
     progress.clear()
     if package.problems:
-        return say_problems(package.problems, arguments.json)
+        return say_problems(package.problems, arguments.json, tail=UNWRITTEN)
     target = Path(arguments.output) if arguments.output else opened.path.with_suffix(".pdf")
-    failure = replace_file(target, package.data)
+    failure = _write(target, package.data)
     if failure:
-        problems = Problems()
-        problems.add("cannot-write", None, f"{target} cannot be written", expected="a folder that can be written to",
-                     found=failure)  # fmt: skip
-        return say_problems(problems.sorted(), arguments.json)
+        return say_problems(failure, arguments.json, tail=UNWRITTEN)
     return _tell(package, target, arguments.json)
+
+
+def _write(target: Path, data: bytes) -> tuple[Problem, ...]:
+    """Put the PDF in its place; only an earlier PDF may be replaced, never a project file given by mistake."""
+    if os.path.isfile(target) and os.path.getsize(target) and not begins_with(target, b"%PDF-"):
+        return one_problem("cannot-write", f"{target} is kept as it is", "a new name, or an earlier PDF",
+                           "a file that is no PDF", "name the PDF after -o")  # fmt: skip
+    failure = replace_file(target, data)
+    if not failure:
+        return ()
+    return one_problem("cannot-write", f"{target} cannot be written", "a folder that can be written to", failure)
 
 
 def _tell(package: Package, target: Path, as_json: bool) -> int:

@@ -3,11 +3,12 @@
 from __future__ import annotations
 
 import json
+import os
 import sys
 from dataclasses import dataclass
 from pathlib import Path
 
-from calcreport.core.problems import Problem, Problems, render, to_json
+from calcreport.core.problems import MOST_KEPT, Problem, Problems, render, to_json
 from calcreport.core.source import Source
 from calcreport.filesystem import Disk, library_folder, read_text
 
@@ -23,31 +24,35 @@ class Opened:
 
 def open_project(name: str) -> Opened | tuple[Problem, ...]:
     """Open a project file, or the `project.yaml` of a folder; returns the problem where it cannot be read."""
-    path = Path(name)
-    if path.is_dir():
-        path = path / "project.yaml"
+    path = Path(name, "project.yaml") if os.path.isdir(name) else Path(name)
     found = read_text(path.parent, path.name)
     if isinstance(found, str):
-        problems = Problems()
-        problems.add("no-file", None, f"{path} cannot be read", expected="a project file, or a folder with project.yaml",
-                     found=found)  # fmt: skip
-        return problems.sorted()
-    shown = Source(str(path), found.text)
-    return Opened(path, Disk(path.parent, library_folder()), shown)
+        return one_problem("no-file", f"{path} cannot be read", "a project file, or a folder with project.yaml", found)
+    return Opened(path, Disk(path.parent, library_folder()), found)
 
 
-def say_problems(problems: tuple[Problem, ...], as_json: bool = False) -> int:
-    """Print problems and return exit code 2."""
+def one_problem(slug: str, message: str, expected: str, found: str, hint: str = "") -> tuple[Problem, ...]:
+    """Return a problem that has no place in a file."""
+    problems = Problems()
+    problems.add(slug, None, message, expected=expected, found=found, hint=hint)
+    return problems.sorted()
+
+
+def say_problems(problems: tuple[Problem, ...], as_json: bool = False, *, tail: str = "") -> int:
+    """Print problems and return exit code 2; `tail` says what became of the work."""
     if as_json:
         print(json.dumps({"problems": [to_json(problem) for problem in problems]}, indent=1, ensure_ascii=False))
         return 2
     for problem in problems:
         print(render(problem), file=sys.stderr)
-    count = len(problems)
-    slugs = sorted({problem.slug for problem in problems})
-    print(f"{count} problem{'s' if count != 1 else ''}; nothing was written. "
-          f"`calcreport explain {slugs[0]}` tells more.", file=sys.stderr)  # fmt: skip
+    many = f"{len(problems)} or more problems" if len(problems) >= MOST_KEPT else f"{len(problems)} problems"
+    count = "1 problem" if len(problems) == 1 else many
+    slugs = list(dict.fromkeys(problem.slug for problem in problems))
+    print(f"{count}{tail}. `calcreport explain {slugs[0]}` tells more.", file=sys.stderr)
     return 2
+
+
+UNWRITTEN = "; nothing was written"
 
 
 class ProgressLine:

@@ -3,13 +3,17 @@
 from __future__ import annotations
 
 import json
+import os
 from argparse import Namespace
 from pathlib import Path
 
 from calcreport.commands.desk import open_project, say_problems
-from calcreport.core.problems import to_json
+from calcreport.core.source import Source
 from calcreport.driver import lint_template, work
 from calcreport.filesystem import Disk, library_folder, read_text
+
+#: keys that only a template, and only a project, has at its left margin
+_TEMPLATE, _PROJECT = ("template:", "lines:", "given:"), ("calculations:", "project:", "office:")
 
 
 def run(arguments: Namespace) -> int:
@@ -34,15 +38,16 @@ def run(arguments: Namespace) -> int:
 
 
 def _template_name(file: str) -> tuple[Disk, str] | None:
-    """Return a template's name and world where the argument is one: a library name, or a file with `template:`."""
+    """Return a template's name and world where the argument is one: a library name, or a template's file."""
     library = library_folder()
-    if Disk(Path("."), library).template_text(f"{file}.yaml").__class__ is not str and not Path(file).exists():
+    if not os.path.exists(file) and isinstance(read_text(library, f"{file}.yaml"), Source):
         return Disk(Path("."), library), file
-    path = Path(file)
-    if not path.is_file():
+    # a case file stands for the template it belongs to
+    path = Path(file.removesuffix(".cases.yaml") + ".yaml") if file.endswith(".cases.yaml") else Path(file)
+    if path.suffix != ".yaml":
         return None
     found = read_text(path.parent, path.name)
-    if isinstance(found, str) or not any(line.startswith("template:") for line in found.text.split("\n")):
+    if not isinstance(found, Source) or not _is_template(found.text):
         return None
     real = path.resolve()
     if library.resolve() in real.parents:
@@ -50,12 +55,17 @@ def _template_name(file: str) -> tuple[Disk, str] | None:
     return Disk(path.parent, library), path.stem
 
 
+def _is_template(text: str) -> bool:
+    lines = text.split("\n")
+    return any(line.startswith(_TEMPLATE) for line in lines) and not any(line.startswith(_PROJECT) for line in lines)
+
+
 def _template(disk: Disk, name: str, *, as_json: bool) -> int:
     report = lint_template(disk, name)
     if report.problems:
         return say_problems(report.problems, as_json)
     if as_json:
-        print(json.dumps({"problems": [to_json(p) for p in report.problems], "variants": report.variants, "cases": report.cases}))
+        print(json.dumps({"problems": [], "variants": report.variants, "cases": report.cases}))
     else:
         print(f"{name}: no problems in {', '.join(report.variants)}; {report.cases} cases agree")
     return 0

@@ -24,11 +24,6 @@ def run(arguments: Namespace) -> int:
             if head is not None:
                 print(f"{name:<34} {_editions(head):<28} {head.title}")
         return say_problems(problems.sorted()) if problems else 0
-    if arguments.name not in disk.template_names() and isinstance(disk.template_text(f"{arguments.name}.yaml"), str):
-        from_list = ", ".join(disk.template_names())
-        problems.add("no-template", None, f"there is no template `{arguments.name}`", expected=f"one of {from_list}",
-                     found=arguments.name)  # fmt: skip
-        return say_problems(problems.sorted())
     head = library.head(arguments.name, None)
     if head is None:
         return say_problems(problems.sorted())

@@ -4,8 +4,8 @@ from __future__ import annotations
 
 from argparse import Namespace
 
-from calcreport.commands.desk import open_project, say_problems
-from calcreport.core.problems import Problems, nearest
+from calcreport.commands.desk import one_problem, open_project, say_problems
+from calcreport.core.problems import nearest
 from calcreport.publish import report
 from calcreport.report.traced import trace_lines
 
@@ -23,11 +23,9 @@ def run(arguments: Namespace) -> int:
     known = script.worked.plan.by_path if script else result.composed.scripts
     lines = trace_lines(mark, symbol, result.composed.scripts, result.composed.forms) if script and symbol in known else ()
     if not lines:
-        problems = Problems()
-        wanted = symbol if script else mark
-        problems.add("unknown-name", None, f"there is no value `{arguments.value}`", expected="MARK.SYMBOL, such as B1.phiM_n",
-                     found=arguments.value, hint=nearest(wanted, known))  # fmt: skip
-        return say_problems(problems.sorted())
+        hint = nearest(symbol if script else mark, known)
+        return say_problems(one_problem("unknown-name", f"there is no value `{arguments.value}`",
+                                        "MARK.SYMBOL, such as B1.phiM_n", arguments.value, hint))  # fmt: skip
     for line in lines:
         print(line)
     return 0

@@ -95,6 +95,8 @@ class Over:
     where: Condition | None
     otherwise: Expression | None
     span: Span
+    #: place of the set's name
+    rows_span: Span
     bound: int = -1
 
 

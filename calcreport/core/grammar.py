@@ -316,4 +316,4 @@ class _Parser(Cursor):
         if token.text == "linear" and not (isinstance(where, Compare) and where.op == "="):
             self.stop(token.start, token.end, "`linear` needs the place to read at",
                       "linear(y over S where x = e)", "no such condition")  # fmt: skip
-        return Over(token.text, body, rows.name, where, otherwise, self.since(token.start))
+        return Over(token.text, body, rows.name, where, otherwise, self.since(token.start), rows.span)

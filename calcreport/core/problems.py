@@ -36,12 +36,14 @@ class Problem:
 
 
 class Problems:
-    """Collects problems; the same slug at the same place is kept once, and no more than `MOST_KEPT`."""
+    """Collects problems; the same words at the same place are kept once, and no more than `MOST_KEPT` in all."""
 
     def __init__(self) -> None:
         self._kept: list[Problem] = []
-        self._seen: set[tuple[str, str, int]] = set()
+        self._seen: set[tuple[str, str, str, int]] = set()
         self._sources: set[Source] = set()
+        #: problems met so far, those met before and those beyond the bound among them: whether a step went well
+        self.met = 0
 
     def add(
         self,
@@ -54,10 +56,11 @@ class Problems:
         hint: str = "",
         related: tuple[tuple[Span, str], ...] = (),
     ) -> None:
-        """Keep a problem unless one of its slug already stands at its place."""
+        """Keep a problem unless it is kept already: what is read for two unit systems is found twice."""
+        self.met += 1
         if span is not None:
             self._sources.add(span.source)
-        key = (slug, span.source.shown, span.start) if span else (slug, message, 0)
+        key = (slug, message, span.source.shown if span else "", span.start if span else 0)
         if key not in self._seen and len(self._kept) < MOST_KEPT:
             self._seen.add(key)
             self._kept.append(Problem(slug, span, message, expected, found, hint, related))

@@ -17,7 +17,7 @@ from calcreport.layout.model import Item, Placed, Stroke
 from calcreport.layout.pieces import Piece, Rows
 from calcreport.layout.sheet import FRAME, HAIRLINE, Lane
 from calcreport.layout.tables import set_table
-from calcreport.layout.words import HEADINGS, PLAIN, QUIET
+from calcreport.layout.words import HEADINGS, PLAIN, QUIET, TextStyle
 from calcreport.report.model import (
     Block,
     CheckLine,
@@ -25,6 +25,7 @@ from calcreport.report.model import (
     Givens,
     Heading,
     Line,
+    Listing,
     Paragraph,
     ResultBox,
     Statement,
@@ -35,6 +36,9 @@ from calcreport.report.model import (
 MEASURE = 430.0
 #: Paragraphs of more lines than this may part between sheets, two lines at least on each.
 WHOLE = 6
+#: Style of a file's lines, and room for their numbers.
+FILE = TextStyle("regular", 7.5, 8.8)
+NUMBERS = 26.0
 
 
 def set_block(kit: Kit, block: Block, lane: Lane) -> tuple[Piece, ...]:
@@ -52,6 +56,8 @@ def set_block(kit: Kit, block: Block, lane: Lane) -> tuple[Piece, ...]:
             return set_givens(kit, block, lane)
         case Table():
             return set_table(kit, block, lane)
+        case Listing():
+            return set_listing(kit, block, lane)
         case Heading():
             return (set_heading(kit, block, lane),)
         case Paragraph():
@@ -71,7 +77,7 @@ def set_heading(kit: Kit, heading: Heading, lane: Lane) -> Piece:
     style = HEADINGS.get(heading.level, HEADINGS[3])
     rows = Rows()
     rows.words(kit.lettering.set((heading.text,), style, lane.width), style, lane.left)
-    return Piece(rows.y, tuple(rows.items), 9.0 - heading.level, keep=True)
+    return Piece(rows.y, tuple(rows.items), 7.5 - 1.5 * heading.level, keep=True)
 
 
 def set_paragraph(kit: Kit, paragraph: Paragraph, lane: Lane) -> tuple[Piece, ...]:
@@ -90,9 +96,29 @@ def set_paragraph(kit: Kit, paragraph: Paragraph, lane: Lane) -> tuple[Piece, ..
         if barred:
             weight = FRAME * 1.4 if paragraph.kind == "caution" else HAIRLINE
             items.insert(0, Stroke(((lane.left + 1.0, 0.0), (lane.left + 1.0, rows.y)), weight))
+        if place == 0 and paragraph.source.citation:
+            placed, foot = kit.marks.source(paragraph.source, PLAIN.rise, rows.y)
+            items.extend(placed)
+            rows.y = max(rows.y, foot)
         keep = len(groups) > 1 and place in (0, len(groups) - 2)
         keep = keep or (place == len(groups) - 1 and _announces(paragraph))
         pieces.append(Piece(rows.y, tuple(items), 4.5 if place == 0 else 0.0, keep=keep))
+    return tuple(pieces)
+
+
+def set_listing(kit: Kit, listing: Listing, lane: Lane) -> tuple[Piece, ...]:
+    """Set the lines of a file close under one another, each with its number; a long line hangs."""
+    pieces: list[Piece] = []
+    left = lane.left + NUMBERS
+    for number, text in enumerate(listing.lines, 1):
+        rows = Rows()
+        label = kit.lettering.label(str(number), FILE.face, FILE.size)
+        lines = kit.lettering.set((text,), FILE, lane.right - left) if text else ()
+        baseline = rows.words(lines, FILE, left) if lines else FILE.leading - 2.0
+        rows.items.append(Placed(left - 8.0 - label.width, baseline, label))
+        pieces.append(
+            Piece(max(rows.y, FILE.leading), tuple(rows.items), 3.0 if number == 1 else 0.0, keep=number == 1)
+        )
     return tuple(pieces)
 
 

@@ -25,7 +25,7 @@ TAB, VERDICT = 112.0, 36.0
 def set_check(kit: Kit, check: CheckLine, lane: Lane) -> Piece:
     """Set one check, in one row where it fits."""
     loud = check.verdict == "NG"
-    rows = Rows(5.5 if loud else 2.4)
+    rows = Rows(5.5 if loud else 1.6)
     name = _name(kit, check.name)
     end = _verdict(kit, check, lane)
     tail = lane.right - min((x for x, _ in end), default=lane.right)
@@ -43,7 +43,7 @@ def set_check(kit: Kit, check: CheckLine, lane: Lane) -> Piece:
 def _closed(kit: Kit, rows: Rows, check: CheckLine, baseline: float, lane: Lane) -> Piece:
     """Rule the check off and add its marks."""
     loud = check.verdict == "NG"
-    rows.y += 5.5 if loud else 1.6
+    rows.y += 5.5 if loud else 1.0
     piece = kit.marks.numbered(rows, baseline, check.number, check.anchor, check.source, check.delta, lane)
     if loud:
         items = (*loud_bar(kit.sheet, piece.height), *piece.items)

@@ -143,7 +143,8 @@ class Filling:
             if not pieces[place].keep:
                 sheet = len(self.sheets)
                 self._settle()
-                if len(self.sheets) > sheet and lane is not self._lane(self.blocks[block]):
+                # a table of givens takes the whole lane again below the figure, a block on a new sheet its own
+                if (len(self.sheets) > sheet or self.beside is not None) and lane is not self._lane(self.blocks[block]):
                     other = self._pieces(block, self._lane(self.blocks[block]))
                     if len(other) == len(pieces):
                         pieces, lane = other, self._lane(self.blocks[block])

@@ -13,13 +13,13 @@ from calcreport.layout.pieces import Piece
 from calcreport.report.model import Block
 
 #: Width a figure beside lines is drawn in.
-WIDEST = 206.0
+WIDEST = 178.0
 #: A last sheet filled less than this is worth closing the gaps for.
-SPARSE = 0.36
+SPARSE = 0.5
 
 OPEN = Manner(1.0, WIDEST)
 #: Manners tried, in order, to bring a sparse last sheet back.
-CLOSER = (Manner(0.75, WIDEST), *(Manner(gaps, 168.0) for gaps in (0.75, 0.6, 0.5, 0.42, 0.36)))
+CLOSER = (Manner(0.75, WIDEST), *(Manner(gaps, 168.0) for gaps in (0.75, 0.6, 0.5, 0.42, 0.36, 0.25)))
 
 
 def flow(kit: Kit, blocks: tuple[Block, ...], top: float) -> tuple[Body, ...]:

@@ -33,9 +33,7 @@ _KEPT = 20_000
 
 def _mathematical_italics() -> dict[str, str]:
     """Pair letters with their code points as mathematical italics (Unicode chart U+1D400)."""
-    pairs = {chr(65 + i): chr(0x1D434 + i) for i in range(26)} | {
-        chr(97 + i): chr(0x1D44E + i) for i in range(26)
-    }
+    pairs = {chr(65 + i): chr(0x1D434 + i) for i in range(26)} | {chr(97 + i): chr(0x1D44E + i) for i in range(26)}
     pairs |= {chr(0x3B1 + i): chr(0x1D6FC + i) for i in range(25)}
     # h is an older character; the strength reduction factor is printed with the stroked phi (common practice)
     return pairs | {
@@ -132,9 +130,7 @@ class Fonts:
     def box(self, text: str, face: Face, size: float, manner: Manner = PLAIN) -> Box:
         """Set words as a box; its extents are those of any line of words of this size."""
         width = self._shape(text, face, manner)[0] * size / 1000
-        return Box(
-            width, _ASCENT * size / 1000, _DESCENT * size / 1000, self.run(text, face, size, manner=manner)
-        )
+        return Box(width, _ASCENT * size / 1000, _DESCENT * size / 1000, self.run(text, face, size, manner=manner))
 
     def missing(self, text: str) -> str:
         """List the characters of a text that neither words nor formulas can show."""
@@ -173,9 +169,7 @@ class Fonts:
             at, start = at + width, end
         return at, tuple(pieces)
 
-    def _piece(
-        self, face: Face, start: int, glyphs: list[int], text: str, manner: Manner
-    ) -> tuple[_Piece, int]:
+    def _piece(self, face: Face, start: int, glyphs: list[int], text: str, manner: Manner) -> tuple[_Piece, int]:
         """Set glyphs of one face; give the piece and its advance."""
         if manner.small_caps:
             capitals = self._small_capitals(face)
@@ -217,7 +211,5 @@ def _read(package: str, place: str) -> bytes:
     spec = PathFinder.find_spec(package)
     folders = spec.submodule_search_locations if spec is not None else None
     if spec is None or not folders or not isinstance(spec.loader, SourceFileLoader):
-        raise FileNotFoundError(
-            f"the package {package.replace('_', '-')} that carries {place} is not installed"
-        )
+        raise FileNotFoundError(f"the package {package.replace('_', '-')} that carries {place} is not installed")
     return spec.loader.get_data(f"{folders[0]}/{place}")

@@ -1,14 +1,14 @@
 """The table of given values: one ruled row each, a tick ring beside every number.
 
 `report.model.Givens` + lane -> one `Piece` a row. Symbols end at the same equals signs as the lines
-below; where a value came from stands in the source lane.
+column; where a value came from stands in the source lane.
 """
 
 from __future__ import annotations
 
 from dataclasses import dataclass, replace
 
-from calcreport.layout.kit import EQUALS_GAP, HANG, INDENT, Kit
+from calcreport.layout.kit import EQUALS_GAP, HANG, INDENT, SYMBOL_CAP, Kit
 from calcreport.layout.model import Anchor, Box, Item, Placed
 from calcreport.layout.pieces import Piece, Rows
 from calcreport.layout.sheet import Lane
@@ -16,9 +16,9 @@ from calcreport.layout.words import SMALL, SOURCE
 from calcreport.report.model import GivenRow, Givens
 
 #: Size of symbols and values, height of a row, its baseline, gap before the words.
-SIZE, PITCH, BASE, GAP = 9.5, 12.5, 9.0, 12.0
+SIZE, PITCH, BASE, GAP = 9.5, 11.3, 8.4, 8.0
 #: Widest value the words of all rows make room for; words of a wider one follow it, with at least this room.
-COLUMN, LEAST_WORDS = 90.0, 90.0
+COLUMN, LEAST_WORDS = 84.0, 90.0
 
 
 @dataclass(frozen=True, slots=True)
@@ -32,7 +32,8 @@ class _Columns:
 
 def set_givens(kit: Kit, givens: Givens, lane: Lane) -> tuple[Piece, ...]:
     """Set the table; it may break between rows, but not off its first or last one."""
-    equals = kit.equals_at(lane)
+    symbols = max((min(kit.math(row.symbol, SIZE).width, SYMBOL_CAP) for row in givens.rows), default=0.0)
+    equals = lane.left + INDENT + symbols + EQUALS_GAP
     start = equals + kit.equals.width + EQUALS_GAP
     most = min(COLUMN, lane.right - start - LEAST_WORDS)
     widths = (kit.math(row.value, SIZE).width for row in givens.rows)
@@ -57,8 +58,12 @@ def _set_row(kit: Kit, row: GivenRow, columns: _Columns) -> Piece:
     start = equals + kit.equals.width + EQUALS_GAP
     values = _value_rows(kit, row, lane.right - start)
     baseline = max(BASE, symbol.ascent + 1.5, values[0].ascent + 1.5)
-    first = ((equals - EQUALS_GAP - symbol.width, symbol), (equals, kit.equals), (start, values[0]))
-    rows.items.extend(Placed(x, baseline, box) for x, box in first)
+    rows.items.append(Placed(start, baseline, values[0]))
+    if symbol.width > 0:
+        rows.items[:0] = [
+            Placed(equals - EQUALS_GAP - symbol.width, baseline, symbol),
+            Placed(equals, baseline, kit.equals),
+        ]
     rows.y = baseline + max(PITCH - BASE, symbol.descent + 0.5, values[0].descent + 0.5)
     for box in values[1:]:
         rows.row(((start + HANG, box),), PITCH)

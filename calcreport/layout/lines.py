@@ -18,7 +18,7 @@ from calcreport.layout.words import PLAIN, RESULT, SMALL, TextStyle
 from calcreport.report.model import Formula, Line, ResultBox, Statement
 
 #: Least height of a formula row; share of the lane at which chains behind words have their equals signs.
-ROW, TAB = 13.5, 0.47
+ROW, TAB = 11.5, 0.40
 
 
 @dataclass(frozen=True, slots=True)

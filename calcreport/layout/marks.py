@@ -16,7 +16,7 @@ from calcreport.layout.words import CITATION, SOURCE, Lettering
 from calcreport.report.model import Reference, SourceLane
 
 #: Gap above a numbered line.
-GAP = 4.0
+GAP = 2.6
 #: Line weight of a revision cloud.
 CLOUD = 0.5
 #: Rise of a cloud's bow at five points along it.

@@ -50,8 +50,7 @@ GAPS = (
 _BESIDE_OP = (ORD, OP)
 #: the same in scripts, where only the gaps beside a large operator remain
 GAPS_IN_SCRIPTS = tuple(
-    tuple(THIN if OP in (a, b) and a in _BESIDE_OP and b in _BESIDE_OP else NONE for b in range(9))
-    for a in range(8)
+    tuple(THIN if OP in (a, b) and a in _BESIDE_OP and b in _BESIDE_OP else NONE for b in range(9)) for a in range(8)
 )
 #: the gap an author's space asks for
 EXPLICIT = {"unit": UNIT, "thin": THIN}

@@ -96,9 +96,7 @@ class Formulas:
     def _outermost(self, size: float, style: FormulaStyle) -> Style:
         found = self._styles.get((size, style))
         if found is None:
-            found = Style(
-                self.fonts, full=size, size=size, level=0, cramped=False, display=style == "display"
-            )
+            found = Style(self.fonts, full=size, size=size, level=0, cramped=False, display=style == "display")
             self._styles[size, style] = found
         return found
 

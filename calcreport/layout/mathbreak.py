@@ -19,9 +19,7 @@ STRUT = Letters("")
 _PLUS_MINUS = ("+", "−", "-", "±", "∓")
 
 
-def break_row(
-    items: Items, width: float, hang: float, measure: Callable[[Items], float]
-) -> tuple[Items, ...]:
+def break_row(items: Items, width: float, hang: float, measure: Callable[[Items], float]) -> tuple[Items, ...]:
     """Part the items of a row into lines; all but the first are `hang` points shorter.
 
     A line wider than asked is left where nothing in it may part.

@@ -66,9 +66,7 @@ class _Characters(dict[str, _Figures]):
 class Style:
     """One size of one formula, with its constants in points."""
 
-    def __init__(
-        self, fonts: Fonts, full: float, size: float, level: int, cramped: bool, display: bool
-    ) -> None:
+    def __init__(self, fonts: Fonts, full: float, size: float, level: int, cramped: bool, display: bool) -> None:
         """Scale the constants of the formula face to a size in points."""
         self.fonts = fonts
         #: size of the whole formula

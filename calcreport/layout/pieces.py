@@ -54,13 +54,13 @@ class Rows:
             self.y = baseline + max(box.descent, style.fall) + spare
         return first
 
-    def row(self, boxes: Iterable[tuple[float, Box]], least: float, lead: float = 2.0) -> float:
+    def row(self, boxes: Iterable[tuple[float, Box]], least: float, lead: float = 1.0) -> float:
         """Add boxes on one baseline, no lower than `least` in height; return the baseline."""
         placed = tuple(boxes)
         ascent = max(box.ascent for _, box in placed)
         descent = max(box.descent for _, box in placed)
         high = ascent + descent
-        spare = max(lead + (1.2 if high > least else 0.0), least - high) / 2
+        spare = max(lead + (0.8 if high > least else 0.0), least - high) / 2
         baseline = self.y + spare + ascent
         self.items.extend(Placed(x, baseline, box) for x, box in placed)
         self.y = baseline + descent + spare

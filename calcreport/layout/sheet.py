@@ -83,7 +83,7 @@ def sheet_of(paper: Literal["letter", "a4"], lanes: bool = True) -> Sheet:
     width, height = _PAPERS[paper]
     left, right = 19 * MM, width - 10 * MM
     top, foot = 10 * MM, height - 9 * MM
-    block = foot - 31 * MM
+    block = foot - 26 * MM
     return Sheet(
         width=width,
         height=height,
@@ -94,7 +94,7 @@ def sheet_of(paper: Literal["letter", "a4"], lanes: bool = True) -> Sheet:
         work=left + 10 * MM,
         source=right - 34 * MM,
         block=block,
-        body_top=top + 2.5 * MM,
-        body_foot=block - 2 * MM,
+        body_top=top + 2 * MM,
+        body_foot=block - 1.4 * MM,
         lanes=lanes,
     )

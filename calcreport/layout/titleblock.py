@@ -161,7 +161,8 @@ def _subject(sheet: Sheet, lettering: Lettering, facts: TitleFacts, left: float,
     lines, style = fitted(lettering, subject, _NAME, width, split - sheet.block - 13.0)
     items.extend(text_lines(lines, style, x, sheet.block + 11.0)[0])
     items.append(rule(left, split, right, split))
-    rows = [text for text in (facts.code, facts.fingerprint, facts.program) if text]
+    inputs = "\u00a0\u00a0 ".join(text for text in (facts.fingerprint, facts.program) if text)
+    rows = [text for text in (facts.code, inputs) if text]
     y = split + 2.2
     for text in rows:
         lines, style = fitted(lettering, text, _FINE, width, 9.0)

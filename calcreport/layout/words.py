@@ -43,19 +43,19 @@ class TextStyle:
         return FALL * self.size
 
 
-PLAIN = TextStyle("regular", 9, 11.5)
+PLAIN = TextStyle("regular", 9, 11)
 SMALL = TextStyle("regular", 8, 10)
 SMALL_STRONG = TextStyle("semibold", 8, 10)
-STRONG = TextStyle("semibold", 9, 11.5)
+STRONG = TextStyle("semibold", 9, 11)
 RESULT = TextStyle("semibold", 10, 12.5)
 CITATION = TextStyle("semibold", 7.5, 9)
 SOURCE = TextStyle("regular", 7.5, 9)
-QUIET = TextStyle("regular", 8, 10)
+QUIET = TextStyle("regular", 8, 9.5)
 #: heading by level
 HEADINGS = {
     1: TextStyle("semibold", 12.5, 15, Manner(small_caps=True, tracking=40)),
     2: TextStyle("semibold", 10.5, 13, Manner(small_caps=True, tracking=40)),
-    3: TextStyle("semibold", 9.5, 12),
+    3: TextStyle("semibold", 9, 11),
 }
 
 

@@ -20,7 +20,6 @@ from calcreport.core.expression import (
     Logic,
     Name,
     Negate,
-    Node,
     Not,
     Number,
     Over,
@@ -28,8 +27,9 @@ from calcreport.core.expression import (
     literal,
     walk,
 )
-from calcreport.core.problems import Problems
-from calcreport.core.units import NONE, Dimension, divide, multiply, name_dimension, raised
+from calcreport.core.figures import FIGURES
+from calcreport.core.problems import Problems, listed
+from calcreport.core.units import NONE, Dimension, dimension_words, divide, multiply, raised
 from calcreport.plan.model import (
     Plan,
     PlannedBranches,
@@ -91,10 +91,8 @@ class _Holder:
                 self.condition(holds)
             case PlannedRequire(condition):
                 self.condition(condition)
-            case PlannedFigure(_, inputs):
-                for given in inputs:
-                    if given.formula is not None:
-                        self.expression(given.formula)
+            case PlannedFigure():
+                self.figure(line)
 
     def rows(self, line: PlannedRows) -> None:
         for column in line.columns:
@@ -109,24 +107,45 @@ class _Holder:
                     self.result(formula, self.slots[column.slot])
 
     def result(self, formula: Expression, slot: Slot) -> None:
-        """Hold a formula against the unit its symbol is declared in."""
-        if slot.symbol.kind == "word":
-            if not isinstance(formula, Name):
-                self.problems.add("unit-mismatch", formula.span, f"`{slot.symbol.name}` is a word",
-                                  expected="one of " + ", ".join(slot.symbol.words), found="a formula")  # fmt: skip
+        """Hold a formula against the unit its symbol is declared in; words are held where names are bound."""
+        unit = slot.symbol.unit
+        if unit is None:
             return
         found = self.expression(formula)
-        unit = slot.symbol.unit
-        if found is None or isinstance(found, _Any) or unit is None or found == unit.dimension:
+        if found is None or isinstance(found, _Any) or found == unit.dimension:
             return
         hint = ""
-        if any(isinstance(n, Call) and n.function == "sqrt" for n in _below(formula)):
+        if any(isinstance(n, Call) and n.function == "sqrt" for n in walk(formula)):
             hint = f"where the clause takes a number in a stated unit, write qty(… num(x, UNIT) …, {unit.text})"
+        elif isinstance(formula, Number):
+            hint = f"write the unit: {formula.text} {unit.text}, if that is the unit meant"
         self.problems.add(
-            "unit-mismatch", formula.span, f"the formula does not give {_words(unit.dimension)}",
-            expected=f"{name_dimension(unit.dimension)}, because {slot.symbol.name} is declared in {unit.text}",
-            found=name_dimension(found), hint=hint, related=((slot.span, f"{slot.symbol.name} is declared here"),),
+            "unit-mismatch", formula.span, f"the formula does not give {dimension_words(unit.dimension)}",
+            expected=f"{dimension_words(unit.dimension)}, because {slot.symbol.name} is declared with the unit {unit.text}",
+            found=self.told(formula, found), hint=hint,
         )  # fmt: skip
+
+    def figure(self, line: PlannedFigure) -> None:
+        """Hold the numbers handed to a figure against what it takes."""
+        takes = FIGURES.get(line.kind, {})
+        for given in line.inputs:
+            wanted = takes[given.name].dimension
+            slot = self.slots[given.slot] if given.slot >= 0 else None
+            if given.formula is not None:
+                self.need(given.formula, wanted, f"the figure takes another quantity for `{given.name}`")
+            elif slot is not None and takes[given.name].shape in ("number", "row number"):
+                unit = slot.symbol.unit
+                if unit is None or unit.dimension != wanted:
+                    self.problems.add(
+                        "unit-mismatch", given.span or line.span, f"the figure takes another quantity for `{given.name}`",
+                        expected=dimension_words(wanted), found=dimension_words(unit.dimension) if unit else "a word",
+                    )  # fmt: skip
+
+    def told(self, formula: Expression, found: Dimension) -> str:
+        """Return a dimension in words, with the symbols it comes from where they are few."""
+        slots = {n.name: self.slots[n.slot] for n in walk(formula) if isinstance(n, Name) and n.slot >= 0}
+        units = [f"{name} in {s.symbol.unit.text}" for name, s in slots.items() if s.symbol.unit is not None]
+        return dimension_words(found) + (f", from {', '.join(units)}" if 0 < len(units) <= 4 else "")
 
     # -------------------------------------------------------- conditions
 
@@ -158,7 +177,7 @@ class _Holder:
             case Call():
                 return self.call(node)
             case Strip(body, unit):
-                self.need(body, unit.dimension, f"num(…, {unit.text}) takes {_words(unit.dimension)}")
+                self.need(body, unit.dimension, f"num(…, {unit.text}) takes {dimension_words(unit.dimension)}")
                 return NONE
             case Attach(body, unit):
                 self.need(body, NONE, f"qty(…, {unit.text}) takes a bare number")
@@ -172,14 +191,14 @@ class _Holder:
         symbol = self.slots[node.slot].symbol
         if symbol.unit is None:
             self.problems.add("unit-mismatch", node.span, f"`{node.name}` is a word, not a number",
-                              expected="a quantity", found="one of " + ", ".join(symbol.words) or "a callout",
+                              expected="a quantity", found=listed(symbol.words) if symbol.words else "a bar callout",
                               hint=f"ask `{node.name} is …` in a condition")  # fmt: skip
             return None
         return symbol.unit.dimension
 
     def binary(self, node: Binary) -> _Found:
         if node.op in "+-":
-            what = "what is added" if node.op == "+" else "what is subtracted"
+            what = f"the two sides of {node.op}"
             return self.same(node.left, node.right, what)
         if node.op == "^":
             return self.power(node)
@@ -190,7 +209,7 @@ class _Holder:
             return _ANY
         if isinstance(right, _Any):
             if node.op == "/":
-                self.problems.add("unit-mismatch", node.right.span, "this divides by 0", expected="a value", found="0")
+                self.problems.add("bad-formula", node.right.span, "this divides by 0", expected="a value", found="0")
                 return None
             return _ANY
         return multiply(left, right) if node.op == "*" else divide(left, right)
@@ -199,9 +218,11 @@ class _Holder:
         base = self.expression(node.left)
         self.need(node.right, NONE, "an exponent is a bare number")
         exponent = literal(node.right)
-        if exponent is not None and abs(exponent) > LARGEST_EXPONENT:
+        bare = not any(isinstance(n, Name) for n in walk(node.right))
+        if (exponent is not None and abs(exponent) > LARGEST_EXPONENT) or (bare and exponent is None):
             self.problems.add("bad-formula", node.right.span, "the exponent is out of bounds",
-                              expected=f"{LARGEST_EXPONENT} at most", found=node.right.span.text[:40])  # fmt: skip
+                              expected=f"a number such as 2 or (1/3), {LARGEST_EXPONENT} at most",
+                              found=node.right.span.text[:40])  # fmt: skip
             return None
         if base is None or isinstance(base, _Any) or base == NONE:
             return base
@@ -237,8 +258,11 @@ class _Holder:
     def need(self, node: Expression, wanted: Dimension, why: str) -> None:
         found = self.expression(node)
         if found is not None and not isinstance(found, _Any) and found != wanted:
-            self.problems.add("unit-mismatch", node.span, why, expected=name_dimension(wanted),
-                              found=name_dimension(found))  # fmt: skip
+            hint = ""
+            if wanted == NONE and why.startswith(("exp", "ln", "sin", "cos", "tan", "atan", "qty")):
+                hint = "num(x, UNIT) takes the number of a quantity in a unit"
+            self.problems.add("unit-mismatch", node.span, why, expected=dimension_words(wanted),
+                              found=self.told(node, found), hint=hint)  # fmt: skip
 
     def same(self, left: Expression, right: Expression, what: str) -> _Found:
         return self.agree(left, self.expression(left), right, self.expression(right), what)
@@ -251,17 +275,10 @@ class _Holder:
             return other
         if isinstance(other, _Any) or one == other:
             return one
+        bare = next((side for side in (left, right) if isinstance(side, Number) and side.unit is None), None)
         self.problems.add(
-            "unit-mismatch", right.span, f"{what} must be alike", expected=f"{name_dimension(one)}, as `{left.span.text[:40]}`",
-            found=name_dimension(other), related=((left.span, f"this is {_words(one)}"),),
+            "unit-mismatch", right.span, f"{what} are not of one kind",
+            expected=f"{dimension_words(one)}, as `{left.span.text[:40]}` is", found=self.told(right, other),
+            hint=f"write the unit after {bare.text}" if bare else "", related=((left.span, f"this is {dimension_words(one)}"),),
         )  # fmt: skip
         return None
-
-
-def _words(dimension: Dimension) -> str:
-    name = name_dimension(dimension)
-    return name if name.startswith("a ") else f"{'an' if name[0] in 'aeiou' else 'a'} {name}"
-
-
-def _below(node: Expression) -> tuple[Node, ...]:
-    return tuple(walk(node))

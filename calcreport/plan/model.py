@@ -1,6 +1,7 @@
 """What planning hands on: a template with every name bound to a slot, in page order, dimensions held. No values.
 
-A plan belongs to a template settled for one system and year, and serves every calculation made by it.
+A plan belongs to a template settled for one system and year, and serves every calculation made by it. What reading
+made and planning leaves as it is goes on through here.
 """
 
 from __future__ import annotations
@@ -10,7 +11,23 @@ from typing import Literal, TypeAlias
 
 from calcreport.core.expression import Condition, Expression
 from calcreport.core.source import Citation, Span
-from calcreport.read.model import Given, Symbol, Template
+from calcreport.read.model import (
+    BarCallout,
+    Calculation,
+    Case,
+    Expected,
+    Given,
+    GivenPairs,
+    GivenRows,
+    GivenValue,
+    Handed,
+    Inputs,
+    LinkedValue,
+    Project,
+    Symbol,
+    Template,
+    ValueOrigin,
+)
 
 
 @dataclass(frozen=True, slots=True)
@@ -188,6 +205,8 @@ class FigureInput:
     rows: int = -1
     formula: Expression | None = None
     word: str = ""
+    #: place of what was handed
+    span: Span | None = None
 
 
 @dataclass(frozen=True, slots=True)
@@ -225,3 +244,12 @@ class Plan:
     covers: tuple[str, ...]
     #: slot by path, for links, trace and tests
     by_path: dict[str, int]
+
+
+__all__ = [
+    "BarCallout", "Calculation", "Case", "Expected", "FigureInput", "Given", "GivenPairs", "GivenRows", "GivenValue",
+    "Handed", "Inputs", "LinkedValue", "Plan", "PlannedArm", "PlannedBranchArm", "PlannedBranches", "PlannedCheck",
+    "PlannedColumn", "PlannedEach", "PlannedEntry", "PlannedFigure", "PlannedGiven", "PlannedGives", "PlannedLine",
+    "PlannedPart", "PlannedRequire", "PlannedRows", "PlannedText", "Project", "RowSet", "Slot", "Symbol", "Template",
+    "ValueOrigin",
+]  # fmt: skip

@@ -5,44 +5,18 @@ Text in, `Case` records out. A case whose expectation names no source is a probl
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-
 from calcreport.core.problems import Problems
 from calcreport.core.quantity import Amount, read_amount
-from calcreport.core.source import Source, Span
+from calcreport.core.source import Source
+from calcreport.core.units import dimension_words
 from calcreport.read.fields import Fields, as_items, as_mapping
-from calcreport.read.library import Library
-from calcreport.read.model import Calculation, System
-from calcreport.read.nodes import Mapping, Scalar, read_tree
-from calcreport.read.values import ValueReader
+from calcreport.read.library import ANY, Library
+from calcreport.read.model import SYSTEMS, Calculation, Case, Expected, Template
+from calcreport.read.nodes import Mapping, Node, Scalar, read_tree
+from calcreport.read.values import Material, ValueReader, is_complete
 
 _KEYS = ("case", "units", "year", "given", "materials", "expect", "stops")
-
-
-@dataclass(frozen=True, slots=True)
-class Expected:
-    """One expectation: a value within a tolerance, a word, or the outcome of a check."""
-
-    #: symbol path or check name
-    name: str
-    value: Amount | str | None
-    tolerance: Amount | None
-    #: 'OK', 'NG', 'not applicable', 'not evaluated' for a check; '' for a value
-    outcome: str
-    source: str
-    span: Span
-
-
-@dataclass(frozen=True, slots=True)
-class Case:
-    """Given values with what an outside source says of them."""
-
-    name: str
-    calculation: Calculation
-    expected: tuple[Expected, ...]
-    #: words of the requirement it must stop at, '' for none
-    stops: str
-    span: Span
+VERDICTS = ("OK", "NG", "not applicable", "not evaluated")
 
 
 def read_cases(template: str, source: Source, library: Library, problems: Problems) -> tuple[Case, ...]:
@@ -52,66 +26,91 @@ def read_cases(template: str, source: Source, library: Library, problems: Proble
     found = []
     for item in items:
         mapping = as_mapping(item, "a case", problems)
-        case = _read_case(template, mapping, library, problems) if mapping else None
+        case = _CaseReader(template, mapping, library, problems).read() if mapping else None
         if case is not None:
             found.append(case)
     return tuple(found)
 
 
-def _read_case(template: str, node: Mapping, library: Library, problems: Problems) -> Case | None:
-    fields = Fields(node, _KEYS, "a case", problems)
-    name = fields.text("case", required=True)
-    system: System = "si" if fields.choice("units", ("us", "si"), required=True) == "si" else "us"
-    head = library.head(template, node.span)
-    if head is None or system not in head.systems:
-        return None
-    year = fields.text("year") or (head.years[0] if len(head.years) == 1 else "")
-    editions = ((dict(head.codes)[system], year), ("*", ""))
-    settled = library.template(template, system, tuple(sorted(editions)), node.span)
-    if settled is None:
-        return None
-    materials: dict[str, tuple[str, dict[str, Scalar]]] = {}
-    roles = fields.mapping("materials")
-    for role, value in roles.entries if roles else ():
-        properties = as_mapping(value, f"the material `{role.text}`", problems)
-        entries = properties.entries if properties else ()
-        materials[role.text] = role.text, {k.text: v for k, v in entries if isinstance(v, Scalar)}
-    reader = ValueReader(materials, library.bar_table(template, system), problems)
-    before = len(problems)
-    values = reader.read(settled.body.given, fields.mapping("given") or Mapping((), node.span), f"the case `{name}`")
-    expected = tuple(_expected(k, v, problems) for k, v in _entries(fields.mapping("expect")))
-    if len(problems) > before:
-        return None
-    calculation = Calculation("CASE", name, settled, values, "", node.span)
-    stops = fields.mapping("stops")
-    words = ""
-    if stops:
-        entry = Fields(stops, ("line", "source"), "`stops`", problems)
-        words = entry.text("line", required=True)
+class _CaseReader:
+    """Reads one case."""
+
+    def __init__(self, template: str, node: Mapping, library: Library, problems: Problems) -> None:
+        self.template, self.node, self.library, self.problems = template, node, library, problems
+        self.fields = Fields(node, _KEYS, "a case", problems)
+
+    def read(self) -> Case | None:
+        before = self.problems.met
+        fields = self.fields
+        name = fields.text("case", required=True)
+        stops = self.stops()
+        expect = fields.mapping("expect", required=not fields.has("stops"))
+        expected = tuple(self.expected(key, node) for key, node in expect.entries) if expect else ()
+        settled = self.settled()
+        if settled is None:
+            return None
+        reader = ValueReader(self.materials(), self.library.bar_table(self.template, settled.system), self.problems)
+        given = fields.mapping("given") or Mapping((), self.node.span)
+        values = reader.read(settled.body.given, given, f"the case `{name[:60]}`")
+        if self.problems.met > before or not is_complete(values, settled.body.given):
+            return None
+        calculation = Calculation("CASE", name, settled, values, "", self.node.span)
+        return Case(name, calculation, tuple(e for e in expected if e is not None), stops, self.node.span)
+
+    def settled(self) -> Template | None:
+        """Return the template for the case's system and year."""
+        stated = self.fields.choice("units", SYSTEMS, required=True)
+        head = self.library.head(self.template, self.node.span)
+        system = next((s for s in SYSTEMS if s == stated), None)
+        if head is None or system is None:
+            return None
+        year = self.fields.text("year") or (head.years[0] if len(head.years) == 1 else "")
+        code = dict(head.codes).get(system, "")
+        if not year and head.years:
+            self.fields.say_missing("year")
+            return None
+        at = self.fields.span_of("year" if self.fields.has("year") else "units")
+        return self.library.template(self.template, system, tuple(sorted(((code, year), (ANY, "")))), at)
+
+    def materials(self) -> dict[str, Material | None]:
+        found: dict[str, Material | None] = {}
+        roles = self.fields.mapping("materials")
+        for role, value in roles.entries if roles else ():
+            properties = as_mapping(value, f"the material `{role.text[:40]}`", self.problems)
+            entries = properties.entries if properties else ()
+            found[role.text] = role.text, {k.text: v for k, v in entries if isinstance(v, Scalar)}
+        return found
+
+    def stops(self) -> str:
+        """Return the words of the requirement it must stop at, '' for none."""
+        mapping = self.fields.mapping("stops")
+        if mapping is None:
+            return ""
+        entry = Fields(mapping, ("line", "source"), "`stops`", self.problems)
         entry.text("source", required=True)
-    if not stops and not expected:
-        fields.say_missing("expect")
-    return Case(name, calculation, tuple(e for e in expected if e is not None), words, node.span)
+        return entry.text("line", required=True)
 
+    def expected(self, key: Scalar, node: Node) -> Expected | None:
+        what = f"the expectation of `{key.text[:60]}`"
+        mapping = as_mapping(node, what, self.problems)
+        if mapping is None:
+            return None
+        fields = Fields(mapping, ("value", "tol", "outcome", "ratio", "source"), what, self.problems)
+        source = fields.text("source", required=True)
+        outcome = fields.choice("outcome", VERDICTS)
+        scalar = fields.scalar("value") or fields.scalar("ratio")
+        if scalar is None and fields.node_of("outcome") is None:
+            fields.say_missing("value")
+        value: Amount | str | None = None
+        if scalar is not None:
+            number = scalar.text[:1].isdigit() or scalar.text[:1] in "-+."
+            value = read_amount(scalar.text, scalar.span, self.problems) if number else scalar.text
+        return Expected(key.text, value, self.tolerance(fields, value), outcome, source, key.span)
 
-def _entries(node: Mapping | None) -> tuple[tuple[Scalar, object], ...]:
-    return node.entries if node else ()
-
-
-def _expected(key: Scalar, node: object, problems: Problems) -> Expected | None:
-    mapping = as_mapping(node, f"the expectation of `{key.text}`", problems)  # type: ignore[arg-type]
-    if mapping is None:
-        return None
-    fields = Fields(mapping, ("value", "tol", "outcome", "ratio", "source"), f"the expectation of `{key.text}`", problems)
-    source = fields.text("source", required=True)
-    outcome = fields.choice("outcome", ("OK", "NG", "not applicable", "not evaluated"))
-    scalar = fields.scalar("value") or fields.scalar("ratio")
-    tolerance = fields.scalar("tol")
-    value: Amount | str | None = None
-    if scalar is not None:
-        number = scalar.text[:1].isdigit() or scalar.text[:1] in "-+."
-        value = read_amount(scalar.text, scalar.span, problems, None) if number else scalar.text
-    within = read_amount(tolerance.text, tolerance.span, problems, None) if tolerance else None
-    if isinstance(value, Amount) and within is None:
-        fields.say_missing("tol")
-    return Expected(key.text, value, within, outcome, source, key.span)
+    def tolerance(self, fields: Fields, value: Amount | str | None) -> Amount | None:
+        scalar = fields.scalar("tol", required=isinstance(value, Amount))
+        found = read_amount(scalar.text, scalar.span, self.problems) if scalar else None
+        if scalar and found and isinstance(value, Amount) and found.dimension != value.dimension:
+            self.problems.add("unit-mismatch", scalar.span, "the tolerance is not in the unit of the value",
+                              expected=dimension_words(value.dimension), found=dimension_words(found.dimension))  # fmt: skip
+        return found

@@ -1,422 +1,87 @@
-"""What reading hands on: templates with parsed formulas, the project, and given values with their types.
-
-Every leaf has its place. Names inside formulas are not bound yet; that is the plan's work.
-"""
+"""What reading hands on: templates with parsed formulas, and the project with its given values typed."""
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-from typing import Literal, TypeAlias
-
-from calcreport.core.expression import Condition, Expression, Name
-from calcreport.core.quantity import Amount
-from calcreport.core.source import Citation, Source, Span
-from calcreport.core.units import Unit
-
-System: TypeAlias = Literal["us", "si"]
-SYSTEMS: tuple[System, ...] = ("us", "si")
-
-
-# ---------------------------------------------------------------- templates
-
-
-@dataclass(frozen=True, slots=True)
-class Symbol:
-    """The notation of one value: its meaning, unit and display."""
-
-    name: str
-    #: display form as written under `shows`, '' to derive it from the name
-    shows: str
-    says: str
-    kind: Literal["quantity", "count", "word"]
-    #: unit of a quantity; None for a word
-    unit: Unit | None
-    #: the closed list of a word value
-    words: tuple[str, ...]
-    #: fewest decimals printed, or None
-    places: int | None
-
-
-@dataclass(frozen=True, slots=True)
-class Range:
-    """Permitted values: `> 0`, `[0.5, 1.0]`, `(0, 8 in]`."""
-
-    low: Amount | None
-    high: Amount | None
-    low_open: bool
-    high_open: bool
-    text: str
-    span: Span
-
-
-@dataclass(frozen=True, slots=True)
-class Given:
-    """A value or set the project must hand to a template."""
-
-    name: str
-    kind: Literal["value", "bars", "spaced bars", "rows", "pairs"]
-    #: None for rows; for bars a symbol of the callout itself
-    symbol: Symbol | None
-    says: str
-    range: Range | None
-    #: worth of `none`: an amount or word; 'absent' where the symbol may be missing; None where not allowed
-    if_none: Amount | str | None
-    #: material role it is read from, '' for none, and the property's name there
-    material: str
-    property: str
-    #: columns of rows
-    columns: tuple[Given, ...]
-    #: permitted row names, stems end in `*`; () for any
-    row_names: tuple[str, ...]
-    least: int
-    most: int
-    #: sets a value is given over
-    over: tuple[str, ...]
-    #: values read off a bar callout: (symbol, 'area' | 'diameter' | 'count' | 'spacing')
-    gives: tuple[tuple[Symbol, str], ...]
-    span: Span
-
-
-@dataclass(frozen=True, slots=True)
-class Text:
-    """A heading, note, caution, assumption or result box; names show values."""
-
-    kind: Literal["heading", "note", "caution", "assume", "use"]
-    pieces: tuple[str | Name, ...]
-    cite: Citation | None
-    span: Span
-
-
-@dataclass(frozen=True, slots=True)
-class Arm:
-    """One case of a formula: the condition (None: otherwise) and the formula."""
-
-    when: Condition | None
-    formula: Expression
-
-
-@dataclass(frozen=True, slots=True)
-class Gives:
-    """A line that gives one value."""
-
-    symbol: Symbol
-    arms: tuple[Arm, ...]
-    cite: Citation
-    #: the equation as the code states it, left and right, where the formula rearranges it
-    as_cited: tuple[Expression, Expression] | None
-    span: Span
-    name_span: Span
-
-
-@dataclass(frozen=True, slots=True)
-class BranchArm:
-    """One arm of a block of lines."""
-
-    when: Condition | None
-    lines: tuple[Line, ...]
-    span: Span
-
-
-@dataclass(frozen=True, slots=True)
-class Branches:
-    """Lines of the first arm that holds."""
-
-    arms: tuple[BranchArm, ...]
-    span: Span
-
-
-@dataclass(frozen=True, slots=True)
-class MadeColumn:
-    """A column of a set made here; `over` names the set its cells map, `other` is their `else`."""
-
-    symbol: Symbol
-    over: str
-    other: Expression | None
-    span: Span
-
-
-@dataclass(frozen=True, slots=True)
-class Cell:
-    """A cell of a made row: one formula, or one for each named row of the set it maps."""
-
-    formula: Expression | None
-    mapped: tuple[tuple[str, Expression], ...]
-    span: Span
-
-
-@dataclass(frozen=True, slots=True)
-class Entry:
-    """One listed row, or one for each pairing of rows under `for`."""
-
-    #: row name with {variable} parts
-    name: str
-    #: (variable, set, names that fit): `for: {r: L_r|R}`
-    pairing: tuple[tuple[str, tuple[str, ...]], ...]
-    cells: tuple[tuple[str, Cell], ...]
-    when: Condition | None
-    span: Span
-
-
-@dataclass(frozen=True, slots=True)
-class Rows:
-    """A set made here."""
-
-    name: str
-    columns: tuple[MadeColumn, ...]
-    entries: tuple[Entry, ...]
-    says: str
-    cite: Citation
-    span: Span
-
-
-@dataclass(frozen=True, slots=True)
-class Each:
-    """Lines once for every row of a set."""
-
-    rows: Name
-    lines: tuple[Line, ...]
-    table: tuple[Name, ...]
-    show: Literal["", "every", "figure"]
-    span: Span
-
-
-@dataclass(frozen=True, slots=True)
-class PartUse:
-    """Another template's lines, or those of an entry of `parts`."""
-
-    #: the part's own body, already read for this system and year; None where it could not be read
-    body: PartBody | None
-    name: str
-    stem: str
-    same: tuple[Name, ...]
-    #: (its given, formula or word handed to it)
-    handed: tuple[tuple[Name, Expression | str], ...]
-    span: Span
-
-
-@dataclass(frozen=True, slots=True)
-class Check:
-    """Demand against capacity, or a condition."""
-
-    name: str
-    holds: Condition
-    says: str
-    cite: Citation
-    span: Span
-
-
-@dataclass(frozen=True, slots=True)
-class Require:
-    """A condition without which the calculation stops, no verdict given."""
-
-    condition: Condition
-    says: str
-    cite: Citation
-    span: Span
-
-
-@dataclass(frozen=True, slots=True)
-class Drawing:
-    """A figure with what it is handed, by its own input names."""
-
-    kind: str
-    inputs: tuple[tuple[Name, Expression], ...]
-    span: Span
-
-
-Line: TypeAlias = Text | Gives | Branches | Rows | Each | PartUse | Check | Require | Drawing
-
-
-@dataclass(frozen=True, slots=True)
-class PartBody:
-    """A block of lines with a name space: a template file, or an entry of `parts`."""
-
-    title: str
-    given: tuple[Given, ...]
-    lines: tuple[Line, ...]
-    #: names a user may use; () for all
-    gives: tuple[str, ...]
-    #: an entry of `parts` sees what is visible where it is used
-    sees_user: bool
-    covers: tuple[str, ...]
-    span: Span
-
-
-@dataclass(frozen=True, slots=True)
-class Template:
-    """A template file settled for one unit system and one edition year."""
-
-    #: path without ending: 'aci318/beam-flexure'
-    name: str
-    title: str
-    code: str
-    year: str
-    system: System
-    excludes: tuple[str, ...]
-    body: PartBody
-    source: Source
-    #: every file it was read from: itself, parts, notation, bar tables
-    files: tuple[Source, ...]
-
-
-# ---------------------------------------------------------------- values
-
-
-@dataclass(frozen=True, slots=True)
-class ValueOrigin:
-    """Where a given value was taken from, as the sheet prints it."""
-
-    kind: Literal["project file", "criteria", "material", "schedule", "line", "source", "none"]
-    #: material mark, stated source, schedule row, or line such as 'FL2.M_u'
-    words: str
-
-
-@dataclass(frozen=True, slots=True)
-class BarGroup:
-    """Like bars of a callout: count, size name, area and diameter of one bar."""
-
-    count: int
-    size: str
-    area: Amount
-    diameter: Amount
-
-
-@dataclass(frozen=True, slots=True)
-class BarCallout:
-    """`4-#8`, `2#8 + 1#7`, `#4 @ 12 in`, `2 legs #4 @ 8 in`."""
-
-    groups: tuple[BarGroup, ...]
-    spacing: Amount | None
-    text: str
-
-
-@dataclass(frozen=True, slots=True)
-class LinkedValue:
-    """`{from: FL2.M_u}`: another calculation's line."""
-
-    mark: str
-    path: str
-    span: Span
-
-
-#: what a single given value may be; None stands for `none` where the template lets it be absent
-Handed: TypeAlias = Amount | str | BarCallout | LinkedValue | None
-
-
-@dataclass(frozen=True, slots=True)
-class GivenValue:
-    """A given value with its type settled by the template's declaration."""
-
-    given: Given
-    value: Handed
-    origin: ValueOrigin
-    span: Span
-
-
-@dataclass(frozen=True, slots=True)
-class GivenRows:
-    """Rows for a set: names, and a value for every column of every row."""
-
-    given: Given
-    names: tuple[str, ...]
-    #: one tuple a row, in the order of the given's columns
-    cells: tuple[tuple[GivenValue, ...], ...]
-    origin: ValueOrigin
-    span: Span
-
-
-@dataclass(frozen=True, slots=True)
-class GivenPairs:
-    """A value for pairs of rows of two sets; pairs not named take the given's `if none`."""
-
-    given: Given
-    cells: tuple[tuple[tuple[str, ...], GivenValue], ...]
-    origin: ValueOrigin
-    span: Span
-
-
-# ---------------------------------------------------------------- project
-
-
-@dataclass(frozen=True, slots=True)
-class Calculation:
-    """One calculation of a project with its template and its given values."""
-
-    mark: str
-    title: str
-    template: Template
-    given: tuple[GivenValue | GivenRows | GivenPairs, ...]
-    #: files this calculation's inputs stand in are fingerprinted through this text
-    input_text: str
-    span: Span
-
-
-@dataclass(frozen=True, slots=True)
-class Assumption:
-    """An entry of the project's assumption register."""
-
-    says: str
-    to_be_verified: bool
-    by: str
-    span: Span
-
-
-@dataclass(frozen=True, slots=True)
-class Disposition:
-    """The engineer's word on a check or limit state."""
-
-    #: 'B14.shear' or '' ; limit state 'S2 vibration' or ''
-    check: str
-    limit_state: str
-    says: str
-    span: Span
-
-
-@dataclass(frozen=True, slots=True)
-class Issue:
-    """A row of the revision record."""
-
-    number: str
-    date: str
-    why: str
-
-
-@dataclass(frozen=True, slots=True)
-class Project:
-    """The header, criteria and calculations of a package."""
-
-    title: str
-    number: str
-    address: str
-    client: str
-    permit: str
-    office: str
-    contact: str
-    status: str
-    date: str  # ISO
-    paper: Literal["letter", "a4"]
-    system: System
-    #: ('adopted code', 'IBC 2024, no local amendments listed') and the like, in order
-    codes: tuple[tuple[str, str], ...]
-    amendments: str
-    #: code name: year, for choosing editions
-    editions: tuple[tuple[str, str], ...]
-    criteria: tuple[tuple[str, str], ...]
-    #: (mark, ((property, amount text), …))
-    materials: tuple[tuple[str, tuple[tuple[str, str], ...]], ...]
-    assumptions: tuple[Assumption, ...]
-    elsewhere: tuple[tuple[str, str], ...]
-    dispositions: tuple[Disposition, ...]
-    issues: tuple[Issue, ...]
-    #: files read, in order, for the input echo
-    files: tuple[Source, ...]
-
-
-@dataclass(frozen=True, slots=True)
-class Inputs:
-    """Everything a run is given, parsed and typed."""
-
-    project: Project
-    calculations: tuple[Calculation, ...]
-
-
+from calcreport.read.project_model import (
+    Assumption,
+    BarCallout,
+    BarGroup,
+    Calculation,
+    Case,
+    Disposition,
+    Expected,
+    GivenPairs,
+    GivenRows,
+    GivenValue,
+    Handed,
+    Inputs,
+    Issue,
+    LinkedValue,
+    Project,
+    ValueOrigin,
+)
+from calcreport.read.template_model import (
+    SYSTEMS,
+    Arm,
+    BranchArm,
+    Branches,
+    Cell,
+    Check,
+    Drawing,
+    Each,
+    Entry,
+    Given,
+    Gives,
+    Line,
+    MadeColumn,
+    PartBody,
+    PartUse,
+    Range,
+    Require,
+    Rows,
+    Symbol,
+    System,
+    Template,
+    Text,
+)
+
+__all__ = [
+    "Arm",
+    "Assumption",
+    "BarCallout",
+    "BarGroup",
+    "BranchArm",
+    "Branches",
+    "Calculation",
+    "Case",
+    "Cell",
+    "Check",
+    "Disposition",
+    "Drawing",
+    "Each",
+    "Entry",
+    "Expected",
+    "Given",
+    "GivenPairs",
+    "GivenRows",
+    "GivenValue",
+    "Gives",
+    "Handed",
+    "Inputs",
+    "Issue",
+    "Line",
+    "LinkedValue",
+    "MadeColumn",
+    "PartBody",
+    "PartUse",
+    "Project",
+    "Range",
+    "Require",
+    "Rows",
+    "SYSTEMS",
+    "Symbol",
+    "System",
+    "Template",
+    "Text",
+    "ValueOrigin",
+]

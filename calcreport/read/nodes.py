@@ -87,14 +87,14 @@ def read_tree(source: Source, problems: Problems) -> Node | None:
                      found=f"{_ODD_WORDS.get(odd[0], 'a control character')} (U+{ord(odd[0]):04X})",
                      hint="delete it, or save the file as plain UTF-8 text")  # fmt: skip
         return None
-    before = len(problems)
+    before = problems.met
     try:
         return _Reader(source, problems).read()
     except _Stop:
         return None
     except yaml.YAMLError as error:
         # a value cut short by a comment sign takes its closing bracket with it: one cause, one problem
-        if len(problems) == before:
+        if problems.met == before:
             say_malformed(error, source, problems)
         return None
 

@@ -5,38 +5,60 @@ Mapping nodes in, `Symbol` records out.
 
 from __future__ import annotations
 
+import re
 from dataclasses import replace
+from typing import TypeAlias
 
-from calcreport.core.problems import Problems, nearest
+from calcreport.core.expression import FUNCTIONS, OVER_FUNCTIONS
+from calcreport.core.problems import Problems
 from calcreport.core.source import Span
+from calcreport.core.tokens import KEYWORDS
 from calcreport.core.units import ONE, Unit, read_unit
 from calcreport.read.fields import Fields, as_mapping
 from calcreport.read.model import Symbol
-from calcreport.read.nodes import Mapping
+from calcreport.read.nodes import Mapping, Scalar
 
-KEYS = ("unit", "one of", "kind", "says", "shows", "places", "only")
+#: keys that tell of a symbol, at its own entry or on the line that gives it
+OWN_KEYS = ("unit", "one of", "kind", "says", "shows", "places")
+KEYS = (*OWN_KEYS, "only")
 #: a yes/no value is a word with this list
 YES_NO = ("yes", "no")
+KINDS = ("count", "yes/no", "quantity")
+_NAME = re.compile(r"[A-Za-z][A-Za-z0-9_]{0,39}")
+_TAKEN = KEYWORDS | FUNCTIONS.keys() | OVER_FUNCTIONS | {"num", "qty"}
 
 
-def read_symbols(node: Mapping, problems: Problems) -> dict[str, Symbol]:
+#: symbols by name; None for an entry about which a problem was told
+Table: TypeAlias = dict[str, Symbol | None]
+
+
+def read_symbols(node: Mapping, problems: Problems) -> Table:
     """Read a mapping of symbol entries."""
-    table: dict[str, Symbol] = {}
+    table: Table = {}
     for key, value in node.entries:
-        entry = as_mapping(value, f"the symbol `{key.text}`", problems)
-        if entry is None:
-            continue
-        fields = Fields(entry, KEYS, f"the symbol `{key.text}`", problems)
-        symbol = read_symbol(key.text, fields, None, problems)
-        if symbol is not None:
-            if not symbol.says:
-                fields.say_missing("says")
-            table[key.text] = symbol
+        entry = as_mapping(value, f"the symbol `{key.text[:40]}`", problems)
+        named = hold_name(key, problems)
+        fields = Fields(entry, KEYS, f"the symbol `{key.text}`", problems) if entry and named else None
+        table[key.text] = read_symbol(key, fields, None, problems) if fields else None
     return table
 
 
-def read_symbol(name: str, fields: Fields, base: Symbol | None, problems: Problems) -> Symbol | None:
-    """Read symbol keys out of an entry, on top of `base`; None where no unit or list is known."""
+def hold_name(scalar: Scalar, problems: Problems) -> bool:
+    """Hold a name of a symbol, set or stem against the grammar of formulas; adds `bad-name`."""
+    name = scalar.text
+    if _NAME.fullmatch(name) and name not in _TAKEN:
+        return True
+    problems.add(
+        "bad-name", scalar.span, f"`{name[:40]}` cannot be a name", expected="a letter, then letters, digits and _",
+        found="a word of the formula language" if name in _TAKEN else name[:40] or "nothing",
+        hint="write it in ASCII, and give its printed form under `shows`" if name not in _TAKEN else "take another name",
+    )  # fmt: skip
+    return False
+
+
+def read_symbol(key: Scalar, fields: Fields, base: Symbol | None, problems: Problems) -> Symbol | None:
+    """Read symbol keys out of an entry, on top of `base`; adds `no-unit` where neither unit nor words are known."""
+    name = key.text
     says = fields.text("says") or (base.says if base else "")
     shows = fields.text("shows") or (base.shows if base else "")
     places = fields.whole("places", low=0, high=8)
@@ -44,30 +66,35 @@ def read_symbol(name: str, fields: Fields, base: Symbol | None, problems: Proble
         places = base.places
     words = tuple(scalar.text for scalar in fields.texts("one of"))
     unit = _unit(fields, problems)
-    count = fields.choice("kind", ("count", "yes/no", "quantity")) if fields.has("kind") else ""
-    if count == "yes/no":
+    kind = fields.choice("kind", KINDS)
+    if not says and not fields.has("says"):
+        fields.say_missing("says")
+    if kind == "yes/no":
         words = YES_NO
     if words:
         return Symbol(name, shows, says, "word", None, words, None)
-    if count == "count":
+    if kind == "count":
         return Symbol(name, shows, says, "count", ONE, (), 0)
     if unit is not None:
         return Symbol(name, shows, says, "quantity", unit, (), places)
     if base is not None:
         return replace(base, says=says, shows=shows, places=places)
-    if fields.node_of("unit") is None:
-        fields.say_missing("unit")
+    if not any(fields.node_of(told) for told in ("unit", "one of", "kind")):
+        problems.add(
+            "no-unit", key.span, f"`{name}` has no unit", expected="`unit: …`, `one of: […]`, or `kind: count` or yes/no",
+            found="none of them", hint="a pure number says so: unit: '1'",
+        )  # fmt: skip
     return None
 
 
-def find_symbol(name: str, span: Span, table: dict[str, Symbol], problems: Problems) -> Symbol | None:
+def find_symbol(name: str, span: Span, table: Table, problems: Problems) -> Symbol | None:
     """Return a symbol of the table, or add `unknown-name`."""
     symbol = table.get(name)
-    if symbol is None:
+    if name not in table:
         problems.add(
             "unknown-name", span, f"`{name[:40]}` has no entry among the symbols",
             expected="a symbol with its meaning and unit", found=name[:40],
-            hint=nearest(name, table) or "add it under `symbols:` with `says` and `unit`",
+            hint=problems.near(name, table) or "add it under `symbols:` with `says` and `unit`",
         )  # fmt: skip
     return symbol
 

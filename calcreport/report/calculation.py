@@ -9,7 +9,7 @@ from calcreport.core.expression import Binary, Compare
 from calcreport.core.units import ONE
 from calcreport.report.digits import number_text
 from calcreport.report.drawings import draw
-from calcreport.report.forms import Opened
+from calcreport.report.forms import Opened, joint_comparisons
 from calcreport.report.given_blocks import GivenBlocks
 from calcreport.report.model import (
     Block,
@@ -18,9 +18,11 @@ from calcreport.report.model import (
     Formula,
     Givens,
     Heading,
+    Letters,
     Line,
     Paragraph,
     ResultBox,
+    Row,
     SourceLane,
     Statement,
     Strong,
@@ -48,10 +50,23 @@ from calcreport.report.told import Told
 _TEXT_KINDS = {"note": "note", "caution": "caution", "assume": "assumption"}
 
 
+def _figure_first(blocks: list[Block]) -> list[Block]:
+    """Put the figure beside the given values it shows: a reader wants it first, and there is room."""
+    figures = [block for block in blocks if isinstance(block, FigureBlock)]
+    givens = next((block for block in blocks if isinstance(block, Givens) and len(block.rows) >= 6), None)
+    if len(figures) != 1 or givens is None:
+        return blocks
+    rest = [block for block in blocks if block is not figures[0]]
+    place = rest.index(givens)
+    return [*rest[:place], figures[0], *rest[place:]]
+
+
 class Composer:
     """Composes one calculation."""
 
-    def __init__(self, told: Told) -> None:
+    def __init__(self, told: Told, dispositions: dict[str, tuple[str, ...]]) -> None:
+        #: the engineer's words by check
+        self.dispositions = dispositions
         self.told, self.given, self.rows = told, GivenBlocks(told), RowBlocks(told)
         self.worked, self.forms, self.shared = told.worked, told.forms, told.shared
         self.values, self.slots = told.values, told.slots
@@ -61,7 +76,7 @@ class Composer:
         found: list[Block] = [self.opening()]
         for item in self.told.script.items:
             found.extend(self.item(item))
-        return tuple(found)
+        return tuple(_figure_first(found))
 
     def opening(self) -> Block:
         """Say what is decided here and what is not."""
@@ -95,7 +110,7 @@ class Composer:
             case SayBranch():
                 return self.branch(item)
             case SayCheck():
-                return (self.check(item),)
+                return (self.check(item), *self.disposition(item))
             case SayRequire():
                 return (self.require(item),)
             case SayFigure():
@@ -143,7 +158,7 @@ class Composer:
     def branch(self, item: SayBranch) -> tuple[Block, ...]:
         """Say which comparison chose a block."""
         shown = self.told.because(item.worked.line, item.worked.arm, item.worked.open)
-        return (Paragraph((shown, ":"), "plain"),) if shown is not None else ()
+        return (Paragraph(("Since ", shown, ":"), "plain"),) if shown is not None else ()
 
     def check(self, item: SayCheck) -> Block:
         """Return a check in full."""
@@ -174,6 +189,11 @@ class Composer:
             self.told.source(check.line.cite.printed, check.line.holds, opened, item.number),
         )
 
+    def disposition(self, item: SayCheck) -> tuple[Block, ...]:
+        """Return the engineer's word on a check that is NG."""
+        said = self.dispositions.get(item.worked.line.name, ()) if item.worked.verdict == "NG" else ()
+        return tuple(Paragraph((Strong("Engineer's disposition: "), words), "plain") for words in said)
+
     def ratio_steps(self, test: Compare, opened: Opened) -> tuple[Formula, Formula | None]:
         """Return demand over capacity with symbols and with numbers."""
         demand, capacity = (test.left, test.right) if test.op in ("<", "<=") else (test.right, test.left)
@@ -185,8 +205,13 @@ class Composer:
         worked = item.worked
         condition = worked.line.condition
         shown = self.shared.condition(condition)
-        if len(worked.sides) == 1 and isinstance(condition, Compare):
-            shown = self.told.compared(worked.sides[0].test, worked.open)
+        tests = joint_comparisons(condition)
+        if tests and all(self.forms.side(test, worked.open, "left") for test in tests):
+            items: list[Formula] = []
+            for test in tests:
+                items += [Letters(" and ")] if items else []
+                items.append(self.told.compared(test, worked.open))
+            shown = Row(tuple(items))
         lane = self.told.source(worked.line.cite.printed, condition, worked.open, item.number)
         return Statement(item.number, self.told.anchor(item.number), ("Required",), shown, lane)
 
@@ -216,13 +241,11 @@ class Composer:
         line = item.worked.line
         words = self.pieces(line.pieces, item.worked.open)
         if line.kind == "heading":
-            return (Heading("".join(str(w) for w in words if isinstance(w, str)), 2),)
+            return (Heading("".join(str(w) for w in words if isinstance(w, str)), 3),)
         cite = line.cite.printed if line.cite else ""
         if line.kind == "use":
             return (ResultBox(0, "", words, SourceLane(cite)),)
-        if cite:
-            words = (*words, f"  [{cite}]")
-        return (Paragraph(words, _TEXT_KINDS[line.kind]),)  # type: ignore[arg-type]
+        return (Paragraph(words, _TEXT_KINDS[line.kind], SourceLane(cite)),)  # type: ignore[arg-type]
 
     def pieces(self, pieces: tuple[str | int, ...], opened: Opened) -> Words:
         """Return words in which each slot shows its value."""

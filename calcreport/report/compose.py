@@ -17,7 +17,7 @@ from calcreport.report.forms import CalculationForms
 from calcreport.report.model import Block, Index, IndexEntry, Part, Report, TitleFacts
 from calcreport.report.notation import Notation
 from calcreport.report.script import Script, write_script
-from calcreport.report.summary import Summary, SummarySheets, result_words, summarise, worst_checks
+from calcreport.report.summary import Summary, SummarySheets, dispositions, result_words, summarise, worst_checks
 from calcreport.report.told import SymbolForms, Told
 
 
@@ -42,7 +42,8 @@ def compose(project: WorkedProject, progress: Callable[[int, int], None]) -> Com
     for done, worked in enumerate(project.calculations, 1):
         symbols = shared.setdefault(id(worked.plan), SymbolForms(Notation(worked.plan.slots)))
         mark = worked.calculation.mark
-        blocks = Composer(Told(scripts[mark], forms, scripts, symbols)).blocks()
+        said = {name: dispositions(project, mark, name) for name in {check.line.name for check in worked.checks}}
+        blocks = Composer(Told(scripts[mark], forms, scripts, symbols), said).blocks()
         parts.append(_calculation(project, worked, scripts[mark], blocks))
         progress(done, len(project.calculations))
     sheets = SummarySheets(project, forms, scripts).blocks(summary, entries)
@@ -60,7 +61,11 @@ def _report(
     facts = project.project
     loud = bool(summary.failed or summary.not_evaluated)
     cover = Part(
-        "COVER", "Cover", "cover", _facts(project, "Cover"), cover=fronts.cover(project, result_words(summary), loud)
+        "COVER",
+        "Cover",
+        "cover",
+        _facts(project, "Cover"),
+        cover=fronts.cover(project, result_words(project, summary), loud),
     )
     front = [
         _front(project, "REVISIONS", "Revision record", fronts.revisions(project)),
@@ -102,7 +107,7 @@ def _facts(project: WorkedProject, subject: str, code: str = "", fingerprint: st
         status=facts.status.upper(),
         status_note=fronts.STATUS_NOTES[facts.status],
         revision=f"rev {issue.number}" if issue else "rev 1",
-        date=fronts.date_words(issue.date if issue else facts.date),
+        date=fronts.short_date(issue.date if issue else facts.date),
         fingerprint=fingerprint,
         program=PROGRAM,
     )

@@ -77,6 +77,15 @@ def show_name(text: str) -> Formula:
     return Script(shown, subscript, above)
 
 
+def show_row(name: str) -> Formula:
+    """Return a row's name: E_v with its subscript, W- with a true minus, other names as they are."""
+    signed = re.fullmatch(r"([A-Z](?:_[A-Za-z0-9]+)?)([+-]?)", name)
+    if signed is None:
+        return Letters(name)
+    shown = show_name(signed[1]) if "_" in signed[1] else Letters(signed[1], "italic")
+    return Row((shown, Letters(signed[2].replace("-", "−")))) if signed[2] else shown
+
+
 def _letters(text: str) -> Formula:
     """Return base letters: one letter italic, a word upright, digits after a letter as they are."""
     if text in _GREEK:

@@ -1,6 +1,6 @@
 """Figures from a calculation's own values: the section with its bars, the span with its loads and moments.
 
-A worked figure and forms in, a figure record out. Kinds and their inputs are declared here; places on paper are not.
+A worked figure and forms in, a figure record out. What each kind is handed is declared in `core.figures`.
 """
 
 from __future__ import annotations
@@ -9,6 +9,7 @@ from collections.abc import Callable
 from dataclasses import dataclass
 
 from calcreport.calculate.model import FigureInput, Key, WorkedFigure
+from calcreport.core.figures import needed_inputs
 from calcreport.report.display import show_symbol
 from calcreport.report.forms import CalculationForms
 from calcreport.report.model import (
@@ -23,11 +24,6 @@ from calcreport.report.model import (
 )
 from calcreport.report.notation import relation, show_figure
 
-#: inputs of every kind, needed and optional
-KINDS: dict[str, tuple[tuple[str, ...], tuple[str, ...]]] = {
-    "beam section": (("b", "h", "c_c", "d_s", "face", "layers", "n", "d_b", "y"), ("c", "a", "eps_cu", "eps_t")),
-    "span": (("l", "loads", "w", "P", "x_P", "M_u"), ("pinned", "roller", "fixed", "x_u", "w_u", "P_u")),
-}
 _STATIONS = 48
 
 
@@ -81,7 +77,7 @@ class _Inputs:
 def draw(worked: WorkedFigure, forms: CalculationForms) -> Figure | None:
     """Return the figure, or None where an input it needs has no value."""
     inputs = _Inputs(forms, {given.name: given for given in worked.line.inputs}, dict(worked.open))
-    needed, _ = KINDS[worked.line.kind]
+    needed = needed_inputs(worked.line.kind)
     if not all(inputs.has(name) for name in needed):
         return None
     makers: dict[str, Callable[[_Inputs], Figure]] = {"beam section": _section, "span": _span}
@@ -91,19 +87,19 @@ def draw(worked: WorkedFigure, forms: CalculationForms) -> Figure | None:
 def _section(inputs: _Inputs) -> Figure:
     """Return a beam section: bars where the lines put them, depths from the compression face."""
     names, rows = inputs.rows("layers"), inputs.inputs["layers"].rows
+    top = inputs.word("face") == "top"
     bars = []
     for row, _ in enumerate(names):
         at = rows, row
-        callout = _callout(inputs, at)
-        bars.append(
-            Bar(int(inputs.number("n", at)), _mm(inputs.number("d_b", at)), _mm(inputs.number("y", at)), callout)
-        )
+        # bars are placed from the top; the lines give depths from the compression face
+        depth = inputs.number("h") - inputs.number("y", at) if top else inputs.number("y", at)
+        diameter, count = _mm(inputs.number("d_b", at)), int(inputs.number("n", at))
+        bars.append(Bar(count, diameter, _mm(depth), _callout(inputs, at)))
     labels: list[tuple[str, Formula]] = [("b", inputs.label("b")), ("h", inputs.label("h"))]
     for name, label in (("c", "c"), ("a", "a"), ("eps_cu", "strain_top"), ("eps_t", "strain_steel")):
         if inputs.has(name):
             labels.append((label, inputs.label(name)))
     steel = " + ".join(bar.callout for bar in bars)
-    labels.append(("steel", Letters(steel)))
     face = inputs.word("face")
     b, h = inputs.number("b"), inputs.number("h")
     return SectionFigure(

@@ -150,7 +150,7 @@ def _turned(whens: tuple[Condition | None, ...], chosen: int) -> tuple[Compare, 
     """Return the comparisons that chose an arm: its own, or for `otherwise` the failed ones reversed."""
     own = whens[chosen]
     if own is not None:
-        return _compares(own)
+        return joint_comparisons(own)
     found = []
     for when in whens[:chosen]:
         if isinstance(when, Compare):
@@ -160,11 +160,13 @@ def _turned(whens: tuple[Condition | None, ...], chosen: int) -> tuple[Compare, 
     return tuple(found)
 
 
-def _compares(node: Condition) -> tuple[Compare, ...]:
+def joint_comparisons(node: Condition) -> tuple[Compare, ...]:
+    """Return the comparisons that must all hold for a condition to; () where it is made otherwise."""
     match node:
         case Compare():
             return (node,)
         case Logic("and", left, right):
-            return _compares(left) + _compares(right)
+            one, other = joint_comparisons(left), joint_comparisons(right)
+            return one + other if one and other else ()
         case _:
             return ()

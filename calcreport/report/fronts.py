@@ -10,7 +10,18 @@ from dataclasses import dataclass
 from calcreport.calculate.model import WorkedProject, WorkedText
 from calcreport.core.source import Source
 from calcreport.core.version import PROGRAM
-from calcreport.report.model import Block, Column, CoverFacts, Heading, Paragraph, Strong, Table, TableRow, Words
+from calcreport.report.model import (
+    Block,
+    Column,
+    CoverFacts,
+    Heading,
+    Listing,
+    Paragraph,
+    Strong,
+    Table,
+    TableRow,
+    Words,
+)
 from calcreport.report.script import SayText, Script
 
 MONTHS = (
@@ -50,6 +61,12 @@ def date_words(iso: str) -> str:
     """Return '16 November 2026' for '2026-11-16'."""
     year, month, day = iso.split("-")
     return f"{int(day)} {MONTHS[int(month) - 1]} {year}"
+
+
+def short_date(iso: str) -> str:
+    """Return '16 Nov 2026' for '2026-11-16'."""
+    day, month, year = date_words(iso).split(" ")
+    return f"{day} {month[:3]} {year}"
 
 
 def grouped(fingerprint: str) -> str:
@@ -189,11 +206,7 @@ def echo(files: tuple[Source, ...]) -> tuple[Block, ...]:
     ]
     for source in files:
         blocks.append(Heading(source.name, 2))
-        rows = tuple(
-            TableRow(((str(number),), (_kept(text),)))
-            for number, text in enumerate(source.text.rstrip("\n").split("\n"), 1)
-        )
-        blocks.append(Table((Column(("line",), "right"), Column(("text",), stretch=1.0)), rows))
+        blocks.append(Listing(tuple(_kept(text) for text in source.text.rstrip("\n").split("\n"))))
     return tuple(blocks)
 
 

@@ -16,7 +16,7 @@ from calcreport.calculate.model import (
 )
 from calcreport.core.quantity import Amount
 from calcreport.core.units import NONE
-from calcreport.report.display import show_symbol, unit_text
+from calcreport.report.display import show_row, show_symbol, unit_text
 from calcreport.report.forms import link_place
 from calcreport.report.model import (
     Block,
@@ -27,6 +27,7 @@ from calcreport.report.model import (
     Reference,
     Row,
     SourceLane,
+    Statement,
     Table,
     TableRow,
     Words,
@@ -59,10 +60,14 @@ class GivenBlocks:
             shown = Letters("none") if worth is None else Row((Letters("none ("), shown, Letters(")")))
         shown = self.as_typed(shown, value, planned.slot)
         symbol = self.told.slots[planned.slot].symbol
+        # an election has words, not letters: what it is stands under its meaning, the answer under its value
+        shown_symbol = (
+            Row(()) if symbol.kind == "word" and symbol.shows and " " in symbol.shows else show_symbol(symbol)
+        )
         return GivenRow(
             number,
             self.told.anchor(number),
-            show_symbol(symbol),
+            shown_symbol,
             (planned.given.says,),
             shown,
             self.origin(value.origin, value.value),
@@ -114,6 +119,10 @@ class GivenBlocks:
         if isinstance(value, GivenPairs):
             return self.pair_table(item, planned)
         assert isinstance(value, GivenRows)
+        if not planned.columns:
+            return self.names_only(item, planned, value.names)
+        if len(value.names) == 1:
+            return self.single_row(item, planned, value)
         columns = [Column((planned.given.name,))]
         slots: list[int] = []
         for column in planned.columns:
@@ -128,6 +137,30 @@ class GivenBlocks:
             tuple(columns), rows, words, item.number, self.told.anchor(item.number), SourceLane("project file")
         )
 
+    def names_only(self, item: SayRows, planned: PlannedGiven, names: tuple[str, ...]) -> Block:
+        """Return a set that has no columns: its row names in one line."""
+        items: list[Formula] = []
+        for name in names:
+            items += [Letters(",  ")] if items else []
+            items.append(show_row(name))
+        anchor = self.told.anchor(item.number)
+        words = (planned.given.says or planned.given.name,)
+        return Statement(item.number, anchor, words, Row(tuple(items)), SourceLane("project file"))
+
+    def single_row(self, item: SayRows, planned: PlannedGiven, value: GivenRows) -> Block:
+        """Return the one row of a set as a statement: layer first: 4-#9, A_s,i = 4.00 in.^2, …"""
+        items: list[Formula] = []
+        for column in planned.columns:
+            for slot in (column.slot, *column.outputs):
+                items += [Letters(",  ")] if items else []
+                if slot == column.slot and column.outputs:
+                    items.append(self.told.value(slot, (0,)))
+                else:
+                    items += [self.told.shared.symbol(slot), relation("="), self.told.value(slot, (0,))]
+        words = (f"{planned.given.name} {value.names[0]}",)
+        anchor = self.told.anchor(item.number)
+        return Statement(item.number, anchor, words, Row(tuple(items)), SourceLane("project file"))
+
     def pair_table(self, item: SayRows, planned: PlannedGiven) -> Block:
         """Return a value over pairs of rows: one set down, one across."""
         names = [self.told.values.names[index].get((), ()) for index in planned.over]
@@ -138,7 +171,7 @@ class GivenBlocks:
             )
             columns: tuple[Column, ...] = (Column((sets[0],)), self.told.column(planned.slot))
         else:
-            columns = (Column((f"{sets[0]} / {sets[1]}",)), *(Column((name,), "right") for name in names[1]))
+            columns = (Column((f"{sets[0]} / {sets[1]}",)), *(Column((show_row(name),), "right") for name in names[1]))
             cells = tuple(
                 TableRow(((name,), *(self.told.cell(planned.slot, (row, other)) for other in range(len(names[1])))))
                 for row, name in enumerate(names[0])

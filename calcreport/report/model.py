@@ -144,6 +144,7 @@ class Paragraph:
 
     words: Words
     kind: Literal["plain", "note", "caution", "assumption"] = "plain"
+    source: SourceLane = SourceLane("")
 
 
 @dataclass(frozen=True, slots=True)
@@ -152,6 +153,7 @@ class GivenRow:
 
     number: int
     anchor: str
+    #: an empty Row where the value has no letters
     symbol: Formula
     says: Words
     value: Formula
@@ -269,6 +271,13 @@ class Table:
 
 
 @dataclass(frozen=True, slots=True)
+class Listing:
+    """Lines of a text file as read, numbered, small and close; a line's leading spaces are kept."""
+
+    lines: tuple[str, ...]
+
+
+@dataclass(frozen=True, slots=True)
 class Bar:
     """A group of like bars in one layer of a section, lengths in millimetres."""
 
@@ -342,7 +351,9 @@ class FigureBlock:
     caption: Words = ()
 
 
-Block: TypeAlias = Heading | Paragraph | Givens | Line | Statement | CheckLine | ResultBox | Table | FigureBlock
+Block: TypeAlias = (
+    Heading | Paragraph | Givens | Line | Statement | CheckLine | ResultBox | Table | Listing | FigureBlock
+)
 
 
 # ---------------------------------------------------------------- parts

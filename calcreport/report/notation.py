@@ -129,6 +129,9 @@ class Notation:
 
     def over(self, node: Over) -> Piece:
         """Print a sum or an extreme with its set below the sign."""
+        row = picked_row(node)
+        if row:
+            return Piece(of_row(self.piece(node.body).formula, row), ATOM)
         below: Formula = Letters(node.rows)
         if node.where is not None:
             below = Row((below, Letters(": "), self.condition(node.where)))
@@ -168,7 +171,10 @@ class Notation:
 
     def held(self, node: Expression, least: int) -> Piece:
         """Print a node, in parentheses where it binds less than `least`."""
-        found = self.piece(node)
+        if isinstance(node, Binary) and node.op == "/" and least >= PRODUCT:
+            found = self.fraction(self.piece(node.left), self.piece(node.right))
+        else:
+            found = self.piece(node)
         return found if found.strength >= least else fenced(found)
 
     def sum(self, node: Binary) -> Piece:
@@ -198,7 +204,16 @@ class Notation:
         return Piece(Row(tuple(items)), PRODUCT, pieces[0].starts_digit, before.ends_digit)
 
     def quotient(self, node: Binary) -> Piece:
+        """Print a/2 on the line where both sides are single, else a fraction."""
         above, below = self.piece(node.left), self.piece(node.right)
+        if above.strength == below.strength == ATOM and not (above.factored or below.factored):
+            return Piece(
+                Row((above.formula, Letters("/"), below.formula)), PRODUCT, above.starts_digit, below.ends_digit
+            )
+        return self.fraction(above, below)
+
+    def fraction(self, above: Piece, below: Piece) -> Piece:
+        """Print one thing over another."""
         return Piece(Fraction(above.bare, below.bare), POWER, above.starts_digit, below.ends_digit)
 
     def power(self, node: Binary) -> Piece:
@@ -218,13 +233,14 @@ class Notation:
         return self.formula(node)
 
     def call(self, node: Call) -> Piece:
-        arguments = [self.piece(argument).bare for argument in node.arguments]
+        pieces = [self.piece(argument) for argument in node.arguments]
+        arguments = [piece.bare for piece in pieces]
         match node.function:
             case "abs":
                 return Piece(Fence("|", arguments[0], "|"), ATOM)
             case "sqrt":
                 return Piece(Root(arguments[0]), ATOM)
-            case "min" | "max" if len(arguments) >= 3:
+            case "min" | "max" if _long(pieces):
                 return Piece(Row((Letters(node.function), _THIN, Fence("{", Stack(tuple(arguments)), ""))), POWER)
             case _:
                 inner: list[Formula] = []
@@ -260,6 +276,26 @@ def reversed_condition(node: Condition) -> Condition:
     if isinstance(node, Compare):
         return Compare(_REVERSED[node.op], node.left, node.right, node.span)  # type: ignore[arg-type]
     return Not(node, node.span)
+
+
+def _long(pieces: list[Piece]) -> bool:
+    """Tell whether the arguments of an extreme read better under one another: many, or three that are not single."""
+    return len(pieces) > 3 or (len(pieces) == 3 and any(piece.strength <= SUM for piece in pieces))
+
+
+def picked_row(node: Over) -> str:
+    """Return the row's name where a pick takes one named row, else ''."""
+    where = node.where
+    named = node.function == "pick" and isinstance(node.body, Name) and isinstance(where, Is)
+    return where.word if named and isinstance(where, Is) and where.bound == node.bound else ""
+
+
+def of_row(symbol: Formula, row: str) -> Formula:
+    """Return a symbol with a row's name in its subscript: d_b,first."""
+    if isinstance(symbol, Script):
+        below = (*items_of(symbol.below), Letters(", ")) if symbol.below is not None else ()
+        return Script(symbol.base, Row((*below, Letters(row))), symbol.above)
+    return Script(symbol, Letters(row))
 
 
 def reads_alike(one: Formula, other: Formula) -> bool:

@@ -11,14 +11,18 @@ from calcreport.calculate.model import (
 )
 from calcreport.core.expression import Name, Number
 from calcreport.report.digits import number_text
+from calcreport.report.display import show_row
 from calcreport.report.model import (
     Block,
     Column,
     Emphasis,
     Formula,
+    Letters,
     Line,
+    Operator,
     Row,
     SourceLane,
+    Space,
     Statement,
     Table,
     TableRow,
@@ -125,13 +129,15 @@ class RowBlocks:
             if column.over < 0:
                 found.append(self.told.cell(column.slot, self.told.key(column.slot, opened)))
                 continue
-            terms: list[str] = []
+            terms: list[Formula] = []
             for other, name in enumerate(self.values.names[column.over].get((), ())):
                 key = self.told.key(column.slot, (*opened, (column.over, other)))
                 if self.values.get(column.slot, key):
                     figure = self.forms.figure(column.slot, key)
-                    terms.append(f"{number_text(figure)} {name}")
-            found.append((" + ".join(terms).replace("+ −", "− "),))
+                    sign = "−" if figure.mantissa < 0 else "+"
+                    terms += [Operator(sign, "binary")] if terms else [Operator(sign, "prefix")] if sign == "−" else []
+                    terms += [Letters(number_text(figure, unsigned=True)), Space("thin"), show_row(name)]
+            found.append((Row(tuple(terms)),) if terms else ("–",))
         return tuple(found)
 
     def made_line(self, item: SayMade, row: int, name: str, slot: int, place: int, first: bool) -> Block:

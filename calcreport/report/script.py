@@ -220,7 +220,7 @@ def _lines(writer: _Writer, lines: tuple[WorkedLine, ...]) -> None:
                 writer.items.append(SayText(line))
             case WorkedPart():
                 if line.line.title:
-                    writer.items.append(SayHeading(line.line.title, 2))
+                    writer.items.append(SayHeading(line.line.title, 3))
                 _lines(writer, line.lines)
             case WorkedBranches():
                 if line.lines:
@@ -292,7 +292,8 @@ def _worst(lines: tuple[WorkedLine, ...]) -> tuple[bool, float]:
 
 def _rows_in_full(writer: _Writer, each: WorkedEach, name: str, rows: range | list[int]) -> None:
     for row in rows:
-        writer.items.append(SayHeading(f"{name} {each.names[row]}", 3))
+        if len(each.rows) > 1:
+            writer.items.append(SayHeading(f"{name} {each.names[row]}", 3))
         _lines(writer, each.rows[row])
 
 

@@ -27,6 +27,7 @@ from calcreport.report.notation import (
     grouped_text,
     items_of,
     number,
+    picked_row,
     show_factor,
     with_power,
 )
@@ -106,6 +107,12 @@ class Substitution(Notation):
         values = self.printed.values
         before = values.open[node.bound]
         names = self.printed.row_names(node.bound)
+        taken = self.row_taken(node, names)
+        if taken >= 0:
+            values.open[node.bound] = taken
+            found = self.piece(node.body)
+            values.open[node.bound] = before
+            return found
         terms: list[Piece] = []
         for row in range(len(names)):
             values.open[node.bound] = row
@@ -125,6 +132,22 @@ class Substitution(Notation):
         if len(terms) == 1:
             return first
         return Piece(Row(tuple(items)), SUM, first.starts_digit, last.ends_digit)
+
+    def row_taken(self, node: Over, names: tuple[str, ...]) -> int:
+        """Return the row an extreme or a pick takes its single value from; -1 where that cannot be told."""
+        row = picked_row(node)
+        if row:
+            return names.index(row) if row in names else -1
+        if node.function not in ("max", "min") or node.where is not None or not isinstance(node.body, Name):
+            return -1
+        values, slot = self.printed.values, node.body.slot
+        before = values.open[node.bound]
+        found = []
+        for place in range(len(names)):
+            values.open[node.bound] = place
+            found.append(values.number(slot, values.key(slot)))
+        values.open[node.bound] = before
+        return found.index(max(found) if node.function == "max" else min(found)) if found else -1
 
     def is_zero(self, node: Expression) -> bool:
         """Tell whether a term of a sum vanishes: a factor of it is zero."""

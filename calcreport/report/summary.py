@@ -17,6 +17,7 @@ from calcreport.report.model import (
     Block,
     Column,
     Emphasis,
+    Formula,
     Heading,
     Paragraph,
     Reference,
@@ -25,6 +26,7 @@ from calcreport.report.model import (
     TableRow,
     Words,
 )
+from calcreport.report.notation import Notation
 from calcreport.report.script import Script
 
 CLOSING = "Computed demand does not exceed computed capacity for the checks listed"
@@ -89,8 +91,8 @@ def not_covered(project: WorkedProject) -> tuple[tuple[str, tuple[str, ...]], ..
     return tuple((state, tuple(marks)) for state, marks in found.items())
 
 
-def result_words(summary: Summary) -> tuple[Words, ...]:
-    """Return the result as the cover states it."""
+def result_words(project: WorkedProject, summary: Summary) -> tuple[Words, ...]:
+    """Return the result as the cover states it, with the engineer's word on what is NG."""
     failed = ", ".join(f"{mark} {name}" for mark, name in summary.failed)
     counts: list[str | Strong] = []
     if summary.failed:
@@ -98,16 +100,26 @@ def result_words(summary: Summary) -> tuple[Words, ...]:
     else:
         counts.append("0 NG")
     counts.append(
-        f"    {summary.not_evaluated} not evaluated    {len(summary.not_covered)} limit states not covered"
-        f"    {summary.open_assumptions} assumptions open"
+        f", {summary.not_evaluated} not evaluated, {len(summary.not_covered)} limit states not covered, "
+        f"{summary.open_assumptions} assumptions to be verified"
     )
-    return (tuple(counts), (_closing(summary),))
+    said = [
+        (f"Engineer's disposition of {mark} {name}: {words}",)
+        for mark, name in summary.failed
+        for words in dispositions(project, mark, name)
+    ]
+    return (tuple(counts), (_closing(summary),), *said)
 
 
 def _closing(summary: Summary) -> str:
     if summary.failed or summary.not_evaluated:
         return CLOSING + ", except those marked NG or not evaluated."
     return CLOSING + "."
+
+
+def dispositions(project: WorkedProject, mark: str, check: str) -> tuple[str, ...]:
+    """Return the engineer's words on a check."""
+    return tuple(d.says for d in project.project.dispositions if d.check == f"{mark}.{check}")
 
 
 class SummarySheets:
@@ -138,6 +150,8 @@ class SummarySheets:
             for check in worst_checks(worked):
                 if check.verdict in ("NG", "not evaluated"):
                     words = self.sides(check, mark) if check.verdict == "NG" else f"not evaluated: {check.reason}"
+                    said = dispositions(self.project, mark, check.line.name)
+                    words += f". Engineer's disposition: {' '.join(said)}" if said else ""
                     rows.append(
                         TableRow(
                             (
@@ -174,23 +188,12 @@ class SummarySheets:
         ranked = sorted(
             self.project.calculations, key=lambda w: _rank(g) if (g := governing(w)) else (0, -1.0), reverse=True
         )
-        rows = []
+        rows: list[TableRow] = []
+        silent: list[str] = []
         for worked in ranked:
             mark, check = worked.calculation.mark, governing(worked)
             if check is None:
-                rows.append(
-                    TableRow(
-                        (
-                            (mark,),
-                            (worked.calculation.title,),
-                            ("no checks: gives values to others",),
-                            ("",),
-                            ("",),
-                            ("",),
-                            ("",),
-                        )
-                    )
-                )
+                silent.append(mark)
                 continue
             demand, capacity = self.demand(check, mark)
             emphasis: Emphasis = "loud" if check.verdict == "NG" else ""
@@ -217,7 +220,12 @@ class SummarySheets:
             Column(("Ratio",), "right"),
             Column(("Where",)),
         )
-        return [Heading("Governing check of every calculation", 2), Table(columns, tuple(rows))]
+        blocks: list[Block] = [Heading("Governing check of every calculation", 2), Table(columns, tuple(rows))]
+        if silent:
+            blocks.append(
+                Paragraph((f"Without checks of their own, giving values to others: {', '.join(silent)}.",), "note")
+            )
+        return blocks
 
     def grid(self) -> list[Block]:
         """Return every check of every calculation by template, and who covers what a template leaves out."""
@@ -228,9 +236,12 @@ class SummarySheets:
                 groups.setdefault(worked.calculation.template.title, []).append(worked)
         for title, members in groups.items():
             names = list(dict.fromkeys(check.line.name for worked in members for check in worst_checks(worked)))
-            rows = [self.grid_row(worked, names) for worked in members]
+            notes: dict[Formula, str] = {}
+            rows = [self.grid_row(worked, names, notes) for worked in members]
             blocks.append(Heading(title, 2))
             blocks.append(Table((Column(("Mark",)), *(Column((name,), "right", 1.0) for name in names)), tuple(rows)))
+            for condition, note in notes.items():
+                blocks.append(Paragraph((f"{note} not applicable: ", condition, " does not hold."), "note"))
         said = [d for d in self.project.project.dispositions if d.limit_state]
         if said:
             rows = [TableRow(((d.limit_state,), (d.says,))) for d in said]
@@ -238,7 +249,7 @@ class SummarySheets:
             blocks.append(Table((Column(("Limit state",)), Column(("Covered by",), stretch=1.0)), tuple(rows)))
         return blocks
 
-    def grid_row(self, worked: Worked, names: list[str]) -> TableRow:
+    def grid_row(self, worked: Worked, names: list[str], notes: dict[Formula, str]) -> TableRow:
         mark, chief = worked.calculation.mark, governing(worked)
         cells: list[Words] = [(mark,)]
         by_name = {check.line.name: check for check in worst_checks(worked)}
@@ -253,8 +264,17 @@ class SummarySheets:
             elif check is chief:
                 cells.append((Strong(text),))
             else:
-                cells.append((text if check.verdict != "not applicable" else "n.a.",))
+                cells.append(
+                    (text if check.verdict != "not applicable" else self.not_applicable(worked, check, notes),)
+                )
         return TableRow(tuple(cells), "loud" if worked.verdict == "NG" else "")
+
+    def not_applicable(self, worked: Worked, check: WorkedCheck, notes: dict[Formula, str]) -> str:
+        """Return the mark of the note that says why a check is not applicable."""
+        if check.excluded_by is None:
+            return "n.a."
+        condition = Notation(worked.plan.slots).condition(check.excluded_by)
+        return notes.setdefault(condition, f"n{len(notes) + 1}")
 
     # -------------------------------------------------------- pieces
 

@@ -126,13 +126,13 @@ def test_a_figure_stands_right_of_the_lines_that_follow_it(kit: Kit, fonts: Font
 
 
 def test_a_figure_without_room_waits_while_its_lines_go_on(kit: Kit) -> None:
-    fill = tuple(a_line(n) for n in range(1, 38))
+    fill = tuple(a_line(n) for n in range(1, 48))
     (alone,) = flow(kit, fill, kit.sheet.body_top)
     assert kit.sheet.body_foot - alone.foot < 100.0  # no room for the figure, but for a line
-    after = tuple(a_line(n) for n in range(38, 60))
+    after = tuple(a_line(n) for n in range(48, 80))
     bodies = flow(kit, (*fill, FigureBlock(section()), *after), kit.sheet.body_top)
     assert len(bodies) == 2
-    assert sheet_of_text(bodies, "words38x") == [0]  # the line after the figure stays on the first sheet
+    assert sheet_of_text(bodies, "words48x") == [0]  # the line after the figure stays on the first sheet
     assert sheet_of_text(bodies, "4-#9") == [1]
 
 

@@ -31,9 +31,9 @@ def test_a4_keeps_the_outer_lanes_and_narrows_the_work_lane() -> None:
 @pytest.mark.parametrize(("paper", "height"), [("letter", 279.4), ("a4", 297.0)])
 def test_title_block_stands_on_the_foot(paper: str, height: float) -> None:
     sheet = sheet_of(paper)  # type: ignore[arg-type]
-    assert (sheet.foot - sheet.block) / MM == pytest.approx(31)
-    # height - 10 top - 9 foot - 31 block - 2.5 above - 2 below the body
-    assert sheet.body_height / MM == pytest.approx(height - 10 - 9 - 31 - 2.5 - 2)
+    assert (sheet.foot - sheet.block) / MM == pytest.approx(26)
+    # height - 10 top - 9 foot - 26 block - 2 above - 1.4 below the body
+    assert sheet.body_height / MM == pytest.approx(height - 10 - 9 - 26 - 2 - 1.4)
 
 
 def test_body_lane_keeps_clear_of_the_rules() -> None:

@@ -114,14 +114,9 @@ class _Parser:
         return found
 
     def factor(self) -> Node:
-        start = self.at
         found = self.primary()
         raised = self.row[self.at - 1].raised
-        if raised and self.row[start].kind != "number" or raised and not _is_ten(self.row[start]):
-            return Work("^", (found, parse(raised)))
-        if raised:
-            return Work("^", (found, parse(raised)))
-        return found
+        return Work("^", (found, parse(raised))) if raised else found
 
     def primary(self) -> Node:
         token = self.take()
@@ -129,10 +124,10 @@ class _Parser:
             if not is_number(token.text):
                 raise Unread(f"{token.text!r} is no number")
             following = self.peek()
-            if following is not None and following.kind == "unit":
+            if following is not None and following.kind == "unit" and not token.raised:
                 self.at += 1
-                return Number(Printed(token.text, 0, following.text))
-            return Number(Printed(token.text))
+                return Number(Printed(token.text, token.power, following.text))
+            return Number(Printed(token.text, token.power))
         if token.kind == "word":
             return self.word(token)
         if token.kind == "open":
@@ -188,10 +183,6 @@ class _Parser:
         return Over(token.text, label[0].text, tuple(label[2:]), self.term())
 
 
-def _is_ten(token: Token) -> bool:
-    return token.text == "10"
-
-
 def walk(node: Node) -> Iterator[Node]:
     """Yield a node and all below it."""
     yield node
@@ -206,34 +197,16 @@ def symbols(node: Node) -> set[str]:
 
 
 def numbers(node: Node) -> list[Printed]:
-    """Return the numbers of an expression, powers of ten joined to what they scale."""
-    power = _scaled(node)
-    if power is not None:
-        return [power]
-    if isinstance(node, Number):
-        return [node.printed]
-    if isinstance(node, Work):
-        return [found for child in node.inputs for found in numbers(child)]
-    return numbers(node.body) if isinstance(node, Over) else []
-
-
-def _scaled(node: Node) -> Printed | None:
-    """Return a number printed with a power of ten."""
-    if isinstance(node, Work) and node.name == "*" and isinstance(node.inputs[0], Number):
-        right = node.inputs[1]
-        if isinstance(right, Work) and right.name == "^" and isinstance(right.inputs[0], Number):
-            ten, power = right.inputs
-            if isinstance(ten, Number) and ten.printed.text == "10":
-                return Printed(node.inputs[0].printed.text, int(_bare(power)), node.inputs[0].printed.unit)
-    if isinstance(node, Work) and node.name == "neg":
-        inner = as_printed(node.inputs[0])
-        return Printed("−" + inner.text, inner.power, inner.unit) if inner is not None else None
-    return None
+    """Return the numbers of an expression."""
+    return [n.printed for n in walk(node) if isinstance(n, Number)]
 
 
 def as_printed(node: Node) -> Printed | None:
-    """Return an expression that is nothing but a printed number."""
-    return node.printed if isinstance(node, Number) else _scaled(node)
+    """Return an expression that is nothing but a printed number, with its sign."""
+    if isinstance(node, Work) and node.name == "neg" and isinstance(node.inputs[0], Number):
+        inner = node.inputs[0].printed
+        return Printed("−" + inner.text, inner.power, inner.unit)
+    return node.printed if isinstance(node, Number) else None
 
 
 @dataclass(frozen=True, slots=True)
@@ -387,15 +360,6 @@ def _combine(name: str, given: list[Value]) -> Value:
     return Value(_apply(name, numbers_))
 
 
-@dataclass(slots=True)
-class Comparison:
-    """left relation right, both as rows of tokens."""
-
-    left: list[Token]
-    relation: str
-    right: list[Token]
-
-
 def split(row: Sequence[Token], kind: str, texts: str | tuple[str, ...] = ()) -> tuple[list[list[Token]], list[str]]:
     """Part a row at its tokens of a kind; returns the parts and what parted them."""
     parts: list[list[Token]] = [[]]
@@ -409,11 +373,3 @@ def split(row: Sequence[Token], kind: str, texts: str | tuple[str, ...] = ()) ->
         else:
             parts[-1].append(token)
     return parts, marks
-
-
-@dataclass(slots=True)
-class Judged:
-    """A condition read and worked: what held, what did not, and what could not be worked."""
-
-    holds: bool | None
-    problems: list[str] = field(default_factory=list)

@@ -11,6 +11,7 @@ from dataclasses import dataclass, field
 
 from .glyphs import Glyph
 from .pieces import AXIS, RELATIONS, Rule, find_labels, find_pieces, find_runs, main_baseline
+from .units import unit
 
 _SIGNS = {"+": "+", "−": "-", "×": "*", "·": "·", "/": "/", "±": "±"}
 #: gaps, in type sizes: letters of one word; number and unit against a product by juxtaposition
@@ -33,6 +34,8 @@ class Token:
     raised: list[Token] = field(default_factory=list)
     #: set in a face for words, not in the formula face
     words: bool = False
+    #: power of ten printed after a number
+    power: int = 0
 
 
 def read_tokens(glyphs: Iterable[Glyph], rules: Iterable[Rule]) -> list[Token]:
@@ -181,7 +184,25 @@ def _join(spots: list[_Spot]) -> list[Token]:
         else:
             row.append(_sign(spot, glyph))
             at += 1
-    return row
+    return _scaled(row)
+
+
+def _scaled(row: list[Token]) -> list[Token]:
+    """Join a number, a cross and a power of ten into one number."""
+    found: list[Token] = []
+    for token in row:
+        power = _whole(token.raised) if token.kind == "number" and token.text == "10" and token.raised else None
+        if power is not None and len(found) > 1 and found[-1].text == "*" and found[-2].kind == "number":
+            found.pop()
+            found[-1].power, found[-1].right = power, token.right
+        else:
+            found.append(token)
+    return found
+
+
+def _whole(row: Sequence[Token]) -> int | None:
+    text = "".join(token.text for token in row)
+    return int(text) if text.lstrip("-").isdigit() else None
 
 
 def _digit(spot: _Spot) -> bool:
@@ -215,7 +236,7 @@ def _number(spots: list[_Spot], at: int, row: list[Token]) -> int:
     glyph = first.glyph
     assert glyph is not None
     row.append(
-        Token("number", text, first.left, last.right, first.size, raised=_raised(last), words="Math" not in glyph.font)
+        Token("number", text, first.left, _end(last), first.size, raised=_raised(last), words="Math" not in glyph.font)
     )
     if last.lowered:
         raise ValueError(f"a number with a subscript: {text}")
@@ -242,7 +263,7 @@ def _follows_number(row: list[Token], spot: _Spot) -> bool:
 
 
 def _unit(spots: list[_Spot], at: int, row: list[Token]) -> int:
-    first, text = spots[at], ""
+    first, text, start = spots[at], "", at
     while at < len(spots):
         spot = spots[at]
         if spot.glyph is None or (text and spot.left - spots[at - 1].right > _WORD_GAP * spot.size):
@@ -252,6 +273,8 @@ def _unit(spots: list[_Spot], at: int, row: list[Token]) -> int:
             break
         text += piece + "".join(g.text for g in spot.raised).translate(_POWERS)
         at += 1
+    if unit(text) is None:
+        return _word(spots, start, row)
     row.append(Token("unit", text, first.left, spots[at - 1].right, first.size))
     return at
 
@@ -281,12 +304,16 @@ def _word(spots: list[_Spot], at: int, row: list[Token]) -> int:
     text += _PRIME * len(primes)
     if last.lowered:
         text += "_" + _below(last.lowered)
-    row.append(Token("word", text, first.left, last.right, first.size, raised=_raised(last), words=not face))
+    row.append(Token("word", text, first.left, _end(last), first.size, raised=_raised(last), words=not face))
     return at
 
 
 def _below(glyphs: list[Glyph]) -> str:
     return "".join(g.text for g in sorted(glyphs, key=lambda g: g.left))
+
+
+def _end(spot: _Spot) -> float:
+    return max([spot.right, *(g.right for g in (*spot.raised, *spot.lowered))])
 
 
 def _raised(spot: _Spot) -> list[Token]:
@@ -325,7 +352,7 @@ def plain(row: Sequence[Token]) -> str:
         elif token.kind == "over":
             piece = f"{token.text}[{plain(token.parts[0])}]"
         else:
-            piece = token.text
+            piece = token.text + (f" × 10^{token.power}" if token.power else "")
         if token.raised:
             piece += f"^({plain(token.raised)})"
         found += (" " if found and token.kind not in ("close", "comma") and not found.endswith("(") else "") + piece

@@ -1,0 +1,122 @@
+"""Adopted codes and design criteria of a project, held against closed lists that are data of the library.
+
+Mappings in, editions and rows for the front sheets out. `codes.yaml` says which editions an adopted code refers
+to, `criteria.yaml` which criteria there are.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+from calcreport.core.problems import Problems
+from calcreport.core.quantity import read_in_unit
+from calcreport.core.units import read_unit
+from calcreport.read.fields import Fields, as_scalar, say_not_a_word
+from calcreport.read.library import INCOMPLETE, Library, split_code
+from calcreport.read.nodes import Mapping, Node, Scalar, Sequence
+
+#: fields a code is named for beside the two every package names
+OTHER_FIELDS = ("masonry", "steel", "timber", "soil", "bars")
+
+
+@dataclass(frozen=True, slots=True)
+class Codes:
+    """The codes a project states."""
+
+    #: edition year by code name
+    editions: dict[str, str]
+    #: (field, code) as printed, the adopted code first
+    rows: tuple[tuple[str, str], ...]
+    amendments: str
+
+
+def read_codes(node: Mapping | None, library: Library, problems: Problems) -> Codes:
+    """Read the adopted code and the codes by field; pairs that do not belong together are `edition-mix`."""
+    before = problems.met
+    if node is None:
+        return Codes({INCOMPLETE: ""}, (), "")
+    fields = Fields(node, ("adopted", "concrete", "loads", *OTHER_FIELDS), "`codes`", problems)
+    adopted = fields.mapping("adopted", required=True)
+    name = year = amendments = ""
+    if adopted is not None:
+        entry = Fields(adopted, ("name", "year", "amendments"), "`adopted`", problems)
+        name, year = entry.text("name", required=True), entry.text("year", required=True)
+        amendments = entry.text("amendments", required=True)
+    rows = [("adopted code", f"{name} {year}")]
+    editions: dict[str, str] = {}
+    for field in ("concrete", "loads", *OTHER_FIELDS):
+        scalar = fields.scalar(field, required=field in ("concrete", "loads"))
+        if scalar is None:
+            continue
+        parts = split_code(scalar.text)
+        if parts is None:
+            problems.add("no-edition", scalar.span, f"`{scalar.text[:40]}` names no edition",
+                         expected="name and year, such as ACI 318-19", found=scalar.text[:40])  # fmt: skip
+            continue
+        editions[parts[0]] = parts[1]
+        rows.append((field, scalar.text))
+    for code in _mixed(f"{name} {year}", node, library, problems):
+        del editions[code]
+    if problems.met > before:
+        editions[INCOMPLETE] = ""
+    return Codes(editions, tuple(rows), amendments)
+
+
+def _mixed(adopted: str, node: Mapping, library: Library, problems: Problems) -> list[str]:
+    """Hold the codes named against the editions an adopted code refers to; return those that do not belong to it."""
+    mixed: list[str] = []
+    tree = library.tree("codes.yaml")
+    known = tree.get("adopted") if tree else None
+    refers = known.get(adopted) if isinstance(known, Mapping) else None
+    for key, value in refers.entries if isinstance(refers, Mapping) else ():
+        stated = node.get(key.text)
+        permitted = tuple(s.text for s in value.items if isinstance(s, Scalar)) if isinstance(value, Sequence) else ()
+        named = split_code(stated.text) if isinstance(stated, Scalar) else None
+        if isinstance(stated, Scalar) and named and permitted and stated.text not in permitted:
+            mixed.append(named[0])
+            problems.add(
+                "edition-mix", stated.span, f"{adopted} does not refer to {stated.text[:40]}",
+                expected=" or ".join(permitted), found=stated.text[:40],
+                hint="where a local amendment adopts another edition, name that code as the adopted one",
+            )  # fmt: skip
+    return mixed
+
+
+def read_criteria(node: Mapping | None, library: Library, system: str, problems: Problems) -> tuple[tuple[str, str], ...]:
+    """Read the criteria against the library's closed list."""
+    tree = library.tree("criteria.yaml")
+    known = tree.get("criteria") if tree else None
+    entries = {key.text: value for key, value in known.entries} if isinstance(known, Mapping) else {}
+    if node is None:
+        return ()
+    fields = Fields(node, entries, "`criteria`", problems)
+    rows: list[tuple[str, str]] = []
+    for key, value in node.entries:
+        scalar = as_scalar(value, f"`{key.text[:40]}`", problems) if key.text in entries else None
+        if scalar is not None and _holds(scalar, key.text, entries[key.text], system, problems):
+            rows.append((key.text, scalar.text))
+    for name, entry in entries.items():
+        required = entry.get("required") if isinstance(entry, Mapping) else None
+        if isinstance(required, Scalar) and required.text == "yes" and fields.node_of(name) is None:
+            fields.say_missing(name)
+    return tuple(rows)
+
+
+def _holds(scalar: Scalar, name: str, entry: Node, system: str, problems: Problems) -> bool:
+    """Hold one criterion against its entry: a closed list of words, a unit, or free text."""
+    if not isinstance(entry, Mapping):
+        return True
+    words, unit = entry.get("one of"), entry.get("unit")
+    if isinstance(words, Sequence):
+        allowed = tuple(w.text for w in words.items if isinstance(w, Scalar))
+        if scalar.text not in allowed:
+            say_not_a_word(scalar, allowed, f"`{name}`", problems)
+            return False
+    if isinstance(unit, Mapping):
+        unit = unit.get(system)
+    if isinstance(unit, Scalar):
+        read = read_unit(unit.text, unit.span, problems)
+        return read is not None and read_in_unit(scalar.text, scalar.span, problems, read) is not None
+    return True
+
+

@@ -1,0 +1,195 @@
+"""A project as read: given values with their types, calculations, and what stands on the front sheets."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from typing import Literal, TypeAlias
+
+from calcreport.core.quantity import Amount
+from calcreport.core.source import Source, Span
+from calcreport.read.template_model import Given, System, Template
+
+
+@dataclass(frozen=True, slots=True)
+class ValueOrigin:
+    """Where a given value was taken from, as the sheet prints it."""
+
+    kind: Literal["project file", "criteria", "material", "schedule", "line", "source", "none"]
+    #: material mark, stated source, schedule row, or line such as 'FL2.M_u'
+    words: str
+
+
+@dataclass(frozen=True, slots=True)
+class BarGroup:
+    """Like bars of a callout: count, size name, area and diameter of one bar."""
+
+    count: int
+    size: str
+    area: Amount
+    diameter: Amount
+
+
+@dataclass(frozen=True, slots=True)
+class BarCallout:
+    """`4-#8`, `2#8 + 1#7`, `#4 @ 12 in`, `2 legs #4 @ 8 in`."""
+
+    groups: tuple[BarGroup, ...]
+    spacing: Amount | None
+    text: str
+
+
+@dataclass(frozen=True, slots=True)
+class LinkedValue:
+    """`{from: FL2.M_u}`: another calculation's line."""
+
+    mark: str
+    path: str
+    span: Span
+
+
+#: what a single given value may be; None stands for `none` where the template lets it be absent
+Handed: TypeAlias = Amount | str | BarCallout | LinkedValue | None
+
+
+@dataclass(frozen=True, slots=True)
+class GivenValue:
+    """A given value with its type settled by the template's declaration."""
+
+    given: Given
+    value: Handed
+    origin: ValueOrigin
+    span: Span
+
+
+@dataclass(frozen=True, slots=True)
+class GivenRows:
+    """Rows for a set: names, and a value for every column of every row."""
+
+    given: Given
+    names: tuple[str, ...]
+    #: one tuple a row, in the order of the given's columns
+    cells: tuple[tuple[GivenValue, ...], ...]
+    origin: ValueOrigin
+    span: Span
+
+
+@dataclass(frozen=True, slots=True)
+class GivenPairs:
+    """A value for pairs of rows of two sets; pairs not named take the given's `if none`."""
+
+    given: Given
+    cells: tuple[tuple[tuple[str, ...], GivenValue], ...]
+    origin: ValueOrigin
+    span: Span
+
+
+@dataclass(frozen=True, slots=True)
+class Calculation:
+    """One calculation of a project with its template and its given values."""
+
+    mark: str
+    title: str
+    template: Template
+    given: tuple[GivenValue | GivenRows | GivenPairs, ...]
+    #: files this calculation's inputs stand in are fingerprinted through this text
+    input_text: str
+    span: Span
+
+
+@dataclass(frozen=True, slots=True)
+class Assumption:
+    """An entry of the project's assumption register."""
+
+    says: str
+    to_be_verified: bool
+    by: str
+    span: Span
+
+
+@dataclass(frozen=True, slots=True)
+class Disposition:
+    """The engineer's word on a check or limit state."""
+
+    #: 'B14.shear' or '' ; limit state 'S2 vibration' or ''
+    check: str
+    limit_state: str
+    says: str
+    #: place of the check or limit state named
+    span: Span
+
+
+@dataclass(frozen=True, slots=True)
+class Issue:
+    """A row of the revision record."""
+
+    number: str
+    date: str
+    why: str
+
+
+@dataclass(frozen=True, slots=True)
+class Project:
+    """The header, criteria and calculations of a package."""
+
+    title: str
+    number: str
+    address: str
+    client: str
+    permit: str
+    office: str
+    contact: str
+    status: str
+    date: str  # ISO
+    paper: Literal["letter", "a4"]
+    system: System
+    #: ('adopted code', 'IBC 2024, no local amendments listed') and the like, in order
+    codes: tuple[tuple[str, str], ...]
+    amendments: str
+    #: code name: year, for choosing editions
+    editions: tuple[tuple[str, str], ...]
+    criteria: tuple[tuple[str, str], ...]
+    #: (mark, ((property, amount text), …))
+    materials: tuple[tuple[str, tuple[tuple[str, str], ...]], ...]
+    assumptions: tuple[Assumption, ...]
+    elsewhere: tuple[tuple[str, str], ...]
+    dispositions: tuple[Disposition, ...]
+    issues: tuple[Issue, ...]
+    #: files read, in order, for the input echo
+    files: tuple[Source, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class Inputs:
+    """Everything a run is given, parsed and typed."""
+
+    project: Project
+    #: calculations that were read without a problem
+    calculations: tuple[Calculation, ...]
+    #: marks of the others; a link to one of them is no further problem
+    poisoned: frozenset[str]
+
+
+@dataclass(frozen=True, slots=True)
+class Expected:
+    """One expectation of a case: a value within a tolerance, a word, or the outcome of a check."""
+
+    #: symbol path or check name
+    name: str
+    value: Amount | str | None
+    tolerance: Amount | None
+    #: 'OK', 'NG', 'not applicable', 'not evaluated' for a check; '' for a value
+    outcome: str
+    source: str
+    span: Span
+
+
+@dataclass(frozen=True, slots=True)
+class Case:
+    """Given values with what an outside source says of them."""
+
+    name: str
+    calculation: Calculation
+    expected: tuple[Expected, ...]
+    #: words of the requirement it must stop at, '' for none
+    stops: str
+    span: Span

@@ -51,7 +51,7 @@ def read_codes(node: Mapping | None, library: Library, problems: Problems) -> Co
         parts = split_code(scalar.text)
         if parts is None:
             problems.add("no-edition", scalar.span, f"`{scalar.text[:40]}` names no edition",
-                         expected="name and year, such as ACI 318-19", found=scalar.text[:40])  # fmt: skip
+                         expected="name and edition, such as NAME-19", found=scalar.text[:40])  # fmt: skip
             continue
         editions[parts[0]] = parts[1]
         rows.append((field, scalar.text))

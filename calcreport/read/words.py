@@ -43,7 +43,7 @@ def read_citation(scalar: Scalar, document: str, problems: Problems) -> Citation
     if mark or not any(c.isdigit() for c in text):
         problems.add(
             "no-cite", scalar.span, f"`{text[:40]}` cites no clause", found=text[:40] or "nothing",
-            expected="a clause, table or equation by its number, geometry or statics; another code as 'CODE: 2.3.1'",
+            expected="a clause, table or equation by its number, geometry or statics; another code as 'CODE: 2.3'",
             hint=problems.near(text, PLAIN),
         )  # fmt: skip
     return Citation(document, text)

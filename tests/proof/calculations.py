@@ -1,7 +1,7 @@
 """Calculations put together from their sheets: what every symbol, row and word is printed as, and where.
 
-In: `SheetPage` records of one mark. Out: `Calculation` with a register of printed forms, and `Scope`, which answers what
-a symbol is worth on the sheet, row by row. Judges nothing.
+In: `SheetPage` records of one mark. Out: `Calculation` with a register of printed forms, and `Scope`, which answers
+what a symbol is worth on the sheets, with rows of sets open. Judges nothing.
 """
 
 from __future__ import annotations
@@ -11,6 +11,7 @@ from collections import defaultdict
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass, field, replace
 from decimal import Decimal
+from typing import NamedTuple
 
 from .conditions import judge
 from .expressions import Unknown, Unread, Value, as_printed, parse, split, with_unit
@@ -19,8 +20,15 @@ from .sheets import NumberedLine, SheetPage, Statement
 from .tables import Table
 from .units import Printed, is_number
 
-#: a symbol, with the row of a set where it belongs to one
-Key = tuple[str, str, str]
+#: (set, row) pairs that stand open
+Rows = tuple[tuple[str, str], ...]
+
+
+class Key(NamedTuple):
+    """A symbol, with the rows of sets it belongs to."""
+
+    name: str
+    rows: frozenset[tuple[str, str]]
 
 
 @dataclass(frozen=True, slots=True)
@@ -36,19 +44,48 @@ class Place:
 
 
 @dataclass(slots=True)
+class TableHere:
+    """A table with the line it stands under, the rows a heading opens, and the symbol of a table of pairs."""
+
+    table: Table
+    line: NumberedLine
+    open: Rows
+    pairs: tuple[str, str] | None
+
+    def rows_of(self, row: list[str], column: int) -> frozenset[tuple[str, str]]:
+        """Return the rows that a cell belongs to."""
+        first, _, second = self.table.set_name.partition(" / ")
+        found = {pair for pair in self.open if pair[0] not in (first, second)} | {(first, row[0])}
+        return frozenset(found | {(second, self.table.columns[column].name)} if second else found)
+
+
+class InlineRow(NamedTuple):
+    """A value of a row that stands on a line instead of in a table."""
+
+    set_name: str
+    row: str
+    name: str
+    tokens: list[Token]
+    statement: Statement
+
+
+@dataclass(slots=True)
 class Calculation:
     """All sheets of a mark."""
 
     mark: str
     pages: list[SheetPage]
     lines: list[NumberedLine] = field(default_factory=list)
-    tables: list[tuple[Table, NumberedLine]] = field(default_factory=list)
-    #: rows that stand on a line instead of in a table: set, row, symbol and tokens of its value
-    inline: list[tuple[str, str, str, list[Token], Statement]] = field(default_factory=list)
+    tables: list[TableHere] = field(default_factory=list)
+    inline: list[InlineRow] = field(default_factory=list)
+    #: sets of symbols whose rows are named in words: `load D: line load`
+    worded: dict[str, set[str]] = field(default_factory=lambda: defaultdict(set))
     #: printed forms of values, and of words
     forms: dict[Key, list[tuple[Printed, Place]]] = field(default_factory=lambda: defaultdict(list))
     words: dict[str, list[tuple[str, Place]]] = field(default_factory=lambda: defaultdict(list))
-    #: every number with a unit that stands on a sheet as a value
+    #: keys by the name of the symbol
+    keys: dict[str, list[Key]] = field(default_factory=lambda: defaultdict(list))
+    #: every number with its unit that stands on a sheet as a value
     shown: set[tuple[str, str]] = field(default_factory=set)
 
     def sheet(self, page: int) -> str:
@@ -57,19 +94,32 @@ class Calculation:
 
     def set_rows(self) -> dict[str, list[str]]:
         """Return the rows of every set, in order of print."""
-        found: dict[str, list[str]] = {}
-        for table, _ in self.tables:
-            rows = found.setdefault(table.set_name, [])
-            rows += [row[0] for row in table.rows if row[0] not in rows]
-        for set_name, row_name, *_ in self.inline:
-            rows = found.setdefault(set_name, [])
-            rows += [row_name] if row_name not in rows else []
-        return found
+        found: dict[str, list[str]] = defaultdict(list)
+        for here in self.tables:
+            first, _, second = here.table.set_name.partition(" / ")
+            found[first] += [row[0] for row in here.table.rows if row[0] not in found[first]]
+            if second:
+                found[second] += [c.name for c in here.table.columns[1:] if c.name not in found[second]]
+        for item in self.inline:
+            found[item.set_name] += [item.row] if item.row not in found[item.set_name] else []
+        return dict(found)
 
     def belongs(self, name: str) -> set[str]:
         """Return the sets that a symbol is a column of."""
-        tabled = {table.set_name for table, _ in self.tables if table.column(name) is not None}
-        return tabled | {set_name for set_name, _, symbol, *_ in self.inline if symbol == name}
+        found = {item.set_name for item in self.inline if item.name == name} | self.worded.get(name, set())
+        for here in self.tables:
+            if here.pairs is not None and here.pairs[0] == name:
+                found.update(here.table.set_name.split(" / "))
+            elif here.table.column(name) is not None:
+                found |= {here.table.set_name, *(set_name for set_name, _ in here.open)}
+        return found
+
+    def note(self, key: Key, printed: Printed, place: Place) -> None:
+        """Register one printed form."""
+        if key not in self.forms:
+            self.keys[key.name].append(key)
+        self.forms[key].append((printed, place))
+        self.shown.add((printed.text, printed.unit))
 
 
 def assemble(pages: Sequence[SheetPage]) -> list[Calculation]:
@@ -78,16 +128,13 @@ def assemble(pages: Sequence[SheetPage]) -> list[Calculation]:
     for page in pages:
         calculation = found.setdefault(page.mark, Calculation(page.mark, []))
         calculation.pages.append(page)
-        if calculation.lines and (page.carried.statements or page.carried.table):
+        if calculation.lines and (page.carried.statements or page.carried.tables):
             _carry(calculation.lines[-1], page.carried)
-        calculation.lines += [replace(line, statements=list(line.statements)) for line in page.lines]
+        calculation.lines += [
+            replace(line, statements=list(line.statements), tables=list(line.tables)) for line in page.lines
+        ]
     for calculation in found.values():
-        for line in calculation.lines:
-            if line.table is not None:
-                calculation.tables.append((line.table, line))
-            for statement in line.statements:
-                calculation.inline += _inline_row(statement)
-        _contexts(calculation)
+        _open_rows(calculation)
         _register(calculation)
     return list(found.values())
 
@@ -101,36 +148,54 @@ def _carry(line: NumberedLine, carried: NumberedLine) -> None:
             line.statements[-1] = replace(last, tokens=[*last.tokens, *statement.tokens])
         else:
             line.statements.append(statement)
-    line.table = line.table or carried.table
+    line.tables += carried.tables
 
 
-def _contexts(calculation: Calculation) -> None:
-    sets = calculation.set_rows()
-    open_: tuple[tuple[str, str], ...] = ()
+def _open_rows(calculation: Calculation) -> None:
+    """Follow the headings down the sheets: which row of which set stands open at each statement and table."""
     for line in calculation.lines:
+        calculation.tables += [TableHere(table, line, (), _pairs(line, table)) for table in line.tables]
         for statement in line.statements:
-            if statement.kind == "heading":
-                row = _row_named(sets, statement.words)
-                open_ = (row,) if row else ()
-                continue
-            row = _row_named(sets, statement.words.partition(":")[0])
-            statement.context = (*open_, row) if row else open_
+            calculation.inline += _inline_row(statement)
+    sets = calculation.set_rows()
+    heading: Rows = ()
+    for line in calculation.lines:
+        events: list[tuple[int, float, Statement | TableHere]] = [(s.page, -s.y, s) for s in line.statements]
+        events += [(h.table.page, -h.table.y, h) for h in calculation.tables if h.line is line]
+        for _, _, event in sorted(events, key=lambda e: e[:2]):
+            if isinstance(event, TableHere):
+                event.open = heading
+            elif event.kind == "heading":
+                row = _row_named(sets, event.words)
+                heading = (row,) if row else ()
+            else:
+                row = _row_named(sets, event.words.partition(":")[0]) if ":" in event.words else None
+                event.context = (*heading, row) if row else heading
+                if row and event.kind == "formula":
+                    calculation.worded[symbol_of(split(event.tokens, "relation")[0][0]) or ""].add(row[0])
 
 
-def _inline_row(statement: Statement) -> list[tuple[str, str, str, list[Token], Statement]]:
-    """Read a row that stands on a line, its set and name as words: `layer first   2-#7, A_s,i = 1.20 in.², n = 2`."""
+def _pairs(line: NumberedLine, table: Table) -> tuple[str, str] | None:
+    """Return symbol and unit of a table whose cells belong to two sets; its title says them: `V shear, kip`."""
+    titles = [s for s in line.statements if s.kind == "title" and s.y > table.y or s.page < table.page]
+    if " / " not in table.set_name or not titles:
+        return None
+    tokens = titles[-1].tokens
+    comma = max((i for i, token in enumerate(tokens) if token.kind == "comma"), default=len(tokens))
+    return tokens[0].text, "".join(token.text for token in tokens[comma + 1 :])
+
+
+def _inline_row(statement: Statement) -> list[InlineRow]:
+    """Read a row on a line, its set and name as words: `layer first   2-#7, A_s,i = 1.20 in.², n = 2`."""
     parts, _ = split(statement.tokens, "comma")
     set_name, _, row = statement.words.partition(" ")
     if statement.kind != "formula" or len(parts) < 2 or not row:
         return []
-    pairs = [split(part, "relation") for part in parts]
-    if pairs[0][1] == ["="] and len(pairs) == 1 or not any(marks == ["="] for _, marks in pairs[1:]):
-        return []
     found = []
-    for sides, marks in pairs:
+    for sides, marks in (split(part, "relation") for part in parts):
         name = symbol_of(sides[0])
         if marks == ["="] and name is not None:
-            found.append((set_name, row, name, sides[1], statement))
+            found.append(InlineRow(set_name, row, name, sides[1], statement))
         elif marks:
             return []
     return found
@@ -166,99 +231,86 @@ def printed_of(tokens: Sequence[Token]) -> Printed | None:
 
 
 def assignments(statement: Statement) -> Iterator[tuple[str, list[Token]]]:
-    """Yield (symbol, tokens of its value) of an equation; bars give a value after their callout."""
+    """Yield (symbol, tokens of its value) of an equation; bars give values after their callout."""
     parts, relations = split(statement.tokens, "relation")
     name = symbol_of(parts[0])
     if name is None or len(parts) < 2 or set(relations) != {"="}:
         return
-    if any(token.kind == "colon" for token in parts[1]):
-        (callout, rest), _ = _at_colon(statement.tokens)
-        yield name, callout[2:]
-        for part in split(rest, "comma")[0]:
-            inner, _ = split(part, "relation")
-            inner_name = symbol_of(inner[0])
-            if inner_name is not None and len(inner) == 2:
-                yield inner_name, inner[1]
+    colon = next((i for i, token in enumerate(statement.tokens) if token.kind == "colon"), None)
+    if colon is None:
+        yield name, parts[-1]
         return
-    yield name, parts[-1]
-
-
-def _at_colon(tokens: Sequence[Token]) -> tuple[tuple[list[Token], list[Token]], int]:
-    at = next(i for i, token in enumerate(tokens) if token.kind == "colon")
-    return (list(tokens[:at]), list(tokens[at + 1 :])), at
+    yield name, list(statement.tokens[2:colon])
+    for part in split(statement.tokens[colon + 1 :], "comma")[0]:
+        inner, _ = split(part, "relation")
+        inner_name = symbol_of(inner[0])
+        if inner_name is not None and len(inner) == 2:
+            yield inner_name, inner[1]
 
 
 def _register(calculation: Calculation) -> None:
     for line in calculation.lines:
         for statement in line.statements:
             place = Place(calculation.sheet(statement.page), line.number, statement.kind)
-            rows = [row for row in calculation.inline if row[4] is statement]
+            rows = [item for item in calculation.inline if item.statement is statement]
             if rows:
-                for set_name, row_name, name, tokens, _ in rows:
-                    note(calculation, name, ((set_name, row_name),), tokens, place)
+                for item in rows:
+                    _note(calculation, item.name, ((item.set_name, item.row),), item.tokens, place)
             elif statement.kind == "formula":
                 for name, tokens in assignments(statement):
-                    note(calculation, name, statement.context, tokens, place)
+                    _note(calculation, name, statement.context, tokens, place)
             elif statement.kind in ("required", "condition", "arm"):
                 _from_condition(calculation, statement, place)
-    for table, line in calculation.tables:
-        _from_table(calculation, table, Place(calculation.sheet(table.page), line.number, "table"))
+    for here in calculation.tables:
+        _from_table(calculation, here, Place(calculation.sheet(here.table.page), here.line.number, "table"))
     for page in calculation.pages:
         for _, tokens in page.labels:
             _from_label(calculation, tokens, Place(page.name, 0, "figure"))
 
 
-def note(
-    calculation: Calculation, name: str, context: tuple[tuple[str, str], ...], tokens: Sequence[Token], place: Place
-) -> None:
-    """Register one printed form of a symbol."""
+def _note(calculation: Calculation, name: str, context: Rows, tokens: Sequence[Token], place: Place) -> None:
+    """Register one printed form of a symbol, in the open rows where it belongs to their sets."""
+    if tokens and tokens[0].text == "none":
+        calculation.words[name].append(("none", place))
     printed = printed_of(tokens)
-    if printed is None:
-        if len(tokens) >= 1:
-            calculation.words[name].append((plain(tokens), place))
-        return
-    calculation.forms[key_of(calculation, name, context)].append((printed, place))
-    calculation.shown.add((printed.text, printed.unit))
-
-
-def key_of(calculation: Calculation, name: str, context: tuple[tuple[str, str], ...]) -> Key:
-    """Return the key of a symbol: with the row that is open, where it is a column of that set."""
-    sets = calculation.belongs(name)
-    for set_name, row in reversed(context):
-        if set_name in sets:
-            return name, set_name, row
-    return name, "", ""
+    if printed is not None:
+        sets = calculation.belongs(name)
+        calculation.note(Key(name, frozenset(pair for pair in context if pair[0] in sets)), printed, place)
+    elif tokens:
+        calculation.words[name].append((plain(tokens), place))
 
 
 def _from_condition(calculation: Calculation, statement: Statement, place: Place) -> None:
     """Register `symbol = number` pairs of a comparison that is stated, not of one that may fail."""
     tokens = statement.condition or statement.tokens
-    if any(token.kind == "word" and token.text in ("or", "and", "is") for token in tokens):
+    if any(token.kind == "word" and token.text in ("or", "is") for token in tokens):
         return
-    parts, relations = split(tokens, "relation")
-    for left, relation, right in zip(parts, relations, parts[1:], strict=False):
-        name = symbol_of(left)
-        if relation == "=" and name is not None and printed_of(right) is not None:
-            note(calculation, name, statement.context, right, place)
+    for part in split(tokens, "word", ("and",))[0]:
+        parts, relations = split(part, "relation")
+        for left, relation, right in zip(parts, relations, parts[1:], strict=False):
+            name = symbol_of(left)
+            if relation == "=" and name is not None and printed_of(right) is not None:
+                _note(calculation, name, statement.context, right, place)
 
 
-def _from_table(calculation: Calculation, table: Table, place: Place) -> None:
-    for row in table.rows:
-        for column, cell in zip(table.columns[1:], row[1:], strict=True):
-            if column.math and is_number(cell):
-                printed = Printed(cell, 0, column.unit)
-                calculation.forms[column.name, table.set_name, row[0]].append((printed, place))
-                calculation.shown.add((cell, column.unit))
+def _from_table(calculation: Calculation, here: TableHere, place: Place) -> None:
+    for row in here.table.rows:
+        for at, column in enumerate(here.table.columns[1:], start=1):
+            if not is_number(row[at]):
+                continue
+            name, unit = here.pairs if here.pairs is not None else (column.name, column.unit)
+            if here.pairs is not None or column.math:
+                calculation.note(Key(name, here.rows_of(row, at)), Printed(row[at], 0, unit), place)
 
 
 def _from_label(calculation: Calculation, tokens: Sequence[Token], place: Place) -> None:
     parts, relations = split(tokens, "relation")
     name = symbol_of(parts[0]) if parts else None
     if relations == ["="] and name is not None and printed_of(parts[1]) is not None:
-        note(calculation, name, (), parts[1], place)
+        _note(calculation, name, (), parts[1], place)
 
 
-_TERM = re.compile(r"([+−])?\s*([\d.,]+)\s+(\S+)")
+_TERM = re.compile(r"([+−-])?\s*([\d.,]+) (\S+)")
 
 
 @dataclass(frozen=True, slots=True)
@@ -266,41 +318,48 @@ class Scope:
     """What symbols are worth on the sheets of a calculation, with rows of sets open."""
 
     calculation: Calculation
-    open: tuple[tuple[str, str], ...] = ()
+    open: Rows = ()
 
     def value(self, name: str) -> Value:
         """Return what a symbol is printed as, in base units."""
-        printed = self.printed(name)
-        if printed is not None:
-            return with_unit(printed)
         factor = self._factor(name)
-        if factor is None:
+        if factor is not None:
+            return Value(factor)
+        printed = self.printed(name)
+        if printed is None:
             raise Unknown(name)
-        return Value(factor)
+        return with_unit(printed)
 
     def printed(self, name: str) -> Printed | None:
-        """Return the printed form of a symbol, open rows first."""
-        for set_name, row in reversed(self.open):
-            forms = self.calculation.forms.get((name, set_name, row))
-            if forms:
-                return forms[0][0]
-        forms = self.calculation.forms.get((name, "", ""))
-        if forms:
-            return forms[0][0]
-        lone = [key for key in self.calculation.forms if key[0] == name]
-        if len(lone) == 1:
-            return self.calculation.forms[lone[0]][0][0]
-        base, comma, row = name.rpartition(",")
-        named = [key for key in self.calculation.forms if comma and key[0] == base and key[2] == row]
-        return self.calculation.forms[named[0]][0][0] if named else None
+        """Return the printed form of a symbol, that of the open rows first."""
+        keys = self.calculation.keys.get(name, [])
+        opened = set(dict(self.open).items())
+        fitting = [key for key in keys if key.rows <= opened]
+        if fitting:
+            return self.calculation.forms[max(fitting, key=lambda key: len(key.rows))][0][0]
+        if len(keys) == 1:
+            return self.calculation.forms[keys[0]][0][0]
+        return self._of_row(name)
+
+    def _of_row(self, name: str) -> Printed | None:
+        """Return the value of a symbol that names its row: d_b,first, n_first."""
+        for mark in ",_":
+            base, _, row = name.rpartition(mark)
+            for key in self.calculation.keys.get(base, []):
+                if row in {row_name for _, row_name in key.rows}:
+                    return self.calculation.forms[key][0][0]
+        return None
 
     def word(self, name: str) -> str | None:
-        """Return the word a symbol or an open set stands for."""
-        for set_name, row in reversed(self.open):
-            if set_name == name:
-                return row
+        """Return the word a symbol or an open set stands for; a number where it has one."""
+        opened = dict(self.open)
+        if name in opened:
+            return opened[name]
         words = self.calculation.words.get(name)
-        return words[0][0] if words else None
+        if words:
+            return words[0][0]
+        printed = self.printed(name)
+        return str(printed) if printed is not None else None
 
     def rows(self, name: str, where: tuple[Token, ...]) -> Sequence[Scope]:
         """Return the scope of every row of a set that meets a condition."""
@@ -310,17 +369,24 @@ class Scope:
         scopes = [Scope(self.calculation, (*self.open, (name, row))) for row in rows]
         return [scope for scope in scopes if not where or judge(list(where), scope)]
 
+    def factors(self, name: str) -> list[str]:
+        """Return every load factor printed in the column of a symbol."""
+        tables = [here.table for here in self.calculation.tables if here.table.column(name) is not None]
+        return [term[1] for t in tables for row in t.rows for term in _TERM.findall(row[t.column(name) or 0])]
+
     def _factor(self, name: str) -> Decimal | None:
         """Return a load factor: its cell is a sum of factors and rows, 1.2 D + 1.6 L."""
         opened = dict(self.open)
-        for table, _ in self.calculation.tables:
-            place = table.column(name)
-            if place is None or table.set_name not in opened:
+        for here in self.calculation.tables:
+            place = here.table.column(name)
+            if place is None or here.table.set_name not in opened or here.table.columns[place].unit != "(factors)":
                 continue
-            for row in table.rows:
-                if row[0] == opened[table.set_name]:
-                    terms = _TERM.findall(row[place])
-                    found = {rest: Decimal(f"{'-' if sign == '−' else ''}{size}") for sign, size, rest in terms}
-                    inner = [row_name for set_name, row_name in self.open if set_name != table.set_name]
-                    return next((found[r] for r in inner if r in found), Decimal(0)) if terms and inner else None
+            for row in here.table.rows:
+                if row[0] == opened[here.table.set_name]:
+                    found = {
+                        load: Decimal(f"{'-' if sign in ('−', '-') else ''}{size}")
+                        for sign, size, load in _TERM.findall(row[place])
+                    }
+                    inner = [row_name for set_name, row_name in self.open if set_name != here.table.set_name]
+                    return next((found[load] for load in inner if load in found), Decimal(0))
         return None

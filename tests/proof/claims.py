@@ -98,10 +98,10 @@ class _Examiner:
             self.line = line.number
             self.sheet = self.calculation.sheet(line.page)
             self._line(line)
-        for table, line in self.calculation.tables:
-            self.line, self.sheet = line.number, self.calculation.sheet(table.page)
-            self._other_rows(table)
-            self._ratios(table)
+        for here in self.calculation.tables:
+            self.line, self.sheet = here.line.number, self.calculation.sheet(here.table.page)
+            self._other_rows(here.table)
+            self._ratios(here.table)
         self._one_form()
         self._digits()
         for page in self.calculation.pages:
@@ -150,7 +150,7 @@ class _Examiner:
         scope = Scope(self.calculation, statement.context)
         if statement.unread:
             raise Unread(statement.unread)
-        if any(row[4] is statement for row in self.calculation.inline):
+        if statement.kind == "title" or any(item.statement is statement for item in self.calculation.inline):
             return 0
         if statement.kind == "formula":
             return self._formula(statement, scope)
@@ -175,8 +175,8 @@ class _Examiner:
             self.account.counts["comparisons"] += 1
             return 1
         if len(parts) < 2:
-            if self._is_word(parts[0]):
-                return 0  # a yes or no that is given
+            if all(token.kind in ("word", "comma") for token in statement.tokens):
+                return 0  # a yes or no that is given, or the rows of a set
             raise Unread("no equals sign")
         if any(token.kind == "colon" for token in statement.tokens) or self._is_given(parts):
             return self._given(parts)
@@ -209,7 +209,7 @@ class _Examiner:
 
     def _is_word(self, tokens: Sequence[Token]) -> bool:
         return all(token.kind == "word" for token in tokens) and not any(
-            (token.text, "", "") in self.calculation.forms or "_" in token.text for token in tokens
+            token.text in self.calculation.keys or "_" in token.text for token in tokens
         )
 
     def _no_result(self, statement: Statement) -> int:
@@ -271,22 +271,14 @@ class _Examiner:
         allowed = {shown.text.lstrip("−") for shown in numbers(formula)} | FACTORS | {"0"}
         inside = {name for node in walk(formula) if isinstance(node, Over) for name in symbols(node)}
         for name in symbols(formula) | {"√" + name for name in symbols(formula)}:
-            keys = [key for key in self.calculation.forms if key[0] == name] if name in inside else []
+            keys = self.calculation.keys.get(name, []) if name in inside else []
             allowed |= {self.calculation.forms[key][0][0].text.lstrip("−") for key in keys}
             found = scope.printed(name)
             allowed |= {found.text.lstrip("−")} if found is not None else set()
-            allowed |= self._factor_texts(name) if name in inside else set()
+            allowed |= set(scope.factors(name)) if name in inside else set()
         for shown in numbers(substitution):
             if shown.text.lstrip("−") not in allowed:
                 self.found("one printed form of a value", f"{shown} in a substitution is no printed value of {sorted(symbols(formula))}")
-
-    def _factor_texts(self, name: str) -> set[str]:
-        found: set[str] = set()
-        for table, _ in self.calculation.tables:
-            place = table.column(name)
-            if place is not None:
-                found |= {word for row in table.rows for word in row[place].split() if is_number(word)}
-        return found
 
     # ------------------------------------------------------------ checks
 
@@ -345,9 +337,10 @@ class _Examiner:
     def _row_formula(self, name: str, arms: list[Statement], line: NumberedLine) -> int:
         """Work a formula for each row of the tables that print its results, with the printed cells."""
         done = 0
-        for table, _ in self.calculation.tables:
+        for here in self.calculation.tables:
+            table = here.table
             place = table.column(name)
-            if place is None or (table.page, -table.y) < (line.page, -line.y):
+            if place is None or (table.page, -table.y) < (line.page, -line.y) or here.open != arms[0].context:
                 continue
             for row in table.rows:
                 done += self._cell(name, arms, table, place, row)
@@ -442,7 +435,8 @@ class _Examiner:
 
     def _one_form(self) -> None:
         """Report symbols printed in more than one form."""
-        for (name, _, row), forms in self.calculation.forms.items():
+        for key, forms in self.calculation.forms.items():
+            name, row = key.name, " ".join(sorted(row for _, row in key.rows))
             kinds: dict[tuple[str, int, str], list[str]] = {}
             for shown, place in forms:
                 kinds.setdefault((shown.text, shown.power, shown.unit), []).append(str(place))
@@ -461,9 +455,9 @@ class _Examiner:
 
     def _computed(self) -> Iterator[tuple[str, list[tuple[Printed, object]]]]:
         given = self._given_names()
-        for (name, _, row), forms in self.calculation.forms.items():
-            if name not in given:
-                yield f"{name} {row}".strip(), list(forms)
+        for key, forms in self.calculation.forms.items():
+            if key.name not in given:
+                yield " ".join((key.name, *sorted(row for _, row in key.rows))), list(forms)
 
     def _given_names(self) -> set[str]:
         found = set()
@@ -474,15 +468,18 @@ class _Examiner:
                     parts, _ = split(statement.tokens, "relation")
                     if len(parts) == 2 and printed_of(parts[1]) is not None or any(t.kind == "colon" for t in statement.tokens):
                         found |= {token.text for token in statement.tokens if token.kind == "word"}
-            if handed and line.table is not None:
-                found |= {column.name for column in line.table.columns}
+            if handed:
+                found |= {column.name for table in line.tables for column in table.columns}
         return found
 
     def _shown(self, claim: str, tokens: Sequence[Token]) -> None:
         """Each number with a unit in a figure or a boxed result must stand on the sheets in that form."""
-        for token, following in zip(tokens, tokens[1:], strict=False):
-            if token.kind == "number" and following.kind == "unit" and (token.text, following.text) not in self.calculation.shown:
-                self.found("one printed form of a value", f"{claim}: {token.text} {following.text} stands nowhere else")
+        for before, token, following in zip([None, *tokens], tokens, tokens[1:], strict=False):
+            if token.kind != "number" or following.kind != "unit":
+                continue
+            minus = "−" if before is not None and before.text == "-" else ""
+            if (minus + token.text, following.text) not in self.calculation.shown:
+                self.found("one printed form of a value", f"{claim}: {minus}{token.text} {following.text} stands nowhere else")
 
 
 def _parted(tokens: list[Token]) -> tuple[list[Token], bool, list[Token]]:

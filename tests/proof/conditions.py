@@ -48,7 +48,7 @@ def _atom(tokens: list[Token], ground: Ground) -> bool:
         if found is None:
             raise Unknown(plain(tokens[:at]))
         if rest[-1] == "given":
-            return (found not in ("none", "")) is wanted
+            return (found != "none") is wanted
         return (found == " ".join(rest if wanted else rest[1:])) is wanted
     return all(holds for holds, _ in chain(tokens, ground))
 

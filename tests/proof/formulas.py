@@ -15,6 +15,7 @@ from .units import unit
 
 _SIGNS = {"+": "+", "−": "-", "×": "*", "·": "·", "/": "/", "±": "±"}
 #: gaps, in type sizes: letters of one word; number and unit against a product by juxtaposition
+_NAME_GAP = 0.14
 _WORD_GAP, _UNIT_GAP, _UNIT_FAR = 0.07, 0.183, 0.36
 _PRIME = "′"
 
@@ -263,20 +264,26 @@ def _follows_number(row: list[Token], spot: _Spot) -> bool:
 
 
 def _unit(spots: list[_Spot], at: int, row: list[Token]) -> int:
-    first, text, start = spots[at], "", at
+    """Read the longest unit that begins here; a word where there is none."""
+    first, text, found, start = spots[at], "", 0, at
+    best = ""
     while at < len(spots):
         spot = spots[at]
         if spot.glyph is None or (text and spot.left - spots[at - 1].right > _WORD_GAP * spot.size):
             break
-        piece = spot.glyph.text
-        if not (_wordlike(piece) or piece in "·/.²³") or (piece == "." and not text):
-            break
-        text += piece + "".join(g.text for g in spot.raised).translate(_POWERS)
+        text += spot.glyph.text + "".join(g.text for g in spot.raised).translate(_POWERS)
         at += 1
-    if unit(text) is None:
+        if unit(text) is not None and not spot.lowered:
+            best, found = text, at
+    if not best or (found < len(spots) and _letter_follows(spots, found)):
         return _word(spots, start, row)
-    row.append(Token("unit", text, first.left, spots[at - 1].right, first.size))
-    return at
+    row.append(Token("unit", best, first.left, spots[found - 1].right, first.size))
+    return found
+
+
+def _letter_follows(spots: list[_Spot], at: int) -> bool:
+    glyph = spots[at].glyph
+    return glyph is not None and glyph.text.isalpha() and _close(spots[at - 1], spots[at])
 
 
 _POWERS = str.maketrans("23", "²³")
@@ -299,13 +306,27 @@ def _word(spots: list[_Spot], at: int, row: list[Token]) -> int:
         if spot.raised or spot.lowered:
             break
     last = spots[at - 1]
+    tail = ""
+    if face and at < len(spots) and _direction(spots, at):
+        glyph = spots[at].glyph
+        tail = glyph.text if glyph is not None else ""
+        at += 1
     primes = [g for g in last.raised if g.text == _PRIME]
     last.raised = [g for g in last.raised if g.text != _PRIME]
     text += _PRIME * len(primes)
     if last.lowered:
         text += "_" + _below(last.lowered)
+    text += tail
     row.append(Token("word", text, first.left, _end(last), first.size, raised=_raised(last), words=not face))
     return at
+
+
+def _direction(spots: list[_Spot], at: int) -> bool:
+    """Tell whether a sign belongs to the name before it, W+: nothing stands between, and nothing touches it after."""
+    glyph = spots[at].glyph
+    if glyph is None or glyph.text not in "+−" or spots[at].left - spots[at - 1].right > _NAME_GAP * glyph.size:
+        return False
+    return at + 1 == len(spots) or not _close(spots[at], spots[at + 1])
 
 
 def _below(glyphs: list[Glyph]) -> str:

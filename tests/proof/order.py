@@ -44,8 +44,9 @@ def out_of_order(text: str, lines: Sequence[NumberedLine], page: int) -> list[st
 def _head(line: NumberedLine) -> str:
     """Return the number with what stands first beside it."""
     first = next((s for s in line.statements if s.kind not in ("heading", "arm")), None)
-    if line.table is not None and (first is None or line.table.y > first.y):
-        return f"{line.number}{squeeze(line.table.set_name)}" if abs(line.table.y - line.y) < 2 else str(line.number)
+    table = line.tables[0] if line.tables else None
+    if table is not None and (first is None or table.y > first.y):
+        return f"{line.number}{squeeze(table.set_name)}" if abs(table.y - line.y) < 2 else str(line.number)
     if first is None:
         return str(line.number)
     if first.words:

@@ -420,7 +420,7 @@ def _same_form(calculation: Calculation, line: NumberedLine, other: NumberedLine
         return [str(value) for value in shown if value is not None]
 
     here, there = values(line), values(other)
-    cells = [cell for row in other.table.rows for cell in row] if other.table is not None else []
+    cells = [cell for table in other.tables for row in table.rows for cell in row]
     for value in here:
         if there and value not in there and value.split(" ")[0] not in cells:
             yield Finding("one printed form of a value", calculation.mark, line.number, f"{value}, at {name} {there}")

@@ -54,7 +54,7 @@ class NumberedLine:
     y: float
     statements: list[Statement] = field(default_factory=list)
     words: list[str] = field(default_factory=list)
-    table: Table | None = None
+    tables: list[Table] = field(default_factory=list)
     source: list[str] = field(default_factory=list)
 
 
@@ -169,8 +169,7 @@ class _Page:
         carried = NumberedLine(0, self.index, self.roof)
         self._sources(lines)
         for table in tables:
-            line = _line_at(lines, carried, table.y)
-            line.table = line.table or table
+            _line_at(lines, carried, table.y).tables.append(table)
         for row in _rows(pieces):
             _RowReader(_line_at(lines, carried, row.y), self.index, self.problems).read(row)
         boxes = [self._tokens(piece.glyphs, piece.rules) for piece in boxed]
@@ -341,6 +340,8 @@ class _RowReader:
             if token.words and token.text in ("since", "where"):
                 self.line.words += [plain(tokens[:place])] if place else []
                 return [], (token.text, tokens[place + 1 :])
+        if tokens and tokens[0].words and tokens[0].text == "Since" and tokens[-1].kind == "colon":
+            return tokens[1:], None
         if tokens and tokens[0].words:
             self.line.words.append(plain(tokens))
             return [], None
@@ -351,6 +352,9 @@ class _RowReader:
         open_ = statements[-1] if statements and statements[-1].kind in ("formula", "check", "required") else None
         if tokens[-1].kind == "colon":
             self._statement("arm", y).condition = tokens[:-1]
+            return
+        if any(token.words for token in tokens):
+            self._statement("title", y).tokens = tokens
             return
         continues = tokens[0].kind == "relation" or (tokens[0].kind == "sign" and open_ is not None and open_.tokens)
         if open_ is not None and (continues or (not open_.tokens and open_.kind != "formula")):

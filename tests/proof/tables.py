@@ -96,7 +96,7 @@ def _table(head: Band, body: Sequence[Band], page: int) -> Table:
     columns = []
     for piece in sorted(find_pieces(head[2], []), key=lambda p: p.left):
         tokens = read_tokens(piece.glyphs, []) if piece.math else []
-        if tokens:
+        if tokens and not tokens[0].words:
             unit = "".join(t.text + _power(t) for t in tokens[1:])
             columns.append(Column(tokens[0].text, unit, True, piece.left, piece.right))
         else:
@@ -106,7 +106,8 @@ def _table(head: Band, body: Sequence[Band], page: int) -> Table:
         cells = [""] * len(columns)
         for piece in find_pieces(glyphs, []):
             place = _column(columns, piece)
-            cells[place] = f"{cells[place]} {piece.text}".strip()
+            text = plain(read_tokens(piece.glyphs, [])) if piece.math else piece.text
+            cells[place] = f"{cells[place]} {text}".strip()
         rows.append(cells)
     return Table(columns, rows, page, max(g.y for g in head[2]))
 

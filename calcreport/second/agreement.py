@@ -1,0 +1,197 @@
+"""Holds the first path's values against the second path's, for a whole project.
+
+`WorkedProject` in, an `Agreement` out: how many values and verdicts were compared, the largest difference, and
+every line that differs by more than one part in a thousand million.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from typing import Any
+
+from calcreport.calculate.model import Key, Worked, WorkedProject
+from calcreport.core.quantity import Amount
+from calcreport.plan.model import (
+    BarCallout,
+    GivenPairs,
+    GivenRows,
+    GivenValue,
+    LinkedValue,
+    PlannedGiven,
+)
+from calcreport.second.quantities import Quantities, make_quantities
+from calcreport.second.rework import Rework, Stopped
+
+WITHIN = 1e-9
+
+
+@dataclass(frozen=True, slots=True)
+class Difference:
+    """One value or verdict on which the two paths part."""
+
+    #: 'B1.phiM_n', or 'B1.flexure' for a verdict
+    name: str
+    first: str
+    second: str
+
+
+@dataclass(frozen=True, slots=True)
+class Agreement:
+    """What the comparison came to."""
+
+    values: int
+    verdicts: int
+    #: largest relative difference of any value
+    largest: float
+    differences: tuple[Difference, ...]
+
+
+def compare_paths(project: WorkedProject) -> Agreement:
+    """Work every calculation again and compare."""
+    make = make_quantities()
+    again: dict[str, Rework] = {}
+    found: list[Difference] = []
+    values = verdicts = 0
+    largest = 0.0
+    for place in project.order:
+        worked = project.calculations[place]
+        mark = worked.calculation.mark
+        rework = Rework(worked.plan, make, lambda index, w=worked: _given_names(w, index))  # type: ignore[misc]
+        again[mark] = rework
+        _hand(worked, rework, again, make)
+        stopped = ""
+        try:
+            rework.run()
+        except Stopped as error:
+            stopped = str(error)
+        if bool(stopped) != bool(worked.stop):
+            found.append(Difference(f"{mark} stop", worked.stop.words if worked.stop else "none", stopped or "none"))
+        count, most, differing = _compare_values(worked, rework)
+        values, largest = values + count, max(largest, most)
+        found += differing
+        judged = [check for check in worked.checks if check.verdict in ("OK", "NG")]
+        verdicts += len(judged)
+        for check, (name, ok) in zip(judged, rework.verdicts, strict=False):
+            if check.line.name != name or (check.verdict == "OK") != ok:
+                found.append(Difference(f"{mark}.{check.line.name}", check.verdict, "OK" if ok else "NG"))
+        if len(judged) != len(rework.verdicts):
+            found.append(Difference(f"{mark} checks", str(len(judged)), str(len(rework.verdicts))))
+    return Agreement(values, verdicts, largest, tuple(found))
+
+
+def _given_names(worked: Worked, index: int) -> list[tuple[Key, tuple[str, ...]]]:
+    """Return the row names of a set handed over; sets made on the sheet are made again."""
+    for planned in worked.plan.givens:
+        if planned.rows == index:
+            value = next(v for v in worked.calculation.given if v.given.name == planned.given.name)
+            return [((), value.names)] if isinstance(value, GivenRows) else []
+    return []
+
+
+def _hand(worked: Worked, rework: Rework, again: dict[str, Rework], make: Quantities) -> None:
+    """Give the second path the values as they were typed."""
+    planned = {given.given.name: given for given in worked.plan.givens}
+    for value in worked.calculation.given:
+        owner = planned[value.given.name]
+        match value:
+            case GivenValue():
+                _hand_one(owner, value, (), rework, again, make)
+            case GivenRows():
+                columns = {column.given.name: column for column in owner.columns}
+                for row, cells in enumerate(value.cells):
+                    for cell in cells:
+                        _hand_one(columns[cell.given.name], cell, (row,), rework, again, make)
+            case GivenPairs():
+                names = [rework.names.get((index, ()), ()) for index in owner.over]
+                for key in _keys([len(n) for n in names]):
+                    rework.values[owner.slot, key] = _worth(value.given.if_none, make)
+                for row_names, cell in value.cells:
+                    key = tuple(n.index(r) for n, r in zip(names, row_names, strict=True))
+                    _hand_one(owner, cell, key, rework, again, make)
+
+
+def _keys(counts: list[int]) -> list[Key]:
+    keys: list[Key] = [()]
+    for count in counts:
+        keys = [(*key, row) for key in keys for row in range(count)]
+    return keys
+
+
+def _worth(handed: Amount | str | None, make: Quantities) -> Any:
+    if isinstance(handed, Amount):
+        return make.read(handed.text)
+    return None if handed in ("absent", None) else handed
+
+
+def _hand_one(
+    owner: PlannedGiven, value: GivenValue, key: Key, rework: Rework, again: dict[str, Rework], make: Quantities
+) -> None:
+    handed = value.value
+    match handed:
+        case Amount():
+            rework.values[owner.slot, key] = make.read(handed.text)
+        case LinkedValue():
+            rework.values[owner.slot, key] = _linked(handed, again[handed.mark])
+        case BarCallout():
+            rework.values[owner.slot, key] = handed.text
+            for slot, (_, output) in zip(owner.outputs, owner.given.gives, strict=True):
+                rework.values[slot, key] = _callout(handed, output, make)
+        case _:
+            rework.values[owner.slot, key] = handed
+            if handed is None:
+                for slot in owner.outputs:
+                    rework.values[slot, key] = None
+
+
+def _linked(link: LinkedValue, source: Rework) -> Any:
+    *steps, symbol = link.path.split("].")
+    key: list[int] = []
+    for step in steps:
+        name, _, row = step.partition("[")
+        rows = next(r for r in source.plan.sets if r.name == name)
+        key.append(source.names[rows.index, tuple(key[: len(rows.outer)])].index(row))
+    return source.values[source.plan.by_path[symbol], tuple(key)]
+
+
+def _callout(callout: BarCallout, output: str, make: Quantities) -> Any:
+    match output:
+        case "area":
+            total = 0 * make.read(callout.groups[0].area.text)
+            for group in callout.groups:
+                total = total + group.count * make.read(group.area.text)
+            return total
+        case "diameter":
+            return make.read(callout.groups[0].diameter.text)
+        case "count":
+            return make.pure(sum(group.count for group in callout.groups))
+        case _:
+            assert callout.spacing is not None
+            return make.read(callout.spacing.text)
+
+
+def _compare_values(worked: Worked, rework: Rework) -> tuple[int, float, list[Difference]]:
+    """Compare every number of one calculation in its declared unit."""
+    count, largest = 0, 0.0
+    found: list[Difference] = []
+    mark = worked.calculation.mark
+    for slot in worked.plan.slots:
+        unit = slot.symbol.unit
+        keys = list(worked.values.rows[slot.index]) if slot.sets else [()]
+        for key in keys:
+            first, second = worked.values.get(slot.index, key), rework.values.get((slot.index, key))
+            if unit is None or not isinstance(first, float):
+                if first != second:
+                    found.append(Difference(f"{mark}.{slot.path}", str(first), str(second)))
+                continue
+            count += 1
+            if second is None or isinstance(second, str):
+                found.append(Difference(f"{mark}.{slot.path}", f"{first / unit.size:.12g}", str(second)))
+                continue
+            one = rework.make.unit(unit.factors)
+            number = (rework.alike(second, one)[0] / one).to("").magnitude
+            gap = abs(float(number) - first / unit.size) / max(abs(float(number)), 1e-30)
+            gap = 0.0 if abs(float(number)) < 1e-12 and abs(first / unit.size) < 1e-9 else gap
+            largest = max(largest, gap)
+            if gap > WITHIN:
+                found.append(Difference(f"{mark}.{slot.path}", f"{first / unit.size:.12g}", f"{float(number):.12g}"))
+    return count, largest, found

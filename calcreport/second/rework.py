@@ -1,0 +1,311 @@
+"""Works a plan once more, line by line, in quantities with units.
+
+A plan and the given values as typed in, values with units and verdicts out. An interpreter of its own: no closure,
+no base unit and no tie rule of the first path.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from typing import Any
+
+from calcreport.core.expression import (
+    Attach,
+    Binary,
+    Call,
+    Compare,
+    Condition,
+    Expression,
+    Is,
+    IsGiven,
+    Logic,
+    Name,
+    Negate,
+    Not,
+    Number,
+    Over,
+    Strip,
+)
+from calcreport.plan.model import (
+    Plan,
+    PlannedBranches,
+    PlannedCheck,
+    PlannedEach,
+    PlannedGives,
+    PlannedLine,
+    PlannedPart,
+    PlannedRequire,
+    PlannedRows,
+)
+from calcreport.second.quantities import Quantities
+
+Key = tuple[int, ...]
+
+
+class Stopped(Exception):
+    """The second path cannot go on: a requirement fails, or a formula has no value."""
+
+
+class Rework:
+    """One calculation worked again; `values` are quantities, words or None by slot and key."""
+
+    def __init__(self, plan: Plan, make: Quantities, names: Callable[[int], list[tuple[Key, tuple[str, ...]]]]) -> None:
+        self.plan, self.make = plan, make
+        self.values: dict[tuple[int, Key], Any] = {}
+        self.names: dict[tuple[int, Key], tuple[str, ...]] = {}
+        for rows in plan.sets:
+            for key, found in names(rows.index):
+                self.names[rows.index, key] = found
+        self.open: dict[int, int] = {}
+        self.verdicts: list[tuple[str, bool]] = []
+        #: two sides closer than this, relative, are one value in thirty digits
+        self.equal = make.mp.mpf(10) ** -25
+
+    # -------------------------------------------------------- lines
+
+    def run(self) -> None:
+        """Work every line; raises `Stopped`."""
+        for line in self.plan.lines:
+            self.line(line)
+
+    def line(self, line: PlannedLine) -> None:
+        """Work one line."""
+        match line:
+            case PlannedGives():
+                self.gives(line)
+            case PlannedBranches(arms):
+                arm = next(a for a in arms if a.when is None or self.holds(a.when))
+                for inner in arm.lines:
+                    self.line(inner)
+            case PlannedPart(_, _, lines):
+                for inner in lines:
+                    self.line(inner)
+            case PlannedEach(rows, lines):
+                for row in range(len(self.row_names(rows))):
+                    self.open[rows] = row
+                    for inner in lines:
+                        self.line(inner)
+                self.open.pop(rows, None)
+            case PlannedRows():
+                self.rows(line)
+            case PlannedCheck(name, holds):
+                self.verdicts.append((name, self.holds(holds)))
+            case PlannedRequire(condition, says):
+                if not self.holds(condition):
+                    raise Stopped(says)
+            case _:
+                pass
+
+    def gives(self, line: PlannedGives) -> None:
+        formula = next(a.formula for a in line.arms if a.when is None or self.holds(a.when))
+        slot = self.plan.slots[line.slot]
+        if slot.symbol.kind == "word":
+            assert isinstance(formula, Name)
+            self.values[line.slot, self.key(line.slot)] = formula.name
+        else:
+            self.values[line.slot, self.key(line.slot)] = self.work(formula)
+
+    def rows(self, line: PlannedRows) -> None:
+        """Make a set: every entry, every pairing that fits."""
+        outer = tuple(self.open[index] for index in self.plan.sets[line.rows].outer)
+        names: list[str] = []
+        for entry in line.entries:
+            over = next((column.over for column in line.columns if column.over >= 0), -1)
+            for pairing in self.pairings(entry.pairing, over):
+                self.open[line.rows] = len(names)
+                if entry.when is not None and not self.holds(entry.when):
+                    continue
+                name = entry.name or str(len(names) + 1)
+                for variable, row in pairing.items():
+                    name = name.replace("{" + variable + "}", row)
+                names.append(name)
+                for column, cell in zip(line.columns, entry.cells, strict=True):
+                    if isinstance(cell, tuple):
+                        chosen = {pairing.get(row, row): node for row, node in cell}
+                        for place, row in enumerate(self.row_names(column.over)):
+                            self.open[column.over] = place
+                            node = chosen.get(row, column.other)
+                            assert node is not None
+                            self.values[column.slot, self.key(column.slot)] = self.work(node)
+                        self.open.pop(column.over, None)
+                    else:
+                        self.values[column.slot, self.key(column.slot)] = self.work(cell)
+        self.open.pop(line.rows, None)
+        self.names[line.rows, outer] = tuple(names)
+
+    def pairings(self, wanted: tuple[tuple[str, tuple[str, ...]], ...], over: int) -> list[dict[str, str]]:
+        found: list[dict[str, str]] = [{}]
+        listed = self.plan.sets[over].row_names if over >= 0 else ()
+        for variable, patterns in wanted:
+            fits = []
+            for name in self.row_names(over):
+                stems = [p[:-1] for p in patterns if p.endswith("*")]
+                if name in patterns or (name not in listed and any(name.startswith(stem) for stem in stems)):
+                    fits.append(name)
+            found = [{**pairing, variable: name} for pairing in found for name in fits]
+        return found
+
+    def key(self, slot: int) -> Key:
+        """Return a slot's key in the open rows."""
+        return tuple(self.open[index] for index in self.plan.slots[slot].sets)
+
+    def row_names(self, index: int) -> tuple[str, ...]:
+        """Return a set's row names where its outer rows are open."""
+        return self.names.get((index, tuple(self.open[outer] for outer in self.plan.sets[index].outer)), ())
+
+    # -------------------------------------------------------- formulas
+
+    def work(self, node: Expression) -> Any:
+        """Return the value of a formula."""
+        match node:
+            case Number(_, text, unit):
+                number = self.make.number(text)
+                return self.make.pure(number) if unit is None else self.make.unit(unit.factors) * number
+            case Name(_, _, slot):
+                return self.values[slot, self.key(slot)]
+            case Negate(body):
+                return -self.work(body)
+            case Binary(op, left, right):
+                return self.binary(op, self.work(left), self.work(right))
+            case Call(function, arguments):
+                return self.call(function, [self.work(argument) for argument in arguments])
+            case Strip(body, unit):
+                return (self.work(body) / self.make.unit(unit.factors)).to("")
+            case Attach(body, unit):
+                return self.work(body).to("") * self.make.unit(unit.factors)
+            case Over():
+                return self.over(node)
+
+    def binary(self, op: str, left: Any, right: Any) -> Any:
+        match op:
+            case "+" | "-":
+                left, right = self.alike(left, right)
+                return left + right if op == "+" else left - right
+            case "*":
+                return left * right
+            case "/":
+                if right.magnitude == 0:
+                    raise Stopped("division by zero")
+                return left / right
+            case _:
+                return self.power(left, right.to("").magnitude)
+
+    def power(self, base: Any, exponent: Any) -> Any:
+        """Raise a quantity; its unit takes the exponent as a nearby fraction."""
+        if base.magnitude < 0 and exponent != int(exponent):
+            raise Stopped("root of a negative value")
+        plain = base.to_root_units() if not base.dimensionless else base.to("")
+        number = self.make.mp.power(plain.magnitude, exponent)
+        if base.dimensionless:
+            return self.make.pure(number)
+        return self.make.registry.Quantity(self.make.mp.mpf(1), plain.units) ** float(exponent) * number
+
+    def alike(self, left: Any, right: Any) -> tuple[Any, Any]:
+        """Give a bare zero the unit of its neighbour."""
+        if left.dimensionless and left.magnitude == 0 and not right.dimensionless:
+            return 0 * right, right
+        if right.dimensionless and right.magnitude == 0 and not left.dimensionless:
+            return left, 0 * left
+        return left, right
+
+    def difference(self, left: Any, right: Any) -> Any:
+        """Return left minus right as a number, zero where they agree to twenty-five digits."""
+        left, right = self.alike(left, right)
+        other = right.to(left.units)
+        gap = left.magnitude - other.magnitude
+        largest = max(abs(left.magnitude), abs(other.magnitude))
+        return self.make.mp.mpf(0) if abs(gap) <= self.equal * largest else gap
+
+    def call(self, function: str, values: list[Any]) -> Any:
+        mp = self.make.mp
+        match function:
+            case "min" | "max":
+                best = values[0]
+                for value in values[1:]:
+                    gap = self.difference(value, best)
+                    best = value if (gap < 0 if function == "min" else gap > 0) else best
+                return best
+            case "abs":
+                return -values[0] if values[0].magnitude < 0 else values[0]
+            case "sqrt":
+                return self.power(values[0], mp.mpf(1) / 2)
+            case "roundup" | "rounddown":
+                return self.rounded(function, values[0], values[1])
+            case _:
+                number = values[0].to("").magnitude
+                if function == "ln" and number <= 0:
+                    raise Stopped("logarithm of a value that is not positive")
+                return self.make.pure(getattr(mp, function)(number))
+
+    def rounded(self, function: str, value: Any, step: Any) -> Any:
+        mp = self.make.mp
+        steps = (value / step).to("").magnitude
+        near = mp.nint(steps)
+        if abs(steps - near) <= self.equal * max(abs(steps), 1):
+            return step * near
+        return step * (mp.ceil(steps) if function == "roundup" else mp.floor(steps))
+
+    def over(self, node: Over) -> Any:
+        """Work over the rows of a set."""
+        kept: list[Any] = []
+        points: list[tuple[Any, Any]] = []
+        linear = node.function == "linear"
+        at = self.work(node.where.right) if linear and isinstance(node.where, Compare) else None
+        before = self.open.get(node.bound)
+        for row in range(len(self.row_names(node.bound))):
+            self.open[node.bound] = row
+            if linear and isinstance(node.where, Compare):
+                points.append((self.work(node.where.left), self.work(node.body)))
+            elif node.where is None or self.holds(node.where):
+                kept.append(self.work(node.body))
+        self.open.pop(node.bound, None)
+        if before is not None:
+            self.open[node.bound] = before
+        if linear:
+            return self.between(points, at, node)
+        if node.function == "sum":
+            total = self.make.pure(0)
+            for value in kept:
+                total = self.binary("+", total, value)
+            return total
+        if not kept:
+            if node.otherwise is None:
+                raise Stopped(f"no row of `{node.rows}` fits")
+            return self.work(node.otherwise)
+        return kept[0] if node.function == "pick" else self.call(node.function, kept) if len(kept) > 1 else kept[0]
+
+    def between(self, points: list[tuple[Any, Any]], at: Any, node: Over) -> Any:
+        """Read on the straight line between the two rows that enclose a place."""
+        lower = [p for p in points if self.difference(p[0], at) <= 0]
+        upper = [p for p in points if self.difference(p[0], at) >= 0]
+        if not lower or not upper:
+            if node.otherwise is None:
+                raise Stopped(f"outside the rows of `{node.rows}`")
+            return self.work(node.otherwise)
+        (x1, y1), (x2, y2) = max(lower, key=lambda p: p[0]), min(upper, key=lambda p: p[0])
+        if self.difference(x1, x2) == 0:
+            return y1
+        return y1 + (y2 - y1) * ((at - x1) / (x2 - x1)).to("").magnitude
+
+    # -------------------------------------------------------- conditions
+
+    def holds(self, node: Condition) -> bool:
+        """Tell whether a condition holds."""
+        match node:
+            case Compare(op, left, right):
+                gap = self.difference(self.work(left), self.work(right))
+                return bool(
+                    {"<": gap < 0, "<=": gap <= 0, ">": gap > 0, ">=": gap >= 0, "=": gap == 0, "!=": gap != 0}[op]
+                )
+            case Logic("and", left, right):
+                return self.holds(left) and self.holds(right)
+            case Logic(_, left, right):
+                return self.holds(left) or self.holds(right)
+            case Not(body):
+                return not self.holds(body)
+            case Is(name, word, _, bound):
+                if bound >= 0:
+                    return self.row_names(bound)[self.open[bound]] == word
+                return bool(self.values[name.slot, self.key(name.slot)] == word)
+            case IsGiven(name):
+                return self.values.get((name.slot, self.key(name.slot))) is not None

@@ -121,7 +121,7 @@ class _Hander:
                     value.span.part(0, 1),
                     f"`{value.given.name}` has no value for {words}",
                     expected="a value for every pair of rows",
-                    found="none",
+                    found="no value",
                 )
                 return
             self.put(planned.slot, None if worth == "absent" else worth, key)

@@ -170,7 +170,7 @@ def _fits(
             link.span,
             f"{name} is not what `{given.name}` takes",
             expected=f"{dimension_words(wanted.unit.dimension)} for {given.name}",
-            found=f"{dimension_words(symbol.unit.dimension)}, in {symbol.unit.text}",
+            found=dimension_words(symbol.unit.dimension),
         )
         return False
     exact = worked_slot(*place, source.values)
@@ -183,7 +183,7 @@ def _fits(
         "out-of-range",
         link.span,
         f"{name} is outside what the template covers",
-        expected=f"{given.name} {given.range.text}",
+        expected=given.range.words(given.name),
         found=f"{float(exact / symbol.unit.scale):.6g} {symbol.unit.text}",
         related=((given.range.span, "the template states the range"),),
     )

@@ -74,6 +74,8 @@ class _Parser(Cursor):
             hint = "a product needs its sign: write *"
         if self.next.text in RELATIONS:
             hint = "a comparison belongs in `when`, `holds`, `require` or `where`"
+        if self.next.text == "=" and what == "the formula":
+            hint = "write the right side alone: the symbol stands under `gives`"
         if self.next.text == "==":
             hint = "write ="
         if self.next.text == ")":

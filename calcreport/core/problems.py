@@ -86,9 +86,14 @@ class Problems:
         )
 
 
+def meant(name: str, names: Iterable[str]) -> list[str]:
+    """Return the spellings nearest to `name`, best first."""
+    return get_close_matches(name[:60], list(islice(names, MOST_NAMES)), n=3, cutoff=0.6)
+
+
 def nearest(name: str, names: Iterable[str]) -> str:
     """Return a hint naming the spellings nearest to `name`, or ''."""
-    close = get_close_matches(name[:60], list(islice(names, MOST_NAMES)), n=3, cutoff=0.6)
+    close = meant(name, names)
     return "did you mean " + " or ".join(close) + "?" if close else ""
 
 

@@ -91,7 +91,7 @@ def read_in_unit(text: str, span: Span, problems: Problems, unit: Unit) -> Amoun
     else:
         problems.add(
             "unit-mismatch", span, f"`{amount.text}` is not {words}",
-            expected=f"{words}, in {unit.text} for instance", found=dimension_words(amount.dimension),
+            expected=words + (f" ({unit.text})" if unit != ONE else ""), found=dimension_words(amount.dimension),
         )  # fmt: skip
     return None
 

@@ -190,7 +190,7 @@ def _say_no_unit(text: str, at: int, span: Span, problems: Problems) -> None:
     elif powered := _POWERED.fullmatch(shown):
         hint = f"write {powered[1]}^{powered[2].translate(_RAISED)}"
     problems.add(
-        "unknown-unit", span.part(at, max(len(text), 1)), f"`{shown}` is not a unit" if shown else "the unit is missing",
+        "unknown-unit", span.part(0, max(len(text), 1)), f"`{shown}` is not a unit" if shown else "the unit is missing",
         expected="listed units joined by * and /, such as kip*ft or lb/ft^3", found=text[at : at + 60] or "nothing",
         hint=hint,
     )  # fmt: skip

@@ -145,7 +145,7 @@ def _indexes(report: Report, desk: _Desk, bodies: dict[str, tuple[Body, ...]]) -
         extents = _extents(report.parts, bodies)
         for part in indexes:
             assert part.index is not None
-            bodies[part.mark] = _bodies(desk, part, (*index_blocks(part.index, extents), *part.blocks))
+            bodies[part.mark] = _bodies(desk, part, (*part.blocks, *index_blocks(part.index, extents)))
         if before == [len(bodies[part.mark]) for part in indexes]:
             return
 

@@ -29,7 +29,7 @@ from calcreport.core.expression import (
 )
 from calcreport.core.figures import FIGURES
 from calcreport.core.problems import Problems, listed
-from calcreport.core.units import NONE, Dimension, dimension_words, divide, multiply, raised
+from calcreport.core.units import NONE, ONE, Dimension, dimension_words, divide, multiply, raised
 from calcreport.plan.model import (
     Plan,
     PlannedBranches,
@@ -114,16 +114,25 @@ class _Holder:
         found = self.expression(formula)
         if found is None or isinstance(found, _Any) or found == unit.dimension:
             return
-        hint = ""
-        if any(isinstance(n, Call) and n.function == "sqrt" for n in walk(formula)):
-            hint = f"where the clause takes a number in a stated unit, write qty(… num(x, UNIT) …, {unit.text})"
-        elif isinstance(formula, Number):
+        hint = self.root_hint(formula)
+        if isinstance(formula, Number):
             hint = f"write the unit: {formula.text} {unit.text}, if that is the unit meant"
         self.problems.add(
             "unit-mismatch", formula.span, f"the formula does not give {dimension_words(unit.dimension)}",
-            expected=f"{dimension_words(unit.dimension)}, because {slot.symbol.name} is declared with the unit {unit.text}",
+            expected=f"{dimension_words(unit.dimension)}, because {slot.symbol.name} is declared "
+            + ("so" if unit == ONE else f"in `{unit.text}`"),
             found=self.told(formula, found), hint=hint,
         )  # fmt: skip
+
+    def root_hint(self, formula: Expression) -> str:
+        """Return how to write the root of a stress that a clause takes by its number."""
+        roots = [n.arguments[0] for n in walk(formula) if isinstance(n, Call) and n.function == "sqrt"]
+        named = [n for n in roots if isinstance(n, Name) and n.slot >= 0]
+        unit = self.slots[named[0].slot].symbol.unit if named else None
+        if unit is None:
+            return ""
+        name = named[0].name
+        return f"where the clause takes {name} by its number in {unit.text}, write qty(sqrt(num({name}, {unit.text})), {unit.text})"
 
     def figure(self, line: PlannedFigure) -> None:
         """Hold the numbers handed to a figure against what it takes."""
@@ -144,7 +153,7 @@ class _Holder:
     def told(self, formula: Expression, found: Dimension) -> str:
         """Return a dimension in words, with the symbols it comes from where they are few."""
         slots = {n.name: self.slots[n.slot] for n in walk(formula) if isinstance(n, Name) and n.slot >= 0}
-        units = [f"{name} in {s.symbol.unit.text}" for name, s in slots.items() if s.symbol.unit is not None]
+        units = [f"{name} ({s.symbol.unit.text})" for name, s in slots.items() if s.symbol.unit is not None]
         return dimension_words(found) + (f", from {', '.join(units)}" if 0 < len(units) <= 4 else "")
 
     # -------------------------------------------------------- conditions
@@ -198,7 +207,7 @@ class _Holder:
 
     def binary(self, node: Binary) -> _Found:
         if node.op in "+-":
-            what = f"the two sides of {node.op}"
+            what = f"the two sides of `{node.op}`"
             return self.same(node.left, node.right, what)
         if node.op == "^":
             return self.power(node)

@@ -103,9 +103,10 @@ class Names:
                 self.look(left, space, at)
                 self.look(right, space, replace(at, assured=at.assured | assured(left, space)))
             case Compare(_, left, right) if word := _word_of(left, space) or _word_of(right, space):
+                other = left if word is right else right
                 self.problems.add("unit-mismatch", word.span, f"`{word.name}` is a word, not a number",
                                   expected="a quantity in a comparison", found="a word",
-                                  hint=f"ask for a word with `is`: {word.name} is …")  # fmt: skip
+                                  hint=f"ask for a word with `is`: {word.name} is {other.span.text[:40]}")  # fmt: skip
             case _:
                 for child in children(node):
                     self.look(child, space, at)

@@ -141,7 +141,7 @@ class PartHander:
             if taken is not None and taken is not value:
                 self.problems.add("part-clash", line.name.span, f"the part `{line.name.name}` gives `{name}`, which stands already",
                                   expected="names that are free", found=name,
-                                  hint=f"write `as: …`, and use …{'.' + name}",
+                                  hint=f"write `as: name`, and use name.{name}",
                                   related=((taken.span, "given here"),))  # fmt: skip
             else:
                 space.names[mark + name] = value

@@ -54,25 +54,28 @@ class Maker:
         """Make a slot, or reuse the one an earlier arm made under this name."""
         sibling = space.siblings.get(symbol.name)
         if isinstance(sibling, Slot) and symbol.name not in space.names:
-            self._hold_alike(sibling, symbol, sets, span)
             space.names[symbol.name] = sibling
-            return sibling
+            if self._are_alike(sibling, symbol, sets, span):
+                return sibling
+            self.slots.append(Slot(len(self.slots), symbol, space.stem + symbol.name, sets, absent, span))
+            return self.slots[-1]
         made = Slot(len(self.slots), symbol, space.stem + symbol.name, sets, absent, span)
         self.slots.append(made)
         if self._is_free(symbol.name, space, span):
             space.names[symbol.name] = made
         return made
 
-    def _hold_alike(self, sibling: Slot, symbol: Symbol, sets: tuple[int, ...], span: Span) -> None:
+    def _are_alike(self, sibling: Slot, symbol: Symbol, sets: tuple[int, ...], span: Span) -> bool:
         one, other = sibling.symbol.unit, symbol.unit
         found = dimension_words(other.dimension) if other else "a word"
         expected = dimension_words(one.dimension) if one else "a word"
         if found == expected and sibling.sets != sets:
             found, expected = "another set around it", "the same sets around it in every arm"
         elif found == expected:
-            return
+            return True
         self.problems.add("arms-differ", span, f"`{symbol.name}` is another thing in another branch", expected=expected,
                           found=found, related=((sibling.span, "given here"),))  # fmt: skip
+        return False
 
     def row_set(self, name: str, space: Space, outer: tuple[int, ...], row_names: tuple[str, ...], span: Span) -> RowSet:
         """Make a set, or reuse the one an earlier arm made under this name."""

@@ -71,7 +71,7 @@ class CalculationReader:
         if given is None and fields.node_of("given") is not None:
             return None
         materials = self.materials(fields, roles)
-        reader = ValueReader(materials, self.library.bar_table(template.name, system), self.problems)
+        reader = ValueReader(materials, self.library.bar_table(template.name, system), node.span, self.problems)
         values = reader.read(template.body.given, given or Mapping((), node.span), mark.text[:12])
         if not kept or not is_complete(values, template.body.given):
             return None
@@ -108,7 +108,8 @@ class CalculationReader:
                                   hint=self.problems.near(scalar.text, known))  # fmt: skip
                 found[role] = None
                 continue
-            found[role] = scalar.text, known[scalar.text][1]
+            key, properties = known[scalar.text]
+            found[role] = (key, properties) if properties is not None else None
         return found
 
 

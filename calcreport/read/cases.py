@@ -49,7 +49,7 @@ class _CaseReader:
         settled = self.settled()
         if settled is None:
             return None
-        reader = ValueReader(self.materials(), self.library.bar_table(self.template, settled.system), self.problems)
+        reader = ValueReader(self.materials(), self.library.bar_table(self.template, settled.system), self.node.span, self.problems)
         given = fields.mapping("given") or Mapping((), self.node.span)
         values = reader.read(settled.body.given, given, f"the case `{name[:60]}`")
         if self.problems.met > before or not is_complete(values, settled.body.given):
@@ -78,7 +78,7 @@ class _CaseReader:
         for role, value in roles.entries if roles else ():
             properties = as_mapping(value, f"the material `{role.text[:40]}`", self.problems)
             entries = properties.entries if properties else ()
-            found[role.text] = role.text, {k.text: v for k, v in entries if isinstance(v, Scalar)}
+            found[role.text] = role, {k.text: v for k, v in entries if isinstance(v, Scalar)}
         return found
 
     def stops(self) -> str:

@@ -8,7 +8,7 @@ from __future__ import annotations
 
 from collections.abc import Iterable
 
-from calcreport.core.problems import Problems, listed
+from calcreport.core.problems import Problems, listed, meant
 from calcreport.core.source import Span
 from calcreport.read.nodes import Mapping, Node, Scalar, Sequence, Told
 
@@ -22,6 +22,8 @@ class Fields:
         self.node, self.problems, self.what = node, problems, what
         self.span = node.span
         keys, coming = tuple(allowed), tuple(later)
+        #: allowed keys that an unknown one seems to mean: they are not missing besides
+        self.mistaken: set[str] = set()
         for key, _ in node.entries:
             if key.text in coming:
                 say_not_yet(key, problems)
@@ -30,6 +32,7 @@ class Fields:
                     "unknown-key", key.span, f"{what} has no key `{key.text[:40]}`",
                     expected=listed(keys), found=key.text[:40], hint=problems.near(key.text, keys),
                 )  # fmt: skip
+                self.mistaken.update(meant(key.text, keys))
 
     def node_of(self, key: str) -> Node | None:
         """Return the node under a key, or None where the key is missing or empty."""
@@ -112,6 +115,8 @@ class Fields:
 
     def say_missing(self, key: str) -> None:
         """Add `missing-key`, at the key where it stands without a value."""
+        if key in self.mistaken:
+            return
         at = next((name.span for name, _ in self.node.entries if name.text == key), None)
         self.problems.add(
             "missing-key", at or self.span.part(0, 1), f"{self.what} needs `{key}`", expected=f"`{key}: …`",
@@ -170,5 +175,6 @@ def say_not_a_word(scalar: Scalar, words: tuple[str, ...], what: str, problems: 
 
 def say_not_yet(key: Scalar, problems: Problems) -> None:
     """Add `not-yet` for what the template or project language has and this version does not read."""
-    problems.add("not-yet", key.span, f"`{key.text[:40]}` is not read by this version", expected="what this version reads",
-                 found=key.text[:40], hint="leave it out; it is never passed over in silence")  # fmt: skip
+    problems.add("not-yet", key.span, f"`{key.text[:40]}` is not read by this version",
+                 expected="the work written out without it", found=key.text[:40],
+                 hint="what it says would be missing from the sheets, so it is refused, not passed over")  # fmt: skip

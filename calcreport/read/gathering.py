@@ -25,8 +25,8 @@ class Gathered:
     """What the project file and its includes hold, before calculations are bound."""
 
     files: list[Source] = field(default_factory=list)
-    #: properties by mark, None for one about which a problem was told
-    materials: dict[str, tuple[Scalar, dict[str, Scalar | None]]] = field(default_factory=dict)
+    #: properties by mark; None where a problem was told
+    materials: dict[str, tuple[Scalar, dict[str, Scalar | None] | None]] = field(default_factory=dict)
     assumptions: list[Assumption] = field(default_factory=list)
     calculations: list[Mapping] = field(default_factory=list)
 
@@ -68,7 +68,9 @@ class Gatherer:
             self.problems.add("given-twice", key.span, f"the material `{key.text[:40]}` stands twice",
                               expected="every mark once", found=key.text[:40],
                               related=((known[key.text][0].span, "first here"),))  # fmt: skip
-        elif node is not None:
+        elif node is None:
+            known[key.text] = key, None
+        else:
             found: dict[str, Scalar | None] = {}
             for name, inner in node.entries:
                 found[name.text] = as_scalar(inner, f"`{name.text[:40]}` of a material", self.problems)

@@ -205,7 +205,7 @@ class Library:
         if system not in head.systems:
             self.problems.add("edition-mix", at, f"`{head.name}` does not serve {system} units",
                               expected=" and ".join(head.systems) + " units", found=f"{system} units",
-                              hint="a calculation may have `units` of its own")  # fmt: skip
+                              hint="" if self._open else "a calculation may have `units` of its own")  # fmt: skip
             return False
         code = head.code(system)
         year = editions.get(code, "")

@@ -147,7 +147,7 @@ class _Reader:
             return self.sequence(event, depth)
         return self.mapping(event, depth)
 
-    def scalar(self, event: yaml.ScalarEvent) -> Scalar:
+    def scalar(self, event: yaml.ScalarEvent) -> Scalar | Told:
         span, quoted = self.span(event), event.style in ("'", '"')
         text = event.value
         if quoted:
@@ -155,24 +155,26 @@ class _Reader:
             if event.style == '"' and "\\" in span.text:
                 self.stop("yaml-feature", event, "escapes are not read", "plain quoted text", "a backslash",
                           "write the text in single quotes")  # fmt: skip
-        elif not event.style:
-            self.look_for_cut(span)
+        elif not event.style and self.is_cut(span):
+            return Told(span)
         # folded lines and doubled quotes: no part of the text has a place of its own
         return Scalar(text, Span(span.source, span.start, span.end, span.text != text), quoted)
 
-    def look_for_cut(self, span: Span) -> None:
+    def is_cut(self, span: Span) -> bool:
         """Refuse `2 legs #4` unquoted: the reader of YAML takes ` #4` for a comment."""
         cut = _CUT.match(self.source.text, span.end)
-        if cut and (cut[0][0] in " \t" or span.end == span.start):
-            start = cut.end() - 2
-            end = self.source.text.find("\n", start)
-            tail = self.source.text[start : end if end >= 0 else None].rstrip()
-            lost = re.split(r"[,}\]]", tail)[0].rstrip()
-            self.problems.add(
-                "comment-cut", Span(self.source, start, start + len(tail)), "the rest of this line is read as a comment",
-                expected="text that holds # after a space, or begins with it, in quotes", found=tail[:60],
-                hint=f"write '{(span.text + cut[0][:-2] + lost).strip()[:60]}', or put a space after # in a comment",
-            )  # fmt: skip
+        if cut is None or (cut[0][0] not in " \t" and span.end != span.start):
+            return False
+        start = cut.end() - 2
+        end = self.source.text.find("\n", start)
+        tail = self.source.text[start : end if end >= 0 else None].rstrip()
+        lost = re.split(r"[,}\]]", tail)[0].rstrip()
+        self.problems.add(
+            "comment-cut", Span(self.source, start, start + len(tail)), "the rest of this line is read as a comment",
+            expected="text that holds # after a space, or begins with it, in quotes", found=tail[:60],
+            hint=f"write '{(span.text + cut[0][:-2] + lost).strip()[:60]}', or put a space after # in a comment",
+        )  # fmt: skip
+        return True
 
     def sequence(self, start: yaml.Event, depth: int) -> Sequence:
         items: list[Node] = []

@@ -86,7 +86,7 @@ class ProjectReader:
             editions=tuple(sorted(codes.editions.items())),
             criteria=read_criteria(fields.mapping("criteria", required=True), self.library, system, self.problems),
             materials=tuple(
-                (mark, tuple((name, scalar.text) for name, scalar in found.items() if scalar is not None))
+                (mark, tuple((name, scalar.text) for name, scalar in (found or {}).items() if scalar is not None))
                 for mark, (_, found) in gathered.materials.items()
             ),
             assumptions=tuple(gathered.assumptions),

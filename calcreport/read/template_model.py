@@ -46,6 +46,10 @@ class Range:
     text: str
     span: Span
 
+    def words(self, name: str) -> str:
+        """Return the range as a statement about a symbol: 'b > 0', 'b in (0, 8 in]'."""
+        return f"{name} {self.text}" if self.text[0] in "<>" else f"{name} in {self.text}"
+
     def holds(self, value: Fraction) -> bool:
         """Tell whether an exact value in base units lies inside."""
         if self.low is not None and (value < self.low.value or (value == self.low.value and self.low_open)):

@@ -10,7 +10,7 @@ import re
 from dataclasses import dataclass
 from typing import TypeAlias
 
-from calcreport.core.problems import Problems, listed
+from calcreport.core.problems import Problems, listed, meant
 from calcreport.core.quantity import Amount, read_in_unit
 from calcreport.core.source import Span
 from calcreport.read.bars import BarTable, read_callout
@@ -28,7 +28,7 @@ from calcreport.read.model import (
 from calcreport.read.nodes import Mapping, Node, Scalar, Told
 
 #: mark of a material and its properties, None for one about which a problem was told
-Material: TypeAlias = tuple[str, dict[str, Scalar | None]]
+Material: TypeAlias = tuple[Scalar, dict[str, Scalar | None]]
 _LINK = re.compile(r"([A-Za-z][A-Za-z0-9]*)\.([A-Za-z][\w.\[\]+ /-]*)")
 _ROW_NAME = re.compile(r"\w[\w .+/-]{0,39}")
 #: ways to give rows that the language has and this version does not read
@@ -44,6 +44,8 @@ class ValueReader:
     #: (mark of the material, its properties) by role: concrete -> ('C5', {...}); None where it could not be read
     materials: dict[str, Material | None]
     bars: BarTable | None
+    #: the calculation's own place
+    home: Span
     problems: Problems
 
     def read(
@@ -51,24 +53,29 @@ class ValueReader:
     ) -> tuple[GivenValue | GivenRows | GivenPairs, ...]:
         """Read every given value the template wants out of the `given` mapping."""
         known = {given.name: given for given in givens}
+        mistaken: set[str] = set()
         for key, _ in node.entries:
             if key.text not in known:
                 self.problems.add(
                     "unknown-given", key.span, f"{what} takes no `{key.text[:40]}`",
                     expected=listed(known), found=key.text[:40], hint=self.problems.near(key.text, known),
                 )  # fmt: skip
-        found = [self.one(given, node, what) for given in givens]
+                mistaken.update(meant(key.text, known))
+        found = [self.one(given, node, what, told=given.name in mistaken) for given in givens]
         return tuple(value for value in found if value is not None)
 
-    def one(self, given: Given, node: Mapping, what: str) -> GivenValue | GivenRows | GivenPairs | None:
-        """Read one given value, of whatever kind."""
+    def one(
+        self, given: Given, node: Mapping, what: str, *, told: bool
+    ) -> GivenValue | GivenRows | GivenPairs | None:
+        """Read one given value, of whatever kind; `told` where an unknown name seems to mean it."""
         key, value = next(((k, v) for k, v in node.entries if k.text == given.name), (None, None))
         if isinstance(value, Told):
             return None
         if value is None or is_empty(value):
-            if given.material:
-                return self.from_material(given, node.span, what)
-            self.say_missing(given, key.span if key else node.span.part(0, 1), what)
+            if given.material and key is None:
+                return self.from_material(given, what)
+            if not told:
+                self.say_missing(given, key.span if key else node.span.part(0, 1), what)
             return None
         if given.kind == "rows":
             return self.rows(given, value)
@@ -78,11 +85,10 @@ class ValueReader:
 
     def say_missing(self, given: Given, at: Span, what: str) -> None:
         """Add `missing-value`."""
-        unit = f", in {given.symbol.unit.text} for instance" if given.symbol and given.symbol.unit else ""
         words = f": {listed(given.symbol.words)}" if given.symbol and given.symbol.words else ""
         self.problems.add(
             "missing-value", at, f"{what} needs `{given.name}`",
-            expected=f"{given.says or given.name}{unit}{words}", found="no value",
+            expected=f"{_wanted(given)}{words}", found="no value",
             hint="it may be `none`" if given.if_none is not None else "",
         )  # fmt: skip
 
@@ -115,9 +121,10 @@ class ValueReader:
         """Read the name of another calculation's line."""
         match = _LINK.fullmatch(scalar.text)
         if match is None or given.kind not in ("value", "pairs"):
-            found = scalar.text[:40] if match is None else "bars, which no line gives"
+            bars = given.kind in ("bars", "spaced bars")
             self.problems.add("not-a-link", scalar.span, f"`{scalar.text[:40]}` cannot be linked here",
-                              expected="mark and symbol of a calculation, such as FL2.M_u", found=found)  # fmt: skip
+                              expected="bars written out" if bars else "mark and symbol, such as FL2.M_u",
+                              found="a link" if bars else scalar.text[:40] or "nothing")  # fmt: skip
             return None
         value = LinkedValue(match[1], match[2], scalar.span)
         return GivenValue(given, value, ValueOrigin("line", scalar.text), scalar.span)
@@ -132,9 +139,8 @@ class ValueReader:
     def may_be_none(self, given: Given, scalar: Scalar) -> bool:
         """Hold the word `none` against the declaration; adds `not-none`."""
         if given.if_none is None:
-            unit = f", in {given.symbol.unit.text} for instance" if given.symbol and given.symbol.unit else ""
             self.problems.add("not-none", scalar.span, f"`{given.name}` may not be none",
-                              expected=f"{given.says or given.name}{unit}", found="none")  # fmt: skip
+                              expected=_wanted(given), found="none")  # fmt: skip
         return given.if_none is not None
 
     def typed(self, given: Given, scalar: Scalar) -> Handed:
@@ -182,16 +188,16 @@ class ValueReader:
             return True
         self.problems.add(
             "out-of-range", span, f"`{given.name}` is outside what the template covers",
-            expected=f"{given.name} {limits.text}", found=amount.text,
+            expected=limits.words(given.name), found=amount.text,
             related=((limits.span, "the template states the range"),),
         )  # fmt: skip
         return False
 
-    def from_material(self, given: Given, at: Span, what: str) -> GivenValue | None:
+    def from_material(self, given: Given, what: str) -> GivenValue | None:
         """Read a property of the material a calculation names for a role."""
         if given.material not in self.materials:
             self.problems.add(
-                "missing-value", at.part(0, 1), f"{what} needs the material `{given.material}`",
+                "missing-value", self.home.part(0, 1), f"{what} needs the material `{given.material}`",
                 expected=f"`{given.material}: MARK` beside `template:`", found="no such key",
             )  # fmt: skip
             return None
@@ -203,16 +209,18 @@ class ValueReader:
         if given.property in properties and scalar is None:
             return None
         if scalar is None:
+            near = meant(given.property, properties)
             self.problems.add(
-                "missing-value", at.part(0, 1), f"the material `{mark}` has no `{given.property}`, which {what} needs",
-                expected=given.says or given.property, found=", ".join(properties) or "no properties",
-                hint=self.problems.near(given.property, properties),
+                "missing-value", mark.span, f"the material `{mark.text[:40]}` has no `{given.property}`",
+                expected=_wanted(given), found=", ".join(properties) or "no properties",
+                hint=f"write {given.property} for {near[0]}, if that is meant" if near else "",
+                related=((self.home.part(0, 1), f"{what} needs it"),),
             )  # fmt: skip
             return None
         if scalar.text == "none":
             return self.none(given, scalar)
         value = self.typed(given, scalar)
-        return None if value is None else GivenValue(given, value, ValueOrigin("material", mark), scalar.span)
+        return None if value is None else GivenValue(given, value, ValueOrigin("material", mark.text), scalar.span)
 
     # -------------------------------------------------------- rows and pairs
 
@@ -299,6 +307,12 @@ def is_complete(values: tuple[GivenValue | GivenRows | GivenPairs, ...], givens:
     rows = [value for value in values if isinstance(value, GivenRows)]
     whole = all(len(cells) == len(value.given.columns) for value in rows for cells in value.cells)
     return whole and len(values) == len(givens) and all(len(r.names) == len(r.cells) for r in rows)
+
+
+def _wanted(given: Given) -> str:
+    """Return what a given is, with a unit it may be written in."""
+    unit = given.symbol.unit.text if given.symbol and given.symbol.unit else "1"
+    return (given.says or given.name) + (f" ({unit})" if unit != "1" else "")
 
 
 def fits(name: str, pattern: str, row_names: tuple[str, ...]) -> bool:

@@ -42,7 +42,7 @@ class _Settler:
                 return chosen
         self.problems.add(
             "variant-hole", node.span.part(0, 1), "a unit system or year has nothing here",
-            expected=f"an entry {' or '.join(self.wanted)}, which the template serves",
+            expected="an entry " + " or ".join(f"`{key}`" for key in self.wanted) + ", which the template serves",
             found="only " + ", ".join(key.text for key, _ in node.entries),
         )  # fmt: skip
         return Told(node.span)

@@ -39,6 +39,7 @@ from calcreport.report.script import (
     SayHeading,
     SayLine,
     SayMade,
+    SayNone,
     SayRequire,
     SayRows,
     SayStop,
@@ -93,6 +94,8 @@ class Composer:
         match item:
             case SayGivens():
                 return (Givens(tuple(self.given.given_row(number, given) for number, given in item.rows)),)
+            case SayNone():
+                return (self.given.none(item),)
             case SayRows():
                 return (self.given.given_table(item),)
             case SayText():
@@ -142,10 +145,11 @@ class Composer:
             )
         shown, substituted = self.told.steps(formula, gives)
         coherent = self.told.coherent(gives, formula)
+        taken = self.told.row_taken(gives, formula)
         return Line(
             item.number,
             self.told.anchor(item.number),
-            (slot.symbol.says,),
+            (slot.symbol.says + (f", {taken}" if taken else ""),),
             self.shared.symbol(line.slot),
             shown,
             substituted,

@@ -6,7 +6,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 from calcreport.calculate.model import Worked, WorkedProject
 from calcreport.core.version import PROGRAM
@@ -68,19 +68,18 @@ def _report(
         cover=fronts.cover(project, result_words(project, summary), loud),
     )
     front = [
-        _front(project, "REVISIONS", "Revision record", fronts.revisions(project)),
-        _front(project, "CRITERIA", "Design criteria", fronts.criteria(project)),
-        _front(project, "ASSUMPTIONS", "Assumption register", register),
+        _front(project, "CRITERIA", "Design criteria and assumptions", (*fronts.criteria(project), *register)),
         _front(project, "SUMMARY", "Check summary", summary_blocks),
     ]
     back = [
         _front(project, "A", "Appendix A: input echo", fronts.echo(facts.files), "appendix"),
         _front(project, "B", "Appendix B: program disclosure", fronts.disclosure(project), "appendix"),
     ]
-    listed = (cover, front[0], *front[1:], *calculations, *back)
-    entries = tuple(_entry(project, part) for part in listed)
-    index = Part("INDEX", "Index", "index", _facts(project, "Index"), index=Index(entries))
-    parts = (cover, front[0], index, *front[1:], *calculations, *back)
+    title = "Revision record and index"
+    index = Part("INDEX", title, "index", _facts(project, title), fronts.revisions(project))
+    entries = tuple(_entry(project, part) for part in (cover, index, *front, *calculations, *back))
+    index = replace(index, index=Index(entries))
+    parts = (cover, index, *front, *calculations, *back)
     return Report(
         facts.title, facts.office, f"Structural calculations, {facts.number}", "en-US", facts.date, facts.paper, parts
     )

@@ -86,6 +86,11 @@ def show_row(name: str) -> Formula:
     return Row((shown, Letters(signed[2].replace("-", "−")))) if signed[2] else shown
 
 
+def row_words(name: str) -> str:
+    """Return a row's name as words: a sign that ends a word is a true minus."""
+    return re.sub(r"(?<=\w)-(?= |$)", "−", name)
+
+
 def _letters(text: str) -> Formula:
     """Return base letters: one letter italic, a word upright, digits after a letter as they are."""
     if text in _GREEK:

@@ -10,6 +10,7 @@ from dataclasses import dataclass
 from calcreport.calculate.model import WorkedProject, WorkedText
 from calcreport.core.source import Source
 from calcreport.core.version import PROGRAM
+from calcreport.report.display import show_name
 from calcreport.report.model import (
     Block,
     Column,
@@ -69,6 +70,11 @@ def short_date(iso: str) -> str:
     return f"{day} {month[:3]} {year}"
 
 
+def counted(number: int, words: str) -> str:
+    """Return '1 limit state' or '2 limit states'."""
+    return f"{number} {words}" if number == 1 else f"{number} {words}s"
+
+
 def grouped(fingerprint: str) -> str:
     """Return hexadecimal digits in fours."""
     return " ".join(fingerprint[i : i + 4] for i in range(0, len(fingerprint), 4))
@@ -124,7 +130,7 @@ def revisions(project: WorkedProject) -> tuple[Block, ...]:
         TableRow(((issue.number,), (date_words(issue.date),), (issue.why,))) for issue in project.project.issues
     )
     columns = (Column(("Issue",)), Column(("Date",)), Column(("What changed and why",), stretch=1.0))
-    return (Table(columns, rows),)
+    return (Heading("Revision record", 1), Table(columns, rows))
 
 
 def criteria(project: WorkedProject) -> tuple[Block, ...]:
@@ -132,17 +138,16 @@ def criteria(project: WorkedProject) -> tuple[Block, ...]:
     facts = project.project
     blocks: list[Block] = [Heading("Codes", 2)]
     amendments = "none listed" if facts.amendments == "none" else facts.amendments
-    rows = [*facts.codes, ("local amendments", amendments)]
-    blocks.append(_two_columns(rows))
-    systems = {worked.calculation.template.system for worked in project.calculations} | {facts.system}
     units = "US customary" if facts.system == "us" else "SI"
-    both = " (a calculation in the other system says so)" if len(systems) > 1 else ""
-    blocks.append(_two_columns([("units", units + both)]))
+    mixed = any(worked.calculation.template.system != facts.system for worked in project.calculations)
+    units += "; a calculation in the other system says so" if mixed else ""
+    rows = [*facts.codes, ("local amendments", amendments), ("units", units)]
+    blocks.append(_two_columns(rows))
     blocks += [Heading("Criteria", 2), _two_columns(list(facts.criteria))]
     if facts.materials:
         blocks.append(Heading("Materials", 2))
         names = list(dict.fromkeys(name for _, properties in facts.materials for name, _ in properties))
-        columns = (Column(("Mark",)), *(Column((name,)) for name in names))
+        columns = (Column(("Mark",)), *(Column((show_name(name),)) for name in names))
         table = [
             TableRow(((mark,), *((dict(properties).get(name, "–"),) for name in names)))
             for mark, properties in facts.materials
@@ -191,9 +196,10 @@ def assumptions(entries: tuple[RegisterEntry, ...]) -> tuple[Block, ...]:
         TableRow(((e.number,), (e.says,), (e.state,), e.where), "loud" if e.state.startswith("to be") else "")
         for e in entries
     )
+    heading = Heading("Assumptions", 2)
     if not rows:
-        return (Paragraph(("No assumption is registered.",), "plain"),)
-    return (Table(columns, rows),)
+        return heading, Paragraph(("None is registered.",), "plain")
+    return heading, Table(columns, rows)
 
 
 def echo(files: tuple[Source, ...]) -> tuple[Block, ...]:

@@ -16,7 +16,7 @@ from calcreport.calculate.model import (
 )
 from calcreport.core.quantity import Amount
 from calcreport.core.units import NONE
-from calcreport.report.display import show_row, show_symbol, unit_text
+from calcreport.report.display import row_words, show_row, show_symbol, unit_text
 from calcreport.report.forms import link_place
 from calcreport.report.model import (
     Block,
@@ -36,6 +36,7 @@ from calcreport.report.notation import (
     relation,
 )
 from calcreport.report.script import (
+    SayNone,
     SayRows,
 )
 from calcreport.report.told import Told
@@ -72,6 +73,18 @@ class GivenBlocks:
             shown,
             self.origin(value.origin, value.value),
         )
+
+    def none(self, item: SayNone) -> Block:
+        """Return the values there are none of, and what they count as."""
+        values = [self.told.values.get(given.slot) for given in item.givens]
+        zero = all(value == 0.0 for value in values)
+        items: list[Formula] = []
+        for given in item.givens:
+            items += [Letters(",  ")] if items else []
+            items.append(self.told.shared.symbol(given.slot))
+        words = "none, counted as 0" if zero else "none"
+        anchor = self.told.anchor(item.number)
+        return Statement(item.number, anchor, (words,), Row(tuple(items)), SourceLane("project file"))
 
     def as_typed(self, shown: Formula, value: GivenValue, slot: int) -> Formula:
         """Add the typed spelling where it is in another unit than the one used."""
@@ -129,7 +142,7 @@ class GivenBlocks:
             slots += [column.slot, *column.outputs]
         columns += [self.told.column(slot) for slot in slots]
         rows = tuple(
-            TableRow(((name,), *tuple(self.told.cell(slot, (row,)) for slot in slots)))
+            TableRow(((row_words(name),), *(self.told.cell(slot, (row,)) for slot in slots)))
             for row, name in enumerate(value.names)
         )
         words = (planned.given.says or planned.given.name,)
@@ -167,13 +180,19 @@ class GivenBlocks:
         sets = [self.told.worked.plan.sets[index].name for index in planned.over]
         if len(names) != 2:
             cells = tuple(
-                TableRow(((name,), self.told.cell(planned.slot, (row,)))) for row, name in enumerate(names[0])
+                TableRow(((row_words(name),), self.told.cell(planned.slot, (row,))))
+                for row, name in enumerate(names[0])
             )
             columns: tuple[Column, ...] = (Column((sets[0],)), self.told.column(planned.slot))
         else:
             columns = (Column((f"{sets[0]} / {sets[1]}",)), *(Column((show_row(name),), "right") for name in names[1]))
             cells = tuple(
-                TableRow(((name,), *(self.told.cell(planned.slot, (row, other)) for other in range(len(names[1])))))
+                TableRow(
+                    (
+                        (row_words(name),),
+                        *(self.told.cell(planned.slot, (row, other)) for other in range(len(names[1]))),
+                    )
+                )
                 for row, name in enumerate(names[0])
             )
         symbol = self.told.slots[planned.slot].symbol

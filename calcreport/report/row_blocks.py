@@ -11,7 +11,7 @@ from calcreport.calculate.model import (
 )
 from calcreport.core.expression import Name, Number
 from calcreport.report.digits import number_text
-from calcreport.report.display import show_row
+from calcreport.report.display import row_words, show_row
 from calcreport.report.model import (
     Block,
     Column,
@@ -76,7 +76,7 @@ class RowBlocks:
         rows = []
         for place, row_name in enumerate(each.names):
             opened = (*each.open, (each.line.rows, place))
-            cells: list[Words] = [(row_name,)]
+            cells: list[Words] = [(row_words(row_name),)]
             for slot in item.columns:
                 cells.append(self.told.cell(slot, self.told.key(slot, opened)))
             by_name = {check.line.name: check for check in checks_below(each.rows[place])}
@@ -99,7 +99,9 @@ class RowBlocks:
         columns = [Column((plan.sets[line.rows].name,))]
         if simple:
             columns += [self.made_column(column.slot, column.over) for column in line.columns]
-            rows = tuple(TableRow(((name,), *self.made_cells(item, row))) for row, name in enumerate(worked.names))
+            rows = tuple(
+                TableRow(((row_words(name),), *self.made_cells(item, row))) for row, name in enumerate(worked.names)
+            )
             words: Words = (line.says,) if line.says else ()
             return (
                 Table(

@@ -36,6 +36,14 @@ class SayGivens:
 
 
 @dataclass(frozen=True, slots=True)
+class SayNone:
+    """Given values the project says there are none of, in one line."""
+
+    number: int
+    givens: tuple[PlannedGiven, ...]
+
+
+@dataclass(frozen=True, slots=True)
 class SayRows:
     """A set of given rows as a table."""
 
@@ -133,6 +141,7 @@ class SayStop:
 
 Item: TypeAlias = (
     SayGivens
+    | SayNone
     | SayRows
     | SayText
     | SayHeading
@@ -184,15 +193,26 @@ def write_script(worked: Worked) -> Script:
 
 
 def _givens(writer: _Writer) -> None:
+    none = {value.given.name for value in writer.worked.calculation.given if value.origin.kind == "none"}
     plain = [given for given in writer.worked.plan.givens if given.rows < 0 and not given.over]
+    idle = tuple(given for given in plain if given.given.name in none)
+    idle = idle if len(idle) > 1 else ()
     rows = []
     for given in plain:
+        if given in idle:
+            continue
         number = writer.next()
         rows.append((number, given))
         for slot in (given.slot, *given.outputs):
             writer.line_of[slot, ()] = number
     if rows:
         writer.items.append(SayGivens(tuple(rows)))
+    if idle:
+        number = writer.next()
+        writer.items.append(SayNone(number, idle))
+        for given in idle:
+            for slot in (given.slot, *given.outputs):
+                writer.line_of[slot, ()] = number
     for given in writer.worked.plan.givens:
         if given.rows >= 0 or given.over:
             _given_table(writer, given)

@@ -12,7 +12,7 @@ from calcreport.core.units import ONE
 from calcreport.report.digits import number_text
 from calcreport.report.display import unit_text
 from calcreport.report.forms import CalculationForms, is_size, side_unit
-from calcreport.report.fronts import RegisterEntry
+from calcreport.report.fronts import RegisterEntry, counted
 from calcreport.report.model import (
     Block,
     Column,
@@ -100,8 +100,8 @@ def result_words(project: WorkedProject, summary: Summary) -> tuple[Words, ...]:
     else:
         counts.append("0 NG")
     counts.append(
-        f", {summary.not_evaluated} not evaluated, {len(summary.not_covered)} limit states not covered, "
-        f"{summary.open_assumptions} assumptions to be verified"
+        f", {summary.not_evaluated} not evaluated, {counted(len(summary.not_covered), 'limit state')} not covered, "
+        f"{counted(summary.open_assumptions, 'assumption')} to be verified"
     )
     said = [
         (f"Engineer's disposition of {mark} {name}: {words}",)
@@ -131,9 +131,9 @@ class SummarySheets:
     def blocks(self, summary: Summary, entries: tuple[RegisterEntry, ...]) -> tuple[Block, ...]:
         """Return all blocks of the summary."""
         counts = (
-            f"{summary.calculations} calculations, {summary.checks} checks.  ",
+            f"{counted(summary.calculations, 'calculation')}, {counted(summary.checks, 'check')}.  ",
             Strong(f"{len(summary.failed)} NG"),
-            f",  {summary.not_evaluated} not evaluated,  {len(summary.not_covered)} limit states not covered.",
+            f",  {summary.not_evaluated} not evaluated,  {counted(len(summary.not_covered), 'limit state')} not covered.",
         )
         blocks: list[Block] = [Paragraph(counts, "plain")]
         blocks += self.attention(summary, entries)
@@ -329,8 +329,8 @@ def summary_lines(project: WorkedProject, forms: dict[str, CalculationForms], su
         ratio = number_text(figure) if figure else ""
         lines.append(f"{mark:<8} {ratio:>8}  {check.verdict:<3} {worked.calculation.title}: {check.line.name}")
     lines.append(
-        f"{summary.checks} checks: {len(summary.failed)} NG, {summary.not_evaluated} not evaluated; "
-        f"{len(summary.not_covered)} limit states not covered, {summary.open_assumptions} assumptions to be verified"
+        f"{counted(summary.checks, 'check')}: {len(summary.failed)} NG, {summary.not_evaluated} not evaluated; "
+        f"{counted(len(summary.not_covered), 'limit state')} not covered, {counted(summary.open_assumptions, 'assumption')} to be verified"
     )
     lines.append(_closing(summary))
     return lines

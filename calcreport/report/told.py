@@ -14,10 +14,10 @@ from calcreport.calculate.model import (
     Worked,
     WorkedGives,
 )
-from calcreport.core.expression import Binary, Compare, Condition, Expression, Is, Name, Number, names
+from calcreport.core.expression import Binary, Compare, Condition, Expression, Is, Name, Number, Over, names
 from calcreport.core.units import ONE, Unit
 from calcreport.report.digits import Figure, number_text
-from calcreport.report.display import show_symbol, unit_text
+from calcreport.report.display import row_words, show_symbol, unit_text
 from calcreport.report.forms import CalculationForms, Opened, is_size, side_unit
 from calcreport.report.model import (
     Column,
@@ -215,6 +215,22 @@ class Told:
         if isinstance(substituted, Letters) and self.coherent(gives, formula) is None:
             return shown, None
         return shown, substituted
+
+    def row_taken(self, gives: WorkedGives, formula: Expression) -> str:
+        """Return 'combination 2' where a line takes the value of one row of a set; '' otherwise."""
+        if not (isinstance(formula, Over) and isinstance(formula.body, Name)) or formula.function == "sum":
+            return ""
+        wanted, slot = self.values.get(gives.line.slot, gives.key), formula.body.slot
+        for index, row in gives.open:
+            self.values.open[index] = row
+        names = self.values.row_names(formula.bound)
+        if len(names) < 2:
+            return ""
+        for row, name in enumerate(names):
+            self.values.open[formula.bound] = row
+            if self.values.get(slot, self.values.key(slot)) == wanted:
+                return f"{formula.rows} {row_words(name)}"
+        return ""
 
     def coherent(self, gives: WorkedGives, formula: Expression) -> Formula | None:
         """Return the result in the units of its substitution, where the declared unit differs."""

@@ -46,9 +46,9 @@ class Agreement:
     differences: tuple[Difference, ...]
 
 
-def compare_paths(project: WorkedProject) -> Agreement:
-    """Work every calculation again and compare."""
-    make = make_quantities()
+def compare_paths(project: WorkedProject, make: Quantities | None = None) -> Agreement:
+    """Work every calculation again and compare; `make` saves loading the libraries anew."""
+    make = make or make_quantities()
     again: dict[str, Rework] = {}
     found: list[Difference] = []
     values = verdicts = 0

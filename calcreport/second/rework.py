@@ -103,7 +103,14 @@ class Rework:
             assert isinstance(formula, Name)
             self.values[line.slot, self.key(line.slot)] = formula.name
         else:
-            self.values[line.slot, self.key(line.slot)] = self.work(formula)
+            self.store(line.slot, formula)
+
+    def store(self, slot: int, formula: Expression) -> None:
+        """Work a formula into a slot; a bare zero takes the slot's unit."""
+        unit = self.plan.slots[slot].symbol.unit
+        value = self.work(formula)
+        one = self.make.unit(unit.factors) if unit is not None else self.make.pure(1)
+        self.values[slot, self.key(slot)] = self.alike(value, one)[0]
 
     def rows(self, line: PlannedRows) -> None:
         """Make a set: every entry, every pairing that fits."""
@@ -126,10 +133,10 @@ class Rework:
                             self.open[column.over] = place
                             node = chosen.get(row, column.other)
                             assert node is not None
-                            self.values[column.slot, self.key(column.slot)] = self.work(node)
+                            self.store(column.slot, node)
                         self.open.pop(column.over, None)
                     else:
-                        self.values[column.slot, self.key(column.slot)] = self.work(cell)
+                        self.store(column.slot, cell)
         self.open.pop(line.rows, None)
         self.names[line.rows, outer] = tuple(names)
 
@@ -220,6 +227,8 @@ class Rework:
         mp = self.make.mp
         match function:
             case "min" | "max":
+                measured = next((v for v in values if not v.dimensionless), values[0])
+                values = [self.alike(v, measured)[0] for v in values]
                 best = values[0]
                 for value in values[1:]:
                     gap = self.difference(value, best)

@@ -10,7 +10,20 @@ from collections.abc import Sequence
 from decimal import Decimal, localcontext
 from typing import Protocol
 
-from .expressions import PRECISE, Mixed, Node, Sheet, Unknown, Unread, Value, as_printed, parse, split, valued, with_unit
+from .expressions import (
+    PRECISE,
+    Mixed,
+    Node,
+    Sheet,
+    Unknown,
+    Unread,
+    Value,
+    as_printed,
+    parse,
+    split,
+    valued,
+    with_unit,
+)
 from .formulas import Token, plain
 from .units import Printed, rounds_to, unit
 

@@ -8,7 +8,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Iterator, Sequence
-from dataclasses import dataclass, field
+from dataclasses import dataclass
 from decimal import Context, Decimal, localcontext
 from fractions import Fraction as F
 from typing import Protocol, TypeAlias

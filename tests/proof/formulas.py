@@ -13,6 +13,7 @@ from .glyphs import Glyph
 from .pieces import AXIS, RELATIONS, Rule, find_labels, find_pieces, find_runs, main_baseline
 from .units import unit
 
+_DIGITS = "0123456789"
 _SIGNS = {"+": "+", "−": "-", "×": "*", "·": "·", "/": "/", "±": "±"}
 #: gaps, in type sizes: letters of one word; number and unit against a product by juxtaposition
 _NAME_GAP = 0.14
@@ -178,7 +179,7 @@ def _join(spots: list[_Spot]) -> list[Token]:
             at += 1
         elif glyph is None:
             raise ValueError("an empty place")
-        elif glyph.text.isdigit() or (glyph.text == "." and at + 1 < len(spots) and _digit(spots[at + 1])):
+        elif glyph.text in _DIGITS or (glyph.text == "." and at + 1 < len(spots) and _digit(spots[at + 1])):
             at = _number(spots, at, row)
         elif _wordlike(glyph.text):
             at = _unit(spots, at, row) if _follows_number(row, spot) else _word(spots, at, row)
@@ -207,7 +208,7 @@ def _whole(row: Sequence[Token]) -> int | None:
 
 
 def _digit(spot: _Spot) -> bool:
-    return spot.glyph is not None and spot.glyph.text.isdigit()
+    return spot.glyph is not None and spot.glyph.text in _DIGITS
 
 
 def _wordlike(text: str) -> bool:
@@ -298,7 +299,7 @@ def _word(spots: list[_Spot], at: int, row: list[Token]) -> int:
         spot = spots[at]
         if spot.glyph is None or (text and not _close(spots[at - 1], spot)) or ("Math" in spot.glyph.font) != face:
             break
-        inner = text and (spot.glyph.text.isdigit() or spot.glyph.text in "-./")
+        inner = text and spot.glyph.text in _DIGITS + "-./"
         if not _wordlike(spot.glyph.text) and not (inner and not face):
             break
         text += spot.glyph.text

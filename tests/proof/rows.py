@@ -1,0 +1,131 @@
+"""The claims of tables: formulas printed once for all rows, rows beside the one in full, columns of ratios.
+
+In: a `Desk`. Out: findings on it. Every cell is worked with the printed cells of its row and the values of the sheet.
+"""
+
+from __future__ import annotations
+
+from collections import Counter
+from collections.abc import Sequence
+from decimal import Decimal
+
+from .account import Desk
+from .calculations import Calculation, Rows, Scope, symbol_of
+from .conditions import in_unit, judge, matches
+from .expressions import Mixed, Unknown, Unread, parse, split, symbols, valued
+from .forms import left_symbol, short
+from .formulas import Token
+from .sheets import NumberedLine, Statement
+from .tables import Table
+from .units import Printed, is_number
+
+
+def is_row_formula(calculation: Calculation, statement: Statement) -> bool:
+    """Tell whether a formula stands without result, for the rows of a table."""
+    parts, relations = split(statement.tokens, "relation")
+    name = symbol_of(parts[0])
+    if relations != ["="] or name is None or not calculation.belongs(name):
+        return False
+    try:
+        return bool(symbols(parse(parts[1])))
+    except Unread:
+        return True
+
+
+def row_formula(desk: Desk, name: str, arms: list[Statement], line: NumberedLine) -> int:
+    """Work a formula for each row of the tables after it that print its results."""
+    done = 0
+    for here in desk.calculation.tables:
+        table = here.table
+        place = table.column(name)
+        if place is None or (table.page, -table.y) < (line.page, -line.y) or here.open != arms[0].context:
+            continue
+        for row in table.rows:
+            if is_number(row[place]):
+                _cell(desk, name, arms, table, place, row)
+                done += 1
+    if not done:
+        raise Unread(f"no table prints {name}")
+    return done
+
+
+def _cell(desk: Desk, name: str, arms: list[Statement], table: Table, place: int, row: list[str]) -> None:
+    for arm in arms:
+        open_: Rows = (*arm.context, (table.set_name, row[0]))
+        if not arm.condition or judge(arm.condition, Scope(desk.calculation, open_)):
+            _work(desk, split(arm.tokens, "relation")[0][1], name, open_, Printed(row[place], 0, table.columns[place].unit))
+            return
+    raise Unread(f"no arm of {name} holds for row {row[0]}")
+
+
+def _work(desk: Desk, formula: list[Token], name: str, open_: Rows, shown: Printed) -> None:
+    value = valued(parse(formula), Scope(desk.calculation, open_))
+    desk.count("table cells")
+    if not matches(value, shown):
+        text = f"{name}, row {open_[-1][1]}: worth {short(in_unit(value, shown.unit))}, printed {shown}"
+        desk.found("a row formula gives its cells", text)
+
+
+def _in_full(calculation: Calculation, table: Table) -> list[tuple[Statement, NumberedLine]]:
+    """Return the statements that stand in full for one row of a table's set."""
+    return [
+        (statement, line)
+        for line in calculation.lines
+        for statement in line.statements
+        if any(set_name == table.set_name for set_name, _ in statement.context)
+    ]
+
+
+def other_rows(desk: Desk, table: Table) -> None:
+    """Rows in a table follow the formula printed in full for one of them, unless that one says `since`."""
+    shown = [(s, line) for s, line in _in_full(desk.calculation, table) if s.kind == "formula" and s.tokens]
+    names = Counter(left_symbol(s) for s, _ in shown)
+    for statement, line in shown:
+        name, parts = left_symbol(statement), split(statement.tokens, "relation")[0]
+        place = table.column(name) if name else None
+        if place is None or len(parts) < 3 or names[name] > 1 or any(s.because == "since" for s in line.statements):
+            continue
+        for row in table.rows:
+            if is_number(row[place]) and (table.set_name, row[0]) not in statement.context:
+                try:
+                    unit = table.columns[place].unit
+                    _work(desk, parts[1], name, ((table.set_name, row[0]),), Printed(row[place], 0, unit))
+                except (Unread, Unknown, Mixed) as error:
+                    desk.unread(f"row {row[0]} of {name}: {error}")
+
+
+def ratio_columns(desk: Desk, table: Table) -> None:
+    """Ratios in a table follow the check printed in full for one row, and that row is the worst."""
+    for statement, _ in _in_full(desk.calculation, table):
+        title = statement.words.removeprefix("CHECK").strip()
+        columns = [i for i, c in enumerate(table.columns) if not c.math and c.name == title]
+        if statement.kind != "check" or not columns:
+            continue
+        formula = split(statement.tokens, "relation")[0][0]
+        rated = {row[0]: _rated(desk, formula, table, row, row[columns[0]]) for row in table.rows}
+        shown = next(row for set_name, row in statement.context if set_name == table.set_name)
+        worst = max((rate for rate in rated.values() if rate is not None), default=None)
+        if worst is not None and rated.get(shown) != worst:
+            text = ", ".join(f"{row} {rate}" for row, rate in rated.items())
+            desk.found("the row shown in full is the worst", f"{title}: shown {shown}, ratios {text}")
+
+
+def _rated(desk: Desk, formula: Sequence[Token], table: Table, row: list[str], cell: str) -> Decimal | None:
+    """Return a printed ratio held against its formula; infinite where there is none above zero; None without check."""
+    words = cell.split()
+    if not words or words[0] in ("–", "n.a."):
+        return None
+    if not is_number(words[0]):
+        return Decimal("Infinity")
+    shown = Printed(words[0])
+    desk.count("ratios")
+    if (shown.number > 1) != ("NG" in words):
+        desk.found("a verdict follows from print", f"row {row[0]}: {cell}")
+    if any(token.kind == "fraction" or token.text == "/" for token in formula):
+        try:
+            value = valued(parse(formula), Scope(desk.calculation, ((table.set_name, row[0]),)))
+            if not matches(value, shown):
+                desk.found("a ratio is its quotient", f"row {row[0]}: worth {short(value.number)}, printed {cell}")
+        except (Unread, Unknown, Mixed) as error:
+            desk.unread(f"ratio of row {row[0]}: {error}")
+    return shown.number

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 from calcreport.calculate.model import WorkedProject
 from calcreport.core.problems import Problem
@@ -14,6 +14,7 @@ from calcreport.layout.model import Pages
 from calcreport.layout.paginate import lay_out
 from calcreport.output.pdf import write_pdf
 from calcreport.report.compose import Composed, compose
+from calcreport.second.agreement import Agreement, compare_paths
 
 
 @dataclass(frozen=True, slots=True)
@@ -26,24 +27,31 @@ class Package:
     composed: Composed | None = None
     pages: Pages | None = None
     data: bytes = b""
+    #: what the second path came to, where it was asked for
+    agreement: Agreement | None = None
 
 
-def report(world: World, source: Source, progress: Progress = silent) -> Package:
-    """Go as far as the composed report."""
+def report(world: World, source: Source, progress: Progress = silent, second: bool = False) -> Package:
+    """Go as far as the composed report; with `second`, the disclosure says how the second path agrees."""
     result = work(world, source, progress)
     if result.problems or result.worked is None:
         return Package(result.problems, result.worked)
-    composed = compose(result.worked, lambda done, total: progress("composing", done, total))
-    return Package((), result.worked, composed)
+    agreement = None
+    if second:
+        progress("working again", 0, 1)
+        agreement = compare_paths(result.worked)
+    evidence = agreement.words if agreement else ()
+    composed = compose(result.worked, lambda done, total: progress("composing", done, total), evidence)
+    return Package((), result.worked, composed, agreement=agreement)
 
 
-def build(world: World, source: Source, progress: Progress = silent) -> Package:
+def build(world: World, source: Source, progress: Progress = silent, second: bool = False) -> Package:
     """Build the package of a project."""
-    told = report(world, source, progress)
+    told = report(world, source, progress, second)
     if told.composed is None:
         return told
     progress("laying out", 0, 1)
     fonts = installed_fonts()
     pages = lay_out(told.composed.report, fonts)
     progress("writing", 0, 1)
-    return Package((), told.worked, told.composed, pages, write_pdf(pages, fonts.files))
+    return replace(told, pages=pages, data=write_pdf(pages, fonts.files))

@@ -20,7 +20,7 @@ def run(arguments: Namespace) -> int:
     if isinstance(opened, tuple):
         return say_problems(opened, arguments.json, tail=UNWRITTEN)
     progress = ProgressLine()
-    package = build(opened.world, opened.source, progress)
+    package = build(opened.world, opened.source, progress, arguments.second_path)
     progress.clear()
     if package.problems:
         return say_problems(package.problems, arguments.json, tail=UNWRITTEN)
@@ -52,5 +52,8 @@ def _tell(package: Package, target: Path, as_json: bool) -> int:
     else:
         for line in summary_lines(package.worked, package.composed.forms, summary):
             print(line)
+        for words in package.agreement.words if package.agreement else ():
+            print(f"second path: {words}")
         print(f"{target}: {sheets} sheets")
-    return 1 if summary.failed or summary.not_evaluated else 0
+    parted = package.agreement is not None and bool(package.agreement.differences)
+    return 1 if summary.failed or summary.not_evaluated or parted else 0

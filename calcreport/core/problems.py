@@ -75,9 +75,13 @@ class Problems:
         """Tell whether a problem was added in one of these files."""
         return not self._sources.isdisjoint(sources)
 
+    def close(self, name: str, names: Iterable[str]) -> list[str]:
+        """Return `meant`, or nothing once many problems are kept: looking for spellings takes its time."""
+        return meant(name, names) if len(self._kept) < MOST_HINTED else []
+
     def near(self, name: str, names: Iterable[str]) -> str:
-        """Return `nearest`, or '' once many problems are kept: looking for spellings takes its time."""
-        return nearest(name, names) if len(self._kept) < MOST_HINTED else ""
+        """Return a hint naming the spellings nearest to `name`, or ''."""
+        return _hint(self.close(name, names))
 
     def sorted(self) -> tuple[Problem, ...]:
         """Return the problems by file and place, those without a place first."""
@@ -93,7 +97,10 @@ def meant(name: str, names: Iterable[str]) -> list[str]:
 
 def nearest(name: str, names: Iterable[str]) -> str:
     """Return a hint naming the spellings nearest to `name`, or ''."""
-    close = meant(name, names)
+    return _hint(meant(name, names))
+
+
+def _hint(close: list[str]) -> str:
     return "did you mean " + " or ".join(close) + "?" if close else ""
 
 

@@ -8,7 +8,7 @@ from __future__ import annotations
 
 from collections.abc import Iterable
 
-from calcreport.core.problems import Problems, listed, meant
+from calcreport.core.problems import Problems, listed
 from calcreport.core.source import Span
 from calcreport.read.nodes import Mapping, Node, Scalar, Sequence, Told
 
@@ -32,7 +32,7 @@ class Fields:
                     "unknown-key", key.span, f"{what} has no key `{key.text[:40]}`",
                     expected=listed(keys), found=key.text[:40], hint=problems.near(key.text, keys),
                 )  # fmt: skip
-                self.mistaken.update(meant(key.text, keys))
+                self.mistaken.update(problems.close(key.text, keys))
 
     def node_of(self, key: str) -> Node | None:
         """Return the node under a key, or None where the key is missing or empty."""

@@ -32,6 +32,8 @@ _KNOWN: tuple[tuple[str, _Words], ...] = (
     ("mapping values are not allowed", _Words(
         "`: ` has no place here", "one key and its value on a line, keys of one mapping under one another",
         "text that holds `: ` needs quotes")),
+    ("find expected ':'", _Words("a key without its `: `", "`key: value`", "text of several lines needs quotes, or | after its key")),
+    ("nesting depth", _Words("brackets are nested too deeply", "a few levels")),
     ("tab character", _Words("a tab stands in the indent", "spaces", "replace tabs by spaces")),
     ("cannot start any token", _Words(
         "text cannot begin with this character", "a letter, a digit or a quote", "put the text in quotes")),

@@ -10,7 +10,7 @@ import re
 from dataclasses import dataclass
 from typing import TypeAlias
 
-from calcreport.core.problems import Problems, listed, meant
+from calcreport.core.problems import Problems, listed
 from calcreport.core.quantity import Amount, read_in_unit
 from calcreport.core.source import Span
 from calcreport.read.bars import BarTable, read_callout
@@ -60,7 +60,7 @@ class ValueReader:
                     "unknown-given", key.span, f"{what} takes no `{key.text[:40]}`",
                     expected=listed(known), found=key.text[:40], hint=self.problems.near(key.text, known),
                 )  # fmt: skip
-                mistaken.update(meant(key.text, known))
+                mistaken.update(self.problems.close(key.text, known))
         found = [self.one(given, node, what, told=given.name in mistaken) for given in givens]
         return tuple(value for value in found if value is not None)
 
@@ -209,7 +209,7 @@ class ValueReader:
         if given.property in properties and scalar is None:
             return None
         if scalar is None:
-            near = meant(given.property, properties)
+            near = self.problems.close(given.property, properties)
             self.problems.add(
                 "missing-value", mark.span, f"the material `{mark.text[:40]}` has no `{given.property}`",
                 expected=_wanted(given), found=", ".join(properties) or "no properties",

@@ -31,8 +31,8 @@ class Composed:
     scripts: dict[str, Script]
 
 
-def compose(project: WorkedProject, progress: Callable[[int, int], None]) -> Composed:
-    """Compose the package."""
+def compose(project: WorkedProject, progress: Callable[[int, int], None], evidence: tuple[str, ...] = ()) -> Composed:
+    """Compose the package; `evidence` is what the disclosure says of the second path."""
     scripts = {worked.calculation.mark: write_script(worked) for worked in project.calculations}
     forms = find_forms(project)
     entries = fronts.register(project, scripts)
@@ -47,7 +47,7 @@ def compose(project: WorkedProject, progress: Callable[[int, int], None]) -> Com
         parts.append(_calculation(project, worked, scripts[mark], blocks))
         progress(done, len(project.calculations))
     sheets = SummarySheets(project, forms, scripts).blocks(summary, entries)
-    report = _report(project, summary, tuple(parts), sheets, fronts.assumptions(entries))
+    report = _report(project, summary, tuple(parts), sheets, fronts.assumptions(entries), evidence)
     return Composed(report, summary, forms, scripts)
 
 
@@ -57,6 +57,7 @@ def _report(
     calculations: tuple[Part, ...],
     summary_blocks: tuple[Block, ...],
     register: tuple[Block, ...],
+    evidence: tuple[str, ...],
 ) -> Report:
     facts = project.project
     loud = bool(summary.failed or summary.not_evaluated)
@@ -73,7 +74,7 @@ def _report(
     ]
     back = [
         _front(project, "A", "Appendix A: input echo", fronts.echo(facts.files), "appendix"),
-        _front(project, "B", "Appendix B: program disclosure", fronts.disclosure(project), "appendix"),
+        _front(project, "B", "Appendix B: program disclosure", fronts.disclosure(project, evidence), "appendix"),
     ]
     title = "Revision record and index"
     index = Part("INDEX", title, "index", _facts(project, title), fronts.revisions(project))

@@ -222,7 +222,7 @@ def _kept(text: str) -> str:
     return "\N{NO-BREAK SPACE}" * (len(text.expandtabs(4)) - len(bare)) + bare
 
 
-def disclosure(project: WorkedProject) -> tuple[Block, ...]:
+def disclosure(project: WorkedProject, evidence: tuple[str, ...]) -> tuple[Block, ...]:
     """Return the program disclosure: what computed this, from what, with which evidence and limits."""
     templates = {worked.calculation.template.name: worked for worked in project.calculations}
     columns = (
@@ -266,5 +266,8 @@ def disclosure(project: WorkedProject) -> tuple[Block, ...]:
         ),
     )
     blocks: list[Block] = [Paragraph((Strong(head), text), "plain") for head, text in paragraphs]
+    if evidence:
+        blocks.append(Paragraph((Strong("Second path. "), evidence[0]), "plain"))
+        blocks += [Paragraph((words,), "caution") for words in evidence[1:]]
     blocks += [Heading("Templates used", 2), Table(columns, tuple(rows))]
     return tuple(blocks)

@@ -45,6 +45,16 @@ class Agreement:
     largest: float
     differences: tuple[Difference, ...]
 
+    @property
+    def words(self) -> tuple[str, ...]:
+        """What a disclosure says of it: the count and the largest difference, then every line that differs."""
+        first = (
+            f"{self.values} values and {self.verdicts} verdicts were worked again from the project file's own spellings, "
+            "in thirty-digit arithmetic with quantities and another library's unit factors; only the formulas are shared. "
+            f"Largest relative difference {self.largest:.1e}; {len(self.differences)} differ by more than {WITHIN:.0e}."
+        )
+        return (first, *(f"{d.name}: {d.first} by the first path, {d.second} by the second." for d in self.differences))
+
 
 def compare_paths(project: WorkedProject, make: Quantities | None = None) -> Agreement:
     """Work every calculation again and compare; `make` saves loading the libraries anew."""

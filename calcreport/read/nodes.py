@@ -120,9 +120,7 @@ class _Reader:
     def span(self, event: yaml.Event) -> Span:
         first, last = event.start_mark, event.end_mark
         assert first is not None and last is not None
-        start = self.source.line_start(first.line + 1) + first.column
-        end = self.source.line_start(last.line + 1) + last.column
-        return Span(self.source, start, max(min(end, len(self.source.text)), start))
+        return Span(self.source, first.index, max(min(last.index, len(self.source.text)), first.index))
 
     def stop(
         self, slug: str, event: yaml.Event, message: str, expected: str, found: str, hint: str = ""

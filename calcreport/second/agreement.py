@@ -51,9 +51,18 @@ class Agreement:
         first = (
             f"{self.values} values and {self.verdicts} verdicts were worked again from the project file's own spellings, "
             "in thirty-digit arithmetic with quantities and another library's unit factors; only the formulas are shared. "
-            f"Largest relative difference {self.largest:.1e}; {len(self.differences)} differ by more than {WITHIN:.0e}."
+            f"Largest relative difference {_power_of_ten(self.largest)}; "
+            f"{len(self.differences) or 'none'} beyond one part in 1,000,000,000."
         )
         return (first, *(f"{d.name}: {d.first} by the first path, {d.second} by the second." for d in self.differences))
+
+
+def _power_of_ten(value: float) -> str:
+    """Return '2.3 × 10^-15' for a small number, '0' for none."""
+    if value == 0:
+        return "0"
+    mantissa, _, power = f"{value:.1e}".partition("e")
+    return f"{mantissa} × 10^{int(power)}"
 
 
 def compare_paths(project: WorkedProject, make: Quantities | None = None) -> Agreement:

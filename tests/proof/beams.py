@@ -122,8 +122,8 @@ def _section(system: System, draw: Random, place: int, width: float, depth: floa
     """Give steel between 0.4 and 1.3 % of the section, so that every layer yields."""
     grade = draw.randrange(len(system.bars))
     wanted = width * depth * draw.uniform(0.004, 0.0105)
-    sized = [(size, area) for size, area in system.sizes if 2 <= wanted / area <= 9] or [system.sizes[0]]
-    size, area = draw.choice(sized)
+    sized = [(size, area) for size, area in system.sizes if 2 <= wanted / area <= 9]
+    size, area = draw.choice(sized) if sized else system.sizes[-1]
     count = max(2, round(wanted / area))
     rows = (count - count // 3, count // 3) if count >= 6 and draw.random() < 0.5 else (count,)
     names = ("first", "second")

@@ -57,7 +57,8 @@ def read_face(font: Any) -> Face:
 
 
 def _text(digits: bytes) -> str:
-    return bytes.fromhex(digits.decode()).decode("utf-16-be")
+    """Return the text a code stands for; a blank that does not break is a blank."""
+    return bytes.fromhex(digits.decode()).decode("utf-16-be").replace("\xa0", " ")
 
 
 def _to_unicode(data: bytes) -> dict[int, str]:

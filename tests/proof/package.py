@@ -15,7 +15,7 @@ from typing import Any
 from pypdf import PdfReader
 
 from .calculations import Calculation, assemble
-from .glyphs import PageInk, Reader
+from .glyphs import Glyph, PageInk, Reader
 from .pieces import spaced
 from .sheets import Frame, SheetPage, find_frame, read_sheet, sheet_name
 from .tables import Table, find_tables
@@ -91,13 +91,17 @@ def page_text(ink: PageInk) -> str:
 
 
 def _links(page: Any, ink: PageInk, numbers: dict[int, int], kinds: Counter[str]) -> Iterator[Link]:
+    shelves: dict[int, list[Glyph]] = defaultdict(list)
+    for glyph in ink.glyphs:
+        shelves[int(glyph.y // 10)].append(glyph)
     for reference in page.get("/Annots", []):
         annotation = reference.get_object()
         kinds[annotation["/Subtype"]] += 1
         if annotation["/Subtype"] != "/Link":
             continue
         x0, y0, x1, y1 = (float(v) for v in annotation["/Rect"])
-        inside = [g for g in ink.glyphs if x0 - 0.5 <= (g.left + g.right) / 2 <= x1 + 0.5 and y0 - 0.5 <= g.y <= y1 + 0.5]
+        near = [g for shelf in range(int(y0 // 10), int(y1 // 10) + 1) for g in shelves[shelf]]
+        inside = [g for g in near if x0 - 0.5 <= (g.left + g.right) / 2 <= x1 + 0.5 and y0 - 0.5 <= g.y <= y1 + 0.5]
         target = annotation.get("/Dest") or annotation["/A"]["/D"]
         top = float(target[3]) if target[1] == "/XYZ" and target[3] is not None else None
         yield Link(spaced(inside).strip(), x0, y0, numbers[target[0].idnum], top)

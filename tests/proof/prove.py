@@ -1,0 +1,85 @@
+"""A project built through the command line and its package proved.
+
+In: a project folder or file. Out: `Proof`, all that the tests look at, small enough to hand between processes.
+"""
+
+from __future__ import annotations
+
+import os
+import shutil
+import subprocess
+import sys
+from dataclasses import dataclass, field
+from pathlib import Path
+
+from .account import Account, Finding
+from .claims import examine
+from .marks import marks
+from .numbering import numbering
+from .order import out_of_order
+from .package import Package, read_package
+
+ROOT = Path(__file__).resolve().parents[2]
+
+
+@dataclass(slots=True)
+class Proof:
+    """What was found in one package."""
+
+    name: str
+    path: Path
+    #: exit code and words of the build
+    code: int
+    said: str
+    account: Account = field(default_factory=Account)
+    numbering: list[Finding] = field(default_factory=list)
+    marks: list[Finding] = field(default_factory=list)
+    #: text out of order, by the program that took it out
+    order: dict[str, list[str]] = field(default_factory=dict)
+    sheets: int = 0
+
+
+def build(project: Path, target: Path) -> subprocess.CompletedProcess[str]:
+    """Build a package through the command line."""
+    command = [sys.executable, "-m", "calcreport", "build", str(project), "-o", str(target)]
+    surroundings = os.environ | {"PYTHONPATH": str(ROOT)}
+    return subprocess.run(command, cwd=ROOT, env=surroundings, capture_output=True, text=True, check=False)
+
+
+def prove(name: str, project: Path, target: Path, most_pages: int) -> Proof:
+    """Build a project and prove its package; text is taken out of the first pages only."""
+    built = build(project, target)
+    proof = Proof(name, target, built.returncode, built.stdout + built.stderr)
+    if built.returncode in (0, 1) and target.exists():
+        look(proof, read_package(target), most_pages)
+    return proof
+
+
+def look(proof: Proof, package: Package, most_pages: int) -> None:
+    """Judge a package."""
+    proof.sheets = len(package.sheets)
+    for calculation in package.calculations:
+        proof.account.add(examine(calculation))
+    proof.numbering, proof.marks = numbering(package), marks(package)
+    wanted = package.sheets[:most_pages]
+    proof.order["pypdf"] = [
+        f"{sheet.name} {text}"
+        for sheet in wanted
+        for text in out_of_order(package.reader.pages[sheet.index].extract_text(), sheet.lines, sheet.index)
+    ]
+    texts = _pdftotext(package.path)
+    if texts is not None:
+        proof.order["pdftotext"] = [
+            f"{sheet.name} {text}"
+            for sheet in package.sheets
+            for text in out_of_order(texts[sheet.index], sheet.lines, sheet.index)
+        ]
+
+
+def _pdftotext(path: Path) -> list[str] | None:
+    """Return the text of every page in the order of its content, as poppler takes it out; None without poppler."""
+    program = shutil.which("pdftotext")
+    if program is None:
+        return None
+    done = subprocess.run([program, "-raw", str(path), "-"], capture_output=True, text=True, check=True)
+    return done.stdout.split("\f")

@@ -9,7 +9,7 @@ import math
 from collections.abc import Callable
 
 from calcreport.calculate.exact import holds_exactly
-from calcreport.calculate.model import Test, Values, Work
+from calcreport.calculate.model import NoValue, Test, Values, Work
 from calcreport.core.expression import (
     Attach,
     Binary,
@@ -30,10 +30,6 @@ from calcreport.core.expression import (
 
 #: two sides closer than this (relative) are compared exactly
 TIE = 1e-9
-
-
-class NoValue(ArithmeticError):
-    """A formula has no value here; the words say why."""
 
 
 def formula(node: Expression, sets: tuple[tuple[int, ...], ...]) -> Work:
@@ -157,6 +153,7 @@ def _over(node: Over, sets: tuple[tuple[int, ...], ...]) -> Work:
     def found(values: Values) -> list[float]:
         before = values.open[index]
         kept: list[float] = []
+        values.spend(len(values.row_names(index)))
         for row in range(len(values.row_names(index))):
             values.open[index] = row
             if where is None or where(values):
@@ -189,6 +186,7 @@ def _linear(node: Over, where: Compare, body: Work, otherwise: Work | None, sets
     def work(values: Values) -> float:
         before, place = values.open[index], at(values)
         points: list[tuple[float, float]] = []
+        values.spend(len(values.row_names(index)))
         for row in range(len(values.row_names(index))):
             values.open[index] = row
             points.append((x(values), body(values)))

@@ -9,11 +9,12 @@ from __future__ import annotations
 import math
 from dataclasses import dataclass
 
-from calcreport.calculate.compile import NoValue, condition, formula, holds
+from calcreport.calculate.compile import condition, formula, holds
 from calcreport.calculate.model import (
     Calculation,
     Comparison,
     Kind,
+    NoValue,
     Plan,
     PlannedBranches,
     PlannedCheck,
@@ -47,6 +48,8 @@ from calcreport.core.source import Citation, Span
 
 #: rows of one set at most
 MOST_ROWS = 1000
+#: what a line costs beside one row that a formula goes through
+_LINE_COST = 8
 
 
 class _Stopped(Exception):
@@ -173,6 +176,10 @@ class _Run:
         return tuple(kept)
 
     def line(self, line: PlannedLine) -> WorkedLine | None:
+        try:
+            self.values.spend(_LINE_COST)
+        except NoValue as error:
+            raise _Stopped(Stop(line.span, str(error), "")) from error
         match line:
             case PlannedGives():
                 return self.gives(line)

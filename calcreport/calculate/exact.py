@@ -8,7 +8,7 @@ from __future__ import annotations
 import math
 from fractions import Fraction
 
-from calcreport.calculate.model import Key, Values
+from calcreport.calculate.model import Key, NoValue, Values
 from calcreport.core.expression import (
     Attach,
     Binary,
@@ -31,6 +31,8 @@ from calcreport.core.late import load
 DIGITS = 60
 _SCALE = 10**DIGITS
 _EQUAL = Fraction(1, 10**40)
+#: transcendental values below two to minus this are carried as if they were that small, not smaller
+_SMALLEST_BITS = 20_000
 #: fractions longer than this many bits are cut to 120 digits, far beyond what a comparison looks at
 _LONGEST_BITS = 4000
 
@@ -90,6 +92,14 @@ def worked_slot(slot: int, key: Key, values: Values) -> Fraction:
     return known
 
 
+def exact_or_float(slot: int, key: Key, values: Values) -> Fraction:
+    """Return the exact value of a slot that holds a number, or its binary form where the exact one does not exist."""
+    try:
+        return worked_slot(slot, key, values)
+    except NoValue:
+        return Fraction(values.number(slot, key))
+
+
 def _binary(op: str, left: Fraction, right: Fraction) -> Fraction:
     match op:
         case "+":
@@ -99,12 +109,16 @@ def _binary(op: str, left: Fraction, right: Fraction) -> Fraction:
         case "*":
             return left * right
         case "/":
+            if right == 0:
+                raise NoValue("division by zero")
             return left / right
         case _:
             return _power(left, right)
 
 
 def _power(base: Fraction, exponent: Fraction) -> Fraction:
+    if base == 0 and exponent < 0:
+        raise NoValue("division by zero")
     if exponent.denominator == 1 and abs(exponent) <= 64:
         return base ** int(exponent)
     if exponent.denominator == 2 and abs(exponent) <= 64:
@@ -114,6 +128,8 @@ def _power(base: Fraction, exponent: Fraction) -> Fraction:
 
 def _root(value: Fraction) -> Fraction:
     """Return a square root: exact where the value is a square, else to sixty digits and more."""
+    if value < 0:
+        raise NoValue("root of a negative value")
     above, below = math.isqrt(value.numerator), math.isqrt(value.denominator)
     if above * above == value.numerator and below * below == value.denominator:
         return Fraction(above, below)
@@ -130,6 +146,8 @@ def _call(function: str, inner: list[Fraction]) -> Fraction:
             return abs(inner[0])
         case "sqrt":
             return _root(inner[0])
+        case "roundup" | "rounddown" if inner[1] <= 0:
+            raise NoValue("rounding to a step that is not positive")
         case "roundup":
             return math.ceil(inner[0] / inner[1]) * inner[1]
         case "rounddown":
@@ -145,7 +163,8 @@ def _irrational(function: str, *inner: Fraction) -> Fraction:
         numbers = [mpmath.mpf(x.numerator) / x.denominator for x in inner]
         found = getattr(mpmath, function)(*numbers)
         sign, mantissa, exponent, _ = found._mpf_
-        value = Fraction(int(mantissa)) * Fraction(2) ** int(exponent)
+        # a hostile exponent must not become a fraction of as many bits
+        value = Fraction(int(mantissa)) * Fraction(2) ** max(int(exponent), -_SMALLEST_BITS)
         return -value if sign else value
 
 

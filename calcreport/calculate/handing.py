@@ -8,7 +8,7 @@ from __future__ import annotations
 import re
 from fractions import Fraction
 
-from calcreport.calculate.exact import worked_slot
+from calcreport.calculate.exact import exact_or_float
 from calcreport.calculate.model import (
     BarCallout,
     Calculation,
@@ -135,7 +135,7 @@ class _Hander:
             return
         value = source.values.get(*place)
         if isinstance(value, float):
-            self.exact(slot, key, worked_slot(*place, source.values))
+            self.exact(slot, key, exact_or_float(*place, source.values))
             self.store(slot, key, value)
         else:
             self.store(slot, key, value)

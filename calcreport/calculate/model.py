@@ -49,6 +49,14 @@ Kind: TypeAlias = Literal["demand / capacity", "required / provided", "ratio", "
 Verdict: TypeAlias = Literal["OK", "NG", "not evaluated", "not applicable"]
 
 
+#: rows that the formulas of one calculation may go through, lines counted as some: a bound against hostile templates
+MOST_WORK = 1_500_000
+
+
+class NoValue(ArithmeticError):
+    """A formula has no value here; the words say why."""
+
+
 @dataclass(slots=True)
 class Values:
     """The values of one calculation by slot: base units for quantities, text for words, None for absent."""
@@ -71,6 +79,14 @@ class Values:
     worked: dict[tuple[int, Key], Expression] = field(default_factory=dict)
     #: exact values already worked again
     exact: dict[tuple[int, Key], Fraction] = field(default_factory=dict)
+    #: work done so far
+    spent: int = 0
+
+    def spend(self, work: int) -> None:
+        """Count work; raises `NoValue` beyond the bound."""
+        self.spent += work
+        if self.spent > MOST_WORK:
+            raise NoValue("more rows than one calculation may go through")
 
     def key(self, slot: int) -> Key:
         """Return the key of a slot's open row."""
@@ -271,6 +287,7 @@ __all__ = [
     "Inputs",
     "Key",
     "LinkedValue",
+    "NoValue",
     "Plan",
     "PlannedArm",
     "PlannedBranches",

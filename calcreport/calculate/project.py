@@ -10,7 +10,7 @@ import hashlib
 from collections.abc import Callable
 
 from calcreport.calculate.evaluate import Program
-from calcreport.calculate.exact import worked_slot
+from calcreport.calculate.exact import exact_or_float
 from calcreport.calculate.handing import find_path, hand_values
 from calcreport.calculate.model import (
     BarCallout,
@@ -173,7 +173,7 @@ def _fits(
             found=dimension_words(symbol.unit.dimension),
         )
         return False
-    exact = worked_slot(*place, source.values)
+    exact = exact_or_float(*place, source.values)
     if wanted.kind == "count" and (exact < 0 or exact.denominator != 1):
         problems.add("not-a-number", link.span, f"`{given.name}` is a count", expected="a whole number, 0 or more", found=name)
         return False

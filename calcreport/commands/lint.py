@@ -7,12 +7,15 @@ import os
 from argparse import Namespace
 from pathlib import Path
 
-from calcreport.commands.desk import open_project, say_problems
+from calcreport.commands.desk import one_problem, open_project, say_problems
+from calcreport.core.problems import Problems
 from calcreport.core.source import Source
 from calcreport.driver import lint_template, work
 from calcreport.filesystem import Disk, library_folder, read_text
+from calcreport.read.nodes import Mapping, read_tree
 
 #: keys that only a template, and only a project, has at its left margin
+_HEADER = ("project", "office", "codes", "status", "revisions")
 _TEMPLATE, _PROJECT = ("template:", "lines:", "given:"), ("calculations:", "project:", "office:")
 
 
@@ -24,6 +27,14 @@ def run(arguments: Namespace) -> int:
     opened = open_project(arguments.file)
     if isinstance(opened, tuple):
         return say_problems(opened, arguments.json)
+    if not os.path.isdir(arguments.file) and _is_neither(opened.source):
+        return say_problems(
+            one_problem("wrong-shape", f"{arguments.file} is neither a project nor a template",
+                        "a project file, a template file, or a template's name",
+                        "neither `project:` nor `template:` at the left margin",
+                        "an included file is read with the project that includes it"),
+            arguments.json,
+        )  # fmt: skip
     result = work(opened.world, opened.source)
     if result.problems:
         return say_problems(result.problems, arguments.json)
@@ -58,6 +69,12 @@ def _template_name(file: str) -> tuple[Disk, str] | None:
 def _is_template(text: str) -> bool:
     lines = text.split("\n")
     return any(line.startswith(_TEMPLATE) for line in lines) and not any(line.startswith(_PROJECT) for line in lines)
+
+
+def _is_neither(source: Source) -> bool:
+    """Tell whether a file is well formed and yet has none of a project's own keys: an included file, a notation."""
+    tree = read_tree(source, Problems())
+    return isinstance(tree, Mapping) and bool(tree.entries) and not any(tree.get(key) for key in _HEADER)
 
 
 def _template(disk: Disk, name: str, *, as_json: bool) -> int:

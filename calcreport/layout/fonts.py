@@ -9,11 +9,11 @@ from the formula face one by one. Knows no lines, no paragraphs and no formulas.
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
 from importlib.machinery import PathFinder, SourceFileLoader
 from itertools import pairwise
 
 from calcreport.core.fontfile import FontFile
+from calcreport.core.record import record
 from calcreport.layout.mathtable import MathTable
 from calcreport.layout.model import Box, Face, Run
 from calcreport.layout.opentype import Kerning, substitutes
@@ -28,7 +28,7 @@ _PLACES: dict[Face, tuple[str, str]] = {
 #: extents of a line of words in thousandths of the size: tallest ascender and lowest descender of the faces
 _ASCENT, _DESCENT = 750, 250
 #: words kept with their glyphs before the store is emptied
-_KEPT = 20_000
+_KEPT = 4_000
 
 
 def _mathematical_italics() -> dict[str, str]:
@@ -72,7 +72,7 @@ class _Characters(dict[str, int]):
         return found
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class _Piece:
     """Glyphs of one face; lengths in thousandths of the size."""
 
@@ -83,7 +83,7 @@ class _Piece:
     shifts: tuple[int, ...]
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Manner:
     """How words are set."""
 
@@ -178,8 +178,9 @@ class Fonts:
         width = sum([advances[g] for g in glyphs])
         shifts: tuple[int, ...] = ()
         if manner.kern or manner.tracking:
-            between = self.kerning[face].between if manner.kern else _nothing
-            shifts = tuple([between(a, b) + manner.tracking for a, b in pairwise(glyphs)])
+            kerning = self.kerning[face]
+            between = [kerning[pair] for pair in pairwise(glyphs)] if manner.kern else [0] * (len(glyphs) - 1)
+            shifts = tuple([shift + manner.tracking for shift in between] if manner.tracking else between)
             # the last glyph keeps its plain advance, so widths of words add up with the spaces between them
             shifts = (*shifts, 0) if any(shifts) else ()
             width += sum(shifts)
@@ -194,11 +195,6 @@ class Fonts:
         if found is None:
             found = self._capitals[face] = substitutes(self.files[face], "smcp")
         return found
-
-
-def _nothing(left: int, right: int) -> int:
-    """Stand for kerning where none is wanted."""
-    return 0
 
 
 def installed_fonts() -> Fonts:

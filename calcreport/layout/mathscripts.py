@@ -6,8 +6,7 @@ Method: the published OpenType specification, chapter MATH (constants, MathKernI
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-
+from calcreport.core.record import record
 from calcreport.layout.mathstyle import Nucleus, Style
 from calcreport.layout.mathtable import Corner
 from calcreport.layout.model import Box, Item, Placed
@@ -16,7 +15,7 @@ from calcreport.layout.model import Box, Item, Placed
 _ARM = 60
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Scripted:
     """A script as a box, with its first glyph where it is letters, else 0."""
 

@@ -8,10 +8,10 @@ scaled to points. In: characters. Out: boxes, kept for as long as the style live
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import dataclass
 from itertools import pairwise
 from typing import Literal, TypeAlias
 
+from calcreport.core.record import record
 from calcreport.layout.fonts import Fonts
 from calcreport.layout.model import Box, Run
 
@@ -34,7 +34,7 @@ _SIGNS = {"-": "−"}
 _Figures: TypeAlias = tuple[int, int, int, int]
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Nucleus:
     """Letters set on their own, and what scripts beside them need to know."""
 
@@ -191,8 +191,8 @@ class Style:
         shifts: tuple[int, ...] = ()
         # numbers have no pairs to kern, and the face has no kerning for its script forms
         if not italic and not self.level and text[0].isalpha() and len(text) > 1:
-            between = self.fonts.kerning["math"].between
-            shifts = (*(between(a, b) for a, b in pairwise(glyphs)), 0)
+            kerning = self.fonts.kerning["math"]
+            shifts = (*(kerning[pair] for pair in pairwise(glyphs)), 0)
             width += sum(shifts)
             shifts = shifts if any(shifts) else ()
         lean = self.fonts.math.italics(glyphs[-1]) if italic else 0

@@ -8,11 +8,11 @@ Layout of the table: the published OpenType specification, chapter MATH (ISO/IEC
 from __future__ import annotations
 
 from bisect import bisect_right
-from dataclasses import dataclass
 from struct import unpack_from
 from typing import Literal, TypeAlias
 
 from calcreport.core.fontfile import FontFile
+from calcreport.core.record import record
 from calcreport.layout.opentype import coverage, substitutes
 
 Corner: TypeAlias = Literal["top_right", "top_left", "bottom_right", "bottom_left"]
@@ -41,7 +41,7 @@ _RECORDS = (
 # fmt: on
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Part:
     """One piece of a delimiter put together from pieces, bottom to top; lengths in font units."""
 

@@ -97,25 +97,21 @@ def substitutes(font: FontFile, feature: str, script: bytes = b"DFLT") -> dict[i
     return found
 
 
-class Kerning:
-    """Distances to add between two glyphs, in font units."""
+class Kerning(dict[tuple[int, int], int]):
+    """Distances to add between two glyphs, in font units, by pairs; 0 for most; a pair is looked up on first use."""
 
-    __slots__ = ("_classes", "_covered", "_font", "_pairs", "_places")
+    __slots__ = ("_classes", "_covered", "_font", "_places")
 
     def __init__(self, font: FontFile) -> None:
         """Take a font; its pair tables are read when a first pair needs them."""
+        super().__init__()
         self._font = font
         self._places: tuple[int, ...] | None = None
         self._covered: dict[int, dict[int, int]] = {}
         self._classes: dict[int, tuple[_Classes, _Classes]] = {}
-        self._pairs: dict[tuple[int, int], int] = {}
 
-    def between(self, left: int, right: int) -> int:
-        """Give the distance to add between two neighbours, 0 for most."""
-        pair = (left, right)
-        found = self._pairs.get(pair)
-        if found is None:
-            found = self._pairs[pair] = self._find(left, right)
+    def __missing__(self, pair: tuple[int, int]) -> int:
+        found = self[pair] = self._find(*pair)
         return found
 
     def _find(self, left: int, right: int) -> int:

@@ -9,9 +9,9 @@ Knows no fonts beyond their names in the page resources.
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from typing import TypeAlias
 
+from calcreport.core.record import record
 from calcreport.layout.model import Anchor, Box, Circle, Face, Item, Link, Placed, Run, Stroke
 from calcreport.output.syntax import Numbers, number
 
@@ -22,16 +22,20 @@ SILENT = "\u200b"
 #: control points of a quarter circle of radius 1: 4 (sqrt 2 - 1) / 3
 _ARC = 0.5522847498
 
+#: boxes, strings and numbers kept as written before a store is emptied: those of some thirty sheets
+_KEPT = 5000
+
 _Shape: TypeAlias = Stroke | Circle | Link | Anchor
 
 
-#: the bytes of a box about its own origin; lengths in hundredths of a point, y upwards:
-#: strings with the moves between them (b'' when it has no text); where the first string starts; the font it
-#: needs; the font the last leaves set; the line origin after it; all that is not text, with its offset
-_Fragment: TypeAlias = tuple[bytes, int, int, bytes, bytes, int, int, tuple[tuple[int, int, _Shape], ...]]
+#: the content of a box about its own origin; lengths in hundredths of a point, y upwards:
+#: strings with the moves between them ('' when it has no text); where the first string starts; the font it
+#: needs; the font the last leaves set; the line origin after it; all that is not text, with its offset; and
+#: the box itself, so that nothing else takes its identity while it is kept
+_Fragment: TypeAlias = tuple[str, int, int, str, str, int, int, tuple[tuple[int, int, _Shape], ...], Box]
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Area:
     """A link's area on the page, in points, y upwards."""
 
@@ -42,7 +46,7 @@ class Area:
     target: str
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Content:
     """One content stream of a page with what it holds besides ink."""
 
@@ -53,25 +57,29 @@ class Content:
 
 
 class ContentWriter:
-    """Writes the content of pages; keeps the bytes of boxes and which glyphs stand for what text."""
+    """Writes the content of pages; keeps the content of boxes and which glyphs stand for what text."""
 
     def __init__(self) -> None:
         """Start with no glyphs used."""
         #: by face: glyph to the text it stands for
         self.used: dict[Face, dict[int, str]] = {face: {} for face in FONT_NAMES}
         self._numbers = Numbers()
-        self._strings: dict[tuple[Face, str, tuple[int, ...], tuple[int, ...]], bytes] = {}
-        self._fonts: dict[tuple[Face, float], bytes] = {}
+        self._codes = _Codes()
+        self._strings: dict[tuple[Face, str, tuple[int, ...], tuple[int, ...]], str] = {}
+        self._fonts: dict[tuple[Face, float], str] = {}
         self._fragments: dict[int, _Fragment] = {}
-        self._rings: dict[tuple[float, float, float | None], bytes] = {}
+        self._rings: dict[tuple[float, float, float | None], str] = {}
 
     def write(self, items: tuple[Item, ...], height: float) -> Content:
         """Write items of a page of a height in points."""
+        for store in (self._fragments, self._strings, self._numbers):
+            if len(store) > _KEPT:
+                store.clear()
         numbers, fragments, top = self._numbers, self._fragments, round(height * 100)
-        chunks: list[bytes] = []
+        chunks: list[str] = []
         links: list[Area] = []
         anchors: list[tuple[str, float, float]] = []
-        font = b""
+        font = ""
         for item in items:
             if type(item) is Run:
                 # most items of a page are runs: their only string needs no joining
@@ -81,48 +89,52 @@ class ContentWriter:
             else:
                 if type(item) is Placed:
                     left, base = round(item.x * 100), top - round(item.y * 100)
-                    text, dx, dy, first, last, _, _, shapes = fragments.get(id(item.box)) or self._fragment(
-                        item.box
-                    )
+                    part = fragments.get(id(item.box)) or self._fragment(item.box)
+                    text, dx, dy, first, last, _, _, shapes, _ = part
                     x, y = left + dx, base + dy
                 else:
-                    text, left, base, shapes = b"", 0, top, ((0, 0, item),)  # type: ignore[assignment]
+                    text, left, base, shapes = "", 0, top, ((0, 0, item),)  # type: ignore[assignment]
                 for dx, dy, shape in shapes:
-                    if isinstance(shape, Link):
-                        links.append(_area(shape, left + dx, base + dy))
-                    elif isinstance(shape, Anchor):
-                        anchors.append((shape.name, (left + dx) / 100 + shape.x, (base + dy) / 100 - shape.y))
-                    else:
+                    if type(shape) is Stroke or type(shape) is Circle:
                         chunks.append(self._shape(shape, left + dx, base + dy))
+                    elif type(shape) is Link:
+                        links.append(_area(shape, left + dx, base + dy))
+                    elif type(shape) is Anchor:
+                        anchors.append((shape.name, (left + dx) / 100 + shape.x, (base + dy) / 100 - shape.y))
                 if not text:
                     continue
-            setting = b"" if first == font else first
+            setting = "" if first == font else first
+            chunks.append(f"BT {numbers[x]} {numbers[y]} Td{setting}{text} ET\n")
             font = last
-            chunks += (b"BT ", numbers[x], b" ", numbers[y], b" Td", setting, text, b" ET\n")
-        return Content(b"".join(chunks), tuple(links), tuple(anchors))
+        return Content("".join(chunks).encode(), tuple(links), tuple(anchors))
 
     def _fragment(self, box: Box) -> _Fragment:
-        """Give the bytes of a box, kept for its next place."""
-        found = self._fragments[id(box)] = self._gather(box.items)
+        """Give the content of a box, kept for its next place."""
+        found = self._fragments[id(box)] = (*self._gather(box.items), box)
         return found
 
-    def _gather(self, items: tuple[Item, ...]) -> _Fragment:
-        """Join the bytes of items about a common origin."""
+    def _gather(
+        self, items: tuple[Item, ...]
+    ) -> tuple[str, int, int, str, str, int, int, tuple[tuple[int, int, _Shape], ...]]:
+        """Join the content of items about a common origin."""
         numbers, fragments = self._numbers, self._fragments
-        text: list[bytes] = []
+        text = ""
         shapes: list[tuple[int, int, _Shape]] = []
         whole_x = whole_y = line_x = line_y = 0
-        whole_first = font = b""
+        whole_first = font = ""
         for item in items:
             if type(item) is Placed:
                 part = fragments.get(id(item.box)) or self._fragment(item.box)
-                string, start_x, start_y, first, last, end_x, end_y, inner = part
+                string, start_x, start_y, first, last, end_x, end_y, inner, _ = part
                 x, y = round(item.x * 100), -round(item.y * 100)
                 if inner:
                     shapes += [(x + dx, y + dy, shape) for dx, dy, shape in inner]
                 if not string:
                     continue
-                start_x, start_y, end_x, end_y = x + start_x, y + start_y, x + end_x, y + end_y
+                start_x += x
+                start_y += y
+                end_x += x
+                end_y += y
             elif type(item) is Run:
                 start_x, start_y = end_x, end_y = round(item.x * 100), -round(item.y * 100)
                 first = last = self._font(item)
@@ -131,49 +143,38 @@ class ContentWriter:
                 shapes.append((0, 0, item))  # type: ignore[arg-type]
                 continue
             if text:
-                setting = b"" if first == font else first
-                text += (
-                    b" ",
-                    numbers[start_x - line_x],
-                    b" ",
-                    numbers[start_y - line_y],
-                    b" Td",
-                    setting,
-                    string,
-                )
+                setting = "" if first == font else first
+                text += f" {numbers[start_x - line_x]} {numbers[start_y - line_y]} Td{setting}{string}"
             else:
-                whole_x, whole_y, whole_first = start_x, start_y, first
-                text.append(string)
+                whole_x, whole_y, whole_first, text = start_x, start_y, first, string
             font, line_x, line_y = last, end_x, end_y
-        return b"".join(text), whole_x, whole_y, whole_first, font, line_x, line_y, tuple(shapes)
+        return text, whole_x, whole_y, whole_first, font, line_x, line_y, tuple(shapes)
 
-    def _font(self, run: Run) -> bytes:
+    def _font(self, run: Run) -> str:
         key = (run.face, run.size)
         found = self._fonts.get(key)
         if found is None:
-            found = self._fonts[key] = b"%b %b Tf" % (FONT_NAMES[run.face], number(run.size))
+            found = self._fonts[key] = f"{FONT_NAMES[run.face].decode()} {number(run.size).decode()} Tf"
         return found
 
-    def _string(self, run: Run) -> bytes:
+    def _string(self, run: Run) -> str:
         """Write the glyphs of a run, two bytes each, and note what text they stand for."""
         key = (run.face, run.text, run.glyphs, run.shifts)
         found = self._strings.get(key)
         if found is not None:
             return found
         self._note(run)
-        codes = [b"%04X" % glyph for glyph in run.glyphs]
+        codes = self._codes
         if any(run.shifts):
-            pieces = [b"<"]
-            for code, shift in zip(codes, run.shifts, strict=True):
-                pieces.append(code + (b">%d<" % -shift if shift else b""))
-            found = (
-                b"[" + b"".join(pieces).removesuffix(b"<") + (b">" if not run.shifts[-1] else b"") + b"]TJ"
-            )
+            pieces = ["<"]
+            for glyph, shift in zip(run.glyphs, run.shifts, strict=True):
+                pieces.append(f"{codes[glyph]}>{-shift}<" if shift else codes[glyph])
+            found = "[" + "".join(pieces).removesuffix("<") + (">" if not run.shifts[-1] else "") + "]TJ"
         else:
-            found = b"<" + b"".join(codes) + b">Tj"
+            found = f"<{''.join([codes[glyph] for glyph in run.glyphs])}>Tj"
         if run.text == SILENT:
             # the further pieces of a tall bracket are ink without text
-            found = b"/Span<</ActualText()>>BDC" + found + b" EMC"
+            found = f"/Span<</ActualText()>>BDC{found} EMC"
         self._strings[key] = found
         return found
 
@@ -185,24 +186,32 @@ class ContentWriter:
         used = self.used[run.face]
         texts = (run.text,) if len(run.glyphs) == 1 else run.text
         for glyph, text in zip(run.glyphs, texts, strict=True):
-            used[glyph] = min(text, used.get(glyph, text))
+            known = used.get(glyph)
+            if known is None or text < known:
+                used[glyph] = text
 
-    def _shape(self, shape: Stroke | Circle, x: int, y: int) -> bytes:
+    def _shape(self, shape: Stroke | Circle, x: int, y: int) -> str:
         """Draw a line, a polygon or a circle about an offset in hundredths."""
         numbers = self._numbers
-        if isinstance(shape, Circle):
-            center = numbers[x + round(shape.x * 100)], numbers[y - round(shape.y * 100)]
-            return b"q 1 0 0 1 %b %b cm %bQ\n" % (*center, self._ring(shape))
-        first, *rest = [
-            numbers[x + round(px * 100)] + b" " + numbers[y - round(py * 100)] for px, py in shape.points
-        ]
-        path = b"%b m %b l" % (first, b" l ".join(rest))
+        if type(shape) is Circle:
+            center = f"{numbers[x + round(shape.x * 100)]} {numbers[y - round(shape.y * 100)]}"
+            return f"q 1 0 0 1 {center} cm {self._ring(shape)}Q\n"
+        assert isinstance(shape, Stroke)
+        if len(shape.points) == 2 and shape.width and not (shape.closed or shape.dash):
+            # rules are by far the most of all lines
+            (px, py), (qx, qy) = shape.points
+            start = f"{numbers[x + round(px * 100)]} {numbers[y - round(py * 100)]}"
+            end = f"{numbers[x + round(qx * 100)]} {numbers[y - round(qy * 100)]}"
+            return f"{numbers[round(shape.width * 100)]} w {start} m {end} l S\n"
+        path = " l ".join(
+            [f"{numbers[x + round(px * 100)]} {numbers[y - round(py * 100)]}" for px, py in shape.points]
+        ).replace(" l ", " m ", 1)
+        painted = self._painted(f"{path} l", shape.width, shape.fill, shape.closed)
         if shape.dash:
-            dash = b" ".join(number(length) for length in shape.dash)
-            return b"[%b]0 d %b[]0 d\n" % (dash, self._painted(path, shape.width, shape.fill, shape.closed))
-        return self._painted(path, shape.width, shape.fill, shape.closed)
+            return f"[{' '.join(number(length).decode() for length in shape.dash)}]0 d {painted}[]0 d\n"
+        return painted
 
-    def _ring(self, circle: Circle) -> bytes:
+    def _ring(self, circle: Circle) -> str:
         """Draw a circle about the origin; circles of one size are written once."""
         key = (circle.radius, circle.width, circle.fill)
         found = self._rings.get(key)
@@ -210,29 +219,32 @@ class ContentWriter:
             found = self._rings[key] = self._painted(_circle(circle.radius), circle.width, circle.fill, True)
         return found
 
-    def _painted(self, path: bytes, width: float, fill: float | None, closed: bool) -> bytes:
+    def _painted(self, path: str, width: float, fill: float | None, closed: bool) -> str:
         """Stroke and fill a path; the fill goes back to black afterwards, for text."""
         if not width:
-            paint, pen = b" f" if fill is not None else b" n", b""
+            paint, pen = " f" if fill is not None else " n", ""
         else:
-            paint = b" b" if fill is not None else b" s" if closed else b" S"
-            pen = self._numbers[round(width * 100)] + b" w "
+            paint = " b" if fill is not None else " s" if closed else " S"
+            pen = f"{self._numbers[round(width * 100)]} w "
         if fill:
-            return pen + number(fill) + b" g " + path + paint + b" 0 g\n"
-        return pen + path + paint + b"\n"
+            return f"{pen}{number(fill).decode()} g {path}{paint} 0 g\n"
+        return f"{pen}{path}{paint}\n"
 
 
-def _circle(radius: float) -> bytes:
+class _Codes(dict[int, str]):
+    """Glyphs to four hexadecimal digits, made on first use."""
+
+    def __missing__(self, glyph: int) -> str:
+        found = self[glyph] = f"{glyph:04X}"
+        return found
+
+
+def _circle(radius: float) -> str:
     """Give the path of a circle about the origin as four curves."""
     r, k = radius, radius * _ARC
-    quarters = (
-        (r, k, k, r, 0.0, r),
-        (-k, r, -r, k, -r, 0.0),
-        (-r, -k, -k, -r, 0.0, -r),
-        (k, -r, r, -k, r, 0.0),
-    )
-    curves = b"".join(b" ".join(number(v) for v in quarter) + b" c " for quarter in quarters)
-    return number(r) + b" 0 m " + curves
+    quarters = ((r, k, k, r, 0.0, r), (-k, r, -r, k, -r, 0.0), (-r, -k, -k, -r, 0.0, -r), (k, -r, r, -k, r, 0.0))
+    curves = "".join(" ".join(number(v).decode() for v in quarter) + " c " for quarter in quarters)
+    return f"{number(r).decode()} 0 m {curves}"
 
 
 def _area(link: Link, x: int, y: int) -> Area:

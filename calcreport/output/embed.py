@@ -91,9 +91,7 @@ def _widths(font: FontFile, glyphs: list[int]) -> bytes:
         else:
             runs.append([glyph])
     scale = 1000 / font.units_per_em
-    return b" ".join(
-        b"%d[%b]" % (run[0], b" ".join(number(font.advance(g) * scale) for g in run)) for run in runs
-    )
+    return b" ".join(b"%d[%b]" % (run[0], b" ".join(number(font.advance(g) * scale) for g in run)) for run in runs)
 
 
 def subset(font: FontFile, glyphs: list[int]) -> bytes:
@@ -125,9 +123,7 @@ def subset(font: FontFile, glyphs: list[int]) -> bytes:
     tables["maxp"] = tables["maxp"][:4] + pack(">H", count) + tables["maxp"][6:]
     tables["hhea"] = tables["hhea"][:34] + pack(">H", count)
     # no sum yet, offsets of glyphs in four bytes
-    tables["head"] = (
-        tables["head"][:8] + bytes(4) + tables["head"][12:50] + pack(">h", 1) + tables["head"][52:]
-    )
+    tables["head"] = tables["head"][:8] + bytes(4) + tables["head"][12:50] + pack(">h", 1) + tables["head"][52:]
     return _font_file(tables)
 
 

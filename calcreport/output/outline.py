@@ -16,9 +16,7 @@ from calcreport.output.syntax import reference, text_string
 _ROOT = -1
 
 
-def outline_objects(
-    bookmarks: tuple[Bookmark, ...], root: int, place: Callable[[str], bytes]
-) -> tuple[bytes, ...]:
+def outline_objects(bookmarks: tuple[Bookmark, ...], root: int, place: Callable[[str], bytes]) -> tuple[bytes, ...]:
     """Write the root, which will have the number `root`, and one entry a bookmark, numbered on from it.
 
     ValueError when a bookmark lies more than one level below the one before.

@@ -1,28 +1,28 @@
 """Pages as PDF bytes: page objects, fonts, page labels, bookmarks, links, metadata, attached files.
 
 In: `layout.model.Pages` and the font files its glyphs come from. Out: the bytes of a PDF 1.7 file, the same
-for the same pages. Decides nothing: every place and every glyph is given. The numbering of objects and the
-cross-reference table are ReportLab's; the objects themselves are written here and in the modules beside.
+for the same pages. Decides nothing: every place and every glyph is given. A page is written when it is handed over and
+not kept; what it says of itself waits for the end: where links lead is known when all pages are there.
 Method: ISO 32000-1.
 """
 
 from __future__ import annotations
 
 from collections.abc import Iterable, Mapping
-from dataclasses import dataclass
-
-from reportlab.pdfbase import pdfdoc  # type: ignore[import-untyped]
+from sys import intern
 
 from calcreport.core.fontfile import FontFile
+from calcreport.core.record import record
 from calcreport.layout.model import Face, Page, Pages
 from calcreport.output.content import FONT_NAMES, Area, ContentWriter
 from calcreport.output.embed import embed_font
+from calcreport.output.file import PdfFile
 from calcreport.output.metadata import information, xmp_packet
 from calcreport.output.outline import outline_objects
-from calcreport.output.syntax import name, number, reference, stream, string, text_string
+from calcreport.output.syntax import Numbers, name, number, reference, stream, string, text_string
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Attachment:
     """A file carried inside the PDF."""
 
@@ -35,77 +35,117 @@ class Attachment:
     description: str = ""
 
 
-class _File:
-    """Numbered objects, and the file made of them at the end."""
-
-    def __init__(self, language: str) -> None:
-        self._document = pdfdoc.PDFDocument(invariant=1, pdfVersion=(1, 7), lang=language)
-
-    @property
-    def next(self) -> int:
-        """The number the next object will have."""
-        return int(self._document.objectcounter) + 1
-
-    def reserve(self) -> int:
-        """Give the number of an object that follows later."""
-        number = self.next
-        self._document.Reference(b"null", f"object{number}")
-        return number
-
-    def put(self, number: int, data: bytes) -> None:
-        """Give a reserved object its bytes."""
-        self._document.idToObject[f"object{number}"] = data
-
-    def add(self, data: bytes) -> int:
-        """Add an object; give its number."""
-        number = self.reserve()
-        self.put(number, data)
-        return number
-
-    def mark(self, data: bytes) -> None:
-        """Let data decide, with all else marked, the identifier of the file."""
-        self._document.updateSignature(data)
-
-    def finish(self, catalog: int, info: int) -> bytes:
-        """Write the file; the two objects are its catalog and its information dictionary."""
-        self._document.Catalog = pdfdoc.PDFObjectReference(f"object{catalog}")
-        self._document.info = pdfdoc.PDFObjectReference(f"object{info}")
-        return bytes(self._document.format())
-
-
-def write_pdf(
-    pages: Pages, fonts: Mapping[Face, FontFile], attachments: tuple[Attachment, ...] = ()
-) -> bytes:
+def write_pdf(pages: Pages, fonts: Mapping[Face, FontFile], attachments: tuple[Attachment, ...] = ()) -> bytes:
     """Write all pages.
 
     ValueError when there are none, a link or bookmark leads nowhere, two anchors or two labels share a name,
     a bookmark skips a level, or the date is no ISO date.
     """
-    if not pages.pages:
-        raise ValueError("there are no pages to write")
-    file = _File(pages.language)
-    writer = ContentWriter()
-    info = _dictionary(information(pages))
-    file.mark(info)
-    tree, resources = file.reserve(), file.reserve()
-    numbers = [file.reserve() for _ in pages.pages]
-    sheets = [_sheet(file, writer, page, pages.height) for page in pages.pages]
-    places = _places(pages, numbers, sheets)
-    page = b"<</Type/Page/Parent %b/MediaBox[0 0 %b %b]/Resources %b/Contents[%%b]%%b>>" % (
-        reference(tree),
-        number(pages.width),
-        number(pages.height),
-        reference(resources),
-    )
-    for own, sheet in zip(numbers, sheets, strict=True):
-        links = b" ".join(reference(file.add(_link(area, places))) for area in sheet.links)
-        file.put(own, page % (_references(sheet.streams), b"/Annots[%b]" % links if links else b""))
-    file.put(tree, b"<</Type/Pages/Count %d/Kids[%b]>>" % (len(numbers), _references(numbers)))
-    file.put(resources, _resources(file, writer, fonts))
-    catalog = {"Type": b"/Catalog", "Pages": reference(tree), **_particulars(file, pages)}
-    catalog |= _names(file, pages, places, attachments)
-    catalog |= _outline(file, pages, places)
-    return file.finish(file.add(_dictionary(catalog)), file.add(info))
+    writer = PdfWriter(pages.width, pages.height)
+    for page in pages.pages:
+        writer.add(page)
+    return writer.finish(pages, fonts, attachments)
+
+
+@record
+class _Sheet:
+    """A page whose content is written: its number, references to its streams, and what lies on it besides ink."""
+
+    number: int
+    streams: bytes
+    #: corners of every link's area, and in the same order the name of the place it leads to
+    corners: tuple[bytes, ...]
+    targets: tuple[str, ...]
+    #: names of anchors, and in the same order their destinations
+    names: tuple[str, ...]
+    places: tuple[bytes, ...]
+
+
+class PdfWriter:
+    """Writes pages one after another, and at the end what binds them together."""
+
+    def __init__(self, width: float, height: float) -> None:
+        """Start a file of sheets of one size in points."""
+        self.width, self.height = width, height
+        self._file = PdfFile()
+        self._content = ContentWriter()
+        self._numbers = Numbers()
+        self._tree, self._resources = self._file.reserve(), self._file.reserve()
+        #: by label
+        self._sheets: dict[str, _Sheet] = {}
+
+    def add(self, page: Page) -> None:
+        """Write body and title block of a page as two streams; ValueError when another page has its label."""
+        if page.label in self._sheets:
+            raise ValueError(f"two pages have the same label {page.label!r}")
+        own = self._file.reserve()
+        body, block = (self._content.write(items, self.height) for items in (page.body, page.title_block))
+        streams = []
+        for content in (body, block):
+            self._file.mark(content.data)
+            streams.append(self._file.add(stream(content.data)))
+        areas, anchors = body.links + block.links, body.anchors + block.anchors
+        self._sheets[page.label] = _Sheet(
+            own,
+            _references(streams),
+            tuple([self._corners(area) for area in areas]),
+            # names come from many hands; kept once each
+            tuple([intern(area.target) for area in areas]),
+            tuple([intern(anchor) for anchor, _, _ in anchors]),
+            tuple([self._place(own, x, y) for _, x, y in anchors]),
+        )
+
+    def finish(self, pages: Pages, fonts: Mapping[Face, FontFile], attachments: tuple[Attachment, ...] = ()) -> bytes:
+        """Write what binds the pages added, in the order of `pages`; give the whole file.
+
+        ValueError when there are none, or as for `write_pdf`.
+        """
+        if not pages.pages:
+            raise ValueError("there are no pages to write")
+        file, places = self._file, _places(self._sheets, self.height)
+        sheets = [self._sheets[page.label] for page in pages.pages]
+        for sheet in sheets:
+            links = [
+                file.add(_link(corners, _found(places, target)))
+                for corners, target in zip(sheet.corners, sheet.targets, strict=True)
+            ]
+            file.put(sheet.number, self._page(sheet, _references(links)))
+        kids = _references(sheet.number for sheet in sheets)
+        file.put(self._tree, b"<</Type/Pages/Count %d/Kids[%b]>>" % (len(sheets), kids))
+        file.put(self._resources, _fonts(file, self._content, fonts))
+        info = _dictionary(information(pages))
+        file.mark(info)
+        catalog = {"Type": b"/Catalog", "Pages": reference(self._tree), **_particulars(file, pages)}
+        catalog |= _names(file, pages, places, attachments)
+        catalog |= _outline(file, pages, places)
+        return file.finish(file.add(_dictionary(catalog)), file.add(info))
+
+    def _page(self, sheet: _Sheet, links: bytes) -> bytes:
+        return b"<</Type/Page/Parent %b/MediaBox[0 0 %b %b]/Resources %b/Contents[%b]%b>>" % (
+            reference(self._tree),
+            number(self.width),
+            number(self.height),
+            reference(self._resources),
+            sheet.streams,
+            b"/Annots[%b]" % links if links else b"",
+        )
+
+    def _corners(self, area: Area) -> bytes:
+        """Write the corners of an area, to hundredths of a point."""
+        digits = self._numbers
+        left, bottom, right, top = area.left, area.bottom, area.right, area.top
+        corners = (
+            digits[round(left * 100)],
+            digits[round(bottom * 100)],
+            digits[round(right * 100)],
+            digits[round(top * 100)],
+        )
+        return " ".join(corners).encode()
+
+    def _place(self, own: int, x: float, y: float) -> bytes:
+        """Write the destination of an anchor, to hundredths of a point."""
+        digits = self._numbers
+        return f"[{own} 0 R/XYZ {digits[round(x * 100)]} {digits[round(y * 100)]} 0]".encode()
 
 
 def _dictionary(entries: Mapping[str, bytes]) -> bytes:
@@ -116,26 +156,7 @@ def _references(numbers: Iterable[int]) -> bytes:
     return b" ".join(map(reference, numbers))
 
 
-@dataclass(frozen=True, slots=True)
-class _Sheet:
-    """A page whose content is written: the numbers of its streams, and what lies on it besides ink."""
-
-    streams: tuple[int, ...]
-    links: tuple[Area, ...]
-    anchors: tuple[tuple[str, float, float], ...]
-
-
-def _sheet(file: _File, writer: ContentWriter, page: Page, height: float) -> _Sheet:
-    """Write the body and the title block of a page as two streams."""
-    parts = writer.write(page.body, height), writer.write(page.title_block, height)
-    for content in parts:
-        file.mark(content.data)
-    streams = tuple(file.add(stream(content.data)) for content in parts)
-    body, block = parts
-    return _Sheet(streams, body.links + block.links, body.anchors + block.anchors)
-
-
-def _particulars(file: _File, pages: Pages) -> dict[str, bytes]:
+def _particulars(file: PdfFile, pages: Pages) -> dict[str, bytes]:
     """Write the catalog's entries on language, metadata, page labels and how the file opens."""
     packet = stream(xmp_packet(pages), b"/Type/Metadata/Subtype/XML", compress=False)
     labels = (b"%d<</P%b>>" % (i, text_string(page.label)) for i, page in enumerate(pages.pages))
@@ -148,51 +169,41 @@ def _particulars(file: _File, pages: Pages) -> dict[str, bytes]:
     }
 
 
-def _outline(file: _File, pages: Pages, places: Mapping[str, bytes]) -> dict[str, bytes]:
+def _outline(file: PdfFile, pages: Pages, places: Mapping[str, bytes]) -> dict[str, bytes]:
     """Write the bookmarks."""
     if not pages.bookmarks:
         return {}
     root = file.next
-    for entry in outline_objects(pages.bookmarks, root, lambda target: _place(places, target)):
+    for entry in outline_objects(pages.bookmarks, root, lambda target: _found(places, target)):
         file.add(entry)
     return {"Outlines": reference(root)}
 
 
-def _places(pages: Pages, numbers: list[int], sheets: list[_Sheet]) -> dict[str, bytes]:
+def _places(sheets: Mapping[str, _Sheet], height: float) -> dict[str, bytes]:
     """Give the destination of every page label and anchor; a label stands before an anchor of its name."""
-    top = number(pages.height)
-    labels = {
-        page.label: b"[%b/XYZ 0 %b 0]" % (reference(own), top)
-        for page, own in zip(pages.pages, numbers, strict=True)
-    }
-    if len(labels) != len(numbers):
-        raise ValueError("two pages have the same label")
     anchors: dict[str, bytes] = {}
-    for own, sheet in zip(numbers, sheets, strict=True):
-        for anchor, x, y in sheet.anchors:
+    for sheet in sheets.values():
+        for anchor, place in zip(sheet.names, sheet.places, strict=True):
             if anchor in anchors:
                 raise ValueError(f"two anchors are named {anchor!r}")
-            anchors[anchor] = b"[%b/XYZ %b %b 0]" % (reference(own), number(x), number(y))
-    return anchors | labels
+            anchors[anchor] = place
+    top = number(height)
+    return anchors | {label: b"[%d 0 R/XYZ 0 %b 0]" % (sheet.number, top) for label, sheet in sheets.items()}
 
 
-def _place(places: Mapping[str, bytes], target: str) -> bytes:
+def _found(places: Mapping[str, bytes], target: str) -> bytes:
     found = places.get(target)
     if found is None:
         raise ValueError(f"nothing is named {target!r}, to which a link or bookmark leads")
     return found
 
 
-def _link(area: Area, places: Mapping[str, bytes]) -> bytes:
+def _link(corners: bytes, place: bytes) -> bytes:
     """Write a link without border, to be printed."""
-    corners = b" ".join(number(v) for v in (area.left, area.bottom, area.right, area.top))
-    return b"<</Type/Annot/Subtype/Link/Rect[%b]/Border[0 0 0]/F 4/Dest%b>>" % (
-        corners,
-        _place(places, area.target),
-    )
+    return b"<</Type/Annot/Subtype/Link/Rect[%b]/Border[0 0 0]/F 4/Dest%b>>" % (corners, place)
 
 
-def _resources(file: _File, writer: ContentWriter, fonts: Mapping[Face, FontFile]) -> bytes:
+def _fonts(file: PdfFile, writer: ContentWriter, fonts: Mapping[Face, FontFile]) -> bytes:
     """Embed the fonts that were used; write the resources all pages share."""
     entries = b"".join(
         FONT_NAMES[face] + b" " + reference(embed_font(fonts[face], used, file.add))
@@ -203,7 +214,7 @@ def _resources(file: _File, writer: ContentWriter, fonts: Mapping[Face, FontFile
 
 
 def _names(
-    file: _File, pages: Pages, places: Mapping[str, bytes], attachments: tuple[Attachment, ...]
+    file: PdfFile, pages: Pages, places: Mapping[str, bytes], attachments: tuple[Attachment, ...]
 ) -> dict[str, bytes]:
     """Write named destinations of the page labels, and attached files by name."""
     labels = sorted((page.label.encode(), places[page.label]) for page in pages.pages)
@@ -215,7 +226,7 @@ def _names(
     return {"Names": b"<<%b>>" % trees, "AF": b"[%b]" % b" ".join(ref for _, ref in files)}
 
 
-def _attachment(file: _File, item: Attachment) -> bytes:
+def _attachment(file: PdfFile, item: Attachment) -> bytes:
     """Write the specification of an attached file."""
     entries = b"/Type/EmbeddedFile/Subtype%b/Params<</Size %d>>" % (name(item.mime), len(item.data))
     file.mark(item.data)

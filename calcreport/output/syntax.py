@@ -11,14 +11,14 @@ import zlib
 _LEVEL = 5
 
 
-class Numbers(dict[int, bytes]):
+class Numbers(dict[int, str]):
     """Hundredths of a point to the digits that are written, made on first use."""
 
-    def __missing__(self, hundredths: int) -> bytes:
+    def __missing__(self, hundredths: int) -> str:
         sign = "-" if hundredths < 0 else ""
         whole, part = divmod(abs(hundredths), 100)
         digits = f"{sign}{whole}" if not part else f"{sign}{whole or ''}.{part:02d}".rstrip("0")
-        found = self[hundredths] = digits.encode()
+        found = self[hundredths] = digits
         return found
 
 

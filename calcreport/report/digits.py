@@ -150,7 +150,7 @@ class Digits:
     # -------------------------------------------------------- solving
 
     def solve(self) -> None:
-        """Settle every figure; each pass only adds digits, so it ends."""
+        """Settle every figure; each pass only adds digits, so it ends. The lines confirmed are let go."""
         for place, line in enumerate(self._sums):
             for name in {*(self.root(i) for i in line.inputs), self.root(line.result)}:
                 self._users.setdefault(name, []).append(place)
@@ -172,7 +172,10 @@ class Digits:
                             queued.add(user)
                             waiting.append(user)
             if not waiting:
-                return
+                break
+        self._sums.clear()
+        self._orders.clear()
+        self._users.clear()
 
     def _printed(self, name: Id) -> float:
         return self.figure(name).printed

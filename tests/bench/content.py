@@ -40,7 +40,6 @@ from calcreport.report.model import (
 )
 
 
-
 @dataclass(frozen=True, slots=True)
 class Shape:
     """A polyline; `fill` paints inside it."""

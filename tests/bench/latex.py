@@ -94,9 +94,7 @@ _HEAD = r"""\documentclass[10pt]{article}
 
 def latex(report: Report) -> str:
     """Return the source of a whole package."""
-    frame = "".join(
-        rf"\put({_n(x0)},{_n(y0)}){{\rule{{{_n(w)}bp}}{{{_n(h)}bp}}}}" for x0, y0, w, h in FRAME
-    )
+    frame = "".join(rf"\put({_n(x0)},{_n(y0)}){{\rule{{{_n(w)}bp}}{{{_n(h)}bp}}}}" for x0, y0, w, h in FRAME)
     head = _HEAD.replace("@LANE@", _n(LANE)).replace("@FRAME@", frame)
     writer = _Latex()
     return head + "".join(map(writer.part, report.parts)) + "\\end{document}\n"
@@ -205,7 +203,8 @@ class _Latex:
         aligned = {"left": r"\raggedright", "right": r"\raggedleft", "centre": r"\centering"}
         widths = column_widths(table, LANE if table.number else ROOM)
         columns = "".join(
-            rf">{{{aligned[c.align]}\arraybackslash}}p{{{_n(w - 4)}bp}}" for c, w in zip(table.columns, widths, strict=True)
+            rf">{{{aligned[c.align]}\arraybackslash}}p{{{_n(w - 4)}bp}}"
+            for c, w in zip(table.columns, widths, strict=True)
         )
         head = "&".join(rf"\bfseries {self.words(c.heading)}" for c in table.columns) + r"\\\hline"
         rows = []
@@ -218,9 +217,7 @@ class _Latex:
         if table.number:
             inside = rf"{title}\small\begin{{tabular}}[t]{{@{{}}{columns}@{{}}}}{head}" + "\n" + body + "\\end{tabular}"
             return self.numbered(table.number, table.anchor, inside, table.source)
-        return (
-            f"{title}{{\\small\\begin{{longtable}}{{@{{}}{columns}@{{}}}}{head}\\endhead\n{body}\n\\end{{longtable}}}}\n"
-        )
+        return f"{title}{{\\small\\begin{{longtable}}{{@{{}}{columns}@{{}}}}{head}\\endhead\n{body}\n\\end{{longtable}}}}\n"
 
     def figure(self, block: FigureBlock) -> str:
         drawing = self.drawer.drawing(block.figure)
@@ -241,7 +238,8 @@ class _Latex:
                     ink.append("[] 0 d" if dash else "")
         content = rf"\pdfliteral{{q {' '.join(ink)} Q}}" + "".join(labels)
         return (
-            rf"\fig{'beside' if block.beside else ''}{{{_n(drawing.width)}}}{{{_n(drawing.height)}}}{{\begin{{picture}}(0,0){content}\end{{picture}}}}" + "\n"
+            rf"\fig{'beside' if block.beside else ''}{{{_n(drawing.width)}}}{{{_n(drawing.height)}}}{{\begin{{picture}}(0,0){content}\end{{picture}}}}"
+            + "\n"
         )
 
     # ------------------------------------------------------------ words and formulas

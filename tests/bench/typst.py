@@ -95,7 +95,7 @@ class _Typst:
 
     def part(self, part: Part) -> str:
         facts = "; ".join(
-            f'at({x}, {y}, {_SIZES[size]}, {_s(words)}{", weight: " + chr(34) + "bold" + chr(34) if bold else ""})'
+            f"at({x}, {y}, {_SIZES[size]}, {_s(words)}{', weight: ' + chr(34) + 'bold' + chr(34) if bold else ''})"
             for (x, y, size, bold), words in zip(TITLES, title_words(part.facts), strict=True)
         )
         body = self.cover(part.cover) if part.cover is not None else ""
@@ -104,7 +104,7 @@ class _Typst:
         return f"#part({_s(part.mark)}, {_s(part.title)}, {{ {facts} }})[\n{body}]\n"
 
     def cover(self, facts: CoverFacts) -> str:
-        lines = [f"#v(30pt)#text(size: 24pt, weight: \"bold\", {_s(facts.title)})"]
+        lines = [f'#v(30pt)#text(size: 24pt, weight: "bold", {_s(facts.title)})']
         lines += [self.text(line) for line in (*facts.header, facts.issue, facts.date, facts.status, facts.status_note)]
         for pairs in (facts.scope, facts.elsewhere):
             lines += [f"#grid(columns: (150pt, 340pt), strong({_s(a)}), {_s(b)})" for a, b in pairs]
@@ -184,7 +184,9 @@ class _Typst:
         for row in table.rows:
             cells = [f"strong[{self.words(c)}]" if row.emphasis else f"[{self.words(c)}]" for c in row.cells]
             if row.anchor:
-                cells[0] = f"[{cells[0] if row.emphasis else self.words(row.cells[0])}#metadata(none)#label({_s(row.anchor)})]"
+                cells[0] = (
+                    f"[{cells[0] if row.emphasis else self.words(row.cells[0])}#metadata(none)#label({_s(row.anchor)})]"
+                )
             rows.append(", ".join(cells))
         body = ",\n".join(rows)
         columns = ", ".join(f"{_n(w)}pt" for w in widths)
@@ -202,7 +204,9 @@ class _Typst:
                 case Label(x, y, size, text):
                     ink.append(f"at({_n(x)}, {_n(-y)}, {_n(size)}, {_s(text)})")
                 case Ring(x, y, r, width, fill):
-                    ink.append(f"place(dx: {_n(x - r)}pt, dy: {_n(y - r)}pt, circle(radius: {_n(r)}pt, {_pen(width, fill, ())}))")
+                    ink.append(
+                        f"place(dx: {_n(x - r)}pt, dy: {_n(y - r)}pt, circle(radius: {_n(r)}pt, {_pen(width, fill, ())}))"
+                    )
                 case _:
                     (x0, y0), *others = shape.points
                     path = f"curve.move(({_n(x0)}pt, {_n(y0)}pt)), "
@@ -211,7 +215,11 @@ class _Typst:
                     ink.append(f"place(curve({_pen(shape.width, shape.fill, shape.dash)}, {path}))")
         size = f"width: {_n(drawing.width)}pt, height: {_n(drawing.height)}pt"
         drawn = f"align(right, box({size}, align(left + top, {{ {'; '.join(ink)} }})))"
-        return f"#place(block(width: {_n(LANE)}pt, {drawn}))\n" if block.beside else f"#block(width: {_n(LANE)}pt, {drawn})\n"
+        return (
+            f"#place(block(width: {_n(LANE)}pt, {drawn}))\n"
+            if block.beside
+            else f"#block(width: {_n(LANE)}pt, {drawn})\n"
+        )
 
     # ------------------------------------------------------------ words and formulas
 

@@ -11,9 +11,9 @@ from calcreport.output.syntax import Numbers, name, number, stream, string, text
 
 @pytest.mark.parametrize(
     ("hundredths", "digits"),
-    [(0, b"0"), (5, b".05"), (50, b".5"), (1250, b"12.5"), (79200, b"792"), (-210, b"-2.1"), (-7, b"-.07")],
+    [(0, "0"), (5, ".05"), (50, ".5"), (1250, "12.5"), (79200, "792"), (-210, "-2.1"), (-7, "-.07")],
 )
-def test_hundredths(hundredths: int, digits: bytes) -> None:
+def test_hundredths(hundredths: int, digits: str) -> None:
     assert Numbers()[hundredths] == digits
     assert float(digits) == pytest.approx(hundredths / 100)
 

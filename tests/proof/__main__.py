@@ -17,12 +17,19 @@ def main() -> int:
         proof = Proof(name, Path(name), 0, "")
         look(proof, read_package(Path(name)), 10_000)
         account = proof.account
-        print(f"{name}: {account.lines} numbered lines on {proof.sheets} sheets, {account.worked} with something to work,")
+        print(
+            f"{name}: {account.lines} numbered lines on {proof.sheets} sheets, {account.worked} with something to work,"
+        )
         print(f"  {account.confirmed} confirmed, {account.unread_lines} not read in full; {dict(account.counts)}")
         print(f"  significant digits of computed values: {dict(sorted(account.digits.items()))}")
-        findings = [*account.findings, *proof.numbering, *proof.marks]
+        findings = [*account.findings, *proof.numbering, *proof.marks, *proof.overlaps]
         order = [f"{program}: {text}" for program, found in proof.order.items() for text in found]
-        for text in [*map(str, findings), *map(str, account.unread), *order, *(f"long: {x}" for x in account.long)]:
+        for text in [
+            *map(str, findings),
+            *map(str, account.unread),
+            *order,
+            *(f"long: {x}" for x in account.long),
+        ]:
             print(" ", text)
         print(" ", dict(Counter(finding.claim for finding in findings)))
         wrong += len(findings) + len(order)

@@ -1,4 +1,4 @@
-"""Random projects of simple beams and the sections they need, in either system of units, from a seed.
+"""Random projects of simple and cantilever beams and the sections they need, in either system of units, from a seed.
 
 Out: the text of a project file. Sizes are drawn so that every requirement of the templates is met (bars fit, all
 layers yield, the moment is positive); checks may come out either way. Knows nothing of the program but its file.
@@ -90,12 +90,17 @@ def _pair(system: System, draw: Random, place: int) -> str:
     width = low + step * draw.randint(0, round((high - low) / step))
     depth = system.step * round(width * draw.uniform(1.3, 2.4) / system.step)
     concrete = f"C{draw.randrange(len(system.strengths))}"
-    return _beam(system, draw, place, width, depth, concrete) + _section(system, draw, place, width, depth, concrete)
+    cantilever = draw.random() < 0.25
+    return _beam(system, draw, place, (width, depth), concrete, cantilever) + _section(
+        system, draw, place, (width, depth), concrete, "top" if cantilever else "bottom"
+    )
 
 
-def _beam(system: System, draw: Random, place: int, width: float, depth: float, concrete: str) -> str:
+def _beam(system: System, draw: Random, place: int, size: tuple[float, float], concrete: str, cantilever: bool) -> str:
+    width, depth = size
     foot = 1.0 if system.span == "ft" else 0.3048
-    span = round(depth * (1 / 12 if system.span == "ft" else 1 / 1000) * draw.uniform(8, 14), draw.choice((0, 1, 2)))
+    slender = draw.uniform(3, 5.5) if cantilever else draw.uniform(8, 14)
+    span = round(depth * (1 / 12 if system.span == "ft" else 1 / 1000) * slender, draw.choice((0, 1, 2)))
     point = draw.random() < 0.5
     area, force, line = ("psf", "kip", "kip/ft") if system.span == "ft" else ("kPa", "kN", "kN/m")
     scale = 1.0 if system.span == "ft" else 4.448
@@ -115,20 +120,22 @@ def _beam(system: System, draw: Random, place: int, width: float, depth: float, 
         "P_L": f"{round(draw.uniform(2, 12) * scale, 1)} {force}" if point else "none",
         "x_P": f"{x_p} {system.span}" if point else "none",
     }
-    return _calculation(f"FL{place}", "statics/simple-beam", concrete, None, given)
+    template = "statics/cantilever-beam" if cantilever else "statics/simple-beam"
+    return _calculation(f"FL{place}", template, concrete, None, given)
 
 
-def _section(system: System, draw: Random, place: int, width: float, depth: float, concrete: str) -> str:
+def _section(system: System, draw: Random, place: int, size: tuple[float, float], concrete: str, face: str) -> str:
     """Give steel between 0.4 and 1.3 % of the section, so that every layer yields."""
+    width, depth = size
     grade = draw.randrange(len(system.bars))
     wanted = width * depth * draw.uniform(0.004, 0.0105)
     sized = [(size, area) for size, area in system.sizes if 2 <= wanted / area <= 9]
-    size, area = draw.choice(sized) if sized else system.sizes[-1]
+    bar, area = draw.choice(sized) if sized else system.sizes[-1]
     count = max(2, round(wanted / area))
     rows = (count - count // 3, count // 3) if count >= 6 and draw.random() < 0.5 else (count,)
     names = ("first", "second")
     layers = ", ".join(
-        f"{{name: {name}, steel: {system.joint.format(count=bars, size=size)}}}"
+        f"{{name: {name}, steel: {system.joint.format(count=bars, size=bar)}}}"
         for name, bars in zip(names, rows, strict=False)
     )
     given = {
@@ -136,7 +143,7 @@ def _section(system: System, draw: Random, place: int, width: float, depth: floa
         "h": f"{depth:g} {system.length}",
         "c_c": draw.choice(system.covers),
         "stirrup": f"'{draw.choice(system.stirrups)}'",
-        "face": "bottom",
+        "face": face,
         "layer": f"[{layers}]",
         "c_l": draw.choice(system.layers) if len(rows) > 1 else "none",
         "M_u": f"{{from: FL{place}.M_u}}",
@@ -149,7 +156,8 @@ def _section(system: System, draw: Random, place: int, width: float, depth: floa
 
 def _calculation(mark: str, template: str, concrete: str, bars: str | None, given: dict[str, str]) -> str:
     title = "Loads and moments" if bars is None else "Section at the greatest moment"
-    lines = [f"  - mark: {mark}", f"    title: {title}, beam {mark}", f"    template: {template}", f"    concrete: {concrete}"]
+    lines = [f"  - mark: {mark}", f"    title: {title}, beam {mark}", f"    template: {template}"]
+    lines.append(f"    concrete: {concrete}")
     if bars is not None:
         lines.append(f"    bars: {bars}")
     lines.append("    given:")

@@ -1,22 +1,20 @@
 """Calculations put together from their sheets: what every symbol, row and word is printed as, and where.
 
-In: `SheetPage` records of one mark. Out: `Calculation` with a register of printed forms, and `Scope`, which answers
-what a symbol is worth on the sheets, with rows of sets open. Judges nothing.
+In: `SheetPage` records of one mark. Out: `Calculation` with a register of printed forms. Judges nothing.
 """
 
 from __future__ import annotations
 
-import re
 from collections import defaultdict
-from collections.abc import Iterator, Sequence
+from collections.abc import Sequence
 from dataclasses import dataclass, field, replace
-from decimal import Decimal
 from typing import NamedTuple
 
-from .conditions import judge
-from .expressions import Unknown, Unread, Value, as_printed, parse, split, with_unit
-from .formulas import Token, plain
-from .sheets import NumberedLine, SheetPage, Statement
+from .equations import assignments, printed_of, symbol_of
+from .expressions import split
+from .letters import Token, plain
+from .sheets import SheetPage
+from .statements import NumberedLine, Statement
 from .tables import Table
 from .units import Printed, is_number
 
@@ -177,7 +175,7 @@ def _open_rows(calculation: Calculation) -> None:
 
 def _pairs(line: NumberedLine, table: Table) -> tuple[str, str] | None:
     """Return symbol and unit of a table whose cells belong to two sets; its title says them: `V shear, kip`."""
-    titles = [s for s in line.statements if s.kind == "title" and s.y > table.y or s.page < table.page]
+    titles = [s for s in line.statements if (s.kind == "title" and s.y > table.y) or s.page < table.page]
     if " / " not in table.set_name or not titles:
         return None
     tokens = titles[-1].tokens
@@ -206,46 +204,6 @@ def _row_named(sets: dict[str, list[str]], text: str) -> tuple[str, str] | None:
         if text.startswith(name + " ") and text[len(name) + 1 :].strip() in rows:
             return name, text[len(name) + 1 :].strip()
     return None
-
-
-def symbol_of(tokens: Sequence[Token]) -> str | None:
-    """Return the symbol that a row of tokens is, if it is one."""
-    if len(tokens) == 1 and tokens[0].kind == "word" and not tokens[0].raised:
-        return tokens[0].text
-    if len(tokens) == 1 and tokens[0].kind == "root":
-        return "√" + plain(tokens[0].parts[0])
-    return None
-
-
-def printed_of(tokens: Sequence[Token]) -> Printed | None:
-    """Return the printed number that a row of tokens is, if it is one; `none (0 kip)` is worth 0 kip."""
-    tokens = list(tokens)
-    if len(tokens) > 1 and tokens[0].text == "none" and tokens[1].kind == "open":
-        tokens = tokens[2:-1]
-    if len(tokens) > 2 and tokens[0].kind == "number" and tokens[1].kind == "unit" and tokens[2].kind == "open":
-        tokens = tokens[:2]
-    try:
-        return as_printed(parse(tokens)) if tokens else None
-    except Unread:
-        return None
-
-
-def assignments(statement: Statement) -> Iterator[tuple[str, list[Token]]]:
-    """Yield (symbol, tokens of its value) of an equation; bars give values after their callout."""
-    parts, relations = split(statement.tokens, "relation")
-    name = symbol_of(parts[0])
-    if name is None or len(parts) < 2 or set(relations) != {"="}:
-        return
-    colon = next((i for i, token in enumerate(statement.tokens) if token.kind == "colon"), None)
-    if colon is None:
-        yield name, parts[-1]
-        return
-    yield name, list(statement.tokens[2:colon])
-    for part in split(statement.tokens[colon + 1 :], "comma")[0]:
-        inner, _ = split(part, "relation")
-        inner_name = symbol_of(inner[0])
-        if inner_name is not None and len(inner) == 2:
-            yield inner_name, inner[1]
 
 
 def _register(calculation: Calculation) -> None:
@@ -308,85 +266,3 @@ def _from_label(calculation: Calculation, tokens: Sequence[Token], place: Place)
     name = symbol_of(parts[0]) if parts else None
     if relations == ["="] and name is not None and printed_of(parts[1]) is not None:
         _note(calculation, name, (), parts[1], place)
-
-
-_TERM = re.compile(r"([+−-])?\s*([\d.,]+) (\S+)")
-
-
-@dataclass(frozen=True, slots=True)
-class Scope:
-    """What symbols are worth on the sheets of a calculation, with rows of sets open."""
-
-    calculation: Calculation
-    open: Rows = ()
-
-    def value(self, name: str) -> Value:
-        """Return what a symbol is printed as, in base units."""
-        factor = self._factor(name)
-        if factor is not None:
-            return Value(factor)
-        printed = self.printed(name)
-        if printed is None:
-            raise Unknown(name)
-        return with_unit(printed)
-
-    def printed(self, name: str) -> Printed | None:
-        """Return the printed form of a symbol, that of the open rows first."""
-        keys = self.calculation.keys.get(name, [])
-        opened = set(dict(self.open).items())
-        fitting = [key for key in keys if key.rows <= opened]
-        if fitting:
-            return self.calculation.forms[max(fitting, key=lambda key: len(key.rows))][0][0]
-        if len(keys) == 1:
-            return self.calculation.forms[keys[0]][0][0]
-        return self._of_row(name)
-
-    def _of_row(self, name: str) -> Printed | None:
-        """Return the value of a symbol that names its row: d_b,first, n_first."""
-        for mark in ",_":
-            base, _, row = name.rpartition(mark)
-            for key in self.calculation.keys.get(base, []):
-                if row in {row_name for _, row_name in key.rows}:
-                    return self.calculation.forms[key][0][0]
-        return None
-
-    def word(self, name: str) -> str | None:
-        """Return the word a symbol or an open set stands for; a number where it has one."""
-        opened = dict(self.open)
-        if name in opened:
-            return opened[name]
-        words = self.calculation.words.get(name)
-        if words:
-            return words[0][0]
-        printed = self.printed(name)
-        return str(printed) if printed is not None else None
-
-    def rows(self, name: str, where: tuple[Token, ...]) -> Sequence[Scope]:
-        """Return the scope of every row of a set that meets a condition."""
-        rows = self.calculation.set_rows().get(name)
-        if rows is None:
-            raise Unknown(f"the rows of {name}")
-        scopes = [Scope(self.calculation, (*self.open, (name, row))) for row in rows]
-        return [scope for scope in scopes if not where or judge(list(where), scope)]
-
-    def factors(self, name: str) -> list[str]:
-        """Return every load factor printed in the column of a symbol."""
-        tables = [here.table for here in self.calculation.tables if here.table.column(name) is not None]
-        return [term[1] for t in tables for row in t.rows for term in _TERM.findall(row[t.column(name) or 0])]
-
-    def _factor(self, name: str) -> Decimal | None:
-        """Return a load factor: its cell is a sum of factors and rows, 1.2 D + 1.6 L."""
-        opened = dict(self.open)
-        for here in self.calculation.tables:
-            place = here.table.column(name)
-            if place is None or here.table.set_name not in opened or here.table.columns[place].unit != "(factors)":
-                continue
-            for row in here.table.rows:
-                if row[0] == opened[here.table.set_name]:
-                    found = {
-                        load: Decimal(f"{'-' if sign in ('−', '-') else ''}{size}")
-                        for sign, size, load in _TERM.findall(row[place])
-                    }
-                    inner = [row_name for set_name, row_name in self.open if set_name != here.table.set_name]
-                    return next((found[load] for load in inner if load in found), Decimal(0))
-        return None

@@ -9,29 +9,16 @@ from collections.abc import Sequence
 from decimal import Decimal, DivisionByZero, InvalidOperation, localcontext
 
 from .account import Account, Desk
-from .calculations import Calculation, Scope, printed_of, symbol_of
+from .arithmetic import NONE, PRECISE, Mixed, Unknown, bare, valued, with_unit
+from .calculations import Calculation
 from .conditions import chain, compare, in_unit, judge
-from .expressions import (
-    PRECISE,
-    Mixed,
-    Node,
-    Number,
-    Symbol,
-    Unknown,
-    Unread,
-    Work,
-    as_printed,
-    bare,
-    parse,
-    split,
-    symbols,
-    valued,
-    with_unit,
-)
+from .equations import printed_of, symbol_of
+from .expressions import Node, Number, Symbol, Unread, Work, as_printed, parse, split, symbols
 from .forms import callouts, digits_used, left_symbol, one_form, short, shown_elsewhere, substituted_forms
-from .formulas import Token, plain
+from .letters import Token, plain
 from .rows import is_row_formula, other_rows, ratio_columns, row_formula
-from .sheets import NumberedLine, Statement
+from .scope import Scope
+from .statements import NumberedLine, Statement
 from .units import Printed, rounds_to, unit
 
 #: what keeps a line from being worked
@@ -204,7 +191,7 @@ def _chain(desk: Desk, nodes: Sequence[Node], parts: Sequence[Sequence[Token]]) 
 
 def _compare_formula(desk: Desk, formula: Node, numeric: Sequence[Node], scope: Scope) -> None:
     """The formula with the printed values of its symbols gives the substitution, or else the result."""
-    substituted = as_printed(numeric[0]) is None or len(numeric) > 1 and _plain_substitution(formula, numeric)
+    substituted = as_printed(numeric[0]) is None or (len(numeric) > 1 and _plain_substitution(formula, numeric))
     if substituted:
         substituted_forms(desk, formula, numeric[0], scope)
     shown = as_printed(numeric[1] if substituted else numeric[0])
@@ -256,7 +243,7 @@ def _check(desk: Desk, statement: Statement, scope: Scope) -> int:
         desk.found("a verdict follows from print", f"{plain(parts[1])} = {statement.ratio} {statement.verdict}")
     value = valued(formula, scope)
     with localcontext(PRECISE):
-        if value.dimension != (0, 0) or abs(value.number - ratio) > abs(ratio) * SLACK:
+        if value.dimension != NONE or abs(value.number - ratio) > abs(ratio) * SLACK:
             desk.found("a substitution is its formula", f"ratio {short(value.number)}, substitution {short(ratio)}")
     substituted_forms(desk, formula, numeric, scope)
     return 1

@@ -1,7 +1,7 @@
 """Printed comparisons and conditions, judged with what the sheet prints.
 
-In: tokens such as `f_y = 60 ksi ≤ 100 ksi` or `layer is first or M_u ≥ 0`. Out: whether they hold. Each number of a chain
-is also held against the symbol or formula before its equals sign.
+In: tokens such as `f_y = 60 ksi ≤ 100 ksi` or `layer is first or M_u ≥ 0`. Out: whether they hold. Each number of a
+chain is also held against the symbol or formula before its equals sign.
 """
 
 from __future__ import annotations
@@ -10,21 +10,9 @@ from collections.abc import Sequence
 from decimal import Decimal, localcontext
 from typing import Protocol
 
-from .expressions import (
-    PRECISE,
-    Mixed,
-    Node,
-    Sheet,
-    Unknown,
-    Unread,
-    Value,
-    as_printed,
-    parse,
-    split,
-    valued,
-    with_unit,
-)
-from .formulas import Token, plain
+from .arithmetic import NONE, PRECISE, Mixed, Sheet, Unknown, Value, valued, with_unit
+from .expressions import Node, Unread, as_printed, parse, split
+from .letters import Token, plain
 from .units import Printed, rounds_to, unit
 
 
@@ -111,7 +99,7 @@ def matches(value: Value, shown: Printed) -> bool:
 def in_unit(value: Value, text: str) -> Decimal:
     """Return a value as a number of a printed unit; Mixed where the dimensions differ."""
     if not text:
-        if value.dimension != (0, 0) and value.number != 0:
+        if value.dimension != NONE and value.number != 0:
             raise Mixed("a number without unit")
         return value.number
     found = unit(text)

@@ -65,8 +65,8 @@ def _to_unicode(data: bytes) -> dict[int, str]:
     found: dict[int, str] = {}
     for kind, body in _BLOCK.findall(data):
         if kind == b"bfchar":
-            codes = _HEX.findall(body)
-            found.update((int(a, 16), _text(b)) for a, b in zip(codes[::2], codes[1::2], strict=True))
+            pairs = _HEX.findall(body)
+            found.update((int(a, 16), _text(b)) for a, b in zip(pairs[::2], pairs[1::2], strict=True))
             continue
         for low, high, first, listed in _RANGE.findall(body):
             codes = range(int(low, 16), int(high, 16) + 1)
@@ -84,7 +84,8 @@ def _wide(runs: Any) -> dict[int, float]:
     items = list(runs)
     at = 0
     while at < len(items):
-        first, second = int(items[at]), items[at + 1].get_object() if hasattr(items[at + 1], "get_object") else items[at + 1]
+        first, second = int(items[at]), items[at + 1]
+        second = second.get_object() if hasattr(second, "get_object") else second
         if isinstance(second, list):
             found.update((first + i, float(w)) for i, w in enumerate(second))
             at += 2

@@ -10,10 +10,11 @@ from collections.abc import Sequence
 from decimal import Decimal
 
 from .account import Desk
-from .calculations import Scope, assignments, printed_of, symbol_of
+from .equations import assignments, printed_of, symbol_of
 from .expressions import Node, Number, Over, Work, as_printed, numbers, split, symbols, walk
-from .formulas import Token, plain
-from .sheets import Statement
+from .letters import Token, plain
+from .scope import Scope
+from .statements import Statement
 from .units import Printed
 
 #: what a visible unit factor may be: inches in a foot, its square and cube, powers of ten
@@ -65,11 +66,12 @@ def _literals(formula: Node, substitution: Node) -> list[tuple[Printed, Printed]
     if isinstance(formula, Number):
         shown = as_printed(substitution)
         return [(formula.printed, shown)] if shown is not None else []
-    if isinstance(formula, Work) and isinstance(substitution, Work):
-        if formula.name == substitution.name and len(formula.inputs) == len(substitution.inputs):
-            pairs = zip(formula.inputs, substitution.inputs, strict=True)
-            return [pair for one, other in pairs for pair in _literals(one, other)]
-    return []
+    if not isinstance(formula, Work) or not isinstance(substitution, Work) or formula.name != substitution.name:
+        return []
+    if len(formula.inputs) != len(substitution.inputs):
+        return []
+    pairs = zip(formula.inputs, substitution.inputs, strict=True)
+    return [pair for one, other in pairs for pair in _literals(one, other)]
 
 
 def one_form(desk: Desk) -> None:
@@ -134,12 +136,16 @@ def callouts(desk: Desk) -> None:
         for row in table.rows:
             callout = next((m for m in map(_CALLOUT.fullmatch, row) if m and m[1]), None)
             if callout is not None:
-                cells = {c.name: Decimal(v.replace(",", "")) for c, v in zip(table.columns, row, strict=True) if _plain(v)}
+                cells = {
+                    c.name: Decimal(v.replace(",", "")) for c, v in zip(table.columns, row, strict=True) if _plain(v)
+                }
                 _bars(desk, callout, cells)
     for line in desk.calculation.lines:
         for statement in line.statements:
             match = _CALLOUT.search(plain(statement.tokens)) if statement.kind == "formula" else None
-            values = {item.name: printed_of(item.tokens) for item in desk.calculation.inline if item.statement is statement}
+            values = {
+                item.name: printed_of(item.tokens) for item in desk.calculation.inline if item.statement is statement
+            }
             if not values and match is not None:
                 values = {name: printed_of(tokens) for name, tokens in assignments(statement)}
             if match is not None:
@@ -163,7 +169,7 @@ def _bars(desk: Desk, callout: re.Match[str], values: dict[str, Decimal]) -> Non
         if name in wanted:
             desk.count("bars")
             if value != wanted[name]:
-                desk.found("bars are what they are called", f"{callout[0]}: {name} = {value}, nominally {wanted[name]}")
-
-
-
+                desk.found(
+                    "bars are what they are called",
+                    f"{callout[0]}: {name} = {value}, nominally {wanted[name]}",
+                )

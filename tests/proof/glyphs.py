@@ -6,6 +6,7 @@ of ISO 32000-1 clauses 8 and 9, forms included. Knows nothing of what the ink me
 
 from __future__ import annotations
 
+import itertools
 import re
 from collections.abc import Iterator
 from dataclasses import dataclass, field
@@ -213,12 +214,13 @@ class _Work:
             return
         inner = _Work(self.reader, self.ink)
         own = form.get("/Resources", resources).get_object()
-        inner.run(form.get_data(), own, times(tuple(float(v) for v in form.get("/Matrix", UNIT)), self.matrix))
+        a, b, c, d, e, f = (float(v) for v in form.get("/Matrix", UNIT))
+        inner.run(form.get_data(), own, times((a, b, c, d, e, f), self.matrix))
 
     def _show(self, parts: list[Any]) -> None:
         face = self.face
         assert face is not None
-        a, b, c, d, e, f = times(self.text, self.matrix)
+        a, b, _c, d, e, f = times(self.text, self.matrix)
         size, x = self.size, 0.0
         whole = size * abs(d)
         for part in parts:
@@ -237,7 +239,12 @@ class _Work:
                     ink = (left, y, right, y)
                 else:
                     unit = size / 1000
-                    ink = (left + box[0] * unit * a, y + box[1] * unit * d, left + box[2] * unit * a, y + box[3] * unit * d)
+                    ink = (
+                        left + box[0] * unit * a,
+                        y + box[1] * unit * d,
+                        left + box[2] * unit * a,
+                        y + box[3] * unit * d,
+                    )
                 self.ink.glyphs.append(Glyph(face.text.get(code, "�"), left, right, y, whole, face.name, *ink))
                 x += advance
         self.text = times((1, 0, 0, 1, x, 0), self.text)
@@ -276,4 +283,4 @@ class _Work:
             if filled or self.curved or closed:
                 self.ink.areas.append(Area(min(xs), min(ys), max(xs), max(ys), filled, self.curved))
             if stroked and not self.curved:
-                self.ink.lines += [Line(*p, *q, width) for p, q in zip(points, points[1:], strict=False) if p != q]
+                self.ink.lines += [Line(*p, *q, width) for p, q in itertools.pairwise(points) if p != q]

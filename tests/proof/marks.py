@@ -11,12 +11,13 @@ from collections.abc import Iterator
 from typing import Any
 
 from .account import Finding
-from .calculations import Calculation, assignments, printed_of
-from .formulas import plain
+from .calculations import Calculation
+from .equations import assignments, printed_of
+from .letters import plain
 from .numbering import index_rows, lines_by_number
 from .package import Package, Page
 from .pieces import spaced
-from .sheets import NumberedLine, Statement
+from .statements import NumberedLine, Statement
 from .tables import Table
 
 #: what only a person may say (design, section 6)
@@ -59,7 +60,9 @@ def _seal(package: Package) -> Iterator[Finding]:
         wide, high = area.x1 - area.x0, area.y1 - area.y0
         if area.filled or area.curved or min(wide, high) < SEAL or max(wide, high) > 1.3 * SEAL:
             continue
-        glyphs = [g for g in ink.glyphs if g.x1 > area.x0 + 0.5 and g.x0 < area.x1 - 0.5 and g.y1 > area.y0 and g.y0 < area.y1]
+        glyphs = [
+            g for g in ink.glyphs if g.x1 > area.x0 + 0.5 and g.x0 < area.x1 - 0.5 and g.y1 > area.y0 and g.y0 < area.y1
+        ]
         strokes = [
             s for s in ink.lines
             if max(s.x0, s.x1) > area.x0 + 0.5 and min(s.x0, s.x1) < area.x1 - 0.5
@@ -97,7 +100,12 @@ def _failures(package: Package) -> Iterator[Finding]:
         titles = [s.words.removeprefix("CHECK").strip() for _, s in failed]
         for sheet in calculation.pages:
             if bool(failed) != ("NG" in sheet.strip):
-                yield Finding("NG on every sheet of the calculation", sheet.name, 0, f"strip {sheet.strip!r}, failed {titles}")
+                yield Finding(
+                    "NG on every sheet of the calculation",
+                    sheet.name,
+                    0,
+                    f"strip {sheet.strip!r}, failed {titles}",
+                )
             for (line, _), title in zip(failed, titles, strict=True):
                 if f"line {line.number}" not in sheet.strip or title not in sheet.strip:
                     yield Finding("the strip names what fails", sheet.name, line.number, sheet.strip)
@@ -108,7 +116,12 @@ def _failures(package: Package) -> Iterator[Finding]:
     cover = package.pages[0].text
     counted = re.search(r"(\d+) NG", cover)
     if counted is None or int(counted[1]) != total:
-        yield Finding("the cover counts what fails", package.pages[0].name, 0, f"{counted and counted[0]}, on the sheets {total}")
+        yield Finding(
+            "the cover counts what fails",
+            package.pages[0].name,
+            0,
+            f"{counted and counted[0]}, on the sheets {total}",
+        )
 
 
 def _summary_tables(package: Package) -> list[Table]:
@@ -128,9 +141,15 @@ def _in_summary(
                 continue
             if "Governing check" in cells:
                 yield from _governing(calculation, cells, checks)
-            elif "What" not in cells:
+            elif "What" in cells:
+                yield from _attention(calculation, cells, checks)
+            else:
                 yield from _grid(calculation, cells, checks)
     marked = [r for t in tables for r in t.rows if r and r[0] == calculation.mark and "NG" in " ".join(r).split()]
+    listed = {row[-1] for t in tables if t.column("What") for row in t.rows}
+    for line, check in failed:
+        if f"{calculation.mark} line {line.number}" not in listed:
+            yield Finding("NG stands first in the summary", calculation.mark, line.number, check.words)
     if bool(marked) != bool(failed):
         yield Finding("NG in the summary", calculation.mark, 0, f"{len(marked)} rows, failed {len(failed)}")
 
@@ -152,11 +171,33 @@ def _governing(
     words = cells.get("Ratio", "").split()
     ratio = float(found[0].ratio) if found[0].ratio else float("inf")
     if (found[0].ratio and words[:1] != [found[0].ratio]) or ratio != max(ratios):
-        yield Finding("the summary shows the governing ratio", calculation.mark, int(where[1]), f"{cells}, ratios {ratios}")
+        yield Finding(
+            "the summary shows the governing ratio",
+            calculation.mark,
+            int(where[1]),
+            f"{cells}, ratios {ratios}",
+        )
     for column in ("Demand or required", "Capacity or provided"):
         number, _, unit = cells.get(column, "").partition(" ")
         if number and (number, unit) not in calculation.shown and not _stands(number, found[0]):
             yield Finding("one printed form of a value", calculation.mark, int(where[1]), f"summary: {number} {unit}")
+
+
+def _attention(
+    calculation: Calculation, cells: dict[str, str], checks: list[tuple[NumberedLine, Statement]]
+) -> Iterator[Finding]:
+    """What needs eyes is told with the figures of the sheet."""
+    where = re.search(r"line (\d+)", cells.get("Where", ""))
+    found = [s for line, s in checks if where is not None and line.number == int(where[1])]
+    if where is None or not found:
+        return
+    if found[0].ratio and cells.get("Ratio", "").split()[:1] != [found[0].ratio]:
+        yield Finding("the summary repeats the ratios", calculation.mark, int(where[1]), f"{cells}")
+    pair = re.search(r"(\S+) (\S+) against (\S+) (\S+?)(?=[.,;]? |[.,;]?$)", cells.get("State", ""))
+    for number, unit in ((pair[1], pair[2]), (pair[3], pair[4])) if pair else ():
+        if (number, unit) not in calculation.shown and not _stands(number, found[0]):
+            text = f"summary: {number} {unit}"
+            yield Finding("one printed form of a value", calculation.mark, int(where[1]), text)
 
 
 def _stands(number: str, statement: Statement) -> bool:
@@ -175,7 +216,12 @@ def _grid(
         words = cell.split()
         shown = worst.ratio or "NG"
         if shown not in words or ("NG" in words) != any(s.verdict == "NG" for s in title):
-            yield Finding("the summary repeats the ratios", calculation.mark, 0, f"{name}: {cell!r}, on the sheet {worst.ratio} {worst.verdict}")
+            yield Finding(
+                "the summary repeats the ratios",
+                calculation.mark,
+                0,
+                f"{name}: {cell!r}, on the sheet {worst.ratio} {worst.verdict}",
+            )
 
 
 def _handed(package: Package) -> Iterator[Finding]:
@@ -207,10 +253,20 @@ def _same_form(calculation: Calculation, line: NumberedLine, other: NumberedLine
 
 def _title_blocks(package: Package) -> Iterator[Finding]:
     """Every sheet but the cover carries the project, its own revision, boxes for initials and the program."""
-    title = str((package.reader.metadata or {}).get("/Title", ""))
+    about = package.reader.metadata
+    title = about.title or "" if about is not None else ""
     for page in package.pages[1:]:
         below = page_text_below(page)
-        for wanted in (title, "ORIGINATOR", "CHECKER", "BACK-CHECKER", "REVISION", "rev ", "calcreport", "SHEET"):
+        for wanted in (
+            title,
+            "ORIGINATOR",
+            "CHECKER",
+            "BACK-CHECKER",
+            "REVISION",
+            "rev ",
+            "calcreport",
+            "SHEET",
+        ):
             if wanted.replace(" ", "") not in below.replace(" ", "").replace("\n", ""):
                 yield Finding("title block", page.name, 0, f"{wanted!r} is missing")
         if page.frame.lanes and not re.search(r"input ?[0-9a-f]{4} ?[0-9a-f]{4}", below):

@@ -11,15 +11,21 @@ from collections.abc import Iterator
 from typing import Any
 
 from .account import Finding
-from .calculations import printed_of
+from .equations import printed_of
 from .expressions import split
 from .package import Package, Page
-from .sheets import NumberedLine
+from .statements import NumberedLine
 
 
 def numbering(package: Package) -> list[Finding]:
     """Return what is wrong with names of sheets and with what leads to them."""
-    return [*_names(package), *_index(package), *_bookmarks(package), *_links_lead(package), *_links_there(package)]
+    return [
+        *_names(package),
+        *_index(package),
+        *_bookmarks(package),
+        *_links_lead(package),
+        *_links_there(package),
+    ]
 
 
 def _names(package: Package) -> Iterator[Finding]:
@@ -32,10 +38,11 @@ def _names(package: Package) -> Iterator[Finding]:
             yield Finding("sheet numbers are unique", page.name, 0, f"stands on {names[page.name]} sheets")
     groups: dict[str, list[Page]] = defaultdict(list)
     for page in package.pages:
-        groups[page.name.rpartition("-")[0]].append(page)
+        groups[page.name.rpartition("-")[0] or page.name].append(page)
     for stem, pages in groups.items():
         for place, page in enumerate(pages, start=1):
-            if stem and (page.name != f"{stem}-{place}" or f"of {len(pages)}" not in page.text):
+            lone = page.name == stem and place == 1
+            if not lone and (page.name != f"{stem}-{place}" or f"of {len(pages)}" not in page.text):
                 yield Finding("sheets are counted", page.name, 0, f"sheet {place} of {len(pages)}")
 
 
@@ -60,7 +67,12 @@ def _index(package: Package) -> Iterator[Finding]:
             if name not in at:
                 yield Finding("index names sheets that are there", page.name, 0, f"{name} in {row}")
         if first in at and cells.get("Page", "") != str(at[first] + 1):
-            yield Finding("index gives the page", page.name, 0, f"{first} is page {at[first] + 1}, printed {cells.get('Page')}")
+            yield Finding(
+                "index gives the page",
+                page.name,
+                0,
+                f"{first} is page {at[first] + 1}, printed {cells.get('Page')}",
+            )
     if not listed:
         yield Finding("index names every sheet", "INDEX", 0, "no index could be read")
     for name in at:
@@ -78,7 +90,9 @@ def _range(first: str, last: str) -> list[str]:
         return [first] if first else []
     stem, _, low = first.rpartition("-")
     high = last.rpartition("-")[2]
-    return [f"{stem}-{n}" for n in range(int(low), int(high) + 1)] if low.isdigit() and high.isdigit() else [first, last]
+    return (
+        [f"{stem}-{n}" for n in range(int(low), int(high) + 1)] if low.isdigit() and high.isdigit() else [first, last]
+    )
 
 
 def _bookmarks(package: Package) -> Iterator[Finding]:
@@ -131,12 +145,27 @@ def _links_lead(package: Package) -> Iterator[Finding]:
                 mark = line[1] or stem
                 aim = lines.get((mark, int(line[2])))
                 if aim is None:
-                    yield Finding("links lead to lines that are there", page.name, 0, f"{text!r}: no line {mark} {line[2]}")
+                    yield Finding(
+                        "links lead to lines that are there",
+                        page.name,
+                        0,
+                        f"{text!r}: no line {mark} {line[2]}",
+                    )
                 elif aim[0] != link.page or (link.top is not None and not -8 < link.top - aim[1] < 40):
-                    yield Finding("links lead to what they name", page.name, 0, f"{text!r} leads to {package.pages[link.page].name}")
+                    yield Finding(
+                        "links lead to what they name",
+                        page.name,
+                        0,
+                        f"{text!r} leads to {package.pages[link.page].name}",
+                    )
             elif text in at:
                 if at[text] != link.page:
-                    yield Finding("links lead to what they name", page.name, 0, f"{text!r} leads to {package.pages[link.page].name}")
+                    yield Finding(
+                        "links lead to what they name",
+                        page.name,
+                        0,
+                        f"{text!r} leads to {package.pages[link.page].name}",
+                    )
             elif not text:
                 yield Finding("links stand on text", page.name, 0, f"an empty link at {link.x:.0f}, {link.y:.0f}")
 
@@ -153,7 +182,12 @@ def _links_there(package: Package) -> Iterator[Finding]:
             linked = {link.text for link in package.pages[line_.page].links}
             for word in source_numbers(line_):
                 if str(word) not in linked:
-                    yield Finding("source lane numbers are links", calculation.sheet(line_.page), line_.number, str(word))
+                    yield Finding(
+                        "source lane numbers are links",
+                        calculation.sheet(line_.page),
+                        line_.number,
+                        str(word),
+                    )
 
 
 def source_numbers(line: NumberedLine) -> list[int]:
@@ -167,5 +201,3 @@ def source_numbers(line: NumberedLine) -> list[int]:
         if numbers and not re.search(r"line \d+$", text) and not re.search(r"(material|row) \S*$", text):
             found += [int(word) for word in numbers[1].split()]
     return found
-
-

@@ -9,10 +9,10 @@ from __future__ import annotations
 import re
 from collections.abc import Sequence
 
-from .calculations import symbol_of
+from .equations import symbol_of
 from .expressions import split
-from .formulas import Token, plain
-from .sheets import NumberedLine, Statement
+from .letters import Token, plain
+from .statements import NumberedLine, Statement
 
 
 def squeeze(text: str) -> str:
@@ -35,7 +35,7 @@ def out_of_order(text: str, lines: Sequence[NumberedLine], page: int) -> list[st
         heads.append((line, place))
         at = place + len(head)
     ends = [place for _, place in heads[1:]] + [len(text)]
-    for (line, start), end in zip(heads, ends, strict=True):
+    for (line, start), end in zip(heads, ends, strict=False):
         for piece in _missing(line, page, text[start:end]):
             found.append(f"line {line.number}: {piece!r} is missing or out of order")
     return found

@@ -15,9 +15,10 @@ from typing import Any
 from pypdf import PdfReader
 
 from .calculations import Calculation, assemble
+from .frames import Frame, find_frame, sheet_name
 from .glyphs import Glyph, PageInk, Reader
 from .pieces import spaced
-from .sheets import Frame, SheetPage, find_frame, read_sheet, sheet_name
+from .sheets import SheetPage, read_sheet
 from .tables import Table, find_tables
 
 

@@ -13,24 +13,14 @@ from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
 from typing import NamedTuple
 
-from .glyphs import Glyph, Line
+from .glyphs import Glyph
+from .rules import RULE_REACH, Rule
 
 #: gap that ends a run, and a piece, in type sizes
 RUN_GAP, PIECE_GAP = 0.42, 0.78
-#: how far above or below its rule the nearest ink of a fraction stands, in points
-RULE_REACH = 5.6
 RELATIONS = "=≤≥<>≠"
 #: math axis above the baseline, in type sizes
 AXIS = 0.258
-
-
-class Rule(NamedTuple):
-    """A fraction rule, or the top of a radical."""
-
-    x0: float
-    x1: float
-    y: float
-    radical: bool
 
 
 @dataclass(slots=True)
@@ -105,7 +95,8 @@ def main_baseline(glyphs: Sequence[Glyph], rules: Sequence[Rule]) -> float:
     plain = [
         g
         for g in glyphs
-        if g.text not in "()[]{}|\u200b∑√" and not any(r.x0 - 0.4 <= (g.left + g.right) / 2 <= r.x1 + 0.4 for r in fractions)
+        if g.text not in "()[]{}|\u200b∑√"
+        and not any(r.x0 - 0.4 <= (g.left + g.right) / 2 <= r.x1 + 0.4 for r in fractions)
     ]
     if plain:
         largest = max(g.size for g in plain)
@@ -114,51 +105,6 @@ def main_baseline(glyphs: Sequence[Glyph], rules: Sequence[Rule]) -> float:
         widest = max(fractions, key=lambda r: r.x1 - r.x0)
         return widest.y - AXIS * size * (10 / 8.5)
     return min(glyphs, key=lambda g: g.left).y
-
-
-def find_rules(glyphs: Sequence[Glyph], lines: Sequence[Line]) -> tuple[list[Rule], list[Line]]:
-    """Part level strokes into rules of formulas and all other strokes."""
-    level = [line for line in lines if abs(line.y0 - line.y1) < 0.01 and 0.45 < line.width < 1.0]
-    widths: dict[tuple[float, float], set[float]] = defaultdict(set)
-    for line in lines:
-        if abs(line.y0 - line.y1) < 0.01:
-            widths[round(line.x0, 1), round(line.x1, 1)].add(round(line.width, 2))
-    shelves: dict[int, list[Glyph]] = defaultdict(list)
-    for glyph in glyphs:
-        for shelf in range(int(glyph.y0 // 12), int(glyph.y1 // 12) + 1):
-            shelves[shelf].append(glyph)
-    ends = [(x, y) for line in lines for x, y in ((line.x0, line.y0), (line.x1, line.y1))]
-    rules, others = [], []
-    for line in lines:
-        rule = _rule(line, widths, shelves, ends) if line in level else None
-        if rule is None:
-            others.append(line)
-        else:
-            rules.append(rule)
-    return rules, others
-
-
-def _rule(
-    line: Line,
-    widths: dict[tuple[float, float], set[float]],
-    shelves: dict[int, list[Glyph]],
-    ends: list[tuple[float, float]],
-) -> Rule | None:
-    x0, x1, y = min(line.x0, line.x1), max(line.x0, line.x1), line.y0
-    if len(widths[round(line.x0, 1), round(line.x1, 1)]) > 1:
-        return None  # the rules of a table
-    near = {g for shelf in range(int((y - 14) // 12), int((y + 14) // 12) + 1) for g in shelves[shelf]}
-    for glyph in near:
-        if glyph.text == "√" and abs(glyph.x1 - x0) < 1.2 and -1.0 < y - glyph.y1 < 1.2:
-            return Rule(x0, x1, y, True)
-    if sum(abs(x - x0) < 0.05 and abs(v - y) < 0.05 or abs(x - x1) < 0.05 and abs(v - y) < 0.05 for x, v in ends) > 2:
-        return None
-    inside = [g for g in near if x0 - 0.6 <= (g.x0 + g.x1) / 2 <= x1 + 0.6]
-    above = [g.y0 - y for g in inside if g.y0 > y - 0.3]
-    below = [y - g.y1 for g in inside if g.y1 < y + 0.3]
-    if above and below and min(above) < RULE_REACH and min(below) < RULE_REACH:
-        return Rule(x0, x1, y, False)
-    return None
 
 
 def find_runs(glyphs: Sequence[Glyph], gap: float = RUN_GAP) -> list[list[Glyph]]:
@@ -245,7 +191,7 @@ def _touch(one: _Box, other: _Box, reach: float) -> bool:
 
 def _near_rule(rule: Rule, run: _Box) -> bool:
     if rule.radical:
-        return run.y1 <= rule.y + 0.6 and rule.y - run.y1 < 4.5 or run.y0 < rule.y < run.y1
+        return (run.y1 <= rule.y + 0.6 and rule.y - run.y1 < 4.5) or run.y0 < rule.y < run.y1
     return -1.0 < run.y0 - rule.y < RULE_REACH or -1.0 < rule.y - run.y1 < RULE_REACH
 
 
@@ -273,21 +219,33 @@ def find_labels(runs: Sequence[list[Glyph]]) -> list[Label]:
     found = []
     for cluster in clusters:
         glyphs = [g for run in cluster for g in run]
-        left, right, top = min(g.left for g in glyphs), max(g.right for g in glyphs), max(g.y1 for g in glyphs)
+        left, right, top = (
+            min(g.left for g in glyphs),
+            max(g.right for g in glyphs),
+            max(g.y1 for g in glyphs),
+        )
         for sign in signs:
             foot, middle = min(g.y0 for g in sign), (sign[0].left + sign[-1].right) / 2
-            if -0.5 < foot - top < 4.0 and abs(middle - (left + right) / 2) < 3.0 and sign[0].size * 0.85 >= glyphs[0].size:
+            if (
+                -0.5 < foot - top < 4.0
+                and abs(middle - (left + right) / 2) < 3.0
+                and sign[0].size * 0.85 >= glyphs[0].size
+            ):
                 found.append(Label(cluster, sign))
                 break
     return found
 
 
 def _beside(one: list[Glyph], other: list[Glyph]) -> bool:
-    shared = min(max(g.y1 for g in one), max(g.y1 for g in other)) - max(min(g.y0 for g in one), min(g.y0 for g in other))
+    shared = min(max(g.y1 for g in one), max(g.y1 for g in other)) - max(
+        min(g.y0 for g in one), min(g.y0 for g in other)
+    )
     return shared > 0.3 and -1.0 < other[0].left - one[-1].right < 4.0
 
 
 def _raise_labels(boxes: list[_Box]) -> list[_Box]:
     """Let the box of a label below a sign reach up to the sign, so that the row goes on beside it."""
-    tops = {id(run): max(g.y1 for g in label.sign) for label in find_labels([b.run for b in boxes]) for run in label.runs}
+    tops = {
+        id(run): max(g.y1 for g in label.sign) for label in find_labels([b.run for b in boxes]) for run in label.runs
+    }
     return [box._replace(y1=tops[id(box.run)]) if id(box.run) in tops else box for box in boxes]

@@ -14,9 +14,10 @@ from pathlib import Path
 
 from .account import Account, Finding
 from .claims import examine
-from .marks import marks
+from .marks import failed_checks, marks
 from .numbering import numbering
 from .order import out_of_order
+from .overlaps import overlaps
 from .package import Package, read_package
 
 ROOT = Path(__file__).resolve().parents[2]
@@ -34,9 +35,12 @@ class Proof:
     account: Account = field(default_factory=Account)
     numbering: list[Finding] = field(default_factory=list)
     marks: list[Finding] = field(default_factory=list)
+    overlaps: list[Finding] = field(default_factory=list)
     #: text out of order, by the program that took it out
     order: dict[str, list[str]] = field(default_factory=dict)
     sheets: int = 0
+    #: checks that are NG on the sheets
+    failed: int = 0
 
 
 def build(project: Path, target: Path) -> subprocess.CompletedProcess[str]:
@@ -60,7 +64,8 @@ def look(proof: Proof, package: Package, most_pages: int) -> None:
     proof.sheets = len(package.sheets)
     for calculation in package.calculations:
         proof.account.add(examine(calculation))
-    proof.numbering, proof.marks = numbering(package), marks(package)
+        proof.failed += len(failed_checks(calculation))
+    proof.numbering, proof.marks, proof.overlaps = numbering(package), marks(package), overlaps(package)
     wanted = package.sheets[:most_pages]
     proof.order["pypdf"] = [
         f"{sheet.name} {text}"

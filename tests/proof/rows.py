@@ -10,12 +10,15 @@ from collections.abc import Sequence
 from decimal import Decimal
 
 from .account import Desk
-from .calculations import Calculation, Rows, Scope, symbol_of
+from .arithmetic import Mixed, Unknown, valued
+from .calculations import Calculation, Rows
 from .conditions import in_unit, judge, matches
-from .expressions import Mixed, Unknown, Unread, parse, split, symbols, valued
+from .equations import symbol_of
+from .expressions import Unread, parse, split, symbols
 from .forms import left_symbol, short
-from .formulas import Token
-from .sheets import NumberedLine, Statement
+from .letters import Token
+from .scope import Scope
+from .statements import NumberedLine, Statement
 from .tables import Table
 from .units import Printed, is_number
 
@@ -53,7 +56,13 @@ def _cell(desk: Desk, name: str, arms: list[Statement], table: Table, place: int
     for arm in arms:
         open_: Rows = (*arm.context, (table.set_name, row[0]))
         if not arm.condition or judge(arm.condition, Scope(desk.calculation, open_)):
-            _work(desk, split(arm.tokens, "relation")[0][1], name, open_, Printed(row[place], 0, table.columns[place].unit))
+            _work(
+                desk,
+                split(arm.tokens, "relation")[0][1],
+                name,
+                open_,
+                Printed(row[place], 0, table.columns[place].unit),
+            )
             return
     raise Unread(f"no arm of {name} holds for row {row[0]}")
 

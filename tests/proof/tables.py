@@ -1,17 +1,19 @@
 """Tables on a page: level rules of one width over each other, a head in small type, rows below.
 
-In: glyphs and strokes of a lane or a page. Out: `Table` records with the text of every cell, the glyphs they took, and the
-strokes that are no rules of tables. Cells go to the column whose edge they share.
+In: glyphs and strokes of a lane or a page. Out: `Table` records with the text of every cell, the glyphs they took, and
+the strokes that are no rules of tables. Cells go to the column whose edge they share.
 """
 
 from __future__ import annotations
 
+import itertools
 from collections import defaultdict
 from collections.abc import Sequence
 from dataclasses import dataclass
 
-from .formulas import Token, plain, read_tokens
+from .formulas import read_tokens
 from .glyphs import Glyph, Line
+from .letters import Token, plain
 from .pieces import Piece, find_pieces
 
 #: type of table heads and of cells is no larger, in points
@@ -63,7 +65,7 @@ def find_tables(
     used: set[Line] = set()
     for (x0, x1), level in spans.items():
         ys = sorted({round(line.y0, 2) for line in level}, reverse=True)
-        bands = [(top, low, _band(glyphs, x0, x1, top, low)) for top, low in zip(ys, ys[1:], strict=False)]
+        bands = [(top, low, _band(glyphs, x0, x1, top, low)) for top, low in itertools.pairwise(ys)]
         for first, last in _stretches(bands):
             tables.append(_table(bands[first], bands[first + 1 : last], page))
             for top, low, inside in bands[first:last]:

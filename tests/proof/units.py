@@ -11,7 +11,7 @@ import re
 from dataclasses import dataclass
 from decimal import ROUND_HALF_UP, Context, Decimal, localcontext
 from fractions import Fraction as F
-from functools import lru_cache
+from functools import cache
 
 #: powers of length and force
 Dimension = tuple[F, F]
@@ -29,14 +29,15 @@ _UNITS: dict[str, tuple[F, Dimension]] = {
     "psf": (_POUND / _FOOT**2, _STRESS), "ksf": (1000 * _POUND / _FOOT**2, _STRESS),
     "Pa": (F(1), _STRESS), "kPa": (F(1000), _STRESS), "MPa": (F(10**6), _STRESS), "GPa": (F(10**9), _STRESS),
     "plf": (_POUND / _FOOT, _SPREAD), "klf": (1000 * _POUND / _FOOT, _SPREAD),
-    "pcf": (_POUND / _FOOT**3, _WEIGHT), "kcf": (1000 * _POUND / _FOOT**3, _WEIGHT), "pci": (_POUND / _INCH**3, _WEIGHT),
+    "pcf": (_POUND / _FOOT**3, _WEIGHT), "kcf": (1000 * _POUND / _FOOT**3, _WEIGHT), 
+    "pci": (_POUND / _INCH**3, _WEIGHT),
     "%": (F(1, 100), (F(0), F(0))), "rad": (F(1), (F(0), F(0))),
 }  # fmt: skip
 _POWER = {"²": 2, "³": 3, "⁴": 4, "": 1}
 _FACTOR = re.compile(r"([A-Za-z%]+\.?)([²³⁴]?)")
 
 
-@lru_cache(maxsize=None)
+@cache
 def unit(text: str) -> tuple[F, Dimension] | None:
     """Return the exact factor to metres and newtons, and the dimension; None where it is no unit."""
     scale, length, force = F(1), F(0), F(0)

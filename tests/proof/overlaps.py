@@ -1,0 +1,83 @@
+"""Ink that stands on other ink: glyphs over glyphs, strokes through glyphs.
+
+In: a `Package`. Out: findings. Judged by the boxes of the ink, with a hair's breadth allowed; scripts tucked under the
+letter before them, and signs made to enclose others, are no collision.
+"""
+
+from __future__ import annotations
+
+from collections import defaultdict
+from collections.abc import Iterator
+
+from .account import Finding
+from .glyphs import Glyph, Line
+from .package import Package, Page
+
+#: what may overlap unseen, in points: box corners are empty in most letters
+GLYPH, STROKE = 0.3, 0.15
+_ENCLOSING = "√(){}[]|∑"
+
+
+def overlaps(package: Package) -> list[Finding]:
+    """Return what is printed over something else."""
+    return [finding for page in package.pages for finding in (*_glyphs(page), *_strokes(page))]
+
+
+def _shelves(page: Page) -> dict[int, list[Glyph]]:
+    shelves: dict[int, list[Glyph]] = defaultdict(list)
+    for glyph in page.ink.glyphs:
+        if glyph.text.strip(" \u200b") and glyph.x1 > glyph.x0:
+            for shelf in range(int(glyph.y0 // 8), int(glyph.y1 // 8) + 1):
+                shelves[shelf].append(glyph)
+    return shelves
+
+
+def _glyphs(page: Page) -> Iterator[Finding]:
+    told: set[tuple[int, int]] = set()
+    for shelf in _shelves(page).values():
+        shelf.sort(key=lambda g: g.x0)
+        for at, one in enumerate(shelf):
+            for other in shelf[at + 1 :]:
+                if other.x0 > one.x1 - GLYPH:
+                    break
+                high = min(one.y1, other.y1) - max(one.y0, other.y0)
+                place = (round(other.x0 / 20), round(other.y / 8))
+                if high > GLYPH and not _joined(one, other) and place not in told:
+                    told.add(place)
+                    text = f"{one.text} and {other.text} at {other.x0:.0f}, {other.y:.0f}"
+                    yield Finding("nothing is printed over print", page.name, 0, text)
+
+
+def _joined(one: Glyph, other: Glyph) -> bool:
+    """Tell whether two glyphs are neighbours in a word, or letter and script."""
+    if one.text in _ENCLOSING or other.text in _ENCLOSING:
+        return True
+    if abs(one.y - other.y) < 0.01:
+        return abs(one.right - other.left) < 1.6
+    scripted = min(one.size, other.size) < 0.85 * max(one.size, other.size)
+    return scripted and abs(one.right - other.left) < 6 and abs(one.y - other.y) < 0.5 * max(one.size, other.size)
+
+
+def _strokes(page: Page) -> Iterator[Finding]:
+    shelves = _shelves(page)
+    for line in page.ink.lines:
+        if line.x0 != line.x1 and line.y0 != line.y1:
+            continue
+        for glyph in _near(shelves, line):
+            if glyph.text != "√" and _through(line, glyph):
+                text = f"a stroke through {glyph.text!r} at {glyph.x0:.0f}, {glyph.y:.0f}"
+                yield Finding("nothing is printed over print", page.name, 0, text)
+                break
+
+
+def _near(shelves: dict[int, list[Glyph]], line: Line) -> Iterator[Glyph]:
+    low, high = sorted((line.y0, line.y1))
+    for shelf in range(int((low - 1) // 8), int((high + 1) // 8) + 1):
+        yield from shelves.get(shelf, ())
+
+
+def _through(line: Line, glyph: Glyph) -> bool:
+    half = line.width / 2
+    wide = min(glyph.x1, max(line.x0, line.x1) + half) - max(glyph.x0, min(line.x0, line.x1) - half)
+    high = min(glyph.y1, max(line.y0, line.y1) + half) - max(glyph.y0, min(line.y0, line.y1) - half)
+    return wide > STROKE and high > STROKE

@@ -27,8 +27,11 @@ def make_parser() -> argparse.ArgumentParser:
     build = commands.add_parser("build", help="build the package as PDF")
     _project(build)
     build.add_argument("-o", "--output", metavar="PDF", help="where to write it; beside the project file if not told")
-    build.add_argument("--second-path", action="store_true",
-                       help="work every value again by other arithmetic and other unit factors, and say how they agree")  # fmt: skip
+    build.add_argument(
+        "--second-path",
+        action="store_true",
+        help="work every value again by other arithmetic and other unit factors, and say how they agree",
+    )
     lint = commands.add_parser("lint", help="report every problem of a project or a template with its place")
     lint.add_argument("file", metavar="FILE", help="a project file, a template file, or a template's name")
     lint.add_argument("--json", action="store_true", help="problems for machines")

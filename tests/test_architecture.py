@@ -213,7 +213,9 @@ def test_the_checker_saw_the_program() -> None:
 
 
 def test_imports_go_in_no_circle() -> None:
-    graph = {module: {n for _, n in imports(ast.parse(text)) if n in LISTED} - {module} for module, text in modules().items()}
+    graph = {
+        module: {n for _, n in imports(ast.parse(text)) if n in LISTED} - {module} for module, text in modules().items()
+    }
     list(TopologicalSorter(graph).static_order())
 
 
@@ -265,5 +267,6 @@ def test_planted_faults_are_caught(name: str) -> None:
 
 
 def test_what_is_allowed_is_not_called_a_fault() -> None:
-    text = '"""Clause 22.2.2.4.1 in a docstring."""\nimport re\nfrom calcreport.read.model import Symbol\nX = re.compile("a")'
+    text = '"""Clause 22.2.2.4.1 in a docstring."""\nimport re\n'
+    text += 'from calcreport.read.model import Symbol\nX = re.compile("a")'
     assert faults("plan.link", text) == []

@@ -26,6 +26,7 @@ from calcreport.calculate.model import (
     PlannedRequire,
     PlannedRows,
     PlannedText,
+    PlannedUnknown,
     Stop,
     Test,
     Values,
@@ -42,14 +43,21 @@ from calcreport.calculate.model import (
     WorkedRequire,
     WorkedRows,
     WorkedText,
+    WorkedUnknown,
 )
 from calcreport.core.expression import Compare, Condition, Expression, Logic, Name, Not, Number
 from calcreport.core.source import Citation, Span
+from calcreport.methods.roots import NoRoot, find_root
 
 #: rows of one set at most
 MOST_ROWS = 1000
 #: what a line costs beside one row that a formula goes through
 _LINE_COST = 8
+
+
+#: sides apart by more than this share of the larger difference at the bounds have no root there
+JUMP = 1e-9
+_NOWHERE = Citation("", "")
 
 
 class _Stopped(Exception):
@@ -142,7 +150,7 @@ def _planned_checks(lines: tuple[PlannedLine, ...]) -> list[PlannedCheck]:
             case PlannedBranches(arms):
                 for arm in arms:
                     found += _planned_checks(arm.lines)
-            case PlannedEach(_, inner) | PlannedPart(_, _, inner):
+            case PlannedEach(_, inner) | PlannedPart(_, _, inner) | PlannedUnknown(lines=inner):
                 found += _planned_checks(inner)
     return found
 
@@ -191,6 +199,8 @@ class _Run:
                 return self.branches(line)
             case PlannedEach():
                 return self.each(line)
+            case PlannedUnknown():
+                return self.unknown(line)
             case PlannedPart(_, _, lines):
                 return WorkedPart(line, self.lines(line, lines))
             case PlannedRequire():
@@ -273,6 +283,40 @@ class _Run:
             rows.append(self.lines(line, line.lines))
         self.values.open[line.rows], self.opened = before, opened
         return WorkedEach(line, names, tuple(rows), self.opened)
+
+    def unknown(self, line: PlannedUnknown) -> WorkedLine:
+        """Find the root; its lines are left at their values there."""
+        low, high = self.value(line.low, line.span, _NOWHERE), self.value(line.high, line.span, _NOWHERE)
+        judged = len(self.checks)
+        worked: tuple[WorkedLine, ...] = ()
+        sides = (0.0, 0.0)
+
+        def difference(trial: float) -> float:
+            nonlocal worked, sides
+            del self.checks[judged:]
+            self.put(line.slot, trial)
+            worked = self.lines(line, line.lines)
+            sides = self.value(line.left, line.span, _NOWHERE), self.value(line.right, line.span, _NOWHERE)
+            return sides[0] - sides[1]
+
+        symbol = self.program.plan.slots[line.slot].symbol.name
+        try:
+            root, larger = find_root(difference, low, high)
+        except NoRoot as error:
+            raise _Stopped(Stop(line.span, f"no {symbol} found: {error}", "")) from error
+        left_over = abs(difference(root))
+        if left_over > JUMP * larger:
+            raise _Stopped(Stop(line.span, f"no {symbol} found: the two sides jump past one another", ""))
+        key = self.values.key(line.slot)
+        return WorkedUnknown(line, key, worked, *sides, self.opened)
+
+    def put(self, slot: int, value: float) -> None:
+        """Store a value that no formula gave; what was worked exactly from an earlier one is forgotten."""
+        self.values.exact.clear()
+        if self.values.sets[slot]:
+            self.values.rows[slot][self.values.key(slot)] = value
+        else:
+            self.values.plain[slot] = value
 
     def rows(self, line: PlannedRows) -> WorkedLine:
         names: list[str] = []

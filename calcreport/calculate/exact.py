@@ -30,7 +30,7 @@ from calcreport.core.late import load
 
 DIGITS = 60
 _SCALE = 10**DIGITS
-_EQUAL = Fraction(1, 10**40)
+_EQUAL, _EQUAL_TO_ROOT = Fraction(1, 10**40), Fraction(1, 10**12)
 #: transcendental values below two to minus this are carried as if they were that small, not smaller
 _SMALLEST_BITS = 20_000
 #: fractions longer than this many bits are cut to 120 digits, far beyond what a comparison looks at
@@ -41,7 +41,8 @@ def holds_exactly(node: Compare, values: Values) -> bool:
     """Tell whether a comparison holds with both sides worked exactly in the open rows."""
     left, right = work(node.left, values), work(node.right, values)
     difference = left - right
-    if abs(difference) <= _EQUAL * max(abs(left), abs(right)):
+    equal = _EQUAL_TO_ROOT if values.rough else _EQUAL
+    if abs(difference) <= equal * max(abs(left), abs(right)):
         return node.op in ("<=", ">=", "=")
     match node.op:
         case "<" | "<=":
@@ -82,7 +83,11 @@ def worked_slot(slot: int, key: Key, values: Values) -> Fraction:
     if known is None:
         known = values.exact.get(place)
     if known is None:
-        expression = values.worked[place]
+        expression = values.worked.get(place)
+        if expression is None:
+            # a root is known to the last bits only; what is compared with it is compared to twelve digits
+            values.rough = True
+            return Fraction(values.number(slot, key))
         before = list(values.open)
         for index, row in zip(values.sets[slot], key, strict=True):
             values.open[index] = row

@@ -36,6 +36,7 @@ from calcreport.plan.model import (
     PlannedRequire,
     PlannedRows,
     PlannedText,
+    PlannedUnknown,
     Project,
     RowSet,
     Slot,
@@ -79,6 +80,8 @@ class Values:
     worked: dict[tuple[int, Key], Expression] = field(default_factory=dict)
     #: exact values already worked again
     exact: dict[tuple[int, Key], Fraction] = field(default_factory=dict)
+    #: something worked exactly rests on a root, which is known to the last bits only
+    rough: bool = False
     #: work done so far
     spent: int = 0
 
@@ -163,6 +166,19 @@ class WorkedEach:
 
 
 @dataclass(frozen=True, slots=True)
+class WorkedUnknown:
+    """A value found so that both sides agree, with its lines at the root and the two sides there."""
+
+    line: PlannedUnknown
+    key: Key
+    lines: tuple[WorkedLine, ...]
+    #: both sides at the root, base units
+    left: float
+    right: float
+    open: tuple[tuple[int, int], ...]
+
+
+@dataclass(frozen=True, slots=True)
 class WorkedPart:
     """A part's lines worked."""
 
@@ -222,6 +238,7 @@ WorkedLine: TypeAlias = (
     | WorkedBranches
     | WorkedRows
     | WorkedEach
+    | WorkedUnknown
     | WorkedPart
     | WorkedCheck
     | WorkedRequire
@@ -301,6 +318,7 @@ __all__ = [
     "PlannedRequire",
     "PlannedRows",
     "PlannedText",
+    "PlannedUnknown",
     "Project",
     "RowSet",
     "Slot",
@@ -324,4 +342,5 @@ __all__ = [
     "WorkedRequire",
     "WorkedRows",
     "WorkedText",
+    "WorkedUnknown",
 ]

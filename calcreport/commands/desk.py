@@ -27,7 +27,9 @@ def open_project(name: str) -> Opened | tuple[Problem, ...]:
     path = Path(name, "project.yaml") if os.path.isdir(name) else Path(name)
     found = read_text(path.parent, path.name)
     if isinstance(found, str):
-        return one_problem("no-file", f"{str(path)[:200]} cannot be read", "a project file, or a folder with project.yaml", found)
+        return one_problem(
+            "no-file", f"{str(path)[:200]} cannot be read", "a project file, or a folder with project.yaml", found
+        )
     return Opened(path, Disk(path.parent, library_folder()), found)
 
 

@@ -44,8 +44,13 @@ def _described(head: TemplateHead, library: Library, problems: Problems) -> list
     plan = make_plan(template, problems) if template is not None else None
     if template is None or plan is None:
         return []
-    lines = [f"{head.name}: {head.title}", f"  code      {_editions(head)}", f"  decides   {', '.join(plan.covers) or 'nothing; a part of others'}",
-             f"  leaves    {', '.join(template.excludes) or 'nothing named'}", "  needs"]  # fmt: skip
+    lines = [
+        f"{head.name}: {head.title}",
+        f"  code      {_editions(head)}",
+        f"  decides   {', '.join(plan.covers) or 'nothing; a part of others'}",
+        f"  leaves    {', '.join(template.excludes) or 'nothing named'}",
+        "  needs",
+    ]
     for given in plan.givens:
         lines += _given(given, plan, "    ")
     gives = [slot.path for slot in plan.slots if not slot.sets]
@@ -59,7 +64,11 @@ def _given(planned: PlannedGiven, plan: Plan, indent: str) -> list[str]:
         inner = [line for column in planned.columns for line in _given(column, plan, indent + "  ")]
         return [f"{indent}{given.name:<14} rows: {given.says}", *inner]
     symbol = plan.slots[planned.slot].symbol
-    kind = given.kind if given.kind in ("bars", "spaced bars") else ", ".join(symbol.words) or (symbol.unit.text if symbol.unit else "")
+    kind = (
+        given.kind
+        if given.kind in ("bars", "spaced bars")
+        else ", ".join(symbol.words) or (symbol.unit.text if symbol.unit else "")
+    )
     notes = [given.range.text] if given.range else []
     notes += ["may be none"] if given.if_none is not None else []
     notes += [f"from material: {given.material}"] if given.material else []

@@ -21,7 +21,9 @@ def run(arguments: Namespace) -> int:
     mark, _, symbol = arguments.value.partition(".")
     script = result.composed.scripts.get(mark)
     known = script.worked.plan.by_path if script else result.composed.scripts
-    lines = trace_lines(mark, symbol, result.composed.scripts, result.composed.forms) if script and symbol in known else ()
+    lines = (
+        trace_lines(mark, symbol, result.composed.scripts, result.composed.forms) if script and symbol in known else ()
+    )
     if not lines:
         hint = nearest(symbol if script else mark, known)
         return say_problems(one_problem("unknown-name", f"there is no value `{arguments.value}`",

@@ -107,7 +107,7 @@ printed with the problem.
 
     covers: {shear}        wrong
     covers: [shear]        right""",
-    "yaml-feature": """The file uses a feature that can hide or repeat content: an anchor, alias, tag, merge key or escape.
+    "yaml-feature": """The file uses what can hide or repeat content: an anchor, alias, tag, merge key or escape.
 None of them is read, so that a file says what it seems to say. Write the value out; share values through materials,
 criteria or another calculation's line. Text that begins with & * or ! needs quotes.
 

@@ -49,8 +49,13 @@ def read_amount(text: str, span: Span, problems: Problems) -> Amount | None:
     Adds `not-a-quantity` or `unknown-unit` and returns None.
     """
     if len(text) > LONGEST or sum(c.isdigit() for c in text) > MOST_DIGITS:
-        problems.add("not-a-quantity", span, "the number is too long",
-                     expected=f"{LONGEST} characters and {MOST_DIGITS} digits at most", found=text[:LONGEST])  # fmt: skip
+        problems.add(
+            "not-a-quantity",
+            span,
+            "the number is too long",
+            expected=f"{LONGEST} characters and {MOST_DIGITS} digits at most",
+            found=text[:LONGEST],
+        )
         return None
     amount = _read_feet(text)
     if amount is not None:

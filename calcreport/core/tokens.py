@@ -23,12 +23,30 @@ _TOKEN = re.compile(
 )
 #: signs of print, and what a formula writes for them
 _PRINTED = {
-    "×": "*", "·": "*", "⋅": "*", "÷": "/", "−": "-", "–": "-", "≤": "<=", "≥": ">=", "≠": "!=", "²": "^2", "³": "^3",
-    "√": "sqrt(…)", "[": "(", "]": ")", "&": "and", "|": "or", "!": "not", "'": "ft and in for feet and inches, words without quotes", '"': "words without quotes", "π": "3.14159265359",
-}  # fmt: skip
+    "×": "*",
+    "·": "*",
+    "⋅": "*",
+    "÷": "/",
+    "−": "-",
+    "–": "-",
+    "≤": "<=",
+    "≥": ">=",
+    "≠": "!=",
+    "²": "^2",
+    "³": "^3",
+    "√": "sqrt(…)",
+    "[": "(",
+    "]": ")",
+    "&": "and",
+    "|": "or",
+    "!": "not",
+    "'": "ft and in for feet and inches, words without quotes",
+    '"': "words without quotes",
+    "π": "3.14159265359",
+}
 
 
-class Stop(Exception):  # noqa: N818 - leaves the parser after a problem was added; no error of the program
+class Stop(Exception):
     """Leaves the parser after a problem was added."""
 
 

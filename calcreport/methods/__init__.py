@@ -1,0 +1,1 @@
+"""Numerical analysis with no design code in it."""

@@ -29,8 +29,14 @@ def plan_figure(line: Drawing, names: Names, space: Space, at: Context) -> Plann
     for name, formula in line.inputs:
         wanted = takes.get(name.name)
         if wanted is None:
-            problems.add("unknown-key", name.span, f"the figure `{kind.name}` takes no `{name.name[:40]}`",
-                         expected=listed(takes), found=name.name[:40], hint=problems.near(name.name, takes))  # fmt: skip
+            problems.add(
+                "unknown-key",
+                name.span,
+                f"the figure `{kind.name}` takes no `{name.name[:40]}`",
+                expected=listed(takes),
+                found=name.name[:40],
+                hint=problems.near(name.name, takes),
+            )
         else:
             inputs.append(binder.bind(name, formula, wanted))
     handed = {name.name for name, _ in line.inputs}
@@ -46,7 +52,7 @@ class _Binder:
         self, line: Drawing, takes: dict[str, FigureInputKind], names: Names, space: Space, at: Context
     ) -> None:
         self.takes, self.names, self.space, self.at = takes, names, space, at
-        self.handed = dict((name.name, formula) for name, formula in line.inputs)
+        self.handed = {name.name: formula for name, formula in line.inputs}
         self.problems = names.problems
 
     def bind(self, name: Name, formula: Expression, wanted: FigureInputKind) -> FigureInput:

@@ -27,6 +27,7 @@ from calcreport.plan.model import (
     PlannedPart,
     PlannedRequire,
     PlannedText,
+    PlannedUnknown,
     RowSet,
     Slot,
     Template,
@@ -46,6 +47,7 @@ from calcreport.read.model import (
     Require,
     Rows,
     Text,
+    Unknown,
 )
 
 #: lines of one plan, those of its parts counted wherever they are used
@@ -76,6 +78,9 @@ def _given_below(lines: tuple[Line, ...]) -> Iterator[str]:
                     yield from _given_below(arm.lines)
             case Each(_, inner):
                 yield from _given_below(inner)
+            case Unknown(symbol):
+                yield symbol.name
+                yield from _given_below(line.lines)
             case Rows(name, columns):
                 yield name
                 yield from (column.symbol.name for column in columns)
@@ -124,8 +129,13 @@ class _Linker:
         for line in lines:
             self.count += 1
             if self.count > MOST_LINES:
-                self.problems.add("file-too-large", line.span.part(0, 1), "the template holds too many lines, parts included",
-                                  expected=f"{MOST_LINES:,} at most", found="more")  # fmt: skip
+                self.problems.add(
+                    "file-too-large",
+                    line.span.part(0, 1),
+                    "the template holds too many lines, parts included",
+                    expected=f"{MOST_LINES:,} at most",
+                    found="more",
+                )
                 break
             planned = self.line(line, space, at)
             if planned is not None:
@@ -145,6 +155,8 @@ class _Linker:
                 return plan_rows(line, names, self.maker, space, at)
             case Each():
                 return self.each(line, space, at)
+            case Unknown():
+                return self.unknown(line, space, at)
             case PartUse():
                 return self.part(line, space, at)
             case Check(name, holds, says, cite, span):
@@ -185,7 +197,7 @@ class _Linker:
             when = None if arm.when is None else self.names.condition(arm.when, space, at)
             more = frozenset() if arm.when is None else assured(arm.when, space)
             lines = self.lines(arm.lines, space, replace(at, assured=at.assured | more))
-            arms.append(PlannedBranchArm(when, lines))
+            arms.append(PlannedBranchArm(when, lines, arm.says))
             given.append({name: value for name, value in space.names.items() if name not in before})
             somewhere |= {name: value for name, value in space.partial.items() if name not in partial}
             somewhere |= given[-1]
@@ -202,12 +214,34 @@ class _Linker:
         if index >= 0:
             self.names.hold_open(self.maker.sets[index].outer, name.name, name.span, at)
         if index >= 0 and index in at.open:
-            self.problems.add("row-leak", name.span, f"the rows of `{name.name}` are open here already",
-                              expected="another set, or sum(… over SET) and its kin", found=f"`each: {name.name}` inside itself")  # fmt: skip
+            self.problems.add(
+                "row-leak",
+                name.span,
+                f"the rows of `{name.name}` are open here already",
+                expected="another set, or sum(… over SET) and its kin",
+                found=f"`each: {name.name}` inside itself",
+            )
         inner = replace(at, open=(*at.open, index))
         lines = self.lines(line.lines, space, inner)
         table = tuple(self.table_column(column, space, inner) for column in line.table)
         return PlannedEach(index, lines, table, line.show, line.span)
+
+    def unknown(self, line: Unknown, space: Space, at: Context) -> PlannedLine:
+        low, high = self.names.expression(line.low, space, at), self.names.expression(line.high, space, at)
+        slot = self.maker.slot(line.symbol, space, at.open, line.name_span)
+        for inner in line.lines:
+            if isinstance(inner, Check | Drawing):
+                self.problems.add(
+                    "not-in-unknown",
+                    inner.span.part(0, 1),
+                    "this line cannot stand among the lines of an `unknown`",
+                    expected="lines that are worked once a trial",
+                    found="a check or a figure",
+                    hint="put it after the `unknown`",
+                )
+        lines = self.lines(line.lines, space, at)
+        left, right = self.names.expression(line.left, space, at), self.names.expression(line.right, space, at)
+        return PlannedUnknown(slot.index, low, high, left, right, lines, line.span)
 
     def table_column(self, name: Name, space: Space, at: Context) -> int:
         """Bind a column of a table, where a name given in some branches only may stand too."""

@@ -46,8 +46,13 @@ class _RowsPlanner:
             name = entry.name.name or str(number)
             # two rows under conditions of their own may share a name: one of them is made
             if name in found and not (found[name] and entry.when is not None):
-                self.problems.add("given-twice", entry.name.span, f"the row `{name[:40]}` of `{self.line.name}` stands twice",
-                                  expected="every name once", found=name[:40])  # fmt: skip
+                self.problems.add(
+                    "given-twice",
+                    entry.name.span,
+                    f"the row `{name[:40]}` of `{self.line.name}` stands twice",
+                    expected="every name once",
+                    found=name[:40],
+                )
             found[name] = entry.when is not None
         return tuple(found)
 
@@ -80,18 +85,25 @@ class _RowsPlanner:
         """Hold `for` and the {variables} of a row's name against one another and against the set they pair over."""
         variables = {variable.name for variable, _ in entry.pairing}
         if entry.pairing and rows is None and not any(column.over for column in self.line.columns):
-            self.problems.add("unknown-name", entry.pairing[0][0].span, "`for` pairs with no set",
-                              expected="a column `over` the set whose rows it takes", found="no such column")  # fmt: skip
+            self.problems.add(
+                "unknown-name",
+                entry.pairing[0][0].span,
+                "`for` pairs with no set",
+                expected="a column `over` the set whose rows it takes",
+                found="no such column",
+            )
         if rows is not None:
             for name in (name for _, fits in entry.pairing for name in fits):
                 self._hold_pattern(name, rows)
         for match in _VARIABLE.finditer(entry.name.name):
             if match[1] is None or match[1] not in variables:
                 self.problems.add(
-                    "bad-text", entry.name.span.part(match.start(), match.end()), f"`{match[0][:40]}` stands for no row",
+                    "bad-text",
+                    entry.name.span.part(match.start(), match.end()),
+                    f"`{match[0][:40]}` stands for no row",
                     expected=listed("{" + v + "}" for v in sorted(variables)) if variables else "a variable of `for`",
                     found=match[0][:40],
-                )  # fmt: skip
+                )
 
     def _hold_pattern(self, name: Name, rows: RowSet) -> None:
         known, stem = rows.row_names, name.name.removesuffix("*")

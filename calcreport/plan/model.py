@@ -111,6 +111,7 @@ class PlannedBranchArm:
 
     when: Condition | None
     lines: tuple[PlannedLine, ...]
+    says: str
 
 
 @dataclass(frozen=True, slots=True)
@@ -162,6 +163,19 @@ class PlannedEach:
     lines: tuple[PlannedLine, ...]
     table: tuple[int, ...]
     show: Literal["", "every", "figure"]
+    span: Span
+
+
+@dataclass(frozen=True, slots=True)
+class PlannedUnknown:
+    """A value found between bounds so that both sides agree, with the lines that depend on it."""
+
+    slot: int
+    low: Expression
+    high: Expression
+    left: Expression
+    right: Expression
+    lines: tuple[PlannedLine, ...]
     span: Span
 
 
@@ -224,6 +238,7 @@ PlannedLine: TypeAlias = (
     | PlannedBranches
     | PlannedRows
     | PlannedEach
+    | PlannedUnknown
     | PlannedPart
     | PlannedCheck
     | PlannedRequire
@@ -250,6 +265,6 @@ __all__ = [
     "BarCallout", "Calculation", "Case", "Expected", "FigureInput", "Given", "GivenPairs", "GivenRows", "GivenValue",
     "Handed", "Inputs", "LinkedValue", "Plan", "PlannedArm", "PlannedBranchArm", "PlannedBranches", "PlannedCheck",
     "PlannedColumn", "PlannedEach", "PlannedEntry", "PlannedFigure", "PlannedGiven", "PlannedGives", "PlannedLine",
-    "PlannedPart", "PlannedRequire", "PlannedRows", "PlannedText", "Project", "RowSet", "Slot", "Symbol", "Template",
+    "PlannedPart", "PlannedRequire", "PlannedRows", "PlannedText", "PlannedUnknown", "Project", "RowSet", "Slot", "Symbol", "Template",
     "ValueOrigin",
 ]  # fmt: skip

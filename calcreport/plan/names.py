@@ -75,8 +75,13 @@ class Names:
         if name in space.told:
             return -1
         if isinstance(found, Slot):
-            self.problems.add("unknown-name", span, f"`{name[:40]}` is a value, not a set", expected="a set given or made above",
-                              found=f"the value {name[:40]}")  # fmt: skip
+            self.problems.add(
+                "unknown-name",
+                span,
+                f"`{name[:40]}` is a value, not a set",
+                expected="a set given or made above",
+                found=f"the value {name[:40]}",
+            )
             return -1
         sets = [key for key, value in space.names.items() if isinstance(value, RowSet)]
         self.problems.add("unknown-name", span, f"there is no set `{name[:40]}` here",
@@ -127,8 +132,13 @@ class Names:
         if found is None:
             self.say_unknown(node, space)
         elif isinstance(found, RowSet):
-            self.problems.add("row-leak", node.span, f"`{node.name}` is a set, not a value",
-                              expected=f"a value, or sum(… over {node.name})", found=f"the set {node.name}")  # fmt: skip
+            self.problems.add(
+                "row-leak",
+                node.span,
+                f"`{node.name}` is a set, not a value",
+                expected=f"a value, or sum(… over {node.name})",
+                found=f"the set {node.name}",
+            )
         else:
             self.hold_open(found.sets, node.name, node.span, at)
             if found.may_be_absent and found.index not in at.assured:
@@ -150,9 +160,14 @@ class Names:
                               hint="use it inside those branches, or give it in the others too",
                               related=((known.span, "given here"),))  # fmt: skip
         elif name in space.later:
-            self.problems.add("used-before-given", node.span, f"`{name}` is given further down",
-                              expected="a name given above", found=name,
-                              hint="the order on the page is the order of work: move the line that gives it up")  # fmt: skip
+            self.problems.add(
+                "used-before-given",
+                node.span,
+                f"`{name}` is given further down",
+                expected="a name given above",
+                found=name,
+                hint="the order on the page is the order of work: move the line that gives it up",
+            )
         else:
             self.problems.add("unknown-name", node.span, f"`{name[:40]}` is not known here",
                               expected="a name given above", found=name[:40],
@@ -163,9 +178,12 @@ class Names:
         closed = [self.sets[index].name for index in sets if index >= 0 and index not in at.open]
         if closed:
             self.problems.add(
-                "row-leak", span, f"`{name}` has a value for every row of `{closed[0]}`",
-                expected=f"a use in `each: {closed[0]}`, or in sum(… over {closed[0]}) and its kin", found="a use outside",
-            )  # fmt: skip
+                "row-leak",
+                span,
+                f"`{name}` has a value for every row of `{closed[0]}`",
+                expected=f"a use in `each: {closed[0]}`, or in sum(… over {closed[0]}) and its kin",
+                found="a use outside",
+            )
 
     def _look_over(self, node: Over, space: Space, at: Context) -> None:
         index = self.set_named(node.rows, node.rows_span, space)

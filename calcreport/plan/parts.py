@@ -5,7 +5,7 @@ Part lines and name spaces in, planned lines for handed formulas out; adds `part
 
 from __future__ import annotations
 
-from calcreport.core.expression import Expression, Name
+from calcreport.core.expression import Name
 from calcreport.core.problems import Problems, listed
 from calcreport.core.source import Citation
 from calcreport.core.units import dimension_words
@@ -27,7 +27,9 @@ class PartHander:
         siblings = {name.removeprefix(mark): value for name, value in space.siblings.items() if name.startswith(mark)}
         if not body.sees_user:
             return Space({}, later, space.stem + mark, siblings)
-        return Space(dict(space.names), later | space.later, space.stem + mark, siblings, dict(space.partial), space.told)
+        return Space(
+            dict(space.names), later | space.later, space.stem + mark, siblings, dict(space.partial), space.told
+        )
 
     def hand_over(
         self, line: PartUse, body: PartBody, space: Space, inner: Space, at: Context
@@ -139,10 +141,15 @@ class PartHander:
                 continue
             taken = space.names.get(mark + name) or space.partial.get(mark + name)
             if taken is not None and taken is not value:
-                self.problems.add("part-clash", line.name.span, f"the part `{line.name.name}` gives `{name}`, which stands already",
-                                  expected="names that are free", found=name,
-                                  hint=f"write `as: name`, and use name.{name}",
-                                  related=((taken.span, "given here"),))  # fmt: skip
+                self.problems.add(
+                    "part-clash",
+                    line.name.span,
+                    f"the part `{line.name.name}` gives `{name}`, which stands already",
+                    expected="names that are free",
+                    found=name,
+                    hint=f"write `as: name`, and use name.{name}",
+                    related=((taken.span, "given here"),),
+                )
             else:
                 space.names[mark + name] = value
 

@@ -24,8 +24,15 @@ from calcreport.core.expression import (
 from calcreport.core.late import load
 from calcreport.core.problems import Problems
 from calcreport.core.units import NONE
-from calcreport.plan.model import Plan, PlannedBranches, PlannedEach, PlannedGives, PlannedLine, PlannedPart
-
+from calcreport.plan.model import (
+    Plan,
+    PlannedBranches,
+    PlannedEach,
+    PlannedGives,
+    PlannedLine,
+    PlannedPart,
+    PlannedUnknown,
+)
 
 #: nodes of formula and equation together, and the sum of their powers, that are put to SymPy
 MOST_NODES, MOST_POWERS = 80, 8
@@ -43,10 +50,13 @@ def _prove(line: PlannedLine, plan: Plan, problems: Problems) -> None:
             for arm in line.arms:
                 if not _is_small(arm.formula, left, right):
                     problems.add(
-                        "not-as-cited", left.span, "the cited equation is too long to be proved",
-                        expected=f"{MOST_NODES} symbols and signs with the formula, powers of {MOST_POWERS} in all at most",
-                        found="more", hint="give parts of it lines of their own, or leave `as cited` out",
-                    )  # fmt: skip
+                        "not-as-cited",
+                        left.span,
+                        "the cited equation is too long to be proved",
+                        expected=f"{MOST_NODES} symbols and signs with the formula, powers of {MOST_POWERS} in all",
+                        found="more",
+                        hint="give parts of it lines of their own, or leave `as cited` out",
+                    )
                 elif not _satisfies(line.slot, arm.formula, left, right, plan):
                     problems.add(
                         "not-as-cited", arm.formula.span, "the formula does not satisfy the equation it cites",
@@ -57,7 +67,7 @@ def _prove(line: PlannedLine, plan: Plan, problems: Problems) -> None:
             for one in arms:
                 for inner in one.lines:
                     _prove(inner, plan, problems)
-        case PlannedEach(_, lines) | PlannedPart(_, _, lines):
+        case PlannedEach(_, lines) | PlannedPart(_, _, lines) | PlannedUnknown(lines=lines):
             for inner in lines:
                 _prove(inner, plan, problems)
 

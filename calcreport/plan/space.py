@@ -77,7 +77,9 @@ class Maker:
                           found=found, related=((sibling.span, "given here"),))  # fmt: skip
         return False
 
-    def row_set(self, name: str, space: Space, outer: tuple[int, ...], row_names: tuple[str, ...], span: Span) -> RowSet:
+    def row_set(
+        self, name: str, space: Space, outer: tuple[int, ...], row_names: tuple[str, ...], span: Span
+    ) -> RowSet:
         """Make a set, or reuse the one an earlier arm made under this name."""
         sibling = space.siblings.get(name)
         if isinstance(sibling, RowSet) and name not in space.names and sibling.outer == outer:
@@ -96,7 +98,12 @@ class Maker:
         if taken is None:
             return True
         self.problems.add(
-            "given-twice", span, f"`{name}` is given twice", expected="a name given once, or once in each branch of one block",
-            found=name, hint="take another name for the second value", related=((taken.span, "first here"),),
-        )  # fmt: skip
+            "given-twice",
+            span,
+            f"`{name}` is given twice",
+            expected="a name given once, or once in each branch of one block",
+            found=name,
+            hint="take another name for the second value",
+            related=((taken.span, "first here"),),
+        )
         return name not in space.names

@@ -16,7 +16,9 @@ from calcreport.read.fields import Fields, as_mapping
 from calcreport.read.model import BarCallout, BarGroup
 from calcreport.read.nodes import Mapping
 
-_GROUP = re.compile(r"(?:([0-9]{1,4})\s*(?:-\s*|legs\s+|x\s*)?)?(#\s*[0-9]+|No\.?\s*[0-9]+[A-Za-z]?|[0-9]+M|[DH][0-9]+)")
+_GROUP = re.compile(
+    r"(?:([0-9]{1,4})\s*(?:-\s*|legs\s+|x\s*)?)?(#\s*[0-9]+|No\.?\s*[0-9]+[A-Za-z]?|[0-9]+M|[DH][0-9]+)"
+)
 _SPACED = re.compile(r"(.*?)\s*@\s*(.+)")
 _LENGTHS = {"us": "in", "si": "mm"}
 MOST_GROUPS = 20

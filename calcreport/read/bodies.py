@@ -58,8 +58,13 @@ class BodyReader:
         if name not in self._entries:
             return self.read_file(name, span)
         if name in self._open:
-            self.problems.add("part-loop", span, f"the part `{name[:40]}` uses itself", expected="parts that lead to an end",
-                              found=" → ".join([*self._open[-3:], name]))  # fmt: skip
+            self.problems.add(
+                "part-loop",
+                span,
+                f"the part `{name[:40]}` uses itself",
+                expected="parts that lead to an end",
+                found=" → ".join([*self._open[-3:], name]),
+            )
             return None
         if name not in self._read:
             self._open.append(name)
@@ -73,7 +78,9 @@ class BodyReader:
         given = fields.mapping("given")
         givens: tuple[Given, ...] = read_givens(given, self.table, self.problems) if given else ()
         formulas = FormulaReader(self.table, self.place, self.problems)
-        lines = LineReader(formulas, self.document, self.part, self.problems).lines(fields.items("lines", required=True))
+        lines = LineReader(formulas, self.document, self.part, self.problems).lines(
+            fields.items("lines", required=True)
+        )
         return PartBody(
             title=title,
             given=givens,

@@ -13,9 +13,10 @@ from calcreport.core.source import Span
 from calcreport.read.fields import Fields, is_empty
 from calcreport.read.gathering import Gathered
 from calcreport.read.library import Editions, Library
-from calcreport.read.model import SYSTEMS, Calculation, Given, System, Template
+from calcreport.read.model import SYSTEMS, Calculation, Given, System
 from calcreport.read.nodes import Mapping, Scalar
-from calcreport.read.values import Material, ValueReader, is_complete
+from calcreport.read.single_values import Material
+from calcreport.read.values import ValueReader, is_complete
 
 _MARK = re.compile(r"[A-Z][A-Za-z0-9]{0,11}")
 #: marks of the front sheets and appendices
@@ -58,7 +59,9 @@ class CalculationReader:
         if isinstance(name, Scalar) and not is_empty(name):
             template = self.library.template(name.text, system, self.editions, name.span)
         # without its template nobody knows which material roles a calculation takes
-        roles = _roles(template.body.given) if template else tuple(k.text for k, _ in node.entries if k.text not in _LATER)
+        roles = (
+            _roles(template.body.given) if template else tuple(k.text for k, _ in node.entries if k.text not in _LATER)
+        )
         fields = Fields(node, (*_KEYS, *roles), "a calculation", self.problems, _LATER)
         fields.choice("units", SYSTEMS)
         mark = fields.scalar("mark", required=True)

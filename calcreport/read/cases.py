@@ -13,7 +13,8 @@ from calcreport.read.fields import Fields, as_items, as_mapping
 from calcreport.read.library import ANY, Library
 from calcreport.read.model import SYSTEMS, Calculation, Case, Expected, Template
 from calcreport.read.nodes import Mapping, Node, Scalar, read_tree
-from calcreport.read.values import Material, ValueReader, is_complete
+from calcreport.read.single_values import Material
+from calcreport.read.values import ValueReader, is_complete
 
 _KEYS = ("case", "units", "year", "given", "materials", "expect", "stops")
 VERDICTS = ("OK", "NG", "not applicable", "not evaluated")
@@ -49,7 +50,9 @@ class _CaseReader:
         settled = self.settled()
         if settled is None:
             return None
-        reader = ValueReader(self.materials(), self.library.bar_table(self.template, settled.system), self.node.span, self.problems)
+        reader = ValueReader(
+            self.materials(), self.library.bar_table(self.template, settled.system), self.node.span, self.problems
+        )
         given = fields.mapping("given") or Mapping((), self.node.span)
         values = reader.read(settled.body.given, given, f"the case `{name[:60]}`")
         if self.problems.met > before or not is_complete(values, settled.body.given):
@@ -111,6 +114,11 @@ class _CaseReader:
         scalar = fields.scalar("tol", required=isinstance(value, Amount))
         found = read_amount(scalar.text, scalar.span, self.problems) if scalar else None
         if scalar and found and isinstance(value, Amount) and found.dimension != value.dimension:
-            self.problems.add("unit-mismatch", scalar.span, "the tolerance is not in the unit of the value",
-                              expected=dimension_words(value.dimension), found=dimension_words(found.dimension))  # fmt: skip
+            self.problems.add(
+                "unit-mismatch",
+                scalar.span,
+                "the tolerance is not in the unit of the value",
+                expected=dimension_words(value.dimension),
+                found=dimension_words(found.dimension),
+            )
         return found

@@ -82,7 +82,9 @@ def _mixed(adopted: str, node: Mapping, library: Library, problems: Problems) ->
     return mixed
 
 
-def read_criteria(node: Mapping | None, library: Library, system: str, problems: Problems) -> tuple[tuple[str, str], ...]:
+def read_criteria(
+    node: Mapping | None, library: Library, system: str, problems: Problems
+) -> tuple[tuple[str, str], ...]:
     """Read the criteria against the library's closed list."""
     tree = library.tree("criteria.yaml")
     known = tree.get("criteria") if tree else None
@@ -118,5 +120,3 @@ def _holds(scalar: Scalar, name: str, entry: Node, system: str, problems: Proble
         read = read_unit(unit.text, unit.span, problems)
         return read is not None and read_in_unit(scalar.text, scalar.span, problems, read) is not None
     return True
-
-

@@ -115,8 +115,13 @@ class _Reader:
         mapping = fields.mapping("gives")
         pairs: list[tuple[Symbol, str]] = []
         if mapping is not None and kind not in ("bars", "spaced bars"):
-            self.problems.add("unknown-key", mapping.span.part(0, 1), "only a bar callout gives values",
-                              expected="`kind: bars` or `kind: spaced bars` beside `gives`", found=f"a {kind}")  # fmt: skip
+            self.problems.add(
+                "unknown-key",
+                mapping.span.part(0, 1),
+                "only a bar callout gives values",
+                expected="`kind: bars` or `kind: spaced bars` beside `gives`",
+                found=f"a {kind}",
+            )
             return ()
         outputs = tuple(name for name in _OUTPUTS if name != "spacing" or kind == "spaced bars")
         for key, value in mapping.entries if mapping else ():

@@ -116,8 +116,13 @@ class Library:
         title = fields.text("title", required=True)
         systems = tuple(s.text for s in fields.texts("units"))
         if not systems or any(s not in SYSTEMS for s in systems):
-            self.problems.add("not-a-word", fields.span_of("units"), "`units` names the unit systems served",
-                              expected="us, si, or both: [us, si]", found=", ".join(systems)[:60] or "nothing")  # fmt: skip
+            self.problems.add(
+                "not-a-word",
+                fields.span_of("units"),
+                "`units` names the unit systems served",
+                expected="us, si, or both: [us, si]",
+                found=", ".join(systems)[:60] or "nothing",
+            )
         code = fields.mapping("code", required=True)
         if code is None or not systems or any(s not in SYSTEMS for s in systems):
             return None

@@ -27,6 +27,7 @@ from calcreport.read.model import (
     PartUse,
     Require,
     Text,
+    Unknown,
 )
 from calcreport.read.nodes import Mapping, Node
 from calcreport.read.symbols import OWN_KEYS, hold_name
@@ -38,10 +39,10 @@ _KINDS: dict[str, tuple[str, ...]] = {
     "gives": ("formula", "branches", *OWN_KEYS, "cite", "as cited"),
     "branches": (), "rows": ("columns", "list", "says", "cite"), "each": ("lines", "table", "show"),
     "part": ("as", "same", "with"), "check": ("holds", "says", "cite"), "require": ("says", "cite"),
-    "figure": ("with",),
+    "figure": ("with",), "unknown": ("between", "satisfies", "lines", *OWN_KEYS),
 }  # fmt: skip
 #: kinds of lines, and keys of kinds, that the language has and this version does not read
-_LATER = ("unknown", "method", "by another method")
+_LATER = ("method", "by another method")
 _KEYS_LATER: dict[str, tuple[str, ...]] = {"rows": ("spaced", "file")}
 MOST_LINES = 400
 
@@ -86,6 +87,7 @@ class LineReader:
         readers: dict[str, Callable[[Fields], Line | None]] = {
             "gives": self.gives, "branches": self.branches, "rows": self.rows, "each": self.each,
             "part": self.part, "check": self.check, "require": self.require, "figure": self.figure,
+            "unknown": self.unknown,
         }  # fmt: skip
         reader = readers.get(kind)
         return reader(fields) if reader else self.text(kind, fields)
@@ -121,8 +123,13 @@ class LineReader:
 
     def arms(self, fields: Fields) -> tuple[Arm, ...]:
         if fields.has("formula") and fields.has("branches"):
-            self.problems.add("unknown-key", fields.span_of("branches").part(0, 1), "`formula` and `branches` stand on one line",
-                              expected="one of them", found="both")  # fmt: skip
+            self.problems.add(
+                "unknown-key",
+                fields.span_of("branches").part(0, 1),
+                "`formula` and `branches` stand on one line",
+                expected="one of them",
+                found="both",
+            )
         if fields.node_of("formula") is not None:
             formula = self.formulas.formula(fields.node_of("formula"))
             return (Arm(None, formula),) if formula is not None else ()
@@ -172,7 +179,7 @@ class LineReader:
             entry = as_mapping(node, "a branch", self.problems)
             if entry is None:
                 continue
-            arm = Fields(entry, ("when", "lines", "otherwise"), "a branch", self.problems)
+            arm = Fields(entry, ("when", "lines", "otherwise", "says"), "a branch", self.problems)
             other = arm.has("otherwise")
             if other:
                 self.hold_last(arm, place == len(nodes) - 1)
@@ -181,7 +188,7 @@ class LineReader:
             when = None if other else self.formulas.condition(arm.node_of("when"))
             lines = self.lines(arm.items("otherwise" if other else "lines", required=True))
             if other or when is not None:
-                arms.append(BranchArm(when, lines, entry.span))
+                arms.append(BranchArm(when, lines, arm.text("says"), entry.span))
         if nodes:
             self.need_otherwise(nodes, fields)
         return Branches(tuple(arms), fields.span)
@@ -197,6 +204,20 @@ class LineReader:
         if rows is None:
             return None
         return Each(Name(rows.text, rows.span), lines, table, show, fields.span)  # type: ignore[arg-type]
+
+    def unknown(self, fields: Fields) -> Line | None:
+        name = fields.scalar("unknown", required=True)
+        symbol = self.formulas.symbol(name, fields) if name is not None else None
+        bounds = [self.formulas.formula(node) for node in fields.items("between", required=True)]
+        if len(bounds) != 2 and fields.has("between"):
+            self.problems.add("wrong-shape", fields.span_of("between").part(0, 1), "`between` takes two bounds",
+                              expected="[lower, upper]", found=f"{len(bounds)}")  # fmt: skip
+        equation = self.formulas.equation(fields.scalar("satisfies", required=True))
+        lines = self.lines(fields.items("lines"))
+        low, high = bounds if len(bounds) == 2 else (None, None)
+        if name is None or symbol is None or equation is None or low is None or high is None:
+            return None
+        return Unknown(symbol, low, high, *equation, lines, fields.span, name.span)
 
     def check(self, fields: Fields) -> Line | None:
         name = fields.text("check", required=True)

@@ -32,17 +32,20 @@ _KNOWN: tuple[tuple[str, _Words], ...] = (
     ("mapping values are not allowed", _Words(
         "`: ` has no place here", "one key and its value on a line, keys of one mapping under one another",
         "text that holds `: ` needs quotes")),
-    ("find expected ':'", _Words("a key without its `: `", "`key: value`", "text of several lines needs quotes, or | after its key")),
+    ("find expected ':'", _Words("a key without its `: `", "`key: value`", "text of several lines needs quotes")),
     ("nesting depth", _Words("brackets are nested too deeply", "a few levels")),
     ("tab character", _Words("a tab stands in the indent", "spaces", "replace tabs by spaces")),
     ("cannot start any token", _Words(
         "text cannot begin with this character", "a letter, a digit or a quote", "put the text in quotes")),
     ("expected ',' or ']'", _Words(
-        "the list is not closed before this", "`,` or `]`", "close the bracket; text that holds , [ ] { } needs quotes")),
+        "the list is not closed before this", "`,` or `]`",
+        "close the bracket; text that holds , [ ] { } needs quotes")),
     ("expected ',' or '}'", _Words(
-        "the mapping is not closed before this", "`,` or `}`", "close the brace; text that holds , [ ] { } needs quotes")),
+        "the mapping is not closed before this", "`,` or `}`",
+        "close the brace; text that holds , [ ] { } needs quotes")),
     ("unexpected end of stream", _Words("a quote is opened and not closed", "the closing quote")),
-    ("expected '-' indicator", _Words("an entry of the list is missing its `- `", "`- `, indented like the entries above")),
+    ("expected '-' indicator", _Words(
+        "an entry of the list is missing its `- `", "`- `, indented like the entries above")),
     ("expected key", _Words(
         "a key is missing here", "`key: value`, indented like the keys above",
         "a quote inside quotes is written twice: ''")),

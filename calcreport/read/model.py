@@ -43,9 +43,11 @@ from calcreport.read.template_model import (
     System,
     Template,
     Text,
+    Unknown,
 )
 
 __all__ = [
+    "SYSTEMS",
     "Arm",
     "Assumption",
     "BarCallout",
@@ -78,10 +80,10 @@ __all__ = [
     "Range",
     "Require",
     "Rows",
-    "SYSTEMS",
     "Symbol",
     "System",
     "Template",
     "Text",
+    "Unknown",
     "ValueOrigin",
 ]

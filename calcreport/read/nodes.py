@@ -62,13 +62,19 @@ class Told:
 Node: TypeAlias = Scalar | Sequence | Mapping | Told
 
 _ODD = re.compile("[\x00-\x08\x0b-\x1f\x7f-\x9f\u2028\u2029\ufeff\ud800-\udfff\ufffe\uffff]")
-_ODD_WORDS = {"\r": "a carriage return without a line feed", "\x00": "a null byte", "\ufeff": "a byte order mark inside the text",
-              "\x85": "a next-line sign", "\u2028": "a line separator", "\u2029": "a paragraph separator"}  # fmt: skip
+_ODD_WORDS = {
+    "\r": "a carriage return without a line feed",
+    "\x00": "a null byte",
+    "\ufeff": "a byte order mark inside the text",
+    "\x85": "a next-line sign",
+    "\u2028": "a line separator",
+    "\u2029": "a paragraph separator",
+}
 _CUT = re.compile(r"[ \t]*#\w")
 _LOADER = getattr(yaml, "CSafeLoader", yaml.SafeLoader)
 
 
-class _Stop(Exception):  # noqa: N818 - leaves the reader after a problem was added
+class _Stop(Exception):
     """Leaves the reader after a problem was added."""
 
 
@@ -83,9 +89,14 @@ def read_tree(source: Source, problems: Problems) -> Node | None:
     odd = _ODD.search(text)
     if odd:
         at = Span(source, odd.start(), odd.end())
-        problems.add("odd-character", at, "this character has no place in a text file", expected="printable text and line ends",
-                     found=f"{_ODD_WORDS.get(odd[0], 'a control character')} (U+{ord(odd[0]):04X})",
-                     hint="delete it, or save the file as plain UTF-8 text")  # fmt: skip
+        problems.add(
+            "odd-character",
+            at,
+            "this character has no place in a text file",
+            expected="printable text and line ends",
+            found=f"{_ODD_WORDS.get(odd[0], 'a control character')} (U+{ord(odd[0]):04X})",
+            hint="delete it, or save the file as plain UTF-8 text",
+        )
         return None
     before = problems.met
     try:
@@ -122,9 +133,7 @@ class _Reader:
         assert first is not None and last is not None
         return Span(self.source, first.index, max(min(last.index, len(self.source.text)), first.index))
 
-    def stop(
-        self, slug: str, event: yaml.Event, message: str, expected: str, found: str, hint: str = ""
-    ) -> NoReturn:
+    def stop(self, slug: str, event: yaml.Event, message: str, expected: str, found: str, hint: str = "") -> NoReturn:
         self.problems.add(slug, self.span(event), message, expected=expected, found=found, hint=hint)
         raise _Stop
 
@@ -134,8 +143,14 @@ class _Reader:
             self.stop("file-too-large", event, "the file is nested too deeply or holds too much",
                       f"{DEEPEST} levels and {MOST_NODES:,} values at most", "more")  # fmt: skip
         if isinstance(event, yaml.AliasEvent) or getattr(event, "anchor", None):
-            self.stop("yaml-feature", event, "anchors and aliases are not read", "the value itself", "an anchor or alias",
-                      "write the value out; text that begins with & or * needs quotes")  # fmt: skip
+            self.stop(
+                "yaml-feature",
+                event,
+                "anchors and aliases are not read",
+                "the value itself",
+                "an anchor or alias",
+                "write the value out; text that begins with & or * needs quotes",
+            )
         if tag := getattr(event, "tag", None):
             self.stop("yaml-feature", event, "tags are not read", "the value without a tag", f"`{str(tag)[:40]}`",
                       "text that begins with ! needs quotes")  # fmt: skip

@@ -49,10 +49,15 @@ def hold_name(scalar: Scalar, problems: Problems) -> bool:
     if _NAME.fullmatch(name) and name not in _TAKEN:
         return True
     problems.add(
-        "bad-name", scalar.span, f"`{name[:40]}` cannot be a name", expected="a letter, then letters, digits and _",
+        "bad-name",
+        scalar.span,
+        f"`{name[:40]}` cannot be a name",
+        expected="a letter, then letters, digits and _",
         found="a word of the formula language" if name in _TAKEN else name[:40] or "nothing",
-        hint="write it in ASCII, and give its printed form under `shows`" if name not in _TAKEN else "take another name",
-    )  # fmt: skip
+        hint="write it in ASCII, and give its printed form under `shows`"
+        if name not in _TAKEN
+        else "take another name",
+    )
     return False
 
 
@@ -81,9 +86,13 @@ def read_symbol(key: Scalar, fields: Fields, base: Symbol | None, problems: Prob
         return replace(base, says=says, shows=shows, places=places)
     if not any(fields.node_of(told) for told in ("unit", "one of", "kind")):
         problems.add(
-            "no-unit", key.span, f"`{name}` has no unit", expected="`unit: …`, `one of: […]`, or `kind: count` or yes/no",
-            found="none of them", hint="a pure number says so: unit: '1'",
-        )  # fmt: skip
+            "no-unit",
+            key.span,
+            f"`{name}` has no unit",
+            expected="`unit: …`, `one of: […]`, or `kind: count` or yes/no",
+            found="none of them",
+            hint="a pure number says so: unit: '1'",
+        )
     return None
 
 

@@ -122,6 +122,8 @@ class BranchArm:
 
     when: Condition | None
     lines: tuple[Line, ...]
+    #: what the arm is for, in words; where one arm of a block has them, they stand in place of its conditions
+    says: str
     span: Span
 
 
@@ -189,6 +191,20 @@ class Each:
 
 
 @dataclass(frozen=True, slots=True)
+class Unknown:
+    """The value between two bounds for which both sides of an equation agree; the lines may depend on it."""
+
+    symbol: Symbol
+    low: Expression
+    high: Expression
+    left: Expression
+    right: Expression
+    lines: tuple[Line, ...]
+    span: Span
+    name_span: Span
+
+
+@dataclass(frozen=True, slots=True)
 class PartUse:
     """Another template's lines, or those of an entry of `parts`."""
 
@@ -232,7 +248,7 @@ class Drawing:
     span: Span
 
 
-Line: TypeAlias = Text | Gives | Branches | Rows | Each | PartUse | Check | Require | Drawing
+Line: TypeAlias = Text | Gives | Branches | Rows | Each | Unknown | PartUse | Check | Require | Drawing
 
 
 @dataclass(frozen=True, slots=True)

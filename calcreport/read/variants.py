@@ -63,8 +63,11 @@ class _Settler:
             return True
         if not isinstance(only, Scalar) or _KEY.fullmatch(only.text) is None:
             self.problems.add(
-                "not-a-word", only.span, "`only` names no unit system and no year",
-                expected="us, si, a year, or both, as in us 2019", found=only.text[:40] if isinstance(only, Scalar) else "a list or mapping",
-            )  # fmt: skip
+                "not-a-word",
+                only.span,
+                "`only` names no unit system and no year",
+                expected="us, si, a year, or both, as in us 2019",
+                found=only.text[:40] if isinstance(only, Scalar) else "a list or mapping",
+            )
             return True
         return only.text in self.wanted

@@ -9,7 +9,7 @@ from calcreport.core.expression import Binary, Compare
 from calcreport.core.units import ONE
 from calcreport.report.digits import number_text
 from calcreport.report.drawings import draw
-from calcreport.report.forms import Opened, joint_comparisons
+from calcreport.report.forms import Opened, equation_unit, joint_comparisons
 from calcreport.report.given_blocks import GivenBlocks
 from calcreport.report.model import (
     Block,
@@ -28,11 +28,13 @@ from calcreport.report.model import (
     Strong,
     Words,
 )
+from calcreport.report.notation import relation, show_figure
 from calcreport.report.row_blocks import RowBlocks
 from calcreport.report.script import (
     Item,
     SayBranch,
     SayCheck,
+    SayEquation,
     SayFigure,
     SayFormula,
     SayGivens,
@@ -45,6 +47,7 @@ from calcreport.report.script import (
     SayStop,
     SayTable,
     SayText,
+    SayUnknown,
 )
 from calcreport.report.told import Told
 
@@ -110,6 +113,10 @@ class Composer:
                 return self.rows.made(item)
             case SayTable():
                 return (self.rows.table(item),)
+            case SayUnknown():
+                return (self.unknown(item),)
+            case SayEquation():
+                return (self.equation(item),)
             case SayBranch():
                 return self.branch(item)
             case SayCheck():
@@ -159,8 +166,34 @@ class Composer:
             because,
         )
 
+    def unknown(self, item: SayUnknown) -> Block:
+        """Return `c so that P_n M_u = M_n P_u: c = 12.83 in.`"""
+        worked = item.worked
+        line = worked.line
+        equation = Row((self.shared.formula(line.left), relation("="), self.shared.formula(line.right)))
+        words: Words = (self.slots[line.slot].symbol.says, ", so that ", equation)
+        return Line(item.number, self.told.anchor(item.number), words, self.shared.symbol(line.slot), None, None, None,
+                    self.told.value(line.slot, worked.key), SourceLane(""))  # fmt: skip
+
+    def equation(self, item: SayEquation) -> Block:
+        """Return both sides of an equation with their numbers at the root."""
+        worked = item.worked
+        items: list[Formula] = []
+        for side, node in (("left", worked.line.left), ("right", worked.line.right)):
+            unit = equation_unit(node, self.forms)
+            figure = show_figure(self.forms.equation(worked, side), None if unit is ONE else unit)
+            items += [Letters(",   ")] if items else []
+            items += [self.shared.formula(node), relation("="), figure]
+        anchor = self.told.anchor(item.number)
+        lane = self.told.source("", None, worked.open, item.number)
+        return Statement(item.number, anchor, ("both sides there",), Row(tuple(items)), lane)
+
     def branch(self, item: SayBranch) -> tuple[Block, ...]:
-        """Say which comparison chose a block."""
+        """Say which comparison chose a block, or in the template's own words what the arm is for."""
+        arms = item.worked.line.arms
+        if any(arm.says for arm in arms):
+            says = arms[item.worked.arm].says
+            return (Paragraph((says[:1].upper() + says[1:] + ":",), "plain"),) if says else ()
         shown = self.told.because(item.worked.line, item.worked.arm, item.worked.open)
         return (Paragraph(("Since ", shown, ":"), "plain"),) if shown is not None else ()
 

@@ -27,14 +27,16 @@ from calcreport.calculate.model import (
     WorkedPart,
     WorkedProject,
     WorkedRequire,
+    WorkedUnknown,
 )
 from calcreport.core.expression import Call, Compare, Expression, Name, Node, Over, children
 from calcreport.core.units import NONE, ONE, Unit
-from calcreport.report.digits import Digits, Id, Order, Sum, make_figure
+from calcreport.report.digits import Digits, Id, Order, Sum, make_coarse_figure, make_figure
 from calcreport.report.families import Family, factor_to
 from calcreport.report.forms import (
     CalculationForms,
     Opened,
+    equation_unit,
     holds,
     is_size,
     link_place,
@@ -172,6 +174,8 @@ class _Lines:
                 case WorkedEach():
                     for row in line.rows:
                         self.lines(row)
+                case WorkedUnknown():
+                    self.unknown(line)
                 case WorkedCheck():
                     self.check(line)
                 case WorkedRequire():
@@ -180,6 +184,23 @@ class _Lines:
                             self.comparison(side.test, line.open, side)
                 case _:
                     self.made(line)
+
+    def unknown(self, line: WorkedUnknown) -> None:
+        """Add the root, its lines, and both sides of the equation at the root."""
+        slot, key = line.line.slot, line.key
+        symbol = self.slots[slot].symbol
+        unit = symbol.unit or ONE
+        number = self.values.number(slot, key) / unit.size
+        self.digits.add(self.forms.id(slot, key), make_figure(number, unit.size, least=symbol.places or 0))
+        self.lines(line.lines)
+        for side, node, value in (("left", line.line.left, line.left), ("right", line.line.right, line.right)):
+            shown = equation_unit(node, self.forms)
+            name: Id = ("equation", self.forms.mark, id(line.line), line.open, side)
+            self.digits.add(name, make_coarse_figure(value / shown.size, shown.size))
+            inputs = self.inputs(node, line.open)
+            if inputs:
+                confirm = self.confirming(self.forms.worked.compiled(node), inputs, line.open)
+                self.digits.need(Sum(confirm, tuple(i for _, _, i in inputs), name))
 
     def made(self, line: WorkedLine) -> None:
         """Add figures for the cells of a set made here."""

@@ -72,6 +72,14 @@ def make_figure(number: float, size: float, *, least: int = 0, exact_places: int
     return Figure(number, exponent, max(_places(mantissa, USUAL), least), False, size * 10.0**exponent)
 
 
+def make_coarse_figure(number: float, size: float) -> Figure:
+    """Return a form of four digits whatever the size: a large number takes a power of ten at once."""
+    power = math.floor(math.log10(abs(number)) + 1e-12) if number else 0
+    exponent = 3 * (power // 3) if power >= 4 else 0
+    places = _places(number / 10.0**exponent, USUAL)
+    return Figure(number, exponent, places, False, size * 10.0**exponent)
+
+
 def _exponent(number: float) -> int:
     if number == 0 or not math.isfinite(number):
         return 0

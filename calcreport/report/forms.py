@@ -18,6 +18,7 @@ from calcreport.calculate.model import (
     Worked,
     WorkedCheck,
     WorkedGives,
+    WorkedUnknown,
 )
 from calcreport.core.expression import Call, Compare, Condition, Expression, Logic, Name, Number
 from calcreport.core.units import NONE, ONE, Unit
@@ -65,6 +66,10 @@ class CalculationForms:
         """Return the figure of a side of a printed comparison."""
         name = ("side", self.mark, id(test), opened, side)
         return self.digits.figure(name) if self.digits.root(name) in self.digits.figures else None
+
+    def equation(self, worked: WorkedUnknown, side: str) -> Figure:
+        """Return the figure of a side of an equation at its root."""
+        return self.digits.figure(("equation", self.mark, id(worked.line), worked.open, side))
 
     def ratio(self, check: WorkedCheck) -> Figure | None:
         """Return the figure of a check's ratio."""
@@ -131,6 +136,12 @@ def holds(test: Compare, left: float, right: float) -> bool:
 def is_size(node: Expression) -> TypeGuard[Call]:
     """Tell whether a side is the size of one symbol: |M_u|."""
     return isinstance(node, Call) and node.function == "abs" and isinstance(node.arguments[0], Name)
+
+
+def equation_unit(node: Expression, forms: CalculationForms) -> Unit:
+    """Return the unit a side of an equation is printed in."""
+    dimension = dimension_of(node, forms.worked.plan.slots)
+    return (forms.family(node, None).unit(dimension) if dimension != NONE else ONE) or ONE
 
 
 def side_unit(test: Compare, forms: CalculationForms) -> Unit:

@@ -25,6 +25,7 @@ from calcreport.calculate.model import (
     WorkedRequire,
     WorkedRows,
     WorkedText,
+    WorkedUnknown,
 )
 
 
@@ -102,6 +103,22 @@ class SayTable:
 
 
 @dataclass(frozen=True, slots=True)
+class SayUnknown:
+    """A value found so that both sides of an equation agree."""
+
+    number: int
+    worked: WorkedUnknown
+
+
+@dataclass(frozen=True, slots=True)
+class SayEquation:
+    """The equation at the value found, each side with its number."""
+
+    number: int
+    worked: WorkedUnknown
+
+
+@dataclass(frozen=True, slots=True)
 class SayBranch:
     """The condition that chose a block."""
 
@@ -149,6 +166,8 @@ Item: TypeAlias = (
     | SayFormula
     | SayMade
     | SayTable
+    | SayUnknown
+    | SayEquation
     | SayBranch
     | SayCheck
     | SayRequire
@@ -248,6 +267,12 @@ def _lines(writer: _Writer, lines: tuple[WorkedLine, ...]) -> None:
                 _lines(writer, line.lines)
             case WorkedEach():
                 _each(writer, line)
+            case WorkedUnknown():
+                number = writer.next()
+                writer.items.append(SayUnknown(number, line))
+                writer.line_of[line.line.slot, line.key] = number
+                _lines(writer, line.lines)
+                writer.items.append(SayEquation(writer.next(), line))
             case WorkedRows():
                 number = writer.next()
                 writer.items.append(SayMade(number, line))
@@ -271,7 +296,7 @@ def checks_below(lines: tuple[WorkedLine, ...]) -> list[WorkedCheck]:
         match line:
             case WorkedCheck():
                 found.append(line)
-            case WorkedPart() | WorkedBranches():
+            case WorkedPart() | WorkedBranches() | WorkedUnknown():
                 found += checks_below(line.lines)
             case WorkedEach():
                 for row in line.rows:
@@ -327,8 +352,10 @@ def _number_rest(writer: _Writer, each: WorkedEach) -> None:
         if id(check) in writer.check_line
     }
     for row in each.rows:
-        for line in gives_below(row):
-            writer.line_of.setdefault((line.line.slot, line.key), told.get(line.line.slot, writer.number))
+        given = [(line.line.slot, line.key) for line in gives_below(row)]
+        given += [(line.line.slot, line.key) for line in _unknowns_below(row)]
+        for slot, key in given:
+            writer.line_of.setdefault((slot, key), told.get(slot, writer.number))
         for check in checks_below(row):
             writer.check_line.setdefault(id(check), checks.get(check.line.name) or writer.number)
 
@@ -340,11 +367,25 @@ def gives_below(lines: tuple[WorkedLine, ...]) -> list[WorkedGives]:
         match line:
             case WorkedGives():
                 found.append(line)
-            case WorkedPart() | WorkedBranches():
+            case WorkedPart() | WorkedBranches() | WorkedUnknown():
                 found += gives_below(line.lines)
             case WorkedEach():
                 for row in line.rows:
                     found += gives_below(row)
+    return found
+
+
+def _unknowns_below(lines: tuple[WorkedLine, ...]) -> list[WorkedUnknown]:
+    found: list[WorkedUnknown] = []
+    for line in lines:
+        match line:
+            case WorkedUnknown():
+                found += [line, *_unknowns_below(line.lines)]
+            case WorkedPart() | WorkedBranches():
+                found += _unknowns_below(line.lines)
+            case WorkedEach():
+                for row in line.rows:
+                    found += _unknowns_below(row)
     return found
 
 

@@ -7,6 +7,7 @@ every line that differs by more than one part in a thousand million.
 from __future__ import annotations
 
 from dataclasses import dataclass
+from functools import partial
 from typing import Any
 
 from calcreport.calculate.model import Key, Worked, WorkedProject
@@ -75,7 +76,7 @@ def compare_paths(project: WorkedProject, make: Quantities | None = None) -> Agr
     for place in project.order:
         worked = project.calculations[place]
         mark = worked.calculation.mark
-        rework = Rework(worked.plan, make, lambda index, w=worked: _given_names(w, index))  # type: ignore[misc]
+        rework = Rework(worked.plan, make, partial(_given_names, worked), partial(_root, worked))
         again[mark] = rework
         _hand(worked, rework, again, make)
         stopped = ""
@@ -105,6 +106,13 @@ def _given_names(worked: Worked, index: int) -> list[tuple[Key, tuple[str, ...]]
             value = next(v for v in worked.calculation.given if v.given.name == planned.given.name)
             return [((), value.names)] if isinstance(value, GivenRows) else []
     return []
+
+
+def _root(worked: Worked, slot: int, key: Key) -> float:
+    """Return a root of the first path in its declared unit."""
+    unit = worked.plan.slots[slot].symbol.unit
+    assert unit is not None
+    return worked.values.number(slot, key) / unit.size
 
 
 def _hand(worked: Worked, rework: Rework, again: dict[str, Rework], make: Quantities) -> None:

@@ -36,10 +36,13 @@ from calcreport.plan.model import (
     PlannedPart,
     PlannedRequire,
     PlannedRows,
+    PlannedUnknown,
 )
 from calcreport.second.quantities import Quantities
 
 Key = tuple[int, ...]
+#: how closely both sides of an equation must agree at a root found in double precision
+RESIDUAL = 1e-9
 
 
 class Stopped(Exception):
@@ -49,8 +52,16 @@ class Stopped(Exception):
 class Rework:
     """One calculation worked again; `values` are quantities, words or None by slot and key."""
 
-    def __init__(self, plan: Plan, make: Quantities, names: Callable[[int], list[tuple[Key, tuple[str, ...]]]]) -> None:
+    def __init__(
+        self,
+        plan: Plan,
+        make: Quantities,
+        names: Callable[[int], list[tuple[Key, tuple[str, ...]]]],
+        root: Callable[[int, Key], float],
+    ) -> None:
         self.plan, self.make = plan, make
+        #: returns a root of the first path in its declared unit: roots are confirmed, not found again
+        self.root = root
         self.values: dict[tuple[int, Key], Any] = {}
         self.names: dict[tuple[int, Key], tuple[str, ...]] = {}
         for rows in plan.sets:
@@ -86,6 +97,8 @@ class Rework:
                     for inner in lines:
                         self.line(inner)
                 self.open.pop(rows, None)
+            case PlannedUnknown():
+                self.unknown(line)
             case PlannedRows():
                 self.rows(line)
             case PlannedCheck(name, holds):
@@ -111,6 +124,20 @@ class Rework:
         value = self.work(formula)
         one = self.make.unit(unit.factors) if unit is not None else self.make.pure(1)
         self.values[slot, self.key(slot)] = self.alike(value, one)[0]
+
+    def unknown(self, line: PlannedUnknown) -> None:
+        """Take the root the first path found, work the lines there, and hold both sides against one another."""
+        unit = self.plan.slots[line.slot].symbol.unit
+        assert unit is not None
+        key = self.key(line.slot)
+        self.values[line.slot, key] = self.make.unit(unit.factors) * self.make.mp.mpf(self.root(line.slot, key))
+        for inner in line.lines:
+            self.line(inner)
+        left, right = self.alike(self.work(line.left), self.work(line.right))
+        other = right.to(left.units).magnitude
+        gap, largest = abs(left.magnitude - other), max(abs(left.magnitude), abs(other))
+        if gap > RESIDUAL * largest:
+            raise Stopped(f"the two sides differ by {float(gap / largest):.1e} at the root")
 
     def rows(self, line: PlannedRows) -> None:
         """Make a set: every entry, every pairing that fits."""

@@ -87,31 +87,40 @@ BOMBS: dict[str, tuple[str, str]] = {
     "exponent": ("  - {gives: r, formula: '9^(9^9)', cite: geometry}\n", "bad-formula"),
     "exponent by a symbol": (
         "  - {gives: q, formula: 'num(b, in)', cite: geometry}\n"
-        "  - {gives: r, formula: '9^(q*9^9)', cite: geometry}\n  - {check: x, holds: 'r <= 1', cite: geometry}\n", "",
+        "  - {gives: r, formula: '9^(q*9^9)', cite: geometry}\n  - {check: x, holds: 'r <= 1', cite: geometry}\n",
+        "",
     ),
     "vanishing exponential in a tie": (
         "  - {gives: q, formula: '-num(b, in)*1e17', cite: geometry}\n"
-        "  - {check: x, holds: 'exp(q) <= 0', cite: geometry}\n  - {check: y, holds: '2^q <= 0', cite: geometry}\n", "",
+        "  - {check: x, holds: 'exp(q) <= 0', cite: geometry}\n  - {check: y, holds: '2^q <= 0', cite: geometry}\n",
+        "",
     ),
     "tower of powers in a tie": (
         "  - {gives: q, formula: 'num(b, in)/1e9', cite: geometry}\n"
-        "  - {check: x, holds: '((q^12)^12)^12 <= ((q^12)^12)^12', cite: geometry}\n", "",
+        "  - {check: x, holds: '((q^12)^12)^12 <= ((q^12)^12)^12', cite: geometry}\n",
+        "",
     ),
-    "zero in an exact tie": ("  - {check: x, holds: '1/(0.1 + 0.2 - 0.3) <= 1/(0.1 + 0.2 - 0.3)', cite: geometry}\n", ""),
+    "zero in an exact tie": (
+        "  - {check: x, holds: '1/(0.1 + 0.2 - 0.3) <= 1/(0.1 + 0.2 - 0.3)', cite: geometry}\n",
+        "",
+    ),
     "beyond all bounds": (
         "  - {gives: q, formula: 'num(b, in)*1e90', cite: geometry}\n"
         "  - {check: x, holds: 'q*q*q*q - q*q*q*q*q <= 1', cite: geometry}\n"
-        "  - {require: 'exp(q) <= 1', says: not reached, cite: geometry}\n", "",
+        "  - {require: 'exp(q) <= 1', says: not reached, cite: geometry}\n",
+        "",
     ),
     "sum of two hundred": ("  - {gives: r, formula: '" + "+".join(["1"] * 199) + "', cite: geometry}\n", ""),
     "sums in sums": (
         "  - {rows: p, cite: geometry, columns: {r: }, list: [" + ", ".join(["{r: '1'}"] * 900) + "]}\n"
-        "  - {check: x, holds: 'sum(sum(sum(sum(1 over p) over p) over p) over p) <= 1', cite: geometry}\n", "",
+        "  - {check: x, holds: 'sum(sum(sum(sum(1 over p) over p) over p) over p) <= 1', cite: geometry}\n",
+        "",
     ),
     "long proof": (
-        "  - {gives: r, formula: '2', as cited: '((((((r^12)^12)^12)^12)^12)^12)^12 = 1', cite: geometry}\n", "not-as-cited",
+        "  - {gives: r, formula: '2', as cited: '((((((r^12)^12)^12)^12)^12)^12)^12 = 1', cite: geometry}\n",
+        "not-as-cited",
     ),
-}  # fmt: skip
+}
 
 
 @pytest.mark.parametrize("name", BOMBS)

@@ -18,7 +18,11 @@ def test_forty_mistakes_of_one_stage_are_told_in_one_run(tmp_path: Path) -> None
     slugs = [problem["slug"] for problem in problems]
     assert ran.code == 2
     # ten unknown symbols, of which nine give r again; fifteen bare numbers; fifteen unknown sets
-    assert {slug: slugs.count(slug) for slug in set(slugs)} == {"unknown-name": 25, "given-twice": 9, "unit-mismatch": 15}
+    assert {slug: slugs.count(slug) for slug in set(slugs)} == {
+        "unknown-name": 25,
+        "given-twice": 9,
+        "unit-mismatch": 15,
+    }
     assert problems == sorted(problems, key=lambda p: (p["line"], p["column"]))
 
 
@@ -52,7 +56,8 @@ def test_a_case_file_stands_for_its_template(tmp_path: Path) -> None:
     make(tmp_path)
     (tmp_path / "trial.cases.yaml").write_text(
         "- case: third\n  units: us\n  given: {b: 1 in}\n  expect:\n"
-        "    r: {value: 0.3333, tol: 0.0001, source: 'hand: 1/3'}\n    ratio: {outcome: OK, source: 'hand: 0.33 is below 1'}\n"
+        "    r: {value: 0.3333, tol: 0.0001, source: 'hand: 1/3'}\n"
+        "    ratio: {outcome: OK, source: 'hand: 0.33 is below 1'}\n"
     )
     ran = run("lint", str(tmp_path / "trial.cases.yaml"))
     assert ran.code == 0 and "1 cases agree" in ran.out

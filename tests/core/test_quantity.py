@@ -42,12 +42,23 @@ def test_read(text: str, value: F) -> None:
 @pytest.mark.parametrize(
     ("text", "slug"),
     [
-        ("", "not-a-quantity"), ("twelve", "not-a-quantity"), ("1/2 ft", "not-a-quantity"), ("1/0 in", "not-a-quantity"),
-        ("10^3 psi", "not-a-quantity"), ("4 500 psi", "not-a-quantity"), ("\u221212 in", "not-a-quantity"),
-        ("4.500,5 in", "unknown-unit"), ("1" * 19, "not-a-quantity"), ("12 inn", "unknown-unit"), ("1e999 in", "unknown-unit"),
-        ("\u0661 in", "not-a-quantity"), ("nan", "not-a-quantity"), ("inf in", "not-a-quantity"), ("0x10 in", "unknown-unit"),
+        ("", "not-a-quantity"),
+        ("twelve", "not-a-quantity"),
+        ("1/2 ft", "not-a-quantity"),
+        ("1/0 in", "not-a-quantity"),
+        ("10^3 psi", "not-a-quantity"),
+        ("4 500 psi", "not-a-quantity"),
+        ("\u221212 in", "not-a-quantity"),
+        ("4.500,5 in", "unknown-unit"),
+        ("1" * 19, "not-a-quantity"),
+        ("12 inn", "unknown-unit"),
+        ("1e999 in", "unknown-unit"),
+        ("\u0661 in", "not-a-quantity"),
+        ("nan", "not-a-quantity"),
+        ("inf in", "not-a-quantity"),
+        ("0x10 in", "unknown-unit"),
     ],
-)  # fmt: skip
+)
 def test_refused(text: str, slug: str) -> None:
     amount, problems = _read(text)
     assert amount is None

@@ -102,13 +102,32 @@ def test_written_again_as_read(text: str) -> None:
 @pytest.mark.parametrize(
     ("text", "hint"),
     [
-        ("kn", "write kN"), ("Nm", "write N*m"), ("kNm", "write kN*m"), ("Mpa", "write MPa"), ("k", "write kip"),
-        ("lbs", "write lb"), ("kip-ft", "write kip*ft"), ("kip ft", "write kip*ft"), ("in2", "write in^2"),
-        ("ft³", "write ft^3"), ("PSI", "write psi"), ("deg", "angles are read in rad: one degree is 0.0174533 rad"),
-        ("", ""), ("*ft", ""), ("kip*", ""), ("kip**ft", ""), ("in^2.5", ""), ("in^0", ""), ("in^13", ""),
-        ("ft*ft*ft*ft*ft*ft*ft*ft*ft", ""), ("3 in", ""), ("m\u00b7s", "write m*s"), ("в", ""), ("__import__('os')", ""),
+        ("kn", "write kN"),
+        ("Nm", "write N*m"),
+        ("kNm", "write kN*m"),
+        ("Mpa", "write MPa"),
+        ("k", "write kip"),
+        ("lbs", "write lb"),
+        ("kip-ft", "write kip*ft"),
+        ("kip ft", "write kip*ft"),
+        ("in2", "write in^2"),
+        ("ft³", "write ft^3"),
+        ("PSI", "write psi"),
+        ("deg", "angles are read in rad: one degree is 0.0174533 rad"),
+        ("", ""),
+        ("*ft", ""),
+        ("kip*", ""),
+        ("kip**ft", ""),
+        ("in^2.5", ""),
+        ("in^0", ""),
+        ("in^13", ""),
+        ("ft*ft*ft*ft*ft*ft*ft*ft*ft", ""),
+        ("3 in", ""),
+        ("m\u00b7s", "write m*s"),
+        ("в", ""),
+        ("__import__('os')", ""),
     ],
-)  # fmt: skip
+)
 def test_refused(text: str, hint: str) -> None:
     unit, problems = _read(text)
     assert unit is None

@@ -5,6 +5,7 @@ In: `SheetPage` records of one mark. Out: `Calculation` with a register of print
 
 from __future__ import annotations
 
+import re
 from collections import defaultdict
 from collections.abc import Sequence
 from dataclasses import dataclass, field, replace
@@ -217,6 +218,7 @@ def _register(calculation: Calculation) -> None:
             elif statement.kind == "formula":
                 for name, tokens in assignments(statement):
                     _note(calculation, name, statement.context, tokens, place)
+                _left_out(calculation, statement, place)
             elif statement.kind in ("required", "condition", "arm"):
                 _from_condition(calculation, statement, place)
     for here in calculation.tables:
@@ -224,6 +226,17 @@ def _register(calculation: Calculation) -> None:
     for page in calculation.pages:
         for _, tokens in page.labels:
             _from_label(calculation, tokens, Place(page.name, 0, "figure"))
+
+
+def _left_out(calculation: Calculation, statement: Statement, place: Place) -> None:
+    """Register what is given as none in one line: `none, counted as 0   b_t, q_D`."""
+    counted = re.fullmatch(r"none, counted as (\S+)", statement.words)
+    if counted is not None and is_number(counted[1]):
+        for part in split(statement.tokens, "comma")[0]:
+            name = symbol_of(part)
+            if name is not None:
+                calculation.words[name].append(("none", place))
+                calculation.note(Key(name, frozenset()), Printed(counted[1]), place)
 
 
 def _note(calculation: Calculation, name: str, context: Rows, tokens: Sequence[Token], place: Place) -> None:

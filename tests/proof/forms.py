@@ -88,11 +88,11 @@ def one_form(desk: Desk) -> None:
 
 
 def digits_used(desk: Desk) -> None:
-    """Count the significant digits of values that are not given, each once."""
+    """Count the significant digits of values that are neither given nor zero, each once."""
     given = _given(desk)
     for key, forms in desk.calculation.forms.items():
         shown, place = forms[0]
-        if key.name in given:
+        if key.name in given or not shown.number:
             continue
         desk.account.digits[shown.digits] += 1
         if shown.digits >= 7:
@@ -103,6 +103,7 @@ def digits_used(desk: Desk) -> None:
 def _given(desk: Desk) -> set[str]:
     """Return the symbols whose values are given: stated in the table of givens, not worked."""
     found = {item.name for item in desk.calculation.inline}
+    found |= {name for name, words in desk.calculation.words.items() if "none" in [word for word, _ in words]}
     for line in desk.calculation.lines:
         for statement in line.statements:
             parts, _ = split(statement.tokens, "relation")

@@ -1,0 +1,173 @@
+"""A single given value, typed by the template's declaration: a quantity, a word, bars, a link, a material's property.
+
+Text nodes in, `GivenValue` out. What is missing, bare or out of range is a problem; nothing is ever assumed.
+"""
+
+from __future__ import annotations
+
+import re
+from dataclasses import dataclass
+from typing import TypeAlias
+
+from calcreport.core.problems import Problems
+from calcreport.core.quantity import Amount, read_in_unit
+from calcreport.core.source import Span
+from calcreport.read.bars import BarTable, read_callout
+from calcreport.read.fields import Fields, as_scalar, say_not_a_word
+from calcreport.read.model import BarCallout, Given, GivenValue, Handed, LinkedValue, ValueOrigin
+from calcreport.read.nodes import Mapping, Node, Scalar
+
+#: mark of a material and its properties, None for one about which a problem was told
+Material: TypeAlias = tuple[Scalar, dict[str, Scalar | None]]
+_LINK = re.compile(r"([A-Za-z][A-Za-z0-9]*)\.([A-Za-z][\w.\[\]+ /-]*)")
+FILE = ValueOrigin("project file", "")
+NONE = ValueOrigin("none", "")
+
+
+@dataclass(frozen=True, slots=True)
+class SingleReader:
+    """Reads single values of one calculation."""
+
+    #: (mark of the material, its properties) by role; None where it could not be read
+    materials: dict[str, Material | None]
+    bars: BarTable | None
+    #: the calculation's own place
+    home: Span
+    problems: Problems
+
+    def value(self, given: Given, node: Node) -> GivenValue | None:
+        """Read a value: text, `{value, source}` or `{from: MARK.symbol}`."""
+        origin = FILE
+        if isinstance(node, Mapping):
+            fields = Fields(node, ("value", "source", "from"), f"the value of `{given.name}`", self.problems, ("at",))
+            if fields.has("from"):
+                linked = fields.scalar("from", required=True)
+                return self.link(given, linked) if linked else None
+            source = fields.text("source")
+            origin = ValueOrigin("source", source) if source else FILE
+            inner = fields.node_of("value")
+            if inner is None:
+                fields.say_missing("value")
+                return None
+            node = inner
+        scalar = as_scalar(node, f"`{given.name}`", self.problems)
+        if scalar is None:
+            return None
+        if scalar.text == "none" and not (given.symbol and "none" in given.symbol.words):
+            return self.none(given, scalar)
+        value = self.typed(given, scalar)
+        return None if value is None else GivenValue(given, value, origin, scalar.span)
+
+    def link(self, given: Given, scalar: Scalar) -> GivenValue | None:
+        """Read the name of another calculation's line."""
+        match = _LINK.fullmatch(scalar.text)
+        if match is None or given.kind not in ("value", "pairs"):
+            bars = given.kind in ("bars", "spaced bars")
+            self.problems.add("not-a-link", scalar.span, f"`{scalar.text[:40]}` cannot be linked here",
+                              expected="bars written out" if bars else "mark and symbol, such as FL2.M_u",
+                              found="a link" if bars else scalar.text[:40] or "nothing")  # fmt: skip
+            return None
+        value = LinkedValue(match[1], match[2], scalar.span)
+        return GivenValue(given, value, ValueOrigin("line", scalar.text), scalar.span)
+
+    def none(self, given: Given, scalar: Scalar) -> GivenValue | None:
+        """Take the word `none`, where the template allows it."""
+        if not self.may_be_none(given, scalar):
+            return None
+        worth = None if given.if_none == "absent" else given.if_none
+        return GivenValue(given, worth, NONE, scalar.span)
+
+    def may_be_none(self, given: Given, scalar: Scalar) -> bool:
+        """Hold the word `none` against the declaration; adds `not-none`."""
+        if given.if_none is None:
+            self.problems.add("not-none", scalar.span, f"`{given.name}` may not be none",
+                              expected=wanted(given), found="none")  # fmt: skip
+        return given.if_none is not None
+
+    def typed(self, given: Given, scalar: Scalar) -> Handed:
+        """Type a text by the declaration; None after adding a problem."""
+        if given.kind in ("bars", "spaced bars"):
+            return self.callout(given, scalar)
+        symbol = given.symbol
+        assert symbol is not None
+        if symbol.kind == "word":
+            if scalar.text not in symbol.words:
+                say_not_a_word(scalar, symbol.words, f"`{given.name}`", self.problems)
+                return None
+            return scalar.text
+        assert symbol.unit is not None
+        amount = read_in_unit(scalar.text, scalar.span, self.problems, symbol.unit)
+        if amount is not None and symbol.kind == "count" and (amount.value < 0 or amount.value.denominator != 1):
+            self.problems.add("not-a-number", scalar.span, f"`{given.name}` is a count",
+                              expected="a whole number, 0 or more", found=scalar.text[:40])  # fmt: skip
+            return None
+        return amount if amount is not None and self.in_range(given, amount, scalar.span) else None
+
+    def callout(self, given: Given, scalar: Scalar) -> BarCallout | None:
+        """Read bars; bars of two sizes have no one diameter."""
+        if self.bars is None:
+            self.problems.add("unknown-bar", scalar.span, "there is no bar table for this unit system",
+                              expected="bars-us.yaml or bars-si.yaml beside the template", found="none")  # fmt: skip
+            return None
+        spaced = given.kind == "spaced bars"
+        found = read_callout(scalar.text, scalar.span, self.bars, spaced=spaced, problems=self.problems)
+        sizes = {group.size: None for group in found.groups} if found else {}
+        reader = next((symbol.name for symbol, output in given.gives if output == "diameter"), "")
+        if reader and len(sizes) > 1:
+            self.problems.add(
+                "mixed-bars",
+                scalar.span,
+                f"`{given.name}` mixes bar sizes, and the template reads one diameter off it",
+                expected=f"bars of one size, for {reader}",
+                found=" and ".join(sizes),
+                hint="where the template takes rows of bars, give each size a row of its own",
+            )
+            return None
+        return found
+
+    def in_range(self, given: Given, amount: Amount, span: Span) -> bool:
+        """Hold an amount against the declared range."""
+        limits = given.range
+        if limits is None or limits.holds(amount.value):
+            return True
+        self.problems.add(
+            "out-of-range", span, f"`{given.name}` is outside what the template covers",
+            expected=limits.words(given.name), found=amount.text,
+            related=((limits.span, "the template states the range"),),
+        )  # fmt: skip
+        return False
+
+    def from_material(self, given: Given, what: str) -> GivenValue | None:
+        """Read a property of the material a calculation names for a role."""
+        if given.material not in self.materials:
+            self.problems.add(
+                "missing-value", self.home.part(0, 1), f"{what} needs the material `{given.material}`",
+                expected=f"`{given.material}: MARK` beside `template:`", found="no such key",
+            )  # fmt: skip
+            return None
+        material = self.materials[given.material]
+        if material is None:
+            return None
+        mark, properties = material
+        scalar = properties.get(given.property)
+        if given.property in properties and scalar is None:
+            return None
+        if scalar is None:
+            near = self.problems.close(given.property, properties)
+            self.problems.add(
+                "missing-value", mark.span, f"the material `{mark.text[:40]}` has no `{given.property}`",
+                expected=wanted(given), found=", ".join(properties) or "no properties",
+                hint=f"write {given.property} for {near[0]}, if that is meant" if near else "",
+                related=((self.home.part(0, 1), f"{what} needs it"),),
+            )  # fmt: skip
+            return None
+        if scalar.text == "none":
+            return self.none(given, scalar)
+        value = self.typed(given, scalar)
+        return None if value is None else GivenValue(given, value, ValueOrigin("material", mark.text), scalar.span)
+
+
+def wanted(given: Given) -> str:
+    """Return what a given is, with a unit it may be written in."""
+    unit = given.symbol.unit.text if given.symbol and given.symbol.unit else "1"
+    return (given.says or given.name) + (f" ({unit})" if unit != "1" else "")

@@ -5,7 +5,8 @@ from __future__ import annotations
 from dataclasses import dataclass, replace
 
 from calcreport.calculate.model import WorkedProject
-from calcreport.core.problems import Problem
+from calcreport.calculate.release import hold_release
+from calcreport.core.problems import Problem, Problems
 from calcreport.core.source import Source
 from calcreport.core.world import World
 from calcreport.driver import Progress, silent, work
@@ -36,6 +37,10 @@ def report(world: World, source: Source, progress: Progress = silent, second: bo
     result = work(world, source, progress)
     if result.problems or result.worked is None:
         return Package(result.problems, result.worked)
+    problems = Problems()
+    hold_release(result.worked, problems)
+    if problems:
+        return Package(problems.sorted(), result.worked)
     agreement = None
     if second:
         progress("working again", 0, 1)

@@ -94,6 +94,7 @@ def test_a_substitution_is_its_formula(proof: Proof) -> None:
 
 def test_rows_of_tables_follow_their_formula(proof: Proof) -> None:
     none_of(proof.account.findings, "a row formula gives its cells", "the row shown in full is the worst")
+    none_of(proof.account.findings, "the row named is the row taken")
 
 
 def test_checks_and_comparisons_read_true(proof: Proof) -> None:
@@ -104,6 +105,11 @@ def test_checks_and_comparisons_read_true(proof: Proof) -> None:
 
 def test_a_value_has_one_printed_form(proof: Proof) -> None:
     none_of(proof.account.findings, "one printed form of a value")
+
+
+def test_source_lane_names_what_a_formula_takes(proof: Proof) -> None:
+    none_of(proof.account.findings, "the source lane names what a formula takes")
+    assert proof.account.counts["sources"] > 20
 
 
 def test_no_other_finding_on_the_sheets(proof: Proof) -> None:

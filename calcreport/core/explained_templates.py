@@ -81,6 +81,11 @@ A case nobody thought of would go without a formula. The last branch is `otherwi
 
     branches: [{when: 'a < b', formula: '1'}]                        wrong
     branches: [{when: 'a < b', formula: '1'}, {otherwise: '2'}]      right""",
+    "not-in-unknown": """A check or figure stands among the lines of an `unknown`.
+Those lines are worked once a trial, many times over, so nothing can be judged or drawn there.
+
+    - {unknown: c, …, lines: [{check: it, …}]}      wrong
+    - {unknown: c, …, lines: […]}                   right, with the check as the next line""",
     "no-unit": """A symbol has no unit, no list of words and no kind.
 Without it no formula can be held. A pure number says so with unit '1'.
 

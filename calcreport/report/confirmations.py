@@ -6,6 +6,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable
+from typing import TypeGuard
 
 from calcreport.calculate.model import (
     Comparison,
@@ -29,13 +30,13 @@ from calcreport.calculate.model import (
     WorkedRequire,
     WorkedUnknown,
 )
-from calcreport.core.expression import Call, Compare, Expression, Name, Node, Over, children
+from calcreport.core.expression import Call, Compare, Expression, Name, Node, Over, children, walk
 from calcreport.core.units import NONE, ONE, Unit
 from calcreport.report.digits import Digits, Id, Order, Sum, make_coarse_figure, make_figure
-from calcreport.report.families import Family, factor_to
 from calcreport.report.forms import (
     CalculationForms,
     Opened,
+    PlanForms,
     equation_unit,
     holds,
     is_size,
@@ -51,11 +52,11 @@ def find_forms(project: WorkedProject) -> dict[str, CalculationForms]:
     """Return the forms of every calculation by mark, solved over the whole project."""
     digits = Digits()
     forms: dict[str, CalculationForms] = {}
-    shared: dict[int, tuple[dict[int, Family], dict[tuple[int, int], tuple[Compare, ...]]]] = {}
+    shared: dict[int, PlanForms] = {}
     for place in project.order:
         worked = project.calculations[place]
-        families, chosen = shared.setdefault(id(worked.plan), ({}, {}))
-        one = CalculationForms(worked, digits, _copied(worked.values), families, chosen)
+        plan = shared.setdefault(id(worked.plan), PlanForms())
+        one = CalculationForms(worked, digits, _copied(worked.values), plan)
         forms[one.mark] = one
         _given_figures(one, forms)
         _Lines(one).lines(worked.lines)
@@ -239,7 +240,7 @@ class _Lines:
         confirm = self.confirming(work or self.forms.worked.compiled(node), inputs, opened)
         ids = tuple(i for _, _, i in inputs)
         family = self.forms.family(node, unit)
-        if has_values(node) and unit.dimension != NONE and factor_to(unit, family) != 1:
+        if has_values(node) and unit.dimension != NONE and self.forms.factor(unit, family) != 1:
             middle = ("coherent", self.forms.mark, slot, key)
             coherent = family.unit(unit.dimension)
             assert coherent is not None
@@ -252,16 +253,37 @@ class _Lines:
     def inputs(self, node: Node, opened: Opened) -> list[tuple[int, Key, Id]]:
         """Return every number a formula takes in the open rows: slot, key and id."""
         found: dict[Id, tuple[int, Key, Id]] = {}
-        self.collect(node, dict(opened), found)
+        names = self.plain_names(node)
+        if names is None:
+            self.collect(node, dict(opened), found)
+        else:
+            rows = dict(opened)
+            for name in names:
+                self.take(name, rows, found)
         return list(found.values())
+
+    def plain_names(self, node: Node) -> tuple[Name, ...] | None:
+        """Return the names of numbers in a formula, in order; None where one stands for many rows."""
+        kept = self.forms.shared.names
+        if id(node) not in kept:
+            parts = tuple(walk(node))
+            rows = any(isinstance(part, Over) for part in parts)
+            kept[id(node)] = None if rows else tuple(part for part in parts if self.is_number(part))
+        return kept[id(node)]
+
+    def is_number(self, node: Node) -> TypeGuard[Name]:
+        return isinstance(node, Name) and node.slot >= 0 and self.slots[node.slot].symbol.unit is not None
+
+    def take(self, node: Name, opened: dict[int, int], found: dict[Id, tuple[int, Key, Id]]) -> None:
+        key = tuple([opened[s] for s in self.values.sets[node.slot]])
+        if isinstance(self.values.get(node.slot, key), float):
+            name = self.forms.id(node.slot, key)
+            found[name] = node.slot, key, name
 
     def collect(self, node: Node, opened: dict[int, int], found: dict[Id, tuple[int, Key, Id]]) -> None:
         if isinstance(node, Name):
-            if node.slot >= 0 and self.slots[node.slot].symbol.unit is not None:
-                key = tuple(opened[s] for s in self.values.sets[node.slot])
-                name = self.forms.id(node.slot, key)
-                if isinstance(self.values.get(node.slot, key), float):
-                    found[name] = node.slot, key, name
+            if self.is_number(node):
+                self.take(node, opened, found)
             return
         if isinstance(node, Over):
             outer = tuple(opened[s] for s in self.values.outer[node.bound])

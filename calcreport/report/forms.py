@@ -6,7 +6,8 @@ comparisons and for ratios. Solved by `report.digits`.
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, field
+from fractions import Fraction
 from typing import TypeGuard
 
 from calcreport.calculate.model import (
@@ -23,10 +24,24 @@ from calcreport.calculate.model import (
 from calcreport.core.expression import Call, Compare, Condition, Expression, Logic, Name, Number
 from calcreport.core.units import NONE, ONE, Unit
 from calcreport.report.digits import Digits, Figure, Id, rounded
-from calcreport.report.families import Family, choose_family, dimension_of
+from calcreport.report.families import Family, choose_family, dimension_of, factor_to
 from calcreport.report.notation import reversed_condition
 
 Opened = tuple[tuple[int, int], ...]
+
+
+@dataclass(slots=True)
+class PlanForms:
+    """What rests on a plan's formulas alone, found once and shared by all its calculations; by identity of its nodes."""
+
+    #: the family a formula is worked in
+    families: dict[int, Family] = field(default_factory=dict)
+    #: the comparisons that chose an arm of a line
+    chosen: dict[tuple[int, int], tuple[Compare, ...]] = field(default_factory=dict)
+    #: the factor that takes a unit of the plan to a family
+    factors: dict[tuple[int, Family], Fraction] = field(default_factory=dict)
+    #: the numbers a formula takes; None where rows decide that
+    names: dict[int, tuple[Name, ...] | None] = field(default_factory=dict)
 
 
 @dataclass(slots=True)
@@ -37,8 +52,7 @@ class CalculationForms:
     digits: Digits
     #: values the printed figures are written into while a line is confirmed
     shadow: Values
-    families: dict[int, Family]
-    chosen: dict[tuple[int, int], tuple[Compare, ...]]
+    shared: PlanForms
 
     @property
     def mark(self) -> str:
@@ -78,17 +92,26 @@ class CalculationForms:
     def because(self, line: PlannedGives | PlannedBranches, chosen: int) -> tuple[Compare, ...]:
         """Return the comparisons that chose an arm of a line, the same objects every time."""
         key = id(line), chosen
-        if key not in self.chosen:
-            self.chosen[key] = _turned(tuple(arm.when for arm in line.arms), chosen)
-        return self.chosen[key]
+        found = self.shared.chosen.get(key)
+        if found is None:
+            found = self.shared.chosen[key] = _turned(tuple(arm.when for arm in line.arms), chosen)
+        return found
 
     def family(self, formula: Expression, result: Unit | None) -> Family:
         """Return the family a formula is worked in."""
-        found = self.families.get(id(formula))
+        families = self.shared.families
+        found = families.get(id(formula))
         if found is None:
             plan = self.worked.plan
-            found = choose_family(formula, result, plan.slots, plan.template.system)
-            self.families[id(formula)] = found
+            found = families[id(formula)] = choose_family(formula, result, plan.slots, plan.template.system)
+        return found
+
+    def factor(self, unit: Unit, family: Family) -> Fraction:
+        """Return the factor that takes a number in a unit of the plan to the family's coherent unit."""
+        factors, key = self.shared.factors, (id(unit), family)
+        found = factors.get(key)
+        if found is None:
+            found = factors[key] = factor_to(unit, family)
         return found
 
 

@@ -16,8 +16,9 @@ from .equations import printed_of, symbol_of
 from .expressions import Node, Number, Symbol, Unread, Work, as_printed, parse, split, symbols
 from .forms import callouts, digits_used, left_symbol, one_form, short, shown_elsewhere, substituted_forms
 from .letters import Token, plain
-from .rows import is_row_formula, other_rows, ratio_columns, row_formula
+from .rows import is_row_formula, other_rows, ratio_columns, row_formula, row_named
 from .scope import Scope
+from .sources import sources
 from .statements import NumberedLine, Statement
 from .units import Printed, rounds_to, unit
 
@@ -41,6 +42,7 @@ def examine(calculation: Calculation) -> Account:
     one_form(desk)
     digits_used(desk)
     callouts(desk)
+    sources(desk)
     for page in calculation.pages:
         desk.sheet, desk.line = page.name, 0
         for problem in page.problems:
@@ -125,6 +127,9 @@ def _formula(desk: Desk, statement: Statement, scope: Scope) -> int:
     formula = nodes[first - 1] if first else _juxtaposed(desk, symbol_of(parts[0]) or "")
     if formula is not None:
         _compare_formula(desk, formula, nodes[first:], scope)
+        last = as_printed(nodes[-1])
+        if last is not None:
+            row_named(desk, statement, formula, last, scope)
     return int(formula is not None or len(nodes) > first + 1)
 
 

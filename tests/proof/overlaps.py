@@ -20,7 +20,12 @@ _ENCLOSING = "√(){}[]|∑"
 
 def overlaps(package: Package) -> list[Finding]:
     """Return what is printed over something else."""
-    return [finding for page in package.pages for finding in (*_glyphs(page), *_strokes(page))]
+    found: list[Finding] = []
+    for page in package.pages:
+        shelves = _shelves(page)
+        found += _glyphs(page, shelves)
+        found += _strokes(page, shelves)
+    return found
 
 
 def _shelves(page: Page) -> dict[int, list[Glyph]]:
@@ -32,9 +37,9 @@ def _shelves(page: Page) -> dict[int, list[Glyph]]:
     return shelves
 
 
-def _glyphs(page: Page) -> Iterator[Finding]:
+def _glyphs(page: Page, shelves: dict[int, list[Glyph]]) -> Iterator[Finding]:
     told: set[tuple[int, int]] = set()
-    for shelf in _shelves(page).values():
+    for shelf in shelves.values():
         shelf.sort(key=lambda g: g.x0)
         for at, one in enumerate(shelf):
             for other in shelf[at + 1 :]:
@@ -58,26 +63,26 @@ def _joined(one: Glyph, other: Glyph) -> bool:
     return scripted and abs(one.right - other.left) < 6 and abs(one.y - other.y) < 0.5 * max(one.size, other.size)
 
 
-def _strokes(page: Page) -> Iterator[Finding]:
-    shelves = _shelves(page)
+def _strokes(page: Page, shelves: dict[int, list[Glyph]]) -> Iterator[Finding]:
     for line in page.ink.lines:
         if line.x0 != line.x1 and line.y0 != line.y1:
             continue
-        for glyph in _near(shelves, line):
-            if glyph.text != "√" and _through(line, glyph):
-                text = f"a stroke through {glyph.text!r} at {glyph.x0:.0f}, {glyph.y:.0f}"
-                yield Finding("nothing is printed over print", page.name, 0, text)
-                break
+        glyph = _struck(shelves, line)
+        if glyph is not None:
+            text = f"a stroke through {glyph.text!r} at {glyph.x0:.0f}, {glyph.y:.0f}"
+            yield Finding("nothing is printed over print", page.name, 0, text)
 
 
-def _near(shelves: dict[int, list[Glyph]], line: Line) -> Iterator[Glyph]:
+def _struck(shelves: dict[int, list[Glyph]], line: Line) -> Glyph | None:
+    """Return the first glyph that an upright or level stroke goes through."""
+    half = line.width / 2 - STROKE
+    left, right = sorted((line.x0, line.x1))
     low, high = sorted((line.y0, line.y1))
     for shelf in range(int((low - 1) // 8), int((high + 1) // 8) + 1):
-        yield from shelves.get(shelf, ())
-
-
-def _through(line: Line, glyph: Glyph) -> bool:
-    half = line.width / 2
-    wide = min(glyph.x1, max(line.x0, line.x1) + half) - max(glyph.x0, min(line.x0, line.x1) - half)
-    high = min(glyph.y1, max(line.y0, line.y1) + half) - max(glyph.y0, min(line.y0, line.y1) - half)
-    return wide > STROKE and high > STROKE
+        for glyph in shelves.get(shelf, ()):
+            if glyph.x1 > left - half and glyph.x0 < right + half and glyph.y1 > low - half and glyph.y0 < high + half:
+                wide = min(glyph.x1, right + half + STROKE) - max(glyph.x0, left - half - STROKE)
+                tall = min(glyph.y1, high + half + STROKE) - max(glyph.y0, low - half - STROKE)
+                if wide > STROKE and tall > STROKE and glyph.text != "√":
+                    return glyph
+    return None

@@ -5,6 +5,7 @@ In: a `Desk`. Out: findings on it. Every cell is worked with the printed cells o
 
 from __future__ import annotations
 
+import re
 from collections import Counter
 from collections.abc import Sequence
 from decimal import Decimal
@@ -14,7 +15,7 @@ from .arithmetic import Mixed, Unknown, valued
 from .calculations import Calculation, Rows
 from .conditions import in_unit, judge, matches
 from .equations import symbol_of
-from .expressions import Unread, parse, split, symbols
+from .expressions import Node, Over, Unread, parse, split, symbols
 from .forms import left_symbol, short
 from .letters import Token
 from .scope import Scope
@@ -73,6 +74,19 @@ def _work(desk: Desk, formula: list[Token], name: str, open_: Rows, shown: Print
     if not matches(value, shown):
         text = f"{name}, row {open_[-1][1]}: worth {short(in_unit(value, shown.unit))}, printed {shown}"
         desk.found("a row formula gives its cells", text)
+
+
+def row_named(desk: Desk, statement: Statement, formula: Node, shown: Printed, scope: Scope) -> None:
+    """The row that the words of an extreme name is the one it is taken from: `greatest moment, combination 2`."""
+    if not isinstance(formula, Over) or formula.name not in ("max", "min", "pick"):
+        return
+    named = re.search(rf", {re.escape(formula.rows)} (\S.*)$", statement.words)
+    if named is None:
+        return
+    taken = [row for row in scope.rows(formula.rows, formula.where) if row.open[-1][1] == named[1]]
+    desk.count("rows named")
+    if not taken or not matches(valued(formula.body, taken[0]), shown):
+        desk.found("the row named is the row taken", f"{statement.words}: {shown} is not of {named[1]}")
 
 
 def _in_full(calculation: Calculation, table: Table) -> list[tuple[Statement, NumberedLine]]:

@@ -9,9 +9,9 @@ import random
 from fractions import Fraction as F
 from pathlib import Path
 
+from calcreport.core.source import Source
 from calcreport.driver import work
 from calcreport.filesystem import Disk, library_folder
-from calcreport.core.source import Source
 
 FOLDER = Path(__file__).parent / "ties"
 ROWS, CALCULATIONS, CHECKS = 500, 5, 4
@@ -24,7 +24,13 @@ UNITS: dict[str, tuple[tuple[str, F], ...]] = {
     "stress": (("psi", F(1)), ("ksi", F(1000)), ("psf", F(1, 144)), ("ksf", F(1000, 144)), ("tsf", F(2000, 144))),
     "force": (("lb", F(1)), ("kip", F(1000)), ("ton", F(2000)), ("N", 1 / _NEWTON), ("kN", 1000 / _NEWTON)),
     "load": (("lb/in", F(1)), ("plf", F(1, 12)), ("klf", F(1000, 12)), ("kip/ft", F(1000, 12)), ("lb/ft", F(1, 12))),
-    "moment": (("lb*in", F(1)), ("kip*ft", F(12_000)), ("lb*ft", F(12)), ("kip*in", F(1000)), ("N*mm", 1 / _NEWTON / _MM)),
+    "moment": (
+        ("lb*in", F(1)),
+        ("kip*ft", F(12_000)),
+        ("lb*ft", F(12)),
+        ("kip*in", F(1000)),
+        ("N*mm", 1 / _NEWTON / _MM),
+    ),
     "number": (("", F(1)), ("%", F(1, 100))),
 }
 HEAD = """\
@@ -65,15 +71,23 @@ def _typed(value: F, kind: str, dice: random.Random) -> str:
 
 def _row(dice: random.Random, beyond: F) -> str:
     """Return one row: `beyond` is by how much the demand exceeds, 1 for a tie."""
-    h, b = F(dice.randint(40, 800), 8), F(dice.randint(40, 400), 8)
-    f, k = F(dice.randint(10, 200) * 25), F(dice.choice([45, 60, 75, 85, 90]), 100)
+    h, b = F(dice.randint(40, 800), 8), F(dice.randint(5, 50))
+    f, k = F(dice.randint(5, 150) * 100), F(dice.choice([45, 60, 75, 85, 90]), 100)
     w, l = F(dice.randint(1, 400), 4), F(dice.randint(1, 80) * 12, 4)  # noqa: E741 - the span
     q = F(dice.randint(1, 4000), 16)
     values = {
-        "h": (h, "length"), "b": (b, "length"), "f": (f, "stress"), "k": (k, "number"), "w": (w, "load"), "l": (l, "length"),
-        "s": (h / 2 * beyond, "length"), "V": (k * b * h * f * beyond, "force"), "M": (w * l**2 / 8 * (2 - beyond), "moment"),
-        "q": (q * beyond, "length"), "A": (q**2, "area"),
-    }  # fmt: skip
+        "h": (h, "length"),
+        "b": (b, "length"),
+        "f": (f, "stress"),
+        "k": (k, "number"),
+        "w": (w, "load"),
+        "l": (l, "length"),
+        "s": (h / 2 * beyond, "length"),
+        "V": (k * b * h * f * beyond, "force"),
+        "M": (w * l**2 / 8 * (2 - beyond), "moment"),
+        "q": (q * beyond, "length"),
+        "A": (q**2, "area"),
+    }
     return "{" + ", ".join(f"{name}: {_typed(value, kind, dice)}" for name, (value, kind) in values.items()) + "}"
 
 

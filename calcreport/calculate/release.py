@@ -1,0 +1,65 @@
+"""Holds a project against what its status claims: what leaves the office for permit or construction has no open end.
+
+`WorkedProject` in, problems `not-ready` out. The engineer's word settles what the program cannot, and is printed.
+"""
+
+from __future__ import annotations
+
+from calcreport.calculate.model import Worked, WorkedProject
+from calcreport.core.problems import Problems
+
+#: statuses under which nothing may be open
+FINAL = ("for permit", "issued for construction")
+
+
+def hold_release(project: WorkedProject, problems: Problems) -> None:
+    """Add a problem for every check, limit state or assumption that is open under a final status."""
+    facts = project.project
+    if facts.status not in FINAL:
+        return
+    said = {d.check or d.limit_state for d in facts.dispositions}
+    for worked in project.calculations:
+        _hold_checks(worked, said, facts.status, problems)
+        _hold_limit_states(worked, said, facts.status, problems)
+    for assumption in facts.assumptions:
+        if assumption.to_be_verified:
+            problems.add(
+                "not-ready",
+                assumption.span.part(0, 1),
+                f"an assumption is open, and the status is `{facts.status}`",
+                expected="`to be verified: no`, once it is",
+                found=f"to be verified by: {assumption.by}",
+                hint="issue it `for review` until then",
+            )
+
+
+def _hold_checks(worked: Worked, said: set[str], status: str, problems: Problems) -> None:
+    mark = worked.calculation.mark
+    told: set[str] = set()
+    for check in worked.checks:
+        name = f"{mark}.{check.line.name}"
+        if check.verdict not in ("NG", "not evaluated") or name in told or name in said:
+            continue
+        told.add(name)
+        problems.add(
+            "not-ready",
+            worked.calculation.span,
+            f"`{name}` is {check.verdict}, and the status is `{status}`",
+            expected="OK, or the engineer's disposition of it",
+            found=check.verdict,
+            hint=f"under `dispositions:` write {{check: {name}, says: …}}; it is printed and hides nothing",
+        )
+
+
+def _hold_limit_states(worked: Worked, said: set[str], status: str, problems: Problems) -> None:
+    mark = worked.calculation.mark
+    left = [state for state in worked.plan.template.excludes if state not in said and f"{mark} {state}" not in said]
+    if left:
+        problems.add(
+            "not-ready",
+            worked.calculation.span,
+            f"nobody says who covers the limit states `{mark}` leaves out, and the status is `{status}`",
+            expected="a disposition for each",
+            found=", ".join(left),
+            hint="under `dispositions:` write {limit state: …, covered by: …}",
+        )

@@ -1,0 +1,127 @@
+"""How far each given value may move, one at a time, before the verdict of a check flips.
+
+A worked calculation in, margins out. The values are moved and the whole calculation is worked again each time, so
+that whatever depends on them follows; other calculations are left alone. Nothing here is printed.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from fractions import Fraction
+
+from calcreport.calculate.evaluate import Program
+from calcreport.calculate.handing import empty_values
+from calcreport.calculate.model import Values, Worked
+
+#: a value is moved down to a quarter and up to four times itself
+WIDEST = 4.0
+#: steps in which each way is searched, and halvings of the step in which a verdict flips
+STEPS, HALVINGS = 24, 30
+
+
+@dataclass(frozen=True, slots=True)
+class Margin:
+    """The nearest values at which a check's verdict flips; None where it does not within the search."""
+
+    check: str
+    slot: int
+    #: value at hand and flipping values, base units
+    value: float
+    lower: float | None
+    upper: float | None
+
+    @property
+    def share(self) -> float:
+        """The smaller of the two ways, as a share of the value."""
+        ways = [abs(found - self.value) / abs(self.value) for found in (self.lower, self.upper) if found is not None]
+        return min(ways, default=float("inf"))
+
+
+def find_margins(worked: Worked) -> tuple[Margin, ...]:
+    """Return the margins of every judged check against every given number that is not zero."""
+    program = Program(worked.plan)
+    base = _verdicts(worked)
+    found: list[Margin] = []
+    for (slot, key), _ in sorted(worked.values.given.items()):
+        value = worked.values.get(slot, key)
+        if key or not isinstance(value, float) or value == 0.0 or worked.plan.slots[slot].symbol.kind == "count":
+            continue
+        ways = [_flips(worked, program, slot, value, base, way) for way in (1 / WIDEST, WIDEST)]
+        for check in base:
+            found.append(Margin(check, slot, value, ways[0].get(check), ways[1].get(check)))
+    return tuple(found)
+
+
+def _flips(
+    worked: Worked, program: Program, slot: int, value: float, base: dict[str, bool], end: float
+) -> dict[str, float]:
+    """Return the value at which each check flips on the way from the value to `end` times it."""
+    waiting = dict(base)
+    found: dict[str, float] = {}
+    inner = 1.0
+    for step in range(1, STEPS + 1):
+        outer = end ** (step / STEPS)
+        there = _moved(worked, program, slot, value * outer)
+        for check in [c for c in waiting if there.get(c) != waiting[c]]:
+            found[check] = value * _halved(worked, program, (slot, value), (check, base[check]), (inner, outer))
+            del waiting[check]
+        if not waiting:
+            break
+        inner = outer
+    return found
+
+
+def _halved(
+    worked: Worked, program: Program, given: tuple[int, float], check: tuple[str, bool], ends: tuple[float, float]
+) -> float:
+    """Return the factor at which one check flips between two factors, on the side where it has flipped."""
+    inner, outer = ends
+    for _ in range(HALVINGS):
+        middle = (inner + outer) / 2
+        if _moved(worked, program, given[0], given[1] * middle).get(check[0]) == check[1]:
+            inner = middle
+        else:
+            outer = middle
+    return outer
+
+
+def _moved(worked: Worked, program: Program, slot: int, value: float) -> dict[str, bool]:
+    """Return the verdicts with one given value moved; a check that is not reached is missing."""
+    values = _given_again(worked)
+    values.given[slot, ()] = Fraction(value)
+    values.plain[slot] = value
+    return _verdicts(program.run(worked.calculation, values, ""))
+
+
+def _given_again(worked: Worked) -> Values:
+    """Return fresh values holding what the calculation was given."""
+    values = empty_values(worked.plan)
+    for (slot, key), amount in worked.values.given.items():
+        values.given[slot, key] = amount
+        if values.sets[slot]:
+            values.rows[slot][key] = worked.values.get(slot, key)
+        else:
+            values.plain[slot] = worked.values.get(slot, key)
+    for planned in worked.plan.givens:
+        for column in planned.columns or (planned,):
+            if column.slot >= 0 and worked.plan.slots[column.slot].symbol.unit is None:
+                _copy_words(worked.values, values, column.slot)
+        if planned.rows >= 0:
+            values.names[planned.rows] = dict(worked.values.names[planned.rows])
+    return values
+
+
+def _copy_words(old: Values, new: Values, slot: int) -> None:
+    if old.sets[slot]:
+        new.rows[slot] = dict(old.rows[slot])
+    else:
+        new.plain[slot] = old.plain[slot]
+
+
+def _verdicts(worked: Worked) -> dict[str, bool]:
+    """Return whether each judged check is OK in every row; unreached and inapplicable ones are missing."""
+    found: dict[str, bool] = {}
+    for check in worked.checks:
+        if check.verdict in ("OK", "NG"):
+            found[check.line.name] = found.get(check.line.name, True) and check.verdict == "OK"
+    return found

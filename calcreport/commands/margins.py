@@ -1,0 +1,58 @@
+"""`calcreport margins`: how far each given value may move, one at a time, before a verdict flips."""
+
+from __future__ import annotations
+
+import json
+from argparse import Namespace
+
+from calcreport.calculate.margins import Margin, find_margins
+from calcreport.calculate.model import Worked
+from calcreport.commands.desk import open_project, say_problems
+from calcreport.driver import work
+
+#: margins of a check printed, the narrowest first
+SHOWN = 4
+
+
+def run(arguments: Namespace) -> int:
+    """Print the narrowest margins of every check."""
+    opened = open_project(arguments.project)
+    if isinstance(opened, tuple):
+        return say_problems(opened, arguments.json)
+    result = work(opened.world, opened.source)
+    if result.problems or result.worked is None:
+        return say_problems(result.problems, arguments.json)
+    chosen = [w for w in result.worked.calculations if arguments.mark in (None, w.calculation.mark)]
+    found = {worked.calculation.mark: (worked, find_margins(worked)) for worked in chosen}
+    if arguments.json:
+        print(json.dumps({mark: [_record(m, w) for m in margins] for mark, (w, margins) in found.items()}, indent=1))
+    else:
+        for mark, (worked, margins) in found.items():
+            for line in _lines(mark, worked, margins):
+                print(line)
+    return 0 if all(worked.verdict == "OK" for worked, _ in found.values()) else 1
+
+
+def _lines(mark: str, worked: Worked, margins: tuple[Margin, ...]) -> list[str]:
+    lines: list[str] = []
+    for check in dict.fromkeys(margin.check for margin in margins):
+        narrow = sorted((m for m in margins if m.check == check and m.share < float("inf")), key=lambda m: m.share)
+        lines.append(f"{mark}.{check}" + ("" if narrow else "  no value at hand flips it alone"))
+        for margin in narrow[:SHOWN]:
+            ways = [_way(worked, margin, end) for end in (margin.lower, margin.upper) if end is not None]
+            lines.append(f"  {worked.plan.slots[margin.slot].path:<12} {' or '.join(ways)}")
+    return lines
+
+
+def _way(worked: Worked, margin: Margin, end: float) -> str:
+    unit = worked.plan.slots[margin.slot].symbol.unit
+    size, name = (unit.size, unit.text) if unit is not None else (1.0, "")
+    return f"{(end - margin.value) / abs(margin.value):+.1%} (to {end / size:.4g}{'' if name == '1' else ' ' + name})"
+
+
+def _record(margin: Margin, worked: Worked) -> dict[str, object]:
+    slot = worked.plan.slots[margin.slot]
+    size = slot.symbol.unit.size if slot.symbol.unit is not None else 1.0
+    ends = [None if end is None else end / size for end in (margin.lower, margin.upper)]
+    return {"check": margin.check, "given": slot.path, "value": margin.value / size, "lower": ends[0], "upper": ends[1],
+            "unit": slot.symbol.unit.text if slot.symbol.unit is not None else ""}  # fmt: skip

@@ -1,0 +1,41 @@
+"""Margins against hand sums: the value at which a limit is exactly met."""
+
+from __future__ import annotations
+
+from pathlib import Path
+
+import pytest
+
+from calcreport.calculate.margins import find_margins
+from tests.small import work_small
+
+TEXT = """\
+symbols:
+  a: {unit: in, says: a length}
+  b: {unit: in, says: a length}
+  c: {unit: in^2, says: an area}
+given: {a: , b: {range: '> 0'}}
+lines:
+  - {gives: c, formula: 'a*b', cite: geometry}
+  - {check: area, holds: 'c <= 24 in^2', cite: geometry}
+  - {check: never, holds: 'a <= 100*a + b', cite: geometry}
+"""
+
+
+def test_margins_stop_where_the_limit_is_met(tmp_path: Path) -> None:
+    worked = work_small(tmp_path, TEXT, "{a: 4 in, b: 4 in}")
+    inch = 0.0254
+    found = {(m.check, worked.plan.slots[m.slot].path): m for m in find_margins(worked)}
+    area = found["area", "a"]
+    # 24/4 = 6 in: half as much again; smaller values never flip it
+    assert area.upper == pytest.approx(6 * inch, rel=1e-7) and area.lower is None
+    assert area.share == pytest.approx(0.5, rel=1e-6)
+    assert found["never", "a"].share == float("inf")
+
+
+def test_margin_of_a_failing_check_shows_what_would_mend_it(tmp_path: Path) -> None:
+    worked = work_small(tmp_path, TEXT, "{a: 8 in, b: 4 in}")
+    found = {(m.check, worked.plan.slots[m.slot].path): m for m in find_margins(worked)}
+    # 24/8 = 3 in, a quarter less
+    assert found["area", "b"].lower == pytest.approx(3 * 0.0254, rel=1e-7)
+    assert found["area", "b"].share == pytest.approx(0.25, rel=1e-6)

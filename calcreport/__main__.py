@@ -45,9 +45,31 @@ def make_parser() -> argparse.ArgumentParser:
     margins.add_argument("mark", nargs="?", metavar="MARK", help="one calculation only")
     templates = commands.add_parser("templates", help="list the templates, or tell what one needs and decides")
     templates.add_argument("name", nargs="?", metavar="NAME")
+    schedule = commands.add_parser("schedule", help="a row a member, for the schedule on the drawings")
+    schedule.add_argument("project", metavar="PROJECT", help="a project file, or a folder that holds project.yaml")
+    schedule.add_argument("-o", "--output", metavar="FILE", help="a .csv or .xlsx; the terminal if not told")
+    _reconcile(commands.add_parser("reconcile", help="hold a schedule taken from the drawings against the calculations"))
     explain = commands.add_parser("explain", help="tell what a problem means and how to mend it")
     explain.add_argument("slug", nargs="?", metavar="SLUG")
     return parser
+
+
+def _reconcile(parser: argparse.ArgumentParser) -> None:
+    _project(parser)
+    parser.add_argument("schedule", metavar="SCHEDULE", help="a .csv or .xlsx taken from the drawings")
+    parser.add_argument("--sheet", metavar="NAME", help="the sheet of a workbook")
+    parser.add_argument("--heading-row", metavar="ROW", help="the row of the headings, if not the first")
+    parser.add_argument(
+        "--columns",
+        metavar="NAME=HEADING",
+        nargs="+",
+        action="extend",
+        default=[],
+        help="what columns hold: mark, size, bars, or a given value such as b or layer.first.steel",
+    )
+    parser.add_argument("--lengths", metavar="UNIT", help="the unit of lengths written without one")
+    parser.add_argument("--hidden", choices=("skip", "read"), help="what becomes of hidden rows")
+    parser.add_argument("--template", metavar="NAME", help="compare the calculations of one template only")
 
 
 def _project(parser: argparse.ArgumentParser) -> None:

@@ -5,6 +5,7 @@
     #   found: an area, from b (in), h (in)
     #   see: 8:13 first here
 
+A problem in a table, which has no comments, stands in the project file with the table's name before its place.
 Place, slug and every word are compared, and nothing else may be reported: one cause, one problem.
 """
 
@@ -19,12 +20,13 @@ import pytest
 from calcreport.core.explanations import EXPLANATIONS
 from calcreport.core.problems import Problem
 from calcreport.core.source import Source, Span
-from calcreport.driver import lint_template, work
+from calcreport.driver import lint_template
 from calcreport.filesystem import Disk, read_text
+from calcreport.publish import report
 
 HERE = Path(__file__).parent / "problems"
 MAIN = sorted(path.stem for path in HERE.glob("*.yaml") if not path.name.endswith(".cases.yaml"))
-_HEAD = re.compile(r"# problem: (\d+:\d+) ([a-z-]+) (.*)")
+_HEAD = re.compile(r"# problem: ((?:tables/[\w.-]+:)?\d+:\d+) ([a-z-]+) (.*)")
 _REST = re.compile(r"#   (expected|found|hint|see): (.*)")
 
 
@@ -62,7 +64,7 @@ def problems_of(name: str) -> tuple[tuple[Problem, ...], dict[str, Source]]:
     world.read[source.name] = source
     if re.search(r"^(template|lines):", source.text, re.M) and not re.search(r"^project:", source.text, re.M):
         return lint_template(world, name).problems, world.read
-    return work(world, source).problems, world.read
+    return report(world, source).problems, world.read
 
 
 def expected_in(source: Source) -> list[list[str]]:
@@ -70,7 +72,8 @@ def expected_in(source: Source) -> list[list[str]]:
     found: list[list[str]] = []
     for line in source.text.split("\n"):
         if head := _HEAD.fullmatch(line):
-            found.append([f"{source.name}:{head[1]} {head[2]} {head[3]}"])
+            place = head[1] if head[1].startswith("tables/") else f"{source.name}:{head[1]}"
+            found.append([f"{place} {head[2]} {head[3]}"])
         elif (rest := _REST.fullmatch(line)) and found:
             found[-1].append(f"{rest[1]}: {rest[2]}")
     return found
@@ -111,8 +114,10 @@ def test_every_message_says_what_was_expected_and_found() -> None:
 
 #: slugs that no file of the corpus can show, with the test that does
 ELSEWHERE = {
+    "bad-cell": "tests/read/test_workbook.py",
     "cannot-write": "tests/commands/test_build.py",
     "file-too-large": "tests/commands/test_hostile.py",
+    "hidden-rows": "tests/read/test_workbook.py",
 }
 
 

@@ -64,6 +64,10 @@ def _name(node: Name, sets: tuple[tuple[int, ...], ...]) -> Work:
     if len(owns) == 1:
         only = owns[0]
         return lambda values: values.rows[slot][(values.open[only],)]  # type: ignore[return-value]
+    if len(owns) == 2:
+        # a factor by combination and load, an effect by section and load: most of the work of long tables
+        first, second = owns
+        return lambda values: values.rows[slot][values.open[first], values.open[second]]  # type: ignore[return-value]
     return lambda values: values.rows[slot][tuple([values.open[s] for s in owns])]  # type: ignore[return-value]
 
 
@@ -153,8 +157,9 @@ def _over(node: Over, sets: tuple[tuple[int, ...], ...]) -> Work:
     def found(values: Values) -> list[float]:
         before = values.open[index]
         kept: list[float] = []
-        values.spend(len(values.row_names(index)))
-        for row in range(len(values.row_names(index))):
+        rows = len(values.row_names(index))
+        values.spend(rows)
+        for row in range(rows):
             values.open[index] = row
             if where is None or where(values):
                 kept.append(body(values))
@@ -186,8 +191,9 @@ def _linear(node: Over, where: Compare, body: Work, otherwise: Work | None, sets
     def work(values: Values) -> float:
         before, place = values.open[index], at(values)
         points: list[tuple[float, float]] = []
-        values.spend(len(values.row_names(index)))
-        for row in range(len(values.row_names(index))):
+        rows = len(values.row_names(index))
+        values.spend(rows)
+        for row in range(rows):
             values.open[index] = row
             points.append((x(values), body(values)))
         values.open[index] = before

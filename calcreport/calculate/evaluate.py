@@ -103,7 +103,7 @@ class Program:
             reached = {id(check.line) for check in checks}
             left = [check for check in _planned_checks(self.plan.lines) if id(check) not in reached]
             checks += [_not_evaluated(check, stop) for check in left]
-        return Worked(calculation, self.plan, values, tuple(lines), tuple(checks), stop, fingerprint, self.work)
+        return Worked(calculation, self.plan, values, tuple(lines), tuple(checks), stop, fingerprint, self.work, self.test)
 
     def work(self, node: Expression) -> Work:
         """Return a formula's callable, compiled at its first use."""

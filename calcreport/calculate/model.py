@@ -271,6 +271,8 @@ class Worked:
     fingerprint: str
     #: returns the callable of a planned formula
     compiled: Callable[[Expression], Work]
+    #: returns the test of a planned condition
+    tested: Callable[[Condition], Test]
 
     @property
     def verdict(self) -> Verdict:

@@ -51,8 +51,8 @@ def work_project(
             worked[calculation.mark] = program.run(calculation, values, _fingerprint(calculation, worked))
         progress(done + 1, len(order))
     kept = tuple(worked[c.mark] for c in calculations if c.mark in worked)
-    marks = [w.calculation.mark for w in kept]
-    places = tuple(marks.index(calculations[p].mark) for p in order if calculations[p].mark in worked)
+    place_of = {w.calculation.mark: place for place, w in enumerate(kept)}
+    places = tuple(place_of[calculations[p].mark] for p in order if calculations[p].mark in worked)
     _hold_dispositions(inputs, kept, problems)
     whole = hashlib.sha256("\n".join(w.fingerprint for w in kept).encode())
     for source in inputs.project.files:

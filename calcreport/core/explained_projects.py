@@ -76,7 +76,7 @@ The template says which values may be left out, and what they then are worth. Gi
 It is refused rather than passed over, because what it says would be missing from the sheets. Leave it out and write
 the work another way.
 
-    schedules: […]      not read: write the calculations out, or share them by `include`""",
+    attachments: […]      not read: hand the papers in beside the package""",
     "out-of-range": """A value lies outside the range for which the template is written.
 Beyond it the formulas do not hold, so no result is given. Correct the value, or use a template that covers it.
 

@@ -4,7 +4,8 @@ from __future__ import annotations
 
 from calcreport.core.explained_files import FILES
 from calcreport.core.explained_projects import PROJECTS
+from calcreport.core.explained_schedules import SCHEDULES
 from calcreport.core.explained_templates import TEMPLATES
 
 #: the first line says what the problem means; an example stands last
-EXPLANATIONS: dict[str, str] = {**FILES, **PROJECTS, **TEMPLATES}
+EXPLANATIONS: dict[str, str] = {**FILES, **PROJECTS, **SCHEDULES, **TEMPLATES}

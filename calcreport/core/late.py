@@ -1,6 +1,6 @@
-"""Libraries, and the program's own commands, loaded at the moment they are needed and not before.
+"""Libraries, and a few of the program's own modules, loaded at the moment they are needed and not before.
 
-The one place where a module is imported by name at run time; both lists are closed.
+The one place where a module is imported by name at run time; all lists are closed.
 """
 
 from __future__ import annotations
@@ -10,9 +10,14 @@ from types import ModuleType
 from typing import Literal
 
 
-def load(name: Literal["mpmath", "sympy", "pint", "scipy.optimize"]) -> ModuleType:
+def load(name: Literal["mpmath", "sympy", "pint", "scipy.optimize", "openpyxl"]) -> ModuleType:
     """Return a library of the closed list, importing it the first time."""
     return import_module(name)
+
+
+def load_schedules() -> ModuleType:
+    """Return the module that reads schedules: few projects have any, and tables ask for much."""
+    return import_module("calcreport.read.schedules")
 
 
 def load_command(name: str) -> ModuleType:

@@ -11,7 +11,7 @@ from dataclasses import dataclass
 from difflib import get_close_matches
 from itertools import islice
 
-from calcreport.core.source import Source, Span
+from calcreport.core.source import Source, Span, TableSource
 
 #: problems kept of one run, and those among them that may ask for near spellings: bounds against files made to exhaust
 MOST_KEPT, MOST_HINTED = 500, 60
@@ -40,7 +40,7 @@ class Problems:
 
     def __init__(self) -> None:
         self._kept: list[Problem] = []
-        self._seen: set[tuple[str, str, str, int]] = set()
+        self._seen: set[tuple[str, str, str]] = set()
         self._sources: set[Source] = set()
         #: problems met so far, those met before and those beyond the bound among them: whether a step went well
         self.met = 0
@@ -60,7 +60,7 @@ class Problems:
         self.met += 1
         if span is not None:
             self._sources.add(span.source)
-        key = (slug, message, span.source.shown if span else "", span.start if span else 0)
+        key = (slug, message, span.place if span else "")
         if key not in self._seen and len(self._kept) < MOST_KEPT:
             self._seen.add(key)
             self._kept.append(Problem(slug, span, message, expected, found, hint, related))
@@ -121,7 +121,7 @@ def render(problem: Problem) -> str:
     else:
         span = problem.span
         line, column = span.source.place(span.start)
-        rows.append(f"{span.source.shown}:{line}:{column}: {head}")
+        rows.append(f"{span.place}: {head}")
         text, shift = _window(span.source.line_text(line), column)
         rows.append(f"{line:>5} | {text}")
         length = max(1, min(span.end - span.start, len(text) - (column - 1 - shift)))
@@ -140,6 +140,8 @@ def to_json(problem: Problem) -> dict[str, object]:
     if problem.span is not None:
         line, column = problem.span.source.place(problem.span.start)
         place = {"file": problem.span.source.shown, "line": line, "column": column}
+        if isinstance(problem.span.source, TableSource) and problem.span.source.sheet:
+            place["cell"] = problem.span.source.where(problem.span.start)
     return {
         "slug": problem.slug,
         **place,

@@ -9,9 +9,10 @@ from __future__ import annotations
 import re
 from dataclasses import dataclass
 from fractions import Fraction
+from functools import lru_cache
 
 from calcreport.core.problems import Problems
-from calcreport.core.source import Span
+from calcreport.core.source import Source, Span
 from calcreport.core.units import NONE, ONE, Dimension, Unit, dimension_words, make_unit, read_unit
 
 
@@ -57,7 +58,7 @@ def read_amount(text: str, span: Span, problems: Problems) -> Amount | None:
             found=text[:LONGEST],
         )
         return None
-    amount = _read_feet(text)
+    amount = _known(text)
     if amount is not None:
         return amount
     match = _PLAIN.fullmatch(text)
@@ -68,10 +69,23 @@ def read_amount(text: str, span: Span, problems: Problems) -> Amount | None:
             expected="a number and its unit, such as 4500 psi or 18 ft 6 in", found=text[:40] or "nothing", hint=hint,
         )  # fmt: skip
         return None
+    lead = len(match[2]) - len(match[2].lstrip())
+    read_unit(match[2].strip(), span.part(match.start(2) + lead, len(text)), problems)
+    return None
+
+
+@lru_cache(maxsize=4096)
+def _known(text: str) -> Amount | None:
+    """Read an amount, or return None: the same texts stand in thousands of rows."""
+    amount = _read_feet(text)
+    if amount is not None:
+        return amount
+    match = _PLAIN.fullmatch(text)
+    if match is None or _FRACTION.match(match[2]):
+        return None
     unit: Unit | None = ONE
     if match[2].strip():
-        lead = len(match[2]) - len(match[2].lstrip())
-        unit = read_unit(match[2].strip(), span.part(match.start(2) + lead, len(text)), problems)
+        unit = read_unit(match[2].strip(), Span(Source("", text), 0, len(text)), Problems())
     if unit is None:
         return None
     return Amount(Fraction(match[1].replace(",", "")) * unit.scale, unit, " ".join(text.split()))

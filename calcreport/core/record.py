@@ -36,40 +36,49 @@ def made(*, factory: Callable[[], T]) -> T:
 @dataclass_transform(frozen_default=True, field_specifiers=(made,))
 def record(kind: type[T]) -> type[T]:
     """Make a class a record; a value given to a field in the class body is its default, shared by all records."""
-    names = _fields(kind)
-    equal, hashed = _by_value(names)
-    return _slotted(kind, names, {"__eq__": equal, "__hash__": hashed})
+    equal, hashed = _by_value(_fields(kind))
+    return _slotted(kind, {"__eq__": equal, "__hash__": hashed})
 
 
 @dataclass_transform(frozen_default=True, eq_default=False, field_specifiers=(made,))
 def entity(kind: type[T]) -> type[T]:
     """Make a class a record that equals only itself."""
-    return _slotted(kind, _fields(kind), {})
+    return _slotted(kind, {})
 
 
 @dataclass_transform(eq_default=False, field_specifiers=(made,))
 def state(kind: type[T]) -> type[T]:
     """Make a class whose fields change; a value given to a field in the class body is its default."""
-    return _slotted(kind, _fields(kind), {})
+    return _slotted(kind, {})
 
 
 def replace(one: T, **changes: object) -> T:
     """Return an object like another but for some fields; TypeError when it has no field of a name."""
     kind: Any = type(one)
-    again: T = kind(**{name: getattr(one, name) for name in kind.__slots__} | changes)
+    again: T = kind(**{name: getattr(one, name) for name in kind.__match_args__} | changes)
     return again
 
 
+def _inherited(kind: type) -> tuple[str, ...]:
+    """Return the fields of the class it extends, if that has any."""
+    return tuple(getattr(kind, "__match_args__", ()))
+
+
 def _fields(kind: type) -> tuple[str, ...]:
-    return tuple(getattr(kind, "__annotations__", ()))
+    """Return the fields in order: those of the class it extends, then its own."""
+    own = vars(kind).get("__annotations__", ())
+    return (*_inherited(kind), *(name for name in own if name not in _inherited(kind)))
 
 
-def _slotted(kind: type[T], names: tuple[str, ...], methods: dict[str, object]) -> type[T]:
+def _slotted(kind: type[T], methods: dict[str, object]) -> type[T]:
     """Make the class again with slots; what its body defines itself stays."""
-    body = {key: value for key, value in kind.__dict__.items() if key not in ("__dict__", "__weakref__")}
-    defaults = {name: body.pop(name) for name in names if name in body}
+    names = _fields(kind)
+    body = {key: value for key, value in vars(kind).items() if key not in ("__dict__", "__weakref__")}
+    own = {name: body.pop(name) for name in names if name in body}
+    defaults = getattr(kind, "_defaults", {}) | own
     body = {"__repr__": _shown, **methods, **body}
-    body |= {"__slots__": names, "__match_args__": names, "__init__": _initialiser(kind, names, defaults)}
+    body |= {"__slots__": names[len(_inherited(kind)) :], "__match_args__": names, "_defaults": defaults}
+    body["__init__"] = _initialiser(kind, names, defaults)
     again: Any = type(kind)
     slotted: type[T] = again(kind.__name__, kind.__bases__, body)
     return slotted
@@ -109,5 +118,5 @@ def _by_value(names: tuple[str, ...]) -> tuple[object, object]:
 
 
 def _shown(one: Any) -> str:
-    fields = ", ".join(f"{name}={getattr(one, name)!r}" for name in type(one).__slots__)
+    fields = ", ".join(f"{name}={getattr(one, name)!r}" for name in type(one).__match_args__)
     return f"{type(one).__qualname__}({fields})"

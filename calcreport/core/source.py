@@ -23,6 +23,11 @@ class Source:
     _starts: list[int] = field(default_factory=list, repr=False)
 
     @property
+    def titled(self) -> str:
+        """The name an echo of the text is headed by."""
+        return self.name
+
+    @property
     def shown(self) -> str:
         """The path as the user would type it, for problems."""
         return f"{self.folder}/{self.name}" if self.folder else self.name
@@ -52,6 +57,57 @@ class Source:
         end = starts[line] - 1 if line < len(starts) else len(self.text)
         return self.text[starts[line - 1] : end]
 
+    def where(self, offset: int) -> str:
+        """Return the place of a character offset as its reader would look for it: 'line:column'."""
+        line, column = self.place(offset)
+        return f"{line}:{column}"
+
+
+@dataclass(frozen=True, eq=False)
+class TableSource(Source):
+    """A table as text, a record a row: sheets name the record, problems the line or the cell of a workbook.
+
+    The text of a workbook's sheet is made by its reader: a line a row, cells apart by tabs.
+    """
+
+    #: offsets at which records begin; a record of a text table may run over several lines
+    records: tuple[int, ...] = ()
+    #: sheet of the workbook, '' for a text table
+    sheet: str = ""
+    #: what parts its rows from those of other tables in print, '' where there is no other
+    label: str = ""
+
+    def record(self, offset: int) -> int:
+        """Return the number of the record at an offset, counted from 1 as a spreadsheet counts rows."""
+        return bisect_right(self.records, offset)
+
+    def row_words(self, offset: int) -> str:
+        """Return the row at an offset as print names it: 'row 12', 'columns.csv row 12'."""
+        return f"{self.label} row {self.record(offset)}".lstrip()
+
+    def where(self, offset: int) -> str:
+        """Return 'line:column' in a text table, 'Sheet!B12' in a workbook."""
+        if not self.sheet:
+            return Source.where(self, offset)
+        row = self.record(offset)
+        column = self.text.count("\t", self.records[row - 1], offset) if row else 0
+        return f"{self.sheet}!{column_letters(column)}{max(row, 1)}"
+
+    @property
+    def titled(self) -> str:
+        """The name of the file and of the sheet, as the echo of inputs is headed."""
+        return f"{self.name}, sheet {self.sheet}" if self.sheet else self.name
+
+
+def column_letters(index: int) -> str:
+    """Return the letters a spreadsheet gives a column counted from 0: A, B, …, Z, AA."""
+    letters = ""
+    index += 1
+    while index:
+        index, rest = divmod(index - 1, 26)
+        letters = chr(ord("A") + rest) + letters
+    return letters
+
 
 @dataclass(frozen=True, slots=True)
 class Span:
@@ -65,9 +121,8 @@ class Span:
 
     @property
     def place(self) -> str:
-        """The place as 'file:line:column'."""
-        line, column = self.source.place(self.start)
-        return f"{self.source.shown}:{line}:{column}"
+        """The place as 'file:line:column', in a workbook as 'file:Sheet!B12'."""
+        return f"{self.source.shown}:{self.source.where(self.start)}"
 
     @property
     def text(self) -> str:

@@ -97,18 +97,55 @@ def substitutes(font: FontFile, feature: str, script: bytes = b"DFLT") -> dict[i
     return found
 
 
+class _ByClasses:
+    """Pair kerning by classes of glyphs."""
+
+    __slots__ = ("_at", "_columns", "_data", "_rows", "_width", "covered")
+
+    def __init__(self, data: bytes, at: int) -> None:
+        self._data, self._at = data, at
+        offset, _, _, first, second, _, self._width = unpack_from(">7H", data, at + 2)
+        self.covered = coverage(data, at + offset)
+        self._rows, self._columns = _Classes(data, at + first), _Classes(data, at + second)
+
+    def value(self, left: int, right: int) -> int:
+        """Give the value of a pair whose left glyph is covered."""
+        place = self._at + 16 + 2 * (self._rows.of(left) * self._width + self._columns.of(right))
+        found: int = unpack_from(">h", self._data, place)[0]
+        return found
+
+
+class _ByPairs:
+    """Pair kerning listed glyph by glyph."""
+
+    __slots__ = ("_at", "_data", "_sets", "covered")
+
+    def __init__(self, data: bytes, at: int) -> None:
+        self._data, self._at = data, at
+        self.covered = coverage(data, at + unpack_from(">H", data, at + 2)[0])
+        self._sets: dict[int, dict[int, int]] = {}
+
+    def value(self, left: int, right: int) -> int | None:
+        """Give the value of a pair whose left glyph is covered; None where the pair is not listed."""
+        values = self._sets.get(left)
+        if values is None:
+            group = self._at + unpack_from(">H", self._data, self._at + 10 + 2 * self.covered[left])[0]
+            count = unpack_from(">H", self._data, group)[0]
+            numbers = unpack_from(">" + "Hh" * count, self._data, group + 2)
+            values = self._sets[left] = dict(zip(numbers[0::2], numbers[1::2], strict=True))
+        return values.get(right)
+
+
 class Kerning(dict[tuple[int, int], int]):
     """Distances to add between two glyphs, in font units, by pairs; 0 for most; a pair is looked up on first use."""
 
-    __slots__ = ("_classes", "_covered", "_font", "_places")
+    __slots__ = ("_font", "_tables")
 
     def __init__(self, font: FontFile) -> None:
         """Take a font; its pair tables are read when a first pair needs them."""
         super().__init__()
         self._font = font
-        self._places: tuple[int, ...] | None = None
-        self._covered: dict[int, dict[int, int]] = {}
-        self._classes: dict[int, tuple[_Classes, _Classes]] = {}
+        self._tables: tuple[_ByClasses | _ByPairs, ...] | None = None
 
     def __missing__(self, pair: tuple[int, int]) -> int:
         found = self[pair] = self._find(*pair)
@@ -116,39 +153,19 @@ class Kerning(dict[tuple[int, int], int]):
 
     def _find(self, left: int, right: int) -> int:
         """Search the pair tables in order; the first that covers the left glyph with this pair decides."""
-        if self._places is None:
-            self._places = tuple(_subtables(self._font, "GPOS", "kern", _PAIR))
-        data = self._font.data
-        for at in self._places:
-            form, offset, one, two = unpack_from(">4H", data, at)
-            if at not in self._covered:
-                if (one, two) != (4, 0):
-                    raise ValueError("pair kerning other than a change of the first advance")
-                self._covered[at] = coverage(data, at + offset)
-            index = self._covered[at].get(left)
-            if index is None:
-                continue
-            place = self._cell(at, left, right) if form == 2 else self._place_in_set(at, index, right)
-            if place:
-                found: int = unpack_from(">h", data, place)[0]
-                return found
+        if self._tables is None:
+            places = _subtables(self._font, "GPOS", "kern", _PAIR)
+            self._tables = tuple(_pair_table(self._font.data, at) for at in places)
+        for table in self._tables:
+            if left in table.covered:
+                found = table.value(left, right)
+                if found is not None:
+                    return found
         return 0
 
-    def _cell(self, at: int, left: int, right: int) -> int:
-        """Find the value of a pair in a table by classes."""
-        data = self._font.data
-        if at not in self._classes:
-            first, second = unpack_from(">2H", data, at + 8)
-            self._classes[at] = (_Classes(data, at + first), _Classes(data, at + second))
-        rows, columns = self._classes[at]
-        width: int = unpack_from(">H", data, at + 14)[0]
-        return at + 16 + 2 * (rows.of(left) * width + columns.of(right))
 
-    def _place_in_set(self, at: int, index: int, right: int) -> int:
-        """Find the value of a pair listed by its second glyph; 0 for none."""
-        data = self._font.data
-        group = at + unpack_from(">H", data, at + 10 + 2 * index)[0]
-        count = unpack_from(">H", data, group)[0]
-        seconds = unpack_from(">" + "H2x" * count, data, group + 2)
-        i = bisect_right(seconds, right) - 1
-        return group + 4 + 4 * i if i >= 0 and seconds[i] == right else 0
+def _pair_table(data: bytes, at: int) -> _ByClasses | _ByPairs:
+    form, _, one, two = unpack_from(">4H", data, at)
+    if (one, two) != (4, 0):
+        raise ValueError("pair kerning other than a change of the first advance")
+    return _ByClasses(data, at) if form == 2 else _ByPairs(data, at)

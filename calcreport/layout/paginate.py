@@ -180,7 +180,9 @@ def _pages(desk: _Desk, part: Part, bodies: tuple[Body, ...]) -> Iterable[Page]:
 def _bookmarks(parts: Iterable[Part], bodies: dict[str, tuple[Body, ...]]) -> Iterable[Bookmark]:
     """Give one entry a part and under it one a sheet."""
     for part in parts:
-        title = part.title if part.title.startswith(part.mark) else f"{part.mark}  {part.title}"
+        same = part.title.casefold() == part.mark.casefold()
+        marked = part.title.startswith(f"{part.mark}  ")
+        title = part.mark if same else part.title if marked else f"{part.mark}  {part.title}"
         yield Bookmark(title, sheet_label(part, 1), 0)
         for number in range(1, len(bodies[part.mark]) + 1):
             label = sheet_label(part, number)

@@ -65,23 +65,31 @@ def draw_section(formulas: Formulas, figure: SectionFigure, width: float) -> Box
     Only the section itself gives way to a narrow lane; diagrams and labels keep their widths.
     """
     labels = {name: formulas.box(label, SIZE, "text") for name, label in figure.labels}
-    columns = _columns(figure, labels)
-    left = 11.0 + labels["h"].width if "h" in labels else 3.0
-    room = max(width - left - columns.end, LEAST * figure.width / figure.depth)
-    scale = min(HEIGHT / figure.depth, min(SECTION, room) / figure.width)
-    wide, high = figure.width * scale, figure.depth * scale
-    frame = Frame(0.0, wide, 0.0, high, scale, figure.tension_face == "bottom")
+    columns = _columns(figure, labels, 0.0)
+    frame = _frame(figure, labels, columns, width)
+    aside = max((box.width for box, _, inside in _callouts(formulas, figure, frame) if not inside), default=0.0)
+    if aside:
+        columns = _columns(figure, labels, aside + 3.0)
+        frame = _frame(figure, labels, columns, width)
     drawing = Drawing()
     _section(drawing, figure, frame)
     _outer_dimensions(drawing, frame, labels)
-    _callouts(drawing, formulas, figure, frame)
+    _name_layers(drawing, formulas, figure, frame)
     if figure.neutral_axis is not None:
         _diagrams(drawing, figure, frame, labels, columns)
     return drawing.box()
 
 
-def _columns(figure: SectionFigure, labels: dict[str, Box]) -> Columns:
-    """Find the columns right of the section, wide enough for the labels that stand in them."""
+def _frame(figure: SectionFigure, labels: dict[str, Box], columns: Columns, width: float) -> Frame:
+    """Find the scale at which the section finds room left of its diagrams."""
+    left = 11.0 + labels["h"].width if "h" in labels else 3.0
+    room = max(width - left - columns.end, LEAST * figure.width / figure.depth)
+    scale = min(HEIGHT / figure.depth, min(SECTION, room) / figure.width)
+    return Frame(0.0, figure.width * scale, 0.0, figure.depth * scale, scale, figure.tension_face == "bottom")
+
+
+def _columns(figure: SectionFigure, labels: dict[str, Box], aside: float) -> Columns:
+    """Find the columns right of the section, wide enough for their labels and for callouts set `aside` of it."""
     axis = figure.neutral_axis
     if axis is None:
         return Columns(0.0, 0.0, 0.0, 0.0, 0.0, 1.0)
@@ -89,7 +97,8 @@ def _columns(figure: SectionFigure, labels: dict[str, Box]) -> Columns:
     wide = {name: box.width for name, box in labels.items()}
     squeezed = STRAIN * axis / max(extreme, axis)
     stretched = STRAIN - squeezed
-    strain = 6.0 + max(stretched, wide.get("c", 0.0) + 8.0, wide.get("strain_top", 0.0) - squeezed - 3.0)
+    steel = aside + wide.get("strain_steel", 0.0) if aside else 0.0
+    strain = 6.0 + max(stretched + aside, steel, wide.get("c", 0.0) + 8.0, wide.get("strain_top", 0.0) - squeezed - 3.0)
     depth = strain + squeezed + 7.0
     stress = depth + (7.0 if "d" in labels else 1.0)
     needs = (
@@ -155,8 +164,25 @@ def _outer_dimensions(drawing: Drawing, frame: Frame, labels: dict[str, Box]) ->
         drawing.label(labels["b"], ((frame.left + frame.right) / 2, y + 7.5, 0.5))
 
 
-def _callouts(drawing: Drawing, formulas: Formulas, figure: SectionFigure, frame: Frame) -> None:
-    """Name each layer: the one nearest the middle inside the section if it has room, the others beside it."""
+def _callouts(formulas: Formulas, figure: SectionFigure, frame: Frame) -> list[tuple[Box, float, bool]]:
+    """Return each layer's callout, its depth, and whether it stands inside the section.
+
+    The layer nearest the middle on either side stands inside if it has room there, the others beside the section.
+    """
+    inside = frame.right - frame.left - 2 * (figure.cover + figure.stirrup_diameter) * frame.scale - 3.0
+    middle = figure.depth / 2
+    found: list[tuple[Box, float, bool]] = []
+    named: set[bool] = set()
+    for depth in sorted({bar.depth for bar in figure.bars}, key=lambda depth: abs(depth - middle)):
+        words = " + ".join(bar.callout for bar in figure.bars if bar.depth == depth)
+        box = formulas.box(Letters(words), SIZE, "text")
+        found.append((box, depth, box.width <= inside and (depth < middle) not in named))
+        named.add(depth < middle)
+    return found
+
+
+def _name_layers(drawing: Drawing, formulas: Formulas, figure: SectionFigure, frame: Frame) -> None:
+    """Set the callouts, clear of bars, faces and neutral axis."""
     scale = frame.scale
     for _, y, radius in bar_places(figure):
         drawing.keep_clear(frame.left, (y - radius) * scale, frame.right, (y + radius) * scale)
@@ -165,21 +191,15 @@ def _callouts(drawing: Drawing, formulas: Formulas, figure: SectionFigure, frame
     if figure.neutral_axis is not None:
         axis = frame.at(figure.neutral_axis)
         drawing.keep_clear(frame.left, axis, frame.right, axis)
-    inside = frame.right - frame.left - 2 * (figure.cover + figure.stirrup_diameter) * scale - 3.0
-    middle = figure.depth / 2
-    depths = sorted({bar.depth for bar in figure.bars}, key=lambda depth: abs(depth - middle))
-    named: set[bool] = set()
-    for depth in depths:
-        layer = [bar for bar in figure.bars if bar.depth == depth]
-        box = formulas.box(Letters(" + ".join(bar.callout for bar in layer)), SIZE, "text")
-        half = max(bar.diameter for bar in layer) / 2 * scale + 2.0 + (box.ascent + box.descent) / 2
-        inwards = depth * scale + (half if depth < middle else -half)
+    for box, depth, inside in _callouts(formulas, figure, frame):
+        thickest = max(bar.diameter for bar in figure.bars if bar.depth == depth)
+        half = thickest / 2 * scale + 2.0 + (box.ascent + box.descent) / 2
+        inwards = depth * scale + (half if depth < figure.depth / 2 else -half)
         beside = (frame.right + 3.0, depth * scale, 0.0)
-        if box.width <= inside and (depth < middle) not in named:
+        if inside:
             drawing.label(box, ((frame.left + frame.right) / 2, inwards, 0.5), beside)
         else:
             drawing.label(box, beside)
-        named.add(depth < middle)
 
 
 def tension_depths(figure: SectionFigure) -> tuple[float, float]:

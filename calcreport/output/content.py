@@ -110,25 +110,33 @@ class ContentWriter:
 
     def _fragment(self, box: Box) -> _Fragment:
         """Give the content of a box, kept for its next place."""
-        found = self._fragments[id(box)] = (*self._gather(box.items), box)
+        items = box.items
+        if len(items) == 1 and type(items[0]) is Run:
+            # letters, numbers and lines of words: half of all boxes
+            run = items[0]
+            x, y, font = round(run.x * 100), -round(run.y * 100), self._font(run)
+            found: _Fragment = (self._string(run), x, y, font, font, x, y, (), box)
+        else:
+            found = self._gather(box)
+        self._fragments[id(box)] = found
         return found
 
-    def _gather(
-        self, items: tuple[Item, ...]
-    ) -> tuple[str, int, int, str, str, int, int, tuple[tuple[int, int, _Shape], ...]]:
-        """Join the content of items about a common origin."""
-        numbers, fragments = self._numbers, self._fragments
+    def _gather(self, box: Box) -> _Fragment:
+        """Join the content of the items of a box about its origin."""
+        numbers, known = self._numbers, self._fragments.get
         text = ""
         shapes: list[tuple[int, int, _Shape]] = []
         whole_x = whole_y = line_x = line_y = 0
         whole_first = font = ""
-        for item in items:
+        for item in box.items:
             if type(item) is Placed:
-                part = fragments.get(id(item.box)) or self._fragment(item.box)
-                string, start_x, start_y, first, last, end_x, end_y, inner, _ = part
-                x, y = round(item.x * 100), -round(item.y * 100)
-                if inner:
-                    shapes += [(x + dx, y + dy, shape) for dx, dy, shape in inner]
+                inner = item.box
+                part = known(id(inner)) or self._fragment(inner)
+                string, start_x, start_y, first, last, end_x, end_y, drawn, _ = part
+                x = round(item.x * 100)
+                y = -round(item.y * 100) if item.y else 0
+                if drawn:
+                    shapes += [(x + dx, y + dy, shape) for dx, dy, shape in drawn]
                 if not string:
                     continue
                 start_x += x
@@ -148,7 +156,7 @@ class ContentWriter:
             else:
                 whole_x, whole_y, whole_first, text = start_x, start_y, first, string
             font, line_x, line_y = last, end_x, end_y
-        return text, whole_x, whole_y, whole_first, font, line_x, line_y, tuple(shapes)
+        return text, whole_x, whole_y, whole_first, font, line_x, line_y, tuple(shapes), box
 
     def _font(self, run: Run) -> str:
         key = (run.face, run.size)

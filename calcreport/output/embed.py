@@ -104,18 +104,19 @@ def subset(font: FontFile, glyphs: list[int]) -> bytes:
         waiting += parts
     count = max(kept) + 1
     outlines: list[bytes] = []
-    places, metrics = [0] * (count + 1), bytearray(4 * count)
+    places: list[int] = []
+    metrics = bytearray(4 * count)
     at = 0
     hmtx = font.offset("hmtx")
-    for glyph in range(count):
-        places[glyph] = at
-        if glyph in kept:
-            start, end = font.outline_range(glyph)
-            outline = font.data[start:end]
-            outlines.append(outline + bytes(-len(outline) % 4))
-            at += len(outlines[-1])
-            metrics[4 * glyph : 4 * glyph + 4] = font.data[hmtx + 4 * glyph : hmtx + 4 * glyph + 4]
-    places[count] = at
+    for glyph in sorted(kept):
+        # glyphs left out before this one begin where it begins, and so are empty
+        places += [at] * (glyph + 1 - len(places))
+        start, end = font.outline_range(glyph)
+        outline = font.data[start:end]
+        outlines.append(outline + bytes(-len(outline) % 4))
+        at += len(outlines[-1])
+        metrics[4 * glyph : 4 * glyph + 4] = font.data[hmtx + 4 * glyph : hmtx + 4 * glyph + 4]
+    places.append(at)
     tables = {tag: font.table(tag) for tag in _TABLES if tag in font.tables}
     tables["glyf"] = b"".join(outlines)
     tables["loca"] = pack(f">{count + 1}I", *places)

@@ -89,6 +89,19 @@ def _given_below(lines: tuple[Line, ...]) -> Iterator[str]:
                 yield from (f"{stem}.{name}" if stem else name for name in own)
 
 
+def _once_only(lines: tuple[Line, ...]) -> Iterator[Line]:
+    """Yield the lines, at any depth and in parts, that have no place in the trials of an unknown."""
+    for line in lines:
+        match line:
+            case Check() | Drawing():
+                yield line
+            case Branches(arms):
+                for arm in arms:
+                    yield from _once_only(arm.lines)
+            case Each(_, inner) | Unknown(lines=inner) | PartUse(PartBody(lines=inner)):
+                yield from _once_only(inner)
+
+
 class _Linker:
     def __init__(self, problems: Problems) -> None:
         self.problems = problems
@@ -229,16 +242,15 @@ class _Linker:
     def unknown(self, line: Unknown, space: Space, at: Context) -> PlannedLine:
         low, high = self.names.expression(line.low, space, at), self.names.expression(line.high, space, at)
         slot = self.maker.slot(line.symbol, space, at.open, line.name_span)
-        for inner in line.lines:
-            if isinstance(inner, Check | Drawing):
-                self.problems.add(
-                    "not-in-unknown",
-                    inner.span.part(0, 1),
-                    "this line cannot stand among the lines of an `unknown`",
-                    expected="lines that are worked once a trial",
-                    found="a check or a figure",
-                    hint="put it after the `unknown`",
-                )
+        for inner in _once_only(line.lines):
+            self.problems.add(
+                "not-in-unknown",
+                inner.span.part(0, 1),
+                "this line cannot stand among the lines of an `unknown`",
+                expected="lines that are worked once a trial",
+                found="a check or a figure",
+                hint="put it after the `unknown`",
+            )
         lines = self.lines(line.lines, space, at)
         left, right = self.names.expression(line.left, space, at), self.names.expression(line.right, space, at)
         return PlannedUnknown(slot.index, low, high, left, right, lines, line.span)

@@ -265,6 +265,6 @@ __all__ = [
     "BarCallout", "Calculation", "Case", "Expected", "FigureInput", "Given", "GivenPairs", "GivenRows", "GivenValue",
     "Handed", "Inputs", "LinkedValue", "Plan", "PlannedArm", "PlannedBranchArm", "PlannedBranches", "PlannedCheck",
     "PlannedColumn", "PlannedEach", "PlannedEntry", "PlannedFigure", "PlannedGiven", "PlannedGives", "PlannedLine",
-    "PlannedPart", "PlannedRequire", "PlannedRows", "PlannedText", "PlannedUnknown", "Project", "RowSet", "Slot", "Symbol", "Template",
-    "ValueOrigin",
+    "PlannedPart", "PlannedRequire", "PlannedRows", "PlannedText", "PlannedUnknown", "Project", "RowSet", "Slot",
+    "Symbol", "Template", "ValueOrigin",
 ]  # fmt: skip

@@ -9,7 +9,7 @@ import re
 from dataclasses import dataclass, field
 
 from calcreport.core.problems import Problems
-from calcreport.core.source import Span
+from calcreport.core.source import Span, TableSource
 from calcreport.read.fields import Fields, is_empty
 from calcreport.read.gathering import Gathered
 from calcreport.read.library import Editions, Library
@@ -60,7 +60,9 @@ class CalculationReader:
             template = self.library.template(name.text, system, self.editions, name.span)
         # without its template nobody knows which material roles a calculation takes
         roles = (
-            _roles(template.body.given) if template else tuple(k.text for k, _ in node.entries if k.text not in _LATER)
+            roles_of(template.body.given)
+            if template
+            else tuple(k.text for k, _ in node.entries if k.text not in _LATER)
         )
         fields = Fields(node, (*_KEYS, *roles), "a calculation", self.problems, _LATER)
         fields.choice("units", SYSTEMS)
@@ -75,7 +77,7 @@ class CalculationReader:
             return None
         materials = self.materials(fields, roles)
         reader = ValueReader(materials, self.library.bar_table(template.name, system), node.span, self.problems)
-        values = reader.read(template.body.given, given or Mapping((), node.span), mark.text[:12])
+        values = reader.read(template.body.given, given or Mapping((), node.span), _named(mark))
         if not kept or not is_complete(values, template.body.given):
             return None
         return Calculation(mark.text, title, template, values, node.span.text, mark.span)
@@ -116,7 +118,13 @@ class CalculationReader:
         return found
 
 
-def _roles(givens: tuple[Given, ...]) -> tuple[str, ...]:
+def _named(mark: Scalar) -> str:
+    """Return what problems call a calculation; what all rows of a schedule lack is told once."""
+    source = mark.span.source
+    return f"a row of {source.name[:60]}" if isinstance(source, TableSource) else mark.text[:12]
+
+
+def roles_of(givens: tuple[Given, ...]) -> tuple[str, ...]:
     """Return the material roles of a template, once each."""
     roles = (one.material for given in givens for one in (given, *given.columns) if one.material)
     return tuple(dict.fromkeys(roles))

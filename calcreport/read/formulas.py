@@ -46,13 +46,14 @@ class FormulaReader:
         own = Mapping(tuple(entry for entry in fields.node.entries if entry[0].text in OWN_KEYS), fields.span)
         return read_symbol(name, Fields(own, OWN_KEYS, f"`{name.text}`", self.problems), base, self.problems)
 
-    def equation(self, scalar: Scalar | None) -> tuple[Expression, Expression] | None:
-        """Parse `left = right`; adds `no-equation`."""
+    def equation(self, fields: Fields, key: str, *, required: bool = False) -> tuple[Expression, Expression] | None:
+        """Parse `left = right` under a key; adds `no-equation`."""
+        scalar = fields.scalar(key, required=required)
         if scalar is None:
             return None
         left, sign, right = scalar.text.partition("=")
         if not sign or right.startswith("=") or left[-1:] in ("<", ">", "!"):
-            self.problems.add("no-equation", scalar.span, "`as cited` is not an equation", expected="left = right",
+            self.problems.add("no-equation", scalar.span, f"`{key}` is not an equation", expected="left = right",
                               found=scalar.text[:60] or "nothing")  # fmt: skip
             return None
         at = len(left) + 1

@@ -1,4 +1,4 @@
-"""What a project file and the files it includes hold: materials, assumptions, calculations, in written order.
+"""What a project file and the files it includes hold: materials, assumptions, calculations, schedules, as written.
 
 Fields in, `Gathered` out. An included file is read from inside the project folder and once.
 """
@@ -17,7 +17,7 @@ from calcreport.read.nodes import Mapping, Node, Scalar, read_tree
 
 #: bounds against files made to exhaust
 DEEPEST_INCLUDE, MOST_FILES, MOST_CALCULATIONS = 5, 200, 20_000
-_KEYS = ("materials", "assumptions", "calculations")
+_KEYS = ("materials", "assumptions", "calculations", "schedules")
 
 
 @dataclass(slots=True)
@@ -29,6 +29,7 @@ class Gathered:
     materials: dict[str, tuple[Scalar, dict[str, Scalar | None] | None]] = field(default_factory=dict)
     assumptions: list[Assumption] = field(default_factory=list)
     calculations: list[Mapping] = field(default_factory=list)
+    schedules: list[Mapping] = field(default_factory=list)
 
 
 class Gatherer:
@@ -48,7 +49,10 @@ class Gatherer:
             mapping = as_mapping(item, "an assumption", self.problems)
             if mapping is not None:
                 self.assumption(mapping)
-        for item in fields.items("calculations", required=True):
+        for item in fields.items("schedules"):
+            mapping = as_mapping(item, "a schedule", self.problems)
+            self.gathered.schedules += [mapping] if mapping is not None else []
+        for item in fields.items("calculations", required=not fields.has("schedules")):
             mapping = as_mapping(item, "a calculation", self.problems)
             if mapping is None:
                 continue
@@ -91,7 +95,7 @@ class Gatherer:
                               expected=f"{MOST_CALCULATIONS:,} at most", found="more")  # fmt: skip
 
     def include(self, scalar: Scalar, depth: int) -> None:
-        """Read an included file: the same keys for materials, assumptions and calculations."""
+        """Read an included file: the same keys for materials, assumptions, calculations, schedules."""
         path = posixpath.normpath(scalar.text)
         if path in self.names or depth >= DEEPEST_INCLUDE or len(self.gathered.files) >= MOST_FILES:
             self.problems.add("include-loop", scalar.span, f"`{scalar.text[:60]}` is included again",

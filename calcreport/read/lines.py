@@ -82,7 +82,7 @@ class LineReader:
         if not kind:
             self.say_unknown(mapping)
             return None
-        what = f"a `{kind}` line" if kind != "each" else "an `each` line"
+        what = f"an `{kind}` line" if kind in ("assume", "each", "unknown") else f"a `{kind}` line"
         fields = Fields(mapping, (kind, *_KINDS[kind], "only"), what, self.problems, _KEYS_LATER.get(kind, ()))
         readers: dict[str, Callable[[Fields], Line | None]] = {
             "gives": self.gives, "branches": self.branches, "rows": self.rows, "each": self.each,
@@ -116,7 +116,7 @@ class LineReader:
         symbol = self.formulas.symbol(name, fields) if name is not None else None
         cite = read_cite(fields, self.document, self.problems)
         arms = self.arms(fields)
-        cited = self.formulas.equation(fields.scalar("as cited"))
+        cited = self.formulas.equation(fields, "as cited")
         if name is None or symbol is None or not arms:
             return None
         return Gives(symbol, arms, cite, cited, fields.span, name.span)
@@ -212,7 +212,7 @@ class LineReader:
         if len(bounds) != 2 and fields.has("between"):
             self.problems.add("wrong-shape", fields.span_of("between").part(0, 1), "`between` takes two bounds",
                               expected="[lower, upper]", found=f"{len(bounds)}")  # fmt: skip
-        equation = self.formulas.equation(fields.scalar("satisfies", required=True))
+        equation = self.formulas.equation(fields, "satisfies", required=True)
         lines = self.lines(fields.items("lines"))
         low, high = bounds if len(bounds) == 2 else (None, None)
         if name is None or symbol is None or equation is None or low is None or high is None:

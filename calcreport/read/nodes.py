@@ -86,17 +86,7 @@ def read_tree(source: Source, problems: Problems) -> Node | None:
                      expected=f"{LARGEST:,} characters at most", found=f"{len(text):,}",
                      hint="share the work between files by `include`")  # fmt: skip
         return None
-    odd = _ODD.search(text)
-    if odd:
-        at = Span(source, odd.start(), odd.end())
-        problems.add(
-            "odd-character",
-            at,
-            "this character has no place in a text file",
-            expected="printable text and line ends",
-            found=f"{_ODD_WORDS.get(odd[0], 'a control character')} (U+{ord(odd[0]):04X})",
-            hint="delete it, or save the file as plain UTF-8 text",
-        )
+    if say_odd(source, problems):
         return None
     before = problems.met
     try:
@@ -108,6 +98,22 @@ def read_tree(source: Source, problems: Problems) -> Node | None:
         if problems.met == before:
             say_malformed(error, source, problems)
         return None
+
+
+def say_odd(source: Source, problems: Problems) -> bool:
+    """Tell whether a text holds a character that no text file may hold; adds `odd-character`."""
+    odd = _ODD.search(source.text)
+    if odd is None:
+        return False
+    problems.add(
+        "odd-character",
+        Span(source, odd.start(), odd.end()),
+        "this character has no place in a text file",
+        expected="printable text and line ends",
+        found=f"{_ODD_WORDS.get(odd[0], 'a control character')} (U+{ord(odd[0]):04X})",
+        hint="delete it, or save the file as plain UTF-8 text",
+    )
+    return True
 
 
 class _Reader:

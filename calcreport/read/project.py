@@ -9,6 +9,7 @@ from __future__ import annotations
 import re
 from datetime import date
 
+from calcreport.core.late import load_schedules
 from calcreport.core.problems import Problems
 from calcreport.core.source import Source
 from calcreport.core.world import World
@@ -21,9 +22,9 @@ from calcreport.read.model import SYSTEMS, Disposition, Inputs, Issue, Project, 
 from calcreport.read.nodes import Mapping, Scalar, read_tree
 
 _KEYS = ("project", "office", "status", "date", "units", "paper", "codes", "criteria", "materials", "assumptions",
-         "elsewhere", "calculations", "dispositions", "revisions")  # fmt: skip
+         "elsewhere", "calculations", "schedules", "dispositions", "revisions")  # fmt: skip
 #: keys the language has and this version does not read
-_LATER = ("schedules", "attachments")
+_LATER = ("attachments",)
 STATUSES = ("preliminary", "for review", "for permit", "issued for construction", "superseded", "void")
 _DATE = re.compile(r"([0-9]{4})-([0-9]{2})-([0-9]{2})")
 
@@ -46,11 +47,14 @@ class ProjectReader:
         codes = read_codes(fields.mapping("codes", required=True), self.library, self.problems)
         gatherer = Gatherer(self.world, source, self.problems)
         gatherer.gather(fields)
+        editions = tuple(sorted(codes.editions.items()))
+        if stated and gatherer.gathered.schedules:
+            reading = load_schedules().ScheduleReader
+            reading(self.world, self.library, system, editions, gatherer.gathered, self.problems).read()
         project = self.header(fields, system, codes, gatherer.gathered)
         if not stated:
             # without a unit system no template can be chosen: that one problem is enough
             return None
-        editions = tuple(sorted(codes.editions.items()))
         reader = CalculationReader(self.library, gatherer.gathered, system, editions, self.problems)
         calculations = reader.read()
         if fields.node_of("calculations") is not None and not gatherer.gathered.calculations:

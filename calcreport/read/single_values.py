@@ -11,7 +11,7 @@ from typing import TypeAlias
 
 from calcreport.core.problems import Problems
 from calcreport.core.quantity import Amount, read_in_unit
-from calcreport.core.source import Span
+from calcreport.core.source import Span, TableSource
 from calcreport.read.bars import BarTable, read_callout
 from calcreport.read.fields import Fields, as_scalar, say_not_a_word
 from calcreport.read.model import BarCallout, Given, GivenValue, Handed, LinkedValue, ValueOrigin
@@ -56,6 +56,7 @@ class SingleReader:
         if scalar.text == "none" and not (given.symbol and "none" in given.symbol.words):
             return self.none(given, scalar)
         value = self.typed(given, scalar)
+        origin = origin_at(scalar.span) if origin is FILE else origin
         return None if value is None else GivenValue(given, value, origin, scalar.span)
 
     def link(self, given: Given, scalar: Scalar) -> GivenValue | None:
@@ -75,7 +76,9 @@ class SingleReader:
         if not self.may_be_none(given, scalar):
             return None
         worth = None if given.if_none == "absent" else given.if_none
-        return GivenValue(given, worth, NONE, scalar.span)
+        row = origin_at(scalar.span)
+        origin = NONE if row is FILE else ValueOrigin("none", f"schedule {row.words}")
+        return GivenValue(given, worth, origin, scalar.span)
 
     def may_be_none(self, given: Given, scalar: Scalar) -> bool:
         """Hold the word `none` against the declaration; adds `not-none`."""
@@ -165,6 +168,12 @@ class SingleReader:
             return self.none(given, scalar)
         value = self.typed(given, scalar)
         return None if value is None else GivenValue(given, value, ValueOrigin("material", mark.text), scalar.span)
+
+
+def origin_at(span: Span) -> ValueOrigin:
+    """Return the origin of a value by the file it stands in: the project's, or a row of a schedule."""
+    source = span.source
+    return ValueOrigin("schedule", source.row_words(span.start)) if isinstance(source, TableSource) else FILE
 
 
 def wanted(given: Given) -> str:

@@ -6,12 +6,13 @@ Nodes in, `GivenValue`, `GivenRows`, `GivenPairs` out. What is missing or unknow
 from __future__ import annotations
 
 import re
+from collections.abc import Iterable
 from dataclasses import dataclass
 
 from calcreport.core.problems import listed
 from calcreport.core.source import Span
 from calcreport.read.fields import as_items, as_mapping, as_scalar, is_empty, say_not_yet
-from calcreport.read.model import Given, GivenPairs, GivenRows, GivenValue
+from calcreport.read.model import Given, GivenPairs, GivenRows, GivenValue, ValueOrigin
 from calcreport.read.nodes import Mapping, Node, Scalar, Told
 from calcreport.read.single_values import FILE, NONE, SingleReader, wanted
 
@@ -96,7 +97,7 @@ class ValueReader(SingleReader):
             values = Mapping(tuple(e for e in row.entries if e[0].text != "name"), row.span)
             found = self.read(given.columns, values, f"a row of `{given.name}`")
             cells.append(tuple(v for v in found if isinstance(v, GivenValue)))
-        return GivenRows(given, tuple(names), tuple(cells), FILE, node.span)
+        return GivenRows(given, tuple(names), tuple(cells), _origin(cell for row in cells for cell in row), node.span)
 
     def row_name(self, given: Given, label: Scalar | None, at: Span, names: list[str], number: int) -> None:
         """Keep a row's name, or its number; a name outside the set's list or twice is a problem."""
@@ -137,7 +138,7 @@ class ValueReader(SingleReader):
             return None
         cells: list[tuple[tuple[str, ...], GivenValue]] = []
         self.pair_level(given, mapping, (), cells)
-        return GivenPairs(given, tuple(cells), FILE, node.span)
+        return GivenPairs(given, tuple(cells), _origin(cell for _, cell in cells), node.span)
 
     def pair_level(
         self, given: Given, node: Mapping, key: tuple[str, ...], cells: list[tuple[tuple[str, ...], GivenValue]]
@@ -153,6 +154,11 @@ class ValueReader(SingleReader):
                 deeper = as_mapping(value, f"`{name.text[:40]}` of `{given.name}`", self.problems)
                 if deeper is not None:
                     self.pair_level(given, deeper, inner, cells)
+
+
+def _origin(cells: Iterable[GivenValue]) -> ValueOrigin:
+    """Return where rows come from: a schedule, if any of their cells does."""
+    return next((cell.origin for cell in cells if cell.origin.kind == "schedule"), FILE)
 
 
 def is_complete(values: tuple[GivenValue | GivenRows | GivenPairs, ...], givens: tuple[Given, ...]) -> bool:

@@ -136,7 +136,8 @@ class Composer:
         slot = self.slots[line.slot]
         result = self.told.value(line.slot, gives.key)
         because = self.told.because(line, gives.arm, gives.open)
-        lane = self.told.source(line.cite.printed, formula, gives.open, item.number)
+        chosen = tuple(self.forms.because(line, gives.arm)) if len(line.arms) > 1 else ()
+        lane = self.told.source(line.cite.printed, (formula, *chosen), gives.open, item.number)
         if slot.symbol.kind == "word":
             return Line(
                 item.number,
@@ -185,7 +186,7 @@ class Composer:
             items += [Letters(",   ")] if items else []
             items += [self.shared.formula(node), relation("="), figure]
         anchor = self.told.anchor(item.number)
-        lane = self.told.source("", None, worked.open, item.number)
+        lane = self.told.source("", (worked.line.left, worked.line.right), worked.open, item.number)
         return Statement(item.number, anchor, ("both sides there",), Row(tuple(items)), lane)
 
     def branch(self, item: SayBranch) -> tuple[Block, ...]:
@@ -223,7 +224,7 @@ class Composer:
             number_text(figure) if figure else "",
             check.verdict,
             reason,
-            self.told.source(check.line.cite.printed, check.line.holds, opened, item.number),
+            self.told.source(check.line.cite.printed, (check.line.holds,), opened, item.number),
         )
 
     def disposition(self, item: SayCheck) -> tuple[Block, ...]:
@@ -249,7 +250,7 @@ class Composer:
                 items += [Letters(" and ")] if items else []
                 items.append(self.told.compared(test, worked.open))
             shown = Row(tuple(items))
-        lane = self.told.source(worked.line.cite.printed, condition, worked.open, item.number)
+        lane = self.told.source(worked.line.cite.printed, (condition,), worked.open, item.number)
         return Statement(item.number, self.told.anchor(item.number), ("Required",), shown, lane)
 
     def stopped(self, item: SayStop) -> tuple[Block, ...]:

@@ -265,11 +265,13 @@ class _Lines:
     def plain_names(self, node: Node) -> tuple[Name, ...] | None:
         """Return the names of numbers in a formula, in order; None where one stands for many rows."""
         kept = self.forms.shared.names
-        if id(node) not in kept:
+        found = kept.get(id(node))
+        if found is None:
             parts = tuple(walk(node))
             rows = any(isinstance(part, Over) for part in parts)
-            kept[id(node)] = None if rows else tuple(part for part in parts if self.is_number(part))
-        return kept[id(node)]
+            names = None if rows else tuple(part for part in parts if self.is_number(part))
+            found = kept[id(node)] = (node, names)
+        return found[1]
 
     def is_number(self, node: Node) -> TypeGuard[Name]:
         return isinstance(node, Name) and node.slot >= 0 and self.slots[node.slot].symbol.unit is not None

@@ -33,16 +33,22 @@ class Figure:
     size: float
     dropped: bool = False
     settled: bool = False
+    #: the printed digits, and the decimals they were found for: asked for far more often than they change
+    _digits: int = 0
+    _digits_at: int = -1
 
     @property
     def printed(self) -> float:
         """The printed number, in base units."""
-        return rounded(self.number / 10.0**self.exponent, self.places) * self.size
+        return self.mantissa / 10.0**self.places * self.size
 
     @property
     def mantissa(self) -> int:
         """The printed digits as a whole number."""
-        return scaled(self.number / 10.0**self.exponent, self.places)
+        if self._digits_at != self.places:
+            self._digits = scaled(self.number / 10.0**self.exponent, self.places)
+            self._digits_at = self.places
+        return self._digits
 
 
 def scaled(number: float, places: int) -> int:

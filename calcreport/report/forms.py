@@ -21,7 +21,7 @@ from calcreport.calculate.model import (
     WorkedGives,
     WorkedUnknown,
 )
-from calcreport.core.expression import Call, Compare, Condition, Expression, Logic, Name, Number
+from calcreport.core.expression import Call, Compare, Condition, Expression, Logic, Name, Node, Number
 from calcreport.core.units import NONE, ONE, Unit
 from calcreport.report.digits import Digits, Figure, Id, rounded
 from calcreport.report.families import Family, choose_family, dimension_of, factor_to
@@ -32,16 +32,21 @@ Opened = tuple[tuple[int, int], ...]
 
 @dataclass(slots=True)
 class PlanForms:
-    """What rests on a plan's formulas alone, found once and shared by all its calculations; by identity of its nodes."""
+    """What rests on a plan's formulas alone, found once for all its calculations; by identity of nodes and units.
+
+    Each entry holds what its key is the identity of, so that nothing else takes that identity.
+    """
 
     #: the family a formula is worked in
-    families: dict[int, Family] = field(default_factory=dict)
+    families: dict[int, tuple[Expression, Family]] = field(default_factory=dict)
     #: the comparisons that chose an arm of a line
-    chosen: dict[tuple[int, int], tuple[Compare, ...]] = field(default_factory=dict)
+    chosen: dict[tuple[int, int], tuple[PlannedGives | PlannedBranches, tuple[Compare, ...]]] = field(
+        default_factory=dict
+    )
     #: the factor that takes a unit of the plan to a family
-    factors: dict[tuple[int, Family], Fraction] = field(default_factory=dict)
+    factors: dict[tuple[int, Family], tuple[Unit, Fraction]] = field(default_factory=dict)
     #: the numbers a formula takes; None where rows decide that
-    names: dict[int, tuple[Name, ...] | None] = field(default_factory=dict)
+    names: dict[int, tuple[Node, tuple[Name, ...] | None]] = field(default_factory=dict)
 
 
 @dataclass(slots=True)
@@ -94,8 +99,8 @@ class CalculationForms:
         key = id(line), chosen
         found = self.shared.chosen.get(key)
         if found is None:
-            found = self.shared.chosen[key] = _turned(tuple(arm.when for arm in line.arms), chosen)
-        return found
+            found = self.shared.chosen[key] = (line, _turned(tuple(arm.when for arm in line.arms), chosen))
+        return found[1]
 
     def family(self, formula: Expression, result: Unit | None) -> Family:
         """Return the family a formula is worked in."""
@@ -103,16 +108,17 @@ class CalculationForms:
         found = families.get(id(formula))
         if found is None:
             plan = self.worked.plan
-            found = families[id(formula)] = choose_family(formula, result, plan.slots, plan.template.system)
-        return found
+            family = choose_family(formula, result, plan.slots, plan.template.system)
+            found = families[id(formula)] = (formula, family)
+        return found[1]
 
     def factor(self, unit: Unit, family: Family) -> Fraction:
         """Return the factor that takes a number in a unit of the plan to the family's coherent unit."""
         factors, key = self.shared.factors, (id(unit), family)
         found = factors.get(key)
         if found is None:
-            found = factors[key] = factor_to(unit, family)
-        return found
+            found = factors[key] = (unit, factor_to(unit, family))
+        return found[1]
 
 
 def link_place(link: LinkedValue, worked: Worked) -> tuple[int, Key]:

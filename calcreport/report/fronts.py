@@ -211,7 +211,7 @@ def echo(files: tuple[Source, ...]) -> tuple[Block, ...]:
         )
     ]
     for source in files:
-        blocks.append(Heading(source.name, 3))
+        blocks.append(Heading(source.titled, 3))
         blocks.append(Listing(tuple(_kept(text) for text in source.text.rstrip("\n").split("\n"))))
     return tuple(blocks)
 

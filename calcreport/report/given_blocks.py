@@ -61,14 +61,10 @@ class GivenBlocks:
             shown = Letters("none") if worth is None else Row((Letters("none ("), shown, Letters(")")))
         shown = self.as_typed(shown, value, planned.slot)
         symbol = self.told.slots[planned.slot].symbol
-        # an election has words, not letters: what it is stands under its meaning, the answer under its value
-        shown_symbol = (
-            Row(()) if symbol.kind == "word" and symbol.shows and " " in symbol.shows else show_symbol(symbol)
-        )
         return GivenRow(
             number,
             self.told.anchor(number),
-            shown_symbol,
+            show_symbol(symbol),
             (planned.given.says,),
             shown,
             self.origin(value.origin, value.value),
@@ -84,7 +80,8 @@ class GivenBlocks:
             items.append(self.told.shared.symbol(given.slot))
         words = "none, counted as 0" if zero else "none"
         anchor = self.told.anchor(item.number)
-        return Statement(item.number, anchor, (words,), Row(tuple(items)), SourceLane("project file"))
+        origins = dict.fromkeys(self.given[given.given.name].origin.words or "project file" for given in item.givens)
+        return Statement(item.number, anchor, (words,), Row(tuple(items)), SourceLane(", ".join(origins)))
 
     def as_typed(self, shown: Formula, value: GivenValue, slot: int) -> Formula:
         """Add the typed spelling where it is in another unit than the one used."""
@@ -123,17 +120,23 @@ class GivenBlocks:
                 return (origin.words,)
             case "schedule":
                 return (f"schedule {origin.words}",)
+            case "none" if origin.words:
+                return (origin.words,)
             case _:
                 return ("project file",)
+
+    def lane(self, value: GivenValue | GivenRows | GivenPairs) -> SourceLane:
+        """Return the source lane of rows."""
+        return SourceLane(f"schedule {value.origin.words}" if value.origin.kind == "schedule" else "project file")
 
     def given_table(self, item: SayRows) -> Block:
         """Return a set of given rows, or a value over pairs, as a table."""
         planned, value = item.given, self.given[item.given.given.name]
         if isinstance(value, GivenPairs):
-            return self.pair_table(item, planned)
+            return self.pair_table(item, planned, value)
         assert isinstance(value, GivenRows)
         if not planned.columns:
-            return self.names_only(item, planned, value.names)
+            return self.names_only(item, planned, value)
         if len(value.names) == 1:
             return self.single_row(item, planned, value)
         columns = [Column((planned.given.name,))]
@@ -146,19 +149,17 @@ class GivenBlocks:
             for row, name in enumerate(value.names)
         )
         words = (planned.given.says or planned.given.name,)
-        return Table(
-            tuple(columns), rows, words, item.number, self.told.anchor(item.number), SourceLane("project file")
-        )
+        return Table(tuple(columns), rows, words, item.number, self.told.anchor(item.number), self.lane(value))
 
-    def names_only(self, item: SayRows, planned: PlannedGiven, names: tuple[str, ...]) -> Block:
+    def names_only(self, item: SayRows, planned: PlannedGiven, value: GivenRows) -> Block:
         """Return a set that has no columns: its row names in one line."""
         items: list[Formula] = []
-        for name in names:
+        for name in value.names:
             items += [Letters(",  ")] if items else []
             items.append(show_row(name))
         anchor = self.told.anchor(item.number)
         words = (planned.given.says or planned.given.name,)
-        return Statement(item.number, anchor, words, Row(tuple(items)), SourceLane("project file"))
+        return Statement(item.number, anchor, words, Row(tuple(items)), self.lane(value))
 
     def single_row(self, item: SayRows, planned: PlannedGiven, value: GivenRows) -> Block:
         """Return the one row of a set as a statement: layer first: 4-#9, A_s,i = 4.00 in.^2, …"""
@@ -172,9 +173,9 @@ class GivenBlocks:
                     items += [self.told.shared.symbol(slot), relation("="), self.told.value(slot, (0,))]
         words = (f"{planned.given.name} {value.names[0]}",)
         anchor = self.told.anchor(item.number)
-        return Statement(item.number, anchor, words, Row(tuple(items)), SourceLane("project file"))
+        return Statement(item.number, anchor, words, Row(tuple(items)), self.lane(value))
 
-    def pair_table(self, item: SayRows, planned: PlannedGiven) -> Block:
+    def pair_table(self, item: SayRows, planned: PlannedGiven, value: GivenPairs) -> Block:
         """Return a value over pairs of rows: one set down, one across."""
         names = [self.told.values.names[index].get((), ()) for index in planned.over]
         sets = [self.told.worked.plan.sets[index].name for index in planned.over]
@@ -198,4 +199,4 @@ class GivenBlocks:
         symbol = self.told.slots[planned.slot].symbol
         unit = f", {unit_text(symbol.unit)}" if symbol.unit and symbol.unit.dimension != NONE else ""
         words: Words = (self.told.shared.symbol(planned.slot), f"  {planned.given.says}{unit}")
-        return Table(columns, cells, words, item.number, self.told.anchor(item.number), SourceLane("project file"))
+        return Table(columns, cells, words, item.number, self.told.anchor(item.number), self.lane(value))

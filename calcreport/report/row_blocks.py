@@ -51,6 +51,9 @@ class RowBlocks:
     def formulas(self, item: SayFormula) -> tuple[Block, ...]:
         """Return a formula once, for the table that follows; one statement for each arm taken."""
         found: list[Block] = []
+        first = item.arms[0].line
+        taken = [first.arms[gives.arm] for gives in item.arms]
+        nodes = tuple(node for arm in taken for node in (arm.formula, arm.when) if node is not None)
         for place, gives in enumerate(item.arms):
             line = gives.line
             formula = line.arms[gives.arm].formula
@@ -62,7 +65,7 @@ class RowBlocks:
                 words = (*words, " where " if place == 0 else "where ", self.shared.condition(when))
             elif place:
                 words = ("otherwise",)
-            lane = self.told.source(line.cite.printed, formula, (), item.number) if place == 0 else SourceLane("")
+            lane = self.told.source(line.cite.printed, nodes, (), item.number) if place == 0 else SourceLane("")
             number = item.number if place == 0 else 0
             found.append(Statement(number, self.told.anchor(number) if number else "", words, Row(tuple(shown)), lane))
         return tuple(found)
@@ -164,7 +167,7 @@ class RowBlocks:
             substituted,
             self.told.coherent(gives, node),
             self.told.value(slot, gives.key),
-            self.told.source(line.cite.printed, node, opened, item.number),
+            self.told.source(line.cite.printed, (node,), opened, item.number),
         )
 
 

@@ -6,6 +6,7 @@ digits nor formulas.
 
 from __future__ import annotations
 
+import math
 from dataclasses import dataclass, field
 from typing import TypeAlias
 
@@ -332,7 +333,14 @@ def _worst(lines: tuple[WorkedLine, ...]) -> tuple[bool, float]:
     """Rank a row by its worst check: NG first, then by ratio."""
     checks = checks_below(lines)
     failed = any(check.verdict == "NG" for check in checks)
-    return failed, max((check.ratio for check in checks if check.ratio is not None), default=-1.0)
+    return failed, max((severity(check) for check in checks), default=-1.0)
+
+
+def severity(check: WorkedCheck) -> float:
+    """Return a check's ratio for ranking; one that fails without a ratio outranks any ratio."""
+    if check.ratio is not None:
+        return check.ratio
+    return math.inf if check.verdict == "NG" else -1.0
 
 
 def _rows_in_full(writer: _Writer, each: WorkedEach, name: str, rows: range | list[int]) -> None:

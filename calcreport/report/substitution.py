@@ -14,7 +14,7 @@ from calcreport.core.expression import Attach, Binary, Expression, Name, Number,
 from calcreport.core.units import Unit
 from calcreport.report.digits import Figure, number_text
 from calcreport.report.display import Slots
-from calcreport.report.families import Family, factor_to
+from calcreport.report.families import Family
 from calcreport.report.model import Fence, Formula, Letters, Operator, Row
 from calcreport.report.notation import (
     ATOM,
@@ -35,12 +35,14 @@ from calcreport.report.notation import (
 
 @dataclass(frozen=True, slots=True)
 class Printed:
-    """What a substitution needs: values at hand, the figure of each, the words of word values."""
+    """What a substitution needs: values at hand, the figure of each, the words of word values, factors of units."""
 
     values: Values
     figure: Callable[[int], Figure]
     #: figure of the result of a whole sub-formula told elsewhere, by row
     row_names: Callable[[int], tuple[str, ...]]
+    #: factor that takes a unit to a family
+    factor: Callable[[Unit, Family], F]
 
 
 class Substitution(Notation):
@@ -84,13 +86,13 @@ class Substitution(Notation):
 
     def attach(self, node: Attach) -> Piece:
         """Print what stands inside qty(…), with a factor where its unit is not of the family."""
-        return self.converted(self.piece(node.body), factor_to(node.unit, self.family))
+        return self.converted(self.piece(node.body), self.printed.factor(node.unit, self.family))
 
     def factor(self, unit: Unit) -> F:
         """Return the factor a value in `unit` needs here."""
         if self.wanted is not None and unit.dimension == self.wanted.dimension:
             return unit.scale / self.wanted.scale
-        return factor_to(unit, self.family)
+        return self.printed.factor(unit, self.family)
 
     def converted(self, shown: Piece, factor: F) -> Piece:
         """Return a number with its visible unit factor."""

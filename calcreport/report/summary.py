@@ -27,7 +27,7 @@ from calcreport.report.model import (
     Words,
 )
 from calcreport.report.notation import Notation
-from calcreport.report.script import Script
+from calcreport.report.script import Script, severity
 
 CLOSING = "Computed demand does not exceed computed capacity for the checks listed"
 
@@ -57,7 +57,7 @@ def worst_checks(worked: Worked) -> tuple[WorkedCheck, ...]:
 
 def _rank(check: WorkedCheck) -> tuple[int, float]:
     order = {"not applicable": 0, "OK": 1, "not evaluated": 2, "NG": 3}
-    return order[check.verdict], check.ratio if check.ratio is not None else -1.0
+    return order[check.verdict], severity(check)
 
 
 def governing(worked: Worked) -> WorkedCheck | None:

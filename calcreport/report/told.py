@@ -49,6 +49,8 @@ class SymbolForms:
     formulas: dict[int, Formula] = field(default_factory=dict)
     symbols: dict[int, Formula] = field(default_factory=dict)
     ratios: dict[int, Binary] = field(default_factory=dict)
+    #: the symbols of a formula by its identity, with the formula, so that nothing else takes it
+    names: dict[int, tuple[Expression | Condition, tuple[Name, ...]]] = field(default_factory=dict)
 
     def formula(self, node: Expression) -> Formula:
         """Return a formula with symbols."""
@@ -63,6 +65,13 @@ class SymbolForms:
         if found is None:
             found = self.formulas[id(node)] = self.notation.condition(node)
         return found
+
+    def names_of(self, node: Expression | Condition) -> tuple[Name, ...]:
+        """Return every use of a symbol in a formula."""
+        found = self.names.get(id(node))
+        if found is None:
+            found = self.names[id(node)] = (node, tuple(n for n in names(node) if n.slot >= 0))
+        return found[1]
 
     def symbol(self, slot: int) -> Formula:
         """Return a symbol."""
@@ -109,7 +118,7 @@ class Told:
         """Return a formula with the printed figures of open rows."""
         for index, row in opened:
             self.values.open[index] = row
-        printed = Printed(self.values, self.open_figure, self.values.row_names)
+        printed = Printed(self.values, self.open_figure, self.values.row_names, self.forms.factor)
         return Substitution(self.slots, printed, self.forms.family(node, result)).formula(node)
 
     def open_figure(self, slot: int) -> Figure:
@@ -120,11 +129,12 @@ class Told:
         """Return the anchor of a line."""
         return f"{self.mark}.{number}"
 
-    def source(self, cite: str, node: Expression | Condition | None, opened: Opened, own: int) -> SourceLane:
-        """Return the source lane: citation, then the lines the values of a formula come from."""
+    def source(self, cite: str, nodes: tuple[Expression | Condition, ...], opened: Opened, own: int) -> SourceLane:
+        """Return the source lane: citation, then the lines the values of formulas and conditions come from."""
         numbers: dict[int, None] = {}
-        for name in _names(node):
-            numbers.update(dict.fromkeys(self.origins(name.slot, opened)))
+        for node in nodes:
+            for name in self.shared.names_of(node):
+                numbers.update(dict.fromkeys(self.origins(name.slot, opened)))
         numbers.pop(own, None)
         references = tuple(Reference(str(n), self.anchor(n)) for n in sorted(numbers))
         return SourceLane(cite, references)
@@ -226,9 +236,10 @@ class Told:
         names = self.values.row_names(formula.bound)
         if len(names) < 2:
             return ""
+        fits = self.worked.tested(formula.where) if formula.where is not None else None
         for row, name in enumerate(names):
             self.values.open[formula.bound] = row
-            if self.values.get(slot, self.values.key(slot)) == wanted:
+            if (fits is None or fits(self.values)) and self.values.get(slot, self.values.key(slot)) == wanted:
                 return f"{formula.rows} {row_words(name)}"
         return ""
 
@@ -239,7 +250,3 @@ class Told:
         if figure is None or unit is None:
             return None
         return show_figure(figure, self.forms.family(formula, unit).unit(unit.dimension))
-
-
-def _names(node: Expression | Condition | None) -> tuple[Name, ...]:
-    return tuple(n for n in names(node) if n.slot >= 0) if node is not None else ()

@@ -105,7 +105,7 @@ class _Tracer:
                 case GivenRows() | GivenPairs() if slot == planned.slot or any(
                     slot in (c.slot, *c.outputs) for c in planned.columns
                 ):
-                    return "[project file]"
+                    return f"[{given.origin.kind} {given.origin.words}]".replace(" ]", "]")
                 case _:
                     pass
         return ""

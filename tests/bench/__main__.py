@@ -7,10 +7,11 @@ ratios are printed, beside what the design asks for. No test: a busy machine pri
 from __future__ import annotations
 
 import argparse
+import os
+import re
 import sys
 import tempfile
 from collections.abc import Callable
-from dataclasses import dataclass
 from pathlib import Path
 from statistics import median
 
@@ -23,27 +24,24 @@ PACKAGE, LONG = 100, 400
 ROWS = 500
 
 
-@dataclass(frozen=True, slots=True)
-class Median:
-    """The middle of several runs."""
-
-    seconds: float
-    memory: float
-    inside: float
-
-
-def interleaved(contenders: dict[str, Callable[[], Run]], times: int) -> dict[str, Median]:
-    """Run every contender in turn, several times over; one round before does not count."""
+def interleaved(contenders: dict[str, Callable[[], Run]], times: int) -> dict[str, Run]:
+    """Run every contender in turn, several times over, and return medians; one round before does not count."""
     runs: dict[str, list[Run]] = {name: [] for name in contenders}
     for turn in range(times + 1):
         for name, run in contenders.items():
             one = run()
             if turn:
                 runs[name].append(one)
-    return {
-        name: Median(median(r.seconds for r in found), median(r.memory for r in found), median(r.inside for r in found))
-        for name, found in runs.items()
-    }
+    return {name: _median(found) for name, found in runs.items()}
+
+
+def _median(runs: list[Run]) -> Run:
+    return Run(
+        median(run.seconds for run in runs),
+        median(run.processor for run in runs),
+        round(median(run.memory for run in runs)),
+        median(run.inside for run in runs),
+    )
 
 
 class Bench:
@@ -64,7 +62,12 @@ class Bench:
 
     def sheets(self, path: Path) -> int:
         """Count the sheets of a PDF."""
-        return int(contestants.script(self.cache, "tests.bench.pages", str(path)))
+        return len(self.labels(path))
+
+    def labels(self, path: Path) -> list[str]:
+        """Return the labels of the sheets of a PDF."""
+        listed = contestants.script(self.cache, "tests.bench.pages", str(path))
+        return [line.removeprefix("sheet ") for line in listed.splitlines()]
 
     def build(self, project: Path) -> Callable[[], Run]:
         """Return a build of a project by the program."""
@@ -94,35 +97,41 @@ class Bench:
             sources = project.with_suffix(".typ"), first.with_suffix(".typ")
             contenders["Typst, warm"] = lambda: contestants.typst(self.cache, *sources)
         found = interleaved(contenders, self.times)
-        written = {
-            "calcreport": project.with_suffix(".pdf"),
-            "pdflatex": project.with_name("package-2-tex.pdf"),
-            "Typst": project.with_name("package-2-typst.pdf"),
-        }
-        if "pdflatex" in contenders:
-            # both write to the name of their source: the program's file is made again for counting
-            project.with_suffix(".pdf").rename(written["pdflatex"])
-            contenders["calcreport"]()
-        own = found["calcreport"]
-        print(f"{PACKAGE} calculations, {lines:,} lines of content, {self.times} runs each, medians\n")
+        sheets = self.counted(project, contenders)
+        print(f"{PACKAGE} calculations, {lines:,} lines of content, medians of {self.times}, {os.cpu_count()} cores\n")
         print(
-            f"{'':18}{'s':>8}{'sheets':>8}{'lines/s':>10}{'sheets/s':>10}{'peak MB':>9}   lines/s, sheets/s against it"
+            f"{'':18}{'s':>7}{'cpu s':>7}{'sheets':>8}{'lines/s':>9}{'sheets/s':>9}{'peak MB':>9}   calcreport's rates"
         )
         for name, one in found.items():
-            sheets = self.sheets(written[name.removesuffix(", warm")])
-            seconds = one.inside if name.endswith("warm") else one.seconds
-            mine = (found["calcreport, warm"].inside if name.endswith("warm") else own.seconds) or own.seconds
-            sheets_own = self.sheets(written["calcreport"])
-            ratios = f"{seconds / mine:6.2f} ×{sheets_own / mine / (sheets / seconds):8.2f} ×"
+            base, _, warm = name.partition(", ")
+            own = found["calcreport, warm" if warm else "calcreport"]
+            seconds, mine = (one.inside, own.inside) if warm else (one.seconds, own.seconds)
+            by_lines = seconds / mine
+            by_sheets = by_lines * sheets["calcreport"] / sheets[base]
             print(
-                f"{name:18}{seconds:8.2f}{sheets:8}{lines / seconds:10,.0f}{sheets / seconds:10.0f}"
-                f"{one.memory / 1e6:9.0f}   {'' if name.startswith('calcreport') else ratios}"
+                f"{name:18}{seconds:7.2f}{one.processor:7.2f}{sheets[base]:8}{lines / seconds:9,.0f}"
+                f"{sheets[base] / seconds:9.0f}{one.memory / 1e6:9.0f}"
+                + ("" if base == "calcreport" else f"   {by_lines:.2f} × its lines/s, {by_sheets:.2f} × its sheets/s")
             )
         for name in ("pdflatex", "Typst"):
             if name not in found:
-                print(f"{name:18} not installed")
+                print(f"{name:18}not installed")
+        print("to reach: 1.5 × pdflatex, 3 × Typst")
         if "Typst" in found:
-            print(f"\npeak memory: {own.memory / found['Typst'].memory:.3f} of Typst's (to reach: under 0.1)")
+            share = found["calcreport"].memory / found["Typst"].memory
+            print(f"peak memory: {share:.3f} of Typst's (to reach: under 0.1)")
+
+    def counted(self, project: Path, contenders: dict[str, Callable[[], Run]]) -> dict[str, int]:
+        """Count the sheets each has made of a project; two of them write to the same name, and are run again."""
+        counts: dict[str, int] = {}
+        for name in ("pdflatex", "calcreport", "Typst"):
+            if name in contenders:
+                contenders[name]()
+                written = (
+                    project.with_name(f"{project.stem}-typst.pdf") if name == "Typst" else project.with_suffix(".pdf")
+                )
+                counts[name] = self.sheets(written)
+        return counts
 
     def growth(self) -> None:
         """Print what a sheet more costs in memory."""
@@ -166,13 +175,14 @@ class Bench:
         )
 
     def paper(self) -> None:
-        """Print how many sheets a member takes."""
-        few, many = (self.project(f"paper-{count}", beams(count, 5)) for count in (1, 21))
-        for project in (few, many):
-            self.build(project)()
-        sheets = [self.sheets(project.with_suffix(".pdf")) for project in (few, many)]
+        """Print how many sheets a member takes, the fronts and appendices left out."""
+        count = 20
+        project = self.project("paper", beams(count, 5))
+        self.build(project)()
+        labels = self.labels(project.with_suffix(".pdf"))
+        loads, sections = (sum(re.match(mark + r"\d+-", label) is not None for label in labels) for mark in ("FL", "B"))
         print(
-            f"paper: {(sheets[1] - sheets[0]) / 20:.2f} sheets a beam, its loads and its section at one place together"
+            f"paper: {loads / count:.2f} sheets for loads and moments of a beam, {sections / count:.2f} for a section"
         )
 
 

@@ -1,7 +1,7 @@
-"""What the contestants share: the report of a project, what is counted in it, figures as plain shapes, widths of columns.
+"""What the contestants share: the report of a project, counts of lines, figures as plain shapes, widths of columns.
 
-A project's text in, the program's own report tree out, the same tree from which its sheets are laid. Knows neither of the
-two markups.
+A project's text in, the program's own report tree out, the same tree from which its sheets are laid. Knows neither of
+the two markups.
 """
 
 from __future__ import annotations

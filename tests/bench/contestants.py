@@ -1,7 +1,8 @@
 """Who is timed and how: commands run as processes of their own, with their wall time and peak memory.
 
-A command in, one `Run` out. Peak memory is what the kernel counted for the process when it ended, so nothing has to watch
-it; the bench itself stays small, for a process begins with the memory of the one that starts it. Knows no documents.
+A command in, one `Run` out. Peak memory is what the kernel counted for the process when it ended, so nothing has to
+watch it; the bench itself stays small, for a process begins with the memory of the one that starts it. Knows no
+documents.
 """
 
 from __future__ import annotations
@@ -18,13 +19,13 @@ from pathlib import Path
 
 ROOT = Path(__file__).parents[2]
 
-#: read the source, compile, write; a second argument compiles another source first in the same process
+#: read the source, compile, write, untagged as the program's own files are; further sources are compiled first
 _TYPST = """
 import sys, time, typst
 for source in sys.argv[2:]:
-    typst.compile(source, output="/dev/null", format="pdf")
+    typst.compile(source, output="/dev/null", format="pdf", pdf_tags=False)
 start = time.perf_counter()
-typst.compile(sys.argv[1], output=sys.argv[1].removesuffix(".typ") + "-typst.pdf")
+typst.compile(sys.argv[1], output=sys.argv[1].removesuffix(".typ") + "-typst.pdf", pdf_tags=False)
 print(time.perf_counter() - start)
 """
 _WARM = """
@@ -41,9 +42,10 @@ print(time.perf_counter() - start)
 
 @dataclass(frozen=True, slots=True)
 class Run:
-    """One run: wall seconds of the process, peak memory in bytes, and the seconds it measured inside, if it did."""
+    """One run: wall and processor seconds of the process, peak memory in bytes, and what it timed itself, if it did."""
 
     seconds: float
+    processor: float
     memory: int
     inside: float = 0.0
 
@@ -81,7 +83,9 @@ def pdflatex(cache: Path, source: Path) -> Run:
         _run(["pdflatex", "-interaction=batchmode", "-halt-on-error", source.name], cache, source.parent)
         for _ in range(2)
     ]
-    return Run(sum(one.seconds for one in passes), max(one.memory for one in passes))
+    return Run(
+        sum(one.seconds for one in passes), sum(one.processor for one in passes), max(one.memory for one in passes)
+    )
 
 
 def script(cache: Path, module: str, *arguments: str) -> str:
@@ -117,4 +121,4 @@ def _run(arguments: Sequence[str], cache: Path, folder: Path = ROOT) -> Run:
         raise RuntimeError(f"{' '.join(arguments[:4])}: {errors or output}")
     last = output.strip().rsplit("\n", 1)[-1]
     inside = float(last) if last.replace(".", "", 1).replace("e-", "", 1).isdigit() else 0.0
-    return Run(seconds, usage.ru_maxrss * 1024, inside)
+    return Run(seconds, usage.ru_utime + usage.ru_stime, usage.ru_maxrss * 1024, inside)

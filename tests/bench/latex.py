@@ -7,6 +7,8 @@ needed, for the sheets of each part and the pages of the index.
 
 from __future__ import annotations
 
+from pathlib import Path
+
 from calcreport.report.model import (
     Big,
     Block,
@@ -19,6 +21,7 @@ from calcreport.report.model import (
     Givens,
     Heading,
     Index,
+    IndexEntry,
     Letters,
     Line,
     Listing,
@@ -43,7 +46,8 @@ from tests.bench.content import Drawer, Label, Ring, column_widths, is_tall
 from tests.bench.sheet import FRAME, LANE, ROOM, TITLES, title_words
 
 _MATH = {
-    "ε": r"\varepsilon ", "φ": r"\phi ", "β": r"\beta ", "∑": r"\sum ", "−": "-", "≤": r"\le ", "≥": r"\ge ", "≠": r"\ne ",
+    "ε": r"\varepsilon ", "φ": r"\phi ", "β": r"\beta ", "∑": r"\sum ", "−": "-",
+    "≤": r"\le ", "≥": r"\ge ", "≠": r"\ne ",
     "·": r"\cdot ", "×": r"\times ", "′": r"\prime ", "²": "{}^2", "³": "{}^3", "⁴": "{}^4", " ": r"\ ", "\xa0": r"\ ",
     ",": "{,}", "#": r"\#", "%": r"\%", "&": r"\&", "_": r"\_", "$": r"\$", "–": r"\mbox{--}", "{": r"\{", "}": r"\}",
     "°": r"{}^\circ ", "\u200b": "", "\\": r"\backslash ", "^": r"\hat{}", "~": r"\sim ",
@@ -53,49 +57,13 @@ _WORDS = {
     "\\": r"\textbackslash{}", "\xa0": "~", "–": "--", "|": "$|$", "<": "$<$", ">": "$>$", "′": "$'$", "\u200b": "",
     **{sign: f"${text}$" for sign, text in _MATH.items() if sign in "−≤≥≠·×²³⁴εφβ∑°"},
 }  # fmt: skip
-_HEAD = r"""\documentclass[10pt]{article}
-\usepackage{longtable,array}
-\pdfpagewidth=612bp \pdfpageheight=792bp \paperwidth=612bp \paperheight=792bp \hoffset=-1in \voffset=-1in
-\oddsidemargin=57bp \topmargin=0bp \headheight=30bp \headsep=6bp \footskip=0bp \textwidth=526bp \textheight=634bp
-\parindent=0pt \parskip=0pt \unitlength=1bp
-\renewcommand\familydefault{\sfdefault}
-\LTpre=2pt \LTpost=2pt \LTleft=0pt \tabcolsep=2pt \lineskip=1pt \lineskiplimit=1pt
-\frenchspacing \raggedbottom \hbadness=10000 \vbadness=10000 \hfuzz=300pt \vfuzz=99pt
-\newbox\ring
-\setbox\ring=\hbox to 9bp{\pdfliteral{q .35 w 8 2.6 m 8 4.6 6.4 6.2 4.4 6.2 c 2.5 6.2 .9 4.6 .9 2.6 c .9 .7 2.5 -.9 4.4 -.9 c 6.4 -.9 8 .7 8 2.6 c s Q}\hfil}
-\def\lk#1#2{\pdfstartlink attr{/Border[0 0 0]} goto name{#1}#2\pdfendlink}
-\def\an#1{\raise8pt\hbox{\pdfdest name{#1} xyz}}
-\def\nr#1{\hbox to 28bp{\hfil\footnotesize#1\kern1pt\copy\ring}\kern5bp}
-\def\ln#1#2#3{\par\vskip2.8pt\hbox to\textwidth{\nr{#1}\vtop{\hsize=@LANE@bp\rightskip=0pt plus 1fil #2\par}\hfil
- \vtop{\hsize=90bp\footnotesize\rightskip=0pt plus 1fil #3\par}}}
-\def\row#1#2#3#4#5{\par\hbox to\textwidth{\vrule width0pt height8.6pt depth3pt\nr{#1}\hbox to 42bp{\hfil#2}\hbox to 100bp{$=$#3\hfil}%
- \hbox{\small#4}\hfil\hbox to 90bp{\footnotesize#5\hfil}}\hrule height.3pt}
-\def\re#1{\unskip\nobreak\hfil\penalty50\hskip12pt\hbox{}\nobreak\hfill$=#1$\parfillskip=0pt\par}
-\def\hd#1{\par\vskip7pt{\leftskip=33bp\scshape\bfseries#1\par}\nobreak}
-\def\hh#1{\par\vskip3pt{\leftskip=33bp\bfseries#1\par}\nobreak}
-\def\pp#1{\par\vskip3pt{\leftskip=33bp\rightskip=96bp plus 1fil\small#1\par}}
-\def\fig#1#2#3{\par\vskip4pt\hbox to\textwidth{\kern33bp\hbox to@LANE@bp{\hfil\vbox to#2bp{\hbox to#1bp{#3\hfil}\vfil}}\hfil}}
-\def\figbeside#1#2#3{\par\nointerlineskip\vbox to0pt{\hbox to\textwidth{\kern33bp\hbox to@LANE@bp{\hfil\hbox to#1bp{#3\hfil}}\hfil}\vss}\nointerlineskip}
-\def\li#1#2{\par\nointerlineskip\vskip0pt\hbox to\textwidth{\vrule width0pt height6.6pt depth3pt\scriptsize\hbox to28bp{\hfil#1}\kern5bp#2\hfil}}
-\newsavebox\frm
-\savebox\frm{\begin{picture}(0,0)@FRAME@\end{picture}}
-\newcount\whole
-\makeatletter
-\def\@oddhead{\global\advance\whole by 1 \begin{picture}(0,0)\put(0,0){\usebox\frm}\facts
-\put(430,-722){\hbox to 90bp{\hfil\Large\bfseries\MARK-\arabic{page}}}\put(430,-733){\hbox to 90bp{\hfil\small of \pageref{last-\MARK}}}
-\put(0,0){\pdfdest name{\MARK-\arabic{page}} xyz}\end{picture}\hfil}
-\let\@evenhead\@oddhead \let\@oddfoot\@empty \let\@evenfoot\@empty
-\def\Part#1#2{\def\MARK{#1}\setcounter{page}{1}\pdfoutline goto name{#1-1}{#1  #2}%
- \protected@write\@auxout{}{\string\newlabel{abs-#1}{{}{\the\whole}}}}
-\makeatother
-\begin{document}\fontsize{9}{11}\selectfont
-"""
+_HEAD = Path(__file__).with_name("head.tex")
 
 
 def latex(report: Report) -> str:
     """Return the source of a whole package."""
     frame = "".join(rf"\put({_n(x0)},{_n(y0)}){{\rule{{{_n(w)}bp}}{{{_n(h)}bp}}}}" for x0, y0, w, h in FRAME)
-    head = _HEAD.replace("@LANE@", _n(LANE)).replace("@FRAME@", frame)
+    head = _HEAD.read_text("utf-8").replace("@LANE@", _n(LANE)).replace("@FRAME@", frame)
     writer = _Latex()
     return head + "".join(map(writer.part, report.parts)) + "\\end{document}\n"
 
@@ -133,17 +101,24 @@ class _Latex:
         return "\n\n".join(lines) + "\n\n"
 
     def index(self, index: Index) -> str:
-        rows = "".join(
-            rf"\lk{{{e.part}-1}}{{{self.text(e.mark)}}}&\lk{{{e.part}-1}}{{{self.text(e.title)}}}&{self.text(e.flag)}&"
-            rf"\lk{{{e.part}-1}}{{{e.part}-1 to {e.part}-\pageref{{last-{e.part}}}}}&{self.text(e.revision)}&{self.text(e.date)}&"
-            rf"\pageref{{abs-{e.part}}}\\\hline" + "\n"
-            for e in index.entries
-        )
+        rows = "".join(map(self.index_row, index.entries))
         columns = "@{}p{90bp}p{160bp}p{20bp}p{90bp}p{30bp}p{80bp}r@{}"
-        return (
-            f"\\hd{{Index of sheets}}\n{{\\small\\begin{{longtable}}{{{columns}}}\n\\bfseries Mark&Subject&&Sheets&Rev.&"
-            f"Last changed&Page\\\\\\hline\\endhead\n{rows}\\end{{longtable}}}}\n"
+        heads = "\\bfseries Mark&Subject&&Sheets&Rev.&Last changed&Page"
+        table = f"\\begin{{longtable}}{{{columns}}}\n{heads}\\\\\\hline\\endhead\n{rows}\\end{{longtable}}"
+        return f"\\hd{{Index of sheets}}\n{{\\small{table}}}\n"
+
+    def index_row(self, entry: IndexEntry) -> str:
+        part = entry.part
+        cells = (
+            rf"\lk{{{part}-1}}{{{self.text(entry.mark)}}}",
+            rf"\lk{{{part}-1}}{{{self.text(entry.title)}}}",
+            self.text(entry.flag),
+            rf"\lk{{{part}-1}}{{{part}-1 to {part}-\pageref{{last-{part}}}}}",
+            self.text(entry.revision),
+            self.text(entry.date),
+            rf"\pageref{{abs-{part}}}",
         )
+        return "&".join(cells) + "\\\\\\hline\n"
 
     # ------------------------------------------------------------ blocks
 
@@ -188,7 +163,8 @@ class _Latex:
     def check(self, check: CheckLine) -> str:
         sides = "=".join(self.math(side) for side in (check.formula, check.substitution) if side)
         verdict = rf"\hfil\textbf{{{check.ratio}}}\quad {check.verdict}"
-        content = rf"{{\footnotesize CHECK}} \textbf{{{self.text(check.name)}}}\quad${sides}${verdict} {self.words(check.reason)}"
+        name = rf"{{\footnotesize CHECK}} \textbf{{{self.text(check.name)}}}"
+        content = rf"{name}\quad${sides}${verdict} {self.words(check.reason)}"
         return self.numbered(check.number, check.anchor, content, check.source)
 
     def numbered(self, number: int, anchor: str, content: str, source: SourceLane) -> str:
@@ -215,9 +191,10 @@ class _Latex:
         body = "\n".join(rows)
         title = rf"\textbf{{{self.words(table.title)}}}\\" if table.title else ""
         if table.number:
-            inside = rf"{title}\small\begin{{tabular}}[t]{{@{{}}{columns}@{{}}}}{head}" + "\n" + body + "\\end{tabular}"
+            inside = rf"{title}\small\begin{{tabular}}[t]{{@{{}}{columns}@{{}}}}{head}" + f"\n{body}\\end{{tabular}}"
             return self.numbered(table.number, table.anchor, inside, table.source)
-        return f"{title}{{\\small\\begin{{longtable}}{{@{{}}{columns}@{{}}}}{head}\\endhead\n{body}\n\\end{{longtable}}}}\n"
+        long = f"\\begin{{longtable}}{{@{{}}{columns}@{{}}}}{head}\\endhead\n{body}\n\\end{{longtable}}"
+        return f"{title}{{\\small{long}}}\n"
 
     def figure(self, block: FigureBlock) -> str:
         drawing = self.drawer.drawing(block.figure)
@@ -237,10 +214,9 @@ class _Latex:
                     ink.append(f"{dash}{_n(shape.width)} w {path} l {_paint(shape.width, shape.fill, shape.closed)}")
                     ink.append("[] 0 d" if dash else "")
         content = rf"\pdfliteral{{q {' '.join(ink)} Q}}" + "".join(labels)
-        return (
-            rf"\fig{'beside' if block.beside else ''}{{{_n(drawing.width)}}}{{{_n(drawing.height)}}}{{\begin{{picture}}(0,0){content}\end{{picture}}}}"
-            + "\n"
-        )
+        picture = rf"\begin{{picture}}(0,0){content}\end{{picture}}"
+        extent = f"{{{_n(drawing.width)}}}{{{_n(drawing.height)}}}"
+        return rf"\fig{'beside' if block.beside else ''}{extent}{{{picture}}}" + "\n"
 
     # ------------------------------------------------------------ words and formulas
 
@@ -293,7 +269,7 @@ class _Latex:
         if not is_tall(body):
             return f"{_MATH.get(opening, opening)}{self.math(body)}{_MATH.get(closing, closing)}"
         signs = (_MATH.get(sign, sign) or "." for sign in (opening, closing))
-        return r"\left{}{}\right{}".format(next(signs), self.math(body), next(signs))
+        return rf"\left{next(signs)}{self.math(body)}\right{next(signs)}"
 
 
 def _paint(width: float, fill: float | None, closed: bool) -> str:

@@ -75,7 +75,7 @@ _SECTION = """  - mark: B{place}
 
 
 def beams(count: int, seed: int) -> str:
-    """Return a project of `count` simple beams, each with the section at its greatest moment: two calculations a beam."""
+    """Return a project of `count` simple beams, each with the section at its greatest moment: two calculations."""
     draw = Random(seed)
     parts = [_HEAD.format(title="Timed beams", seed=seed)]
     for place in range(1, count + 1):

@@ -21,11 +21,11 @@ FRAME: tuple[tuple[float, float, float, float], ...] = (
 #: place, size and weight of the words of the title block, in the order of `title_words`
 TITLES: tuple[tuple[int, int, str, bool], ...] = (
     (4, -651, "tiny", False), (4, -661, "small", True), (4, -672, "small", False), (4, -720, "normalsize", True),
-    (4, -731, "scriptsize", False), (134, -651, "tiny", False), (134, -661, "small", True), (134, -714, "scriptsize", False),
-    (134, -723, "scriptsize", False), (134, -732, "scriptsize", False), (308, -651, "tiny", False), (308, -682, "tiny", False),
-    (308, -713, "tiny", False), (383, -651, "tiny", False), (383, -682, "tiny", False), (383, -713, "tiny", False),
-    (435, -651, "tiny", False), (435, -661, "small", False), (482, -651, "tiny", False), (482, -661, "tiny", False),
-    (435, -682, "tiny", False),
+    (4, -731, "scriptsize", False), (134, -651, "tiny", False), (134, -661, "small", True),
+    (134, -714, "scriptsize", False), (134, -723, "scriptsize", False), (134, -732, "scriptsize", False),
+    (308, -651, "tiny", False), (308, -682, "tiny", False), (308, -713, "tiny", False), (383, -651, "tiny", False),
+    (383, -682, "tiny", False), (383, -713, "tiny", False), (435, -651, "tiny", False), (435, -661, "small", False),
+    (482, -651, "tiny", False), (482, -661, "tiny", False), (435, -682, "tiny", False),
 )  # fmt: skip
 
 

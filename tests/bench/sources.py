@@ -1,6 +1,6 @@
-"""Writes what the other typesetters are given, from a project: `python -m tests.bench.sources PROJECT`, lines on stdout.
+"""Writes what the other typesetters are given, from a project: `python -m tests.bench.sources PROJECT`.
 
-In: a project file. Out: `.tex` and `.typ` beside it, and the count of lines of the report.
+In: a project file. Out: `.tex` and `.typ` beside it, and on stdout the count of lines of the report.
 """
 
 from __future__ import annotations

@@ -1,10 +1,12 @@
 """A report as Typst source: the same words, formulas, tables, figures and links.
 
-`report.model.Report` in, the text of a document out. Written to be quick: one block a line with its number and its sources
-placed at their lanes, widths of columns given, tables and bookmarks in the typesetter's own way.
+`report.model.Report` in, the text of a document out. Written to be quick: one block a line with its number and its
+sources placed at their lanes, widths of columns given, tables and bookmarks in the typesetter's own way.
 """
 
 from __future__ import annotations
+
+from pathlib import Path
 
 from calcreport.report.model import (
     Big,
@@ -18,6 +20,7 @@ from calcreport.report.model import (
     Givens,
     Heading,
     Index,
+    IndexEntry,
     Letters,
     Line,
     Listing,
@@ -42,38 +45,7 @@ from tests.bench.content import Drawer, Label, Ring, column_widths, is_tall
 from tests.bench.sheet import FRAME, LANE, ROOM, TITLES, title_words
 
 _SIZES = {"tiny": 5, "scriptsize": 7, "small": 9, "normalsize": 10}
-_HEAD = """#set document(title: @TITLE@)
-#set text(size: 9pt, lang: "en", hyphenate: false)
-#set par(leading: 3.6pt, spacing: 5pt)
-#show math.equation: set text(size: 10pt)
-#set table(stroke: (x: none, y: .35pt), inset: (x: 2pt, y: 2.2pt))
-#show heading.where(level: 1): none
-#let frame = { @FRAME@ }
-#let ring = circle(radius: 3.6pt, stroke: .35pt)
-#let at(x, y, size, body, weight: "regular") = place(dx: x * 1pt, dy: -y * 1pt - size * .7pt, text(size: size * 1pt, weight: weight, body))
-#let nr(n) = { place(dx: -32pt, box(width: 19pt, align(right, text(size: 8pt, n)))); place(dx: -11pt, dy: -1pt, ring) }
-#let sr(body) = place(dx: @LANE@pt + 8pt, box(width: 88pt, text(size: 8pt, body)))
-#let ln(n, src, body) = block(width: @LANE@pt, spacing: 6.2pt, { nr(n); sr(src); body })
-#let re(body) = { h(12pt); h(1fr); body }
-#let row(n, s, v, says, src) = block(width: @LANE@pt, spacing: 4pt, { nr(n); sr(src); box(width: 42pt, align(right, s)); box(width: 100pt, $=#v$)
-  text(size: 8pt, says); place(dx: -32pt, dy: 2pt, line(length: 524pt, stroke: .35pt)) })
-#let hd(body) = block(above: 9pt, below: 6pt, sticky: true, smallcaps(strong(body)))
-#let hh(body) = block(above: 7pt, below: 6pt, sticky: true, strong(body))
-#let pp(body) = block(width: @LANE@pt, spacing: 6pt, text(size: 8.5pt, body))
-#let first(mark) = locate(label(mark + "-1")).page()
-#let count(mark) = locate(label("last-" + mark)).page() - first(mark) + 1
-#let li(n, body) = block(spacing: 3.6pt, text(size: 6.5pt, { place(dx: -32pt, box(width: 25pt, align(right, n))); box(body) }))
-#let foot(mark) = context {
-  place(dx: 430pt, dy: 708pt, box(width: 90pt, align(right, text(size: 14pt, weight: "bold", mark + "-" + str(here().page() - first(mark) + 1)))))
-  place(dx: 430pt, dy: 725pt, box(width: 90pt, align(right, text(size: 9pt, "of " + str(count(mark)))))) }
-#let part(mark, title, facts, body) = { set page(width: 612pt, height: 792pt, margin: (left: 90pt, right: 29pt, top: 36pt, bottom: 122pt),
-    background: place(dx: 57pt, dy: 30pt, { frame; facts; foot(mark) }))
-  [#heading(level: 1, mark + "  " + title)#label(mark + "-1")]
-  body
-  [#metadata(none)#label("last-" + mark)] }
-#let sheets(mark) = context (mark + "-1 to " + mark + "-" + str(count(mark)))
-#let whole(mark) = context first(mark)
-"""
+_HEAD = Path(__file__).with_name("head.typ")
 
 
 def typst(report: Report) -> str:
@@ -82,7 +54,12 @@ def typst(report: Report) -> str:
         f"place(dx: {_n(x)}pt, dy: {_n(-y - h)}pt, rect(width: {_n(w)}pt, height: {_n(h)}pt, fill: black));"
         for x, y, w, h in FRAME
     )
-    head = _HEAD.replace("@LANE@", _n(LANE)).replace("@FRAME@", frame).replace("@TITLE@", _s(report.title))
+    head = (
+        _HEAD.read_text("utf-8")
+        .replace("@LANE@", _n(LANE))
+        .replace("@FRAME@", frame)
+        .replace("@TITLE@", _s(report.title))
+    )
     writer = _Typst()
     return head + "".join(map(writer.part, report.parts))
 
@@ -114,16 +91,25 @@ class _Typst:
         return "\n\n".join(lines) + "\n\n"
 
     def index(self, index: Index) -> str:
-        rows = "".join(
-            f"link(label({_s(e.part + '-1')}), {_s(e.mark)}), link(label({_s(e.part + '-1')}), {_s(e.title)}), {_s(e.flag)}, "
-            f"link(label({_s(e.part + '-1')}), sheets({_s(e.part)})), {_s(e.revision)}, {_s(e.date)}, whole({_s(e.part)}),\n"
-            for e in index.entries
-        )
+        rows = "".join(map(self.index_row, index.entries))
         heads = ", ".join(f"strong({_s(h)})" for h in ("Mark", "Subject", "", "Sheets", "Rev.", "Last changed", "Page"))
         return (
             "#hd[Index of sheets]\n#pad(left: -30pt, table(columns: (90pt, 160pt, 20pt, 90pt, 30pt, 80pt, 30pt), "
             f"table.header({heads}),\n{rows}))\n"
         )
+
+    def index_row(self, entry: IndexEntry) -> str:
+        part, place = _s(entry.part), f"label({_s(entry.part + '-1')})"
+        cells = (
+            f"link({place}, {_s(entry.mark)})",
+            f"link({place}, {_s(entry.title)})",
+            _s(entry.flag),
+            f"link({place}, sheets({part}))",
+            _s(entry.revision),
+            _s(entry.date),
+            f"whole({part})",
+        )
+        return ", ".join(cells) + ",\n"
 
     # ------------------------------------------------------------ blocks
 
@@ -204,17 +190,16 @@ class _Typst:
                 case Label(x, y, size, text):
                     ink.append(f"at({_n(x)}, {_n(-y)}, {_n(size)}, {_s(text)})")
                 case Ring(x, y, r, width, fill):
-                    ink.append(
-                        f"place(dx: {_n(x - r)}pt, dy: {_n(y - r)}pt, circle(radius: {_n(r)}pt, {_pen(width, fill, ())}))"
-                    )
+                    circle = f"circle(radius: {_n(r)}pt, {_pen(width, fill, ())})"
+                    ink.append(f"place(dx: {_n(x - r)}pt, dy: {_n(y - r)}pt, {circle})")
                 case _:
                     (x0, y0), *others = shape.points
                     path = f"curve.move(({_n(x0)}pt, {_n(y0)}pt)), "
                     path += ", ".join(f"curve.line(({_n(x)}pt, {_n(y)}pt))" for x, y in others)
                     path += ", curve.close()" if shape.closed else ""
                     ink.append(f"place(curve({_pen(shape.width, shape.fill, shape.dash)}, {path}))")
-        size = f"width: {_n(drawing.width)}pt, height: {_n(drawing.height)}pt"
-        drawn = f"align(right, box({size}, align(left + top, {{ {'; '.join(ink)} }})))"
+        extent = f"width: {_n(drawing.width)}pt, height: {_n(drawing.height)}pt"
+        drawn = f"align(right, box({extent}, align(left + top, {{ {'; '.join(ink)} }})))"
         return (
             f"#place(block(width: {_n(LANE)}pt, {drawn}))\n"
             if block.beside

@@ -39,6 +39,13 @@ class Nothing:
     """A record without fields."""
 
 
+@record
+class Solid(Point):
+    """A record that extends another."""
+
+    z: float = 9.0
+
+
 @entity
 class Style:
     size: float
@@ -98,6 +105,13 @@ def test_records_have_slots_match_by_place_and_show_themselves() -> None:
     assert not hasattr(Point(1.0), "__dict__")
     assert repr(Point(1.0, 2.0)) == repr(Standard(1.0, 2.0)).replace("Standard", "Point")
     assert Point.__doc__ == "A place."
+
+
+def test_a_record_may_extend_another() -> None:
+    solid = Solid(1.0)
+    assert (solid.x, solid.y, solid.z, solid.sum) == (1.0, 0.0, 9.0, 1.0)
+    assert Solid(1.0, 2.0, 3.0) == replace(solid, y=2.0, z=3.0) != Point(1.0, 2.0)
+    assert not hasattr(solid, "__dict__")
 
 
 def test_records_go_to_other_processes() -> None:

@@ -163,3 +163,37 @@ def _calculation(mark: str, template: str, concrete: str, bars: str | None, give
     lines.append("    given:")
     lines += [f"      {name}: {value}" for name, value in given.items()]
     return "\n".join(lines) + "\n"
+
+
+def edges() -> str:
+    """Return a project of sections at the edges: ratios a hair from one, no moment, no room, hogging, few bars.
+
+    The design strength of the first sections is 78.995 kip*ft: a = 1.20 (60) / (0.85 (4) 10) = 2.1176 in.,
+    d = 18 - 1.5 - 0.375 - 0.875 / 2 = 15.6875 in., 0.90 (1.20) 60 (d - a / 2) / 12.
+    """
+    head = HEAD.format(system="us", concrete=US.concrete, seed="edges")
+    materials = "  C0: {f_c: 4000 psi, w_c: 150 pcf}\n  G0: {f_y: 60 ksi, E_s: 29000 ksi}\n"
+    plain = "[{name: first, steel: 2-#7}]"
+    parts = [
+        _edge("E1", "a hair over", "79 kip*ft", plain),
+        _edge("E2", "less than a hair over", "78.995 kip*ft", plain),
+        _edge("E3", "less than a hair under", "78.9948 kip*ft", plain),
+        _edge("E4", "no moment", "0 kip*ft", plain, third_more="yes"),
+        _edge("E5", "hogging", "-52.25 kip*ft", plain, face="top", third_more="yes"),
+        _edge("E6", "no room in the first layer, too little in the second", "120 kip*ft",
+              "[{name: first, steel: 20-#5}, {name: second, steel: 9-#5}]", b="14 in", h="90 in", c_l="1 in"),
+        _edge("E7", "far more steel than tension control allows", "60 kip*ft",
+              "[{name: first, steel: 2-#11}]", b="9 in"),
+        _edge("E8", "no room at all", "120 kip*ft", "[{name: first, steel: 25-#5}]", b="14 in", h="90 in"),
+        _edge("G", "Girder whose title begins like its mark", "40 kip*ft", plain, d_agg="1 1/2 in"),
+    ]  # fmt: skip
+    return head + materials + "calculations:\n" + "".join(parts)
+
+
+def _edge(mark: str, title: str, moment: str, layers: str, **other: str) -> str:
+    given = {
+        "b": "10 in", "h": "18 in", "c_c": "1.5 in", "stirrup": "'#3'", "face": "bottom", "layer": layers,
+        "c_l": "none", "M_u": moment, "d_agg": "3/4 in", "rounded_eps_ty": "no", "third_more": "no",
+    }  # fmt: skip
+    text = _calculation(mark, "aci318/beam-flexure", "C0", "G0", given | other)
+    return text.replace(f"Section at the greatest moment, beam {mark}", title)

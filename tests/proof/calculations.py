@@ -19,6 +19,8 @@ from .statements import NumberedLine, Statement
 from .tables import Table
 from .units import Printed, is_number
 
+#: words of a line of values given as none
+LEFT_OUT = re.compile(r"none, counted as (\S+)")
 #: (set, row) pairs that stand open
 Rows = tuple[tuple[str, str], ...]
 
@@ -230,7 +232,7 @@ def _register(calculation: Calculation) -> None:
 
 def _left_out(calculation: Calculation, statement: Statement, place: Place) -> None:
     """Register what is given as none in one line: `none, counted as 0   b_t, q_D`."""
-    counted = re.fullmatch(r"none, counted as (\S+)", statement.words)
+    counted = LEFT_OUT.fullmatch(statement.words)
     if counted is not None and is_number(counted[1]):
         for part in split(statement.tokens, "comma")[0]:
             name = symbol_of(part)

@@ -93,8 +93,11 @@ def _statement(desk: Desk, statement: Statement) -> int:
     if not tokens:
         raise Unread("a comparison without text")
     desk.count("comparisons")
-    if not judge(tokens, scope):
-        desk.found("printed comparisons are true", plain(tokens))
+    try:
+        if not judge(tokens, scope):
+            desk.found("printed comparisons are true", plain(tokens))
+    except Unknown as error:
+        desk.found("a condition names what the sheet shows", f"{error} stands nowhere: {plain(tokens)}")
     return 1
 
 

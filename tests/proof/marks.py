@@ -193,9 +193,10 @@ def _attention(
         return
     if found[0].ratio and cells.get("Ratio", "").split()[:1] != [found[0].ratio]:
         yield Finding("the summary repeats the ratios", calculation.mark, int(where[1]), f"{cells}")
-    pair = re.search(r"(\S+) (\S+) against (\S+) (\S+?)(?=[.,;]? |[.,;]?$)", cells.get("State", ""))
+    pair = re.search(r"(\S+) (\S+) against (\S+) (\S+)", cells.get("State", ""))
     for number, unit in ((pair[1], pair[2]), (pair[3], pair[4])) if pair else ():
-        if (number, unit) not in calculation.shown and not _stands(number, found[0]):
+        forms = {(number, unit), (number, unit.rstrip(".,;"))}
+        if not forms & calculation.shown and not _stands(number, found[0]):
             text = f"summary: {number} {unit}"
             yield Finding("one printed form of a value", calculation.mark, int(where[1]), text)
 

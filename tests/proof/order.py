@@ -52,7 +52,7 @@ def _head(line: NumberedLine) -> str:
     if first.words:
         return f"{line.number}{squeeze(first.words)}"
     name = symbol_of(split(first.tokens, "relation")[0][0]) if first.tokens else None
-    return f"{line.number}{(name or '').replace('_', '')}"
+    return f"{line.number}{squeeze((name or '').replace('_', ''))}"
 
 
 def _missing(line: NumberedLine, page: int, text: str) -> list[str]:

@@ -8,7 +8,7 @@ from __future__ import annotations
 from collections import defaultdict
 
 from .account import Desk
-from .calculations import Calculation
+from .calculations import LEFT_OUT, Calculation
 from .equations import assignments, symbol_of
 from .expressions import Unread, parse, split, symbols
 from .numbering import source_numbers
@@ -22,7 +22,7 @@ def sources(desk: Desk) -> None:
         named = set(source_numbers(line)) | {line.number}
         for statement in line.statements:
             for name in sorted(_taken(statement)):
-                lines = {number for number in givers.get(name) or givers.get(name.rpartition(",")[0], ())}
+                lines = givers.get(name) or givers.get(name.rpartition(",")[0], set())
                 earlier = {number for number in lines if number <= line.number}
                 desk.count("sources")
                 if earlier and not earlier & named:
@@ -49,6 +49,8 @@ def _given(calculation: Calculation, statement: Statement) -> set[str]:
     found = {item.name for item in calculation.inline if item.statement is statement}
     if statement.kind != "formula" or found:
         return found
+    if LEFT_OUT.fullmatch(statement.words):
+        return {symbol_of(part) or "" for part in split(statement.tokens, "comma")[0]}
     found = {name for name, _ in assignments(statement)}
     parts, relations = split(statement.tokens, "relation")
     name = symbol_of(parts[0])

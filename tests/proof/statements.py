@@ -150,11 +150,12 @@ class RowReader:
         if tokens[-1].kind == "colon":
             self._statement("arm", y).condition = tokens[:-1]
             return
-        if any(token.words for token in tokens):
+        waiting = open_ is not None and open_.kind != "formula" and not open_.tokens
+        if not waiting and any(token.words and token.kind == "word" for token in tokens):
             self._statement("title", y).tokens = tokens
             return
         continues = tokens[0].kind == "relation" or (tokens[0].kind == "sign" and open_ is not None and open_.tokens)
-        if open_ is not None and (continues or (not open_.tokens and open_.kind != "formula")):
+        if open_ is not None and (continues or waiting):
             open_.tokens += tokens
             return
         if continues:

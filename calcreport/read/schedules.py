@@ -1,0 +1,252 @@
+"""Member schedules: every row of a table becomes a calculation, as if it had been written out.
+
+Entries of `schedules` in, mappings of calculations out, whose texts have their places in the table. Which values a
+template takes, and how marks are spelled, is held where all calculations are read.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+
+from calcreport.core.problems import Problems
+from calcreport.core.record import made, record, state
+from calcreport.core.units import NONE
+from calcreport.core.world import World
+from calcreport.read.calculations import roles_of
+from calcreport.read.columns import Heading, Table, Use, is_bare, is_use, make_table, read_use, take, text_use
+from calcreport.read.fields import Fields
+from calcreport.read.filled import Filled, fill, prepare, prepare_use, schedule_columns, uses
+from calcreport.read.gathering import MOST_CALCULATIONS, Gathered
+from calcreport.read.library import Editions, Library
+from calcreport.read.model import SYSTEMS, Given, System, Template
+from calcreport.read.nodes import Mapping, Node, Scalar, Sequence, Told
+from calcreport.read.sheets import Sheet, SheetRow, read_sheet
+
+KEYS = ("file", "sheet", "heading row", "template", "mark", "title", "units", "columns", "given", "where", "hidden")
+#: keys the language has and this version does not read
+_LATER = ("together",)
+#: rows named when hidden ones are refused
+_NAMED = 12
+
+
+@record
+class _Plan:
+    """What one schedule makes of a row."""
+
+    table: Table
+    mark: Use
+    title: Use | Scalar
+    #: keys of a calculation with what stands under them
+    entries: tuple[tuple[Scalar, Node | Use | Filled], ...]
+    where: tuple[tuple[Heading, frozenset[str]], ...]
+
+
+@state
+class ScheduleReader:
+    """Reads the schedules of one project."""
+
+    world: World
+    library: Library
+    system: System
+    editions: Editions
+    gathered: Gathered
+    problems: Problems
+    _sheets: dict[tuple[str, str], Sheet | None] = made(factory=dict)
+
+    def read(self) -> None:
+        """Add a calculation for every row, after those written out, and the tables to the files read."""
+        calculations = self.gathered.calculations
+        for node in self.gathered.schedules:
+            for calculation in self.schedule(node):
+                if len(calculations) >= MOST_CALCULATIONS:
+                    self.problems.add("file-too-large", node.span.part(0, 1), "the project holds too many calculations",
+                                      expected=f"{MOST_CALCULATIONS:,} at most", found="more")  # fmt: skip
+                    return
+                calculations.append(calculation)
+
+    def schedule(self, node: Mapping) -> Iterator[Mapping]:
+        """Return the calculations of one schedule."""
+        template = self.template(node)
+        roles = roles_of(template.body.given) if template else _others(node)
+        fields = Fields(node, (*KEYS, *roles), "a schedule", self.problems, _LATER)
+        fields.scalar("template", required=True)
+        before = self.problems.met
+        table = self.table(fields)
+        plan = self.plan(fields, table, template, roles) if table is not None else None
+        hidden = fields.choice("hidden", ("skip", "read"))
+        if table is None or plan is None or self.problems.met > before:
+            return
+        self.hold_shown(fields, plan, hidden)
+        if template is not None and not self.hold_units(node, template, plan):
+            return
+        met = self.problems.met
+        found = 0
+        for row in table.rows:
+            if (row.hidden and hidden != "read") or not self.selected(row, plan):
+                continue
+            found += 1
+            calculation = self.calculation(node, row, plan)
+            if calculation is not None:
+                yield calculation
+        if not found and self.problems.met == met:
+            at = fields.span_of("where" if fields.has("where") else "file")
+            self.problems.add("no-rows", at, "no row of the table is taken", expected="one or more rows",
+                              found=f"{len(table.rows)} rows under the headings, none selected")  # fmt: skip
+
+    def template(self, node: Mapping) -> Template | None:
+        own, name = node.get("units"), node.get("template")
+        system = next((s for s in SYSTEMS if isinstance(own, Scalar) and own.text == s), self.system)
+        if not isinstance(name, Scalar) or not name.text:
+            return None
+        return self.library.template(name.text, system, self.editions, name.span)
+
+    def table(self, fields: Fields) -> Table | None:
+        """Return the table of a schedule; a file named twice is read and echoed once."""
+        file, sheet = fields.scalar("file", required=True), fields.scalar("sheet")
+        heading_row = fields.whole("heading row", low=1, high=1000)
+        if file is None or (heading_row is None and fields.has("heading row")):
+            return None
+        key = file.text, sheet.text if sheet else ""
+        if key not in self._sheets:
+            self._sheets[key] = read_sheet(self.world, file, sheet, file.span.source, self.problems, self.label(*key))
+            found = self._sheets[key]
+            if found is not None:
+                self.gathered.files.append(found.source)
+        found = self._sheets[key]
+        return make_table(found, heading_row, fields.span_of("file"), self.problems) if found is not None else None
+
+    def label(self, file: str, sheet: str) -> str:
+        """Return what parts a table from the others of the project in print, '' where it is the only one."""
+        others = {(_text(node.get("file")), _text(node.get("sheet"))) for node in self.gathered.schedules}
+        if len(others) == 1:
+            return ""
+        return f"{file} {sheet}".strip() if len({name for name, _ in others}) < len(others) else file
+
+    def plan(self, fields: Fields, table: Table, template: Template | None, roles: tuple[str, ...]) -> _Plan | None:
+        mark, title = fields.scalar("mark", required=True), fields.scalar("title")
+        marked = text_use(mark, table, self.problems) if mark is not None else None
+        if mark is None or marked is None:
+            return None
+        titled: Use | Scalar | None = Scalar(template.title if template else "", mark.span, True)
+        if title is not None:
+            titled = text_use(title, table, self.problems) if "{" in title.text else title
+        entries: list[tuple[Scalar, Node | Use | Filled]] = []
+        for key, value in fields.node.entries:
+            if key.text in ("template", "units", *roles):
+                entries.append((key, prepare(value, table, self.problems)))
+        entries.append((Scalar("given", fields.span, False), self.given(fields, table)))
+        return _Plan(table, marked, titled, tuple(entries), self.where(fields, table)) if titled is not None else None
+
+    def given(self, fields: Fields, table: Table) -> Filled:
+        """Return the given values: those common to all rows, and those of columns."""
+        common, columns = fields.mapping("given"), fields.mapping("columns")
+        found = [(key, prepare(value, table, self.problems)) for key, value in (common.entries if common else ())]
+        stood = {key.text: key.span for key, _ in found}
+        for key, value in columns.entries if columns else ():
+            if key.text in stood:
+                self.problems.add("given-twice", key.span, f"`{key.text[:40]}` is given twice", expected="one place",
+                                  found="a column and a common value",
+                                  related=((stood[key.text], "the common value"),))  # fmt: skip
+            elif isinstance(value, Scalar) or is_use(value):
+                found.append((key, prepare_use(value, table, self.problems)))
+            elif not isinstance(value, Told):
+                self.problems.add("wrong-shape", value.span.part(0, 1), f"`{key.text[:40]}` is not given a column",
+                                  expected="a heading, or {column: …, unit: …, if empty: …}",
+                                  found="a list" if isinstance(value, Sequence) else "a mapping",
+                                  hint="rows of a set stand under `given`")  # fmt: skip
+        span = (common or columns or fields.node).span
+        node = Mapping(tuple((key, Told(key.span)) for key, _ in found), span)
+        return Filled(node, tuple(inner for _, inner in found))
+
+    def where(self, fields: Fields, table: Table) -> tuple[tuple[Heading, frozenset[str]], ...]:
+        """Return the texts by which rows are selected, by column."""
+        mapping = fields.mapping("where")
+        if mapping is None:
+            return ()
+        choice = Fields(mapping, [key.text for key, _ in mapping.entries], "`where`", self.problems)
+        found = []
+        for key, _ in mapping.entries:
+            heading = table.find(key.text, key.span, self.problems)
+            words = frozenset(" ".join(scalar.text.split()) for scalar in choice.texts(key.text))
+            if heading is not None:
+                found.append((heading, words))
+        return tuple(found)
+
+    def selected(self, row: SheetRow, plan: _Plan) -> bool:
+        """Tell whether a row is one of those asked for."""
+        return all(row.cell(heading.index).text in words for heading, words in plan.where)
+
+    def hold_shown(self, fields: Fields, plan: _Plan, hidden: str) -> None:
+        """Add `hidden-rows` where what a spreadsheet hides would be read, or passed over, without a word."""
+        sheet = plan.table.sheet
+        rows = [row for row in plan.table.rows if row.hidden and self.selected(row, plan)]
+        if sheet.is_hidden and hidden != "read":
+            self.problems.add("hidden-rows", fields.span_of("sheet" if fields.has("sheet") else "file"),
+                              "the sheet is hidden", expected="a sheet that is shown, or `hidden: read`",
+                              found=sheet.source.sheet)  # fmt: skip
+        taken = uses((plan.mark, plan.title, *(value for _, value in plan.entries)))
+        used = {piece.index: piece for use in taken for piece in use.pieces if isinstance(piece, Heading)}
+        for index in sorted(sheet.hidden_columns & used.keys()):
+            if hidden != "read":
+                self.problems.add("hidden-rows", used[index].cell.span, "this column is hidden, and it is asked for",
+                                  expected="a column that is shown, or `hidden: read`",
+                                  found=used[index].cell.text)  # fmt: skip
+        if rows and not hidden:
+            names = ", ".join(str(row.number) for row in rows[:_NAMED]) + (" and more" if rows[_NAMED:] else "")
+            many = "1 row is" if len(rows) == 1 else f"{len(rows)} rows are"
+            self.problems.add("hidden-rows", rows[0].cell(0).span, f"{many} hidden",
+                              expected="`hidden: skip` or `hidden: read` beside `file`", found=f"row {names}",
+                              hint="a filter hides rows too")  # fmt: skip
+
+    def hold_units(self, node: Mapping, template: Template, plan: _Plan) -> bool:
+        """Tell whether every column of bare numbers says their unit where one is needed; told once, at the heading."""
+        before = self.problems.met
+        for path, said in schedule_columns(node).items():
+            given = _declared(path, template.body.given)
+            use = read_use(said, plan.table, self.problems) if given is not None else None
+            if given is None or use is None or use.unit or not isinstance(use.pieces[0], Heading):
+                continue
+            heading = use.pieces[0]
+            texts = {row.cell(heading.index).text for row in plan.table.rows if self.selected(row, plan)} - {"", "0"}
+            if texts and all(is_bare(text) for text in texts):
+                unit = given.symbol.unit.text if given.symbol and given.symbol.unit else ""
+                self.problems.add("bare-number", heading.cell.span, f"the numbers under `{heading.stem}` have no unit",
+                                  expected=f"the unit of `{given.name}` in the heading, or beside the column",
+                                  found=f"bare numbers, such as {min(texts)}",
+                                  hint=f"write {heading.stem} ({unit}), or {{column: {heading.stem}, unit: {unit}}}, "
+                                  "if that is the unit meant",
+                                  related=((use.span, "they are asked for here"),))  # fmt: skip
+        return self.problems.met == before
+
+    def calculation(self, node: Mapping, row: SheetRow, plan: _Plan) -> Mapping | None:
+        """Return the calculation of a row, None for one without a mark."""
+        mark = take(plan.mark, row, plan.table, self.problems)
+        if not isinstance(mark, Scalar):
+            return None
+        title = take(plan.title, row, plan.table, self.problems) if isinstance(plan.title, Use) else plan.title
+        entries: list[tuple[Scalar, Node]] = [
+            (Scalar("mark", node.span, False), mark),
+            (Scalar("title", node.span, False), title or Told(node.span)),
+        ]
+        for key, value in plan.entries:
+            entries.append((key, fill(value, row, plan.table, self.problems) or Told(key.span)))
+        return Mapping(tuple(entries), node.span)
+
+
+def _declared(path: str, givens: tuple[Given, ...]) -> Given | None:
+    """Return the declaration of a quantity with a unit by its name, that of a set's column by its last."""
+    name, *rest = path.split(".")
+    given = next((one for one in givens if one.name == name), None)
+    if given is not None and given.kind == "rows" and rest:
+        given = next((one for one in given.columns if one.name == rest[-1]), None)
+    unit = given.symbol.unit if given is not None and given.symbol is not None else None
+    return given if unit is not None and unit.dimension != NONE else None
+
+
+def _text(node: Node | None) -> str:
+    return node.text if isinstance(node, Scalar) else ""
+
+
+def _others(node: Mapping) -> tuple[str, ...]:
+    """Return the keys that may be material roles, where the template that would tell is not there."""
+    return tuple(key.text for key, _ in node.entries if key.text not in (*KEYS, *_LATER))

@@ -1,0 +1,111 @@
+"""All mutants of some templates put to the cases, and what became of them, in words.
+
+A shelf, a list of equivalents and names in, a report out; no printing.
+"""
+
+from __future__ import annotations
+
+from collections import Counter
+from dataclasses import dataclass
+from time import process_time
+
+from .equivalents import Equivalents
+from .handed import bar_mutants, worth_mutants
+from .mutants import mutants_of
+from .shelf import Shelf
+from .sources import OUTSIDE
+from .trial import Fate, Mutant, Trial
+
+
+@dataclass(frozen=True, slots=True)
+class Told:
+    """One mutant with its fate, what noticed it, and why it is no other rule."""
+
+    mutant: Mutant
+    fate: Fate
+    by: str
+    reason: str
+
+    @property
+    def open(self) -> bool:
+        """Tell whether neither an outside source nor a reason settles it."""
+        return self.fate in ("own", "survived") and not self.reason
+
+    @property
+    def row(self) -> str:
+        """The mutant in one line."""
+        words = (self.mutant.file, self.mutant.line, self.mutant.formula, self.mutant.says)
+        return " | ".join((self.fate, *words, self.reason or self.by))
+
+
+@dataclass(frozen=True, slots=True)
+class Sheet:
+    """The mutants of one file."""
+
+    file: str
+    told: tuple[Told, ...]
+    seconds: float
+
+    def count(self, *fates: Fate) -> int:
+        """Return how many mutants had one of these fates."""
+        return sum(t.fate in fates for t in self.told)
+
+
+@dataclass(frozen=True, slots=True)
+class Report:
+    """All files, and entries of the list of equivalents that have gone stale."""
+
+    sheets: tuple[Sheet, ...]
+    stale: tuple[str, ...]
+
+    @property
+    def open(self) -> tuple[Told, ...]:
+        """The mutants that neither a case nor a reason settles."""
+        return tuple(told for sheet in self.sheets for told in sheet.told if told.open)
+
+    @property
+    def sound(self) -> bool:
+        """Tell whether nothing is left open."""
+        return not self.open and not self.stale
+
+
+def run(shelf: Shelf, equivalents: Equivalents, names: tuple[str, ...]) -> Report:
+    """Put every mutant of the named files to the cases; no names: all templates and bar tables."""
+    trial = Trial(shelf, {})
+    bars = {file: [m for m in bar_mutants(shelf) if m.file == file] for file, _ in shelf.bars}
+    files = names or (*shelf.names, *bars)
+    sheets: list[Sheet] = []
+    for file in files:
+        start = process_time()
+        mutants = bars.get(file) or [*mutants_of(file, shelf), *worth_mutants(file, shelf)]
+        told = tuple(Told(m, *trial.fate(m), equivalents.reason(m)) for m in mutants)
+        sheets.append(Sheet(file, tuple(t for t in told if t.fate != "no mutant"), process_time() - start))
+    fates = [(t.mutant, t.fate) for sheet in sheets for t in sheet.told]
+    return Report(tuple(sheets), tuple(equivalents.stale(fates, set(files))))
+
+
+def table(report: Report) -> list[str]:
+    """Return the report as rows of a table."""
+    rows = [f"{'':32}{'mutants':>9}{'killed':>9}{'refused':>9}{'own only':>9}{'equal':>9}{'open':>9}{'s':>8}"]
+    for sheet in (*report.sheets, _total(report.sheets)):
+        equal = sum(bool(t.reason) and t.fate == "survived" for t in sheet.told)
+        counts = (len(sheet.told), sheet.count("killed"), sheet.count("refused"), sheet.count("own"), equal,
+                  sum(t.open for t in sheet.told))  # fmt: skip
+        rows.append(f"{sheet.file:32}" + "".join(f"{count:9}" for count in counts) + f"{sheet.seconds:8.1f}")
+    return rows
+
+
+def _total(sheets: tuple[Sheet, ...]) -> Sheet:
+    return Sheet("all", tuple(t for sheet in sheets for t in sheet.told), sum(sheet.seconds for sheet in sheets))
+
+
+def sources(shelf: Shelf) -> list[str]:
+    """Return how many expectations rest on each kind of source, and those whose words name none."""
+    kinds = Counter(kind for variant in shelf.variants for held in variant.cases for kind in held.kinds)
+    rows = [", ".join(f"{kind} {count}" for kind, count in kinds.most_common())]
+    for variant in shelf.variants:
+        for held in variant.cases:
+            for expected, kind in zip(held.case.expected, held.kinds, strict=True):
+                if kind not in OUTSIDE and kind != "own":
+                    rows.append(f"{variant.name}: {held.case.name}: {expected.name}: {expected.source}")
+    return rows

@@ -109,6 +109,14 @@ def column_letters(index: int) -> str:
     return letters
 
 
+def column_index(letters: str) -> int:
+    """Return the index of a column, counted from 0, by its letters."""
+    index = 0
+    for letter in letters:
+        index = 26 * index + ord(letter) - ord("A") + 1
+    return index - 1
+
+
 @dataclass(frozen=True, slots=True)
 class Span:
     """A stretch of a source, from `start` up to but not including `end` (character offsets)."""

@@ -47,7 +47,8 @@ _PARTS = {
     'patternType="none"/></fill><fill><patternFill patternType="gray125"/></fill></fills><borders count="1"><border>'
     '<left/><right/><top/><bottom/><diagonal/></border></borders><cellStyleXfs count="1"><xf/></cellStyleXfs>'
     '<cellXfs count="3"><xf fontId="0"/><xf fontId="1" applyFont="1"/><xf fontId="0" applyAlignment="1">'
-    '<alignment vertical="top" wrapText="1"/></xf></cellXfs></styleSheet>',
+    '<alignment vertical="top" wrapText="1"/></xf></cellXfs><cellStyles count="1"><cellStyle name="Normal" xfId="0" '
+    'builtinId="0"/></cellStyles></styleSheet>',
 }
 
 

@@ -13,12 +13,13 @@ from datetime import date, time, timedelta
 from io import BytesIO
 from typing import Any
 from xml.etree.ElementTree import ParseError
+from xml.parsers.expat import ExpatError, ParserCreate
 from zipfile import BadZipFile, ZipFile
 
 from calcreport.core.late import load
 from calcreport.core.problems import Problems, listed
 from calcreport.core.record import made, state
-from calcreport.core.source import column_letters
+from calcreport.core.source import column_index, column_letters
 from calcreport.read.nodes import Scalar
 
 #: bounds of an archive: bytes packed and unpacked, how far one part may swell, parts, marks of its XML
@@ -29,10 +30,14 @@ _SMALL = 1_000_000
 _MOST_ROW, _MOST_COLUMN, _MOST_CELLS = 100_000, 1000, 1_000_000
 #: how the library tells of a damaged file
 _DAMAGE = (
-    BadZipFile, zlib.error, ParseError, OSError, EOFError, KeyError, ValueError, TypeError, AttributeError, IndexError,
-    NotImplementedError, RuntimeError, OverflowError, AssertionError, UnboundLocalError,
+    BadZipFile, zlib.error, ParseError, ExpatError, OSError, EOFError, KeyError, ValueError, TypeError, AttributeError,
+    IndexError, NotImplementedError, RuntimeError, OverflowError, AssertionError, UnboundLocalError,
 )  # fmt: skip
 _FORMULA = re.compile(rb"<(?:\w+:)?f[ />]")
+#: elements whose areas the library writes out cell by cell, and how many cells they may come to
+_SPREADING, _MOST_SPREAD = (b"mergeCell", b"hyperlink", b"comment"), 100_000
+_AREA = re.compile(r"\$?([A-Z]{1,3})\$?([0-9]{1,7})(?::\$?([A-Z]{1,3})\$?([0-9]{1,7}))?")
+_OTHER_ALPHABETS = (b"\xff\xfe", b"\xfe\xff")
 #: the unit a number format shows behind the number: 0.0" in"
 _SHOWN_UNIT = re.compile(r'[0#?][^;"]*"\s*([^";]+?)\s*"')
 
@@ -99,14 +104,42 @@ def _inspect(data: bytes) -> bool | str:
                 return "an archive that unpacks to far more than a table"
             if part.flag_bits & 1:
                 return "a protected file"
-            if not part.filename.endswith((".xml", ".rels")):
-                continue
             text = archive.read(part)
-            if b"<!DOCTYPE" in text or b"<!ENTITY" in text or text[:2] in (b"\xff\xfe", b"\xfe\xff") or b"\0" in text:
+            if not _is_markup(part.filename, text):
+                continue
+            if b"<!DOCTYPE" in text or b"<!ENTITY" in text or b"\0" in text or text.startswith(_OTHER_ALPHABETS):
                 return "markup that no workbook needs"
             tags += text.count(b"<")
             formulas = formulas or _FORMULA.search(text) is not None
+            if any(name in text for name in _SPREADING) and _spread(text) > _MOST_SPREAD:
+                return "areas of more cells than a table needs"
         return formulas if tags <= MOST_TAGS else "more cells than a table needs"
+
+
+def _is_markup(name: str, text: bytes) -> bool:
+    """Tell whether the library could take a part for XML, whatever its name is."""
+    return name.endswith((".xml", ".rels")) or text[:64].lstrip(b"\xef\xbb\xbf\xff\xfe \t\r\n\0").startswith(b"<")
+
+
+def _spread(text: bytes) -> int:
+    """Count the cells of the areas that the library writes out cell by cell; one it may misread counts as too many."""
+    found = 0
+
+    def start(name: str, attributes: dict[str, str]) -> None:
+        nonlocal found
+        if name.rpartition(" ")[2].encode() not in _SPREADING or "ref" not in attributes:
+            return
+        match = _AREA.fullmatch(attributes["ref"])
+        if match is None:
+            found += _MOST_SPREAD + 1
+        elif match[3]:
+            across = abs(column_index(match[3]) - column_index(match[1])) + 1
+            found += across * (abs(int(match[4]) - int(match[2])) + 1)
+
+    parser = ParserCreate(namespace_separator=" ")
+    parser.StartElementHandler = start
+    parser.Parse(text, True)
+    return found
 
 
 def _load(data: bytes, *, values: bool) -> Any:
@@ -133,17 +166,9 @@ def _choose(book: Any, file: Scalar, sheet: Scalar | None, problems: Problems) -
 def _too_large(sheet: Any) -> str:
     """Return the area a sheet uses where it is beyond the bounds, else ''."""
     rows, columns = sheet.max_row, sheet.max_column
-    merged = sum(_clipped(area, rows, columns)[2] for area in sheet.merged_cells.ranges)
-    if rows > _MOST_ROW or columns > _MOST_COLUMN or rows * columns > _MOST_CELLS or merged > _MOST_CELLS:
+    if rows > _MOST_ROW or columns > _MOST_COLUMN or rows * columns > _MOST_CELLS:
         return f"cells down to {column_letters(columns - 1)}{rows}"
     return ""
-
-
-def _clipped(area: Any, rows: int, columns: int) -> tuple[range, range, int]:
-    """Return rows and columns of a merged area inside the area used, and how many cells that is."""
-    down = range(area.min_row, min(area.max_row, rows) + 1)
-    across = range(area.min_col, min(area.max_col, columns) + 1)
-    return down, across, len(down) * len(across)
 
 
 def _grid(sheet: Any, formulas: Any) -> Grid:
@@ -159,9 +184,9 @@ def _grid(sheet: Any, formulas: Any) -> Grid:
             texts.append(text)
         grid.rows.append(texts)
     for area in sheet.merged_cells.ranges:
-        down, across, _ = _clipped(area, sheet.max_row, sheet.max_column)
-        for number in down:
-            grid.flaws.setdefault(number, {}).update(dict.fromkeys((i - 1 for i in across), f"merged cells {area}"))
+        across = range(area.min_col - 1, area.max_col)
+        for number in range(area.min_row, area.max_row + 1):
+            grid.flaws.setdefault(number, {}).update(dict.fromkeys(across, f"merged cells {area}"))
     grid.hidden_rows = frozenset(n for n, d in sheet.row_dimensions.items() if d.hidden or d.height == 0)
     grid.hidden_columns = frozenset(
         index - 1

@@ -98,7 +98,7 @@ def test_nothing_outside_the_folder_is_read(tmp_path: Path, name: str) -> None:
         assert [problem.slug for problem in problems.sorted()] == ["no-file"]
 
 
-_CELL = st.text(alphabet='ab,;\t"\' \n#8', max_size=8)
+_CELL = st.text(alphabet="ab,;\t\"' \n#8", max_size=8)
 
 
 @settings(max_examples=200, deadline=None)

@@ -48,7 +48,7 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
     ("report", (
         "report", "report.calculation", "report.compose", "report.confirmations", "report.digits", "report.display",
         "report.drawings", "report.families", "report.forms", "report.fronts", "report.given_blocks",
-        "report.members", "report.model", "report.notation", "report.row_blocks", "report.script",
+        "report.members", "report.model", "report.notation", "report.row_blocks", "report.items", "report.script",
         "report.substitution", "report.summary", "report.told", "report.traced", "report.valuesfile",
     )),
     ("layout", (
@@ -237,7 +237,7 @@ LONG: dict[str, int] = {
     "report.confirmations": 420,
     "report.model": 460,
     "report.notation": 340,
-    "report.script": 420,
+
     "report.summary": 340,
 }
 LONGEST = 300

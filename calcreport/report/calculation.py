@@ -11,6 +11,25 @@ from calcreport.report.digits import number_text
 from calcreport.report.drawings import draw
 from calcreport.report.forms import Opened, equation_unit, joint_comparisons
 from calcreport.report.given_blocks import GivenBlocks
+from calcreport.report.items import (
+    Item,
+    SayBranch,
+    SayCheck,
+    SayEquation,
+    SayFigure,
+    SayFormula,
+    SayGivens,
+    SayHeading,
+    SayLine,
+    SayMade,
+    SayNone,
+    SayRequire,
+    SayRows,
+    SayStop,
+    SayTable,
+    SayText,
+    SayUnknown,
+)
 from calcreport.report.model import (
     Block,
     CheckLine,
@@ -30,25 +49,6 @@ from calcreport.report.model import (
 )
 from calcreport.report.notation import relation, show_figure
 from calcreport.report.row_blocks import RowBlocks
-from calcreport.report.script import (
-    Item,
-    SayBranch,
-    SayCheck,
-    SayEquation,
-    SayFigure,
-    SayFormula,
-    SayGivens,
-    SayHeading,
-    SayLine,
-    SayMade,
-    SayNone,
-    SayRequire,
-    SayRows,
-    SayStop,
-    SayTable,
-    SayText,
-    SayUnknown,
-)
 from calcreport.report.told import Told
 
 _TEXT_KINDS = {"note": "note", "caution": "caution", "assume": "assumption"}

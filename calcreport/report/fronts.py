@@ -11,6 +11,7 @@ from calcreport.calculate.model import WorkedProject, WorkedText
 from calcreport.core.source import Source
 from calcreport.core.version import PROGRAM
 from calcreport.report.display import show_name
+from calcreport.report.items import SayText, Script
 from calcreport.report.model import (
     Block,
     Column,
@@ -23,7 +24,6 @@ from calcreport.report.model import (
     TableRow,
     Words,
 )
-from calcreport.report.script import SayText, Script
 
 MONTHS = (
     "January",

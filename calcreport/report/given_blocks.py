@@ -18,6 +18,7 @@ from calcreport.core.quantity import Amount
 from calcreport.core.units import NONE
 from calcreport.report.display import row_words, show_row, show_symbol, unit_text
 from calcreport.report.forms import link_place
+from calcreport.report.items import SayNone, SayRows
 from calcreport.report.model import (
     Block,
     Column,
@@ -34,10 +35,6 @@ from calcreport.report.model import (
 )
 from calcreport.report.notation import (
     relation,
-)
-from calcreport.report.script import (
-    SayNone,
-    SayRows,
 )
 from calcreport.report.told import Told
 

@@ -12,6 +12,7 @@ from calcreport.calculate.model import (
 from calcreport.core.expression import Name, Number
 from calcreport.report.digits import number_text
 from calcreport.report.display import row_words, show_row
+from calcreport.report.items import SayFormula, SayMade, SayTable
 from calcreport.report.model import (
     Block,
     Column,
@@ -31,12 +32,7 @@ from calcreport.report.model import (
 from calcreport.report.notation import (
     relation,
 )
-from calcreport.report.script import (
-    SayFormula,
-    SayMade,
-    SayTable,
-    checks_below,
-)
+from calcreport.report.script import checks_below
 from calcreport.report.told import Told
 
 

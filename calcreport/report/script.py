@@ -8,13 +8,11 @@ from __future__ import annotations
 
 import math
 from dataclasses import dataclass, field
-from typing import TypeAlias
 
 from calcreport.calculate.model import (
     Key,
     PlannedGiven,
     PlannedGives,
-    Stop,
     Worked,
     WorkedBranches,
     WorkedCheck,
@@ -28,165 +26,26 @@ from calcreport.calculate.model import (
     WorkedText,
     WorkedUnknown,
 )
-
-
-@dataclass(frozen=True, slots=True)
-class SayGivens:
-    """The given values that have no rows, a line number each."""
-
-    rows: tuple[tuple[int, PlannedGiven], ...]
-
-
-@dataclass(frozen=True, slots=True)
-class SayNone:
-    """Given values the project says there are none of, in one line."""
-
-    number: int
-    givens: tuple[PlannedGiven, ...]
-
-
-@dataclass(frozen=True, slots=True)
-class SayRows:
-    """A set of given rows as a table."""
-
-    number: int
-    given: PlannedGiven
-
-
-@dataclass(frozen=True, slots=True)
-class SayText:
-    """Words."""
-
-    worked: WorkedText
-
-
-@dataclass(frozen=True, slots=True)
-class SayHeading:
-    """A heading the program itself sets: a part's title, a row's name."""
-
-    text: str
-    level: int
-
-
-@dataclass(frozen=True, slots=True)
-class SayLine:
-    """A line in full."""
-
-    number: int
-    worked: WorkedGives
-
-
-@dataclass(frozen=True, slots=True)
-class SayFormula:
-    """A formula once, for rows that follow in a table; one worked line for each arm taken."""
-
-    number: int
-    arms: tuple[WorkedGives, ...]
-
-
-@dataclass(frozen=True, slots=True)
-class SayMade:
-    """A set made here, as a table."""
-
-    number: int
-    worked: WorkedRows
-
-
-@dataclass(frozen=True, slots=True)
-class SayTable:
-    """Results of every row of a set; `governing` is the row told in full, or -1."""
-
-    number: int
-    worked: WorkedEach
-    columns: tuple[int, ...]
-    checks: tuple[str, ...]
-    governing: int
-
-
-@dataclass(frozen=True, slots=True)
-class SayUnknown:
-    """A value found so that both sides of an equation agree."""
-
-    number: int
-    worked: WorkedUnknown
-
-
-@dataclass(frozen=True, slots=True)
-class SayEquation:
-    """The equation at the value found, each side with its number."""
-
-    number: int
-    worked: WorkedUnknown
-
-
-@dataclass(frozen=True, slots=True)
-class SayBranch:
-    """The condition that chose a block."""
-
-    worked: WorkedBranches
-
-
-@dataclass(frozen=True, slots=True)
-class SayCheck:
-    """A check in full."""
-
-    number: int
-    worked: WorkedCheck
-
-
-@dataclass(frozen=True, slots=True)
-class SayRequire:
-    """A requirement that was met."""
-
-    number: int
-    worked: WorkedRequire
-
-
-@dataclass(frozen=True, slots=True)
-class SayFigure:
-    """A figure."""
-
-    worked: WorkedFigure
-
-
-@dataclass(frozen=True, slots=True)
-class SayStop:
-    """Where the calculation stopped."""
-
-    number: int
-    stop: Stop
-
-
-Item: TypeAlias = (
-    SayGivens
-    | SayNone
-    | SayRows
-    | SayText
-    | SayHeading
-    | SayLine
-    | SayFormula
-    | SayMade
-    | SayTable
-    | SayUnknown
-    | SayEquation
-    | SayBranch
-    | SayCheck
-    | SayRequire
-    | SayFigure
-    | SayStop
+from calcreport.report.items import (
+    Item,
+    SayBranch,
+    SayCheck,
+    SayEquation,
+    SayFigure,
+    SayFormula,
+    SayGivens,
+    SayHeading,
+    SayLine,
+    SayMade,
+    SayNone,
+    SayRequire,
+    SayRows,
+    SayStop,
+    SayTable,
+    SayText,
+    SayUnknown,
+    Script,
 )
-
-
-@dataclass(frozen=True, slots=True)
-class Script:
-    """One calculation's items, and the line number that tells each value and each check."""
-
-    worked: Worked
-    items: tuple[Item, ...]
-    #: line number by (slot, key); rows told only in a table have the table's formula line
-    line_of: dict[tuple[int, Key], int]
-    #: line number by the identity of a worked check
-    check_line: dict[int, int]
 
 
 @dataclass(slots=True)

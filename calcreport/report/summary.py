@@ -13,6 +13,7 @@ from calcreport.report.digits import number_text
 from calcreport.report.display import unit_text
 from calcreport.report.forms import CalculationForms, is_size, side_unit
 from calcreport.report.fronts import RegisterEntry, counted
+from calcreport.report.items import Script
 from calcreport.report.model import (
     Block,
     Column,
@@ -27,7 +28,7 @@ from calcreport.report.model import (
     Words,
 )
 from calcreport.report.notation import Notation
-from calcreport.report.script import Script, severity
+from calcreport.report.script import severity
 
 CLOSING = "Computed demand does not exceed computed capacity for the checks listed"
 

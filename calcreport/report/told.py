@@ -19,6 +19,7 @@ from calcreport.core.units import ONE, Unit
 from calcreport.report.digits import Figure, number_text
 from calcreport.report.display import row_words, show_symbol, unit_text
 from calcreport.report.forms import CalculationForms, Opened, is_size, side_unit
+from calcreport.report.items import Script
 from calcreport.report.model import (
     Column,
     Formula,
@@ -34,9 +35,6 @@ from calcreport.report.notation import (
     reads_alike,
     relation,
     show_figure,
-)
-from calcreport.report.script import (
-    Script,
 )
 from calcreport.report.substitution import Printed, Substitution
 

@@ -9,7 +9,7 @@ from calcreport.calculate.model import GivenPairs, GivenRows, GivenValue, Key, L
 from calcreport.core.expression import Name, Node, Over, children
 from calcreport.report.digits import number_text
 from calcreport.report.forms import CalculationForms, link_place
-from calcreport.report.script import Script
+from calcreport.report.items import Script
 
 #: a tree deeper or longer than this is cut, and says so
 DEEPEST, LONGEST = 40, 400

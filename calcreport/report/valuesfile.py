@@ -13,7 +13,8 @@ from calcreport.core.units import ONE
 from calcreport.core.version import PROGRAM
 from calcreport.report.digits import number_text
 from calcreport.report.forms import CalculationForms, is_size, side_unit
-from calcreport.report.script import SayLine, SayTable, Script, gives_below
+from calcreport.report.items import SayLine, SayTable, Script
+from calcreport.report.script import gives_below
 
 FORMAT = 1
 

@@ -48,7 +48,7 @@ def make_parser() -> argparse.ArgumentParser:
     schedule = commands.add_parser("schedule", help="a row a member, for the schedule on the drawings")
     schedule.add_argument("project", metavar="PROJECT", help="a project file, or a folder that holds project.yaml")
     schedule.add_argument("-o", "--output", metavar="FILE", help="a .csv or .xlsx; the terminal if not told")
-    _reconcile(commands.add_parser("reconcile", help="hold a schedule taken from the drawings against the calculations"))
+    _reconcile(commands.add_parser("reconcile", help="hold a schedule from the drawings against the calculations"))
     explain = commands.add_parser("explain", help="tell what a problem means and how to mend it")
     explain.add_argument("slug", nargs="?", metavar="SLUG")
     return parser

@@ -7,6 +7,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable
+from itertools import pairwise
 
 from calcreport.calculate.exact import holds_exactly
 from calcreport.calculate.model import NoValue, Test, Values, Work
@@ -199,7 +200,7 @@ def _linear(node: Over, where: Compare, body: Work, otherwise: Work | None, sets
         values.open[index] = before
         points.sort()
         slack = TIE * abs(place)
-        for (x1, y1), (x2, y2) in zip(points, points[1:], strict=False):
+        for (x1, y1), (x2, y2) in pairwise(points):
             if x1 - slack <= place <= x2 + slack:
                 return y1 if x2 == x1 else y1 + (y2 - y1) * (place - x1) / (x2 - x1)
         if otherwise is None:

@@ -2,6 +2,7 @@
 
 `Calculation`, `Plan` and `Values` in, `Worked` out. A requirement not met, or a formula without a value,
 stops this calculation with words; the checks it did not reach are not evaluated.
+Kept in one: one run, a method for each kind of line.
 """
 
 from __future__ import annotations
@@ -9,7 +10,8 @@ from __future__ import annotations
 import math
 from dataclasses import dataclass
 
-from calcreport.calculate.compile import condition, formula, holds
+from calcreport.calculate.compile import condition, formula
+from calcreport.calculate.judging import comparisons, deciding, kind_of, ratio_of
 from calcreport.calculate.model import (
     Calculation,
     Comparison,
@@ -45,7 +47,7 @@ from calcreport.calculate.model import (
     WorkedText,
     WorkedUnknown,
 )
-from calcreport.core.expression import Compare, Condition, Expression, Logic, Name, Not, Number
+from calcreport.core.expression import Compare, Condition, Expression, Name
 from calcreport.core.source import Citation, Span
 from calcreport.methods.roots import NoRoot, find_root
 
@@ -103,7 +105,9 @@ class Program:
             reached = {id(check.line) for check in checks}
             left = [check for check in _planned_checks(self.plan.lines) if id(check) not in reached]
             checks += [_not_evaluated(check, stop) for check in left]
-        return Worked(calculation, self.plan, values, tuple(lines), tuple(checks), stop, fingerprint, self.work, self.test)
+        return Worked(
+            calculation, self.plan, values, tuple(lines), tuple(checks), stop, fingerprint, self.work, self.test
+        )
 
     def work(self, node: Expression) -> Work:
         """Return a formula's callable, compiled at its first use."""
@@ -123,22 +127,10 @@ class Program:
         """Return the comparisons of a condition, compiled at their first use."""
         found = self._sides.get(id(node))
         if found is None:
-            compares = _comparisons(node)
+            compares = comparisons(node)
             found = tuple(_Side(c, formula(c.left, self.sets), formula(c.right, self.sets)) for c in compares)
             self._sides[id(node)] = found
         return found
-
-
-def _comparisons(node: Condition) -> tuple[Compare, ...]:
-    match node:
-        case Compare():
-            return (node,)
-        case Logic(_, left, right):
-            return _comparisons(left) + _comparisons(right)
-        case Not(body):
-            return _comparisons(body)
-        case _:
-            return ()
 
 
 def _planned_checks(lines: tuple[PlannedLine, ...]) -> list[PlannedCheck]:
@@ -242,7 +234,7 @@ class _Run:
         return key
 
     def gives(self, line: PlannedGives) -> WorkedLine:
-        for number, arm in enumerate(line.arms):
+        for number, arm in enumerate(line.arms):  # noqa: B007
             if arm.when is None or self.holds(arm.when, line.span, line.cite):
                 break
         node = arm.formula
@@ -261,7 +253,7 @@ class _Run:
     # -------------------------------------------------------- blocks
 
     def branches(self, line: PlannedBranches) -> WorkedLine:
-        for number, arm in enumerate(line.arms):
+        for number, arm in enumerate(line.arms):  # noqa: B007
             if arm.when is None or self.holds(arm.when, line.span, Citation("", "")):
                 break
         for other, passed in enumerate(line.arms):
@@ -388,14 +380,14 @@ class _Run:
     def check(self, line: PlannedCheck) -> WorkedLine:
         ok = self.holds(line.holds, line.span, line.cite)
         sides = self.compared(line.holds, line.span, line.cite)
-        judged = [(_ratio(side), side) for side in sides]
-        chosen = _deciding(line.holds, judged, self.values)
+        judged = [(ratio_of(side), side) for side in sides]
+        chosen = deciding(line.holds, judged, self.values)
         ratio, side = chosen if chosen is not None else (None, None)
         reason = ""
         verdict: Verdict = "OK" if ok else "NG"
         if side is not None and ratio is None and side.test.op not in ("=", "!="):
             reason = "no ratio: the capacity is not above zero"
-        kind: Kind = _kind(side.test) if side is not None else "condition"
+        kind: Kind = kind_of(side.test) if side is not None else "condition"
         worked = WorkedCheck(line, verdict, side, ratio, kind, reason, None, self.opened)
         self.checks.append(worked)
         return worked
@@ -403,50 +395,6 @@ class _Run:
 
 def _no_work(values: Values) -> float:
     raise NoValue("a word has no number")
-
-
-def _kind(test: Compare) -> Kind:
-    """Name the kind of check a comparison makes."""
-    if test.op in ("<", "<="):
-        if isinstance(test.right, Number) and test.right.value == 1 and isinstance(test.left, Name):
-            return "ratio"
-        return "demand / capacity"
-    return "required / provided" if test.op in (">", ">=") else "condition"
-
-
-def _ratio(side: Comparison) -> float | None:
-    """Return demand over capacity; None where there is none to show."""
-    if side.test.op in ("<", "<="):
-        demand, capacity = side.left, side.right
-    elif side.test.op in (">", ">="):
-        demand, capacity = side.right, side.left
-    else:
-        return None
-    if capacity > 0:
-        return max(demand, 0.0) / capacity
-    return 0.0 if demand <= 0 and demand <= capacity else None
-
-
-def _deciding(
-    node: Condition, judged: list[tuple[float | None, Comparison]], values: Values
-) -> tuple[float | None, Comparison] | None:
-    """Return the comparison that decides: of either route the easier, of joint demands the harder."""
-    match node:
-        case Compare():
-            return next(pair for pair in judged if pair[1].test is node)
-        case Logic(op, left, right):
-            found = [p for p in (_deciding(left, judged, values), _deciding(right, judged, values)) if p is not None]
-            if not found:
-                return None
-
-            def rank(pair: tuple[float | None, Comparison]) -> tuple[bool, float]:
-                side = pair[1]
-                failed = not holds(side.test, side.left, side.right, values)
-                return failed, math.inf if pair[0] is None else pair[0]
-
-            return min(found, key=rank) if op == "or" else max(found, key=rank)
-        case _:
-            return None
 
 
 def _fits(name: str, pattern: str, listed: tuple[str, ...]) -> bool:

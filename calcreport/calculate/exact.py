@@ -7,6 +7,7 @@ from __future__ import annotations
 
 import math
 from fractions import Fraction
+from itertools import pairwise
 
 from calcreport.calculate.model import Key, NoValue, Values
 from calcreport.core.expression import (
@@ -200,7 +201,7 @@ def _over(node: Over, values: Values) -> Fraction:
 
 
 def _between(points: list[tuple[Fraction, Fraction]], at: Fraction, node: Over, values: Values) -> Fraction:
-    for (x1, y1), (x2, y2) in zip(points, points[1:], strict=False):
+    for (x1, y1), (x2, y2) in pairwise(points):
         if x1 <= at <= x2:
             return y1 if x1 == x2 else y1 + (y2 - y1) * (at - x1) / (x2 - x1)
     assert node.otherwise is not None

@@ -1,6 +1,7 @@
 """What calculating hands on: every value, the arm each line took, every check, and where a calculation stopped.
 
 `Values` is filled while a calculation is worked and only read afterwards; the other records are frozen.
+Kept in one though long: records that are read together.
 """
 
 from __future__ import annotations

@@ -149,9 +149,7 @@ def _hold_links(
     return good
 
 
-def _fits(
-    value: GivenValue, link: LinkedValue, source: Worked, place: tuple[int, Key], problems: Problems
-) -> bool:
+def _fits(value: GivenValue, link: LinkedValue, source: Worked, place: tuple[int, Key], problems: Problems) -> bool:
     """Hold a linked value against the declaration it fills: dimension or words, count, range."""
     given, found = value.given, source.values.get(*place)
     wanted, symbol = given.symbol, source.plan.slots[place[0]].symbol
@@ -162,7 +160,9 @@ def _fits(
             return True
         expected = listed(words) if words else dimension_words(wanted.unit.dimension) if wanted and wanted.unit else ""
         shown = found if isinstance(found, str) else "a quantity"
-        problems.add("unit-mismatch", link.span, f"{name} is not what `{given.name}` takes", expected=expected, found=shown)
+        problems.add(
+            "unit-mismatch", link.span, f"{name} is not what `{given.name}` takes", expected=expected, found=shown
+        )
         return False
     if wanted.unit.dimension != symbol.unit.dimension:
         problems.add(
@@ -175,7 +175,9 @@ def _fits(
         return False
     exact = exact_or_float(*place, source.values)
     if wanted.kind == "count" and (exact < 0 or exact.denominator != 1):
-        problems.add("not-a-number", link.span, f"`{given.name}` is a count", expected="a whole number, 0 or more", found=name)
+        problems.add(
+            "not-a-number", link.span, f"`{given.name}` is a count", expected="a whole number, 0 or more", found=name
+        )
         return False
     if given.range is None or given.range.holds(exact):
         return True

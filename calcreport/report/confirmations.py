@@ -1,6 +1,7 @@
 """Which lines must confirm which printed figures: every worked line, comparison and ratio of a project.
 
 `WorkedProject` in, solved `CalculationForms` out by mark.
+Kept in one though long: one walk over all worked lines.
 """
 
 from __future__ import annotations

@@ -153,7 +153,10 @@ def criteria(project: WorkedProject) -> tuple[Block, ...]:
             for mark, properties in facts.materials
         ]
         blocks.append(Table(columns, tuple(table)))
-    caution = "The codes are taken in the editions named. Amendments of the authority having jurisdiction are not included unless listed above."
+    caution = (
+        "The codes are taken in the editions named. Amendments of the authority having jurisdiction are not "
+        "included unless listed above."
+    )
     blocks.append(Paragraph((caution,), "caution"))
     return tuple(blocks)
 
@@ -240,19 +243,20 @@ def disclosure(project: WorkedProject, evidence: tuple[str, ...]) -> tuple[Block
         (
             "Program. ",
             f"{PROGRAM}, without warranty of any kind. It reads the project files echoed in "
-            "appendix A and templates of design-code rules, works every formula in double precision, and prints formula, "
-            "substituted values and result.",
+            "appendix A and templates of design-code rules, works every formula in double precision, and prints "
+            "formula, substituted values and result.",
         ),
         (
             "Numbers. ",
             "Full precision is carried; rounding is for the eye. Verdicts come from unrounded values, and a "
-            "limit met exactly is OK. The printed inputs of a line, put into its printed formula, give its printed result.",
+            "limit met exactly is OK. The printed inputs of a line, put into its printed formula, give its printed "
+            "result.",
         ),
         (
             "Evidence. ",
             "Every template has a case file beside it: given values and expected results, each with the "
-            "publication or hand computation it is taken from. The program's tests run all of them. Evidence of this kind is "
-            "not an independent check of this package; a checker is another person.",
+            "publication or hand computation it is taken from. The program's tests run all of them. Evidence of this "
+            "kind is not an independent check of this package; a checker is another person.",
         ),
         (
             "Limits. ",

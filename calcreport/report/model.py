@@ -1,6 +1,7 @@
 """What a package says, in order: blocks of words, lines, tables and figures; formulas as trees.
 
 Nothing here knows pages, fonts or points. Made by `report.compose`, laid out by `layout`.
+Kept in one: records that are read together.
 """
 
 from __future__ import annotations
@@ -8,114 +9,48 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import Literal, TypeAlias
 
-# ---------------------------------------------------------------- formulas
-
-
-@dataclass(frozen=True, slots=True)
-class Letters:
-    """A run of characters of one style: a symbol's letters, a number, a unit, a word."""
-
-    text: str
-    #: 'italic' one-letter variables; 'upright' digits, units, function names and word subscripts
-    style: Literal["italic", "upright"] = "upright"
-
-
-@dataclass(frozen=True, slots=True)
-class Operator:
-    """A sign that takes its spacing from its kind, as in TeX: + = ( , and so on."""
-
-    text: str
-    kind: Literal["binary", "relation", "open", "close", "punctuation", "prefix"]
-
-
-@dataclass(frozen=True, slots=True)
-class Space:
-    """A gap: 'unit' between number and unit, 'thin' inside a product."""
-
-    kind: Literal["unit", "thin"]
-
-
-@dataclass(frozen=True, slots=True)
-class Row:
-    """Items side by side on one baseline."""
-
-    items: tuple[Formula, ...]
-
-
-@dataclass(frozen=True, slots=True)
-class Fraction:
-    """One thing over another with a rule between."""
-
-    above: Formula
-    below: Formula
-
-
-@dataclass(frozen=True, slots=True)
-class Root:
-    """A square root (no index) or an n-th root."""
-
-    body: Formula
-    index: Formula | None = None
-
-
-@dataclass(frozen=True, slots=True)
-class Script:
-    """A base with a subscript, a superscript, or both stacked (f'c has the prime above the c)."""
-
-    base: Formula
-    below: Formula | None = None
-    above: Formula | None = None
-
-
-@dataclass(frozen=True, slots=True)
-class Fence:
-    """A body between delimiters that grow with it; either may be '' (the open side of a brace)."""
-
-    opening: str
-    body: Formula
-    closing: str
-
-
-@dataclass(frozen=True, slots=True)
-class Stack:
-    """Rows under one another, left aligned: arguments of a long max or min, cases after a brace."""
-
-    rows: tuple[Formula, ...]
-
-
-@dataclass(frozen=True, slots=True)
-class Big:
-    """A large operator with what stands below and above it: a sum over a set, a maximum."""
-
-    sign: Formula
-    below: Formula | None = None
-    above: Formula | None = None
-
-
-Formula: TypeAlias = Letters | Operator | Space | Row | Fraction | Root | Script | Fence | Stack | Big
-
-
-# ---------------------------------------------------------------- words
-
-
-@dataclass(frozen=True, slots=True)
-class Strong:
-    """Words in the heavier face."""
-
-    text: str
-
-
-@dataclass(frozen=True, slots=True)
-class Reference:
-    """Words that lead to an anchor elsewhere in the package, such as '14' to 'B1.14'."""
-
-    text: str
-    target: str
-
-
-#: Running text: plain words, heavier words, inline formulas and references, in order.
-Words: TypeAlias = "tuple[str | Strong | Reference | Formula, ...]"
-
+from calcreport.report.formula_model import (
+    Big as Big,
+)
+from calcreport.report.formula_model import (
+    Fence as Fence,
+)
+from calcreport.report.formula_model import (
+    Formula as Formula,
+)
+from calcreport.report.formula_model import (
+    Fraction as Fraction,
+)
+from calcreport.report.formula_model import (
+    Letters as Letters,
+)
+from calcreport.report.formula_model import (
+    Operator as Operator,
+)
+from calcreport.report.formula_model import (
+    Reference as Reference,
+)
+from calcreport.report.formula_model import (
+    Root as Root,
+)
+from calcreport.report.formula_model import (
+    Row as Row,
+)
+from calcreport.report.formula_model import (
+    Script as Script,
+)
+from calcreport.report.formula_model import (
+    Space as Space,
+)
+from calcreport.report.formula_model import (
+    Stack as Stack,
+)
+from calcreport.report.formula_model import (
+    Strong as Strong,
+)
+from calcreport.report.formula_model import (
+    Words as Words,
+)
 
 # ---------------------------------------------------------------- blocks
 

@@ -1,6 +1,7 @@
 """Expressions as formula trees with symbols, as the trade sets them.
 
 Planned trees in, `report.model` formulas out. `report.substitution` prints the same trees with numbers.
+Kept in one though long: one printer, a method for each node.
 """
 
 from __future__ import annotations

@@ -1,6 +1,7 @@
 """The check summary: what needs eyes first, then a row a member, then every check and limit state.
 
 Worked calculations with forms in, blocks and counts out.
+Kept in one though long: one sheet and its counts.
 """
 
 from __future__ import annotations
@@ -134,7 +135,8 @@ class SummarySheets:
         counts = (
             f"{counted(summary.calculations, 'calculation')}, {counted(summary.checks, 'check')}.  ",
             Strong(f"{len(summary.failed)} NG"),
-            f",  {summary.not_evaluated} not evaluated,  {counted(len(summary.not_covered), 'limit state')} not covered.",
+            f",  {summary.not_evaluated} not evaluated,  "
+            f"{counted(len(summary.not_covered), 'limit state')} not covered.",
         )
         blocks: list[Block] = [Paragraph(counts, "plain")]
         blocks += self.attention(summary, entries)
@@ -331,7 +333,8 @@ def summary_lines(project: WorkedProject, forms: dict[str, CalculationForms], su
         lines.append(f"{mark:<8} {ratio:>8}  {check.verdict:<3} {worked.calculation.title}: {check.line.name}")
     lines.append(
         f"{counted(summary.checks, 'check')}: {len(summary.failed)} NG, {summary.not_evaluated} not evaluated; "
-        f"{counted(len(summary.not_covered), 'limit state')} not covered, {counted(summary.open_assumptions, 'assumption')} to be verified"
+        f"{counted(len(summary.not_covered), 'limit state')} not covered, "
+        f"{counted(summary.open_assumptions, 'assumption')} to be verified"
     )
     lines.append(_closing(summary))
     return lines

@@ -50,8 +50,9 @@ class Agreement:
     def words(self) -> tuple[str, ...]:
         """What a disclosure says of it: the count and the largest difference, then every line that differs."""
         first = (
-            f"{self.values} values and {self.verdicts} verdicts were worked again from the project file's own spellings, "
-            "in thirty-digit arithmetic with quantities and another library's unit factors; only the formulas are shared. "
+            f"{self.values} values and {self.verdicts} verdicts were worked again from the project file's own "
+            "spellings, in thirty-digit arithmetic with quantities and another library's unit factors; only the "
+            "formulas are shared. "
             f"Largest relative difference {_power_of_ten(self.largest)}; "
             f"{len(self.differences) or 'none'} beyond one part in 1,000,000,000."
         )

@@ -2,6 +2,7 @@
 
 A plan and the given values as typed in, values with units and verdicts out. An interpreter of its own: no closure,
 no base unit and no tie rule of the first path.
+Kept in one though long: one interpreter, a method for each node and line.
 """
 
 from __future__ import annotations

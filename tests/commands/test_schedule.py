@@ -29,8 +29,7 @@ ROW = ["T1", "=Trial", "3 in", "", "ratio", "0.750", "OK", "width 3 in."]
 
 
 def _make(folder: Path) -> Path:
-    return make(folder, PROJECT.replace("title: Trial,", "title: =Trial,").replace("title: =Trial,", "title: Trial,", 1),
-                TEMPLATE)  # fmt: skip
+    return make(folder, PROJECT.replace("mark: T1, title: Trial", "mark: T1, title: =Trial"), TEMPLATE)
 
 
 def test_on_the_terminal(tmp_path: Path) -> None:

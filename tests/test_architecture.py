@@ -47,9 +47,10 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
     ("history", ("history",)),
     ("report", (
         "report", "report.calculation", "report.compose", "report.confirmations", "report.digits", "report.display",
-        "report.drawings", "report.families", "report.formula_model", "report.forms", "report.fronts", "report.given_blocks",
-        "report.members", "report.model", "report.notation", "report.row_blocks", "report.items", "report.script",
-        "report.substitution", "report.summary", "report.told", "report.traced", "report.valuesfile",
+        "report.drawings", "report.families", "report.forms", "report.formula_model", "report.fronts",
+        "report.given_blocks", "report.items", "report.members", "report.model", "report.notation",
+        "report.row_blocks", "report.script", "report.substitution", "report.summary", "report.told", "report.traced",
+        "report.valuesfile",
     )),
     ("layout", (
         "layout", "layout.blocks", "layout.checks", "layout.cover", "layout.delimiters", "layout.drawing",
@@ -101,7 +102,7 @@ BANNED: dict[str, tuple[str, ...]] = {
     "eval": (), "compile": (), "__import__": (), "sympify": (), "parse_expr": (), "lambdify": (), "breakpoint": (),
     "input": (), "globals": (), "system": (), "popen": (),
     # records are made from the field names of this program's own classes
-    "exec": ("core.record",),
+    "exec": (),
     "import_module": ("core.late",),
     # the clock
     "now": (), "today": (), "time": (), "localtime": (), "gmtime": (), "perf_counter": (),

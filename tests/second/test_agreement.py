@@ -13,7 +13,7 @@ from calcreport.calculate import compile as compiled
 from calcreport.calculate import evaluate, handing
 from calcreport.calculate.model import Worked, WorkedProject
 from calcreport.commands.desk import Opened, open_project
-from calcreport.core import units
+from calcreport.core import quantity, units
 from calcreport.core.expression import Attach, Expression
 from calcreport.core.problems import Problems
 from calcreport.driver import make_plan, work
@@ -136,11 +136,17 @@ def test_without_a_fault_there_is_no_difference(folder: Path) -> None:
     assert agreement(folder).differences == ()
 
 
+def _forget() -> None:
+    """Let units and amounts be read anew."""
+    units.make_unit.cache_clear()
+    quantity._known.cache_clear()
+
+
 def _factor(patch: pytest.MonkeyPatch) -> None:
     table = dict(units._TABLE)
     table["ksi"] = (table["ksi"][0] * Fraction(1001, 1000), table["ksi"][1])
     patch.setattr(units, "_TABLE", table)
-    units.make_unit.cache_clear()
+    _forget()
 
 
 def _unit(patch: pytest.MonkeyPatch) -> None:
@@ -225,5 +231,5 @@ def test_a_planted_fault_is_found(fault: str, folder: Path, monkeypatch: pytest.
         try:
             found = agreement(folder)
         finally:
-            units.make_unit.cache_clear()
+            _forget()
     assert where in {difference.name for difference in found.differences}

@@ -73,7 +73,7 @@ def _row(dice: random.Random, beyond: F) -> str:
     """Return one row: `beyond` is by how much the demand exceeds, 1 for a tie."""
     h, b = F(dice.randint(40, 800), 8), F(dice.randint(5, 50))
     f, k = F(dice.randint(5, 150) * 100), F(dice.choice([45, 60, 75, 85, 90]), 100)
-    w, l = F(dice.randint(1, 400), 4), F(dice.randint(1, 80) * 12, 4)  # noqa: E741 - the span
+    w, l = F(dice.randint(1, 400), 4), F(dice.randint(1, 80) * 12, 4)
     q = F(dice.randint(1, 4000), 16)
     values = {
         "h": (h, "length"),

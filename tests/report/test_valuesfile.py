@@ -16,8 +16,8 @@ SCHEMA = Path(valuesfile.__file__).with_name("values.schema.json")
 
 @pytest.fixture(scope="module")
 def values(tmp_path_factory: pytest.TempPathFactory) -> dict:  # type: ignore[type-arg]
-    from io import StringIO
     from contextlib import redirect_stdout
+    from io import StringIO
 
     out = StringIO()
     with redirect_stdout(out):

@@ -6,11 +6,12 @@ In: a project folder or file. Out: `Proof`, all that the tests look at, small en
 from __future__ import annotations
 
 import os
-import shutil
 import subprocess
 import sys
 from dataclasses import dataclass, field
 from pathlib import Path
+
+import pypdfium2
 
 from .account import Account, Finding
 from .claims import examine
@@ -72,19 +73,15 @@ def look(proof: Proof, package: Package, most_pages: int) -> None:
         for sheet in wanted
         for text in out_of_order(package.reader.pages[sheet.index].extract_text(), sheet.lines, sheet.index)
     ]
-    texts = _pdftotext(package.path)
-    if texts is not None:
-        proof.order["pdftotext"] = [
-            f"{sheet.name} {text}"
-            for sheet in package.sheets
-            for text in out_of_order(texts[sheet.index], sheet.lines, sheet.index)
-        ]
+    texts = _by_pdfium(package.path)
+    proof.order["pdfium"] = [
+        f"{sheet.name} {text}"
+        for sheet in package.sheets
+        for text in out_of_order(texts[sheet.index], sheet.lines, sheet.index)
+    ]
 
 
-def _pdftotext(path: Path) -> list[str] | None:
-    """Return the text of every page in the order of its content, as poppler takes it out; None without poppler."""
-    program = shutil.which("pdftotext")
-    if program is None:
-        return None
-    done = subprocess.run([program, "-raw", str(path), "-"], capture_output=True, text=True, check=True)
-    return done.stdout.split("\f")
+def _by_pdfium(path: Path) -> list[str]:
+    """Return the text of every page in the order of its content, as a second engine takes it out."""
+    document = pypdfium2.PdfDocument(path)
+    return [page.get_textpage().get_text_range() for page in document]

@@ -38,9 +38,7 @@ class FontFile:
         count = unpack_from(">H", data, 4)[0]
         entries = (unpack_from(">4s4xII", data, 12 + 16 * i) for i in range(count))
         #: tag to (offset, length)
-        self.tables: dict[str, tuple[int, int]] = {
-            tag.decode("latin-1"): (at, size) for tag, at, size in entries
-        }
+        self.tables: dict[str, tuple[int, int]] = {tag.decode("latin-1"): (at, size) for tag, at, size in entries}
         if "glyf" not in self.tables:
             raise ValueError("the font file has no TrueType outlines")
         head = self.offset("head")
@@ -82,9 +80,7 @@ class FontFile:
         found = self._bounds.get(glyph)
         if found is None:
             start, end = self.outline_range(glyph)
-            found = self._bounds[glyph] = (
-                unpack_from(">4h", self.data, start + 2) if end > start else (0, 0, 0, 0)
-            )
+            found = self._bounds[glyph] = unpack_from(">4h", self.data, start + 2) if end > start else (0, 0, 0, 0)
         return found
 
     def outline_range(self, glyph: int) -> tuple[int, int]:
@@ -107,11 +103,7 @@ class FontFile:
             flags, part = unpack_from(">2H", self.data, at)
             found.append(part)
             # words or bytes for the offsets, then a scale, two scales or a 2 x 2 matrix
-            at += (
-                4
-                + (4 if flags & 1 else 2)
-                + (2 if flags & 8 else 4 if flags & 0x40 else 8 if flags & 0x80 else 0)
-            )
+            at += 4 + (4 if flags & 1 else 2) + (2 if flags & 8 else 4 if flags & 0x40 else 8 if flags & 0x80 else 0)
             if not flags & 0x20:
                 return tuple(found)
 
@@ -167,10 +159,7 @@ class FontFile:
         """Read last code, first code and first glyph of every range of the widest Unicode map."""
         cmap = self.offset("cmap")
         count = unpack_from(">H", self.data, cmap + 2)[0]
-        maps = {
-            (p, e): at
-            for p, e, at in (unpack_from(">2HI", self.data, cmap + 4 + 8 * i) for i in range(count))
-        }
+        maps = {(p, e): at for p, e, at in (unpack_from(">2HI", self.data, cmap + 4 + 8 * i) for i in range(count))}
         if (3, 10) in maps:
             at = cmap + maps[3, 10]
             size = unpack_from(">I", self.data, at + 12)[0]
@@ -182,9 +171,7 @@ class FontFile:
         """Read a map of 16-bit codes (format 4) as ranges."""
         size = unpack_from(">H", self.data, at + 6)[0] // 2
         ends = unpack_from(f">{size}H", self.data, at + 14)
-        starts, deltas, offsets = (
-            unpack_from(f">{size}H", self.data, at + 16 + 2 * size * k) for k in (1, 2, 3)
-        )
+        starts, deltas, offsets = (unpack_from(f">{size}H", self.data, at + 16 + 2 * size * k) for k in (1, 2, 3))
         ranges: list[tuple[int, int, int]] = []
         for i in range(size):
             if not offsets[i]:

@@ -43,16 +43,12 @@ def brackets(*items: Formula | str) -> Fence:
 
 
 A, B, C, D, H, PHI, LAMBDA = (variable(letter) for letter in "abcdhφλ")
-A_S, F_Y, M_N, B_W, D_T = (
-    symbol(*pair) for pair in (("A", "s"), ("f", "y"), ("M", "n"), ("b", "w"), ("d", "t"))
-)
+A_S, F_Y, M_N, B_W, D_T = (symbol(*pair) for pair in (("A", "s"), ("f", "y"), ("M", "n"), ("b", "w"), ("d", "t")))
 F_C, EPS_T, V_C = symbol("f", "c", "′"), symbol("ε", "t"), symbol("V", "c")
 HALF_A = Fraction(A, Letters("2"))
 
 MOMENT = row(M_N, EQUALS, A_S, THIN, F_Y, THIN, brackets(D, MINUS, HALF_A))
-BLOCK = row(
-    A, EQUALS, Fraction(row(A_S, THIN, F_Y), row("0.85", THIN, F_C, THIN, B)), EQUALS, "4.902", UNIT, "in."
-)
+BLOCK = row(A, EQUALS, Fraction(row(A_S, THIN, F_Y), row("0.85", THIN, F_C, THIN, B)), EQUALS, "4.902", UNIT, "in.")
 SHEAR = row(V_C, EQUALS, "2", THIN, LAMBDA, THIN, Root(F_C), THIN, B_W, THIN, D)
 STRAIN = row(EPS_T, EQUALS, Fraction(row("0.003", THIN, brackets(D_T, MINUS, C)), C), EQUALS, "0.01085")
 CASES = row(

@@ -50,9 +50,7 @@ def runs(box: Box) -> list[Run]:
     found = []
     for item, x, y in placed(box):
         if isinstance(item, Run):
-            found.append(
-                Run(x + item.x, y + item.y, item.face, item.size, item.glyphs, item.text, item.shifts)
-            )
+            found.append(Run(x + item.x, y + item.y, item.face, item.size, item.glyphs, item.text, item.shifts))
     return found
 
 

@@ -113,9 +113,7 @@ def test_gaps_of_a_relation_a_binary_sign_and_a_comma(formulas: Formulas) -> Non
 
 
 @pytest.mark.parametrize("before", [(), (EQUALS,), (Operator("(", "open"),), (COMMA,)])
-def test_a_minus_with_nothing_to_take_from_is_a_sign(
-    formulas: Formulas, before: tuple[Operator, ...]
-) -> None:
+def test_a_minus_with_nothing_to_take_from_is_a_sign(formulas: Formulas, before: tuple[Operator, ...]) -> None:
     sign = formulas.box(row(*before, MINUS, "5"), SIZE)
     as_prefix = formulas.box(row(*before, Operator("−", "prefix"), "5"), SIZE)
     assert sign == as_prefix
@@ -164,9 +162,7 @@ def test_the_rule_of_a_fraction_is_at_the_axis(formulas: Formulas, style: Formul
 
 
 @pytest.mark.parametrize(("style", "size"), [("text", 8.5), ("display", 10.0)])
-def test_parts_of_a_fraction_are_centred_and_keep_clear(
-    formulas: Formulas, style: FormulaStyle, size: float
-) -> None:
+def test_parts_of_a_fraction_are_centred_and_keep_clear(formulas: Formulas, style: FormulaStyle, size: float) -> None:
     above, below = runs(formulas.box(Fraction(Letters("1"), Letters("1,000")), SIZE, style))
     assert above.size == below.size == size
     assert above.x + advance("1", size) / 2 == pytest.approx(below.x + advance("1,000", size) / 2)
@@ -322,10 +318,7 @@ def test_a_brace_taller_than_any_in_the_font_is_put_together(formulas: Formulas)
     # only the topmost carries the sign as text
     assert [p.text for p in pieces] == ["{", *["\u200b"] * (len(pieces) - 1)]
     glyf = font()["glyf"]
-    spans = [
-        (p.y - glyf[name_of(p.glyphs[0])].yMax / 100, p.y - glyf[name_of(p.glyphs[0])].yMin / 100)
-        for p in pieces
-    ]
+    spans = [(p.y - glyf[name_of(p.glyphs[0])].yMax / 100, p.y - glyf[name_of(p.glyphs[0])].yMin / 100) for p in pieces]
     # pieces lie over one another, and the whole is centred on the axis
     assert all(lower[0] < upper[1] for upper, lower in pairwise(spans))
     assert (spans[0][0] + spans[-1][1]) / 2 == pytest.approx(-constant("AxisHeight"), abs=0.03)
@@ -361,9 +354,7 @@ def test_limits_of_a_sum_are_centred_under_and_over_it(formulas: Formulas) -> No
 
 @pytest.mark.parametrize("style", ["text", "display"])
 @pytest.mark.parametrize("name", ALL)
-def test_no_ink_lies_over_other_ink_or_outside_the_box(
-    formulas: Formulas, name: str, style: FormulaStyle
-) -> None:
+def test_no_ink_lies_over_other_ink_or_outside_the_box(formulas: Formulas, name: str, style: FormulaStyle) -> None:
     box = formulas.box(ALL[name], SIZE, style)
     assert overlaps(box) == []
     assert outside(box) == []

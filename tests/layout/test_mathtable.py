@@ -32,9 +32,7 @@ def test_constants(table: MathTable, font: TTFont) -> None:
 def test_italics_corrections(table: MathTable, font: TTFont) -> None:
     info = font["MATH"].table.MathGlyphInfo.MathItalicsCorrectionInfo
     values = dict(zip(info.Coverage.glyphs, (v.Value for v in info.ItalicsCorrection), strict=True))
-    assert [table.italics(i) for i in range(6000)] == [
-        values.get(name, 0) for name in font.getGlyphOrder()[:6000]
-    ]
+    assert [table.italics(i) for i in range(6000)] == [values.get(name, 0) for name in font.getGlyphOrder()[:6000]]
 
 
 def test_cut_ins_at_all_heights(table: MathTable, font: TTFont) -> None:

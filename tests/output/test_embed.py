@@ -32,8 +32,7 @@ def test_a_subset_is_a_font_with_the_same_outlines_and_advances(fonts: Fonts, fa
         whole_set[whole.getGlyphName(glyph)].draw(expected)
         names = {whole.getGlyphName(i): part.getGlyphName(i) for i in range(part["maxp"].numGlyphs)}
         renamed = [
-            (verb, (names[args[0]], *args[1:]) if verb == "addComponent" else args)
-            for verb, args in expected.value
+            (verb, (names[args[0]], *args[1:]) if verb == "addComponent" else args) for verb, args in expected.value
         ]
         assert drawn.value == renamed
         assert part["hmtx"][part.getGlyphName(glyph)] == whole["hmtx"][whole.getGlyphName(glyph)]

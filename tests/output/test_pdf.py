@@ -134,13 +134,7 @@ def test_text_comes_out_as_written(reader: PdfReader, text: str) -> None:
 
 def test_the_body_is_read_before_the_title_block(reader: PdfReader) -> None:
     text = words(reader)
-    assert (
-        text.index("17")
-        < text.index("φMn")
-        < text.index("Vc")
-        < text.index("Quarry Road")
-        < text.index("B1-1")
-    )
+    assert text.index("17") < text.index("φMn") < text.index("Vc") < text.index("Quarry Road") < text.index("B1-1")
 
 
 @pytest.mark.skipif(shutil.which("pdftotext") is None, reason="poppler is not installed")

@@ -20,7 +20,11 @@ def symbol_of(tokens: Sequence[Token]) -> str | None:
     if len(tokens) == 1 and tokens[0].kind == "root":
         return "√" + plain(tokens[0].parts[0])
     words = [token.text for token in tokens if token.kind == "word"]
-    if len(words) > 1 and all(len(word) > 2 for word in words) and all(t.kind == "word" or t.text == "-" for t in tokens):
+    if (
+        len(words) > 1
+        and all(len(word) > 2 for word in words)
+        and all(t.kind == "word" or t.text == "-" for t in tokens)
+    ):
         return plain(tokens)  # a name in words: `one-third excess`
     return None
 

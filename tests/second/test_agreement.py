@@ -161,7 +161,9 @@ def _unit(patch: pytest.MonkeyPatch) -> None:
 
 def _branch(patch: pytest.MonkeyPatch) -> None:
     real = compiled.holds
-    patch.setattr(compiled, "holds", lambda node, a, b, v: not real(node, a, b, v) if node.op == "<" else real(node, a, b, v))
+    patch.setattr(
+        compiled, "holds", lambda node, a, b, v: not real(node, a, b, v) if node.op == "<" else real(node, a, b, v)
+    )
 
 
 def _over(change: Callable[[str, list[float]], float]) -> Callable[[pytest.MonkeyPatch], None]:

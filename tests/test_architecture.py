@@ -96,7 +96,7 @@ SEES: dict[str, frozenset[str]] = {
 #: libraries, each behind its one address
 LIBRARIES = {"yaml": "read.nodes"}
 #: libraries that core.late loads by name when they are needed, and those the program does without
-LATE = ("sympy", "pint", "mpmath", "scipy", "reportlab", "fontTools", "openpyxl")
+LATE = ("sympy", "pint", "mpmath", "scipy", "reportlab", "fontTools", "openpyxl", "xlsxwriter")
 #: names that must not be called, with the modules where one may be and why
 BANNED: dict[str, tuple[str, ...]] = {
     "eval": (), "compile": (), "__import__": (), "sympify": (), "parse_expr": (), "lambdify": (), "breakpoint": (),

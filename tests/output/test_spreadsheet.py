@@ -5,6 +5,7 @@ from __future__ import annotations
 import csv
 import io
 from pathlib import Path
+from zipfile import ZipFile
 
 import pytest
 from hypothesis import given, settings
@@ -72,6 +73,9 @@ def test_the_same_rows_give_the_same_bytes() -> None:
     data = xlsx_bytes(ROWS, "Schedule")
     assert data == xlsx_bytes(ROWS, "Schedule")
     assert data.startswith(XLSX_MARK)
+    with ZipFile(io.BytesIO(data)) as archive:
+        assert {part.date_time for part in archive.infolist()} == {(2000, 1, 1, 0, 0, 0)}
+        assert b"2000-01-01T00:00:00Z" in archive.read("docProps/core.xml")
 
 
 def test_characters_xml_has_no_place_for_are_dropped() -> None:

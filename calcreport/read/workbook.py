@@ -9,8 +9,9 @@ from __future__ import annotations
 import re
 import warnings
 import zlib
+from contextlib import redirect_stdout
 from datetime import date, time, timedelta
-from io import BytesIO
+from io import BytesIO, StringIO
 from typing import Any
 from xml.etree.ElementTree import ParseError
 from xml.parsers.expat import ExpatError, ParserCreate
@@ -58,28 +59,35 @@ class Grid:
 
 def read_workbook(data: bytes, file: Scalar, sheet: Scalar | None, problems: Problems) -> Grid | None:
     """Return the named sheet, or the only one; None after adding why it cannot be read."""
-    try:
-        found = _inspect(data)
-        if isinstance(found, str):
-            _refuse(file, found, problems)
-            return None
-        with warnings.catch_warnings():
-            warnings.simplefilter("ignore")
-            book = _load(data, values=True)
-            chosen = _choose(book, file, sheet, problems)
-            if chosen is None:
-                return None
-            formulas = _load(data, values=False)[chosen.title] if found else None
-            large = _too_large(chosen)
-            if large:
-                problems.add("file-too-large", (sheet or file).span, "the sheet covers too many cells",
-                             expected=f"{_MOST_CELLS:,} cells at most", found=large,
-                             hint="delete what stands below and beside the table, formats too")  # fmt: skip
-                return None
-            return _grid(chosen, formulas)
-    except _DAMAGE as error:
-        _refuse(file, f"a damaged file ({type(error).__name__})", problems)
+    opened = _open(data)
+    if isinstance(opened, str):
+        _refuse(file, opened, problems)
         return None
+    book, formulas = opened
+    chosen = _choose(book, file, sheet, problems)
+    if chosen is None:
+        return None
+    large = _too_large(chosen)
+    if large:
+        problems.add("file-too-large", (sheet or file).span, "the sheet covers too many cells",
+                     expected=f"{_MOST_CELLS:,} cells at most", found=large,
+                     hint="delete what stands below and beside the table, formats too")  # fmt: skip
+        return None
+    return _grid(chosen, formulas and formulas[chosen.title])
+
+
+def _open(data: bytes) -> tuple[Any, Any] | str:
+    """Return the workbook with its cached values, and with its formulas if it has any; or why it is refused."""
+    # the library tells of some damage by warnings, and of some on standard output, where values and JSON go
+    with warnings.catch_warnings(), redirect_stdout(StringIO()):
+        warnings.simplefilter("ignore")
+        try:
+            found = _inspect(data)
+            if isinstance(found, str):
+                return found
+            return _load(data, values=True), _load(data, values=False) if found else None
+        except _DAMAGE as error:
+            return f"a damaged file ({type(error).__name__})"
 
 
 def _refuse(file: Scalar, found: str, problems: Problems) -> None:
@@ -188,12 +196,12 @@ def _grid(sheet: Any, formulas: Any) -> Grid:
         for number in range(area.min_row, area.max_row + 1):
             grid.flaws.setdefault(number, {}).update(dict.fromkeys(across, f"merged cells {area}"))
     grid.hidden_rows = frozenset(n for n, d in sheet.row_dimensions.items() if d.hidden or d.height == 0)
-    grid.hidden_columns = frozenset(
-        index - 1
-        for found in sheet.column_dimensions.values()
-        if found.hidden or found.width == 0
-        for index in range(found.min, min(found.max, sheet.max_column) + 1)
-    )
+    hidden: set[int] = set()
+    for found in sheet.column_dimensions.values():
+        found.reindex()  # a width that names no last column is for its own alone
+        if found.hidden or found.width == 0:
+            hidden.update(range(found.min - 1, min(found.max, sheet.max_column)))
+    grid.hidden_columns = frozenset(hidden)
     return grid
 
 

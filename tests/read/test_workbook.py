@@ -246,6 +246,23 @@ def test_damaged_markup_ends_in_a_problem() -> None:
         assert (found is None) == bool(problems)
 
 
+def test_a_column_that_names_no_last_one_is_hidden_alone(tmp_path: Path) -> None:
+    data = _changed(book(), b"<sheetData>", b'<cols><col min="2" hidden="1" width="9"/></cols><sheetData>')
+    grid = read_workbook(data, named("beams.xlsx"), named("Beams"), Problems())
+    assert grid is not None and grid.hidden_columns == {1}
+
+
+def test_what_the_library_says_of_damage_stays_off_standard_output(capsys: pytest.CaptureFixture[str]) -> None:
+    with zipfile.ZipFile(io.BytesIO(book())) as archive:
+        styles = archive.read("xl/styles.xml")
+    damaged = styles.replace(b'name="Normal" xfId="0"', b'name="Normal" xfId="77"')
+    assert damaged != styles
+    problems = Problems()
+    assert read_workbook(_with("xl/styles.xml", damaged), named("beams.xlsx"), named("Beams"), problems) is None
+    assert problems
+    assert capsys.readouterr().out == ""
+
+
 def test_the_text_made_of_a_sheet_is_echoed_row_by_row(tmp_path: Path) -> None:
     sheet, _ = read(tmp_path, book())
     assert sheet is not None

@@ -362,9 +362,11 @@ class _Run:
 
     # -------------------------------------------------------- judging
 
-    def require(self, line: PlannedRequire) -> WorkedLine:
+    def require(self, line: PlannedRequire) -> WorkedLine | None:
         if not self.holds(line.condition, line.span, line.cite):
             raise _Stopped(Stop(line.span, f"requirement not met: {line.says}", line.cite.printed))
+        if line.silent:
+            return None
         return WorkedRequire(line, self.compared(line.condition, line.span, line.cite), self.opened)
 
     def compared(self, node: Condition, at: Span, cite: Citation) -> tuple[Comparison, ...]:

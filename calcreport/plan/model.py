@@ -202,12 +202,13 @@ class PlannedCheck:
 
 @dataclass(frozen=True, slots=True)
 class PlannedRequire:
-    """A condition to go on."""
+    """A condition to go on; a `silent` one, the range of what a part is handed, is printed only where it stops."""
 
     condition: Condition
     says: str
     cite: Citation
     span: Span
+    silent: bool = False
 
 
 @dataclass(frozen=True, slots=True)

@@ -5,11 +5,16 @@ Part lines and name spaces in, planned lines for handed formulas out; adds `part
 
 from __future__ import annotations
 
-from calcreport.core.expression import Name
+from collections.abc import Iterator
+from decimal import Decimal
+from functools import reduce
+
+from calcreport.core.expression import Compare, Condition, IsGiven, Logic, Name, Not, Number
 from calcreport.core.problems import Problems, listed
-from calcreport.core.source import Citation
+from calcreport.core.quantity import Amount
+from calcreport.core.source import Citation, Span
 from calcreport.core.units import dimension_words
-from calcreport.plan.model import Given, PlannedArm, PlannedGives, PlannedLine, RowSet, Slot
+from calcreport.plan.model import Given, PlannedArm, PlannedGives, PlannedLine, PlannedRequire, RowSet, Slot
 from calcreport.plan.names import Names
 from calcreport.plan.space import Context, Known, Maker, Space
 from calcreport.read.model import PartBody, PartUse
@@ -66,7 +71,7 @@ class PartHander:
             for inner_name in _all_names(given):
                 if inner_name not in inner.names:
                     inner.told.add(inner_name)
-        return tuple(lines)
+        return (*lines, *_ranges(line, body, inner, at))
 
     def _hand_same(self, given: Given, name: Name, space: Space, inner: Space, at: Context) -> None:
         """Let a part see our value or set of the same name."""
@@ -162,3 +167,28 @@ def _all_names(given: Given) -> tuple[str, ...]:
     """Return the names a given brings along: its own, its columns', and those read off callouts."""
     columns = tuple(name for column in given.columns for name in _all_names(column))
     return (given.name, *(symbol.name for symbol, _ in given.gives), *columns)
+
+
+def _ranges(line: PartUse, body: PartBody, inner: Space, at: Context) -> Iterator[PlannedRequire]:
+    """Yield the ranges of the part's givens as requirements on what it is handed; columns keep those of their table."""
+    for given in body.given:
+        found, span = inner.names.get(given.name), line.span
+        if given.range is None or not isinstance(found, Slot) or not set(found.sets) <= set(at.open):
+            continue
+        name, limits = Name(given.name, span, found.index), given.range
+        sides: list[Condition] = []
+        if limits.low is not None:
+            sides.append(Compare(">" if limits.low_open else ">=", name, _number(limits.low, span), span))
+        if limits.high is not None:
+            sides.append(Compare("<" if limits.high_open else "<=", name, _number(limits.high, span), span))
+        held = reduce(lambda left, right: Logic("and", left, right, span), sides)
+        if given.if_none == "absent":
+            held = Logic("or", Not(IsGiven(name, span), span), held, span)
+        says = f"{body.title or line.name.name} covers {limits.words(given.name)}"
+        yield PlannedRequire(held, says, Citation("", ""), span, silent=True)
+
+
+def _number(amount: Amount, span: Span) -> Number:
+    """Return an amount as a number of a formula, in the unit it was typed in."""
+    value = amount.value / amount.unit.scale
+    return Number(value, str(Decimal(value.numerator) / Decimal(value.denominator)), amount.unit, span)

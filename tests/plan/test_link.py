@@ -77,6 +77,35 @@ def test_words_handed_to_a_part(tmp_path: Path, side: str) -> None:
     assert number(worked, "r") == (1 if side == "left" else 2)
 
 
+@pytest.mark.parametrize(
+    ("x", "handed", "found"),
+    [
+        ("4 in", "with: {y: '2*x'}", "OK"),  # 2(4) = 8: the closed end
+        ("4.000004 in", "with: {y: '2*x'}", "not evaluated"),
+        ("0 in", "with: {y: '2*x'}", "not evaluated"),  # the open end
+        ("8 in", "same: [y]", "OK"),
+        ("8.000008 in", "same: [y]", "not evaluated"),
+        ("-1 in", "same: [y]", "not evaluated"),
+    ],
+)
+def test_the_range_of_a_part_holds_what_it_is_handed(tmp_path: Path, x: str, handed: str, found: str) -> None:
+    parts = """\
+parts:
+  width:
+    given: {y: {range: '(0, 8 in]'}}
+    lines: [{check: it, holds: 'y <= 100 in', cite: statics}]
+given: {x: , side: }
+lines:
+"""
+    if handed.startswith("same"):
+        parts += "  - {gives: y, formula: x, cite: geometry}\n"
+    worked = work_small(tmp_path, SYMBOLS + parts + f"  - {{part: width, {handed}}}\n", f"{{x: {x}, side: left}}")
+    assert [check.verdict for check in worked.checks] == [found]
+    if found != "OK":
+        assert worked.stop is not None
+        assert worked.stop.words == "requirement not met: width covers y in (0, 8 in]"
+
+
 def _problems(folder: Path, lines: str) -> tuple[Problem, ...]:
     return work_or_problems(folder, SYMBOLS + PARTS + lines, "{x: 1 in, side: left}")[1]
 

@@ -257,21 +257,11 @@ class Composer:
         """Say where the calculation stopped and what that leaves undone."""
         words: Words = (Strong("Stopped: "), item.stop.words, ". Checks below this line are not evaluated.")
         blocks: list[Block] = [Paragraph(words, "caution")]
-        for check in self.worked.checks:
-            if check.verdict == "not evaluated":
-                blocks.append(
-                    CheckLine(
-                        item.number,
-                        "",
-                        check.line.name,
-                        self.shared.condition(check.line.holds),
-                        None,
-                        "",
-                        "not evaluated",
-                        (),
-                        SourceLane(check.line.cite.printed),
-                    )
-                )
+        for number, check in item.left:
+            shown = self.shared.condition(check.line.holds)
+            lane = SourceLane(check.line.cite.printed)
+            anchor = self.told.anchor(number)
+            blocks.append(CheckLine(number, anchor, check.line.name, shown, None, "", "not evaluated", (), lane))
         return tuple(blocks)
 
     def text(self, item: SayText) -> tuple[Block, ...]:

@@ -146,10 +146,10 @@ class SayFigure:
 
 @dataclass(frozen=True, slots=True)
 class SayStop:
-    """Where the calculation stopped."""
+    """Where the calculation stopped, and the checks it did not reach, each with its line number."""
 
-    number: int
     stop: Stop
+    left: tuple[tuple[int, WorkedCheck], ...]
 
 
 Item: TypeAlias = (

@@ -67,7 +67,10 @@ def write_script(worked: Worked) -> Script:
     _givens(writer)
     _lines(writer, worked.lines)
     if worked.stop is not None:
-        writer.items.append(SayStop(writer.next(), worked.stop))
+        unreached = (check for check in worked.checks if check.verdict == "not evaluated")
+        left = tuple((writer.next(), check) for check in unreached)
+        writer.check_line.update((id(check), number) for number, check in left)
+        writer.items.append(SayStop(worked.stop, left))
     return Script(worked, tuple(writer.items), writer.line_of, writer.check_line)
 
 

@@ -14,6 +14,7 @@ from calcreport.calculate.project import work_project
 from calcreport.core.problems import Problem, Problems
 from calcreport.core.source import Source
 from calcreport.core.world import World
+from calcreport.plan.closed import supply_closed
 from calcreport.plan.dimensions import hold_dimensions
 from calcreport.plan.link import link
 from calcreport.plan.model import Plan
@@ -80,7 +81,7 @@ def make_plan(template: Template, problems: Problems) -> Plan | None:
     before = problems.met
     plan = link(template, problems)
     hold_dimensions(plan, problems)
-    return plan if problems.met == before else None
+    return supply_closed(plan) if problems.met == before else None
 
 
 def lint_template(world: World, name: str) -> TemplateReport:

@@ -34,8 +34,8 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
         "read.variants", "read.words", "read.workbook",
     )),
     ("plan", (
-        "plan", "plan.dimensions", "plan.figures", "plan.formula_dimensions", "plan.link", "plan.made", "plan.model",
-        "plan.names", "plan.parts", "plan.proofs", "plan.space",
+        "plan", "plan.closed", "plan.dimensions", "plan.equations", "plan.figures", "plan.formula_dimensions", "plan.link",
+        "plan.made", "plan.model", "plan.names", "plan.parts", "plan.proofs", "plan.space",
     )),
     ("calculate", (
         "calculate", "calculate.cases", "calculate.compile", "calculate.evaluate", "calculate.exact",

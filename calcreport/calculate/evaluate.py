@@ -8,6 +8,7 @@ Kept in one: one run, a method for each kind of line.
 from __future__ import annotations
 
 import math
+from collections.abc import Callable
 from dataclasses import dataclass
 
 from calcreport.calculate.compile import condition, formula
@@ -18,6 +19,7 @@ from calcreport.calculate.model import (
     Kind,
     NoValue,
     Plan,
+    PlannedArm,
     PlannedBranches,
     PlannedCheck,
     PlannedEach,
@@ -59,6 +61,8 @@ _LINE_COST = 8
 
 #: sides apart by more than this share of the larger difference at the bounds have no root there
 JUMP = 1e-9
+#: a root by a formula leaves no more than this share; digits lost in a difference send it to the bracket
+FORMED = 1e-12
 _NOWHERE = Citation("", "")
 
 
@@ -293,14 +297,41 @@ class _Run:
 
         symbol = self.program.plan.slots[line.slot].symbol.name
         try:
-            root, larger = find_root(difference, low, high)
+            solved = self.closed(line, difference, low, high) if line.closed else None
+            root, larger = solved[:2] if solved else find_root(difference, low, high)
         except NoRoot as error:
             raise _Stopped(Stop(line.span, f"no {symbol} found: {error}", "")) from error
         left_over = abs(difference(root))
         if left_over > JUMP * larger:
             raise _Stopped(Stop(line.span, f"no {symbol} found: the two sides jump past one another", ""))
         key = self.values.key(line.slot)
-        return WorkedUnknown(line, key, worked, *sides, self.opened)
+        self.values.worked.pop((line.slot, key), None)
+        formed: WorkedGives | None = None
+        if solved:
+            node = self.values.worked[line.slot, key] = solved[2]
+            gives = PlannedGives(line.slot, (PlannedArm(None, node),), _NOWHERE, None, False, line.span)
+            formed = WorkedGives(gives, 0, key, self.opened, self.program.work(node))
+        return WorkedUnknown(line, key, worked, *sides, self.opened, formed)
+
+    def closed(
+        self, line: PlannedUnknown, difference: Callable[[float], float], low: float, high: float
+    ) -> tuple[float, float, Expression] | None:
+        """Return the one root between the bounds by its formula, if it stands the test of the equation itself."""
+        at_low, at_high = difference(low), difference(high)
+        if not min(at_low, at_high) < 0 < max(at_low, at_high):
+            return None
+        fits: list[tuple[float, Expression]] = []
+        for node in line.closed:
+            try:
+                root = self.program.work(node)(self.values)
+            except (NoValue, OverflowError):
+                continue
+            if min(low, high) < root < max(low, high):
+                fits.append((root, node))
+        larger = max(abs(at_low), abs(at_high))
+        if len(fits) != 1 or abs(difference(fits[0][0])) > FORMED * larger:
+            return None
+        return fits[0][0], larger, fits[0][1]
 
     def put(self, slot: int, value: float) -> None:
         """Store a value that no formula gave; what was worked exactly from an earlier one is forgotten."""

@@ -177,6 +177,8 @@ class WorkedUnknown:
     left: float
     right: float
     open: tuple[tuple[int, int], ...]
+    #: the formula that gave it, as a line; None where the root was bracketed
+    closed: WorkedGives | None = None
 
 
 @dataclass(frozen=True, slots=True)

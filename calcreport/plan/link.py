@@ -11,6 +11,7 @@ from dataclasses import replace
 
 from calcreport.core.expression import Name
 from calcreport.core.problems import Problems
+from calcreport.plan.equations import balanced
 from calcreport.plan.figures import plan_figure
 from calcreport.plan.made import plan_rows
 from calcreport.plan.model import (
@@ -252,8 +253,8 @@ class _Linker:
                 hint="put it after the `unknown`",
             )
         lines = self.lines(line.lines, space, at)
-        left, right = self.names.expression(line.left, space, at), self.names.expression(line.right, space, at)
-        return PlannedUnknown(slot.index, low, high, left, right, lines, line.span)
+        sides = balanced(self.names.expression(line.left, space, at), self.names.expression(line.right, space, at))
+        return PlannedUnknown(slot.index, low, high, *sides, lines, line.span)
 
     def table_column(self, name: Name, space: Space, at: Context) -> int:
         """Bind a column of a table, where a name given in some branches only may stand too."""

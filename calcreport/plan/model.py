@@ -177,6 +177,8 @@ class PlannedUnknown:
     right: Expression
     lines: tuple[PlannedLine, ...]
     span: Span
+    #: formulas of the roots, where the equation has them and nothing else depends on the value
+    closed: tuple[Expression, ...] = ()
 
 
 @dataclass(frozen=True, slots=True)

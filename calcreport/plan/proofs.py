@@ -48,7 +48,7 @@ def _prove(line: PlannedLine, plan: Plan, problems: Problems) -> None:
     match line:
         case PlannedGives(_, _, _, (left, right)):
             for arm in line.arms:
-                if not _is_small(arm.formula, left, right):
+                if not is_small(arm.formula, left, right):
                     problems.add(
                         "not-as-cited",
                         left.span,
@@ -72,7 +72,7 @@ def _prove(line: PlannedLine, plan: Plan, problems: Problems) -> None:
                 _prove(inner, plan, problems)
 
 
-def _is_small(*formulas: Expression) -> bool:
+def is_small(*formulas: Expression) -> bool:
     """Tell whether formulas are small enough to be put to SymPy: few nodes, literal powers, small in all."""
     nodes = [node for formula in formulas for node in walk(formula)]
     powers = [literal(node.right) for node in nodes if isinstance(node, Binary) and node.op == "^"]

@@ -5,7 +5,7 @@
 
 from __future__ import annotations
 
-from calcreport.core.expression import Binary, Compare
+from calcreport.core.expression import Binary, Compare, Name
 from calcreport.core.units import ONE
 from calcreport.report.digits import number_text
 from calcreport.report.drawings import draw
@@ -47,7 +47,7 @@ from calcreport.report.model import (
     Strong,
     Words,
 )
-from calcreport.report.notation import relation, show_figure
+from calcreport.report.notation import has_values, relation, show_figure
 from calcreport.report.row_blocks import RowBlocks
 from calcreport.report.told import Told
 
@@ -114,7 +114,7 @@ class Composer:
             case SayTable():
                 return (self.rows.table(item),)
             case SayUnknown():
-                return (self.unknown(item),)
+                return self.unknown(item)
             case SayEquation():
                 return (self.equation(item),)
             case SayBranch():
@@ -167,27 +167,35 @@ class Composer:
             because,
         )
 
-    def unknown(self, item: SayUnknown) -> Block:
-        """Return `c so that P_n M_u = M_n P_u: c = 12.83 in.`"""
-        worked = item.worked
-        line = worked.line
+    def unknown(self, item: SayUnknown) -> tuple[Block, ...]:
+        """Return the equation that `c` makes true, then `c = formula = substitution = 6.427 in.` or its root alone."""
+        worked, line = item.worked, item.worked.line
         equation = Row((self.shared.formula(line.left), relation("="), self.shared.formula(line.right)))
-        words: Words = (self.slots[line.slot].symbol.says, ", so that ", equation)
-        return Line(item.number, self.told.anchor(item.number), words, self.shared.symbol(line.slot), None, None, None,
-                    self.told.value(line.slot, worked.key), SourceLane(""))  # fmt: skip
+        says: Words = (self.slots[line.slot].symbol.says, ", so that")
+        source = self.told.source("", (line.left, line.right), worked.open, item.number)
+        shown: Formula | None = None
+        substituted, coherent, lane = shown, shown, SourceLane("")
+        if worked.closed is not None:
+            formula = worked.closed.line.arms[0].formula
+            shown, substituted = self.told.steps(formula, worked.closed)
+            coherent = self.told.coherent(worked.closed, formula)
+            lane = self.told.source("", (formula,), worked.open, item.number)
+        symbol, value = self.shared.symbol(line.slot), self.told.value(line.slot, worked.key)
+        root = Line(item.number, self.told.anchor(item.number), (), symbol, shown, substituted, coherent, value, lane)
+        sought = Statement(item.equation, self.told.anchor(item.equation), says, equation, source)
+        return sought, root
 
     def equation(self, item: SayEquation) -> Block:
-        """Return both sides of an equation with their numbers at the root."""
-        worked = item.worked
-        items: list[Formula] = []
-        for side, node in (("left", worked.line.left), ("right", worked.line.right)):
-            unit = equation_unit(node, self.forms)
-            figure = show_figure(self.forms.equation(worked, side), None if unit is ONE else unit)
-            items += [Letters(",   ")] if items else []
-            items += [self.shared.formula(node), relation("="), figure]
-        anchor = self.told.anchor(item.number)
-        lane = self.told.source("", (worked.line.left, worked.line.right), worked.open, item.number)
-        return Statement(item.number, anchor, ("both sides there",), Row(tuple(items)), lane)
+        """Return a side of an equation with its numbers at the root."""
+        worked, node = item.worked, item.worked.line.left if item.side == "left" else item.worked.line.right
+        unit = equation_unit(worked.line, self.forms)
+        figure = show_figure(self.forms.equation(worked, item.side), None if unit is ONE else unit)
+        shown = self.shared.formula(node)
+        substituted = self.told.substitution(node, worked.open, unit) if has_values(node) else None
+        if isinstance(node, Name) or substituted == shown:
+            substituted = None
+        says, lane = (f"{item.side} side there",), self.told.source("", (node,), worked.open, item.number)
+        return Line(item.number, self.told.anchor(item.number), says, shown, None, substituted, None, figure, lane)
 
     def branch(self, item: SayBranch) -> tuple[Block, ...]:
         """Say which comparison chose a block, or in the template's own words what the arm is for."""

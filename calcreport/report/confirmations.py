@@ -191,18 +191,26 @@ class _Lines:
         """Add the root, its lines, and both sides of the equation at the root."""
         slot, key = line.line.slot, line.key
         symbol = self.slots[slot].symbol
-        unit = symbol.unit or ONE
-        number = self.values.number(slot, key) / unit.size
-        self.digits.add(self.forms.id(slot, key), make_figure(number, unit.size, least=symbol.places or 0))
+        if line.closed is not None:
+            self.gives(line.closed)
+        else:
+            unit = symbol.unit or ONE
+            number = self.values.number(slot, key) / unit.size
+            self.digits.add(self.forms.id(slot, key), make_figure(number, unit.size, least=symbol.places or 0))
         self.lines(line.lines)
-        for side, node, value in (("left", line.line.left, line.left), ("right", line.line.right, line.right)):
-            shown = equation_unit(node, self.forms)
-            name: Id = ("equation", self.forms.mark, id(line.line), line.open, side)
-            self.digits.add(name, make_coarse_figure(value / shown.size, shown.size))
+        shown = equation_unit(line.line, self.forms)
+        # the two sides are one number, and print as one
+        self.digits.join(self.equation_side(line, "right"), self.equation_side(line, "left"))
+        self.digits.add(self.equation_side(line, "left"), make_coarse_figure(line.left / shown.size, shown.size))
+        for side, node in (("left", line.line.left), ("right", line.line.right)):
+            name = self.equation_side(line, side)
             inputs = self.inputs(node, line.open)
             if inputs:
                 confirm = self.confirming(self.forms.worked.compiled(node), inputs, line.open)
                 self.digits.need(Sum(confirm, tuple(i for _, _, i in inputs), name))
+
+    def equation_side(self, line: WorkedUnknown, side: str) -> Id:
+        return ("equation", self.forms.mark, id(line.line), line.open, side)
 
     def made(self, line: WorkedLine) -> None:
         """Add figures for the cells of a set made here."""

@@ -15,13 +15,14 @@ from calcreport.calculate.model import (
     LinkedValue,
     PlannedBranches,
     PlannedGives,
+    PlannedUnknown,
     Values,
     Worked,
     WorkedCheck,
     WorkedGives,
     WorkedUnknown,
 )
-from calcreport.core.expression import Call, Compare, Condition, Expression, Logic, Name, Node, Number
+from calcreport.core.expression import Binary, Call, Compare, Condition, Expression, Logic, Name, Node, Number
 from calcreport.core.units import NONE, ONE, Unit
 from calcreport.report.digits import Digits, Figure, Id, rounded
 from calcreport.report.families import Family, choose_family, dimension_of, factor_to
@@ -167,10 +168,15 @@ def is_size(node: Expression) -> TypeGuard[Call]:
     return isinstance(node, Call) and node.function == "abs" and isinstance(node.arguments[0], Name)
 
 
-def equation_unit(node: Expression, forms: CalculationForms) -> Unit:
-    """Return the unit a side of an equation is printed in."""
-    dimension = dimension_of(node, forms.worked.plan.slots)
-    return (forms.family(node, None).unit(dimension) if dimension != NONE else ONE) or ONE
+def equation_unit(line: PlannedUnknown, forms: CalculationForms) -> Unit:
+    """Return the unit both sides of an equation are printed in; both are worked in one family."""
+    slots = forms.worked.plan.slots
+    dimension = next((d for node in (line.left, line.right) if (d := dimension_of(node, slots)) != NONE), NONE)
+    both = Binary("-", line.left, line.right, line.span)
+    family = choose_family(both, None, slots, forms.worked.plan.template.system)
+    for node in (line.left, line.right):
+        family = forms.shared.families.setdefault(id(node), (node, family))[1]
+    return family.unit(dimension) or ONE if dimension != NONE else ONE
 
 
 def side_unit(test: Compare, forms: CalculationForms) -> Unit:

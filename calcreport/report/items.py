@@ -6,7 +6,7 @@ Made by `report.script`; turned into blocks by `report.calculation`, into values
 from __future__ import annotations
 
 from dataclasses import dataclass
-from typing import TypeAlias
+from typing import Literal, TypeAlias
 
 from calcreport.calculate.model import (
     Key,
@@ -100,18 +100,21 @@ class SayTable:
 
 @dataclass(frozen=True, slots=True)
 class SayUnknown:
-    """A value found so that both sides of an equation agree."""
+    """A value found so that both sides of an equation agree: the equation, then the value."""
 
+    #: line number of the equation
+    equation: int
     number: int
     worked: WorkedUnknown
 
 
 @dataclass(frozen=True, slots=True)
 class SayEquation:
-    """The equation at the value found, each side with its number."""
+    """A side of the equation at the value found, with its number."""
 
     number: int
     worked: WorkedUnknown
+    side: Literal["left", "right"]
 
 
 @dataclass(frozen=True, slots=True)

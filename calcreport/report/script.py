@@ -131,11 +131,12 @@ def _lines(writer: _Writer, lines: tuple[WorkedLine, ...]) -> None:
             case WorkedEach():
                 _each(writer, line)
             case WorkedUnknown():
-                number = writer.next()
-                writer.items.append(SayUnknown(number, line))
+                equation, number = writer.next(), writer.next()
+                writer.items.append(SayUnknown(equation, number, line))
                 writer.line_of[line.line.slot, line.key] = number
                 _lines(writer, line.lines)
-                writer.items.append(SayEquation(writer.next(), line))
+                writer.items.append(SayEquation(writer.next(), line, "left"))
+                writer.items.append(SayEquation(writer.next(), line, "right"))
             case WorkedRows():
                 number = writer.next()
                 writer.items.append(SayMade(number, line))

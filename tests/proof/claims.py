@@ -121,6 +121,9 @@ def _formula(desk: Desk, statement: Statement, scope: Scope) -> int:
         _two_spellings(desk, parts[1])
         return 0
     nodes = [parse(part) for part in parts[1:]]
+    if statement.words.endswith("so that"):
+        desk.count("equations")  # both sides follow with their numbers, and are worked there
+        return 0
     first = next((i for i, node in enumerate(nodes) if not symbols(node)), None)
     if first is None:
         raise Unread("no result")

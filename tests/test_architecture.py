@@ -27,8 +27,8 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
         "methods", "methods.roots",
     )),
     ("read", (
-        "read", "read.bars", "read.bodies", "read.calculations", "read.cases", "read.codes", "read.columns",
-        "read.fields", "read.filled", "read.formulas", "read.gathering", "read.given", "read.library", "read.lines",
+        "read", "read.bars", "read.bodies", "read.calculations", "read.candidates", "read.cases", "read.codes",
+        "read.columns", "read.fields", "read.filled", "read.formulas", "read.gathering", "read.given", "read.library", "read.lines",
         "read.made_rows", "read.malformed", "read.model", "read.nodes", "read.project", "read.project_model",
         "read.schedules", "read.sheets", "read.single_values", "read.symbols", "read.template_model", "read.values",
         "read.variants", "read.words", "read.workbook",
@@ -40,15 +40,16 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
     ("calculate", (
         "calculate", "calculate.cases", "calculate.compile", "calculate.evaluate", "calculate.exact",
         "calculate.handing", "calculate.judging", "calculate.margins", "calculate.model", "calculate.project", "calculate.release",
+        "calculate.selection",
     )),
     ("second", (
         "second", "second.agreement", "second.quantities", "second.rework",
     )),
     ("history", ("history",)),
     ("report", (
-        "report", "report.calculation", "report.compose", "report.confirmations", "report.digits", "report.display",
+        "report", "report.calculation", "report.candidates", "report.compose", "report.confirmations", "report.digits", "report.display",
         "report.drawings", "report.families", "report.forms", "report.formula_model", "report.fronts",
-        "report.given_blocks", "report.items", "report.members", "report.model", "report.notation",
+        "report.given_blocks", "report.governing", "report.items", "report.members", "report.model", "report.notation",
         "report.row_blocks", "report.script", "report.substitution", "report.summary", "report.told", "report.traced",
         "report.valuesfile",
     )),

@@ -16,6 +16,7 @@ from calcreport.core.source import Span
 from calcreport.plan.model import (
     BarCallout,
     Calculation,
+    Candidate,
     Case,
     Expected,
     FigureInput,
@@ -276,6 +277,8 @@ class Worked:
     compiled: Callable[[Expression], Work]
     #: returns the test of a planned condition
     tested: Callable[[Condition], Test]
+    #: how its candidate was taken; None where nothing was to choose
+    selection: Selection | None = None
 
     @property
     def verdict(self) -> Verdict:
@@ -284,6 +287,35 @@ class Worked:
         if "NG" in verdicts:
             return "NG"
         return "not evaluated" if self.stop or "not evaluated" in verdicts else "OK"
+
+
+@dataclass(frozen=True, slots=True)
+class Tried:
+    """One candidate, worked in full."""
+
+    #: its place among the candidates
+    place: int
+    worked: Worked
+
+
+@dataclass(frozen=True, slots=True)
+class Selection:
+    """How a candidate was taken."""
+
+    candidates: tuple[Candidate, ...]
+    #: those worked, in the engineer's order
+    tried: tuple[Tried, ...]
+    #: place of the one the sheets show
+    used: int
+    #: place of the first that meets every check and stops nowhere, -1 for none
+    first: int
+    #: the engineer has pinned the one used
+    pinned: bool
+
+    @property
+    def has_moved(self) -> bool:
+        """Tell whether the pinned candidate is no longer the one that would be taken."""
+        return self.pinned and self.used != self.first
 
 
 @dataclass(frozen=True, slots=True)
@@ -299,6 +331,7 @@ class WorkedProject:
 __all__ = [
     "BarCallout",
     "Calculation",
+    "Candidate",
     "Case",
     "Comparison",
     "Expected",
@@ -326,10 +359,12 @@ __all__ = [
     "PlannedUnknown",
     "Project",
     "RowSet",
+    "Selection",
     "Slot",
     "Stop",
     "Symbol",
     "Test",
+    "Tried",
     "Value",
     "ValueOrigin",
     "Values",

@@ -25,6 +25,7 @@ from calcreport.calculate.model import (
     Worked,
     WorkedProject,
 )
+from calcreport.calculate.selection import select
 from calcreport.core.problems import Problems, listed
 from calcreport.core.quantity import Amount
 from calcreport.core.units import dimension_words
@@ -44,11 +45,10 @@ def work_project(
         plan = plans.get(id(calculation.template))
         if plan is None or not _hold_links(calculation, worked, by_mark, inputs.poisoned, problems):
             continue
-        before = problems.met
         program = programs.setdefault(id(plan), Program(plan))
-        values = hand_values(calculation, plan, worked, problems)
-        if problems.met == before:
-            worked[calculation.mark] = program.run(calculation, values, _fingerprint(calculation, worked))
+        found = _work(calculation, program, worked, problems)
+        if found is not None:
+            worked[calculation.mark] = found
         progress(done + 1, len(order))
     kept = tuple(worked[c.mark] for c in calculations if c.mark in worked)
     place_of = {w.calculation.mark: place for place, w in enumerate(kept)}
@@ -60,9 +60,23 @@ def work_project(
     return WorkedProject(inputs.project, kept, places, whole.hexdigest()[:16])
 
 
+def _work(calculation: Calculation, program: Program, worked: dict[str, Worked], problems: Problems) -> Worked | None:
+    """Work one calculation, with the candidate that serves where there are some; None after adding a problem."""
+
+    def run(settled: Calculation) -> Worked | None:
+        before = problems.met
+        values = hand_values(settled, program.plan, worked, problems)
+        if problems.met > before:
+            return None
+        return program.run(settled, values, _fingerprint(settled, calculation, worked))
+
+    return select(calculation, run) if calculation.candidates else run(calculation)
+
+
 def _links(calculation: Calculation) -> list[tuple[GivenValue, LinkedValue]]:
     found: list[tuple[GivenValue, LinkedValue]] = []
-    for value in calculation.given:
+    chosen = (value for candidate in calculation.candidates for value in candidate.values)
+    for value in (*calculation.given, *chosen):
         cells: tuple[GivenValue, ...]
         match value:
             case GivenValue():
@@ -192,14 +206,17 @@ def _fits(value: GivenValue, link: LinkedValue, source: Worked, place: tuple[int
     return False
 
 
-def _fingerprint(calculation: Calculation, worked: dict[str, Worked]) -> str:
-    """Return sixteen hexadecimal digits over the given values, exactly, and the text of the template's files."""
+def _fingerprint(settled: Calculation, calculation: Calculation, worked: dict[str, Worked]) -> str:
+    """Return sixteen hexadecimal digits over the given values, exactly, and the text of the template's files.
+
+    `settled` has a candidate's values among its own; the candidates not taken count too.
+    """
     digest = hashlib.sha256()
     template = calculation.template
     digest.update(f"{template.name}\n{template.system}\n{template.year}\n".encode())
     for source in template.files:
         digest.update(source.text.encode())
-    for value in calculation.given:
+    for value in (*settled.given, *(value for one in calculation.candidates for value in one.values)):
         digest.update(f"\n{value.given.name}=".encode())
         match value:
             case GivenValue():

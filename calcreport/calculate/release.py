@@ -21,6 +21,7 @@ def hold_release(project: WorkedProject, problems: Problems) -> None:
     for worked in project.calculations:
         _hold_checks(worked, said, facts.status, problems)
         _hold_limit_states(worked, said, facts.status, problems)
+        _hold_selection(worked, facts.status, problems)
     for assumption in facts.assumptions:
         if assumption.to_be_verified:
             problems.add(
@@ -49,6 +50,24 @@ def _hold_checks(worked: Worked, said: set[str], status: str, problems: Problems
             found=check.verdict,
             hint=f"under `dispositions:` write {{check: {name}, says: …}}; it is printed and hides nothing",
         )
+
+
+def _hold_selection(worked: Worked, status: str, problems: Problems) -> None:
+    """What leaves the office is pinned, so that a later run cannot put another member in its place unseen."""
+    selection = worked.selection
+    if selection is None or selection.pinned:
+        return
+    candidate = selection.candidates[selection.used]
+    pairs = zip(candidate.values, candidate.texts, strict=True)
+    text = ", ".join(f"{value.given.name}: {text}" for value, text in pairs)
+    problems.add(
+        "not-ready",
+        worked.calculation.span,
+        f"the selection of `{worked.calculation.mark}` is not pinned, and the status is `{status}`",
+        expected="`pinned:` beside `choose:`",
+        found=f"candidate {selection.used + 1} of {len(selection.candidates)} used, none pinned",
+        hint=f"write pinned: {{{text}}}, as it stands under `choose:`",
+    )
 
 
 def _hold_limit_states(worked: Worked, said: set[str], status: str, problems: Problems) -> None:

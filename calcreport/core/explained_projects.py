@@ -93,8 +93,9 @@ prints what a template takes.
     given: {bw: 16 in}      wrong where the template takes b
     given: {b: 16 in}       right""",
     "not-ready": """Something is open, and the status says that nothing is.
-Under `for permit` and `issued for construction` a check that is NG or not evaluated, a limit state nobody covers, or an
-assumption to be verified stops the build. Settle it, give the engineer's word on it, or issue under an earlier status.
+Under `for permit` and `issued for construction` these stop the build: a check that is NG or not evaluated, a limit
+state nobody covers, an assumption to be verified, a selection among candidates that is not pinned. Settle it, give the
+engineer's word on it, or issue under an earlier status.
 
     status: for permit                                           wrong with an assumption to be verified
     dispositions: [{check: B1.flexure, says: see drawing S-201}]  the engineer's word on a check""",

@@ -14,6 +14,7 @@ from calcreport.core.source import Citation, Span
 from calcreport.read.model import (
     BarCallout,
     Calculation,
+    Candidate,
     Case,
     Expected,
     Given,
@@ -265,9 +266,9 @@ class Plan:
 
 
 __all__ = [
-    "BarCallout", "Calculation", "Case", "Expected", "FigureInput", "Given", "GivenPairs", "GivenRows", "GivenValue",
-    "Handed", "Inputs", "LinkedValue", "Plan", "PlannedArm", "PlannedBranchArm", "PlannedBranches", "PlannedCheck",
-    "PlannedColumn", "PlannedEach", "PlannedEntry", "PlannedFigure", "PlannedGiven", "PlannedGives", "PlannedLine",
-    "PlannedPart", "PlannedRequire", "PlannedRows", "PlannedText", "PlannedUnknown", "Project", "RowSet", "Slot",
-    "Symbol", "Template", "ValueOrigin",
+    "BarCallout", "Calculation", "Candidate", "Case", "Expected", "FigureInput", "Given", "GivenPairs", "GivenRows",
+    "GivenValue", "Handed", "Inputs", "LinkedValue", "Plan", "PlannedArm", "PlannedBranchArm", "PlannedBranches",
+    "PlannedCheck", "PlannedColumn", "PlannedEach", "PlannedEntry", "PlannedFigure", "PlannedGiven", "PlannedGives",
+    "PlannedLine", "PlannedPart", "PlannedRequire", "PlannedRows", "PlannedText", "PlannedUnknown", "Project", "RowSet",
+    "Slot", "Symbol", "Template", "ValueOrigin",
 ]  # fmt: skip

@@ -10,6 +10,7 @@ from dataclasses import dataclass, field
 
 from calcreport.core.problems import Problems
 from calcreport.core.source import Span, TableSource
+from calcreport.read.candidates import Choice, read_choice
 from calcreport.read.fields import Fields, is_empty
 from calcreport.read.gathering import Gathered
 from calcreport.read.library import Editions, Library
@@ -21,9 +22,7 @@ from calcreport.read.values import ValueReader, is_complete
 _MARK = re.compile(r"[A-Z][A-Za-z0-9]{0,11}")
 #: marks of the front sheets and appendices
 _RESERVED = ("COVER", "INDEX", "REVISIONS", "CRITERIA", "ASSUMPTIONS", "SUMMARY", "A", "B", "C")
-_KEYS = ("mark", "title", "template", "units", "given")
-#: keys the language has and this version does not read
-_LATER = ("choose",)
+_KEYS = ("mark", "title", "template", "units", "given", "choose", "pinned")
 
 
 @dataclass(slots=True)
@@ -59,12 +58,8 @@ class CalculationReader:
         if isinstance(name, Scalar) and not is_empty(name):
             template = self.library.template(name.text, system, self.editions, name.span)
         # without its template nobody knows which material roles a calculation takes
-        roles = (
-            roles_of(template.body.given)
-            if template
-            else tuple(k.text for k, _ in node.entries if k.text not in _LATER)
-        )
-        fields = Fields(node, (*_KEYS, *roles), "a calculation", self.problems, _LATER)
+        roles = roles_of(template.body.given) if template else tuple(k.text for k, _ in node.entries)
+        fields = Fields(node, (*_KEYS, *roles), "a calculation", self.problems)
         fields.choice("units", SYSTEMS)
         mark = fields.scalar("mark", required=True)
         title = fields.text("title", required=True)
@@ -77,10 +72,23 @@ class CalculationReader:
             return None
         materials = self.materials(fields, roles)
         reader = ValueReader(materials, self.library.bar_table(template.name, system), node.span, self.problems)
-        values = reader.read(template.body.given, given or Mapping((), node.span), _named(mark))
-        if not kept or not is_complete(values, template.body.given):
+        choice = read_choice(fields, template.body.given, reader)
+        wanted = tuple(one for one in template.body.given if one.name not in choice.names)
+        values = reader.read(wanted, self.once(given or Mapping((), node.span), choice), _named(mark))
+        if not kept or not is_complete(values, wanted):
             return None
-        return Calculation(mark.text, title, template, values, node.span.text, mark.span)
+        return Calculation(mark.text, title, template, values, node.span.text, mark.span,
+                           choice.candidates, choice.pinned)  # fmt: skip
+
+    def once(self, given: Mapping, choice: Choice) -> Mapping:
+        """Return what is given without what the candidates choose, which must not be given too."""
+        for key, _ in given.entries:
+            if key.text in choice.names:
+                first = choice.candidates[0].span.part(0, 1)
+                self.problems.add("given-twice", key.span, f"`{key.text[:40]}` is given, and the candidates choose it",
+                                  expected="one place", found="a given value and candidates",
+                                  related=((first, "the candidates"),))  # fmt: skip
+        return Mapping(tuple(entry for entry in given.entries if entry[0].text not in choice.names), given.span)
 
     def mark(self, mark: Scalar) -> bool:
         """Keep a mark: short, not one of the fronts, every one once."""

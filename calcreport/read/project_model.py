@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Literal, TypeAlias
 
 from calcreport.core.quantity import Amount
@@ -14,8 +14,8 @@ from calcreport.read.template_model import Given, System, Template
 class ValueOrigin:
     """Where a given value was taken from, as the sheet prints it."""
 
-    kind: Literal["project file", "criteria", "material", "schedule", "line", "source", "none"]
-    #: material mark, stated source, schedule row, or line such as 'FL2.M_u'
+    kind: Literal["project file", "criteria", "material", "schedule", "line", "source", "none", "candidate"]
+    #: material mark, stated source, schedule row, line such as 'FL2.M_u', or candidate such as '2 of 5'
     words: str
 
 
@@ -84,16 +84,40 @@ class GivenPairs:
 
 
 @dataclass(frozen=True, slots=True)
+class Candidate:
+    """One joint choice of given values."""
+
+    values: tuple[GivenValue | GivenRows | GivenPairs, ...]
+    #: each value as it was typed
+    texts: tuple[str, ...]
+    span: Span
+
+
+@dataclass(frozen=True, slots=True)
 class Calculation:
     """One calculation of a project with its template and its given values."""
 
     mark: str
     title: str
     template: Template
+    #: what is given, in the template's order; what a candidate chooses is not among it before one is taken
     given: tuple[GivenValue | GivenRows | GivenPairs, ...]
     #: files this calculation's inputs stand in are fingerprinted through this text
     input_text: str
     span: Span
+    #: the engineer's candidates in order of preference, and the place of the pinned one (-1: none)
+    candidates: tuple[Candidate, ...] = ()
+    pinned: int = -1
+
+    def taking(self, place: int) -> Calculation:
+        """Return the calculation with what one candidate chooses among its given values."""
+        origin = ValueOrigin("candidate", f"{place + 1} of {len(self.candidates)}")
+        own = ("project file", "schedule")
+        values = (replace(v, origin=origin) if v.origin.kind in own else v for v in self.candidates[place].values)
+        chosen = {value.given.name: value for value in values}
+        known = {value.given.name: value for value in self.given} | chosen
+        given = tuple(known[one.name] for one in self.template.body.given)
+        return replace(self, given=given, candidates=(), pinned=-1)
 
 
 @dataclass(frozen=True, slots=True)

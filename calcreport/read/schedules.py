@@ -22,7 +22,8 @@ from calcreport.read.model import SYSTEMS, Given, System, Template
 from calcreport.read.nodes import Mapping, Node, Scalar, Sequence, Told
 from calcreport.read.sheets import Sheet, SheetRow, read_sheet
 
-KEYS = ("file", "sheet", "heading row", "template", "mark", "title", "units", "columns", "given", "where", "hidden")
+KEYS = ("file", "sheet", "heading row", "template", "mark", "title", "units", "columns", "given", "choose", "pinned",
+        "where", "hidden")  # fmt: skip
 #: keys the language has and this version does not read
 _LATER = ("together",)
 #: rows named when hidden ones are refused
@@ -132,7 +133,7 @@ class ScheduleReader:
             titled = text_use(title, table, self.problems) if "{" in title.text else title
         entries: list[tuple[Scalar, Node | Use | Filled]] = []
         for key, value in fields.node.entries:
-            if key.text in ("template", "units", *roles):
+            if key.text in ("template", "units", "choose", "pinned", *roles):
                 entries.append((key, prepare(value, table, self.problems)))
         entries.append((Scalar("given", fields.span, False), self.given(fields, table)))
         return _Plan(table, marked, titled, tuple(entries), self.where(fields, table)) if titled is not None else None

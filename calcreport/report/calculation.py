@@ -7,6 +7,7 @@ from __future__ import annotations
 
 from calcreport.core.expression import Binary, Compare, Name
 from calcreport.core.units import ONE
+from calcreport.report.candidates import candidate_blocks
 from calcreport.report.digits import number_text
 from calcreport.report.drawings import draw
 from calcreport.report.forms import Opened, equation_unit, joint_comparisons
@@ -15,6 +16,7 @@ from calcreport.report.items import (
     Item,
     SayBranch,
     SayCheck,
+    SayChoice,
     SayEquation,
     SayFigure,
     SayFormula,
@@ -101,6 +103,8 @@ class Composer:
                 return (self.given.none(item),)
             case SayRows():
                 return (self.given.given_table(item),)
+            case SayChoice():
+                return candidate_blocks(item, self.told)
             case SayText():
                 return self.text(item)
             case SayHeading(text, level):

@@ -14,11 +14,12 @@ from calcreport.report import fronts
 from calcreport.report.calculation import Composer
 from calcreport.report.confirmations import find_forms
 from calcreport.report.forms import CalculationForms
+from calcreport.report.governing import worst_checks
 from calcreport.report.items import Script
 from calcreport.report.model import Block, Index, IndexEntry, Part, Report, TitleFacts
 from calcreport.report.notation import Notation
 from calcreport.report.script import write_script
-from calcreport.report.summary import Summary, SummarySheets, dispositions, result_words, summarise, worst_checks
+from calcreport.report.summary import Summary, SummarySheets, dispositions, result_words, summarise
 from calcreport.report.told import SymbolForms, Told
 
 

@@ -115,8 +115,8 @@ class GivenBlocks:
                 return (f"material {origin.words}",)
             case "source":
                 return (origin.words,)
-            case "schedule":
-                return (f"schedule {origin.words}",)
+            case "schedule" | "candidate":
+                return (f"{origin.kind} {origin.words}",)
             case "none" if origin.words:
                 return (origin.words,)
             case _:
@@ -124,7 +124,8 @@ class GivenBlocks:
 
     def lane(self, value: GivenValue | GivenRows | GivenPairs) -> SourceLane:
         """Return the source lane of rows."""
-        return SourceLane(f"schedule {value.origin.words}" if value.origin.kind == "schedule" else "project file")
+        told = value.origin.kind in ("schedule", "candidate")
+        return SourceLane(f"{value.origin.kind} {value.origin.words}" if told else "project file")
 
     def given_table(self, item: SayRows) -> Block:
         """Return a set of given rows, or a value over pairs, as a table."""

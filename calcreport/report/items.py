@@ -11,6 +11,7 @@ from typing import Literal, TypeAlias
 from calcreport.calculate.model import (
     Key,
     PlannedGiven,
+    Selection,
     Stop,
     Worked,
     WorkedBranches,
@@ -46,6 +47,14 @@ class SayRows:
 
     number: int
     given: PlannedGiven
+
+
+@dataclass(frozen=True, slots=True)
+class SayChoice:
+    """The candidates of the engineer, and which one is used."""
+
+    number: int
+    selection: Selection
 
 
 @dataclass(frozen=True, slots=True)
@@ -159,6 +168,7 @@ Item: TypeAlias = (
     SayGivens
     | SayNone
     | SayRows
+    | SayChoice
     | SayText
     | SayHeading
     | SayLine

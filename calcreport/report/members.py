@@ -28,7 +28,7 @@ from calcreport.core.units import LENGTH, ONE, Unit
 from calcreport.report.digits import number_text
 from calcreport.report.display import unit_text
 from calcreport.report.forms import CalculationForms
-from calcreport.report.summary import governing
+from calcreport.report.governing import governing
 
 HEADINGS = ("Mark", "Title", "Size", "Bars", "Governing check", "Ratio", "Verdict", "Result")
 

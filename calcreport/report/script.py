@@ -30,6 +30,7 @@ from calcreport.report.items import (
     Item,
     SayBranch,
     SayCheck,
+    SayChoice,
     SayEquation,
     SayFigure,
     SayFormula,
@@ -65,6 +66,8 @@ def write_script(worked: Worked) -> Script:
     """Return the items of a calculation in printed order."""
     writer = _Writer(worked)
     _givens(writer)
+    if worked.selection is not None:
+        writer.items.append(SayChoice(writer.next(), worked.selection))
     _lines(writer, worked.lines)
     if worked.stop is not None:
         unreached = (check for check in worked.checks if check.verdict == "not evaluated")

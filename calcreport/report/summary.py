@@ -10,10 +10,12 @@ from dataclasses import dataclass
 
 from calcreport.calculate.model import Comparison, Worked, WorkedCheck, WorkedProject
 from calcreport.core.units import ONE
+from calcreport.report.candidates import headlines
 from calcreport.report.digits import number_text
 from calcreport.report.display import unit_text
 from calcreport.report.forms import CalculationForms, is_size, side_unit
 from calcreport.report.fronts import RegisterEntry, counted
+from calcreport.report.governing import governing, rank, worst_checks
 from calcreport.report.items import Script
 from calcreport.report.model import (
     Block,
@@ -29,7 +31,6 @@ from calcreport.report.model import (
     Words,
 )
 from calcreport.report.notation import Notation
-from calcreport.report.script import severity
 
 CLOSING = "Computed demand does not exceed computed capacity for the checks listed"
 
@@ -45,27 +46,6 @@ class Summary:
     #: (limit state, marks) without anyone's word
     not_covered: tuple[tuple[str, tuple[str, ...]], ...]
     open_assumptions: int
-
-
-def worst_checks(worked: Worked) -> tuple[WorkedCheck, ...]:
-    """Return one check of each name, its worst row, in page order."""
-    found: dict[str, WorkedCheck] = {}
-    for check in worked.checks:
-        before = found.get(check.line.name)
-        if before is None or _rank(check) > _rank(before):
-            found[check.line.name] = check
-    return tuple(found.values())
-
-
-def _rank(check: WorkedCheck) -> tuple[int, float]:
-    order = {"not applicable": 0, "OK": 1, "not evaluated": 2, "NG": 3}
-    return order[check.verdict], severity(check)
-
-
-def governing(worked: Worked) -> WorkedCheck | None:
-    """Return the check that governs a calculation."""
-    judged = [check for check in worst_checks(worked) if check.verdict != "not applicable"]
-    return max(judged, key=_rank, default=None)
 
 
 def summarise(project: WorkedProject, entries: tuple[RegisterEntry, ...]) -> Summary:
@@ -110,7 +90,8 @@ def result_words(project: WorkedProject, summary: Summary) -> tuple[Words, ...]:
         for mark, name in summary.failed
         for words in dispositions(project, mark, name)
     ]
-    return (tuple(counts), (_closing(summary),), *said)
+    moved = [(Strong(f"Selection of {mark}: "), words) for mark, words in headlines(project.calculations)]
+    return (tuple(counts), (_closing(summary),), *moved, *said)
 
 
 def _closing(summary: Summary) -> str:
@@ -167,6 +148,8 @@ class SummarySheets:
                             "loud",
                         )
                     )
+        for mark, words in headlines(self.project.calculations):
+            rows.append(TableRow(((mark,), ("selection",), (words,), ("",), (mark,)), "loud"))
         for entry in entries:
             if entry.state.startswith("to be"):
                 rows.append(
@@ -189,7 +172,7 @@ class SummarySheets:
     def members(self) -> list[Block]:
         """Return a row a calculation with its governing check, highest ratio first."""
         ranked = sorted(
-            self.project.calculations, key=lambda w: _rank(g) if (g := governing(w)) else (0, -1.0), reverse=True
+            self.project.calculations, key=lambda w: rank(g) if (g := governing(w)) else (0, -1.0), reverse=True
         )
         rows: list[TableRow] = []
         silent: list[str] = []
@@ -322,6 +305,7 @@ def _short(marks: tuple[str, ...]) -> str:
 def summary_lines(project: WorkedProject, forms: dict[str, CalculationForms], summary: Summary) -> list[str]:
     """Return the check summary as a terminal shows it: a line a calculation, then the counts."""
     lines = []
+    lines += [f"{mark:<8} selection: {words}" for mark, words in headlines(project.calculations)]
     for worked in project.calculations:
         check = governing(worked)
         mark = worked.calculation.mark

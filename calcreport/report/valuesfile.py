@@ -7,12 +7,13 @@ from __future__ import annotations
 
 from typing import Any
 
-from calcreport.calculate.model import Key, Worked, WorkedCheck, WorkedGives, WorkedProject
+from calcreport.calculate.model import Key, Selection, Worked, WorkedCheck, WorkedGives, WorkedProject
 from calcreport.core.expression import names
 from calcreport.core.units import ONE
 from calcreport.core.version import PROGRAM
 from calcreport.report.digits import number_text
 from calcreport.report.forms import CalculationForms, is_size, side_unit
+from calcreport.report.governing import governing
 from calcreport.report.items import SayLine, SayTable, Script
 from calcreport.report.script import gives_below
 
@@ -36,6 +37,8 @@ def values_file(
             "lines": _lines(scripts[mark], forms[mark]),
             "checks": [_check(check, scripts[mark], forms[mark]) for check in worked.checks],
         }
+        if worked.selection is not None:
+            calculations[mark]["selection"] = _selection(worked.selection)
     header = {
         "title": project.project.title,
         "number": project.project.number,
@@ -110,6 +113,29 @@ def _gives(worked: WorkedGives, script: Script, forms: CalculationForms) -> dict
     entry["shown_inputs"] = shown
     entry["from"] = list(dict.fromkeys(origins))
     return entry
+
+
+def _selection(selection: Selection) -> dict[str, Any]:
+    """Return the candidates worked, counted from 1, each with its verdict and ratio of the governing check."""
+    tried: list[dict[str, Any]] = []
+    for one in selection.tried:
+        candidate, check = selection.candidates[one.place], governing(one.worked)
+        pairs = zip(candidate.values, candidate.texts, strict=True)
+        tried.append({
+            "number": one.place + 1,
+            "values": {value.given.name: text for value, text in pairs},
+            "verdict": one.worked.verdict,
+            "governing": check.line.name if check else None,
+            "ratio": check.ratio if check else None,
+            "stopped": one.worked.stop.words if one.worked.stop else None,
+        })  # fmt: skip
+    return {
+        "candidates": len(selection.candidates),
+        "used": selection.used + 1,
+        "first": selection.first + 1 if selection.first >= 0 else None,
+        "pinned": selection.pinned,
+        "tried": tried,
+    }
 
 
 def _check(check: WorkedCheck, script: Script, forms: CalculationForms) -> dict[str, Any]:

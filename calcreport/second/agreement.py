@@ -46,6 +46,15 @@ class Agreement:
     largest: float
     differences: tuple[Difference, ...]
 
+    def with_more(self, other: Agreement) -> Agreement:
+        """Return both comparisons together."""
+        return Agreement(
+            self.values + other.values,
+            self.verdicts + other.verdicts,
+            max(self.largest, other.largest),
+            self.differences + other.differences,
+        )
+
     @property
     def words(self) -> tuple[str, ...]:
         """What a disclosure says of it: the count and the largest difference, then every line that differs."""
@@ -71,33 +80,40 @@ def compare_paths(project: WorkedProject, make: Quantities | None = None) -> Agr
     """Work every calculation again and compare; `make` saves loading the libraries anew."""
     make = make or make_quantities()
     again: dict[str, Rework] = {}
-    found: list[Difference] = []
-    values = verdicts = 0
-    largest = 0.0
+    total = Agreement(0, 0, 0.0, ())
     for place in project.order:
         worked = project.calculations[place]
-        mark = worked.calculation.mark
-        rework = Rework(worked.plan, make, partial(_given_names, worked), partial(_root, worked))
-        again[mark] = rework
-        _hand(worked, rework, again, make)
-        stopped = ""
-        try:
-            rework.run()
-        except Stopped as error:
-            stopped = str(error)
-        if bool(stopped) != bool(worked.stop):
-            found.append(Difference(f"{mark} stop", worked.stop.words if worked.stop else "none", stopped or "none"))
-        count, most, differing = _compare_values(worked, rework)
-        values, largest = values + count, max(largest, most)
-        found += differing
-        judged = [check for check in worked.checks if check.verdict in ("OK", "NG")]
-        verdicts += len(judged)
-        for check, (name, ok) in zip(judged, rework.verdicts, strict=False):
-            if check.line.name != name or (check.verdict == "OK") != ok:
-                found.append(Difference(f"{mark}.{check.line.name}", check.verdict, "OK" if ok else "NG"))
-        if len(judged) != len(rework.verdicts):
-            found.append(Difference(f"{mark} checks", str(len(judged)), str(len(rework.verdicts))))
-    return Agreement(values, verdicts, largest, tuple(found))
+        selection = worked.selection
+        for other in selection.tried if selection else ():
+            if selection and other.place != selection.used:
+                total = total.with_more(_compare(other.worked, again, make)[1])
+        again[worked.calculation.mark], found = _compare(worked, again, make)
+        total = total.with_more(found)
+    return total
+
+
+def _compare(worked: Worked, again: dict[str, Rework], make: Quantities) -> tuple[Rework, Agreement]:
+    """Work one calculation again and compare."""
+    mark = worked.calculation.mark
+    found: list[Difference] = []
+    rework = Rework(worked.plan, make, partial(_given_names, worked), partial(_root, worked))
+    _hand(worked, rework, again, make)
+    stopped = ""
+    try:
+        rework.run()
+    except Stopped as error:
+        stopped = str(error)
+    if bool(stopped) != bool(worked.stop):
+        found.append(Difference(f"{mark} stop", worked.stop.words if worked.stop else "none", stopped or "none"))
+    count, largest, differing = _compare_values(worked, rework)
+    found += differing
+    judged = [check for check in worked.checks if check.verdict in ("OK", "NG")]
+    for check, (name, ok) in zip(judged, rework.verdicts, strict=False):
+        if check.line.name != name or (check.verdict == "OK") != ok:
+            found.append(Difference(f"{mark}.{check.line.name}", check.verdict, "OK" if ok else "NG"))
+    if len(judged) != len(rework.verdicts):
+        found.append(Difference(f"{mark} checks", str(len(judged)), str(len(rework.verdicts))))
+    return rework, Agreement(count, len(judged), largest, tuple(found))
 
 
 def _given_names(worked: Worked, index: int) -> list[tuple[Key, tuple[str, ...]]]:

@@ -49,11 +49,14 @@ class TemplateReport:
     cases: int
 
 
-def work(world: World, source: Source, progress: Progress = silent) -> Result:
-    """Read, plan and work a project; calculations without problems are worked even beside problems."""
+def work(world: World, source: Source, progress: Progress = silent, instead: tuple[str, str] | None = None) -> Result:
+    """Read, plan and work a project; calculations without problems are worked even beside problems.
+
+    `instead` is a field of `codes` and another edition to take in it, for comparison and never for a package.
+    """
     problems = Problems()
     library = Library(world, problems)
-    inputs = ProjectReader(world, library, problems).read(source)
+    inputs = ProjectReader(world, library, problems, instead).read(source)
     if inputs is None:
         return Result(problems.sorted())
     plans = _plans(inputs, problems)

@@ -45,10 +45,11 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
     ("second", (
         "second", "second.agreement", "second.quantities", "second.rework",
     )),
-    ("history", ("history",)),
+    ("history", ("history", "history.accounts", "history.differences", "history.model")),
     ("report", (
         "report", "report.calculation", "report.candidates", "report.compose", "report.confirmations", "report.digits", "report.display",
-        "report.drawings", "report.families", "report.forms", "report.formula_model", "report.fronts",
+        "report.drawings", "report.editions", "report.editions_text", "report.families", "report.forms",
+        "report.formula_model", "report.fronts",
         "report.given_blocks", "report.governing", "report.items", "report.members", "report.model", "report.notation",
         "report.row_blocks", "report.script", "report.substitution", "report.summary", "report.told", "report.traced",
         "report.valuesfile",
@@ -69,8 +70,8 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
     ("driver", ("driver",)),
     ("publish", ("publish",)),
     ("commands", (
-        "commands", "commands.build", "commands.desk", "commands.explain", "commands.lint", "commands.margins",
-        "commands.new", "commands.reconcile", "commands.reconciling", "commands.schedule", "commands.templates",
+        "commands", "commands.build", "commands.desk", "commands.editions", "commands.explain", "commands.lint",
+        "commands.margins", "commands.new", "commands.reconcile", "commands.reconciling", "commands.schedule", "commands.templates",
         "commands.trace", "commands.values",
     )),
     ("__main__", ("__main__", "__init__")),
@@ -89,7 +90,7 @@ SEES: dict[str, frozenset[str]] = {
     # the second path works from the plan by itself, and is then held against what calculate made
     "second": frozenset({"plan.model", "calculate.model"}),
     "history": frozenset({"calculate.model"}),
-    "report": frozenset({"calculate.model"}),
+    "report": frozenset({"calculate.model", "history.model"}),
     "layout": frozenset({"report.model"}),
     "output": frozenset({"layout.model"}),
     "filesystem": frozenset(),

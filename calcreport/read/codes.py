@@ -28,10 +28,18 @@ class Codes:
     #: (field, code) as printed, the adopted code first
     rows: tuple[tuple[str, str], ...]
     amendments: str
+    #: what the adopted code refers to instead of an edition asked for to compare with; '' where it refers to that
+    foreign: str = ""
 
 
-def read_codes(node: Mapping | None, library: Library, problems: Problems) -> Codes:
-    """Read the adopted code and the codes by field; pairs that do not belong together are `edition-mix`."""
+def read_codes(
+    node: Mapping | None, library: Library, problems: Problems, instead: tuple[str, str] | None = None
+) -> Codes:
+    """Read the adopted code and the codes by field; pairs that do not belong together are `edition-mix`.
+
+    `instead` is a field and another edition of its code, taken for comparison: whether the adopted code refers to
+    that one is said, and is no problem.
+    """
     before = problems.met
     if node is None:
         return Codes({INCOMPLETE: ""}, (), "")
@@ -53,24 +61,52 @@ def read_codes(node: Mapping | None, library: Library, problems: Problems) -> Co
             problems.add("no-edition", scalar.span, f"`{scalar.text[:40]}` names no edition",
                          expected="name and edition, such as NAME-19", found=scalar.text[:40])  # fmt: skip
             continue
+        text = scalar.text
+        if instead is not None and instead[0] == field:
+            other = _other_edition(scalar, parts, instead[1], problems)
+            text, parts = (instead[1], other) if other is not None else (text, parts)
         editions[parts[0]] = parts[1]
-        rows.append((field, scalar.text))
+        rows.append((field, text))
     for code in _mixed(f"{name} {year}", node, library, problems):
-        del editions[code]
+        editions.pop(code, None)
     if problems.met > before:
         editions[INCOMPLETE] = ""
-    return Codes(editions, tuple(rows), amendments)
+    return Codes(editions, tuple(rows), amendments, _foreign(f"{name} {year}", library, instead))
+
+
+def _other_edition(stated: Scalar, parts: tuple[str, str], asked: str, problems: Problems) -> tuple[str, str] | None:
+    """Return name and year of the edition asked for; None after adding why it is no other edition of the code."""
+    found = split_code(asked)
+    if found is not None and found[0] == parts[0] and found != parts:
+        return found
+    what = "is the edition the project states" if found == parts else f"is no edition of {parts[0][:40]}"
+    problems.add("edition-mix", stated.span, f"`{asked[:40]}` {what}", expected=f"another edition of {parts[0][:40]}",
+                 found=asked[:40])  # fmt: skip
+    return None
+
+
+def _permitted(adopted: str, library: Library) -> dict[str, tuple[str, ...]]:
+    """Return the editions an adopted code refers to, by field."""
+    tree = library.tree("codes.yaml")
+    known = tree.get("adopted") if tree else None
+    refers = known.get(adopted) if isinstance(known, Mapping) else None
+    return {
+        key.text: tuple(s.text for s in value.items if isinstance(s, Scalar)) if isinstance(value, Sequence) else ()
+        for key, value in (refers.entries if isinstance(refers, Mapping) else ())
+    }
+
+
+def _foreign(adopted: str, library: Library, instead: tuple[str, str] | None) -> str:
+    """Return the editions that stand where an adopted code does not refer to the one asked for."""
+    permitted = _permitted(adopted, library).get(instead[0], ()) if instead is not None else ()
+    return " or ".join(permitted) if instead is not None and instead[1] not in permitted else ""
 
 
 def _mixed(adopted: str, node: Mapping, library: Library, problems: Problems) -> list[str]:
     """Hold the codes named against the editions an adopted code refers to; return those that do not belong to it."""
     mixed: list[str] = []
-    tree = library.tree("codes.yaml")
-    known = tree.get("adopted") if tree else None
-    refers = known.get(adopted) if isinstance(known, Mapping) else None
-    for key, value in refers.entries if isinstance(refers, Mapping) else ():
-        stated = node.get(key.text)
-        permitted = tuple(s.text for s in value.items if isinstance(s, Scalar)) if isinstance(value, Sequence) else ()
+    for key, permitted in _permitted(adopted, library).items():
+        stated = node.get(key)
         named = split_code(stated.text) if isinstance(stated, Scalar) else None
         if isinstance(stated, Scalar) and named and permitted and stated.text not in permitted:
             mixed.append(named[0])

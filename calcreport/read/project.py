@@ -32,8 +32,12 @@ _DATE = re.compile(r"([0-9]{4})-([0-9]{2})-([0-9]{2})")
 class ProjectReader:
     """Reads one project."""
 
-    def __init__(self, world: World, library: Library, problems: Problems) -> None:
+    def __init__(
+        self, world: World, library: Library, problems: Problems, instead: tuple[str, str] | None = None
+    ) -> None:
         self.world, self.library, self.problems = world, library, problems
+        #: a field of `codes` and the edition to take in it for comparison
+        self.instead = instead
 
     def read(self, source: Source) -> Inputs | None:
         """Return the inputs, or None where the file has no readable shape."""
@@ -44,7 +48,7 @@ class ProjectReader:
         fields = Fields(tree, _KEYS, "a project file", self.problems, _LATER)
         stated = fields.choice("units", SYSTEMS, required=True)
         system: System = "si" if stated == "si" else "us"
-        codes = read_codes(fields.mapping("codes", required=True), self.library, self.problems)
+        codes = read_codes(fields.mapping("codes", required=True), self.library, self.problems, self.instead)
         gatherer = Gatherer(self.world, source, self.problems)
         gatherer.gather(fields)
         editions = tuple(sorted(codes.editions.items()))
@@ -98,6 +102,7 @@ class ProjectReader:
             dispositions=self.dispositions(fields),
             issues=self.revisions(fields),
             files=tuple(gathered.files),
+            foreign=codes.foreign,
         )
 
     def block(self, fields: Fields, key: str, keys: tuple[str, ...]) -> Fields | None:

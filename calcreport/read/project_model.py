@@ -180,6 +180,8 @@ class Project:
     issues: tuple[Issue, ...]
     #: files read, in order, for the input echo
     files: tuple[Source, ...]
+    #: where another edition was asked for to compare with: what the adopted code refers to instead of it, or ''
+    foreign: str = ""
 
 
 @dataclass(frozen=True, slots=True)

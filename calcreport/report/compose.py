@@ -67,7 +67,7 @@ def _report(
         "COVER",
         "Cover",
         "cover",
-        _facts(project, "Cover"),
+        title_facts(project, "Cover"),
         cover=fronts.cover(project, result_words(project, summary), loud),
     )
     front = [
@@ -79,7 +79,7 @@ def _report(
         _front(project, "B", "Appendix B: program disclosure", fronts.disclosure(project, evidence), "appendix"),
     ]
     title = "Revision record and index"
-    index = Part("INDEX", title, "index", _facts(project, title), fronts.revisions(project))
+    index = Part("INDEX", title, "index", title_facts(project, title), fronts.revisions(project))
     entries = tuple(_entry(project, part) for part in (cover, index, *front, *calculations, *back))
     index = replace(index, index=Index(entries))
     parts = (cover, index, *front, *calculations, *back)
@@ -95,10 +95,11 @@ def _entry(project: WorkedProject, part: Part) -> IndexEntry:
 
 
 def _front(project: WorkedProject, mark: str, title: str, blocks: tuple[Block, ...], kind: str = "front") -> Part:
-    return Part(mark, title, "appendix" if kind == "appendix" else "front", _facts(project, title), blocks)
+    return Part(mark, title, "appendix" if kind == "appendix" else "front", title_facts(project, title), blocks)
 
 
-def _facts(project: WorkedProject, subject: str, code: str = "", fingerprint: str = "") -> TitleFacts:
+def title_facts(project: WorkedProject, subject: str, code: str = "", fingerprint: str = "") -> TitleFacts:
+    """Return what the title block of a part says."""
     facts = project.project
     issue = facts.issues[-1] if facts.issues else None
     return TitleFacts(
@@ -118,7 +119,7 @@ def _facts(project: WorkedProject, subject: str, code: str = "", fingerprint: st
 def _calculation(project: WorkedProject, worked: Worked, script: Script, blocks: tuple[Block, ...]) -> Part:
     calculation, template = worked.calculation, worked.calculation.template
     system = "in.-lb" if template.system == "us" else "SI"
-    facts = _facts(
+    facts = title_facts(
         project,
         f"{calculation.mark}  {calculation.title}",
         f"{template.code} ({system})",

@@ -17,6 +17,7 @@ from calcreport.core.world import World
 from calcreport.plan.closed import supply_closed
 from calcreport.plan.dimensions import hold_dimensions
 from calcreport.plan.link import link
+from calcreport.plan.links import bind_links
 from calcreport.plan.model import Plan
 from calcreport.plan.proofs import prove_cited
 from calcreport.read.cases import read_cases
@@ -60,6 +61,7 @@ def work(world: World, source: Source, progress: Progress = silent, instead: tup
     if inputs is None:
         return Result(problems.sorted())
     plans = _plans(inputs, problems)
+    inputs = bind_links(inputs, plans, problems)
     worked = work_project(inputs, plans, problems, lambda done, total: progress("working", done, total))
     return Result(problems.sorted(), worked)
 

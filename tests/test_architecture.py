@@ -28,19 +28,20 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
     )),
     ("read", (
         "read", "read.bars", "read.bodies", "read.calculations", "read.candidates", "read.cases", "read.codes",
-        "read.columns", "read.fields", "read.filled", "read.formulas", "read.gathering", "read.given", "read.library", "read.lines",
-        "read.made_rows", "read.malformed", "read.model", "read.nodes", "read.project", "read.project_model",
-        "read.schedules", "read.sheets", "read.single_values", "read.symbols", "read.template_model", "read.values",
-        "read.variants", "read.words", "read.workbook",
+        "read.columns", "read.fields", "read.filled", "read.formulas", "read.gathering", "read.given", "read.library",
+        "read.lines", "read.links", "read.made_rows", "read.malformed", "read.model", "read.nodes", "read.project",
+        "read.project_model", "read.row_tables", "read.schedules", "read.sheets", "read.single_values",
+        "read.symbols", "read.tables", "read.template_model", "read.values", "read.variants", "read.words",
+        "read.workbook",
     )),
     ("plan", (
-        "plan", "plan.closed", "plan.dimensions", "plan.equations", "plan.figures", "plan.formula_dimensions", "plan.link",
-        "plan.made", "plan.model", "plan.names", "plan.parts", "plan.proofs", "plan.space",
+        "plan", "plan.closed", "plan.dimensions", "plan.equations", "plan.figures", "plan.formula_dimensions",
+        "plan.link", "plan.links", "plan.made", "plan.model", "plan.names", "plan.parts", "plan.proofs", "plan.space",
     )),
     ("calculate", (
         "calculate", "calculate.cases", "calculate.compile", "calculate.evaluate", "calculate.exact",
-        "calculate.handing", "calculate.judging", "calculate.margins", "calculate.model", "calculate.project", "calculate.release",
-        "calculate.selection",
+        "calculate.handing", "calculate.judging", "calculate.linking", "calculate.margins", "calculate.model",
+        "calculate.project", "calculate.release", "calculate.selection",
     )),
     ("second", (
         "second", "second.agreement", "second.quantities", "second.rework",

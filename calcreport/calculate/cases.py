@@ -6,7 +6,8 @@ Cases and plans in, problems `case-differs` out.
 from __future__ import annotations
 
 from calcreport.calculate.evaluate import Program
-from calcreport.calculate.handing import find_path, hand_values
+from calcreport.calculate.handing import hand_values
+from calcreport.calculate.linking import find_path
 from calcreport.calculate.model import Case, Expected, Plan, Worked
 from calcreport.core.problems import Problems
 from calcreport.core.quantity import Amount

@@ -5,10 +5,10 @@
 
 from __future__ import annotations
 
-import re
 from fractions import Fraction
 
 from calcreport.calculate.exact import exact_or_float
+from calcreport.calculate.linking import find_path
 from calcreport.calculate.model import (
     BarCallout,
     Calculation,
@@ -25,9 +25,6 @@ from calcreport.calculate.model import (
 )
 from calcreport.core.problems import Problems
 from calcreport.core.quantity import Amount
-from calcreport.core.source import Span
-
-_STEP = re.compile(r"([A-Za-z][\w.]*)\[([^\]]*)\]\.")
 
 
 def empty_values(plan: Plan) -> Values:
@@ -139,59 +136,6 @@ class _Hander:
             self.store(slot, key, value)
         else:
             self.store(slot, key, value)
-
-
-def find_path(worked: Worked, path: str, span: Span, problems: Problems) -> tuple[int, Key] | None:
-    """Find `combination[4 W+].P_u` among a calculation's values; adds `unknown-name` where it cannot."""
-    key: list[int] = []
-    rest, mark = path, worked.calculation.mark
-    while step := _STEP.match(rest):
-        rows = next((r for r in worked.plan.sets if r.name == step[1]), None)
-        names = worked.values.names[rows.index].get(tuple(key[: len(rows.outer)]), ()) if rows else ()
-        if step[2] not in names:
-            problems.add(
-                "not-a-row",
-                span,
-                f"{mark} has no row `{step[2][:40]}` in `{step[1][:40]}`",
-                expected="one of " + ", ".join(names) if names else "a set of that calculation",
-                found=step[2][:40],
-                hint=problems.near(step[2], names),
-            )
-            return None
-        key.append(names.index(step[2]))
-        rest = rest[step.end() :]
-    slot = worked.plan.by_path.get(rest)
-    if slot is None:
-        problems.add(
-            "unknown-name",
-            span,
-            f"{mark} gives no `{rest[:40]}`",
-            expected="a symbol of that calculation",
-            found=rest[:40],
-            hint=problems.near(rest, worked.plan.by_path),
-        )
-        return None
-    if len(worked.values.sets[slot]) != len(key):
-        sets = [worked.plan.sets[s].name for s in worked.values.sets[slot]]
-        problems.add(
-            "row-leak",
-            span,
-            f"`{rest}` of {mark} has a value for every row",
-            expected="the row, as in " + "".join(f"{n}[ROW]." for n in sets) + rest,
-            found=path[:40],
-        )
-        return None
-    place = slot, tuple(key)
-    if worked.values.get(*place) is None:
-        problems.add(
-            "unknown-name",
-            span,
-            f"`{rest}` of {mark} was not worked",
-            expected="a value on its sheets",
-            found="a branch not taken, or a value that may be absent",
-        )
-        return None
-    return place
 
 
 def callout_output(callout: BarCallout, output: str) -> Fraction:

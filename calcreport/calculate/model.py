@@ -24,6 +24,7 @@ from calcreport.plan.model import (
     GivenRows,
     GivenValue,
     Inputs,
+    LinkedRows,
     LinkedValue,
     Plan,
     PlannedArm,
@@ -110,6 +111,13 @@ class Values:
     def row_names(self, index: int) -> tuple[str, ...]:
         """Return the names of a set's rows where its outer sets are open."""
         return self.names[index].get(tuple(self.open[outer] for outer in self.outer[index]), ())
+
+
+def split_path(path: str) -> tuple[list[tuple[str, str]], str]:
+    """Split `section[foot].combination[4 W+].P_u` into sets with their rows, and the symbol."""
+    *steps, symbol = path.split("].")
+    parted = (step.partition("[") for step in steps)
+    return [(name, row) for name, _, row in parted], symbol
 
 
 Work: TypeAlias = Callable[[Values], float]
@@ -280,6 +288,15 @@ class Worked:
     #: how its candidate was taken; None where nothing was to choose
     selection: Selection | None = None
 
+    def place(self, path: str) -> tuple[int, Key]:
+        """Return slot and key of a value by a path that was found good: `combination[4 W+].P_u`."""
+        steps, symbol = split_path(path)
+        slot = self.plan.by_path[symbol]
+        key: list[int] = []
+        for index, (_, row) in zip(self.values.sets[slot], steps, strict=True):
+            key.append(self.values.names[index][tuple(key[: len(self.values.outer[index])])].index(row))
+        return slot, tuple(key)
+
     @property
     def verdict(self) -> Verdict:
         """NG if any check is, else not evaluated if any is, else OK."""
@@ -341,6 +358,7 @@ __all__ = [
     "GivenValue",
     "Inputs",
     "Key",
+    "LinkedRows",
     "LinkedValue",
     "NoValue",
     "Plan",
@@ -383,4 +401,5 @@ __all__ = [
     "WorkedRows",
     "WorkedText",
     "WorkedUnknown",
+    "split_path",
 ]

@@ -8,10 +8,12 @@ from __future__ import annotations
 
 import hashlib
 from collections.abc import Callable
+from dataclasses import replace
 
 from calcreport.calculate.evaluate import Program
 from calcreport.calculate.exact import exact_or_float
-from calcreport.calculate.handing import find_path, hand_values
+from calcreport.calculate.handing import hand_values
+from calcreport.calculate.linking import find_path, hold_at, resolve_rows
 from calcreport.calculate.model import (
     BarCallout,
     Calculation,
@@ -20,6 +22,7 @@ from calcreport.calculate.model import (
     GivenValue,
     Inputs,
     Key,
+    LinkedRows,
     LinkedValue,
     Plan,
     Worked,
@@ -28,6 +31,7 @@ from calcreport.calculate.model import (
 from calcreport.calculate.selection import select
 from calcreport.core.problems import Problems, listed
 from calcreport.core.quantity import Amount
+from calcreport.core.source import Span
 from calcreport.core.units import dimension_words
 
 
@@ -43,8 +47,15 @@ def work_project(
     for done, place in enumerate(order):
         calculation = calculations[place]
         plan = plans.get(id(calculation.template))
-        if plan is None or not _hold_links(calculation, worked, by_mark, inputs.poisoned, problems):
+        if plan is None or not _hold_marks(calculation, worked, by_mark, inputs.poisoned, problems):
             continue
+<<<<<<< HEAD
+=======
+        before = problems.met
+        calculation = _with_rows(calculation, worked, problems)
+        if problems.met > before or not _hold_links(calculation, worked, problems):
+            continue
+>>>>>>> 027fea0 (Rows of a set from a table or from another calculation, pairs from a table, one row's value by name; a shelter as sample)
         program = programs.setdefault(id(plan), Program(plan))
         found = _work(calculation, program, worked, problems)
         if found is not None:
@@ -110,7 +121,7 @@ def _order(calculations: tuple[Calculation, ...], by_mark: dict[str, int], probl
                 circle = [calculations[p].mark for p in path[path.index(step[0]) :]]
                 problems.add(
                     "link-loop",
-                    step[1].span,
+                    step[1],
                     "links go in a circle",
                     expected="links that lead back to given values",
                     found=" → ".join([*circle, circle[0]]),
@@ -126,38 +137,52 @@ def _order(calculations: tuple[Calculation, ...], by_mark: dict[str, int], probl
     return order
 
 
-def _needed(calculation: Calculation, by_mark: dict[str, int]) -> list[tuple[int, LinkedValue]]:
-    return [(by_mark[link.mark], link) for _, link in _links(calculation) if link.mark in by_mark]
+def _asked(calculation: Calculation) -> list[LinkedValue | LinkedRows]:
+    """Return all that a calculation takes from others: values, and whole sets of rows."""
+    rows = [value.linked for value in calculation.given if isinstance(value, GivenRows) and value.linked is not None]
+    return [*(link for _, link in _links(calculation)), *rows]
 
 
-def _hold_links(
+def _needed(calculation: Calculation, by_mark: dict[str, int]) -> list[tuple[int, Span]]:
+    return [(by_mark[link.mark], link.span) for link in _asked(calculation) if link.mark in by_mark]
+
+
+def _hold_marks(
     calculation: Calculation,
     worked: dict[str, Worked],
     by_mark: dict[str, int],
     poisoned: frozenset[str],
     problems: Problems,
 ) -> bool:
+    """Tell whether every calculation that values are taken from is there, and was worked."""
+    good = True
+    for link in _asked(calculation):
+        if link.mark in by_mark or link.mark in poisoned:
+            good = good and link.mark in worked
+            continue
+        problems.add("unknown-name", link.span, f"there is no calculation `{link.mark[:40]}`",
+                     expected="the mark of a calculation of this project", found=link.mark[:40],
+                     hint=problems.near(link.mark, by_mark))  # fmt: skip
+        good = False
+    return good
+
+
+def _with_rows(calculation: Calculation, worked: dict[str, Worked], problems: Problems) -> Calculation:
+    """Return a calculation whose rows taken from others stand as links, cell by cell."""
+    given: list[GivenValue | GivenRows | GivenPairs] = []
+    for value in calculation.given:
+        linked = value.linked if isinstance(value, GivenRows) else None
+        if isinstance(value, GivenRows) and linked is not None and hold_at(linked, worked[linked.mark], problems):
+            value = resolve_rows(value, linked, worked[linked.mark], problems) or value
+        given.append(value)
+    return replace(calculation, given=tuple(given))
+
+
+def _hold_links(calculation: Calculation, worked: dict[str, Worked], problems: Problems) -> bool:
     """Tell whether every link of a calculation leads to a value of the right dimension."""
     good = True
     for value, link in _links(calculation):
-        if link.mark in poisoned:
-            good = False
-            continue
-        if link.mark not in by_mark:
-            problems.add(
-                "unknown-name",
-                link.span,
-                f"there is no calculation `{link.mark[:40]}`",
-                expected="the mark of a calculation of this project",
-                found=link.mark[:40],
-                hint=problems.near(link.mark, by_mark),
-            )
-            good = False
-            continue
-        source = worked.get(link.mark)
-        if source is None:
-            good = False
-            continue
+        source = worked[link.mark]
         place = find_path(source, link.path, link.span, problems)
         good = place is not None and _fits(value, link, source, place, problems) and good
     return good
@@ -239,8 +264,7 @@ def _canonical(value: GivenValue, worked: dict[str, Worked]) -> bytes:
             return handed.text.encode()
         case LinkedValue():
             source = worked[handed.mark]
-            slot = source.plan.by_path.get(handed.path.rpartition("].")[2], -1)
-            return f"{handed.mark}.{handed.path}={source.values.get(slot) if slot >= 0 else ''}".encode()
+            return f"{handed.mark}.{handed.path}={source.values.get(*source.place(handed.path))}".encode()
         case None:
             return b"none"
         case _:

@@ -23,7 +23,7 @@ template allows that, or `no row` inside a list of rows.
 A filter hides rows too. Reading what nobody sees, or passing it over, would both surprise; say which is meant.
 
     - {file: beams.xlsx, hidden: skip, template: demo/beam, mark: Mark, columns: {b: Width}}""",
-    "no-rows": """A schedule takes no row of its table.
+    "no-rows": """A schedule, or a set given from a table, takes no row of it.
 Either the table has headings alone, or no row holds what `where` asks for. Texts are compared as they stand.
 
     where: {Level: Two}      wrong where the column holds 2

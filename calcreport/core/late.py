@@ -20,6 +20,16 @@ def load_schedules() -> ModuleType:
     return import_module("calcreport.read.schedules")
 
 
+def load_row_tables() -> ModuleType:
+    """Return the module that takes rows from tables, for the same reason."""
+    return import_module("calcreport.read.row_tables")
+
+
+def load_tables() -> ModuleType:
+    """Return the module that reads the tables of a project, for the same reason."""
+    return import_module("calcreport.read.tables")
+
+
 def load_command(name: str) -> ModuleType:
     """Return the module of one of the program's commands."""
     return import_module(f"calcreport.commands.{name}")

@@ -6,6 +6,7 @@ Mappings in, `Calculation` records out; the marks of those that had problems are
 from __future__ import annotations
 
 import re
+from collections.abc import Callable
 from dataclasses import dataclass, field
 
 from calcreport.core.problems import Problems
@@ -17,7 +18,7 @@ from calcreport.read.library import Editions, Library
 from calcreport.read.model import SYSTEMS, Calculation, Given, System
 from calcreport.read.nodes import Mapping, Scalar
 from calcreport.read.single_values import Material
-from calcreport.read.values import ValueReader, is_complete
+from calcreport.read.values import RowSource, ValueReader, is_complete
 
 _MARK = re.compile(r"[A-Z][A-Za-z0-9]{0,11}")
 #: marks of the front sheets and appendices
@@ -34,6 +35,8 @@ class CalculationReader:
     system: System
     editions: Editions
     problems: Problems
+    #: what reads the tables that rows are given from, made when first needed
+    tables: Callable[[], RowSource]
     #: marks of calculations that had problems
     poisoned: set[str] = field(default_factory=set)
     _marks: dict[str, Span] = field(default_factory=dict)
@@ -71,11 +74,18 @@ class CalculationReader:
         if given is None and fields.node_of("given") is not None:
             return None
         materials = self.materials(fields, roles)
+<<<<<<< HEAD
         reader = ValueReader(materials, self.library.bar_table(template.name, system), node.span, self.problems)
         choice = read_choice(fields, template.body.given, reader)
         wanted = tuple(one for one in template.body.given if one.name not in choice.names)
         values = reader.read(wanted, self.once(given or Mapping((), node.span), choice), _named(mark))
         if not kept or not is_complete(values, wanted):
+=======
+        bars = self.library.bar_table(template.name, system)
+        reader = ValueReader(materials, bars, node.span, self.problems, self.tables)
+        values = reader.read(template.body.given, given or Mapping((), node.span), _named(mark))
+        if not kept or not is_complete(values, template.body.given):
+>>>>>>> 027fea0 (Rows of a set from a table or from another calculation, pairs from a table, one row's value by name; a shelter as sample)
             return None
         return Calculation(mark.text, title, template, values, node.span.text, mark.span,
                            choice.candidates, choice.pinned)  # fmt: skip

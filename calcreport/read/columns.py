@@ -70,7 +70,7 @@ class Table:
                          related=tuple((h.cell.span, "one of them") for h in found[:3]))  # fmt: skip
             return None
         problems.add("unknown-column", span, f"the table has no column `{name[:40]}`", expected=listed(known),
-                     found=name[:40] or "nothing", hint=self._elsewhere(name) or problems.near(name, known),
+                     found=name[:40] or "nothing", hint=self._elsewhere(name) or self._near(name, known, problems),
                      related=((self.headings[0].cell.span, "the headings"),) if self.headings else ())  # fmt: skip
         return None
 
@@ -78,6 +78,9 @@ class Table:
         """Return the columns a name fits: the whole heading, else the heading without its unit."""
         whole = [heading for heading in self.headings if heading.cell.text == name]
         return whole or [heading for heading in self.headings if heading.stem == name]
+
+    def _near(self, name: str, known: list[str], problems: Problems) -> str:
+        return problems.near(name, known) or problems.near(name, [heading.stem for heading in self.headings])
 
     def _elsewhere(self, name: str) -> str:
         """Return a hint where the heading stands in a row below the one taken for headings."""

@@ -28,7 +28,11 @@ def prepare(node: Node, table: Table, problems: Problems, in_list: bool = False)
     if is_use(node):
         return prepare_use(node, table, problems, in_list)
     if isinstance(node, Mapping):
-        inner = tuple(prepare(value, table, problems, in_list) for _, value in node.entries)
+        # the columns of a set that is given from another table are that table's
+        theirs = ("columns",) if node.get("file") is not None else ()
+        inner = tuple(
+            value if key.text in theirs else prepare(value, table, problems, in_list) for key, value in node.entries
+        )
     elif isinstance(node, Sequence):
         inner = tuple(prepare(item, table, problems, True) for item in node.items)
     else:
@@ -91,7 +95,10 @@ def _collect(node: Node, path: str, found: dict[str, Node]) -> None:
     if is_use(node):
         found[path] = node
     elif isinstance(node, Mapping):
+        theirs = node.get("file") is not None
         for key, value in node.entries:
+            if theirs and key.text in ("columns", "where"):
+                continue
             # `{value: {column: …}, source: …}` is the value itself
             _collect(value, path if key.text == "value" else f"{path}.{key.text}".lstrip("."), found)
     elif isinstance(node, Sequence):

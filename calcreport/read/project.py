@@ -8,8 +8,9 @@ from __future__ import annotations
 
 import re
 from datetime import date
+from functools import cache
 
-from calcreport.core.late import load_schedules
+from calcreport.core.late import load_row_tables, load_schedules, load_tables
 from calcreport.core.problems import Problems
 from calcreport.core.source import Source
 from calcreport.core.world import World
@@ -52,16 +53,20 @@ class ProjectReader:
         gatherer = Gatherer(self.world, source, self.problems)
         gatherer.gather(fields)
         editions = tuple(sorted(codes.editions.items()))
-        if stated and gatherer.gathered.schedules:
+        gathered = gatherer.gathered
+        tables = cache(lambda: load_tables().Tables(self.world, gathered.files, self.problems))
+        if stated and gathered.schedules:
             reading = load_schedules().ScheduleReader
-            reading(self.world, self.library, system, editions, gatherer.gathered, self.problems).read()
-        project = self.header(fields, system, codes, gatherer.gathered)
+            reading(self.library, system, editions, gathered, tables(), self.problems).read()
+        reader = CalculationReader(
+            self.library, gathered, system, editions, self.problems, lambda: load_row_tables().RowTables(tables())
+        )
+        # without a unit system no template can be chosen: that one problem is enough
+        calculations = reader.read() if stated else ()
+        project = self.header(fields, system, codes, gathered)
         if not stated:
-            # without a unit system no template can be chosen: that one problem is enough
             return None
-        reader = CalculationReader(self.library, gatherer.gathered, system, editions, self.problems)
-        calculations = reader.read()
-        if fields.node_of("calculations") is not None and not gatherer.gathered.calculations:
+        if fields.node_of("calculations") is not None and not gathered.calculations:
             self.hold_some(fields)
         return Inputs(project, calculations, frozenset(reader.poisoned))
 

@@ -5,6 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass, replace
 from typing import Literal, TypeAlias
 
+from calcreport.core.expression import Name
 from calcreport.core.quantity import Amount
 from calcreport.core.source import Source, Span
 from calcreport.read.template_model import Given, System, Template
@@ -14,8 +15,13 @@ from calcreport.read.template_model import Given, System, Template
 class ValueOrigin:
     """Where a given value was taken from, as the sheet prints it."""
 
+<<<<<<< HEAD
     kind: Literal["project file", "criteria", "material", "schedule", "line", "source", "none", "candidate"]
     #: material mark, stated source, schedule row, line such as 'FL2.M_u', or candidate such as '2 of 5'
+=======
+    kind: Literal["project file", "criteria", "material", "schedule", "table", "line", "source", "none"]
+    #: material mark, stated source, schedule row, file and rows, or line such as 'FL2.M_u'
+>>>>>>> 027fea0 (Rows of a set from a table or from another calculation, pairs from a table, one row's value by name; a shelter as sample)
     words: str
 
 
@@ -45,6 +51,23 @@ class LinkedValue:
     mark: str
     path: str
     span: Span
+    #: (set, row) under `at`; in the path too once the link is bound
+    at: tuple[tuple[Name, Name], ...] = ()
+
+
+@dataclass(frozen=True, slots=True)
+class LinkedRows:
+    """`{from: LC1.combination, at: {section: C3 foot}, columns: {P_u: P_u}}`: the rows of another calculation's set."""
+
+    mark: str
+    rows: Name
+    #: (set, row) for the other sets the values vary over
+    at: tuple[tuple[Name, Name], ...]
+    #: (column of ours, value of theirs)
+    columns: tuple[tuple[Given, Name], ...]
+    #: columns that hold the same in every row: `none`, or a material's property
+    same: tuple[GivenValue, ...]
+    span: Span
 
 
 #: what a single given value may be; None stands for `none` where the template lets it be absent
@@ -71,6 +94,8 @@ class GivenRows:
     cells: tuple[tuple[GivenValue, ...], ...]
     origin: ValueOrigin
     span: Span
+    #: another calculation's rows: names and cells are empty until that one is worked
+    linked: LinkedRows | None = None
 
 
 @dataclass(frozen=True, slots=True)

@@ -9,25 +9,27 @@ from __future__ import annotations
 from collections.abc import Iterator
 
 from calcreport.core.problems import Problems
-from calcreport.core.record import made, record, state
+from calcreport.core.record import record, state
 from calcreport.core.units import NONE
-from calcreport.core.world import World
 from calcreport.read.calculations import roles_of
-from calcreport.read.columns import Heading, Table, Use, is_bare, is_use, make_table, read_use, take, text_use
+from calcreport.read.columns import Table, Use, is_use, read_use, take, text_use
 from calcreport.read.fields import Fields
 from calcreport.read.filled import Filled, fill, prepare, prepare_use, schedule_columns, uses
 from calcreport.read.gathering import MOST_CALCULATIONS, Gathered
 from calcreport.read.library import Editions, Library
 from calcreport.read.model import SYSTEMS, Given, System, Template
 from calcreport.read.nodes import Mapping, Node, Scalar, Sequence, Told
-from calcreport.read.sheets import Sheet, SheetRow, read_sheet
+from calcreport.read.sheets import SheetRow
+from calcreport.read.tables import TABLE_KEYS, Choice, Tables
 
+<<<<<<< HEAD
 KEYS = ("file", "sheet", "heading row", "template", "mark", "title", "units", "columns", "given", "choose", "pinned",
         "where", "hidden")  # fmt: skip
+=======
+KEYS = (*TABLE_KEYS, "template", "mark", "title", "units", "columns", "given")
+>>>>>>> 027fea0 (Rows of a set from a table or from another calculation, pairs from a table, one row's value by name; a shelter as sample)
 #: keys the language has and this version does not read
 _LATER = ("together",)
-#: rows named when hidden ones are refused
-_NAMED = 12
 
 
 @record
@@ -39,20 +41,19 @@ class _Plan:
     title: Use | Scalar
     #: keys of a calculation with what stands under them
     entries: tuple[tuple[Scalar, Node | Use | Filled], ...]
-    where: tuple[tuple[Heading, frozenset[str]], ...]
+    choice: Choice
 
 
 @state
 class ScheduleReader:
     """Reads the schedules of one project."""
 
-    world: World
     library: Library
     system: System
     editions: Editions
     gathered: Gathered
+    tables: Tables
     problems: Problems
-    _sheets: dict[tuple[str, str], Sheet | None] = made(factory=dict)
 
     def read(self) -> None:
         """Add a calculation for every row, after those written out, and the tables to the files read."""
@@ -72,27 +73,23 @@ class ScheduleReader:
         fields = Fields(node, (*KEYS, *roles), "a schedule", self.problems, _LATER)
         fields.scalar("template", required=True)
         before = self.problems.met
-        table = self.table(fields)
+        table = self.tables.table(fields, self.label(fields))
         plan = self.plan(fields, table, template, roles) if table is not None else None
-        hidden = fields.choice("hidden", ("skip", "read"))
         if table is None or plan is None or self.problems.met > before:
             return
-        self.hold_shown(fields, plan, hidden)
+        taken = uses((plan.mark, plan.title, *(value for _, value in plan.entries)))
+        self.tables.hold_shown(fields, plan.choice, taken)
         if template is not None and not self.hold_units(node, template, plan):
             return
         met = self.problems.met
         found = 0
-        for row in table.rows:
-            if (row.hidden and hidden != "read") or not self.selected(row, plan):
-                continue
+        for row in self.tables.rows(plan.choice):
             found += 1
             calculation = self.calculation(node, row, plan)
             if calculation is not None:
                 yield calculation
         if not found and self.problems.met == met:
-            at = fields.span_of("where" if fields.has("where") else "file")
-            self.problems.add("no-rows", at, "no row of the table is taken", expected="one or more rows",
-                              found=f"{len(table.rows)} rows under the headings, none selected")  # fmt: skip
+            self.tables.say_no_rows(fields, table)
 
     def template(self, node: Mapping) -> Template | None:
         own, name = node.get("units"), node.get("template")
@@ -101,23 +98,9 @@ class ScheduleReader:
             return None
         return self.library.template(name.text, system, self.editions, name.span)
 
-    def table(self, fields: Fields) -> Table | None:
-        """Return the table of a schedule; a file named twice is read and echoed once."""
-        file, sheet = fields.scalar("file", required=True), fields.scalar("sheet")
-        heading_row = fields.whole("heading row", low=1, high=1000)
-        if file is None or (heading_row is None and fields.has("heading row")):
-            return None
-        key = file.text, sheet.text if sheet else ""
-        if key not in self._sheets:
-            self._sheets[key] = read_sheet(self.world, file, sheet, file.span.source, self.problems, self.label(*key))
-            found = self._sheets[key]
-            if found is not None:
-                self.gathered.files.append(found.source)
-        found = self._sheets[key]
-        return make_table(found, heading_row, fields.span_of("file"), self.problems) if found is not None else None
-
-    def label(self, file: str, sheet: str) -> str:
+    def label(self, fields: Fields) -> str:
         """Return what parts a table from the others of the project in print, '' where it is the only one."""
+        file, sheet = fields.text("file"), fields.text("sheet")
         others = {(_text(node.get("file")), _text(node.get("sheet"))) for node in self.gathered.schedules}
         if len(others) == 1:
             return ""
@@ -136,7 +119,8 @@ class ScheduleReader:
             if key.text in ("template", "units", "choose", "pinned", *roles):
                 entries.append((key, prepare(value, table, self.problems)))
         entries.append((Scalar("given", fields.span, False), self.given(fields, table)))
-        return _Plan(table, marked, titled, tuple(entries), self.where(fields, table)) if titled is not None else None
+        choice = self.tables.choice(fields, table)
+        return _Plan(table, marked, titled, tuple(entries), choice) if titled is not None else None
 
     def given(self, fields: Fields, table: Table) -> Filled:
         """Return the given values: those common to all rows, and those of columns."""
@@ -159,64 +143,14 @@ class ScheduleReader:
         node = Mapping(tuple((key, Told(key.span)) for key, _ in found), span)
         return Filled(node, tuple(inner for _, inner in found))
 
-    def where(self, fields: Fields, table: Table) -> tuple[tuple[Heading, frozenset[str]], ...]:
-        """Return the texts by which rows are selected, by column."""
-        mapping = fields.mapping("where")
-        if mapping is None:
-            return ()
-        choice = Fields(mapping, [key.text for key, _ in mapping.entries], "`where`", self.problems)
-        found = []
-        for key, _ in mapping.entries:
-            heading = table.find(key.text, key.span, self.problems)
-            words = frozenset(" ".join(scalar.text.split()) for scalar in choice.texts(key.text))
-            if heading is not None:
-                found.append((heading, words))
-        return tuple(found)
-
-    def selected(self, row: SheetRow, plan: _Plan) -> bool:
-        """Tell whether a row is one of those asked for."""
-        return all(row.cell(heading.index).text in words for heading, words in plan.where)
-
-    def hold_shown(self, fields: Fields, plan: _Plan, hidden: str) -> None:
-        """Add `hidden-rows` where what a spreadsheet hides would be read, or passed over, without a word."""
-        sheet = plan.table.sheet
-        rows = [row for row in plan.table.rows if row.hidden and self.selected(row, plan)]
-        if sheet.is_hidden and hidden != "read":
-            self.problems.add("hidden-rows", fields.span_of("sheet" if fields.has("sheet") else "file"),
-                              "the sheet is hidden", expected="a sheet that is shown, or `hidden: read`",
-                              found=sheet.source.sheet)  # fmt: skip
-        taken = uses((plan.mark, plan.title, *(value for _, value in plan.entries)))
-        used = {piece.index: piece for use in taken for piece in use.pieces if isinstance(piece, Heading)}
-        for index in sorted(sheet.hidden_columns & used.keys()):
-            if hidden != "read":
-                self.problems.add("hidden-rows", used[index].cell.span, "this column is hidden, and it is asked for",
-                                  expected="a column that is shown, or `hidden: read`",
-                                  found=used[index].cell.text)  # fmt: skip
-        if rows and not hidden:
-            names = ", ".join(str(row.number) for row in rows[:_NAMED]) + (" and more" if rows[_NAMED:] else "")
-            many = "1 row is" if len(rows) == 1 else f"{len(rows)} rows are"
-            self.problems.add("hidden-rows", rows[0].cell(0).span, f"{many} hidden",
-                              expected="`hidden: skip` or `hidden: read` beside `file`", found=f"row {names}",
-                              hint="a filter hides rows too")  # fmt: skip
-
     def hold_units(self, node: Mapping, template: Template, plan: _Plan) -> bool:
         """Tell whether every column of bare numbers says their unit where one is needed; told once, at the heading."""
         before = self.problems.met
         for path, said in schedule_columns(node).items():
             given = _declared(path, template.body.given)
             use = read_use(said, plan.table, self.problems) if given is not None else None
-            if given is None or use is None or use.unit or not isinstance(use.pieces[0], Heading):
-                continue
-            heading = use.pieces[0]
-            texts = {row.cell(heading.index).text for row in plan.table.rows if self.selected(row, plan)} - {"", "0"}
-            if texts and all(is_bare(text) for text in texts):
-                unit = given.symbol.unit.text if given.symbol and given.symbol.unit else ""
-                self.problems.add("bare-number", heading.cell.span, f"the numbers under `{heading.stem}` have no unit",
-                                  expected=f"the unit of `{given.name}` in the heading, or beside the column",
-                                  found=f"bare numbers, such as {min(texts)}",
-                                  hint=f"write {heading.stem} ({unit}), or {{column: {heading.stem}, unit: {unit}}}, "
-                                  "if that is the unit meant",
-                                  related=((use.span, "they are asked for here"),))  # fmt: skip
+            if given is not None and use is not None:
+                self.tables.hold_unit(given, use, plan.choice)
         return self.problems.met == before
 
     def calculation(self, node: Mapping, row: SheetRow, plan: _Plan) -> Mapping | None:

@@ -5,21 +5,21 @@ Text nodes in, `GivenValue` out. What is missing, bare or out of range is a prob
 
 from __future__ import annotations
 
-import re
 from dataclasses import dataclass
 from typing import TypeAlias
 
+from calcreport.core.expression import Name
 from calcreport.core.problems import Problems
 from calcreport.core.quantity import Amount, read_in_unit
 from calcreport.core.source import Span, TableSource
 from calcreport.read.bars import BarTable, read_callout
 from calcreport.read.fields import Fields, as_scalar, say_not_a_word
-from calcreport.read.model import BarCallout, Given, GivenValue, Handed, LinkedValue, ValueOrigin
+from calcreport.read.links import read_at, read_link
+from calcreport.read.model import BarCallout, Given, GivenValue, Handed, ValueOrigin
 from calcreport.read.nodes import Mapping, Node, Scalar
 
 #: mark of a material and its properties, None for one about which a problem was told
 Material: TypeAlias = tuple[Scalar, dict[str, Scalar | None]]
-_LINK = re.compile(r"([A-Za-z][A-Za-z0-9]*)\.([A-Za-z][\w.\[\]+ /-]*)")
 FILE = ValueOrigin("project file", "")
 NONE = ValueOrigin("none", "")
 
@@ -39,10 +39,10 @@ class SingleReader:
         """Read a value: text, `{value, source}` or `{from: MARK.symbol}`."""
         origin = FILE
         if isinstance(node, Mapping):
-            fields = Fields(node, ("value", "source", "from"), f"the value of `{given.name}`", self.problems, ("at",))
+            fields = Fields(node, ("value", "source", "from", "at"), f"the value of `{given.name}`", self.problems)
             if fields.has("from"):
-                linked = fields.scalar("from", required=True)
-                return self.link(given, linked) if linked else None
+                linked, at = fields.scalar("from", required=True), read_at(fields)
+                return self.link(given, linked, at) if linked else None
             source = fields.text("source")
             origin = ValueOrigin("source", source) if source else FILE
             inner = fields.node_of("value")
@@ -59,17 +59,10 @@ class SingleReader:
         origin = origin_at(scalar.span) if origin is FILE else origin
         return None if value is None else GivenValue(given, value, origin, scalar.span)
 
-    def link(self, given: Given, scalar: Scalar) -> GivenValue | None:
+    def link(self, given: Given, scalar: Scalar, at: tuple[tuple[Name, Name], ...]) -> GivenValue | None:
         """Read the name of another calculation's line."""
-        match = _LINK.fullmatch(scalar.text)
-        if match is None or given.kind not in ("value", "pairs"):
-            bars = given.kind in ("bars", "spaced bars")
-            self.problems.add("not-a-link", scalar.span, f"`{scalar.text[:40]}` cannot be linked here",
-                              expected="bars written out" if bars else "mark and symbol, such as FL2.M_u",
-                              found="a link" if bars else scalar.text[:40] or "nothing")  # fmt: skip
-            return None
-        value = LinkedValue(match[1], match[2], scalar.span)
-        return GivenValue(given, value, ValueOrigin("line", scalar.text), scalar.span)
+        value = read_link(given, scalar, at, self.problems)
+        return GivenValue(given, value, ValueOrigin("line", scalar.text), scalar.span) if value is not None else None
 
     def none(self, given: Given, scalar: Scalar) -> GivenValue | None:
         """Take the word `none`, where the template allows it."""

@@ -6,24 +6,54 @@ Nodes in, `GivenValue`, `GivenRows`, `GivenPairs` out. What is missing or unknow
 from __future__ import annotations
 
 import re
-from collections.abc import Iterable
-from dataclasses import dataclass
+from collections.abc import Callable, Iterable
+from dataclasses import dataclass, replace
+from typing import Protocol
 
 from calcreport.core.problems import listed
+from calcreport.core.record import record
 from calcreport.core.source import Span
-from calcreport.read.fields import as_items, as_mapping, as_scalar, is_empty, say_not_yet
+from calcreport.read.fields import as_items, as_mapping, as_scalar, is_empty
+from calcreport.read.links import read_linked_rows
 from calcreport.read.model import Given, GivenPairs, GivenRows, GivenValue, ValueOrigin
-from calcreport.read.nodes import Mapping, Node, Scalar, Told
+from calcreport.read.nodes import Mapping, Node, Scalar, Sequence, Told
 from calcreport.read.single_values import FILE, NONE, SingleReader, wanted
 
 _ROW_NAME = re.compile(r"\w[\w .+/-]{0,39}")
-#: ways to give rows that the language has and this version does not read
-_ROWS_LATER = ("file", "from", "columns", "where", "at")
+
+
+@record
+class Taken:
+    """Rows taken from a table: a list of mappings, and where they were taken from."""
+
+    rows: Sequence
+    origin: ValueOrigin
+
+
+@record
+class TakenPair:
+    """A value taken from a table, and the rows it is for, one of each set."""
+
+    names: tuple[Scalar, ...]
+    value: Scalar | Told
+
+
+class RowSource(Protocol):
+    """Takes rows and pairs from the tables of a project."""
+
+    def rows(self, given: Given, node: Mapping) -> Taken | None:
+        """Return the rows of a set."""
+
+    def pairs(self, given: Given, node: Mapping) -> tuple[tuple[TakenPair, ...], ValueOrigin] | None:
+        """Return values for pairs of rows."""
 
 
 @dataclass(frozen=True, slots=True)
 class ValueReader(SingleReader):
     """Reads the given values of one calculation."""
+
+    #: what reads the tables of the project, made when first needed; None for a case beside a template
+    tables: Callable[[], RowSource] | None = None
 
     def read(
         self, givens: tuple[Given, ...], node: Mapping, what: str
@@ -71,12 +101,13 @@ class ValueReader(SingleReader):
         """Read a list of rows, each a mapping of the set's columns and an optional `name`."""
         if isinstance(node, Scalar) and node.text == "none":
             return GivenRows(given, (), (), NONE, node.span) if self.may_be_none(given, node) else None
-        later = [key for key, _ in node.entries if key.text in _ROWS_LATER] if isinstance(node, Mapping) else []
-        if later:
-            say_not_yet(later[0], self.problems)
+        if isinstance(node, Mapping) and node.get("from") is not None:
+            return self.linked_rows(given, node)
+        taken = self.from_table(given, node) if isinstance(node, Mapping) and node.get("file") is not None else None
+        if isinstance(node, Mapping) and node.get("file") is not None and taken is None:
             return None
         before = self.problems.met
-        items = as_items(node, f"`{given.name}`", self.problems)
+        items = as_items(taken.rows if taken else node, f"`{given.name}`", self.problems)
         if self.problems.met > before:
             return None
         if not given.least <= len(items) <= given.most:
@@ -97,7 +128,31 @@ class ValueReader(SingleReader):
             values = Mapping(tuple(e for e in row.entries if e[0].text != "name"), row.span)
             found = self.read(given.columns, values, f"a row of `{given.name}`")
             cells.append(tuple(v for v in found if isinstance(v, GivenValue)))
-        return GivenRows(given, tuple(names), tuple(cells), _origin(cell for row in cells for cell in row), node.span)
+        origin = taken.origin if taken else _origin(cell for row in cells for cell in row)
+        return GivenRows(given, tuple(names), tuple(cells), origin, node.span)
+
+    def from_table(self, given: Given, node: Mapping) -> Taken | None:
+        """Take the rows of a set from a table of the project."""
+        tables = self.row_tables(node)
+        return tables.rows(given, node) if tables is not None else None
+
+    def row_tables(self, node: Mapping) -> RowSource | None:
+        """Return what takes rows from tables; a case beside a template has none."""
+        if self.tables is None:
+            self.problems.add("wrong-shape", node.span.part(0, 1), "a case writes its rows out",
+                              expected="rows, or pairs", found="a table")  # fmt: skip
+            return None
+        return self.tables()
+
+    def linked_rows(self, given: Given, node: Mapping) -> GivenRows | None:
+        """Read rows taken from another calculation; a column of a material is the same in every row."""
+        found = read_linked_rows(given, node, self.problems)
+        if found is None or found.linked is None:
+            return None
+        named = {column.name for column, _ in found.linked.columns} | {v.given.name for v in found.linked.same}
+        rest = (self.from_material(c, f"`{given.name}`") for c in given.columns if c.material and c.name not in named)
+        same = (*found.linked.same, *(value for value in rest if value is not None))
+        return replace(found, linked=replace(found.linked, same=same))
 
     def row_name(self, given: Given, label: Scalar | None, at: Span, names: list[str], number: int) -> None:
         """Keep a row's name, or its number; a name outside the set's list or twice is a problem."""
@@ -131,14 +186,23 @@ class ValueReader(SingleReader):
         if isinstance(node, Scalar) and node.text == "none":
             return GivenPairs(given, (), NONE, node.span) if self.may_be_none(given, node) else None
         if isinstance(node, Mapping) and node.get("file") is not None:
-            say_not_yet(node.entries[0][0], self.problems)
-            return None
+            return self.pairs_from_table(given, node)
         mapping = as_mapping(node, f"`{given.name}`", self.problems)
         if mapping is None:
             return None
         cells: list[tuple[tuple[str, ...], GivenValue]] = []
         self.pair_level(given, mapping, (), cells)
         return GivenPairs(given, tuple(cells), _origin(cell for _, cell in cells), node.span)
+
+    def pairs_from_table(self, given: Given, node: Mapping) -> GivenPairs | None:
+        """Take values for pairs of rows from a table with the names of both in columns."""
+        tables = self.row_tables(node)
+        taken = tables.pairs(given, node) if tables is not None else None
+        if taken is None:
+            return None
+        found = ((pair, self.value(given, pair.value)) for pair in taken[0] if not isinstance(pair.value, Told))
+        cells = tuple((tuple(name.text for name in pair.names), cell) for pair, cell in found if cell is not None)
+        return GivenPairs(given, cells, taken[1], node.span)
 
     def pair_level(
         self, given: Given, node: Mapping, key: tuple[str, ...], cells: list[tuple[tuple[str, ...], GivenValue]]

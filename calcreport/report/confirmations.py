@@ -11,16 +11,12 @@ from typing import TypeGuard
 
 from calcreport.calculate.model import (
     Comparison,
-    GivenPairs,
-    GivenRows,
-    GivenValue,
     Key,
     LinkedValue,
     PlannedBranches,
     PlannedGives,
     Values,
     Work,
-    Worked,
     WorkedBranches,
     WorkedCheck,
     WorkedEach,
@@ -42,6 +38,7 @@ from calcreport.report.forms import (
     holds,
     is_size,
     link_place,
+    linked_values,
     ratio_figure,
     reversed_sign,
     side_unit,
@@ -85,7 +82,7 @@ def _copied(values: Values) -> Values:
 def _given_figures(forms: CalculationForms, others: dict[str, CalculationForms]) -> None:
     """Add a figure for every value that was handed over."""
     worked = forms.worked
-    linked = _linked(worked)
+    linked = linked_values(worked)
     for (slot, key), exact in worked.values.given.items():
         symbol = worked.plan.slots[slot].symbol
         unit = symbol.unit or ONE
@@ -106,30 +103,6 @@ def _decimals(denominator: int) -> int | None:
         if 10**places % denominator == 0:
             return places
     return None
-
-
-def _linked(worked: Worked) -> dict[tuple[int, Key], LinkedValue]:
-    found: dict[tuple[int, Key], LinkedValue] = {}
-    planned = {given.given.name: given for given in worked.plan.givens}
-    for value in worked.calculation.given:
-        owner = planned[value.given.name]
-        match value:
-            case GivenValue(_, LinkedValue() as link):
-                found[owner.slot, ()] = link
-            case GivenRows():
-                for row, cells in enumerate(value.cells):
-                    for column, cell in zip(owner.columns, cells, strict=False):
-                        if isinstance(cell.value, LinkedValue):
-                            found[column.slot, (row,)] = cell.value
-            case GivenPairs():
-                names = [worked.values.names[index].get((), ()) for index in owner.over]
-                for row_names, cell in value.cells:
-                    if isinstance(cell.value, LinkedValue):
-                        key = tuple(n.index(r) for n, r in zip(names, row_names, strict=True))
-                        found[owner.slot, key] = cell.value
-            case GivenValue():
-                pass
-    return found
 
 
 def _link_figure(

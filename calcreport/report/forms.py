@@ -11,6 +11,9 @@ from fractions import Fraction
 from typing import TypeGuard
 
 from calcreport.calculate.model import (
+    GivenPairs,
+    GivenRows,
+    GivenValue,
     Key,
     LinkedValue,
     PlannedBranches,
@@ -124,13 +127,32 @@ class CalculationForms:
 
 def link_place(link: LinkedValue, worked: Worked) -> tuple[int, Key]:
     """Return slot and key of the line a link names; the link was found good when it was worked."""
-    *steps, symbol = link.path.split("].")
-    key: list[int] = []
-    for step in steps:
-        name, _, row = step.partition("[")
-        rows = next(r for r in worked.plan.sets if r.name == name)
-        key.append(worked.values.names[rows.index][tuple(key[: len(rows.outer)])].index(row))
-    return worked.plan.by_path[symbol], tuple(key)
+    return worked.place(link.path)
+
+
+def linked_values(worked: Worked) -> dict[tuple[int, Key], LinkedValue]:
+    """Return the values a calculation takes from others, by slot and key."""
+    found: dict[tuple[int, Key], LinkedValue] = {}
+    planned = {given.given.name: given for given in worked.plan.givens}
+    for value in worked.calculation.given:
+        owner = planned[value.given.name]
+        match value:
+            case GivenValue(_, LinkedValue() as link):
+                found[owner.slot, ()] = link
+            case GivenRows():
+                for row, cells in enumerate(value.cells):
+                    for column, cell in zip(owner.columns, cells, strict=False):
+                        if isinstance(cell.value, LinkedValue):
+                            found[column.slot, (row,)] = cell.value
+            case GivenPairs():
+                names = [worked.values.names[index].get((), ()) for index in owner.over]
+                for row_names, cell in value.cells:
+                    if isinstance(cell.value, LinkedValue):
+                        key = tuple(n.index(r) for n, r in zip(names, row_names, strict=True))
+                        found[owner.slot, key] = cell.value
+            case GivenValue():
+                pass
+    return found
 
 
 def reversed_sign(test: Compare) -> str:

@@ -8,7 +8,7 @@ from __future__ import annotations
 from calcreport.calculate.model import GivenPairs, GivenRows, GivenValue, Key, LinkedValue
 from calcreport.core.expression import Name, Node, Over, children
 from calcreport.report.digits import number_text
-from calcreport.report.forms import CalculationForms, link_place
+from calcreport.report.forms import CalculationForms, link_place, linked_values
 from calcreport.report.items import Script
 
 #: a tree deeper or longer than this is cut, and says so
@@ -34,6 +34,7 @@ class _Tracer:
         self.scripts, self.forms = scripts, forms
         self.lines: list[str] = []
         self.told: set[tuple[str, int, Key]] = set()
+        self._links: dict[str, dict[tuple[int, Key], LinkedValue]] = {}
 
     def value(self, mark: str, slot: int, key: Key, lead: str, branch: str) -> None:
         """Add a value's line and, below it, what it came from; a value told before is named only."""
@@ -61,11 +62,17 @@ class _Tracer:
             rows = dict(zip(worked.values.sets[slot], key, strict=True))
             self.collect(formula, mark, rows, found)
         else:
-            link = self.link(mark, slot)
+            link = self.links(mark).get((slot, key))
             if link is not None:
                 found.append((link.mark, *link_place(link, self.scripts[link.mark].worked)))
         unique = list(dict.fromkeys(found))
         return [(place == len(unique) - 1, one) for place, one in enumerate(unique)]
+
+    def links(self, mark: str) -> dict[tuple[int, Key], LinkedValue]:
+        """Return the values a calculation takes from others."""
+        if mark not in self._links:
+            self._links[mark] = linked_values(self.scripts[mark].worked)
+        return self._links[mark]
 
     def collect(self, node: Node, mark: str, rows: dict[int, int], found: list[tuple[str, int, Key]]) -> None:
         values = self.scripts[mark].worked.values
@@ -89,15 +96,11 @@ class _Tracer:
         text = number_text(figure).replace("−", "-") + power
         return text if unit is None or unit.text == "1" else f"{text} {unit.text}"
 
-    def link(self, mark: str, slot: int) -> LinkedValue | None:
-        worked = self.scripts[mark].worked
-        for given, planned in zip(worked.calculation.given, worked.plan.givens, strict=True):
-            if isinstance(given, GivenValue) and planned.slot == slot and isinstance(given.value, LinkedValue):
-                return given.value
-        return None
-
     def origin(self, mark: str, slot: int, key: Key) -> str:
         worked = self.scripts[mark].worked
+        link = self.links(mark).get((slot, key))
+        if link is not None:
+            return f"[line {link.mark}.{link.path}]"
         for given, planned in zip(worked.calculation.given, worked.plan.givens, strict=True):
             match given:
                 case GivenValue() if slot in (planned.slot, *planned.outputs):

@@ -17,6 +17,7 @@ from calcreport.plan.model import (
     GivenPairs,
     GivenRows,
     GivenValue,
+    LinkedRows,
     LinkedValue,
     PlannedGiven,
 )
@@ -83,6 +84,7 @@ def compare_paths(project: WorkedProject, make: Quantities | None = None) -> Agr
     total = Agreement(0, 0, 0.0, ())
     for place in project.order:
         worked = project.calculations[place]
+<<<<<<< HEAD
         selection = worked.selection
         for other in selection.tried if selection else ():
             if selection and other.place != selection.used:
@@ -114,15 +116,54 @@ def _compare(worked: Worked, again: dict[str, Rework], make: Quantities) -> tupl
     if len(judged) != len(rework.verdicts):
         found.append(Difference(f"{mark} checks", str(len(judged)), str(len(rework.verdicts))))
     return rework, Agreement(count, len(judged), largest, tuple(found))
+=======
+        mark = worked.calculation.mark
+        rework = Rework(worked.plan, make, partial(_given_names, worked, again), partial(_root, worked))
+        again[mark] = rework
+        _hand(worked, rework, again, make)
+        stopped = ""
+        try:
+            rework.run()
+        except Stopped as error:
+            stopped = str(error)
+        if bool(stopped) != bool(worked.stop):
+            found.append(Difference(f"{mark} stop", worked.stop.words if worked.stop else "none", stopped or "none"))
+        count, most, differing = _compare_values(worked, rework)
+        values, largest = values + count, max(largest, most)
+        found += differing
+        judged = [check for check in worked.checks if check.verdict in ("OK", "NG")]
+        verdicts += len(judged)
+        for check, (name, ok) in zip(judged, rework.verdicts, strict=False):
+            if check.line.name != name or (check.verdict == "OK") != ok:
+                found.append(Difference(f"{mark}.{check.line.name}", check.verdict, "OK" if ok else "NG"))
+        if len(judged) != len(rework.verdicts):
+            found.append(Difference(f"{mark} checks", str(len(judged)), str(len(rework.verdicts))))
+    return Agreement(values, verdicts, largest, tuple(found))
+>>>>>>> 027fea0 (Rows of a set from a table or from another calculation, pairs from a table, one row's value by name; a shelter as sample)
 
 
-def _given_names(worked: Worked, index: int) -> list[tuple[Key, tuple[str, ...]]]:
-    """Return the row names of a set handed over; sets made on the sheet are made again."""
+def _given_names(worked: Worked, again: dict[str, Rework], index: int) -> list[tuple[Key, tuple[str, ...]]]:
+    """Return the row names of a set handed over; sets made on the sheet, here or there, are made again."""
     for planned in worked.plan.givens:
         if planned.rows == index:
             value = next(v for v in worked.calculation.given if v.given.name == planned.given.name)
+            if isinstance(value, GivenRows) and value.linked is not None:
+                return [((), _linked_names(value.linked, again[value.linked.mark]))]
             return [((), value.names)] if isinstance(value, GivenRows) else []
     return []
+
+
+def _linked_names(linked: LinkedRows, source: Rework) -> tuple[str, ...]:
+    """Return the names of the rows another calculation made, by the second path."""
+    named = [source.plan.slots[source.plan.by_path[name.name]] for _, name in linked.columns]
+    rows = [source.plan.sets[index] for slot in named for index in slot.sets] or list(source.plan.sets)
+    owner = next(one for one in rows if one.name == linked.rows.name)
+    at = {name.name: row.name for name, row in linked.at}
+    key: Key = ()
+    for outer in owner.outer:
+        one = source.plan.sets[outer]
+        key = (*key, source.names[outer, key[: len(one.outer)]].index(at[one.name]))
+    return source.names[owner.index, key]
 
 
 def _root(worked: Worked, slot: int, key: Key) -> float:
@@ -189,12 +230,12 @@ def _hand_one(
 
 def _linked(link: LinkedValue, source: Rework) -> Any:
     *steps, symbol = link.path.split("].")
+    slot = source.plan.by_path[symbol]
     key: list[int] = []
-    for step in steps:
-        name, _, row = step.partition("[")
-        rows = next(r for r in source.plan.sets if r.name == name)
-        key.append(source.names[rows.index, tuple(key[: len(rows.outer)])].index(row))
-    return source.values[source.plan.by_path[symbol], tuple(key)]
+    for step, index in zip(steps, source.plan.slots[slot].sets, strict=True):
+        outer = len(source.plan.sets[index].outer)
+        key.append(source.names[index, tuple(key[:outer])].index(step.partition("[")[2]))
+    return source.values[slot, tuple(key)]
 
 
 def _callout(callout: BarCallout, output: str, make: Quantities) -> Any:

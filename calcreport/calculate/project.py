@@ -8,7 +8,6 @@ from __future__ import annotations
 
 import hashlib
 from collections.abc import Callable
-from dataclasses import replace
 
 from calcreport.calculate.evaluate import Program
 from calcreport.calculate.exact import exact_or_float
@@ -49,13 +48,10 @@ def work_project(
         plan = plans.get(id(calculation.template))
         if plan is None or not _hold_marks(calculation, worked, by_mark, inputs.poisoned, problems):
             continue
-<<<<<<< HEAD
-=======
         before = problems.met
         calculation = _with_rows(calculation, worked, problems)
         if problems.met > before or not _hold_links(calculation, worked, problems):
             continue
->>>>>>> 027fea0 (Rows of a set from a table or from another calculation, pairs from a table, one row's value by name; a shelter as sample)
         program = programs.setdefault(id(plan), Program(plan))
         found = _work(calculation, program, worked, problems)
         if found is not None:
@@ -86,8 +82,7 @@ def _work(calculation: Calculation, program: Program, worked: dict[str, Worked],
 
 def _links(calculation: Calculation) -> list[tuple[GivenValue, LinkedValue]]:
     found: list[tuple[GivenValue, LinkedValue]] = []
-    chosen = (value for candidate in calculation.candidates for value in candidate.values)
-    for value in (*calculation.given, *chosen):
+    for value in calculation.handed:
         cells: tuple[GivenValue, ...]
         match value:
             case GivenValue():
@@ -139,7 +134,7 @@ def _order(calculations: tuple[Calculation, ...], by_mark: dict[str, int], probl
 
 def _asked(calculation: Calculation) -> list[LinkedValue | LinkedRows]:
     """Return all that a calculation takes from others: values, and whole sets of rows."""
-    rows = [value.linked for value in calculation.given if isinstance(value, GivenRows) and value.linked is not None]
+    rows = [value.linked for value in calculation.handed if isinstance(value, GivenRows) and value.linked is not None]
     return [*(link for _, link in _links(calculation)), *rows]
 
 
@@ -169,13 +164,14 @@ def _hold_marks(
 
 def _with_rows(calculation: Calculation, worked: dict[str, Worked], problems: Problems) -> Calculation:
     """Return a calculation whose rows taken from others stand as links, cell by cell."""
-    given: list[GivenValue | GivenRows | GivenPairs] = []
-    for value in calculation.given:
+
+    def resolved(value: GivenValue | GivenRows | GivenPairs) -> GivenValue | GivenRows | GivenPairs:
         linked = value.linked if isinstance(value, GivenRows) else None
         if isinstance(value, GivenRows) and linked is not None and hold_at(linked, worked[linked.mark], problems):
-            value = resolve_rows(value, linked, worked[linked.mark], problems) or value
-        given.append(value)
-    return replace(calculation, given=tuple(given))
+            return resolve_rows(value, linked, worked[linked.mark], problems) or value
+        return value
+
+    return calculation.changed(resolved)
 
 
 def _hold_links(calculation: Calculation, worked: dict[str, Worked], problems: Problems) -> bool:

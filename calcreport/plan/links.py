@@ -33,14 +33,14 @@ def bind_links(inputs: Inputs, plans: dict[int, Plan], problems: Problems) -> In
     kept: list[Calculation] = []
     poisoned = set(inputs.poisoned)
     for calculation in inputs.calculations:
-        if not any(_is_open(value) for value in calculation.given):
+        if not any(_is_open(value) for value in calculation.handed):
             kept.append(calculation)
             continue
         before = problems.met
         binder = _Binder(by_mark, problems)
-        given = tuple(binder.given(value) for value in calculation.given)
+        bound = calculation.changed(binder.given)
         if problems.met == before:
-            kept.append(replace(calculation, given=given))
+            kept.append(bound)
         else:
             poisoned.add(calculation.mark)
     return Inputs(inputs.project, tuple(kept), frozenset(poisoned))

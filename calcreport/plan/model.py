@@ -267,17 +267,9 @@ class Plan:
 
 
 __all__ = [
-<<<<<<< HEAD
     "BarCallout", "Calculation", "Candidate", "Case", "Expected", "FigureInput", "Given", "GivenPairs", "GivenRows",
-    "GivenValue", "Handed", "Inputs", "LinkedValue", "Plan", "PlannedArm", "PlannedBranchArm", "PlannedBranches",
-    "PlannedCheck", "PlannedColumn", "PlannedEach", "PlannedEntry", "PlannedFigure", "PlannedGiven", "PlannedGives",
-    "PlannedLine", "PlannedPart", "PlannedRequire", "PlannedRows", "PlannedText", "PlannedUnknown", "Project", "RowSet",
-    "Slot", "Symbol", "Template", "ValueOrigin",
-=======
-    "BarCallout", "Calculation", "Case", "Expected", "FigureInput", "Given", "GivenPairs", "GivenRows", "GivenValue",
-    "Handed", "Inputs", "LinkedRows", "LinkedValue", "Plan", "PlannedArm", "PlannedBranchArm", "PlannedBranches",
-    "PlannedCheck", "PlannedColumn", "PlannedEach", "PlannedEntry", "PlannedFigure", "PlannedGiven", "PlannedGives",
-    "PlannedLine", "PlannedPart", "PlannedRequire", "PlannedRows", "PlannedText", "PlannedUnknown", "Project",
-    "RowSet", "Slot", "Symbol", "Template", "ValueOrigin",
->>>>>>> 027fea0 (Rows of a set from a table or from another calculation, pairs from a table, one row's value by name; a shelter as sample)
+    "GivenValue", "Handed", "Inputs", "LinkedRows", "LinkedValue", "Plan", "PlannedArm", "PlannedBranchArm",
+    "PlannedBranches", "PlannedCheck", "PlannedColumn", "PlannedEach", "PlannedEntry", "PlannedFigure",
+    "PlannedGiven", "PlannedGives", "PlannedLine", "PlannedPart", "PlannedRequire", "PlannedRows", "PlannedText",
+    "PlannedUnknown", "Project", "RowSet", "Slot", "Symbol", "Template", "ValueOrigin",
 ]  # fmt: skip

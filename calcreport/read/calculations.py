@@ -74,18 +74,12 @@ class CalculationReader:
         if given is None and fields.node_of("given") is not None:
             return None
         materials = self.materials(fields, roles)
-<<<<<<< HEAD
-        reader = ValueReader(materials, self.library.bar_table(template.name, system), node.span, self.problems)
+        bars = self.library.bar_table(template.name, system)
+        reader = ValueReader(materials, bars, node.span, self.problems, self.tables)
         choice = read_choice(fields, template.body.given, reader)
         wanted = tuple(one for one in template.body.given if one.name not in choice.names)
         values = reader.read(wanted, self.once(given or Mapping((), node.span), choice), _named(mark))
         if not kept or not is_complete(values, wanted):
-=======
-        bars = self.library.bar_table(template.name, system)
-        reader = ValueReader(materials, bars, node.span, self.problems, self.tables)
-        values = reader.read(template.body.given, given or Mapping((), node.span), _named(mark))
-        if not kept or not is_complete(values, template.body.given):
->>>>>>> 027fea0 (Rows of a set from a table or from another calculation, pairs from a table, one row's value by name; a shelter as sample)
             return None
         return Calculation(mark.text, title, template, values, node.span.text, mark.span,
                            choice.candidates, choice.pinned)  # fmt: skip

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass, replace
 from typing import Literal, TypeAlias
 
@@ -15,13 +16,8 @@ from calcreport.read.template_model import Given, System, Template
 class ValueOrigin:
     """Where a given value was taken from, as the sheet prints it."""
 
-<<<<<<< HEAD
-    kind: Literal["project file", "criteria", "material", "schedule", "line", "source", "none", "candidate"]
-    #: material mark, stated source, schedule row, line such as 'FL2.M_u', or candidate such as '2 of 5'
-=======
-    kind: Literal["project file", "criteria", "material", "schedule", "table", "line", "source", "none"]
-    #: material mark, stated source, schedule row, file and rows, or line such as 'FL2.M_u'
->>>>>>> 027fea0 (Rows of a set from a table or from another calculation, pairs from a table, one row's value by name; a shelter as sample)
+    kind: Literal["project file", "criteria", "material", "schedule", "table", "line", "source", "none", "candidate"]
+    #: material mark, stated source, schedule row, file and rows, line such as 'FL2.M_u', or candidate such as '2 of 5'
     words: str
 
 
@@ -133,6 +129,18 @@ class Calculation:
     #: the engineer's candidates in order of preference, and the place of the pinned one (-1: none)
     candidates: tuple[Candidate, ...] = ()
     pinned: int = -1
+
+    @property
+    def handed(self) -> tuple[GivenValue | GivenRows | GivenPairs, ...]:
+        """Everything handed over, by whatever candidate."""
+        return (*self.given, *(value for candidate in self.candidates for value in candidate.values))
+
+    def changed(
+        self, change: Callable[[GivenValue | GivenRows | GivenPairs], GivenValue | GivenRows | GivenPairs]
+    ) -> Calculation:
+        """Return the calculation with everything handed over changed."""
+        chosen = (replace(one, values=tuple(map(change, one.values))) for one in self.candidates)
+        return replace(self, given=tuple(map(change, self.given)), candidates=tuple(chosen))
 
     def taking(self, place: int) -> Calculation:
         """Return the calculation with what one candidate chooses among its given values."""

@@ -22,12 +22,7 @@ from calcreport.read.nodes import Mapping, Node, Scalar, Sequence, Told
 from calcreport.read.sheets import SheetRow
 from calcreport.read.tables import TABLE_KEYS, Choice, Tables
 
-<<<<<<< HEAD
-KEYS = ("file", "sheet", "heading row", "template", "mark", "title", "units", "columns", "given", "choose", "pinned",
-        "where", "hidden")  # fmt: skip
-=======
-KEYS = (*TABLE_KEYS, "template", "mark", "title", "units", "columns", "given")
->>>>>>> 027fea0 (Rows of a set from a table or from another calculation, pairs from a table, one row's value by name; a shelter as sample)
+KEYS = (*TABLE_KEYS, "template", "mark", "title", "units", "columns", "given", "choose", "pinned")
 #: keys the language has and this version does not read
 _LATER = ("together",)
 

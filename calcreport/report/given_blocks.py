@@ -122,12 +122,6 @@ class GivenBlocks:
             case _:
                 return ("project file",)
 
-<<<<<<< HEAD
-    def lane(self, value: GivenValue | GivenRows | GivenPairs) -> SourceLane:
-        """Return the source lane of rows."""
-        told = value.origin.kind in ("schedule", "candidate")
-        return SourceLane(f"{value.origin.kind} {value.origin.words}" if told else "project file")
-=======
     def lane(self, value: GivenRows | GivenPairs) -> SourceLane:
         """Return the source lane of rows: a table, or the lines of another calculation that gave them."""
         if isinstance(value, GivenRows) and value.linked is not None:
@@ -137,13 +131,12 @@ class GivenBlocks:
             anchors = [f"{value.linked.mark}.{number}" for number in sorted(lines)]
             return SourceLane(value.origin.words, tuple(Reference(anchor, anchor) for anchor in anchors))
         match value.origin.kind:
-            case "schedule":
-                return SourceLane(f"schedule {value.origin.words}")
+            case "schedule" | "candidate":
+                return SourceLane(f"{value.origin.kind} {value.origin.words}")
             case "table":
                 return SourceLane(value.origin.words)
             case _:
                 return SourceLane("project file")
->>>>>>> 027fea0 (Rows of a set from a table or from another calculation, pairs from a table, one row's value by name; a shelter as sample)
 
     def given_table(self, item: SayRows) -> Block:
         """Return a set of given rows, or a value over pairs, as a table."""

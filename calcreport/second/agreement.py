@@ -84,7 +84,6 @@ def compare_paths(project: WorkedProject, make: Quantities | None = None) -> Agr
     total = Agreement(0, 0, 0.0, ())
     for place in project.order:
         worked = project.calculations[place]
-<<<<<<< HEAD
         selection = worked.selection
         for other in selection.tried if selection else ():
             if selection and other.place != selection.used:
@@ -98,7 +97,7 @@ def _compare(worked: Worked, again: dict[str, Rework], make: Quantities) -> tupl
     """Work one calculation again and compare."""
     mark = worked.calculation.mark
     found: list[Difference] = []
-    rework = Rework(worked.plan, make, partial(_given_names, worked), partial(_root, worked))
+    rework = Rework(worked.plan, make, partial(_given_names, worked, again), partial(_root, worked))
     _hand(worked, rework, again, make)
     stopped = ""
     try:
@@ -116,30 +115,6 @@ def _compare(worked: Worked, again: dict[str, Rework], make: Quantities) -> tupl
     if len(judged) != len(rework.verdicts):
         found.append(Difference(f"{mark} checks", str(len(judged)), str(len(rework.verdicts))))
     return rework, Agreement(count, len(judged), largest, tuple(found))
-=======
-        mark = worked.calculation.mark
-        rework = Rework(worked.plan, make, partial(_given_names, worked, again), partial(_root, worked))
-        again[mark] = rework
-        _hand(worked, rework, again, make)
-        stopped = ""
-        try:
-            rework.run()
-        except Stopped as error:
-            stopped = str(error)
-        if bool(stopped) != bool(worked.stop):
-            found.append(Difference(f"{mark} stop", worked.stop.words if worked.stop else "none", stopped or "none"))
-        count, most, differing = _compare_values(worked, rework)
-        values, largest = values + count, max(largest, most)
-        found += differing
-        judged = [check for check in worked.checks if check.verdict in ("OK", "NG")]
-        verdicts += len(judged)
-        for check, (name, ok) in zip(judged, rework.verdicts, strict=False):
-            if check.line.name != name or (check.verdict == "OK") != ok:
-                found.append(Difference(f"{mark}.{check.line.name}", check.verdict, "OK" if ok else "NG"))
-        if len(judged) != len(rework.verdicts):
-            found.append(Difference(f"{mark} checks", str(len(judged)), str(len(rework.verdicts))))
-    return Agreement(values, verdicts, largest, tuple(found))
->>>>>>> 027fea0 (Rows of a set from a table or from another calculation, pairs from a table, one row's value by name; a shelter as sample)
 
 
 def _given_names(worked: Worked, again: dict[str, Rework], index: int) -> list[tuple[Key, tuple[str, ...]]]:

@@ -38,7 +38,9 @@ def examine(calculation: Calculation) -> Account:
     for here in calculation.tables:
         desk.line, desk.sheet = here.line.number, calculation.sheet(here.table.page)
         other_rows(desk, here.table)
-        ratio_columns(desk, here.table)
+        of_line = [other.table for other in calculation.tables if other.line.number == here.line.number]
+        if of_line[0] is here.table:
+            ratio_columns(desk, of_line)
     one_form(desk)
     digits_used(desk)
     callouts(desk)
@@ -235,6 +237,18 @@ def _plain_substitution(formula: Node, numeric: Sequence[Node]) -> bool:
 # ---------------------------------------------------------------- checks
 
 
+def _ratio_check(desk: Desk, statement: Statement, tokens: Sequence[Token], scope: Scope) -> int:
+    """Hold a check whose symbol is the ratio itself against the value of that symbol."""
+    shown = Printed(statement.ratio)
+    desk.count("ratios")
+    value = valued(parse(tokens), scope)
+    if value.dimension != NONE or not rounds_to(value.number, shown):
+        desk.found("a ratio is its quotient", f"{plain(tokens)} is {short(value.number)}, printed {statement.ratio}")
+    if (shown.number > 1) != (statement.verdict == "NG"):
+        desk.found("a verdict follows from print", f"{plain(tokens)} = {statement.ratio} {statement.verdict}")
+    return 1
+
+
 def _check(desk: Desk, statement: Statement, scope: Scope) -> int:
     if statement.verdict not in ("OK", "NG"):
         raise Unread(f"verdict {statement.verdict!r}")
@@ -243,6 +257,8 @@ def _check(desk: Desk, statement: Statement, scope: Scope) -> int:
     if colon is not None:
         return _stated_check(desk, statement.tokens[colon + 1 :], failed)
     parts, relations = split(statement.tokens, "relation")
+    if not relations and statement.ratio:
+        return _ratio_check(desk, statement, parts[0], scope)
     if relations != ["="] or not statement.ratio:
         raise Unread(f"a check of another form: {statement}")
     formula, numeric = parse(parts[0]), parse(parts[1])

@@ -215,7 +215,9 @@ def _grid(
             continue
         worst = max(title, key=lambda s: float(s.ratio) if s.ratio else float("inf"))
         words = cell.split()
-        shown = worst.ratio or "NG"
+        # the row in full is the worst by all its checks: another row of the table may be worse by this one
+        ratios = [worst.ratio, *_tabled(calculation, name)] if worst.ratio else []
+        shown = max(ratios, key=float) if ratios else "NG"
         if shown not in words or ("NG" in words) != any(s.verdict == "NG" for s in title):
             yield Finding(
                 "the summary repeats the ratios",
@@ -223,6 +225,13 @@ def _grid(
                 0,
                 f"{name}: {cell!r}, on the sheet {worst.ratio} {worst.verdict}",
             )
+
+
+def _tabled(calculation: Calculation, name: str) -> list[str]:
+    """Return the ratios of a check in the tables of a calculation."""
+    tables = [here.table for here in calculation.tables]
+    cells = [r[i] for t in tables for r in t.rows for i, c in enumerate(t.columns) if not c.math and c.name == name]
+    return [cell.split()[0] for cell in cells if re.fullmatch(r"[\d.]+", cell.split()[0] if cell.split() else "")]
 
 
 def _handed(package: Package) -> Iterator[Finding]:

@@ -196,6 +196,8 @@ def source_numbers(line: NumberedLine) -> list[int]:
     if formulas and all(len(p) < 2 or (len(p) == 2 and printed_of(p[1]) is not None) for p in formulas):
         return []
     found = []
+    if re.search(r"\brows? \d", " ".join(line.source)):
+        return []  # rows of a table, which is no sheet
     for text in line.source:
         numbers = re.search(r"((?:(?<=\s)|^)\d{1,3}(?:\s+\d{1,3})*)$", text)
         if numbers and not re.search(r"line \d+$", text) and not re.search(r"(material|row) \S*$", text):

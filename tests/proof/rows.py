@@ -117,20 +117,28 @@ def other_rows(desk: Desk, table: Table) -> None:
                     desk.unread(f"row {row[0]} of {name}: {error}")
 
 
-def ratio_columns(desk: Desk, table: Table) -> None:
-    """Ratios in a table follow the check printed in full for one row, and that row is the worst."""
-    for statement, _ in _in_full(desk.calculation, table):
+def ratio_columns(desk: Desk, tables: Sequence[Table]) -> None:
+    """Ratios in a table, over however many sheets, follow the check printed in full for one row.
+
+    That row is the worst by its worst check.
+    """
+    rates: dict[str, list[Decimal]] = {}
+    shown = ""
+    for statement, _ in _in_full(desk.calculation, tables[0]):
         title = statement.words.removeprefix("CHECK").strip()
-        columns = [i for i, c in enumerate(table.columns) if not c.math and c.name == title]
-        if statement.kind != "check" or not columns:
+        if statement.kind != "check" or not any(not c.math and c.name == title for c in tables[0].columns):
             continue
         formula = split(statement.tokens, "relation")[0][0]
-        rated = {row[0]: _rated(desk, formula, table, row, row[columns[0]]) for row in table.rows}
-        shown = next(row for set_name, row in statement.context if set_name == table.set_name)
-        worst = max((rate for rate in rated.values() if rate is not None), default=None)
-        if worst is not None and rated.get(shown) != worst:
-            text = ", ".join(f"{row} {rate}" for row, rate in rated.items())
-            desk.found("the row shown in full is the worst", f"{title}: shown {shown}, ratios {text}")
+        shown = next(row for set_name, row in statement.context if set_name == tables[0].set_name)
+        for table in tables:
+            place = next(i for i, c in enumerate(table.columns) if not c.math and c.name == title)
+            for row in table.rows:
+                rate = _rated(desk, formula, table, row, row[place])
+                rates.setdefault(row[0], []).extend([rate] if rate is not None else [])
+    worst = max((rate for row in rates.values() for rate in row), default=None)
+    if worst is not None and worst not in rates.get(shown, []):
+        text = ", ".join(f"{row} {max(found)}" for row, found in rates.items() if found)
+        desk.found("the row shown in full is the worst", f"shown {shown}, ratios {text}")
 
 
 def _rated(desk: Desk, formula: Sequence[Token], table: Table, row: list[str], cell: str) -> Decimal | None:
@@ -147,7 +155,8 @@ def _rated(desk: Desk, formula: Sequence[Token], table: Table, row: list[str], c
     if any(token.kind == "fraction" or token.text == "/" for token in formula):
         try:
             value = valued(parse(formula), Scope(desk.calculation, ((table.set_name, row[0]),)))
-            if not matches(value, shown):
+            # a demand at or below zero is ratio zero
+            if not matches(value, shown) and not (value.number < 0 and shown.number == 0):
                 desk.found("a ratio is its quotient", f"row {row[0]}: worth {short(value.number)}, printed {cell}")
         except (Unread, Unknown, Mixed) as error:
             desk.unread(f"ratio of row {row[0]}: {error}")

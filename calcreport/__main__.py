@@ -35,6 +35,11 @@ def make_parser() -> argparse.ArgumentParser:
     lint = commands.add_parser("lint", help="report every problem of a project or a template with its place")
     lint.add_argument("file", metavar="FILE", help="a project file, a template file, or a template's name")
     lint.add_argument("--json", action="store_true", help="problems for machines")
+    lint.add_argument(
+        "--strict",
+        action="store_true",
+        help="exit with 1 where no case of a template reaches a rule and no reason is given",
+    )
     values = commands.add_parser("values", help="print every value and check, no PDF")
     _project(values)
     trace = commands.add_parser("trace", help="print the tree of lines behind one number")

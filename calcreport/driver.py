@@ -11,6 +11,8 @@ from dataclasses import dataclass
 from calcreport.calculate.cases import run_case
 from calcreport.calculate.model import Worked, WorkedProject
 from calcreport.calculate.project import work_project
+from calcreport.calculate.reachable import Reachable, Thing
+from calcreport.calculate.reached import Unreached, explained, reached, unreached
 from calcreport.core.problems import Problem, Problems
 from calcreport.core.source import Source
 from calcreport.core.world import World
@@ -47,7 +49,10 @@ class TemplateReport:
 
     problems: tuple[Problem, ...]
     variants: tuple[str, ...]
-    cases: int
+    #: how many agree; None without a case file, or where there were problems before
+    cases: int | None
+    #: what no case reaches, by place
+    unreached: tuple[Unreached, ...]
 
 
 def work(world: World, source: Source, progress: Progress = silent, instead: tuple[str, str] | None = None) -> Result:
@@ -94,34 +99,41 @@ def lint_template(world: World, name: str) -> TemplateReport:
     problems = Problems()
     library = Library(world, problems)
     head = library.head(name, None)
-    variants: list[str] = []
+    variants: dict[str, Template | None] = {}
     plans: dict[int, Plan] = {}
-    templates: list[Template] = []
     for system, code in head.codes if head else ():
         for year in (head.years if head else ()) or ("",):
             template = library.template(name, system, tuple(sorted(((code, year), (ANY, "")))), None)
-            variants.append(f"{system} {year}".strip())
-            templates += [template] if template is not None else []
-    for template in sound_templates(templates, problems):
+            variants[f"{system} {year}".strip()] = template
+    for template in sound_templates([template for template in variants.values() if template is not None], problems):
         plan = make_plan(template, problems)
         if plan is not None:
             plans[id(template)] = plan
             prove_cited(plan, problems)
-    cases = _run_cases(world, name, library, plans, problems) if not problems else 0
-    return TemplateReport(problems.sorted(), tuple(variants), cases)
+    if problems:
+        return TemplateReport(problems.sorted(), tuple(variants), None, ())
+    holds = {variant: Reachable(plans[id(template)]) for variant, template in variants.items() if template is not None}
+    cases, missed = _run_cases(world, name, library, holds, problems)
+    return TemplateReport(problems.sorted(), tuple(variants), cases, missed)
 
 
-def _run_cases(world: World, name: str, library: Library, plans: dict[int, Plan], problems: Problems) -> int:
+def _run_cases(
+    world: World, name: str, library: Library, holds: dict[str, Reachable], problems: Problems
+) -> tuple[int | None, tuple[Unreached, ...]]:
+    """Run the cases of a template; returns how many there are, None without a case file, and what they leave out."""
     source = world.template_text(f"{name}.cases.yaml")
     if isinstance(source, str):
-        return 0
-    cases = read_cases(name, source, library, problems)
-    for case in cases:
-        template = case.calculation.template
-        plan = plans.get(id(template)) or make_plan(template, problems)
-        if plan is not None:
-            run_case(case, plan, problems)
-    return len(cases)
+        return None, unreached(holds, set())
+    file = read_cases(name, source, library, problems)
+    reachable = {id(held.plan.template): held for held in holds.values()}
+    found: set[Thing] = set()
+    for case in file.cases:
+        held = reachable[id(case.calculation.template)]
+        worked = run_case(case, held.plan, problems)
+        if worked is not None:
+            found |= reached(worked, held)
+    missed = unreached(holds, found)
+    return len(file.cases), explained(missed, file.reasons, holds, problems) if not problems else missed
 
 
 def worked_calculation(project: WorkedProject, mark: str) -> Worked | None:

@@ -35,13 +35,13 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
         "read.workbook",
     )),
     ("plan", (
-        "plan", "plan.closed", "plan.dimensions", "plan.equations", "plan.figures", "plan.formula_dimensions",
+        "plan", "plan.checks", "plan.closed", "plan.dimensions", "plan.equations", "plan.figures", "plan.formula_dimensions",
         "plan.link", "plan.links", "plan.made", "plan.model", "plan.names", "plan.parts", "plan.proofs", "plan.space",
     )),
     ("calculate", (
         "calculate", "calculate.cases", "calculate.compile", "calculate.evaluate", "calculate.exact",
         "calculate.handing", "calculate.judging", "calculate.linking", "calculate.margins", "calculate.model",
-        "calculate.project", "calculate.release", "calculate.selection",
+        "calculate.project", "calculate.reachable", "calculate.reached", "calculate.release", "calculate.selection",
     )),
     ("second", (
         "second", "second.agreement", "second.quantities", "second.rework",

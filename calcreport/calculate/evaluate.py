@@ -110,8 +110,9 @@ class Program:
             left = [check for check in _planned_checks(self.plan.lines) if id(check) not in reached]
             checks += [_not_evaluated(check, stop) for check in left]
         return Worked(
-            calculation, self.plan, values, tuple(lines), tuple(checks), stop, fingerprint, self.work, self.test
-        )
+            calculation, self.plan, values, tuple(lines), tuple(checks), stop, fingerprint, self.work, self.test,
+            tuple(owner for owner, _ in run.unfinished) if stop is not None else (),
+        )  # fmt: skip
 
     def work(self, node: Expression) -> Work:
         """Return a formula's callable, compiled at its first use."""
@@ -395,7 +396,7 @@ class _Run:
 
     def require(self, line: PlannedRequire) -> WorkedLine | None:
         if not self.holds(line.condition, line.span, line.cite):
-            raise _Stopped(Stop(line.span, f"requirement not met: {line.says}", line.cite.printed))
+            raise _Stopped(Stop(line.span, line.stops_with, line.cite.printed))
         if line.silent:
             return None
         return WorkedRequire(line, self.compared(line.condition, line.span, line.cite), self.opened)

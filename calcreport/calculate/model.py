@@ -41,6 +41,7 @@ from calcreport.plan.model import (
     PlannedText,
     PlannedUnknown,
     Project,
+    Reason,
     RowSet,
     Slot,
     Symbol,
@@ -287,6 +288,8 @@ class Worked:
     tested: Callable[[Condition], Test]
     #: how its candidate was taken; None where nothing was to choose
     selection: Selection | None = None
+    #: blocks that a stop left unfinished, outermost first
+    broken_off: tuple[PlannedLine, ...] = ()
 
     def place(self, path: str) -> tuple[int, Key]:
         """Return slot and key of a value by a path that was found good: `combination[4 W+].P_u`."""
@@ -376,6 +379,7 @@ __all__ = [
     "PlannedText",
     "PlannedUnknown",
     "Project",
+    "Reason",
     "RowSet",
     "Selection",
     "Slot",

@@ -7,10 +7,11 @@ import os
 from argparse import Namespace
 from pathlib import Path
 
+from calcreport.calculate.reached import Unreached
 from calcreport.commands.desk import one_problem, open_project, say_problems
 from calcreport.core.problems import Problems
 from calcreport.core.source import Source
-from calcreport.driver import lint_template, work
+from calcreport.driver import TemplateReport, lint_template, work
 from calcreport.filesystem import Disk, library_folder, read_text
 from calcreport.read.nodes import Mapping, read_tree
 
@@ -23,7 +24,7 @@ def run(arguments: Namespace) -> int:
     """Lint a template by its name or file, or a project."""
     name = _template_name(arguments.file)
     if name is not None:
-        return _template(*name, as_json=arguments.json)
+        return _template(*name, as_json=arguments.json, strict=arguments.strict)
     opened = open_project(arguments.file)
     if isinstance(opened, tuple):
         return say_problems(opened, arguments.json)
@@ -77,12 +78,58 @@ def _is_neither(source: Source) -> bool:
     return isinstance(tree, Mapping) and bool(tree.entries) and not any(tree.get(key) for key in _HEADER)
 
 
-def _template(disk: Disk, name: str, *, as_json: bool) -> int:
+def _template(disk: Disk, name: str, *, as_json: bool, strict: bool) -> int:
     report = lint_template(disk, name)
     if report.problems:
         return say_problems(report.problems, as_json)
+    left = [one for one in report.unreached if not one.because]
     if as_json:
-        print(json.dumps({"problems": [], "variants": report.variants, "cases": report.cases}))
+        found = {"problems": [], "variants": report.variants, "cases": report.cases or 0}
+        print(json.dumps({**found, "unreached": [_unreached(one) for one in report.unreached]}, ensure_ascii=False))
     else:
-        print(f"{name}: no problems in {', '.join(report.variants)}; {report.cases} cases agree")
-    return 0
+        for line in _told(name, report, left):
+            print(line)
+    return 1 if strict and left else 0
+
+
+def _told(name: str, report: TemplateReport, left: list[Unreached]) -> list[str]:
+    """Return what is said of a template without problems."""
+    head = f"{name}: no problems in {', '.join(report.variants)}; "
+    if report.cases is None:
+        file = f"{name.rpartition('/')[2]}.cases.yaml"
+        return [f"{head}no cases", f"no case reaches anything: there is no {file} beside the template"]
+    cases = "1 case agrees" if report.cases == 1 else f"{report.cases} cases agree"
+    rows = [head + cases]
+    if left:
+        rows.append(f"no case reaches {'this' if len(left) == 1 else f'these {len(left)}'}:")
+        rows += [f"  {_place(one)}  {one.thing.says}{_where(one)}" for one in left]
+    because = [one for one in report.unreached if one.because]
+    if because:
+        rows.append(
+            f"no case reaches {'this' if len(because) == 1 else f'these {len(because)}'}, for the reason given:"
+        )
+        rows += [f"  {_place(one)}  {one.thing.says}{_where(one)}: {one.because}" for one in because]
+    return rows
+
+
+def _place(one: Unreached) -> str:
+    span = one.thing.span
+    return f"{span.source.shown}:{span.source.place(span.start)[0]}"
+
+
+def _where(one: Unreached) -> str:
+    return f" ({', '.join(one.variants)})" if one.variants else ""
+
+
+def _unreached(one: Unreached) -> dict[str, object]:
+    """Return a thing no case reaches for machines."""
+    line, column = one.thing.span.source.place(one.thing.span.start)
+    return {
+        "file": one.thing.span.source.shown,
+        "line": line,
+        "column": column,
+        "kind": one.thing.kind,
+        "says": one.thing.says,
+        "in": list(one.variants),
+        "because": one.because,
+    }

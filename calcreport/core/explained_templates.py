@@ -46,6 +46,13 @@ Either the template is wrong, or the case: the source stands beside the expectat
 no source, so do not paste it back.
 
     M_n: {value: 240 kip*ft, tol: 0.5 kip*ft, source: 'textbook, Example 4-1'}""",
+    "check-twice": """Two checks of a template have one name.
+The summary, the cases and the schedule of members name a check by its name, so the two could not be told apart. In the
+branches of one block a name may stand once in each. A part used twice takes `as`, which comes before its names.
+
+    - {check: spacing, holds: 's <= s_max', cite: '4.2'}
+    - {check: spacing, holds: 's >= s_min', cite: '4.3'}          wrong
+    - {check: least spacing, holds: 's >= s_min', cite: '4.3'}    right""",
     "given-twice": """A name is given a second time where it already stands.
 A name means one thing from the line that gives it to the end, so that a reader need not ask which one is meant. Take
 another name. In the branches of one block a name may be given once in each.
@@ -98,6 +105,11 @@ equations cannot be proved and are better split.
     gives: a
     formula: 'A_s*f_y/(0.85*f_c)'
     as cited: '0.85*f_c*a*b = A_s*f_y'      wrong: b is missing above""",
+    "nothing-unreached": """An entry `no case` gives a reason for something that needs none.
+Either a case reaches it by now, or nothing of the template has this name: names are those that `lint` prints. Reasons
+that no longer hold would hide what does.
+
+    - {no case: 'check flexure NG', because: the section is chosen so that it cannot be}""",
     "part-clash": """A part gives a name that already stands where it is used.
 Write `as: stem` and use the part's names with the stem in front, or let the part say under `gives` which names it
 hands out.

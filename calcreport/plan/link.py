@@ -11,6 +11,7 @@ from dataclasses import replace
 
 from calcreport.core.expression import Name
 from calcreport.core.problems import Problems
+from calcreport.plan.checks import CheckNames
 from calcreport.plan.equations import balanced
 from calcreport.plan.figures import plan_figure
 from calcreport.plan.made import plan_rows
@@ -109,6 +110,7 @@ class _Linker:
         self.maker = Maker(problems)
         self.names = Names(self.maker.sets, problems)
         self.parts = PartHander(self.names, self.maker, problems)
+        self.checks = CheckNames(problems)
         self.covers: list[str] = []
         self.count = 0
 
@@ -174,6 +176,7 @@ class _Linker:
             case PartUse():
                 return self.part(line, space, at)
             case Check(name, holds, says, cite, span):
+                self.checks.take(space.stem + name, span)
                 return PlannedCheck(space.stem + name, names.condition(holds, space, at), says, cite, span)
             case Require(condition, says, cite, span):
                 return PlannedRequire(names.condition(condition, space, at), says, cite, span)
@@ -206,7 +209,9 @@ class _Linker:
         arms: list[PlannedBranchArm] = []
         given: list[dict[str, Known]] = []
         somewhere: dict[str, Known] = {}
+        checks, taken = dict(self.checks.taken), dict(self.checks.taken)
         for arm in line.arms:
+            self.checks.taken = dict(checks)
             space.siblings = {**siblings, **somewhere}
             when = None if arm.when is None else self.names.condition(arm.when, space, at)
             more = frozenset() if arm.when is None else assured(arm.when, space)
@@ -216,7 +221,8 @@ class _Linker:
             somewhere |= {name: value for name, value in space.partial.items() if name not in partial}
             somewhere |= given[-1]
             space.names, space.partial = dict(before), dict(partial)
-        space.siblings = siblings
+            taken |= self.checks.taken
+        space.siblings, self.checks.taken = siblings, taken
         everywhere = set.intersection(*(set(new) for new in given)) if given else set()
         for name, value in somewhere.items():
             (space.names if name in everywhere else space.partial)[name] = value
@@ -276,7 +282,8 @@ class _Linker:
         inner = self.parts.inner_space(line, body, space, frozenset(_given_below(body.lines)))
         seen = set(inner.names)
         handed = self.parts.hand_over(line, body, space, inner, at)
-        lines = handed + self.lines(body.lines, inner, at)
+        with self.checks.part(line.name.name, line.name.span):
+            lines = handed + self.lines(body.lines, inner, at)
         self.hold_gives(body, inner)
         own = seen | {name.name for name in line.same} | {name.name for name, _ in line.handed}
         self.parts.publish(line, body, inner, space, own)

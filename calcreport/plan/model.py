@@ -26,6 +26,7 @@ from calcreport.read.model import (
     LinkedRows,
     LinkedValue,
     Project,
+    Reason,
     Symbol,
     Template,
     ValueOrigin,
@@ -214,6 +215,11 @@ class PlannedRequire:
     span: Span
     silent: bool = False
 
+    @property
+    def stops_with(self) -> str:
+        """The words of the stop where it is not met."""
+        return f"requirement not met: {self.says}"
+
 
 @dataclass(frozen=True, slots=True)
 class FigureInput:
@@ -271,5 +277,5 @@ __all__ = [
     "GivenValue", "Handed", "Inputs", "LinkedRows", "LinkedValue", "Plan", "PlannedArm", "PlannedBranchArm",
     "PlannedBranches", "PlannedCheck", "PlannedColumn", "PlannedEach", "PlannedEntry", "PlannedFigure",
     "PlannedGiven", "PlannedGives", "PlannedLine", "PlannedPart", "PlannedRequire", "PlannedRows", "PlannedText",
-    "PlannedUnknown", "Project", "RowSet", "Slot", "Symbol", "Template", "ValueOrigin",
+    "PlannedUnknown", "Project", "Reason", "RowSet", "Slot", "Symbol", "Template", "ValueOrigin",
 ]  # fmt: skip

@@ -1,6 +1,7 @@
 """Case files beside templates: given values, expected results, and the source of each expectation.
 
-Text in, `Case` records out. A case whose expectation names no source is a problem.
+Text in, `Case` records out. A case whose expectation names no source is a problem. An entry `no case` gives the reason
+why something of the template is reached by none.
 """
 
 from __future__ import annotations
@@ -11,7 +12,7 @@ from calcreport.core.source import Source
 from calcreport.core.units import dimension_words
 from calcreport.read.fields import Fields, as_items, as_mapping
 from calcreport.read.library import ANY, Library
-from calcreport.read.model import SYSTEMS, Calculation, Case, Expected, Template
+from calcreport.read.model import SYSTEMS, Calculation, Case, CaseFile, Expected, Reason, Template
 from calcreport.read.nodes import Mapping, Node, Scalar, read_tree
 from calcreport.read.single_values import Material
 from calcreport.read.values import ValueReader, is_complete
@@ -20,17 +21,29 @@ _KEYS = ("case", "units", "year", "given", "materials", "expect", "stops")
 VERDICTS = ("OK", "NG", "not applicable", "not evaluated")
 
 
-def read_cases(template: str, source: Source, library: Library, problems: Problems) -> tuple[Case, ...]:
+def read_cases(template: str, source: Source, library: Library, problems: Problems) -> CaseFile:
     """Read a case file; each case is bound to its template for its system and year."""
     root = read_tree(source, problems)
     items = as_items(root, "a case file", problems) if root is not None else ()
-    found = []
+    found: list[Case] = []
+    reasons: list[Reason] = []
     for item in items:
         mapping = as_mapping(item, "a case", problems)
-        case = _CaseReader(template, mapping, library, problems).read() if mapping else None
+        if mapping is None:
+            continue
+        if mapping.get("no case") is not None:
+            reasons.append(_reason(mapping, problems))
+            continue
+        case = _CaseReader(template, mapping, library, problems).read()
         if case is not None:
             found.append(case)
-    return tuple(found)
+    return CaseFile(tuple(found), tuple(reasons))
+
+
+def _reason(mapping: Mapping, problems: Problems) -> Reason:
+    fields = Fields(mapping, ("no case", "because"), "an entry `no case`", problems)
+    what, because = fields.text("no case", required=True), fields.text("because", required=True)
+    return Reason(" ".join(what.split()), because, fields.span_of("no case"))
 
 
 class _CaseReader:

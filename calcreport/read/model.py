@@ -9,6 +9,7 @@ from calcreport.read.project_model import (
     Calculation,
     Candidate,
     Case,
+    CaseFile,
     Disposition,
     Expected,
     GivenPairs,
@@ -20,6 +21,7 @@ from calcreport.read.project_model import (
     LinkedRows,
     LinkedValue,
     Project,
+    Reason,
     ValueOrigin,
 )
 from calcreport.read.template_model import (
@@ -59,6 +61,7 @@ __all__ = [
     "Calculation",
     "Candidate",
     "Case",
+    "CaseFile",
     "Cell",
     "Check",
     "Disposition",
@@ -82,6 +85,7 @@ __all__ = [
     "PartUse",
     "Project",
     "Range",
+    "Reason",
     "Require",
     "Rows",
     "Symbol",

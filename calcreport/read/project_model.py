@@ -252,3 +252,21 @@ class Case:
     #: words of the requirement it must stop at, '' for none
     stops: str
     span: Span
+
+
+@dataclass(frozen=True, slots=True)
+class Reason:
+    """Why no case reaches something of a template, in its author's words."""
+
+    #: the name of the thing, as `lint` tells it
+    what: str
+    because: str
+    span: Span
+
+
+@dataclass(frozen=True, slots=True)
+class CaseFile:
+    """The cases beside a template, and the reasons for what they leave out."""
+
+    cases: tuple[Case, ...]
+    reasons: tuple[Reason, ...]

@@ -3,7 +3,10 @@
 from __future__ import annotations
 
 import json
+import re
 from pathlib import Path
+
+import pytest
 
 from tests.commands.desk import HEAD, LINES, PROJECT, TEMPLATE, make, run
 
@@ -60,7 +63,8 @@ def test_a_case_file_stands_for_its_template(tmp_path: Path) -> None:
         "    ratio: {outcome: OK, source: 'hand: 0.33 is below 1'}\n"
     )
     ran = run("lint", str(tmp_path / "trial.cases.yaml"))
-    assert ran.code == 0 and "1 cases agree" in ran.out
+    assert ran.code == 0
+    assert ran.out.split("\n")[0] == "trial: no problems in us; 1 case agrees"
 
 
 def test_what_is_neither_project_nor_template(tmp_path: Path) -> None:
@@ -81,3 +85,73 @@ def test_a_template_that_begins_with_a_mistake_is_still_a_template(tmp_path: Pat
     make(tmp_path, HEAD, ("templat" + TEMPLATE.removeprefix("template")) + LINES)
     ran = run("lint", str(tmp_path / "trial.yaml"))
     assert ran.code == 2 and "a template has no key `templat`" in ran.err
+
+
+CASE = """\
+- case: third
+  units: us
+  given: {b: 1 in}
+  expect:
+    r: {value: 0.3333, tol: 0.0001, source: 'hand: 1/3'}
+    ratio: {outcome: OK, source: 'hand: 0.33 is below 1'}
+"""
+
+
+def test_what_no_case_reaches_is_told_and_changes_the_exit_code_only_when_asked(tmp_path: Path) -> None:
+    make(tmp_path)
+    file = str(tmp_path / "trial.yaml")
+    (tmp_path / "trial.cases.yaml").write_text(CASE)
+    ran = run("lint", file)
+    assert ran.code == 0
+    assert ran.out.split("\n")[1:3] == ["no case reaches this:", f"  {file}:9  check ratio NG"]
+    assert run("lint", file, "--strict").code == 1
+    found = json.loads(run("lint", file, "--json").out)
+    assert found["cases"] == 1 and found["problems"] == []
+    assert found["unreached"] == [
+        {"file": file, "line": 9, "column": 5, "kind": "check", "says": "check ratio NG", "in": [], "because": ""}
+    ]
+    (tmp_path / "trial.cases.yaml").write_text(CASE + CASE.replace("third", "wide").replace("1 in", "4 in").replace(
+        "0.3333", "1.3333").replace("1/3", "4/3").replace("OK", "NG").replace("0.33 is below", "1.33 is above"))  # fmt: skip
+    ran = run("lint", file, "--strict")
+    assert ran.code == 0 and ran.out == "trial: no problems in us; 2 cases agree\n"
+
+
+def test_a_reason_stands_for_a_case(tmp_path: Path) -> None:
+    make(tmp_path)
+    (tmp_path / "trial.cases.yaml").write_text(CASE + "- {no case: check ratio NG, because: it is never wide}\n")
+    ran = run("lint", str(tmp_path / "trial.yaml"), "--strict")
+    assert ran.code == 0
+    assert ran.out.split("\n")[1:3] == [
+        "no case reaches this, for the reason given:",
+        f"  {tmp_path}/trial.yaml:9  check ratio NG: it is never wide",
+    ]
+
+
+def test_a_template_without_cases(tmp_path: Path) -> None:
+    make(tmp_path)
+    file = str(tmp_path / "trial.yaml")
+    ran = run("lint", file)
+    assert ran.code == 0 and run("lint", file, "--strict").code == 1
+    assert ran.out == (
+        "trial: no problems in us; no cases\n"
+        "no case reaches anything: there is no trial.cases.yaml beside the template\n"
+    )
+
+
+#: templates of the library and of the samples
+OURS = sorted(
+    path
+    for folder in ("templates", "samples")
+    for path in (Path(__file__).parents[2] / folder).rglob("*.yaml")
+    if re.search("^template:", path.read_text(encoding="utf-8"), re.MULTILINE)
+)
+
+
+@pytest.mark.parametrize("path", OURS, ids=[path.stem for path in OURS])
+def test_every_rule_of_our_templates_is_reached_or_says_why_not(path: Path) -> None:
+    ran = run("lint", str(path), "--strict")
+    assert ran.code == 0, ran.out + ran.err
+
+
+def test_our_templates_are_found() -> None:
+    assert {"beam-seat", "beta-1", "phi-flexure", "phi-tied"} <= {path.stem for path in OURS}

@@ -144,7 +144,7 @@ def _cases(name: str, world: World, library: Library, problems: Problems) -> tup
         return ()
     stops = _stop_sources(read_tree(source, problems))
     found: list[Held] = []
-    for case in read_cases(name, source, library, problems):
+    for case in read_cases(name, source, library, problems).cases:
         kinds = tuple(kind_of(expected.source) for expected in case.expected)
         best = next((kind for kind in kinds if kind in OUTSIDE), kinds[0] if kinds else "unstated")
         found.append(Held(case, kinds, kind_of(stops[case.span.start]) if case.stops else best))

@@ -53,7 +53,7 @@ def test_every_case_of_the_library_agrees() -> None:
         library = Library(disk, problems)
         plans = {}
         project = None
-        for case in read_cases(name, source, library, problems):
+        for case in read_cases(name, source, library, problems).cases:
             template = case.calculation.template
             if id(template) not in plans:
                 plans[id(template)] = make_plan(template, problems)

@@ -54,8 +54,9 @@ class Disk:
         names = []
         for path in sorted(self.library.rglob("*.yaml")):
             name = path.relative_to(self.library).with_suffix("").as_posix()
-            table = path.name in ("symbols.yaml", "project.yaml") or path.name.startswith("bars-")
-            if "/" in name and not table and not path.name.endswith(".cases.yaml"):
+            table = path.name == "symbols.yaml" or path.name.startswith("bars-")
+            is_starter = path.parent.name == "starter"
+            if "/" in name and not table and not is_starter and not path.name.endswith(".cases.yaml"):
                 names.append(name)
         return tuple(names)
 
@@ -116,6 +117,25 @@ def make_folder(path: Path) -> str:
         return "files stand in it" if any(path.iterdir()) else ""
     except OSError as error:
         return (error.strerror or "it cannot be made").lower()
+
+
+def make_files(files: dict[Path, bytes]) -> str:
+    """Write files that are not there yet, all or none of them. Returns '' or why not."""
+    made: list[Path] = []
+    why = ""
+    try:
+        for path, data in files.items():
+            with path.open("xb") as file:
+                made.append(path)
+                file.write(data)
+    except FileExistsError:
+        why = f"{path.name} stands there already"
+    except OSError as error:
+        why = (error.strerror or "the file cannot be written").lower()
+    for path in made if why else ():
+        with suppress(OSError):
+            path.unlink()
+    return why
 
 
 def replace_file(path: Path, data: bytes) -> str:

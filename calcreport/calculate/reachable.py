@@ -7,7 +7,6 @@ two editions or systems write alike is one thing; where they differ each has its
 from __future__ import annotations
 
 from collections.abc import Iterator
-from dataclasses import dataclass
 from typing import Literal, TypeAlias
 
 from calcreport.calculate.model import (
@@ -25,6 +24,7 @@ from calcreport.calculate.model import (
     PlannedUnknown,
 )
 from calcreport.core.expression import Compare, Condition, Is, Node, Over, walk
+from calcreport.core.record import record
 from calcreport.core.source import Span
 
 Kind: TypeAlias = Literal["edition", "line", "arm", "row", "check", "require", "table"]
@@ -35,7 +35,7 @@ Key: TypeAlias = tuple[int, str | int]
 _LONGEST = 90
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Thing:
     """Something a case may reach."""
 

@@ -7,7 +7,6 @@ from __future__ import annotations
 
 from collections.abc import Iterable
 from contextlib import suppress
-from dataclasses import dataclass, replace
 from itertools import zip_longest
 
 from calcreport.calculate.model import (
@@ -34,13 +33,14 @@ from calcreport.calculate.model import (
 from calcreport.calculate.reachable import Reachable, Thing, nodes_of
 from calcreport.core.expression import Compare, Logic, Node, Over, children
 from calcreport.core.problems import Problems
+from calcreport.core.record import record, replace
 from calcreport.core.source import Span
 
 #: two places of a table closer than this (relative) are one
 _TIE = 1e-9
 
 
-@dataclass(frozen=True, slots=True)
+@record
 class Unreached:
     """A thing no case reaches."""
 

@@ -111,7 +111,7 @@ class Program:
             checks += [_not_evaluated(check, stop) for check in left]
         return Worked(
             calculation, self.plan, values, tuple(lines), tuple(checks), stop, fingerprint, self.work, self.test,
-            tuple(owner for owner, _ in run.unfinished) if stop is not None else (),
+            broken_off=tuple(owner for owner, _ in run.unfinished) if stop is not None else (),
         )  # fmt: skip
 
     def work(self, node: Expression) -> Work:

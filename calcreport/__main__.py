@@ -34,6 +34,9 @@ def make_parser() -> argparse.ArgumentParser:
         action="store_true",
         help="work every value again by other arithmetic and other unit factors, and say how they agree",
     )
+    watch = commands.add_parser("watch", help="build again after every save, until interrupted")
+    watch.add_argument("project", metavar="PROJECT", help="a project file, or a folder that holds project.yaml")
+    watch.add_argument("-o", "--output", metavar="PDF", help="where to write it; beside the project file if not told")
     lint = commands.add_parser("lint", help="report every problem of a project or a template with its place")
     lint.add_argument("file", metavar="FILE", help="a project file, a template file, or a template's name")
     lint.add_argument("--json", action="store_true", help="problems for machines")

@@ -7,12 +7,14 @@ from __future__ import annotations
 
 from collections.abc import Callable, Iterable
 from dataclasses import dataclass
+from functools import partial
 
 from calcreport.calculate.cases import run_case
 from calcreport.calculate.model import Worked, WorkedProject
 from calcreport.calculate.project import work_project
 from calcreport.calculate.reachable import Reachable, Thing
 from calcreport.calculate.reached import Unreached, explained, reached, unreached
+from calcreport.core.kept import FRESH, Fresh
 from calcreport.core.problems import Problem, Problems
 from calcreport.core.source import Source
 from calcreport.core.world import World
@@ -55,27 +57,36 @@ class TemplateReport:
     unreached: tuple[Unreached, ...]
 
 
-def work(world: World, source: Source, progress: Progress = silent, instead: tuple[str, str] | None = None) -> Result:
+def work(
+    world: World,
+    source: Source,
+    progress: Progress = silent,
+    instead: tuple[str, str] | None = None,
+    kept: Fresh = FRESH,
+) -> Result:
     """Read, plan and work a project; calculations without problems are worked even beside problems.
 
     `instead` is a field of `codes` and another edition to take in it, for comparison and never for a package.
     """
     problems = Problems()
-    library = Library(world, problems)
+    library = kept.last("library")
+    if not (isinstance(library, Library) and library.renew(world, problems)):
+        library = Library(world, problems)
+        kept.put("library", library)
     inputs = ProjectReader(world, library, problems, instead).read(source)
     if inputs is None:
         return Result(problems.sorted())
-    plans = _plans(inputs, problems)
+    plans = _plans(inputs, problems, kept)
     inputs = bind_links(inputs, plans, problems)
-    worked = work_project(inputs, plans, problems, lambda done, total: progress("working", done, total))
+    worked = work_project(inputs, plans, problems, lambda done, total: progress("working", done, total), kept)
     return Result(problems.sorted(), worked)
 
 
-def _plans(inputs: Inputs, problems: Problems) -> dict[int, Plan]:
+def _plans(inputs: Inputs, problems: Problems, kept: Fresh) -> dict[int, Plan]:
     plans: dict[int, Plan] = {}
     templates = {id(c.template): c.template for c in inputs.calculations}.values()
     for template in sound_templates(templates, problems):
-        plan = make_plan(template, problems)
+        plan = kept.of("plan", id(template), (template,), partial(make_plan, template, problems))
         if plan is not None:
             plans[id(template)] = plan
     return plans

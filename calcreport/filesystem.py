@@ -10,6 +10,7 @@ import os
 from contextlib import suppress
 from dataclasses import dataclass
 from pathlib import Path
+from typing import TypeAlias
 
 from calcreport.core.source import Source
 from calcreport.core.world import NO_SUCH_FILE
@@ -18,6 +19,8 @@ from calcreport.core.world import NO_SUCH_FILE
 LARGEST_TEXT, LARGEST_BYTES = 8_000_000, 100_000_000
 #: an unfinished file this much older than a finished one (seconds) was left by a run that was killed
 _LEFT_BEHIND = 600.0
+#: times of writing and of change, size, number
+Stamp: TypeAlias = tuple[int, int, int, int]
 
 
 def library_folder() -> Path:
@@ -90,6 +93,16 @@ def read_text(folder: Path, path: str) -> Source | str:
         return f"it is not UTF-8 text: see line {data.count(10, 0, error.start) + 1}"
     shown = folder.as_posix()
     return Source(path, text.removeprefix("\ufeff").replace("\r\n", "\n"), "" if shown == "." else shown)
+
+
+def stamp(path: Path) -> Stamp | None:
+    """Return how a file looks from outside, None where there is none; it looks different after every save."""
+    try:
+        found = path.stat()
+    except (OSError, ValueError):
+        return None
+    # a file moved into place has another number; one whose old time was set again has a new time of change
+    return found.st_mtime_ns, found.st_ctime_ns, found.st_size, found.st_ino
 
 
 def begins_with(path: Path, mark: bytes) -> bool:

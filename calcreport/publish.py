@@ -6,6 +6,7 @@ from dataclasses import dataclass, replace
 
 from calcreport.calculate.model import WorkedProject
 from calcreport.calculate.release import hold_release
+from calcreport.core.kept import FRESH, Fresh
 from calcreport.core.problems import Problem, Problems
 from calcreport.core.source import Source
 from calcreport.core.world import World
@@ -32,9 +33,11 @@ class Package:
     agreement: Agreement | None = None
 
 
-def report(world: World, source: Source, progress: Progress = silent, second: bool = False) -> Package:
+def report(
+    world: World, source: Source, progress: Progress = silent, second: bool = False, kept: Fresh = FRESH
+) -> Package:
     """Go as far as the composed report; with `second`, the disclosure says how the second path agrees."""
-    result = work(world, source, progress)
+    result = work(world, source, progress, kept=kept)
     if result.problems or result.worked is None:
         return Package(result.problems, result.worked)
     problems = Problems()
@@ -46,17 +49,19 @@ def report(world: World, source: Source, progress: Progress = silent, second: bo
         progress("working again", 0, 1)
         agreement = compare_paths(result.worked)
     evidence = agreement.words if agreement else ()
-    composed = compose(result.worked, lambda done, total: progress("composing", done, total), evidence)
+    composed = compose(result.worked, lambda done, total: progress("composing", done, total), evidence, kept)
     return Package((), result.worked, composed, agreement=agreement)
 
 
-def build(world: World, source: Source, progress: Progress = silent, second: bool = False) -> Package:
-    """Build the package of a project."""
-    told = report(world, source, progress, second)
+def build(
+    world: World, source: Source, progress: Progress = silent, second: bool = False, kept: Fresh = FRESH
+) -> Package:
+    """Build the package of a project; steps whose inputs have not changed are taken from `kept`."""
+    told = report(world, source, progress, second, kept)
     if told.composed is None:
         return told
     progress("laying out", 0, 1)
     fonts = installed_fonts()
-    pages = lay_out(told.composed.report, fonts)
+    pages = lay_out(told.composed.report, fonts, kept)
     progress("writing", 0, 1)
-    return replace(told, pages=pages, data=write_pdf(pages, fonts.files))
+    return replace(told, pages=pages, data=write_pdf(pages, fonts.files, kept=kept))

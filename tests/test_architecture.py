@@ -20,8 +20,8 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
     ("core", (
         "core", "core.explained_files", "core.explained_projects", "core.explained_schedules",
         "core.explained_templates", "core.explanations", "core.expression", "core.figures", "core.fontfile",
-        "core.grammar", "core.late", "core.problems", "core.quantity", "core.record", "core.source", "core.tokens",
-        "core.units", "core.version", "core.world",
+        "core.grammar", "core.kept", "core.late", "core.problems", "core.quantity", "core.record", "core.source",
+        "core.tokens", "core.units", "core.version", "core.world",
     )),
     ("methods", (
         "methods", "methods.roots",
@@ -39,9 +39,10 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
         "plan.link", "plan.links", "plan.made", "plan.model", "plan.names", "plan.parts", "plan.proofs", "plan.space",
     )),
     ("calculate", (
-        "calculate", "calculate.cases", "calculate.compile", "calculate.evaluate", "calculate.exact",
-        "calculate.handing", "calculate.judging", "calculate.linking", "calculate.margins", "calculate.model",
-        "calculate.project", "calculate.reachable", "calculate.reached", "calculate.release", "calculate.selection",
+        "calculate", "calculate.basis", "calculate.cases", "calculate.compile", "calculate.evaluate",
+        "calculate.exact", "calculate.handing", "calculate.judging", "calculate.linking", "calculate.margins",
+        "calculate.model", "calculate.project", "calculate.reachable", "calculate.reached", "calculate.release",
+        "calculate.selection",
     )),
     ("second", (
         "second", "second.agreement", "second.quantities", "second.rework",
@@ -70,10 +71,11 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
     ("filesystem", ("filesystem",)),
     ("driver", ("driver",)),
     ("publish", ("publish",)),
+    ("session", ("session",)),
     ("commands", (
         "commands", "commands.build", "commands.desk", "commands.editions", "commands.explain", "commands.lint",
         "commands.margins", "commands.new", "commands.reconcile", "commands.reconciling", "commands.schedule", "commands.templates",
-        "commands.trace", "commands.values",
+        "commands.trace", "commands.values", "commands.watch",
     )),
     ("__main__", ("__main__", "__init__")),
 )  # fmt: skip
@@ -108,6 +110,8 @@ BANNED: dict[str, tuple[str, ...]] = {
     "import_module": ("core.late",),
     # the clock
     "now": (), "today": (), "time": (), "localtime": (), "gmtime": (), "perf_counter": (),
+    # seconds that pass between saves, on the terminal alone
+    "monotonic": ("commands.watch",), "sleep": ("commands.watch",),
     # files
     "open": ("filesystem", "__main__"), "read_bytes": ("filesystem",), "write_bytes": (), "write_text": (),
     "NamedTemporaryFile": (), "mkstemp": (), "urlopen": (), "socket": (),

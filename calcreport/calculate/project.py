@@ -8,16 +8,16 @@ from __future__ import annotations
 
 import hashlib
 from collections.abc import Callable
+from dataclasses import replace
+from functools import partial
 
+from calcreport.calculate.basis import fingerprint, links_of, rests_on
 from calcreport.calculate.evaluate import Program
 from calcreport.calculate.exact import exact_or_float
 from calcreport.calculate.handing import hand_values
 from calcreport.calculate.linking import find_path, hold_at, resolve_rows
 from calcreport.calculate.model import (
-    BarCallout,
     Calculation,
-    GivenPairs,
-    GivenRows,
     GivenValue,
     Inputs,
     Key,
@@ -28,14 +28,18 @@ from calcreport.calculate.model import (
     WorkedProject,
 )
 from calcreport.calculate.selection import select
+from calcreport.core.kept import FRESH, Fresh
 from calcreport.core.problems import Problems, listed
-from calcreport.core.quantity import Amount
 from calcreport.core.source import Span
 from calcreport.core.units import dimension_words
 
 
 def work_project(
-    inputs: Inputs, plans: dict[int, Plan], problems: Problems, progress: Callable[[int, int], None]
+    inputs: Inputs,
+    plans: dict[int, Plan],
+    problems: Problems,
+    progress: Callable[[int, int], None],
+    kept: Fresh = FRESH,
 ) -> WorkedProject:
     """Work every calculation; `plans` are by the identity of the template."""
     calculations = inputs.calculations
@@ -43,7 +47,7 @@ def work_project(
     order = _order(calculations, by_mark, problems)
     programs: dict[int, Program] = {}
     worked: dict[str, Worked] = {}
-    for done, place in enumerate(order):
+    for number, place in enumerate(order, 1):
         calculation = calculations[place]
         plan = plans.get(id(calculation.template))
         if plan is None or not _hold_marks(calculation, worked, by_mark, inputs.poisoned, problems):
@@ -52,19 +56,21 @@ def work_project(
         calculation = _with_rows(calculation, worked, problems)
         if problems.met > before or not _hold_links(calculation, worked, problems):
             continue
-        program = programs.setdefault(id(plan), Program(plan))
-        found = _work(calculation, program, worked, problems)
+        program = programs.get(id(plan)) or kept.of("program", id(plan), (plan,), partial(Program, plan))
+        programs[id(plan)] = program
+        found = kept.of("work", calculation.mark, (program, *rests_on(calculation, worked)),
+                        partial(_work, calculation, program, worked, problems))  # fmt: skip
         if found is not None:
-            worked[calculation.mark] = found
-        progress(done + 1, len(order))
-    kept = tuple(worked[c.mark] for c in calculations if c.mark in worked)
-    place_of = {w.calculation.mark: place for place, w in enumerate(kept)}
+            worked[calculation.mark] = _placed(found, calculation)
+        progress(number, len(order))
+    done = tuple(worked[c.mark] for c in calculations if c.mark in worked)
+    place_of = {w.calculation.mark: place for place, w in enumerate(done)}
     places = tuple(place_of[calculations[p].mark] for p in order if calculations[p].mark in worked)
-    _hold_dispositions(inputs, kept, problems)
-    whole = hashlib.sha256("\n".join(w.fingerprint for w in kept).encode())
+    _hold_dispositions(inputs, done, problems)
+    whole = hashlib.sha256("\n".join(w.fingerprint for w in done).encode())
     for source in inputs.project.files:
         whole.update(source.text.encode())
-    return WorkedProject(inputs.project, kept, places, whole.hexdigest()[:16])
+    return WorkedProject(inputs.project, done, places, whole.hexdigest()[:16])
 
 
 def _work(calculation: Calculation, program: Program, worked: dict[str, Worked], problems: Problems) -> Worked | None:
@@ -75,24 +81,15 @@ def _work(calculation: Calculation, program: Program, worked: dict[str, Worked],
         values = hand_values(settled, program.plan, worked, problems)
         if problems.met > before:
             return None
-        return program.run(settled, values, _fingerprint(settled, calculation, worked))
+        return program.run(settled, values, fingerprint(settled, calculation, worked))
 
     return select(calculation, run) if calculation.candidates else run(calculation)
 
 
-def _links(calculation: Calculation) -> list[tuple[GivenValue, LinkedValue]]:
-    found: list[tuple[GivenValue, LinkedValue]] = []
-    for value in calculation.handed:
-        cells: tuple[GivenValue, ...]
-        match value:
-            case GivenValue():
-                cells = (value,)
-            case GivenRows():
-                cells = tuple(cell for row in value.cells for cell in row)
-            case GivenPairs():
-                cells = tuple(cell for _, cell in value.cells)
-        found += [(cell, cell.value) for cell in cells if isinstance(cell.value, LinkedValue)]
-    return found
+def _placed(found: Worked, calculation: Calculation) -> Worked:
+    """Return what was worked at the calculation's place in the file: it may have moved though nothing it says has."""
+    selection = found.selection
+    return replace(found, calculation=calculation.taking(selection.used) if selection is not None else calculation)
 
 
 def _order(calculations: tuple[Calculation, ...], by_mark: dict[str, int], problems: Problems) -> list[int]:
@@ -135,7 +132,7 @@ def _order(calculations: tuple[Calculation, ...], by_mark: dict[str, int], probl
 def _asked(calculation: Calculation) -> list[LinkedValue | LinkedRows]:
     """Return all that a calculation takes from others: values, and whole sets of rows."""
     rows = [value.linked for value in calculation.handed if isinstance(value, GivenRows) and value.linked is not None]
-    return [*(link for _, link in _links(calculation)), *rows]
+    return [*(link for _, link in links_of(calculation)), *rows]
 
 
 def _needed(calculation: Calculation, by_mark: dict[str, int]) -> list[tuple[int, Span]]:
@@ -177,7 +174,7 @@ def _with_rows(calculation: Calculation, worked: dict[str, Worked], problems: Pr
 def _hold_links(calculation: Calculation, worked: dict[str, Worked], problems: Problems) -> bool:
     """Tell whether every link of a calculation leads to a value of the right dimension."""
     good = True
-    for value, link in _links(calculation):
+    for value, link in links_of(calculation):
         source = worked[link.mark]
         place = find_path(source, link.path, link.span, problems)
         good = place is not None and _fits(value, link, source, place, problems) and good
@@ -225,46 +222,6 @@ def _fits(value: GivenValue, link: LinkedValue, source: Worked, place: tuple[int
         related=((given.range.span, "the template states the range"),),
     )
     return False
-
-
-def _fingerprint(settled: Calculation, calculation: Calculation, worked: dict[str, Worked]) -> str:
-    """Return sixteen hexadecimal digits over the given values, exactly, and the text of the template's files.
-
-    `settled` has a candidate's values among its own; the candidates not taken count too.
-    """
-    digest = hashlib.sha256()
-    template = calculation.template
-    digest.update(f"{template.name}\n{template.system}\n{template.year}\n".encode())
-    for source in template.files:
-        digest.update(source.text.encode())
-    for value in (*settled.given, *(value for one in calculation.candidates for value in one.values)):
-        digest.update(f"\n{value.given.name}=".encode())
-        match value:
-            case GivenValue():
-                digest.update(_canonical(value, worked))
-            case GivenRows():
-                for name, cells in zip(value.names, value.cells, strict=True):
-                    digest.update(f"|{name}:".encode() + b",".join(_canonical(cell, worked) for cell in cells))
-            case GivenPairs():
-                for names, cell in value.cells:
-                    digest.update("/".join(names).encode() + _canonical(cell, worked))
-    return digest.hexdigest()[:16]
-
-
-def _canonical(value: GivenValue, worked: dict[str, Worked]) -> bytes:
-    handed = value.value
-    match handed:
-        case Amount():
-            return f"{handed.value}".encode()
-        case BarCallout():
-            return handed.text.encode()
-        case LinkedValue():
-            source = worked[handed.mark]
-            return f"{handed.mark}.{handed.path}={source.values.get(*source.place(handed.path))}".encode()
-        case None:
-            return b"none"
-        case _:
-            return handed.encode()
 
 
 def _hold_dispositions(inputs: Inputs, kept: tuple[Worked, ...], problems: Problems) -> None:

@@ -25,13 +25,13 @@ def run(arguments: Namespace) -> int:
     if package.problems:
         return say_problems(package.problems, arguments.json, tail=UNWRITTEN)
     target = Path(arguments.output) if arguments.output else opened.path.with_suffix(".pdf")
-    failure = _write(target, package.data)
+    failure = put_package(target, package.data)
     if failure:
         return say_problems(failure, arguments.json, tail=UNWRITTEN)
     return _tell(package, target, arguments.json)
 
 
-def _write(target: Path, data: bytes) -> tuple[Problem, ...]:
+def put_package(target: Path, data: bytes) -> tuple[Problem, ...]:
     """Put the PDF in its place; only an earlier PDF may be replaced, never a project file given by mistake."""
     if os.path.isfile(target) and os.path.getsize(target) and not begins_with(target, b"%PDF-"):
         return one_problem("cannot-write", f"{target} is kept as it is", "a new name, or an earlier PDF",

@@ -9,8 +9,10 @@ that grows moves no other part's numbers. Knows the order of work; what stands o
 from __future__ import annotations
 
 from collections.abc import Iterable
-from dataclasses import dataclass
+from dataclasses import astuple, dataclass
+from functools import partial
 
+from calcreport.core.kept import FRESH, Fresh
 from calcreport.layout.cover import set_cover
 from calcreport.layout.filling import Body
 from calcreport.layout.flow import flow
@@ -48,7 +50,7 @@ class _Desk:
     stripped: Box
 
 
-def lay_out(report: Report, fonts: Fonts) -> Pages:
+def lay_out(report: Report, fonts: Fonts, kept: Fresh = FRESH) -> Pages:
     """Lay out a report; every item of every sheet at its place, numbers and links resolved."""
     lettering = Lettering(fonts, Formulas(fonts))
     marks = [part.mark for part in report.parts]
@@ -58,7 +60,9 @@ def lay_out(report: Report, fonts: Fonts) -> Pages:
     bodies: dict[str, tuple[Body, ...]] = {}
     for part in report.parts:
         if part.index is None and part.cover is None:
-            bodies[part.mark] = _bodies(laned if _needs_lanes(part) else wide, part, part.blocks)
+            desk = laned if _needs_lanes(part) else wide
+            inputs = (part.blocks, bool(part.strip), desk is laned, report.paper)
+            bodies[part.mark] = kept.of("bodies", part.mark, inputs, partial(_bodies, desk, part, part.blocks))
     covers = [part for part in report.parts if part.cover is not None]
     for part in covers:
         bodies[part.mark] = _cover_bodies(wide, part, 0)
@@ -68,7 +72,9 @@ def lay_out(report: Report, fonts: Fonts) -> Pages:
         bodies[part.mark] = _cover_bodies(wide, part, count)
     pages: list[Page] = []
     for part in report.parts:
-        pages.extend(_pages(laned if _needs_lanes(part) else wide, part, bodies[part.mark]))
+        desk = laned if _needs_lanes(part) else wide
+        rests_on = (bodies[part.mark], part.strip, part.kind, desk is laned, report.paper, astuple(part.facts))
+        pages.extend(kept.of("pages", part.mark, rests_on, partial(_pages, desk, part, bodies[part.mark])))
     return Pages(
         width=wide.sheet.width,
         height=wide.sheet.height,
@@ -160,13 +166,14 @@ def _extents(parts: Iterable[Part], bodies: dict[str, tuple[Body, ...]]) -> dict
     return extents
 
 
-def _pages(desk: _Desk, part: Part, bodies: tuple[Body, ...]) -> Iterable[Page]:
+def _pages(desk: _Desk, part: Part, bodies: tuple[Body, ...]) -> tuple[Page, ...]:
     """Number the sheets of a part and put frame and title block round their bodies."""
     sheet, lettering = desk.sheet, desk.lettering
     block = title_block(sheet, lettering, part.facts)
     frame = Placed(0.0, 0.0, desk.stripped if part.strip else desk.frame)
     strip = strip_items(sheet, lettering, part.strip) if part.strip else ()
     count = len(bodies)
+    pages: list[Page] = []
     for number, body in enumerate(bodies, start=1):
         label = sheet_label(part, number)
         around: tuple[Item, ...]
@@ -174,7 +181,8 @@ def _pages(desk: _Desk, part: Part, bodies: tuple[Body, ...]) -> Iterable[Page]:
             around = (Placed(0.0, 0.0, frame_box(sheet, foot=False)),)
         else:
             around = (frame, Placed(0.0, 0.0, block), *sheet_number(sheet, lettering, label, count))
-        yield Page(label, part.mark, number, count, (*strip, *body.items), around)
+        pages.append(Page(label, part.mark, number, count, (*strip, *body.items), around))
+    return tuple(pages)
 
 
 def _bookmarks(parts: Iterable[Part], bodies: dict[str, tuple[Body, ...]]) -> Iterable[Bookmark]:

@@ -9,6 +9,7 @@ Knows no fonts beyond their names in the page resources.
 
 from __future__ import annotations
 
+from collections.abc import Iterable
 from typing import TypeAlias
 
 from calcreport.core.record import record
@@ -25,6 +26,8 @@ _ARC = 0.5522847498
 #: boxes, strings and numbers kept as written before a store is emptied: those of some thirty sheets
 _KEPT = 5000
 
+#: by face: glyph to the text it stands for
+Used: TypeAlias = dict[Face, dict[int, str]]
 _Shape: TypeAlias = Stroke | Circle | Link | Anchor
 
 
@@ -61,8 +64,7 @@ class ContentWriter:
 
     def __init__(self) -> None:
         """Start with no glyphs used."""
-        #: by face: glyph to the text it stands for
-        self.used: dict[Face, dict[int, str]] = {face: {} for face in FONT_NAMES}
+        self.used: Used = {face: {} for face in FONT_NAMES}
         self._numbers = Numbers()
         self._codes = _Codes()
         self._strings: dict[tuple[Face, str, tuple[int, ...], tuple[int, ...]], str] = {}
@@ -191,12 +193,13 @@ class ContentWriter:
 
         Where characters share a glyph the lower stands for it, whichever comes first on the sheets.
         """
-        used = self.used[run.face]
         texts = (run.text,) if len(run.glyphs) == 1 else run.text
-        for glyph, text in zip(run.glyphs, texts, strict=True):
-            known = used.get(glyph)
-            if known is None or text < known:
-                used[glyph] = text
+        _note(self.used[run.face], zip(run.glyphs, texts, strict=True))
+
+    def take(self, used: Used) -> None:
+        """Note the glyphs that another writer has used."""
+        for face, glyphs in used.items():
+            _note(self.used[face], glyphs.items())
 
     def _shape(self, shape: Stroke | Circle, x: int, y: int) -> str:
         """Draw a line, a polygon or a circle about an offset in hundredths."""
@@ -237,6 +240,13 @@ class ContentWriter:
         if fill:
             return f"{pen}{number(fill).decode()} g {path}{paint} 0 g\n"
         return f"{pen}{path}{paint}\n"
+
+
+def _note(used: dict[int, str], glyphs: Iterable[tuple[int, str]]) -> None:
+    for glyph, text in glyphs:
+        known = used.get(glyph)
+        if known is None or text < known:
+            used[glyph] = text
 
 
 class _Codes(dict[int, str]):

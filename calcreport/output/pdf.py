@@ -9,12 +9,14 @@ Method: ISO 32000-1.
 from __future__ import annotations
 
 from collections.abc import Iterable, Mapping
+from functools import partial
 from sys import intern
 
 from calcreport.core.fontfile import FontFile
+from calcreport.core.kept import FRESH, Fresh
 from calcreport.core.record import record
 from calcreport.layout.model import Face, Page, Pages
-from calcreport.output.content import FONT_NAMES, Area, ContentWriter
+from calcreport.output.content import FONT_NAMES, Area, Content, ContentWriter, Used
 from calcreport.output.embed import embed_font
 from calcreport.output.file import PdfFile
 from calcreport.output.metadata import information, xmp_packet
@@ -35,13 +37,15 @@ class Attachment:
     description: str = ""
 
 
-def write_pdf(pages: Pages, fonts: Mapping[Face, FontFile], attachments: tuple[Attachment, ...] = ()) -> bytes:
+def write_pdf(
+    pages: Pages, fonts: Mapping[Face, FontFile], attachments: tuple[Attachment, ...] = (), kept: Fresh = FRESH
+) -> bytes:
     """Write all pages.
 
     ValueError when there are none, a link or bookmark leads nowhere, two anchors or two labels share a name,
     a bookmark skips a level, or the date is no ISO date.
     """
-    writer = PdfWriter(pages.width, pages.height)
+    writer = PdfWriter(pages.width, pages.height, kept)
     for page in pages.pages:
         writer.add(page)
     return writer.finish(pages, fonts, attachments)
@@ -64,9 +68,9 @@ class _Sheet:
 class PdfWriter:
     """Writes pages one after another, and at the end what binds them together."""
 
-    def __init__(self, width: float, height: float) -> None:
+    def __init__(self, width: float, height: float, kept: Fresh = FRESH) -> None:
         """Start a file of sheets of one size in points."""
-        self.width, self.height = width, height
+        self.width, self.height, self._kept = width, height, kept
         self._file = PdfFile()
         self._content = ContentWriter()
         self._numbers = Numbers()
@@ -79,11 +83,13 @@ class PdfWriter:
         if page.label in self._sheets:
             raise ValueError(f"two pages have the same label {page.label!r}")
         own = self._file.reserve()
-        body, block = (self._content.write(items, self.height) for items in (page.body, page.title_block))
+        inputs = page, round(self.height * 100)
+        body, block, packed, used = self._kept.of("sheet", page.label, inputs, partial(self._write, page))
+        self._content.take(used)
         streams = []
-        for content in (body, block):
+        for content, data in zip((body, block), packed, strict=True):
             self._file.mark(content.data)
-            streams.append(self._file.add(stream(content.data)))
+            streams.append(self._file.add(data))
         areas, anchors = body.links + block.links, body.anchors + block.anchors
         self._sheets[page.label] = _Sheet(
             own,
@@ -94,6 +100,16 @@ class PdfWriter:
             tuple([intern(anchor) for anchor, _, _ in anchors]),
             tuple([self._place(own, x, y) for _, x, y in anchors]),
         )
+
+    def _write(self, page: Page) -> tuple[Content, Content, tuple[bytes, bytes], Used]:
+        """Write the streams of a page, also packed, and the glyphs that are not yet among those used.
+
+        A page that may be asked for again is written by a writer of its own, which sees every glyph of the page.
+        """
+        writer = ContentWriter() if self._kept.keeps else self._content
+        body, block = (writer.write(items, self.height) for items in (page.body, page.title_block))
+        used = writer.used if self._kept.keeps else {}
+        return body, block, (stream(body.data), stream(block.data)), used
 
     def finish(self, pages: Pages, fonts: Mapping[Face, FontFile], attachments: tuple[Attachment, ...] = ()) -> bytes:
         """Write what binds the pages added, in the order of `pages`; give the whole file.

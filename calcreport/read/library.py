@@ -29,6 +29,13 @@ INCOMPLETE = "?"
 Editions = tuple[tuple[str, str], ...]
 
 
+def _alike(one: Source | str, other: Source | str) -> bool:
+    """Tell whether two readings of a file found the same: one text under one name, or nothing for one reason."""
+    if isinstance(one, Source) and isinstance(other, Source):
+        return (one.name, one.text, one.folder) == (other.name, other.text, other.folder)
+    return one == other
+
+
 def split_code(text: str) -> tuple[str, str] | None:
     """Split 'ACI 318-19' into name and year '2019'; None where the text names no edition."""
     match = _CODE.fullmatch(text.strip())
@@ -75,6 +82,14 @@ class Library:
     #: names of the templates being read, outermost first, and the files each has touched so far
     _open: list[str] = field(default_factory=list)
     _touched: list[set[str]] = field(default_factory=list)
+
+    def renew(self, world: World, problems: Problems) -> bool:
+        """Take up another run's problems; False where a file is not as it was found, or a problem was told in one."""
+        told = self.problems.stand_in(found for found in self._found.values() if isinstance(found, Source))
+        if told or any(isinstance(found, str) and found != NO_SUCH_FILE for found in self._found.values()):
+            return False
+        self.world, self.problems = world, problems
+        return all(_alike(world.template_text(file), found) for file, found in self._found.items())
 
     # -------------------------------------------------------- files
 

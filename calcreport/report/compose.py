@@ -7,8 +7,10 @@ from __future__ import annotations
 
 from collections.abc import Callable
 from dataclasses import dataclass, replace
+from functools import partial
 
 from calcreport.calculate.model import Worked, WorkedProject
+from calcreport.core.kept import FRESH, Fresh
 from calcreport.core.version import PROGRAM
 from calcreport.report import fronts
 from calcreport.report.calculation import Composer
@@ -33,10 +35,18 @@ class Composed:
     scripts: dict[str, Script]
 
 
-def compose(project: WorkedProject, progress: Callable[[int, int], None], evidence: tuple[str, ...] = ()) -> Composed:
+def compose(
+    project: WorkedProject,
+    progress: Callable[[int, int], None],
+    evidence: tuple[str, ...] = (),
+    kept: Fresh = FRESH,
+) -> Composed:
     """Compose the package; `evidence` is what the disclosure says of the second path."""
-    scripts = {worked.calculation.mark: write_script(worked) for worked in project.calculations}
-    forms = find_forms(project)
+    scripts: dict[str, Script] = {}
+    for worked in project.calculations:
+        mark = worked.calculation.mark
+        scripts[mark] = kept.of("script", mark, (worked.values,), partial(write_script, worked))
+    forms = find_forms(project, kept)
     entries = fronts.register(project, scripts)
     summary = summarise(project, entries)
     shared: dict[int, SymbolForms] = {}
@@ -45,7 +55,9 @@ def compose(project: WorkedProject, progress: Callable[[int, int], None], eviden
         symbols = shared.setdefault(id(worked.plan), SymbolForms(Notation(worked.plan.slots)))
         mark = worked.calculation.mark
         said = {name: dispositions(project, mark, name) for name in {check.line.name for check in worked.checks}}
-        blocks = Composer(Told(scripts[mark], forms, scripts, symbols), said).blocks()
+        # figures are solved with all calculations that links bind together: where they are kept, so are those' lines
+        inputs = (scripts[mark], forms[mark], tuple(sorted(said.items())))
+        blocks = kept.of("blocks", mark, inputs, Composer(Told(scripts[mark], forms, scripts, symbols), said).blocks)
         parts.append(_calculation(project, worked, scripts[mark], blocks))
         progress(done, len(project.calculations))
     sheets = SummarySheets(project, forms, scripts).blocks(summary, entries)

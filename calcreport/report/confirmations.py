@@ -7,6 +7,7 @@ Kept in one though long: one walk over all worked lines.
 from __future__ import annotations
 
 from collections.abc import Callable
+from functools import partial
 from typing import TypeGuard
 
 from calcreport.calculate.model import (
@@ -28,6 +29,7 @@ from calcreport.calculate.model import (
     WorkedUnknown,
 )
 from calcreport.core.expression import Call, Compare, Expression, Name, Node, Over, children, walk
+from calcreport.core.kept import FRESH, Fresh
 from calcreport.core.units import NONE, ONE, Unit
 from calcreport.report.digits import Digits, Id, Order, Sum, make_coarse_figure, make_figure
 from calcreport.report.forms import (
@@ -46,13 +48,39 @@ from calcreport.report.forms import (
 from calcreport.report.notation import has_values
 
 
-def find_forms(project: WorkedProject) -> dict[str, CalculationForms]:
-    """Return the forms of every calculation by mark, solved over the whole project."""
-    digits = Digits()
-    forms: dict[str, CalculationForms] = {}
+def find_forms(project: WorkedProject, kept: Fresh = FRESH) -> dict[str, CalculationForms]:
+    """Return the forms of every calculation by mark, solved over all that links bind together."""
     shared: dict[int, PlanForms] = {}
+    forms: dict[str, CalculationForms] = {}
+    for group in linked_groups(project):
+        inputs = tuple(worked.values for worked in group)
+        forms |= kept.of("forms", group[0].calculation.mark, inputs, partial(_solved, group, shared))
+    return forms
+
+
+def linked_groups(project: WorkedProject) -> tuple[tuple[Worked, ...], ...]:
+    """Return the calculations in groups that no link leaves, each in the order of work."""
+    group_of: dict[str, list[Worked]] = {}
     for place in project.order:
         worked = project.calculations[place]
+        joined = [worked]
+        for link in _linked(worked).values():
+            other = group_of[link.mark]
+            if other is not joined:
+                other += joined
+                joined = other
+            for one in joined:
+                group_of[one.calculation.mark] = joined
+        group_of[worked.calculation.mark] = joined
+    found = {id(group): group for group in group_of.values()}
+    rank = {id(project.calculations[place]): number for number, place in enumerate(project.order)}
+    return tuple(tuple(sorted(group, key=lambda one: rank[id(one)])) for group in found.values())
+
+
+def _solved(group: tuple[Worked, ...], shared: dict[int, PlanForms]) -> dict[str, CalculationForms]:
+    digits = Digits()
+    forms: dict[str, CalculationForms] = {}
+    for worked in group:
         plan = shared.setdefault(id(worked.plan), PlanForms())
         one = CalculationForms(worked, digits, _copied(worked.values), plan)
         forms[one.mark] = one

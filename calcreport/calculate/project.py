@@ -18,6 +18,8 @@ from calcreport.calculate.handing import hand_values
 from calcreport.calculate.linking import find_path, hold_at, resolve_rows
 from calcreport.calculate.model import (
     Calculation,
+    GivenPairs,
+    GivenRows,
     GivenValue,
     Inputs,
     Key,

@@ -12,12 +12,14 @@ from typing import TypeGuard
 
 from calcreport.calculate.model import (
     Comparison,
+    GivenRows,
     Key,
     LinkedValue,
     PlannedBranches,
     PlannedGives,
     Values,
     Work,
+    Worked,
     WorkedBranches,
     WorkedCheck,
     WorkedEach,
@@ -64,8 +66,9 @@ def linked_groups(project: WorkedProject) -> tuple[tuple[Worked, ...], ...]:
     for place in project.order:
         worked = project.calculations[place]
         joined = [worked]
-        for link in _linked(worked).values():
-            other = group_of[link.mark]
+        rows = [value.linked for value in worked.calculation.given if isinstance(value, GivenRows)]
+        for mark in {link.mark for link in (*linked_values(worked).values(), *rows) if link is not None}:
+            other = group_of[mark]
             if other is not joined:
                 other += joined
                 joined = other

@@ -23,6 +23,10 @@ ROOT = Path(__file__).parents[2]
 PATIENCE = 120.0
 
 
+def _hear_interrupts() -> None:
+    signal.signal(signal.SIGINT, signal.SIG_DFL)
+
+
 class _Watch:
     """A running `watch`, with what it prints line by line."""
 
@@ -34,6 +38,8 @@ class _Watch:
             stdout=subprocess.PIPE,
             stderr=subprocess.STDOUT,
             text=True,
+            # a shell starts what it puts in the background deaf to interrupts, and that is handed on
+            preexec_fn=_hear_interrupts,
         )
         self.lines: Queue[str] = Queue()
         self.said: list[str] = []

@@ -66,6 +66,8 @@ def make_parser() -> argparse.ArgumentParser:
     schedule.add_argument("project", metavar="PROJECT", help="a project file, or a folder that holds project.yaml")
     schedule.add_argument("-o", "--output", metavar="FILE", help="a .csv or .xlsx; the terminal if not told")
     _reconcile(commands.add_parser("reconcile", help="hold a schedule from the drawings against the calculations"))
+    schema = commands.add_parser("schema", help="print the JSON Schema of a kind of file, for editors")
+    schema.add_argument("kind", choices=("project", "template", "cases", "values"))
     explain = commands.add_parser("explain", help="tell what a problem means and how to mend it")
     explain.add_argument("slug", nargs="?", metavar="SLUG")
     return parser

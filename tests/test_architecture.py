@@ -30,9 +30,9 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
         "read", "read.bars", "read.bodies", "read.calculations", "read.candidates", "read.cases", "read.codes",
         "read.columns", "read.fields", "read.filled", "read.formulas", "read.gathering", "read.given", "read.library",
         "read.lines", "read.links", "read.made_rows", "read.malformed", "read.model", "read.nodes", "read.project",
-        "read.project_model", "read.row_tables", "read.schedules", "read.sheets", "read.single_values",
-        "read.symbols", "read.tables", "read.template_model", "read.values", "read.variants", "read.words",
-        "read.workbook",
+        "read.project_model", "read.project_schema", "read.row_tables", "read.schedules", "read.shapes",
+        "read.sheets", "read.single_values", "read.symbols", "read.tables", "read.template_model",
+        "read.template_schema", "read.values", "read.variants", "read.words", "read.workbook",
     )),
     ("plan", (
         "plan", "plan.checks", "plan.closed", "plan.dimensions", "plan.equations", "plan.figures", "plan.formula_dimensions",
@@ -74,7 +74,8 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
     ("session", ("session",)),
     ("commands", (
         "commands", "commands.build", "commands.desk", "commands.editions", "commands.explain", "commands.lint",
-        "commands.margins", "commands.new", "commands.reconcile", "commands.reconciling", "commands.schedule", "commands.templates",
+        "commands.margins", "commands.new", "commands.reconcile", "commands.reconciling", "commands.schedule",
+        "commands.schema", "commands.templates",
         "commands.trace", "commands.values", "commands.watch",
     )),
     ("__main__", ("__main__", "__init__")),

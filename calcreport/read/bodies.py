@@ -21,7 +21,7 @@ from calcreport.read.symbols import Table, read_symbols
 
 TEMPLATE_KEYS = ("template", "title", "code", "units", "covers", "excludes", "gives", "notation", "symbols",
                  "given", "parts", "lines")  # fmt: skip
-_PART_KEYS = ("given", "lines", "gives", "title")
+PART_KEYS = ("given", "lines", "gives", "title")
 
 
 @dataclass(slots=True)
@@ -69,7 +69,7 @@ class BodyReader:
         if name not in self._read:
             self._open.append(name)
             mapping = as_mapping(self._entries[name], f"the part `{name[:40]}`", self.problems)
-            fields = Fields(mapping, _PART_KEYS, f"the part `{name[:40]}`", self.problems) if mapping else None
+            fields = Fields(mapping, PART_KEYS, f"the part `{name[:40]}`", self.problems) if mapping else None
             self._read[name] = self._body(fields, fields.text("title"), sees_user=True) if fields else None
             self._open.pop()
         return self._read[name]

@@ -20,10 +20,10 @@ from calcreport.read.nodes import Mapping, Scalar
 from calcreport.read.single_values import Material
 from calcreport.read.values import RowSource, ValueReader, is_complete
 
-_MARK = re.compile(r"[A-Z][A-Za-z0-9]{0,11}")
+MARK = re.compile(r"[A-Z][A-Za-z0-9]{0,11}")
 #: marks of the front sheets and appendices
 _RESERVED = ("COVER", "INDEX", "REVISIONS", "CRITERIA", "ASSUMPTIONS", "SUMMARY", "A", "B", "C")
-_KEYS = ("mark", "title", "template", "units", "given", "choose", "pinned")
+KEYS = ("mark", "title", "template", "units", "given", "choose", "pinned")
 
 
 @dataclass(slots=True)
@@ -62,7 +62,7 @@ class CalculationReader:
             template = self.library.template(name.text, system, self.editions, name.span)
         # without its template nobody knows which material roles a calculation takes
         roles = roles_of(template.body.given) if template else tuple(k.text for k, _ in node.entries)
-        fields = Fields(node, (*_KEYS, *roles), "a calculation", self.problems)
+        fields = Fields(node, (*KEYS, *roles), "a calculation", self.problems)
         fields.choice("units", SYSTEMS)
         mark = fields.scalar("mark", required=True)
         title = fields.text("title", required=True)
@@ -96,7 +96,7 @@ class CalculationReader:
 
     def mark(self, mark: Scalar) -> bool:
         """Keep a mark: short, not one of the fronts, every one once."""
-        if not _MARK.fullmatch(mark.text) or mark.text in _RESERVED:
+        if not MARK.fullmatch(mark.text) or mark.text in _RESERVED:
             self.problems.add("bad-mark", mark.span, f"`{mark.text[:40]}` cannot be a mark",
                               expected="a capital letter, then up to 11 letters and digits; not " + " ".join(_RESERVED),
                               found=mark.text[:40] or "nothing")  # fmt: skip

@@ -17,7 +17,10 @@ from calcreport.read.nodes import Mapping, Node, Scalar, read_tree
 from calcreport.read.single_values import Material
 from calcreport.read.values import ValueReader, is_complete
 
-_KEYS = ("case", "units", "year", "given", "materials", "expect", "stops")
+KEYS = ("case", "units", "year", "given", "materials", "expect", "stops")
+#: keys of an entry that says why no case reaches something
+REASON_KEYS = ("no case", "because")
+STOPS_KEYS, EXPECTED_KEYS = ("line", "source"), ("value", "tol", "outcome", "ratio", "source")
 VERDICTS = ("OK", "NG", "not applicable", "not evaluated")
 
 
@@ -41,7 +44,7 @@ def read_cases(template: str, source: Source, library: Library, problems: Proble
 
 
 def _reason(mapping: Mapping, problems: Problems) -> Reason:
-    fields = Fields(mapping, ("no case", "because"), "an entry `no case`", problems)
+    fields = Fields(mapping, REASON_KEYS, "an entry `no case`", problems)
     what, because = fields.text("no case", required=True), fields.text("because", required=True)
     return Reason(" ".join(what.split()), because, fields.span_of("no case"))
 
@@ -51,7 +54,7 @@ class _CaseReader:
 
     def __init__(self, template: str, node: Mapping, library: Library, problems: Problems) -> None:
         self.template, self.node, self.library, self.problems = template, node, library, problems
-        self.fields = Fields(node, _KEYS, "a case", problems)
+        self.fields = Fields(node, KEYS, "a case", problems)
 
     def read(self) -> Case | None:
         before = self.problems.met
@@ -102,7 +105,7 @@ class _CaseReader:
         mapping = self.fields.mapping("stops")
         if mapping is None:
             return ""
-        entry = Fields(mapping, ("line", "source"), "`stops`", self.problems)
+        entry = Fields(mapping, STOPS_KEYS, "`stops`", self.problems)
         entry.text("source", required=True)
         return entry.text("line", required=True)
 
@@ -111,7 +114,7 @@ class _CaseReader:
         mapping = as_mapping(node, what, self.problems)
         if mapping is None:
             return None
-        fields = Fields(mapping, ("value", "tol", "outcome", "ratio", "source"), what, self.problems)
+        fields = Fields(mapping, EXPECTED_KEYS, what, self.problems)
         source = fields.text("source", required=True)
         outcome = fields.choice("outcome", VERDICTS)
         scalar = fields.scalar("value") or fields.scalar("ratio")

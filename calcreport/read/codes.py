@@ -17,6 +17,7 @@ from calcreport.read.nodes import Mapping, Node, Scalar, Sequence
 
 #: fields a code is named for beside the two every package names
 OTHER_FIELDS = ("masonry", "steel", "timber", "soil", "bars")
+KEYS, ADOPTED_KEYS = ("adopted", "concrete", "loads", *OTHER_FIELDS), ("name", "year", "amendments")
 
 
 @dataclass(frozen=True, slots=True)
@@ -43,11 +44,11 @@ def read_codes(
     before = problems.met
     if node is None:
         return Codes({INCOMPLETE: ""}, (), "")
-    fields = Fields(node, ("adopted", "concrete", "loads", *OTHER_FIELDS), "`codes`", problems)
+    fields = Fields(node, KEYS, "`codes`", problems)
     adopted = fields.mapping("adopted", required=True)
     name = year = amendments = ""
     if adopted is not None:
-        entry = Fields(adopted, ("name", "year", "amendments"), "`adopted`", problems)
+        entry = Fields(adopted, ADOPTED_KEYS, "`adopted`", problems)
         name, year = entry.text("name", required=True), entry.text("year", required=True)
         amendments = entry.text("amendments", required=True)
     rows = [("adopted code", f"{name} {year}")]

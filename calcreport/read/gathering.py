@@ -17,7 +17,8 @@ from calcreport.read.nodes import Mapping, Node, Scalar, read_tree
 
 #: bounds against files made to exhaust
 DEEPEST_INCLUDE, MOST_FILES, MOST_CALCULATIONS = 5, 200, 20_000
-_KEYS = ("materials", "assumptions", "calculations", "schedules")
+KEYS = ("materials", "assumptions", "calculations", "schedules")
+ASSUMPTION_KEYS = ("says", "to be verified", "by")
 
 
 @dataclass(slots=True)
@@ -81,7 +82,7 @@ class Gatherer:
             known[key.text] = key, found
 
     def assumption(self, mapping: Mapping) -> None:
-        entry = Fields(mapping, ("says", "to be verified", "by"), "an assumption", self.problems)
+        entry = Fields(mapping, ASSUMPTION_KEYS, "an assumption", self.problems)
         open_word = entry.choice("to be verified", ("yes", "no"), required=True)
         by = entry.text("by", required=open_word == "yes")
         says = entry.text("says", required=True)
@@ -112,4 +113,4 @@ class Gatherer:
         root = read_tree(source, self.problems)
         tree = as_mapping(root, "an included file", self.problems) if root is not None else None
         if tree is not None:
-            self.gather(Fields(tree, _KEYS, "an included file", self.problems), depth + 1)
+            self.gather(Fields(tree, KEYS, "an included file", self.problems), depth + 1)

@@ -18,11 +18,12 @@ from calcreport.read.nodes import Mapping, Node, Scalar
 from calcreport.read.symbols import KEYS as SYMBOL_KEYS
 from calcreport.read.symbols import KINDS, Table, find_symbol, hold_name, read_symbol
 
-_KEYS = (*SYMBOL_KEYS, "range", "if none", "material", "property", "rows", "names", "least", "most", "over", "gives")
+KEYS = (*SYMBOL_KEYS, "range", "if none", "material", "property", "rows", "names", "least", "most", "over", "gives")
 #: what a callout gives, in which dimension
-_OUTPUTS: dict[str, Dimension] = {
+OUTPUTS: dict[str, Dimension] = {
     "area": multiply(LENGTH, LENGTH), "diameter": LENGTH, "count": NONE, "spacing": LENGTH,
 }  # fmt: skip
+GIVEN_KINDS = (*KINDS, "bars", "spaced bars")
 #: kinds the language has and this version does not read
 _LATER = ("station",)
 MOST_ROWS = 1000
@@ -47,7 +48,7 @@ class _Reader:
         entry = Mapping((), self.key.span) if is_empty(self.node) else as_mapping(self.node, self.what, self.problems)
         if entry is None or not hold_name(self.key, self.problems):
             return None
-        fields = Fields(entry, _KEYS, self.what, self.problems)
+        fields = Fields(entry, KEYS, self.what, self.problems)
         kind = self.kind(fields)
         symbol = self.symbol(fields, kind)
         if kind is None or (symbol is None and kind != "rows"):
@@ -80,8 +81,8 @@ class _Reader:
         if scalar is not None and scalar.text in _LATER:
             say_not_yet(scalar, self.problems)
             return None
-        if scalar is not None and scalar.text not in (*KINDS, "bars", "spaced bars"):
-            say_not_a_word(scalar, (*KINDS, "bars", "spaced bars"), "`kind`", self.problems)
+        if scalar is not None and scalar.text not in GIVEN_KINDS:
+            say_not_a_word(scalar, GIVEN_KINDS, "`kind`", self.problems)
             return None
         if scalar is not None and scalar.text == "bars":
             return "bars"
@@ -123,7 +124,7 @@ class _Reader:
                 found=f"a {kind}",
             )
             return ()
-        outputs = tuple(name for name in _OUTPUTS if name != "spacing" or kind == "spaced bars")
+        outputs = tuple(name for name in OUTPUTS if name != "spacing" or kind == "spaced bars")
         for key, value in mapping.entries if mapping else ():
             symbol = find_symbol(key.text, key.span, self.table, self.problems)
             if not isinstance(value, Scalar) or value.text not in outputs:
@@ -134,11 +135,11 @@ class _Reader:
         return tuple(pairs)
 
     def fits(self, symbol: Symbol, key: Scalar, output: str) -> bool:
-        if symbol.unit is not None and symbol.unit.dimension == _OUTPUTS[output]:
+        if symbol.unit is not None and symbol.unit.dimension == OUTPUTS[output]:
             return True
         found = dimension_words(symbol.unit.dimension) if symbol.unit else "a word"
         self.problems.add("unit-mismatch", key.span, f"`{key.text}` cannot take the {output} of bars",
-                          expected=dimension_words(_OUTPUTS[output]), found=f"{found}, by its symbol")  # fmt: skip
+                          expected=dimension_words(OUTPUTS[output]), found=f"{found}, by its symbol")  # fmt: skip
         return False
 
     def if_none(self, fields: Fields, kind: str, symbol: Symbol | None) -> Amount | str | None:

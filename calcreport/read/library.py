@@ -20,7 +20,8 @@ from calcreport.read.symbols import Table, read_symbols
 from calcreport.read.variants import settle
 
 _CODE = re.compile(r"(.+?)-([0-9]{2}|[0-9]{4})")
-_YEAR = re.compile(r"(19|20)[0-9]{2}")
+YEAR = re.compile(r"(19|20)[0-9]{2}")
+CODE_KEYS = ("name", "years")
 DEEPEST_PART = 8
 #: stands among the editions where the newest edition a part offers may be taken: a template linted alone, a case
 ANY = "*"
@@ -141,10 +142,10 @@ class Library:
         code = fields.mapping("code", required=True)
         if code is None or not systems or any(s not in SYSTEMS for s in systems):
             return None
-        entry = Fields(code, ("name", "years"), "`code`", self.problems)
+        entry = Fields(code, CODE_KEYS, "`code`", self.problems)
         years = entry.texts("years")
         for year in years:
-            if not _YEAR.fullmatch(year.text):
+            if not YEAR.fullmatch(year.text):
                 self.problems.add("not-a-date", year.span, f"`{year.text[:40]}` is not a year",
                                   expected="four digits, such as 2019", found=year.text[:40])  # fmt: skip
         named = entry.node_of("name")

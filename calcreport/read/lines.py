@@ -34,7 +34,7 @@ from calcreport.read.symbols import OWN_KEYS, hold_name
 from calcreport.read.words import read_citation, read_cite, read_pieces
 
 #: kind of line by its first key: further keys allowed
-_KINDS: dict[str, tuple[str, ...]] = {
+KINDS: dict[str, tuple[str, ...]] = {
     "heading": (), "note": ("cite",), "caution": ("cite",), "assume": ("cite",), "use": ("cite",),
     "gives": ("formula", "branches", *OWN_KEYS, "cite", "as cited"),
     "branches": (), "rows": ("columns", "list", "says", "cite"), "each": ("lines", "table", "show"),
@@ -44,6 +44,9 @@ _KINDS: dict[str, tuple[str, ...]] = {
 #: kinds of lines, and keys of kinds, that the language has and this version does not read
 _LATER = ("method", "by another method")
 _KEYS_LATER: dict[str, tuple[str, ...]] = {"rows": ("spaced", "file")}
+#: keys of a case of one value, and of a case that holds lines
+ARM_KEYS, BRANCH_KEYS = ("when", "formula", "otherwise"), ("when", "lines", "otherwise", "says")
+SHOWN = ("every", "figure")
 MOST_LINES = 400
 
 
@@ -78,12 +81,12 @@ class LineReader:
         if later is not None:
             say_not_yet(later, self.problems)
             return None
-        kind = next((key for key in keys if key in _KINDS and not (key == "branches" and "gives" in keys)), "")
+        kind = next((key for key in keys if key in KINDS and not (key == "branches" and "gives" in keys)), "")
         if not kind:
             self.say_unknown(mapping)
             return None
         what = f"an `{kind}` line" if kind in ("assume", "each", "unknown") else f"a `{kind}` line"
-        fields = Fields(mapping, (kind, *_KINDS[kind], "only"), what, self.problems, _KEYS_LATER.get(kind, ()))
+        fields = Fields(mapping, (kind, *KINDS[kind], "only"), what, self.problems, _KEYS_LATER.get(kind, ()))
         readers: dict[str, Callable[[Fields], Line | None]] = {
             "gives": self.gives, "branches": self.branches, "rows": self.rows, "each": self.each,
             "part": self.part, "check": self.check, "require": self.require, "figure": self.figure,
@@ -97,8 +100,8 @@ class LineReader:
         word = first.text if first else ""
         self.problems.add(
             "unknown-line", first.span if first else mapping.span.part(0, 1), "this is not a kind of line",
-            expected="a line that begins with " + listed(_KINDS), found=word[:40] or "nothing",
-            hint=self.problems.near(word, (*_KINDS, *_LATER)),
+            expected="a line that begins with " + listed(KINDS), found=word[:40] or "nothing",
+            hint=self.problems.near(word, (*KINDS, *_LATER)),
         )  # fmt: skip
 
     # -------------------------------------------------------- kinds
@@ -146,7 +149,7 @@ class LineReader:
         entry = as_mapping(node, "a branch", self.problems)
         if entry is None:
             return None
-        arm = Fields(entry, ("when", "formula", "otherwise"), "a branch", self.problems)
+        arm = Fields(entry, ARM_KEYS, "a branch", self.problems)
         if arm.has("otherwise"):
             self.hold_last(arm, last)
             formula = self.formulas.formula(arm.node_of("otherwise"))
@@ -179,7 +182,7 @@ class LineReader:
             entry = as_mapping(node, "a branch", self.problems)
             if entry is None:
                 continue
-            arm = Fields(entry, ("when", "lines", "otherwise", "says"), "a branch", self.problems)
+            arm = Fields(entry, BRANCH_KEYS, "a branch", self.problems)
             other = arm.has("otherwise")
             if other:
                 self.hold_last(arm, place == len(nodes) - 1)
@@ -198,7 +201,7 @@ class LineReader:
 
     def each(self, fields: Fields) -> Line | None:
         rows = fields.scalar("each", required=True)
-        show = fields.choice("show", ("every", "figure"))
+        show = fields.choice("show", SHOWN)
         table = tuple(Name(scalar.text, scalar.span) for scalar in fields.texts("table"))
         lines = self.lines(fields.items("lines", required=True))
         if rows is None:

@@ -13,6 +13,8 @@ from calcreport.read.model import Cell, Entry, MadeColumn, Rows
 from calcreport.read.nodes import Mapping, Node
 from calcreport.read.symbols import OWN_KEYS, hold_name
 
+COLUMN_KEYS, ROW_KEYS = (*OWN_KEYS, "over", "else"), ("name", "for", "when")
+
 
 class RowsReader:
     """Reads one `rows` line."""
@@ -38,7 +40,7 @@ class RowsReader:
             entry = Mapping((), key.span) if is_empty(value) else as_mapping(value, what, self.problems)
             if entry is None:
                 continue
-            fields = Fields(entry, (*OWN_KEYS, "over", "else"), what, self.problems)
+            fields = Fields(entry, COLUMN_KEYS, what, self.problems)
             symbol = self.formulas.symbol(key, fields)
             over = fields.scalar("over")
             other = self.formulas.formula(fields.node_of("else"))
@@ -52,7 +54,7 @@ class RowsReader:
         if mapping is None:
             return None
         names = tuple(column.symbol.name for column in columns)
-        fields = Fields(mapping, ("name", "for", "when", *names), "a row", self.problems)
+        fields = Fields(mapping, (*ROW_KEYS, *names), "a row", self.problems)
         cells: list[tuple[str, Cell]] = []
         for column in columns:
             cell_node = fields.node_of(column.symbol.name)

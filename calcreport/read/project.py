@@ -22,12 +22,16 @@ from calcreport.read.library import Library
 from calcreport.read.model import SYSTEMS, Disposition, Inputs, Issue, Project, System
 from calcreport.read.nodes import Mapping, Scalar, read_tree
 
-_KEYS = ("project", "office", "status", "date", "units", "paper", "codes", "criteria", "materials", "assumptions",
+KEYS = ("project", "office", "status", "date", "units", "paper", "codes", "criteria", "materials", "assumptions",
          "elsewhere", "calculations", "schedules", "dispositions", "revisions")  # fmt: skip
+HEAD_KEYS, OFFICE_KEYS = ("title", "number", "address", "client", "permit"), ("name", "contact")
+ELSEWHERE_KEYS, REVISION_KEYS = ("what", "where"), ("number", "date", "why")
+DISPOSITION_KEYS = ("check", "limit state", "says", "covered by")
+PAPERS = ("letter", "a4")
 #: keys the language has and this version does not read
 _LATER = ("attachments",)
 STATUSES = ("preliminary", "for review", "for permit", "issued for construction", "superseded", "void")
-_DATE = re.compile(r"([0-9]{4})-([0-9]{2})-([0-9]{2})")
+DATE = re.compile(r"([0-9]{4})-([0-9]{2})-([0-9]{2})")
 
 
 class ProjectReader:
@@ -46,7 +50,7 @@ class ProjectReader:
         tree = as_mapping(root, "a project file", self.problems) if root is not None else None
         if tree is None:
             return None
-        fields = Fields(tree, _KEYS, "a project file", self.problems, _LATER)
+        fields = Fields(tree, KEYS, "a project file", self.problems, _LATER)
         stated = fields.choice("units", SYSTEMS, required=True)
         system: System = "si" if stated == "si" else "us"
         codes = read_codes(fields.mapping("codes", required=True), self.library, self.problems, self.instead)
@@ -79,9 +83,9 @@ class ProjectReader:
 
     def header(self, fields: Fields, system: System, codes: Codes, gathered: Gathered) -> Project:
         """Read what stands outside the calculations."""
-        head = self.block(fields, "project", ("title", "number", "address", "client", "permit"))
-        office = self.block(fields, "office", ("name", "contact"))
-        paper = fields.choice("paper", ("letter", "a4")) or ("letter" if system == "us" else "a4")
+        head = self.block(fields, "project", HEAD_KEYS)
+        office = self.block(fields, "office", OFFICE_KEYS)
+        paper = fields.choice("paper", PAPERS) or ("letter" if system == "us" else "a4")
         return Project(
             title=head.text("title", required=True) if head else "",
             number=head.text("number", required=True) if head else "",
@@ -119,7 +123,7 @@ class ProjectReader:
         """Read a date as year-month-day."""
         if scalar is None:
             return ""
-        match = _DATE.fullmatch(scalar.text)
+        match = DATE.fullmatch(scalar.text)
         try:
             return date(int(match[1]), int(match[2]), int(match[3])).isoformat() if match else self.no_date(scalar)
         except ValueError:
@@ -135,7 +139,7 @@ class ProjectReader:
         """Read what this package leaves to others."""
         rows: list[tuple[str, str]] = []
         for mapping in self.mappings(fields, "elsewhere", "an entry of `elsewhere`"):
-            entry = Fields(mapping, ("what", "where"), "an entry of `elsewhere`", self.problems)
+            entry = Fields(mapping, ELSEWHERE_KEYS, "an entry of `elsewhere`", self.problems)
             rows.append((entry.text("what", required=True), entry.text("where", required=True)))
         return tuple(rows)
 
@@ -143,7 +147,7 @@ class ProjectReader:
         """Read the engineer's word on checks and limit states."""
         found: list[Disposition] = []
         for mapping in self.mappings(fields, "dispositions", "a disposition"):
-            entry = Fields(mapping, ("check", "limit state", "says", "covered by"), "a disposition", self.problems)
+            entry = Fields(mapping, DISPOSITION_KEYS, "a disposition", self.problems)
             check, state = entry.scalar("check"), entry.scalar("limit state")
             if check is None and state is None:
                 entry.say_missing("check")
@@ -160,7 +164,7 @@ class ProjectReader:
             fields.say_missing("revisions")
         found: list[Issue] = []
         for mapping in self.mappings(fields, "revisions", "a revision"):
-            entry = Fields(mapping, ("number", "date", "why"), "a revision", self.problems)
+            entry = Fields(mapping, REVISION_KEYS, "a revision", self.problems)
             found.append(Issue(entry.text("number", required=True), self.date(entry.scalar("date", required=True)),
                                entry.text("why", required=True)))  # fmt: skip
         return tuple(found)

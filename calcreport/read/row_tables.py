@@ -18,7 +18,7 @@ from calcreport.read.sheets import SheetRow
 from calcreport.read.tables import TABLE_KEYS, Choice, Tables
 from calcreport.read.values import Taken, TakenPair
 
-_KEYS = (*TABLE_KEYS, "columns")
+KEYS = (*TABLE_KEYS, "columns")
 #: stretches of row numbers named in print
 _NAMED = 4
 
@@ -32,7 +32,7 @@ class RowTables:
     def rows(self, given: Given, node: Mapping) -> Taken | None:
         """Return the rows of a set as a list of mappings, with the place they were taken from in words."""
         before = self.tables.problems.met
-        fields = Fields(node, _KEYS, f"the rows of `{given.name}`", self.tables.problems)
+        fields = Fields(node, KEYS, f"the rows of `{given.name}`", self.tables.problems)
         found = self.chosen(fields, given.name)
         if found is None:
             return None
@@ -54,7 +54,7 @@ class RowTables:
         """Return a value for each row of a table that names a row of every set it varies over."""
         problems = self.tables.problems
         before = problems.met
-        fields = Fields(node, _KEYS, f"the values of `{given.name}`", problems)
+        fields = Fields(node, KEYS, f"the values of `{given.name}`", problems)
         found = self.chosen(fields, given.name)
         if found is None:
             return None

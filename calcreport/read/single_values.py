@@ -20,6 +20,7 @@ from calcreport.read.nodes import Mapping, Node, Scalar
 
 #: mark of a material and its properties, None for one about which a problem was told
 Material: TypeAlias = tuple[Scalar, dict[str, Scalar | None]]
+VALUE_KEYS = ("value", "source", "from", "at")
 FILE = ValueOrigin("project file", "")
 NONE = ValueOrigin("none", "")
 
@@ -39,7 +40,7 @@ class SingleReader:
         """Read a value: text, `{value, source}` or `{from: MARK.symbol}`."""
         origin = FILE
         if isinstance(node, Mapping):
-            fields = Fields(node, ("value", "source", "from", "at"), f"the value of `{given.name}`", self.problems)
+            fields = Fields(node, VALUE_KEYS, f"the value of `{given.name}`", self.problems)
             if fields.has("from"):
                 linked, at = fields.scalar("from", required=True), read_at(fields)
                 return self.link(given, linked, at) if linked else None

@@ -24,7 +24,7 @@ KEYS = (*OWN_KEYS, "only")
 #: a yes/no value is a word with this list
 YES_NO = ("yes", "no")
 KINDS = ("count", "yes/no", "quantity")
-_NAME = re.compile(r"[A-Za-z][A-Za-z0-9_]{0,39}")
+NAME = re.compile(r"[A-Za-z][A-Za-z0-9_]{0,39}")
 _TAKEN = KEYWORDS | FUNCTIONS.keys() | OVER_FUNCTIONS | {"num", "qty"}
 
 
@@ -46,7 +46,7 @@ def read_symbols(node: Mapping, problems: Problems) -> Table:
 def hold_name(scalar: Scalar, problems: Problems) -> bool:
     """Hold a name of a symbol, set or stem against the grammar of formulas; adds `bad-name`."""
     name = scalar.text
-    if _NAME.fullmatch(name) and name not in _TAKEN:
+    if NAME.fullmatch(name) and name not in _TAKEN:
         return True
     problems.add(
         "bad-name",

@@ -19,6 +19,7 @@ from calcreport.read.sheets import Sheet, SheetRow, read_sheet
 
 #: keys by which an entry names a table and chooses its rows
 TABLE_KEYS = ("file", "sheet", "heading row", "where", "hidden")
+HIDDEN = ("skip", "read")
 #: rows named when hidden ones are refused
 _NAMED = 12
 
@@ -75,7 +76,7 @@ class Tables:
 
     def choice(self, fields: Fields, table: Table) -> Choice:
         """Return the rows an entry chooses by the texts under `where`, and whether hidden ones are read."""
-        hidden = fields.choice("hidden", ("skip", "read"))
+        hidden = fields.choice("hidden", HIDDEN)
         mapping = fields.mapping("where")
         if mapping is None:
             return Choice(table, (), hidden)

@@ -10,7 +10,7 @@ import re
 from calcreport.core.problems import Problems
 from calcreport.read.nodes import Mapping, Node, Scalar, Sequence, Told
 
-_KEY = re.compile(r"(us|si)|(?:(us|si) )?((?:19|20)[0-9]{2})")
+KEY = re.compile(r"(us|si)|(?:(us|si) )?((?:19|20)[0-9]{2})")
 
 
 def settle(node: Node, system: str, year: str, problems: Problems) -> Node:
@@ -28,7 +28,7 @@ class _Settler:
             return Sequence(tuple(self.settle(item) for item in node.items if self.belongs(item)), node.span)
         if not isinstance(node, Mapping):
             return node
-        keyed = sum(_KEY.fullmatch(key.text) is not None for key, _ in node.entries)
+        keyed = sum(KEY.fullmatch(key.text) is not None for key, _ in node.entries)
         if keyed and keyed == len(node.entries):
             return self.settle(self.choose(node))
         if keyed:
@@ -48,7 +48,7 @@ class _Settler:
         return Told(node.span)
 
     def mixed(self, node: Mapping) -> Node:
-        key = next(key for key, _ in node.entries if _KEY.fullmatch(key.text) is None)
+        key = next(key for key, _ in node.entries if KEY.fullmatch(key.text) is None)
         self.problems.add(
             "unknown-key", key.span, f"`{key.text[:40]}` is neither a unit system nor a year",
             expected="us, si, a year, or both, as the keys beside it", found=key.text[:40],
@@ -61,7 +61,7 @@ class _Settler:
         only = node.get("only") if isinstance(node, Mapping) else None
         if only is None:
             return True
-        if not isinstance(only, Scalar) or _KEY.fullmatch(only.text) is None:
+        if not isinstance(only, Scalar) or KEY.fullmatch(only.text) is None:
             self.problems.add(
                 "not-a-word",
                 only.span,

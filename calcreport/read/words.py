@@ -15,6 +15,8 @@ from calcreport.read.nodes import Scalar
 
 #: what a line may rest on beside a clause
 PLAIN = ("geometry", "statics")
+#: the same as a pattern: plain, with a number, or of a document named in front
+CITED = rf"^\s*(?:{'|'.join(PLAIN)}|(?:(?!: ).)*[0-9](?:(?!: ).)*|.+: .+)\s*$"
 _PIECE = re.compile(r"\{([A-Za-z][\w.]*)\}")
 _BRACE = re.compile(r"\{[^{}]*\}?|\}")
 

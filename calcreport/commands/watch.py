@@ -38,7 +38,9 @@ def run(arguments: Namespace) -> int:
         watch.begin()
         while True:
             sleep(PAUSE)
-            watch.look()
+            if watch.look():
+                # the command line has switched the search for circles off: right for one build, not for many
+                gc.collect()
     except KeyboardInterrupt:
         print(f"\nno longer watching {opened.path}", flush=True)
         return 0
@@ -58,18 +60,19 @@ class _Watch:
         others = len([path for path, looked in self.reading.stamps.items() if looked is not None]) - 1
         print(f"watching {self.reading.path} and {others} other files; Ctrl-C ends it", flush=True)
 
-    def look(self) -> None:
-        """Build again if a file is not what it was."""
+    def look(self) -> bool:
+        """Build again if a file is not what it was; tells whether it has."""
         touched = self.reading.touched()
         if not touched:
-            return
+            return False
         self.settle()
         read = self.reading.again()
         if self.reading.agrees(read):
             # saved with nothing changed, or moved away and back
             self.reading.stamps = read.stamps
-            return
+            return False
         self.build(_list(sorted(path.name for path in touched)) + " changed: ")
+        return True
 
     def settle(self) -> None:
         """Wait until a save is finished: files that look the same twice."""
@@ -103,8 +106,6 @@ class _Watch:
                 return
             self.written = package.data
         print(f"{why}{self.words(package)} ({monotonic() - began:.2f} s)", flush=True)
-        # the command line has switched the search for circles off, which is right for one build and not for many
-        gc.collect()
 
     def words(self, package: Package) -> str:
         """Return what a build came to."""

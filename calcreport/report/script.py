@@ -124,8 +124,9 @@ def _lines(writer: _Writer, lines: tuple[WorkedLine, ...]) -> None:
             case WorkedText():
                 writer.items.append(SayText(line))
             case WorkedPart():
-                if line.line.title:
-                    writer.items.append(SayHeading(line.line.title, 3))
+                title = ": ".join(words for words in (line.line.title, line.line.stem) if words)
+                if title:
+                    writer.items.append(SayHeading(title, 3))
                 _lines(writer, line.lines)
             case WorkedBranches():
                 if line.lines:

@@ -8,14 +8,15 @@ from __future__ import annotations
 from collections.abc import Callable
 from dataclasses import dataclass
 from fractions import Fraction as F
+from itertools import pairwise
 
-from calcreport.calculate.model import Values
-from calcreport.core.expression import Attach, Binary, Expression, Name, Number, Over, Strip
+from calcreport.calculate.model import Values, Work
+from calcreport.core.expression import Attach, Binary, Compare, Expression, Name, Number, Over, Strip
 from calcreport.core.units import Unit
 from calcreport.report.digits import Figure, number_text
 from calcreport.report.display import Slots
 from calcreport.report.families import Family
-from calcreport.report.model import Fence, Formula, Letters, Operator, Row
+from calcreport.report.model import Fence, Formula, Fraction, Letters, Operator, Row
 from calcreport.report.notation import (
     ATOM,
     PRODUCT,
@@ -32,6 +33,9 @@ from calcreport.report.notation import (
     with_power,
 )
 
+#: a place this close to a row of a table (relative) is at that row
+_TIE = 1e-9
+
 
 @dataclass(frozen=True, slots=True)
 class Printed:
@@ -43,6 +47,8 @@ class Printed:
     row_names: Callable[[int], tuple[str, ...]]
     #: factor that takes a unit to a family
     factor: Callable[[Unit, Family], F]
+    #: works a formula in the open rows
+    work: Callable[[Expression], Work]
 
 
 class Substitution(Notation):
@@ -109,6 +115,8 @@ class Substitution(Notation):
         values = self.printed.values
         before = values.open[node.bound]
         names = self.printed.row_names(node.bound)
+        if node.function == "linear" and isinstance(node.where, Compare):
+            return self.interpolated(node, node.where, len(names))
         taken = self.row_taken(node, names)
         if taken >= 0:
             values.open[node.bound] = taken
@@ -134,6 +142,33 @@ class Substitution(Notation):
         if len(terms) == 1:
             return first
         return Piece(Row(tuple(items)), SUM, first.starts_digit, last.ends_digit)
+
+    def interpolated(self, node: Over, where: Compare, rows: int) -> Piece:
+        """Write out the straight line between the two rows a value is read from; at a row, that row's value."""
+        values, left = self.printed.values, self.printed.work(where.left)
+        before, place = values.open[node.bound], self.printed.work(where.right)(values)
+        at = self.piece(where.right)
+        found: list[tuple[float, Piece, Piece]] = []
+        for row in range(rows):
+            values.open[node.bound] = row
+            found.append((left(values), self.piece(where.left), self.piece(node.body)))
+        values.open[node.bound] = before
+        found.sort(key=lambda one: one[0])
+        slack = _TIE * abs(place)
+        for x, _, y in found:
+            if abs(x - place) <= slack:
+                return y
+        for (x1, from_x, from_y), (x2, to_x, to_y) in pairwise(found):
+            if x1 < place < x2:
+                share = Fraction(_minus(at, from_x), _minus(to_x, from_x))
+                items = (
+                    *items_of(from_y.formula),
+                    Operator("+", "binary"),
+                    Fence("(", _minus(to_y, from_y), ")"),
+                    share,
+                )
+                return Piece(Row(items), SUM, from_y.starts_digit)
+        return self.piece(node.otherwise) if node.otherwise is not None else super().over(node)
 
     def row_taken(self, node: Over, names: tuple[str, ...]) -> int:
         """Return the row an extreme or a pick takes its single value from; -1 where that cannot be told."""
@@ -162,3 +197,8 @@ class Substitution(Notation):
                 return value == 0
             case _:
                 return False
+
+
+def _minus(one: Piece, other: Piece) -> Formula:
+    taken = fenced(other).formula if other.strength <= SIGN else other.formula
+    return Row((*items_of(one.formula), Operator("−", "binary"), *items_of(taken)))

@@ -14,7 +14,7 @@ from calcreport.calculate.model import (
     Worked,
     WorkedGives,
 )
-from calcreport.core.expression import Binary, Compare, Condition, Expression, Is, Name, Number, Over, names
+from calcreport.core.expression import Binary, Compare, Condition, Expression, Is, Name, Negate, Number, Over, names
 from calcreport.core.units import ONE, Unit
 from calcreport.report.digits import Figure, number_text
 from calcreport.report.display import row_words, show_symbol, unit_text
@@ -116,7 +116,7 @@ class Told:
         """Return a formula with the printed figures of open rows."""
         for index, row in opened:
             self.values.open[index] = row
-        printed = Printed(self.values, self.open_figure, self.values.row_names, self.forms.factor)
+        printed = Printed(self.values, self.open_figure, self.values.row_names, self.forms.factor, self.worked.compiled)
         return Substitution(self.slots, printed, self.forms.family(node, result)).formula(node)
 
     def open_figure(self, slot: int) -> Figure:
@@ -209,7 +209,7 @@ class Told:
     def steps(self, formula: Expression, gives: WorkedGives) -> tuple[Formula | None, Formula | None]:
         """Return formula and substitution, a step that repeats its neighbour dropped."""
         unit = self.slots[gives.line.slot].symbol.unit
-        if isinstance(formula, Number):
+        if isinstance(formula, Number) or (isinstance(formula, Negate) and isinstance(formula.body, Number)):
             return None, None
         shown: Formula | None = self.shared.formula(formula)
         assert shown is not None

@@ -16,6 +16,7 @@ from calcreport.calculate.model import (
     PlannedGiven,
     Worked,
     WorkedBranches,
+    WorkedCheck,
     WorkedEach,
     WorkedGives,
     WorkedLine,
@@ -58,6 +59,8 @@ class _Entries:
 
     def __init__(self, worked: Worked) -> None:
         self.worked, self.slots, self.values = worked, worked.plan.slots, worked.values
+        #: identities of the checks told so far
+        self.judged: set[int] = set()
 
     def all(self) -> Iterator[tuple[Entry, Place]]:
         for planned in self.worked.plan.givens:
@@ -67,10 +70,15 @@ class _Entries:
         yield from self.lines(self.worked.lines)
         # a check that a branch passed over has a verdict too: not applicable; one beyond a stop is not evaluated
         for check in self.worked.checks:
-            by = check.by.test if check.by is not None else check.line.holds
-            path = self.rows(dict(check.open), tuple(index for index, _ in check.open)) + check.line.name
-            yield Entry("check", path, 1, check.ratio, "1", 1.0, _text(by), "", check.line.cite.printed,
-                        check.verdict), check  # fmt: skip
+            if id(check) not in self.judged:
+                yield self.check(check)
+
+    def check(self, check: WorkedCheck) -> tuple[Entry, Place]:
+        self.judged.add(id(check))
+        by = check.by.test if check.by is not None else check.line.holds
+        path = self.rows(dict(check.open), tuple(index for index, _ in check.open)) + check.line.name
+        cite = check.line.cite.printed
+        return Entry("check", path, 1, check.ratio, "1", 1.0, _text(by), "", cite, check.verdict), check
 
     def given(self, given: PlannedGiven, origins: dict[str, str]) -> Iterator[tuple[Entry, Place]]:
         for slot in (given.slot, *given.outputs):
@@ -96,6 +104,8 @@ class _Entries:
                     path = self.rows(dict(line.open), tuple(index for index, _ in line.open)) + line.line.says
                     yield Entry("requirement", path, 1, None, "1", 1.0, _text(line.line.condition), "",
                                 line.line.cite.printed, ""), line  # fmt: skip
+                case WorkedCheck():
+                    yield self.check(line)
                 case WorkedUnknown():
                     text = f"{_plain(line.line.left.span.text)} = {_plain(line.line.right.span.text)}"
                     yield self.value("value", line.line.slot, line.key, text, "", ""), (line.line.slot, line.key)

@@ -32,11 +32,10 @@ from calcreport.report.model import (
     TableRow,
     Words,
 )
+from calcreport.report.notation import relation
 from calcreport.report.told import Told
 
 MARK = "EDITIONS"
-#: a space that stays beside a formula
-_GAP = "\N{NO-BREAK SPACE}"
 #: a change smaller than this share is not put in a number
 LEAST = 0.001
 
@@ -217,7 +216,7 @@ def _what(told: Told, entry: Entry, place: Place) -> Words:
     if isinstance(place, WorkedCheck):
         return (lead + place.line.name,)
     if isinstance(place, WorkedRequire):
-        return (f"{lead}required: {place.line.says}",)
+        return (lead + "required",)
     slot = place.line.slot if isinstance(place, WorkedGives) else place[0]
     return (lead, told.shared.symbol(slot)) if lead else (told.shared.symbol(slot),)
 
@@ -238,12 +237,13 @@ def _cell(side: Side, mark: str, entry: Entry | None, change: Change) -> Words:
         case WorkedRequire():
             words.append(_met(told, place))
         case WorkedGives():
-            words.append(told.value(place.line.slot, place.key))
+            value = told.value(place.line.slot, place.key)
+            shown = because = None
             if alone or {"formula", "case"} & set(change.differs):
                 shown, _ = told.steps(place.line.arms[place.arm].formula, place)
-                words += [f" ={_GAP}", shown] if shown is not None else []
                 because = told.because(place.line, place.arm, place.open)
-                words += [f", since{_GAP}", because] if because is not None else []
+            words.append(value if shown is None else Row((value, relation("="), shown)))
+            words += [", since ", because] if because is not None else []
         case _:
             words.append(told.value(*place))
     if entry.cite and (alone or "citation" in change.differs):
@@ -265,12 +265,14 @@ def _met(told: Told, place: WorkedRequire) -> Formula:
 def change_words(compared: Compared, mark: str, change: Change) -> str:
     """Return how far a number moved, from the numbers as printed; words where there is no such number."""
     first, second = change.first, change.second
-    if first is None or second is None or "value" not in change.differs:
+    if first is None or second is None or not isinstance(first.value, float):
         return ""
+    if "value" not in change.differs:
+        return "same value"
     one, two = compared.design.figure(mark, first), compared.other.figure(mark, second)
     if one is None or two is None or not one.printed:
         return ""
-    assert isinstance(first.value, float) and isinstance(second.value, float)
+    assert isinstance(second.value, float)
     true, shown = (second.value - first.value) / abs(first.value or 1.0), (two.printed - one.printed) / abs(one.printed)
     if abs(true) < LEAST:
         return "under 0.1 %"

@@ -46,8 +46,11 @@ def editions_lines(compared: Compared) -> list[str]:
 def _change(compared: Compared, mark: str, change: Change) -> list[str]:
     number = compared.design.line(mark, change.first) if change.first is not None else 0
     moved = change_words(compared, mark, change)
-    kind = "check " if change.entry.kind == "check" else "required: " if change.entry.kind == "requirement" else ""
-    head = f"  {f'{mark}.{number}' if number else '':<8}{kind}{change.entry.path}{f'  {moved}' if moved else ''}"
+    kind = change.entry.kind
+    name = (
+        "required" if kind == "requirement" else f"check {change.entry.path}" if kind == "check" else change.entry.path
+    )
+    head = f"  {f'{mark}.{number}' if number else '':<8}{name}{f'  {moved}' if moved else ''}"
     width = max(len(compared.design.code), len(compared.other.code))
     return [head, *(f"          {side.code:<{width}}  {_side(side, mark, entry, change)}"
                     for side, entry in ((compared.design, change.first), (compared.other, change.second)))]  # fmt: skip

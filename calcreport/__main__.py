@@ -34,9 +34,13 @@ def make_parser() -> argparse.ArgumentParser:
         action="store_true",
         help="work every value again by other arithmetic and other unit factors, and say how they agree",
     )
+    build.add_argument("--sampler", action="store_true", help="add the reviewer's sampler, which takes time")
     watch = commands.add_parser("watch", help="build again after every save, until interrupted")
     watch.add_argument("project", metavar="PROJECT", help="a project file, or a folder that holds project.yaml")
     watch.add_argument("-o", "--output", metavar="PDF", help="where to write it; beside the project file if not told")
+    sampler = commands.add_parser("sampler", help="the most telling lines of a package on one sheet")
+    _project(sampler)
+    sampler.add_argument("-o", "--output", metavar="PDF", help="where to write it; beside the project file if not told")
     lint = commands.add_parser("lint", help="report every problem of a project or a template with its place")
     lint.add_argument("file", metavar="FILE", help="a project file, a template file, or a template's name")
     lint.add_argument("--json", action="store_true", help="problems for machines")

@@ -30,6 +30,7 @@ from tests.proof.numbering import numbering
 from tests.proof.order import out_of_order
 from tests.proof.package import Package, read_package
 from tests.proof.prove import ROOT, Proof, prove
+from tests.proof.sampler import sampler
 from tests.proof.sheets import SheetPage, read_sheet
 
 SAMPLES = sorted(path.parent.name for path in (ROOT / "samples").glob("*/project.yaml"))
@@ -47,13 +48,15 @@ UNREAD = 0.05
 def proofs(tmp_path_factory: pytest.TempPathFactory) -> dict[str, Proof]:
     """Build and prove every project once."""
     folder = tmp_path_factory.mktemp("proof")
-    jobs = [(name, ROOT / "samples" / name, folder / f"{name}.pdf", 1000) for name in SAMPLES]
+    jobs: list[tuple[str, Path, Path, int, tuple[str, ...]]] = [
+        (name, ROOT / "samples" / name, folder / f"{name}.pdf", 1000, ("--sampler",)) for name in SAMPLES
+    ]
     (folder / "edges.yaml").write_text(edges(), encoding="utf-8")
-    jobs.append(("edges", folder / "edges.yaml", folder / "edges.pdf", 1000))
+    jobs.append(("edges", folder / "edges.yaml", folder / "edges.pdf", 1000, ("--sampler",)))
     for name, system in SYSTEMS.items():
         source = folder / f"{system.name}.yaml"
         source.write_text(project(system, PAIRS, SEED), encoding="utf-8")
-        jobs.insert(0, (name, source, source.with_suffix(".pdf"), TEXT_PAGES))
+        jobs.insert(0, (name, source, source.with_suffix(".pdf"), TEXT_PAGES, ()))
     with ProcessPoolExecutor(2) as pool:
         return {proof.name: proof for proof in pool.map(prove, *zip(*jobs, strict=True))}
 
@@ -183,6 +186,15 @@ def test_nothing_is_printed_over_print(proof: Proof) -> None:
     told(proof.overlaps, "")
 
 
+@pytest.mark.parametrize("name", [*SAMPLES, "edges"])
+def test_sampler_repeats_the_package(proofs: dict[str, Proof], name: str) -> None:
+    proof = proofs[name]
+    none_of(proof.sampler, "the sampler is one sheet", "a sampler line is the line it repeats")
+    none_of(proof.sampler, "the sampler holds the highest ratios", "a margin follows from its numbers")
+    none_of(proof.sampler, "one printed form of a value")
+    assert proof.sampled > 2
+
+
 @pytest.mark.parametrize("program", ["pypdf", "pdfium"])
 def test_text_comes_out_in_reading_order(proof: Proof, program: str) -> None:
     found = proof.order[program]
@@ -261,6 +273,28 @@ def test_planted_faults_of_the_package_are_found(subject: Package) -> None:
     assert with_page(links=[*page.links, *astray])["links lead to what they name"]
     other = (claims(list(subject.pages), fonts=[("Plain", False)]) - clean)["fonts are embedded"]
     assert other == 1
+
+
+def test_planted_faults_of_the_sampler_are_found(subject: Package) -> None:
+    def claims(page: SheetPage) -> set[str]:
+        return {finding.claim for finding in sampler(replace(subject, sampler=[page]))}
+
+    (page,) = subject.sampler
+    assert claims(page) == set()
+    first = next(line for line in page.lines if any(s.kind == "check" for s in line.statements))
+    rest = [line for line in page.lines if line is not first]
+    assert claims(replace(page, lines=rest)) == {"the sampler holds the highest ratios"}
+    for changes in ({"number": first.number + 1}, {"source": ["9.9.9 1"]}, {"statements": first.statements[:-1]}):
+        other = replace(first, **changes)  # type: ignore[arg-type]
+        assert "a sampler line is the line it repeats" in claims(replace(page, lines=[other, *rest]))
+    table = next(table for table in page.tables if table.columns[1].name == "Check")
+    for column, text, claim in ((5, "+99.0", "a margin follows from its numbers"),
+                                (4, "1,000 in.", "a margin follows from its numbers"),
+                                (3, "31 in.", "one printed form of a value")):  # fmt: skip
+        row = [text if place == column else cell for place, cell in enumerate(table.rows[0])]
+        tables = [replace(table, rows=[row, *table.rows[1:]])]
+        assert claim in claims(replace(page, tables=tables)), text
+    assert {f.claim for f in sampler(replace(subject, sampler=[page, page]))} == {"the sampler is one sheet"}
 
 
 def test_order_is_judged(subject: Package) -> None:

@@ -6,35 +6,18 @@ that whatever depends on them follows; other calculations are left alone. Nothin
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from collections.abc import Callable
+from dataclasses import replace
 from fractions import Fraction
 
 from calcreport.calculate.evaluate import Program
 from calcreport.calculate.handing import empty_values
-from calcreport.calculate.model import Values, Worked
+from calcreport.calculate.model import Margin, Values, Worked, WorkedProject
 
 #: a value is moved down to a quarter and up to four times itself
 WIDEST = 4.0
 #: steps in which each way is searched, and halvings of the step in which a verdict flips
 STEPS, HALVINGS = 24, 30
-
-
-@dataclass(frozen=True, slots=True)
-class Margin:
-    """The nearest values at which a check's verdict flips; None where it does not within the search."""
-
-    check: str
-    slot: int
-    #: value at hand and flipping values, base units
-    value: float
-    lower: float | None
-    upper: float | None
-
-    @property
-    def share(self) -> float:
-        """The smaller of the two ways, as a share of the value."""
-        ways = [abs(found - self.value) / abs(self.value) for found in (self.lower, self.upper) if found is not None]
-        return min(ways, default=float("inf"))
 
 
 def find_margins(worked: Worked) -> tuple[Margin, ...]:
@@ -50,6 +33,34 @@ def find_margins(worked: Worked) -> tuple[Margin, ...]:
         for check in base:
             found.append(Margin(check, slot, value, ways[0].get(check), ways[1].get(check)))
     return tuple(found)
+
+
+def least_margins(project: WorkedProject, progress: Callable[[int, int], None]) -> tuple[tuple[str, Margin], ...]:
+    """Return the narrowest margin of every check with the mark of its calculation, the narrowest check first.
+
+    A way on which the check is no longer judged, since the calculation stops or takes another branch, flips nothing.
+    """
+    found: list[tuple[str, Margin]] = []
+    for done, worked in enumerate(project.calculations, 1):
+        narrowest: dict[str, Margin] = {}
+        program = Program(worked.plan)
+        for margin in find_margins(worked) if worked.checks else ():
+            before = narrowest.get(margin.check)
+            judged = _judged(margin, worked, program) if before is None or margin.share < before.share else None
+            if judged is not None and (before is None or judged.share < before.share):
+                narrowest[margin.check] = judged
+        found += [(worked.calculation.mark, margin) for margin in narrowest.values()]
+        progress(done, len(project.calculations))
+    return tuple(sorted(found, key=lambda pair: pair[1].share))
+
+
+def _judged(margin: Margin, worked: Worked, program: Program) -> Margin | None:
+    """Return a margin without the ways that end in no verdict; None where neither is left."""
+    ways = [
+        end if end is not None and margin.check in _moved(worked, program, margin.slot, end) else None
+        for end in (margin.lower, margin.upper)
+    ]
+    return replace(margin, lower=ways[0], upper=ways[1]) if ways != [None, None] else None
 
 
 def _flips(

@@ -339,6 +339,29 @@ class Selection:
 
 
 @dataclass(frozen=True, slots=True)
+class Margin:
+    """The nearest values at which a check's verdict flips; None where it does not within the search."""
+
+    check: str
+    slot: int
+    #: value at hand and flipping values, base units
+    value: float
+    lower: float | None
+    upper: float | None
+
+    @property
+    def share(self) -> float:
+        """The smaller of the two ways, as a share of the value."""
+        return abs(self.nearest - self.value) / abs(self.value) if self.nearest is not None else float("inf")
+
+    @property
+    def nearest(self) -> float | None:
+        """The flipping value on the smaller of the two ways."""
+        ways = [found for found in (self.lower, self.upper) if found is not None]
+        return min(ways, key=lambda found: abs(found - self.value), default=None)
+
+
+@dataclass(frozen=True, slots=True)
 class WorkedProject:
     """All calculations, in the project's order, with the order they were worked in."""
 
@@ -363,6 +386,7 @@ __all__ = [
     "Key",
     "LinkedRows",
     "LinkedValue",
+    "Margin",
     "NoValue",
     "Plan",
     "PlannedArm",

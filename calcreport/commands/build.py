@@ -10,7 +10,7 @@ from pathlib import Path
 from calcreport.commands.desk import UNWRITTEN, ProgressLine, one_problem, open_project, say_problems
 from calcreport.core.problems import Problem
 from calcreport.filesystem import begins_with, replace_file
-from calcreport.publish import Package, build
+from calcreport.publish import Package, Sampling, build
 from calcreport.report.summary import summary_lines
 
 
@@ -20,7 +20,8 @@ def run(arguments: Namespace) -> int:
     if isinstance(opened, tuple):
         return say_problems(opened, arguments.json, tail=UNWRITTEN)
     progress = ProgressLine()
-    package = build(opened.world, opened.source, progress, arguments.second_path)
+    sampled: Sampling = "added" if arguments.sampler else "no"
+    package = build(opened.world, opened.source, progress, arguments.second_path, sampled=sampled)
     progress.clear()
     if package.problems:
         return say_problems(package.problems, arguments.json, tail=UNWRITTEN)

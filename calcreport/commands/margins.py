@@ -5,8 +5,8 @@ from __future__ import annotations
 import json
 from argparse import Namespace
 
-from calcreport.calculate.margins import Margin, find_margins
-from calcreport.calculate.model import Worked
+from calcreport.calculate.margins import find_margins
+from calcreport.calculate.model import Margin, Worked
 from calcreport.commands.desk import open_project, say_problems
 from calcreport.driver import work
 

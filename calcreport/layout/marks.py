@@ -103,7 +103,8 @@ class Marks:
             if x > lane.left and x + box.width > lane.right:
                 x, y = lane.left, y + SOURCE.leading
             items.append(Placed(x, y, box))
-            items.append(Link(x, y - box.ascent, box.width, box.ascent + box.descent, one.target))
+            if one.target:
+                items.append(Link(x, y - box.ascent, box.width, box.ascent + box.descent, one.target))
             x += box.width + BETWEEN
         if source.comes_from:
             y += SOURCE.leading

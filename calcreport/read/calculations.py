@@ -22,7 +22,7 @@ from calcreport.read.values import RowSource, ValueReader, is_complete
 
 MARK = re.compile(r"[A-Z][A-Za-z0-9]{0,11}")
 #: marks of the front sheets and appendices
-_RESERVED = ("COVER", "INDEX", "REVISIONS", "CRITERIA", "ASSUMPTIONS", "SUMMARY", "A", "B", "C")
+_RESERVED = ("COVER", "INDEX", "REVISIONS", "CRITERIA", "ASSUMPTIONS", "SUMMARY", "SAMPLER", "A", "B", "C")
 KEYS = ("mark", "title", "template", "units", "given", "choose", "pinned")
 
 

@@ -22,7 +22,7 @@ def main() -> int:
         )
         print(f"  {account.confirmed} confirmed, {account.unread_lines} not read in full; {dict(account.counts)}")
         print(f"  significant digits of computed values: {dict(sorted(account.digits.items()))}")
-        findings = [*account.findings, *proof.numbering, *proof.marks, *proof.overlaps]
+        findings = [*account.findings, *proof.numbering, *proof.marks, *proof.overlaps, *proof.sampler]
         order = [f"{program}: {text}" for program, found in proof.order.items() for text in found]
         for text in [
             *map(str, findings),

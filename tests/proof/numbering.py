@@ -8,12 +8,14 @@ from __future__ import annotations
 import re
 from collections import Counter, defaultdict
 from collections.abc import Iterator
+from functools import partial
 from typing import Any
 
 from .account import Finding
 from .equations import printed_of
 from .expressions import split
 from .package import Package, Page
+from .sampler import mark_of
 from .statements import NumberedLine
 
 
@@ -136,13 +138,14 @@ def _links_lead(package: Package) -> Iterator[Finding]:
     """Links in index, summary and source lane lead to the sheet and line they name."""
     lines = lines_by_number(package)
     at = {page.name: page.index for page in package.pages}
+    sampled = {sheet.index: partial(mark_of, package, sheet) for sheet in package.sampler}
     for page in package.pages:
         stem = page.name.rpartition("-")[0]
         for link in page.links:
             text = link.text
-            line = re.fullmatch(r"(?:(\S+) )?(?:line )?(\d+)", text)
+            line = re.fullmatch(r"(?:(\S+?)(?:-\d+,)? )?(?:line )?(\d+)", text)
             if line and not page.name.startswith("INDEX"):
-                mark = line[1] or stem
+                mark = line[1] or (sampled[page.index](link.y) if page.index in sampled else stem)
                 aim = lines.get((mark, int(line[2])))
                 if aim is None:
                     yield Finding(

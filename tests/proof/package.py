@@ -48,6 +48,10 @@ class Link:
     top: float | None
 
 
+#: mark of the sheet that repeats lines of others
+SAMPLER = "SAMPLER"
+
+
 @dataclass(slots=True)
 class Package:
     """A finished PDF, read once."""
@@ -59,6 +63,8 @@ class Package:
     calculations: list[Calculation]
     fonts: list[tuple[str, bool]]
     annotations: Counter[str] = field(default_factory=Counter)
+    #: sheets with lanes that repeat lines of calculations; no calculation themselves
+    sampler: list[SheetPage] = field(default_factory=list)
 
 
 def read_package(path: Path) -> Package:
@@ -80,7 +86,8 @@ def read_package(path: Path) -> Package:
         label = reader.page_labels[index]
         pages.append(Page(index, ink, frame, sheet_name(ink, frame), label, page_text(ink), tables, links))
     fonts = [(face.name, face.embedded) for face in glyphs.faces]
-    return Package(path, reader, pages, sheets, assemble(sheets), fonts, annotations)
+    own, sampler = ([s for s in sheets if (s.mark == SAMPLER) is other] for other in (False, True))
+    return Package(path, reader, pages, own, assemble(own), fonts, annotations, sampler)
 
 
 def page_text(ink: PageInk) -> str:

@@ -20,6 +20,7 @@ from .numbering import numbering
 from .order import out_of_order
 from .overlaps import overlaps
 from .package import Package, read_package
+from .sampler import sampler
 
 ROOT = Path(__file__).resolve().parents[2]
 
@@ -37,6 +38,9 @@ class Proof:
     numbering: list[Finding] = field(default_factory=list)
     marks: list[Finding] = field(default_factory=list)
     overlaps: list[Finding] = field(default_factory=list)
+    sampler: list[Finding] = field(default_factory=list)
+    #: lines that a sampler repeats
+    sampled: int = 0
     #: text out of order, by the program that took it out
     order: dict[str, list[str]] = field(default_factory=dict)
     sheets: int = 0
@@ -44,16 +48,16 @@ class Proof:
     failed: int = 0
 
 
-def build(project: Path, target: Path) -> subprocess.CompletedProcess[str]:
+def build(project: Path, target: Path, options: tuple[str, ...] = ()) -> subprocess.CompletedProcess[str]:
     """Build a package through the command line."""
-    command = [sys.executable, "-m", "calcreport", "build", str(project), "-o", str(target)]
+    command = [sys.executable, "-m", "calcreport", "build", str(project), "-o", str(target), *options]
     surroundings = os.environ | {"PYTHONPATH": str(ROOT)}
     return subprocess.run(command, cwd=ROOT, env=surroundings, capture_output=True, text=True, check=False)
 
 
-def prove(name: str, project: Path, target: Path, most_pages: int) -> Proof:
+def prove(name: str, project: Path, target: Path, most_pages: int, options: tuple[str, ...] = ()) -> Proof:
     """Build a project and prove its package; text is taken out of the first pages only."""
-    built = build(project, target)
+    built = build(project, target, options)
     proof = Proof(name, target, built.returncode, built.stdout + built.stderr)
     if built.returncode in (0, 1) and target.exists():
         look(proof, read_package(target), most_pages)
@@ -67,7 +71,8 @@ def look(proof: Proof, package: Package, most_pages: int) -> None:
         proof.account.add(examine(calculation))
         proof.failed += len(failed_checks(calculation))
     proof.numbering, proof.marks, proof.overlaps = numbering(package), marks(package), overlaps(package)
-    wanted = package.sheets[:most_pages]
+    proof.sampler, proof.sampled = sampler(package), sum(len(sheet.lines) for sheet in package.sampler)
+    wanted = package.sheets[:most_pages] + package.sampler
     proof.order["pypdf"] = [
         f"{sheet.name} {text}"
         for sheet in wanted
@@ -76,7 +81,7 @@ def look(proof: Proof, package: Package, most_pages: int) -> None:
     texts = _by_pdfium(package.path)
     proof.order["pdfium"] = [
         f"{sheet.name} {text}"
-        for sheet in package.sheets
+        for sheet in package.sheets + package.sampler
         for text in out_of_order(texts[sheet.index], sheet.lines, sheet.index)
     ]
 

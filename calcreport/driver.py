@@ -6,7 +6,7 @@ A World and a project's text in; problems and worked values out. `publish` goes 
 from __future__ import annotations
 
 from collections.abc import Callable, Iterable
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import partial
 
 from calcreport.calculate.cases import run_case
@@ -57,25 +57,37 @@ class TemplateReport:
     unreached: tuple[Unreached, ...]
 
 
+@dataclass(frozen=True, slots=True)
+class Instead:
+    """Another edition to work a project to, for comparison and never for a package."""
+
+    #: field of `codes`, and the edition to take in it
+    field: str
+    edition: str
+    #: place of the candidate the design takes, by mark: the comparison takes the same
+    taken: dict[str, int]
+
+
 def work(
     world: World,
     source: Source,
     progress: Progress = silent,
-    instead: tuple[str, str] | None = None,
+    instead: Instead | None = None,
     kept: Fresh = FRESH,
 ) -> Result:
-    """Read, plan and work a project; calculations without problems are worked even beside problems.
-
-    `instead` is a field of `codes` and another edition to take in it, for comparison and never for a package.
-    """
+    """Read, plan and work a project; calculations without problems are worked even beside problems."""
     problems = Problems()
     library = kept.last("library")
     if not (isinstance(library, Library) and library.renew(world, problems)):
         library = Library(world, problems)
         kept.put("library", library)
-    inputs = ProjectReader(world, library, problems, instead).read(source)
+    other = (instead.field, instead.edition) if instead is not None else None
+    inputs = ProjectReader(world, library, problems, other).read(source)
     if inputs is None:
         return Result(problems.sorted())
+    if instead is not None:
+        taken = (replace(c, pinned=instead.taken.get(c.mark, c.pinned)) for c in inputs.calculations)
+        inputs = replace(inputs, calculations=tuple(taken))
     plans = _plans(inputs, problems, kept)
     inputs = bind_links(inputs, plans, problems)
     worked = work_project(inputs, plans, problems, lambda done, total: progress("working", done, total), kept)

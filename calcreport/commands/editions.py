@@ -10,7 +10,7 @@ from pathlib import Path
 from calcreport.calculate.model import Worked, WorkedProject
 from calcreport.commands.desk import UNWRITTEN, Opened, ProgressLine, one_problem, open_project, say_problems
 from calcreport.core.problems import Problem, nearest
-from calcreport.driver import Result, work
+from calcreport.driver import Instead, Result, work
 from calcreport.filesystem import begins_with, replace_file
 from calcreport.history.accounts import account, placed_entries
 from calcreport.history.differences import differ
@@ -59,7 +59,8 @@ def compare(
     first = work(opened.world, opened.source, progress)
     if first.problems or first.worked is None:
         return first.problems
-    second = work(opened.world, opened.source, progress, (field, edition))
+    taken = {w.calculation.mark: w.selection.used for w in first.worked.calculations if w.selection is not None}
+    second = work(opened.world, opened.source, progress, Instead(field, edition, taken))
     if second.worked is None or _taken(second.worked, field) in (_taken(first.worked, field), ""):
         return second.problems
     marks = [w.calculation.mark for w in first.worked.calculations if mark in (ALL, w.calculation.mark)]

@@ -115,8 +115,9 @@ def _blocks(compared: Compared) -> list[Block]:
     words: Words = (
         f"The design is to {design}. The same given values were worked to ",
         Strong(f"{other}, for comparison only"),
-        "; values one calculation hands to another follow their edition. A line is called equal where unrounded value, "
-        "formula, case, citation and verdict are. Lines are matched by their path, and numbered as on the sheets of "
+        "; values one calculation hands to another follow their edition, candidates are those of the design. A line "
+        "is called equal where unrounded value, formula, case, citation and verdict are. Lines are matched by their "
+        "path, and numbered as on the sheets of "
         "the design.",
     )
     blocks: list[Block] = [Paragraph(words, "plain")]

@@ -6,8 +6,11 @@ from pathlib import Path
 
 import pytest
 
-from calcreport.calculate.margins import find_margins
-from tests.small import work_small
+from calcreport.calculate.margins import find_margins, least_margins
+from calcreport.calculate.model import WorkedProject
+from calcreport.commands.desk import Opened, open_project
+from calcreport.driver import work
+from tests.small import work_small, write_small
 
 TEXT = """\
 symbols:
@@ -39,3 +42,35 @@ def test_margin_of_a_failing_check_shows_what_would_mend_it(tmp_path: Path) -> N
     # 24/8 = 3 in, a quarter less
     assert found["area", "b"].lower == pytest.approx(3 * 0.0254, rel=1e-7)
     assert found["area", "b"].share == pytest.approx(0.25, rel=1e-6)
+
+
+STOPPING = """\
+symbols:
+  b: {unit: in, says: a length}
+  k: {unit: '1', says: a factor}
+given: {b: , k: }
+lines:
+  - {require: 'b >= 3.8 in', says: too thin, cite: geometry}
+  - {check: width, holds: 'k*b <= 5 in', cite: geometry}
+  - {check: never, holds: 'b <= 100*b', cite: geometry}
+"""
+
+
+def worked_project(folder: Path, text: str, given: str) -> WorkedProject:
+    opened = open_project(str(write_small(folder, text, given)))
+    assert isinstance(opened, Opened)
+    project = work(opened.world, opened.source).worked
+    assert project is not None
+    return project
+
+
+def test_least_margins_are_where_a_verdict_changes_and_not_where_a_calculation_stops(tmp_path: Path) -> None:
+    project = worked_project(tmp_path, STOPPING, "{b: 4 in, k: 1}")
+    (worked,) = project.calculations
+    found = {(m.check, worked.plan.slots[m.slot].path): m for m in find_margins(worked)}
+    # 3.8 in, a twentieth less, stops the calculation; 5 in, a quarter more, is the width's limit
+    assert found["width", "b"].share == pytest.approx(0.05, rel=1e-6)
+    ((mark, least),) = least_margins(project, lambda done, total: None)
+    assert (mark, least.check, least.lower) == ("T1", "width", None)
+    assert least.share == pytest.approx(0.25, rel=1e-6)
+    assert least.nearest is not None and least.nearest > least.value

@@ -132,6 +132,14 @@ def test_lines_and_checks_of_one_edition_and_a_verdict_that_flips(tmp_path: Path
     assert told["calculations"]["X1"]["equal"] == 2
 
 
+def test_both_editions_take_the_candidate_of_the_design(tmp_path: Path) -> None:
+    # by hand: the design takes 3 in, below the 6 in it asks for; the earlier edition alone would go on to 5 in
+    chosen = OWN.replace("given: {b: 3 in}", "given: {}, choose: [{b: 3 in}, {b: 5 in}]")
+    _, told = compared(make(tmp_path, chosen))
+    assert told["calculations"]["X1"]["verdicts"] == ["OK", "NG"]
+    assert "b" not in changes(told, "X1") and told["calculations"]["X1"]["equal"] == 2
+
+
 def test_the_design_is_named_and_the_pair_held_against_the_adopted_code(tmp_path: Path) -> None:
     ran = run("editions", make(tmp_path, section("B1", "4.30 in^2")), "B1", "--concrete", "ACI 318-14")
     assert ran.out.startswith("ACI 318-19 is the design; ACI 318-14 is worked from the same given values, for compar")
@@ -173,6 +181,31 @@ def test_what_is_no_comparison(tmp_path: Path, mark: str, edition: str, said: st
     ran = run("editions", folder, mark, "--concrete", edition, "-o", str(target))
     assert ran.code == 2 and said in ran.err, ran.err
     assert not target.exists()
+
+
+def test_a_beam_under_an_earlier_edition(tmp_path: Path) -> None:
+    # by hand, d = 19.01 - 1.5 - 0.375 - 0.635 = 16.5 in: a = 3.81(60)/(0.85(4)(12)) = 5.603, c = 6.592,
+    # eps_t = 0.003(16.5 - 6.592)/6.592 = 0.00451: above the least of 0.004 (318-14, 9.3.3.1), below 0.00507 (318-19)
+    # phi = 0.65 + 0.25(0.00451 - 0.00207)/(limit - 0.00207): 0.858 with the limit 0.005, 0.853 with 0.00507
+    beam = (
+        "  - {mark: B1, title: beam, template: aci318/beam-flexure, concrete: C4, bars: G60, given: {b: 12 in, "
+        "h: 19.01 in, c_c: 1.5 in, stirrup: '#3', face: bottom, layer: [{name: first, steel: '3#10'}], c_l: none, "
+        "M_u: 200 kip*ft, d_agg: 0.75 in, rounded_eps_ty: no, third_more: no}}\n"
+    )
+    code, told = compared(make(tmp_path, beam))
+    found = changes(told, "B1")
+    assert code == 1 and told["calculations"]["B1"]["verdicts"] == ["NG", "OK"]
+    assert told["calculations"]["B1"]["governing"] == ["tension-controlled section", "flexure"]
+    assert found["tension-controlled section"]["differs"] == ["only in first"]
+    assert found["tension-controlled section"]["design"]["verdict"] == "NG"
+    assert found["least tension strain"]["differs"] == ["only in second"]
+    assert found["least tension strain"]["compared"]["verdict"] == "OK"
+    assert [found["phi"][side]["value"] for side in ("design", "compared")] == pytest.approx([0.853, 0.858], abs=5e-4)
+    # the cap on f_y in 9.6.1.2 is of the later edition: another formula, and no other value below 80 ksi
+    assert found["A_smin"]["differs"] == ["case"]
+    assert {name for name, change in found.items() if "value" in change["differs"]} == {
+        "eps_tl", "phi", "phiM_n", "flexure",
+    }  # fmt: skip
 
 
 def test_sheets_say_which_edition_is_not_the_design(tmp_path: Path) -> None:

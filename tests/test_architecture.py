@@ -49,7 +49,8 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
     )),
     ("history", ("history", "history.accounts", "history.differences", "history.model")),
     ("report", (
-        "report", "report.calculation", "report.candidates", "report.compose", "report.confirmations", "report.digits", "report.display",
+        "report", "report.calculation", "report.candidates", "report.compared", "report.compose",
+        "report.confirmations", "report.digits", "report.display",
         "report.drawings", "report.editions", "report.editions_text", "report.families", "report.forms",
         "report.formula_model", "report.fronts",
         "report.given_blocks", "report.governing", "report.items", "report.members", "report.model", "report.notation",

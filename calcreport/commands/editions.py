@@ -17,8 +17,9 @@ from calcreport.history.differences import differ
 from calcreport.layout.fonts import installed_fonts
 from calcreport.layout.paginate import lay_out
 from calcreport.output.pdf import write_pdf
+from calcreport.report.compared import Compared, Side
 from calcreport.report.confirmations import find_forms
-from calcreport.report.editions import Compared, Side, editions_report
+from calcreport.report.editions import editions_report
 from calcreport.report.editions_text import editions_lines, editions_object
 from calcreport.report.governing import governing
 from calcreport.report.notation import Notation

@@ -7,7 +7,16 @@ from typing import Any
 
 from calcreport.core.version import PROGRAM
 from calcreport.history.model import Change, Difference, Entry
-from calcreport.report.editions import Compared, Side, change_words, listed, printed_value, unchanged, verdict_words
+from calcreport.report.compared import (
+    Compared,
+    Side,
+    change_words,
+    headline,
+    listed,
+    printed_value,
+    unchanged,
+    verdict_words,
+)
 from calcreport.report.fronts import counted
 from calcreport.report.model import Strong
 
@@ -22,6 +31,7 @@ def editions_lines(compared: Compared) -> list[str]:
     found = [f"{design} is the design; {other} is worked from the same given values, for comparison only."]
     if compared.foreign:
         found.append(compared.foreign)
+    found.append(headline(compared))
     for difference in compared.differences:
         if difference.first is None or not difference.differs:
             continue

@@ -80,7 +80,7 @@ def _calculation(compared: Compared, difference: Difference) -> list[Block]:
     assert difference.first is not None
     mark = difference.mark
     columns = (
-        Column(("Line",)),
+        Column((f"{mark} line",)),
         Column(("What",)),
         Column((f"{compared.design.code}, the design",), stretch=1.0),
         Column((f"{compared.other.code}, not the design",), stretch=1.0),

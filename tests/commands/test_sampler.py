@@ -103,8 +103,8 @@ def test_nothing_is_written_beside_problems(tmp_path: Path) -> None:
     [
         # by hand: (28.2563 - 30)/30 = -5.812 %; 28.26 gives -5.8 %
         (30.0, 0, 28.2563, "28.26"),
-        # (0.99951 - 1)/1 = -0.049 %, printed as 0.0: four digits, 0.9995, give -0.05, printed as 0.1; a fifth mends it
-        (1.0, 0, 0.99951, "0.99951"),
+        # (2.9996 - 3)/3 = -0.013 %, shown with two decimals; four digits, 3.000, give none: a fifth mends it
+        (3.0, 0, 2.9996, "2.9996"),
     ],
 )
 def test_digits_until_the_share_follows(given: float, places: int, nearest: float, shown: str) -> None:

@@ -98,8 +98,6 @@ class _Entries:
                     case = "" if len(arms) == 1 else _text(when) if when is not None else "otherwise"
                     text = _plain(arms[line.arm].formula.span.text)
                     yield self.value("value", line.line.slot, line.key, text, case, line.line.cite.printed), line
-                case WorkedRequire() if line.line.silent:
-                    pass
                 case WorkedRequire():
                     path = self.rows(dict(line.open), tuple(index for index, _ in line.open)) + line.line.says
                     yield Entry("requirement", path, 1, None, "1", 1.0, _text(line.line.condition), "",

@@ -26,7 +26,7 @@ from calcreport.publish import report
 
 HERE = Path(__file__).parent / "problems"
 MAIN = sorted(path.stem for path in HERE.glob("*.yaml") if not path.name.endswith(".cases.yaml"))
-_HEAD = re.compile(r"# problem: ((?:tables/[\w.-]+:)?\d+:\d+) ([a-z-]+) (.*)")
+_HEAD = re.compile(r"# problem: ((?:(?:tables/)?[\w.-]+\.csv:)?\d+:\d+) ([a-z-]+) (.*)")
 _REST = re.compile(r"#   (expected|found|hint|see): (.*)")
 
 
@@ -72,7 +72,7 @@ def expected_in(source: Source) -> list[list[str]]:
     found: list[list[str]] = []
     for line in source.text.split("\n"):
         if head := _HEAD.fullmatch(line):
-            place = head[1] if head[1].startswith("tables/") else f"{source.name}:{head[1]}"
+            place = head[1] if ".csv:" in head[1] else f"{source.name}:{head[1]}"
             found.append([f"{place} {head[2]} {head[3]}"])
         elif (rest := _REST.fullmatch(line)) and found:
             found[-1].append(f"{rest[1]}: {rest[2]}")

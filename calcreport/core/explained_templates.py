@@ -88,6 +88,11 @@ A case nobody thought of would go without a formula. The last branch is `otherwi
 
     branches: [{when: 'a < b', formula: '1'}]                        wrong
     branches: [{when: 'a < b', formula: '1'}, {otherwise: '2'}]      right""",
+    "not-in-figure": """A check, caution, assumption or result stands in a block of which only the figure is shown.
+Of `show: figure` nothing but figures reaches the sheets; what must be read would not be there.
+
+    - {each: point, show: figure, lines: [{check: it, …}]}      wrong
+    - {each: point, lines: [{check: it, …}]}                    right""",
     "not-in-unknown": """A check or figure stands among the lines of an `unknown`.
 Those lines are worked once a trial, many times over, so nothing can be judged or drawn there.
 

@@ -30,6 +30,11 @@ def load_tables() -> ModuleType:
     return import_module("calcreport.read.tables")
 
 
+def load_template_tables() -> ModuleType:
+    """Return the module that reads tables beside templates, for the same reason."""
+    return import_module("calcreport.read.template_tables")
+
+
 def load_command(name: str) -> ModuleType:
     """Return the module of one of the program's commands."""
     return import_module(f"calcreport.commands.{name}")

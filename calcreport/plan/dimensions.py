@@ -73,6 +73,10 @@ class _Holder(FormulaHolder):
         for column in line.columns:
             if column.other is not None:
                 self.result(column.other, self.slots[column.slot])
+        if line.spaced is not None:
+            for bound in line.spaced:
+                self.result(bound, self.slots[line.columns[0].slot])
+            return
         for entry in line.entries:
             if entry.when is not None:
                 self.condition(entry.when)

@@ -36,6 +36,7 @@ from calcreport.plan.model import (
 )
 from calcreport.plan.names import Names, assured
 from calcreport.plan.parts import PartHander
+from calcreport.plan.placing import needs_paper, once_only
 from calcreport.plan.space import Context, Known, Maker, Space
 from calcreport.read.model import (
     Branches,
@@ -89,19 +90,6 @@ def _given_below(lines: tuple[Line, ...]) -> Iterator[str]:
             case PartUse(PartBody() as body, _, stem):
                 own = [name.name for name in body.gives] or [n.symbol.name for n in body.lines if isinstance(n, Gives)]
                 yield from (f"{stem}.{name}" if stem else name for name in own)
-
-
-def _once_only(lines: tuple[Line, ...]) -> Iterator[Line]:
-    """Yield the lines, at any depth and in parts, that have no place in the trials of an unknown."""
-    for line in lines:
-        match line:
-            case Check() | Drawing():
-                yield line
-            case Branches(arms):
-                for arm in arms:
-                    yield from _once_only(arm.lines)
-            case Each(_, inner) | Unknown(lines=inner) | PartUse(PartBody(lines=inner)):
-                yield from _once_only(inner)
 
 
 class _Linker:
@@ -242,6 +230,15 @@ class _Linker:
                 found=f"`each: {name.name}` inside itself",
             )
         inner = replace(at, open=(*at.open, index))
+        for unseen in needs_paper(line.lines) if line.show == "figure" else ():
+            self.problems.add(
+                "not-in-figure",
+                unseen.span.part(0, 1),
+                "this line would stand on no sheet",
+                expected="lines that a figure rests on",
+                found="a check" if isinstance(unseen, Check) else f"a `{unseen.kind}` line",
+                hint="leave out `show: figure`, or put the line after the block",
+            )
         lines = self.lines(line.lines, space, inner)
         table = tuple(self.table_column(column, space, inner) for column in line.table)
         return PlannedEach(index, lines, table, line.show, line.span)
@@ -249,7 +246,7 @@ class _Linker:
     def unknown(self, line: Unknown, space: Space, at: Context) -> PlannedLine:
         low, high = self.names.expression(line.low, space, at), self.names.expression(line.high, space, at)
         slot = self.maker.slot(line.symbol, space, at.open, line.name_span)
-        for inner in _once_only(line.lines):
+        for inner in once_only(line.lines):
             self.problems.add(
                 "not-in-unknown",
                 inner.span.part(0, 1),

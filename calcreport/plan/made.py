@@ -6,8 +6,9 @@ A `Rows` line in, `PlannedRows` out. A factor for a row that no set can have is 
 from __future__ import annotations
 
 import re
+from fractions import Fraction
 
-from calcreport.core.expression import Expression, Name
+from calcreport.core.expression import Binary, Expression, Name, Number
 from calcreport.core.problems import listed
 from calcreport.plan.model import PlannedColumn, PlannedEntry, PlannedRows, RowSet
 from calcreport.plan.names import Names
@@ -21,7 +22,8 @@ def plan_rows(line: Rows, names: Names, maker: Maker, space: Space, at: Context)
     """Bind a set made here."""
     planner = _RowsPlanner(line, names, space, at)
     overs = tuple(names.set_named(c.over.name, c.over.span, space) if c.over else -1 for c in line.columns)
-    entries = tuple(planner.entry(entry, overs) for entry in line.entries)
+    bounds = planner.bounds()
+    entries = planner.points(bounds) if bounds else tuple(planner.entry(entry, overs) for entry in line.entries)
     rows = maker.row_set(line.name, space, at.open, planner.row_names(), line.span)
     columns = []
     for column, over in zip(line.columns, overs, strict=True):
@@ -29,7 +31,7 @@ def plan_rows(line: Rows, names: Names, maker: Maker, space: Space, at: Context)
         other = None if column.other is None else names.value(column.other, column.symbol, space, at)
         slot = maker.slot(column.symbol, space, sets, column.span)
         columns.append(PlannedColumn(slot.index, over, other))
-    return PlannedRows(rows.index, tuple(columns), entries, line.says, line.cite, line.span)
+    return PlannedRows(rows.index, tuple(columns), entries, line.says, line.cite, line.span, bounds)
 
 
 class _RowsPlanner:
@@ -37,8 +39,33 @@ class _RowsPlanner:
         self.line, self.names, self.space, self.at = line, names, space, at
         self.problems = names.problems
 
+    def bounds(self) -> tuple[Expression, Expression] | None:
+        """Bind the bounds of a spaced set."""
+        spaced, column = self.line.spaced, self.line.columns[0] if self.line.columns else None
+        if spaced is None or column is None:
+            return None
+        low = self.names.value(spaced.low, column.symbol, self.space, self.at)
+        return low, self.names.value(spaced.high, column.symbol, self.space, self.at)
+
+    def points(self, bounds: tuple[Expression, Expression]) -> tuple[PlannedEntry, ...]:
+        """Return the points of a spaced set, each with the formula that gives it."""
+        low, high = bounds
+        assert self.line.spaced is not None
+        last, span = self.line.spaced.count - 1, low.span
+
+        def at(place: int) -> Expression:
+            if place in (0, last):
+                return high if place else low
+            share = Binary("/", Number(Fraction(place), str(place), None, span),
+                           Number(Fraction(last), str(last), None, span), span)  # fmt: skip
+            return Binary("+", low, Binary("*", share, Binary("-", high, low, span), span), span)
+
+        return tuple(PlannedEntry("", (), (at(place),), None, self.line.span) for place in range(last + 1))
+
     def row_names(self) -> tuple[str, ...]:
         """Return the names the rows can have; () where they depend on the rows of another set."""
+        if self.line.spaced is not None:
+            return tuple(str(number) for number in range(1, self.line.spaced.count + 1))
         if any(entry.pairing for entry in self.line.entries):
             return ()
         found: dict[str, bool] = {}

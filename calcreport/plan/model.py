@@ -148,7 +148,7 @@ class PlannedEntry:
 
 @dataclass(frozen=True, slots=True)
 class PlannedRows:
-    """A set made here."""
+    """A set made here; of one spaced between two bounds, its entries are the points."""
 
     rows: int
     columns: tuple[PlannedColumn, ...]
@@ -156,6 +156,8 @@ class PlannedRows:
     says: str
     cite: Citation
     span: Span
+    #: the bounds the rows are spaced between
+    spaced: tuple[Expression, Expression] | None = None
 
 
 @dataclass(frozen=True, slots=True)

@@ -15,6 +15,7 @@ from calcreport.read.fields import Fields, as_mapping
 from calcreport.read.formulas import FormulaReader
 from calcreport.read.given import read_givens
 from calcreport.read.lines import LineReader
+from calcreport.read.made_rows import ReadTable
 from calcreport.read.model import Given, PartBody
 from calcreport.read.nodes import Mapping, Node
 from calcreport.read.symbols import Table, read_symbols
@@ -35,6 +36,8 @@ class BodyReader:
     document: str
     #: reads a part that is a template file of its own
     read_file: Callable[[str, Span], PartBody | None]
+    #: takes the cells of a table beside the file
+    read_table: ReadTable
     problems: Problems
     _entries: dict[str, Node] = field(default_factory=dict)
     _read: dict[str, PartBody | None] = field(default_factory=dict)
@@ -78,7 +81,7 @@ class BodyReader:
         given = fields.mapping("given")
         givens: tuple[Given, ...] = read_givens(given, self.table, self.problems) if given else ()
         formulas = FormulaReader(self.table, self.place, self.problems)
-        lines = LineReader(formulas, self.document, self.part, self.problems).lines(
+        lines = LineReader(formulas, self.document, self.part, self.read_table, self.problems).lines(
             fields.items("lines", required=True)
         )
         return PartBody(

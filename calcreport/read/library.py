@@ -7,7 +7,9 @@ from __future__ import annotations
 
 import re
 from dataclasses import dataclass, field
+from functools import partial
 
+from calcreport.core.late import load_template_tables
 from calcreport.core.problems import Problems
 from calcreport.core.source import Source, Span
 from calcreport.core.world import NO_SUCH_FILE, World
@@ -22,6 +24,7 @@ from calcreport.read.variants import settle
 _CODE = re.compile(r"(.+?)-([0-9]{2}|[0-9]{4})")
 YEAR = re.compile(r"(19|20)[0-9]{2}")
 CODE_KEYS = ("name", "years")
+_TABLE = re.compile(r"[A-Za-z0-9][\w.-]*\.csv")
 DEEPEST_PART = 8
 #: stands among the editions where the newest edition a part offers may be taken: a template linted alone, a case
 ANY = "*"
@@ -257,7 +260,8 @@ class Library:
             return part.body if part else None
 
         notation = self.symbols(self.folder(head.name, head.tree), system, year)
-        reader = BodyReader(dict(notation or {}), head.systems.index(system), document, read_part, self.problems)
+        place, table = head.systems.index(system), partial(self.cells, folder)
+        reader = BodyReader(dict(notation or {}), place, document, read_part, table, self.problems)
         found = reader.template(settled, head.title) if notation is not None else None
         self._open.pop()
         if found is None:
@@ -266,6 +270,26 @@ class Library:
         self.bar_table(head.name, system)
         files = tuple(s for s in (self._found.get(f) for f in sorted(self._touched[-1])) if isinstance(s, Source))
         return Template(head.name, head.title, shown, year, system, found[1], found[0], head.source, files)
+
+    def cells(self, folder: str, file: Scalar, names: tuple[Scalar, ...]) -> tuple[dict[str, Scalar], ...] | None:
+        """Return the cells of a table that stands beside a template, by column; None after adding why not."""
+        if not _TABLE.fullmatch(file.text):
+            self.problems.add("no-file", file.span, f"`{file.text[:60]}` is not a table beside the template",
+                              expected="the name of a CSV file in the template's own folder",
+                              found=file.text[:40] or "nothing")  # fmt: skip
+            return None
+        name = f"{folder}/{file.text}" if folder else file.text
+        for touched in self._touched:
+            touched.add(name)
+        source = self._find(name)
+        if isinstance(source, str):
+            self.problems.add("no-file", file.span, f"`{file.text[:60]}` cannot be read",
+                              expected="a file beside the template", found=source)  # fmt: skip
+            return None
+        found: tuple[dict[str, Scalar], ...] | None = load_template_tables().read_cells(
+            source, file, names, self.problems
+        )
+        return found
 
     def _part_document(
         self, path: str, head: TemplateHead, system: System, editions: dict[str, str], document: str

@@ -13,7 +13,7 @@ from calcreport.core.problems import Problems, listed
 from calcreport.core.source import Span
 from calcreport.read.fields import Fields, as_mapping, say_not_yet
 from calcreport.read.formulas import FormulaReader
-from calcreport.read.made_rows import RowsReader
+from calcreport.read.made_rows import ReadTable, RowsReader
 from calcreport.read.model import (
     Arm,
     BranchArm,
@@ -37,13 +37,12 @@ from calcreport.read.words import read_citation, read_cite, read_pieces
 KINDS: dict[str, tuple[str, ...]] = {
     "heading": (), "note": ("cite",), "caution": ("cite",), "assume": ("cite",), "use": ("cite",),
     "gives": ("formula", "branches", *OWN_KEYS, "cite", "as cited"),
-    "branches": (), "rows": ("columns", "list", "says", "cite"), "each": ("lines", "table", "show"),
+    "branches": (), "rows": ("columns", "list", "spaced", "file", "says", "cite"), "each": ("lines", "table", "show"),
     "part": ("as", "same", "with"), "check": ("holds", "says", "cite"), "require": ("says", "cite"),
     "figure": ("with",), "unknown": ("between", "satisfies", "lines", *OWN_KEYS),
 }  # fmt: skip
-#: kinds of lines, and keys of kinds, that the language has and this version does not read
+#: kinds of lines that the language has and this version does not read
 _LATER = ("method", "by another method")
-_KEYS_LATER: dict[str, tuple[str, ...]] = {"rows": ("spaced", "file")}
 #: keys of a case of one value, and of a case that holds lines
 ARM_KEYS, BRANCH_KEYS = ("when", "formula", "otherwise"), ("when", "lines", "otherwise", "says")
 SHOWN = ("every", "figure")
@@ -59,6 +58,8 @@ class LineReader:
     document: str
     #: reads a part by its name; None where it could not be read
     read_part: Callable[[str, Span], PartBody | None]
+    #: takes the cells of a table beside the template
+    read_table: ReadTable
     problems: Problems
 
     def lines(self, nodes: tuple[Node, ...]) -> tuple[Line, ...]:
@@ -86,7 +87,7 @@ class LineReader:
             self.say_unknown(mapping)
             return None
         what = f"an `{kind}` line" if kind in ("assume", "each", "unknown") else f"a `{kind}` line"
-        fields = Fields(mapping, (kind, *KINDS[kind], "only"), what, self.problems, _KEYS_LATER.get(kind, ()))
+        fields = Fields(mapping, (kind, *KINDS[kind], "only"), what, self.problems)
         readers: dict[str, Callable[[Fields], Line | None]] = {
             "gives": self.gives, "branches": self.branches, "rows": self.rows, "each": self.each,
             "part": self.part, "check": self.check, "require": self.require, "figure": self.figure,
@@ -197,7 +198,8 @@ class LineReader:
         return Branches(tuple(arms), fields.span)
 
     def rows(self, fields: Fields) -> Line | None:
-        return RowsReader(self.formulas, fields, read_cite(fields, self.document, self.problems)).read()
+        cite = read_cite(fields, self.document, self.problems)
+        return RowsReader(self.formulas, fields, cite, self.read_table).read()
 
     def each(self, fields: Fields) -> Line | None:
         rows = fields.scalar("each", required=True)

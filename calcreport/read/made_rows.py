@@ -1,37 +1,112 @@
-"""Sets made in a template: `rows:` with its columns and its list, each cell a formula or a mapping over a set.
+"""Sets made in a template: `rows:` with columns and a list, a table beside the template, or `spaced` between bounds.
+
+A cell of a list is a formula or a mapping over a set, one of a table a number or a word.
 
 Fields in, `Rows` out.
 """
 
 from __future__ import annotations
 
-from calcreport.core.expression import Expression, Name
+from collections.abc import Callable
+
+from calcreport.core.expression import Expression, Name, Negate, Number
 from calcreport.core.source import Citation
 from calcreport.read.fields import Fields, as_mapping, as_scalar, is_empty
 from calcreport.read.formulas import FormulaReader
-from calcreport.read.model import Cell, Entry, MadeColumn, Rows
-from calcreport.read.nodes import Mapping, Node
+from calcreport.read.given import MOST_ROWS
+from calcreport.read.model import Cell, Entry, MadeColumn, Rows, Spaced
+from calcreport.read.nodes import Mapping, Node, Scalar
 from calcreport.read.symbols import OWN_KEYS, hold_name
 
 COLUMN_KEYS, ROW_KEYS = (*OWN_KEYS, "over", "else"), ("name", "for", "when")
+#: ways to say which rows a set has
+_WAYS = ("list", "spaced", "file")
+#: takes the cells of a table beside the template by their columns; None after adding why not
+ReadTable = Callable[[Scalar, tuple[Scalar, ...]], tuple[dict[str, Scalar], ...] | None]
 
 
 class RowsReader:
     """Reads one `rows` line."""
 
-    def __init__(self, formulas: FormulaReader, fields: Fields, cite: Citation) -> None:
-        self.formulas, self.fields, self.cite = formulas, fields, cite
+    def __init__(self, formulas: FormulaReader, fields: Fields, cite: Citation, read_table: ReadTable) -> None:
+        self.formulas, self.fields, self.cite, self.read_table = formulas, fields, cite, read_table
         self.problems = formulas.problems
 
     def read(self) -> Rows | None:
         """Return the set, or None where it has no name."""
         name = self.fields.scalar("rows", required=True)
-        columns = self.columns(self.fields.mapping("columns", required=True))
-        entries = tuple(self.entry(node, columns) for node in self.fields.items("list", required=True))
+        ways = [key for key in _WAYS if self.fields.has(key)]
+        if len(ways) > 1:
+            self.problems.add("unknown-key", self.fields.span_of(ways[1]).part(0, 1),
+                              f"`{ways[0]}` and `{ways[1]}` stand on one line", expected="one of them",
+                              found="both")  # fmt: skip
+            return None
+        spaced, columns = None, self.columns(self.fields.mapping("columns", required="spaced" not in ways))
+        entries: tuple[Entry | None, ...] = ()
+        if "spaced" in ways:
+            made = self.spaced()
+            if made is None:
+                return None
+            columns, spaced = (made[0],), made[1]
+        elif "file" in ways:
+            entries = self.from_table(columns)
+        else:
+            entries = tuple(self.entry(node, columns) for node in self.fields.items("list", required=True))
         if name is None or not hold_name(name, self.problems):
             return None
         kept = tuple(entry for entry in entries if entry is not None)
-        return Rows(name.text, columns, kept, self.fields.text("says"), self.cite, name.span)
+        return Rows(name.text, columns, kept, self.fields.text("says"), self.cite, name.span, spaced)
+
+    def spaced(self) -> tuple[MadeColumn, Spaced] | None:
+        """Read `spaced: {symbol: c_i, unit: in, says: …, from: '0.05*h', to: '3*h', count: 40}`."""
+        mapping = self.fields.mapping("spaced")
+        if mapping is None:
+            return None
+        if self.fields.has("columns"):
+            self.problems.add("unknown-key", self.fields.span_of("columns").part(0, 1),
+                              "`spaced` and `columns` stand on one line", expected="the symbol under `spaced` alone",
+                              found="both")  # fmt: skip
+            return None
+        fields = Fields(mapping, ("symbol", "from", "to", "count", *OWN_KEYS), "`spaced`", self.problems)
+        named = fields.scalar("symbol", required=True)
+        for key in ("from", "to"):
+            if fields.node_of(key) is None:
+                fields.say_missing(key)
+        low, high = self.formulas.formula(fields.node_of("from")), self.formulas.formula(fields.node_of("to"))
+        count = fields.whole("count", low=2, high=MOST_ROWS, required=True)
+        symbol = self.formulas.symbol(named, fields) if named is not None else None
+        if named is None or symbol is None or low is None or high is None or count is None:
+            return None
+        if symbol.kind != "quantity":
+            self.problems.add("wrong-shape", named.span, f"`{named.text}` cannot be spaced between bounds",
+                              expected="a quantity", found=f"a {symbol.kind}")  # fmt: skip
+            return None
+        return MadeColumn(symbol, None, None, named.span), Spaced(low, high, count)
+
+    def from_table(self, columns: tuple[MadeColumn, ...]) -> tuple[Entry | None, ...]:
+        """Read rows from a table beside the template."""
+        file = self.fields.scalar("file", required=True)
+        names = tuple(Scalar(column.symbol.name, column.span, False) for column in columns)
+        rows = self.read_table(file, names) if file is not None else None
+        found: list[Entry | None] = []
+        for row in rows or ():
+            cells = tuple((key, self.constant(cell)) for key, cell in row.items() if key != "name")
+            if any(cell is None for _, cell in cells):
+                return ()
+            name, span = row.get("name"), next(iter(row.values())).span
+            named = Name(name.text, name.span) if name else Name("", span)
+            found.append(Entry(named, (), tuple((k, c) for k, c in cells if c is not None), None, span))
+        return tuple(found)
+
+    def constant(self, cell: Scalar) -> Cell | None:
+        """Read a cell that must be a number with its unit, or a word."""
+        formula = self.formulas.formula(cell)
+        plain = formula.body if isinstance(formula, Negate) else formula
+        if formula is None or isinstance(plain, Number | Name):
+            return Cell(formula, (), cell.span) if formula is not None else None
+        self.problems.add("bad-cell", cell.span, "this cell cannot be taken as it stands",
+                          expected="a number, or a word", found=f"the formula `{cell.text[:40]}`")  # fmt: skip
+        return None
 
     def columns(self, node: Mapping | None) -> tuple[MadeColumn, ...]:
         found: list[MadeColumn] = []

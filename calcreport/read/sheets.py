@@ -102,7 +102,7 @@ def read_sheet(
         if isinstance(source, str):
             _say_no_file(file, source, problems)
             return None
-        return _text_table(source, label, problems)
+        return read_text_table(source, label, problems)
     if not name.endswith(_BOOK):
         problems.add("bad-table", file.span, f"`{file.text[:60]}` is not a table this program reads",
                      expected="a file ending in " + " ".join((*_TEXT, *_BOOK)), found=file.text[-20:] or "nothing",
@@ -146,7 +146,7 @@ def _from_grid(grid: Grid, file: Scalar, home: Source, label: str, problems: Pro
     return _bounded(Sheet(source, tuple(rows), grid.hidden, grid.hidden_columns), problems)
 
 
-def _text_table(source: Source, label: str, problems: Problems) -> Sheet | None:
+def read_text_table(source: Source, label: str, problems: Problems) -> Sheet | None:
     """Return the rows of comma-, semicolon- or tab-separated text; quotes as RFC 4180 has them."""
     if say_odd(source, problems):
         return None

@@ -168,8 +168,17 @@ class Entry:
 
 
 @dataclass(frozen=True, slots=True)
+class Spaced:
+    """Rows at equal distances between two bounds, both among them."""
+
+    low: Expression
+    high: Expression
+    count: int
+
+
+@dataclass(frozen=True, slots=True)
 class Rows:
-    """A set made here."""
+    """A set made here: rows listed, read from a table beside the template, or spaced between two bounds."""
 
     name: str
     columns: tuple[MadeColumn, ...]
@@ -177,6 +186,7 @@ class Rows:
     says: str
     cite: Citation
     span: Span
+    spaced: Spaced | None = None
 
 
 @dataclass(frozen=True, slots=True)

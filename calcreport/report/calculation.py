@@ -31,6 +31,7 @@ from calcreport.report.items import (
     SayTable,
     SayText,
     SayUnknown,
+    SayUnseen,
 )
 from calcreport.report.model import (
     Block,
@@ -132,6 +133,8 @@ class Composer:
                 return (FigureBlock(figure),) if figure is not None else ()
             case SayStop():
                 return self.stopped(item)
+            case SayUnseen():
+                return ()
 
     def line(self, item: SayLine) -> Block:
         """Return a line in full."""

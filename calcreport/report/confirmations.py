@@ -48,6 +48,7 @@ from calcreport.report.forms import (
     side_unit,
 )
 from calcreport.report.notation import has_values
+from calcreport.report.spaced import is_printed
 
 
 def find_forms(project: WorkedProject, kept: Fresh = FRESH) -> dict[str, CalculationForms]:
@@ -164,6 +165,8 @@ class _Lines:
     """Adds the figures and sums of worked lines."""
 
     def __init__(self, forms: CalculationForms) -> None:
+        #: what is worked stands on no sheet: it has figures, and nothing in print must confirm them
+        self.unseen = False
         self.forms, self.digits = forms, forms.digits
         self.values, self.slots = forms.worked.values, forms.worked.plan.slots
 
@@ -178,14 +181,16 @@ class _Lines:
                     self.because(line.line, line.arm, line.open)
                     self.lines(line.lines)
                 case WorkedEach():
+                    before, self.unseen = self.unseen, self.unseen or line.line.show == "figure"
                     for row in line.rows:
                         self.lines(row)
+                    self.unseen = before
                 case WorkedUnknown():
                     self.unknown(line)
                 case WorkedCheck():
                     self.check(line)
                 case WorkedRequire():
-                    for side in line.sides:
+                    for side in () if self.unseen else line.sides:
                         if holds(side.test, side.left, side.right):
                             self.comparison(side.test, line.open, side)
                 case _:
@@ -202,6 +207,8 @@ class _Lines:
             number = self.values.number(slot, key) / unit.size
             self.digits.add(self.forms.id(slot, key), make_figure(number, unit.size, least=symbol.places or 0))
         self.lines(line.lines)
+        if self.unseen:
+            return
         shown = equation_unit(line.line, self.forms)
         # the two sides are one number, and print as one
         self.digits.join(self.equation_side(line, "right"), self.equation_side(line, "left"))
@@ -219,11 +226,16 @@ class _Lines:
     def made(self, line: WorkedLine) -> None:
         """Add figures for the cells of a set made here."""
         columns = getattr(getattr(line, "line", None), "columns", ())
+        spaced = getattr(getattr(line, "line", None), "spaced", None) is not None
         for column in columns:
-            for key in self.values.rows[column.slot]:
+            drawn = spaced and not is_printed(self.forms.worked.plan, column.slot)
+            ends = {0, len(getattr(line, "names", ())) - 1}
+            for key in self.values.rows[column.slot] if self.slots[column.slot].symbol.unit is not None else ():
                 node = self.values.worked.get((column.slot, key))
                 if node is not None and self.forms.id(column.slot, key) not in self.digits.figures:
+                    before, self.unseen = self.unseen, self.unseen or (drawn and key[-1] not in ends)
                     self.cell(column.slot, key, node)
+                    self.unseen = before
 
     def cell(self, slot: int, key: Key, node: Expression) -> None:
         opened = tuple(zip(self.values.sets[slot], key, strict=True))
@@ -243,7 +255,7 @@ class _Lines:
         number = self.values.number(slot, key) / unit.size
         name = self.forms.id(slot, key)
         self.digits.add(name, make_figure(number, unit.size, least=symbol.places or 0))
-        inputs = self.inputs(node, opened)
+        inputs = () if self.unseen else self.inputs(node, opened)
         if not inputs:
             return
         copied = self.copied(node, inputs, slot, key)
@@ -353,7 +365,7 @@ class _Lines:
     # -------------------------------------------------------- comparisons
 
     def because(self, line: PlannedGives | PlannedBranches, chosen: int, opened: Opened) -> None:
-        for test in self.forms.because(line, chosen):
+        for test in () if self.unseen else self.forms.because(line, chosen):
             self.comparison(test, opened, None)
 
     def comparison(self, test: Compare, opened: Opened, worked: Comparison | None, sign: str = "") -> None:

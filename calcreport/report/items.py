@@ -108,6 +108,13 @@ class SayTable:
 
 
 @dataclass(frozen=True, slots=True)
+class SayUnseen:
+    """Lines of which only figures stand on the sheets; their values are in the values file."""
+
+    worked: WorkedEach
+
+
+@dataclass(frozen=True, slots=True)
 class SayUnknown:
     """A value found so that both sides of an equation agree: the equation, then the value."""
 
@@ -176,6 +183,7 @@ Item: TypeAlias = (
     | SayMade
     | SayTable
     | SayUnknown
+    | SayUnseen
     | SayEquation
     | SayBranch
     | SayCheck

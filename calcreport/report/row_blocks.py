@@ -9,7 +9,8 @@ from calcreport.calculate.model import (
     PlannedGives,
     WorkedGives,
 )
-from calcreport.core.expression import Name, Number
+from calcreport.core.expression import Expression, Name, Number
+from calcreport.report.below import checks_below
 from calcreport.report.digits import number_text
 from calcreport.report.display import row_words, show_row
 from calcreport.report.items import SayFormula, SayMade, SayTable
@@ -32,7 +33,7 @@ from calcreport.report.model import (
 from calcreport.report.notation import (
     relation,
 )
-from calcreport.report.script import checks_below
+from calcreport.report.spaced import is_printed
 from calcreport.report.told import Told
 
 
@@ -94,6 +95,8 @@ class RowBlocks:
         """Return a set made here: a table of its rows, formulas shown where a cell holds one."""
         worked, plan = item.worked, self.worked.plan
         line = worked.line
+        if line.spaced is not None:
+            return self.spaced(item, line.spaced)
         simple = all(isinstance(cell, tuple | Number | Name) for e in line.entries for cell in e.cells)
         columns = [Column((plan.sets[line.rows].name,))]
         if simple:
@@ -117,6 +120,28 @@ class RowBlocks:
             for place, column in enumerate(line.columns):
                 found.append(self.made_line(item, row, name, column.slot, place, not found))
         return tuple(found)
+
+    def spaced(self, item: SayMade, bounds: tuple[Expression, Expression]) -> tuple[Block, ...]:
+        """Return `c_i from 0.05 h = 1.2 in. to 3 h = 72 in. in 40 equal steps`, and its table where lines use it."""
+        worked, line = item.worked, item.worked.line
+        slot, last = line.columns[0].slot, len(worked.names) - 1
+        symbol = self.slots[slot].symbol
+        items: list[Formula] = [self.shared.symbol(slot)]
+        for word, node, row in (("from", bounds[0], 0), ("to", bounds[1], last)):
+            opened = (*worked.open, (line.rows, row))
+            items.append(Letters(f"  {word}  "))
+            if not isinstance(node, Number):
+                items += [self.shared.formula(node), relation("=")]
+            items.append(self.told.value(slot, self.told.key(slot, opened)))
+        lane = self.told.source(line.cite.printed, bounds, worked.open, item.number)
+        anchor = self.told.anchor(item.number)
+        says: Words = (f"{line.says or symbol.says}, {last + 1} values in equal steps",)
+        sentence = Statement(item.number, anchor, says, Row(tuple(items)), lane)
+        if not is_printed(self.worked.plan, slot):
+            return (sentence,)
+        name = self.worked.plan.sets[line.rows].name
+        rows = tuple(TableRow(((row_words(one),), *self.made_cells(item, row))) for row, one in enumerate(worked.names))
+        return (sentence, Table((Column((name,)), self.told.column(slot)), rows, (), 0, ""))
 
     def made_column(self, slot: int, over: int) -> Column:
         return self.told.column(slot) if over < 0 else Column((self.shared.symbol(slot), " (factors)"), "left")

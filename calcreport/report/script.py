@@ -26,6 +26,7 @@ from calcreport.calculate.model import (
     WorkedText,
     WorkedUnknown,
 )
+from calcreport.report.below import checks_below, figures_below, gives_below, unknowns_below
 from calcreport.report.items import (
     Item,
     SayBranch,
@@ -45,6 +46,7 @@ from calcreport.report.items import (
     SayTable,
     SayText,
     SayUnknown,
+    SayUnseen,
     Script,
 )
 
@@ -157,21 +159,6 @@ def _lines(writer: _Writer, lines: tuple[WorkedLine, ...]) -> None:
                 writer.items.append(SayFigure(line))
 
 
-def checks_below(lines: tuple[WorkedLine, ...]) -> list[WorkedCheck]:
-    """Return every check worked in these lines, at any depth."""
-    found: list[WorkedCheck] = []
-    for line in lines:
-        match line:
-            case WorkedCheck():
-                found.append(line)
-            case WorkedPart() | WorkedBranches() | WorkedUnknown():
-                found += checks_below(line.lines)
-            case WorkedEach():
-                for row in line.rows:
-                    found += checks_below(row)
-    return found
-
-
 def _plain(lines: tuple[WorkedLine, ...]) -> bool:
     """Tell whether a row holds single lines only, so that a table can tell it."""
     return all(isinstance(line, WorkedGives | WorkedText) for line in lines)
@@ -180,7 +167,9 @@ def _plain(lines: tuple[WorkedLine, ...]) -> bool:
 def _each(writer: _Writer, each: WorkedEach) -> None:
     rows = each.rows
     name = writer.worked.plan.sets[each.line.rows].name
-    if each.line.show == "every" or len(rows) <= 1:
+    if each.line.show == "figure":
+        _figures_only(writer, each)
+    elif each.line.show == "every" or len(rows) <= 1:
         _rows_in_full(writer, each, name, range(len(rows)))
     elif any(checks_below(row) for row in rows):
         governing = max(range(len(rows)), key=lambda row: _worst(rows[row]))
@@ -194,6 +183,17 @@ def _each(writer: _Writer, each: WorkedEach) -> None:
         _rows_in_full(writer, each, name, range(len(rows)))
         if each.line.table:
             _table(writer, each, -1)
+
+
+def _figures_only(writer: _Writer, each: WorkedEach) -> None:
+    """Tell the figures alone; what they rest on is in the values file, under the line before them."""
+    for row in each.rows:
+        for line in gives_below(row):
+            writer.line_of.setdefault((line.line.slot, line.key), writer.number)
+        for unknown in unknowns_below(row):
+            writer.line_of.setdefault((unknown.line.slot, unknown.key), writer.number)
+        writer.items.extend(SayFigure(figure) for figure in figures_below(row))
+    writer.items.append(SayUnseen(each))
 
 
 def _worst(lines: tuple[WorkedLine, ...]) -> tuple[bool, float]:
@@ -228,40 +228,11 @@ def _number_rest(writer: _Writer, each: WorkedEach) -> None:
     }
     for row in each.rows:
         given = [(line.line.slot, line.key) for line in gives_below(row)]
-        given += [(line.line.slot, line.key) for line in _unknowns_below(row)]
+        given += [(line.line.slot, line.key) for line in unknowns_below(row)]
         for slot, key in given:
             writer.line_of.setdefault((slot, key), told.get(slot, writer.number))
         for check in checks_below(row):
             writer.check_line.setdefault(id(check), checks.get(check.line.name) or writer.number)
-
-
-def gives_below(lines: tuple[WorkedLine, ...]) -> list[WorkedGives]:
-    """Return every line worked in these lines, at any depth."""
-    found: list[WorkedGives] = []
-    for line in lines:
-        match line:
-            case WorkedGives():
-                found.append(line)
-            case WorkedPart() | WorkedBranches() | WorkedUnknown():
-                found += gives_below(line.lines)
-            case WorkedEach():
-                for row in line.rows:
-                    found += gives_below(row)
-    return found
-
-
-def _unknowns_below(lines: tuple[WorkedLine, ...]) -> list[WorkedUnknown]:
-    found: list[WorkedUnknown] = []
-    for line in lines:
-        match line:
-            case WorkedUnknown():
-                found += [line, *_unknowns_below(line.lines)]
-            case WorkedPart() | WorkedBranches():
-                found += _unknowns_below(line.lines)
-            case WorkedEach():
-                for row in line.rows:
-                    found += _unknowns_below(row)
-    return found
 
 
 def _formulas_once(writer: _Writer, each: WorkedEach) -> None:

@@ -49,6 +49,8 @@ class Printed:
     factor: Callable[[Unit, Family], F]
     #: works a formula in the open rows
     work: Callable[[Expression], Work]
+    #: rows a formula over a set takes its value from
+    taken: Callable[[Over], tuple[int, ...]]
 
 
 class Substitution(Notation):
@@ -123,6 +125,8 @@ class Substitution(Notation):
             found = self.piece(node.body)
             values.open[node.bound] = before
             return found
+        if node.function != "sum":
+            return self.chosen(node)
         terms: list[Piece] = []
         for row in range(len(names)):
             values.open[node.bound] = row
@@ -130,10 +134,8 @@ class Substitution(Notation):
                 continue
             terms.append(self.piece(node.body))
         values.open[node.bound] = before
-        if node.function != "sum" or not 0 < len(terms) <= 6 or node.where is not None:
-            return (
-                super().over(node) if terms or node.function != "sum" else Piece(Letters("0"), ATOM, True, True, True)
-            )
+        if not 0 < len(terms) <= 6 or node.where is not None:
+            return super().over(node) if terms else Piece(Letters("0"), ATOM, True, True, True)
         items: list[Formula] = []
         for place, term in enumerate(terms):
             items += [Operator("+", "binary")] if place else []
@@ -169,6 +171,18 @@ class Substitution(Notation):
                 )
                 return Piece(Row(items), SUM, from_y.starts_digit)
         return self.piece(node.otherwise) if node.otherwise is not None else super().over(node)
+
+    def chosen(self, node: Over) -> Piece:
+        """Print the row a value is taken from, or what stands where none fits."""
+        rows = self.printed.taken(node)
+        if not rows:
+            return self.piece(node.otherwise) if node.otherwise is not None else super().over(node)
+        before = self.printed.values.open[node.bound]
+        self.printed.values.open[node.bound] = rows[0]
+        found = self.piece(node.body)
+        self.printed.values.open[node.bound] = before
+        return found
+
 
     def row_taken(self, node: Over, names: tuple[str, ...]) -> int:
         """Return the row an extreme or a pick takes its single value from; -1 where that cannot be told."""

@@ -37,6 +37,7 @@ from calcreport.report.notation import (
     show_figure,
 )
 from calcreport.report.substitution import Printed, Substitution
+from calcreport.report.taken import rows_taken
 
 
 @dataclass(slots=True)
@@ -116,8 +117,13 @@ class Told:
         """Return a formula with the printed figures of open rows."""
         for index, row in opened:
             self.values.open[index] = row
-        printed = Printed(self.values, self.open_figure, self.values.row_names, self.forms.factor, self.worked.compiled)
+        row_names, factor, compiled = self.values.row_names, self.forms.factor, self.worked.compiled
+        printed = Printed(self.values, self.open_figure, row_names, factor, compiled, self.taken)
         return Substitution(self.slots, printed, self.forms.family(node, result)).formula(node)
+
+    def taken(self, node: Over) -> tuple[int, ...]:
+        """Return the rows of a set that a formula takes its value from, in the rows open in the values."""
+        return rows_taken(node, self.values, self.worked.compiled, self.worked.tested)
 
     def open_figure(self, slot: int) -> Figure:
         """Return the figure of a slot in the rows open in the values."""

@@ -11,11 +11,11 @@ from calcreport.calculate.model import Key, Selection, Worked, WorkedCheck, Work
 from calcreport.core.expression import names
 from calcreport.core.units import ONE
 from calcreport.core.version import PROGRAM
+from calcreport.report.below import gives_below
 from calcreport.report.digits import number_text
 from calcreport.report.forms import CalculationForms, is_size, side_unit
 from calcreport.report.governing import governing
-from calcreport.report.items import SayLine, SayTable, Script
-from calcreport.report.script import gives_below
+from calcreport.report.items import SayLine, SayTable, SayUnseen, Script
 
 FORMAT = 1
 
@@ -58,7 +58,7 @@ def _lines(script: Script, forms: CalculationForms) -> list[dict[str, Any]]:
         match item:
             case SayLine(_, worked):
                 found.append(_gives(worked, script, forms))
-            case SayTable(_, each):
+            case SayTable(worked=each) | SayUnseen(each):
                 rows = [gives for row in each.rows for gives in gives_below(row)]
                 told = {(line["gives"], tuple(line.get("rows", ()))) for line in found}
                 for worked in rows:

@@ -112,15 +112,15 @@ class Rework:
 
     def gives(self, line: PlannedGives) -> None:
         formula = next(a.formula for a in line.arms if a.when is None or self.holds(a.when))
-        slot = self.plan.slots[line.slot]
-        if slot.symbol.kind == "word":
-            assert isinstance(formula, Name)
-            self.values[line.slot, self.key(line.slot)] = formula.name
-        else:
-            self.store(line.slot, formula)
+        self.store(line.slot, formula)
 
     def store(self, slot: int, formula: Expression) -> None:
-        """Work a formula into a slot; a bare zero takes the slot's unit."""
+        """Work a formula into a slot: a word, or a quantity; a bare zero takes the slot's unit."""
+        if self.plan.slots[slot].symbol.kind == "word":
+            assert isinstance(formula, Name)
+            other = formula.slot
+            self.values[slot, self.key(slot)] = formula.name if other < 0 else self.values[other, self.key(other)]
+            return
         unit = self.plan.slots[slot].symbol.unit
         value = self.work(formula)
         one = self.make.unit(unit.factors) if unit is not None else self.make.pure(1)

@@ -24,7 +24,8 @@ def mutants_of(name: str, shelf: Shelf) -> list[Mutant]:
     for variant in shelf.of(name):
         own, names = variant.template.source.name, names_of(variant.template.body)
         for place in places(variant.template.body):
-            if place.key[0] == own:
+            # the cells of a table beside the template are rules of its own too
+            if place.key[0] == own or place.key[0].endswith(".csv"):
                 for mutant in _at(place, name, names):
                     found.setdefault((mutant.key, mutant.says), mutant)
     return _numbered(sorted(found.values(), key=lambda mutant: mutant.key[1]))

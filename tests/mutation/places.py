@@ -131,6 +131,8 @@ def _rows(line: Rows, steps: Steps) -> Iterator[Place]:
         if column.other is not None:
             at = (*steps, "columns", number, "other")
             yield from _formula(column.other, at, f"rows {line.name}: else", uses[column.symbol.name])
+    for side in ("low", "high") if line.spaced is not None else ():
+        yield from _formula(getattr(line.spaced, side), (*steps, "spaced", side), f"rows {line.name}: {side}", "value")
     for number, entry in enumerate(line.entries):
         at, name = (*steps, "entries", number), f"rows {line.name}: {entry.name.name or number + 1}"
         yield _record(entry, at, name, entry.span)

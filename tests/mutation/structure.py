@@ -68,12 +68,19 @@ def _left_out(field: str, number: int) -> Any:
 
 
 def _rows(record: Rows) -> Iterator[Change]:
+    if record.spaced is not None:
+        yield Change("one row more", _denser)
     for number, entry in enumerate(record.entries):
         name = entry.name.name or str(number + 1)
         yield Change(f"row {number + 1}, {name}, left out", _left_out("entries", number))
         for other in (number - 1, number + 1):
             if 0 <= other < len(record.entries) and _cells(record.entries[other]) != _cells(entry):
                 yield Change(f"row {number + 1}, {name}, with the cells of row {other + 1}", _neighbour(number, other))
+
+
+def _denser(found: Rows) -> Rows:
+    assert found.spaced is not None
+    return replace(found, spaced=replace(found.spaced, count=found.spaced.count + 1))
 
 
 def _cells(entry: Entry) -> tuple[str, ...]:

@@ -1,0 +1,77 @@
+"""What stands in worked lines at any depth: checks, values, unknowns, figures.
+
+Worked lines in, lists of one kind out.
+"""
+
+from __future__ import annotations
+
+from calcreport.calculate.model import (
+    WorkedBranches,
+    WorkedCheck,
+    WorkedEach,
+    WorkedFigure,
+    WorkedGives,
+    WorkedLine,
+    WorkedPart,
+    WorkedUnknown,
+)
+
+
+def checks_below(lines: tuple[WorkedLine, ...]) -> list[WorkedCheck]:
+    """Return every check worked in these lines, at any depth."""
+    found: list[WorkedCheck] = []
+    for line in lines:
+        match line:
+            case WorkedCheck():
+                found.append(line)
+            case WorkedPart() | WorkedBranches() | WorkedUnknown():
+                found += checks_below(line.lines)
+            case WorkedEach():
+                for row in line.rows:
+                    found += checks_below(row)
+    return found
+
+
+def gives_below(lines: tuple[WorkedLine, ...]) -> list[WorkedGives]:
+    """Return every line worked in these lines, at any depth."""
+    found: list[WorkedGives] = []
+    for line in lines:
+        match line:
+            case WorkedGives():
+                found.append(line)
+            case WorkedPart() | WorkedBranches() | WorkedUnknown():
+                found += gives_below(line.lines)
+            case WorkedEach():
+                for row in line.rows:
+                    found += gives_below(row)
+    return found
+
+
+def unknowns_below(lines: tuple[WorkedLine, ...]) -> list[WorkedUnknown]:
+    """Return every unknown found in these lines, at any depth."""
+    found: list[WorkedUnknown] = []
+    for line in lines:
+        match line:
+            case WorkedUnknown():
+                found += [line, *unknowns_below(line.lines)]
+            case WorkedPart() | WorkedBranches():
+                found += unknowns_below(line.lines)
+            case WorkedEach():
+                for row in line.rows:
+                    found += unknowns_below(row)
+    return found
+
+
+def figures_below(lines: tuple[WorkedLine, ...]) -> list[WorkedFigure]:
+    """Return every figure in these lines, at any depth."""
+    found: list[WorkedFigure] = []
+    for line in lines:
+        match line:
+            case WorkedFigure():
+                found.append(line)
+            case WorkedPart() | WorkedBranches() | WorkedUnknown():
+                found += figures_below(line.lines)
+            case WorkedEach():
+                for row in line.rows:
+                    found += figures_below(row)
+    return found

@@ -24,7 +24,6 @@ from calcreport.read.variants import settle
 _CODE = re.compile(r"(.+?)-([0-9]{2}|[0-9]{4})")
 YEAR = re.compile(r"(19|20)[0-9]{2}")
 CODE_KEYS = ("name", "years")
-_TABLE = re.compile(r"[A-Za-z0-9][\w.-]*\.csv")
 DEEPEST_PART = 8
 #: stands among the editions where the newest edition a part offers may be taken: a template linted alone, a case
 ANY = "*"
@@ -273,22 +272,14 @@ class Library:
 
     def cells(self, folder: str, file: Scalar, names: tuple[Scalar, ...]) -> tuple[dict[str, Scalar], ...] | None:
         """Return the cells of a table that stands beside a template, by column; None after adding why not."""
-        if not _TABLE.fullmatch(file.text):
-            self.problems.add("no-file", file.span, f"`{file.text[:60]}` is not a table beside the template",
-                              expected="the name of a CSV file in the template's own folder",
-                              found=file.text[:40] or "nothing")  # fmt: skip
-            return None
         name = f"{folder}/{file.text}" if folder else file.text
         for touched in self._touched:
             touched.add(name)
-        source = self._find(name)
-        if isinstance(source, str):
-            self.problems.add("no-file", file.span, f"`{file.text[:60]}` cannot be read",
-                              expected="a file beside the template", found=source)  # fmt: skip
-            return None
-        found: tuple[dict[str, Scalar], ...] | None = load_template_tables().read_cells(
-            source, file, names, self.problems
-        )
+        reading = load_template_tables()
+        source = self._find(name) if reading.is_beside(file, self.problems) else None
+        found: tuple[dict[str, Scalar], ...] | None = None
+        if source is not None:
+            found = reading.read_cells(source, file, names, self.problems)
         return found
 
     def _part_document(

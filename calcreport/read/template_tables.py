@@ -5,6 +5,8 @@ Text and names of columns in, texts of cells out. A cell holds a number or a wor
 
 from __future__ import annotations
 
+import re
+
 from calcreport.core.problems import Problems
 from calcreport.core.source import Source
 from calcreport.read.columns import make_table, take, text_use
@@ -12,12 +14,27 @@ from calcreport.read.nodes import Scalar
 from calcreport.read.sheets import read_text_table
 
 MOST_ROWS = 1000
+_BESIDE = re.compile(r"[A-Za-z0-9][\w.-]*\.csv")
+
+
+def is_beside(file: Scalar, problems: Problems) -> bool:
+    """Tell whether a text names a table in the template's own folder; adds `no-file`."""
+    if _BESIDE.fullmatch(file.text):
+        return True
+    problems.add("no-file", file.span, f"`{file.text[:60]}` is not a table beside the template",
+                 expected="the name of a CSV file in the template's own folder",
+                 found=file.text[:40] or "nothing")  # fmt: skip
+    return False
 
 
 def read_cells(
-    source: Source, file: Scalar, names: tuple[Scalar, ...], problems: Problems
+    source: Source | str, file: Scalar, names: tuple[Scalar, ...], problems: Problems
 ) -> tuple[dict[str, Scalar], ...] | None:
     """Return the cells of each row by column, `name` among them where the table has such a column."""
+    if isinstance(source, str):
+        problems.add("no-file", file.span, f"`{file.text[:60]}` cannot be read", expected="a file beside the template",
+                     found=source)  # fmt: skip
+        return None
     sheet = read_text_table(source, "", problems)
     table = make_table(sheet, None, file.span, problems) if sheet is not None else None
     if table is None:

@@ -19,6 +19,7 @@ from calcreport.read.nodes import Mapping, Node, Scalar
 from calcreport.read.symbols import OWN_KEYS, hold_name
 
 COLUMN_KEYS, ROW_KEYS = (*OWN_KEYS, "over", "else"), ("name", "for", "when")
+SPACED_KEYS = ("symbol", "from", "to", "count", *OWN_KEYS)
 #: ways to say which rows a set has
 _WAYS = ("list", "spaced", "file")
 #: takes the cells of a table beside the template by their columns; None after adding why not
@@ -67,7 +68,7 @@ class RowsReader:
                               "`spaced` and `columns` stand on one line", expected="the symbol under `spaced` alone",
                               found="both")  # fmt: skip
             return None
-        fields = Fields(mapping, ("symbol", "from", "to", "count", *OWN_KEYS), "`spaced`", self.problems)
+        fields = Fields(mapping, SPACED_KEYS, "`spaced`", self.problems)
         named = fields.scalar("symbol", required=True)
         for key in ("from", "to"):
             if fields.node_of(key) is None:

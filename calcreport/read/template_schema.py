@@ -169,7 +169,9 @@ _SHAPES: dict[str, dict[str, Schema]] = {
               "as cited": _FORMULA},
     "branches": {"branches": _each(_cases("branch"))},
     "rows": {"rows": _each(text(_NAME)), "columns": _each(mapping(_each(maybe(named("column"))))),
-             "list": _each(items(_each(named("row"))))},
+             "list": _each(items(_each(named("row")))), "file": _each(text(r"[A-Za-z0-9][\w.-]*\.csv")),
+             "spaced": _each(closed(made_rows.SPACED_KEYS, {**_SYMBOL, "symbol": text(_NAME), "from": _FORMULA,
+                                    "to": _FORMULA, "count": _each(whole(2, given.MOST_ROWS))}))},
     "each": {"each": _WORDS, "lines": _LINES, "table": _NAMES, "show": _each(choice(lines.SHOWN))},
     "part": {"part": _WORDS, "as": _each(text(_NAME)), "same": _NAMES, "with": _HANDED},
     "check": {"check": _WORDS, "holds": _FORMULA},
@@ -180,7 +182,7 @@ _SHAPES: dict[str, dict[str, Schema]] = {
 }  # fmt: skip
 #: keys a line cannot do without, beside the one it begins with
 _NEEDED: dict[str, tuple[str, ...]] = {
-    "gives": ("cite",), "rows": ("columns", "list", "cite"), "each": ("lines",), "check": ("holds", "cite"),
+    "gives": ("cite",), "rows": ("cite",), "each": ("lines",), "check": ("holds", "cite"),
     "require": ("says", "cite"), "unknown": ("between", "satisfies"),
 }  # fmt: skip
 

@@ -171,7 +171,7 @@ _SHAPES: dict[str, dict[str, Schema]] = {
     "rows": {"rows": _each(text(_NAME)), "columns": _each(mapping(_each(maybe(named("column"))))),
              "list": _each(items(_each(named("row")))), "file": _each(text(r"[A-Za-z0-9][\w.-]*\.csv")),
              "spaced": _each(closed(made_rows.SPACED_KEYS, {**_SYMBOL, "symbol": text(_NAME), "from": _FORMULA,
-                                    "to": _FORMULA, "count": _each(whole(2, given.MOST_ROWS))}))},
+                                    "to": _FORMULA}, required=("symbol", "from", "to", "count")))},
     "each": {"each": _WORDS, "lines": _LINES, "table": _NAMES, "show": _each(choice(lines.SHOWN))},
     "part": {"part": _WORDS, "as": _each(text(_NAME)), "same": _NAMES, "with": _HANDED},
     "check": {"check": _WORDS, "holds": _FORMULA},

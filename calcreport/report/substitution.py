@@ -183,7 +183,6 @@ class Substitution(Notation):
         self.printed.values.open[node.bound] = before
         return found
 
-
     def row_taken(self, node: Over, names: tuple[str, ...]) -> int:
         """Return the row an extreme or a pick takes its single value from; -1 where that cannot be told."""
         row = picked_row(node)

@@ -284,6 +284,9 @@ SEEN_IN_PART = ("bad-mark", "comment-cut", "edition-mix", "missing-value", "not-
 UNSEEN = {
     "missing-key-says": "a symbol that the notation does not know needs its meaning on the line",
     "no-otherwise-early": "no schema tells which entry of a list is the last",
+    "spaced-and-columns": "which of several ways to say the rows of a set a line takes",
+    "spaced-and-list": "which of several ways to say the rows of a set a line takes",
+    "spaced-word": "whether a symbol of the notation is a word",
     "wrong-shape-figure": "whether a formula is a symbol alone",
     "wrong-shape-no-row": "whether a value of a row stands in a list",
     "unknown-key-gives": "whether a given value is of bars",

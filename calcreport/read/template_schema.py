@@ -36,7 +36,7 @@ def template_schema() -> Schema:
     """Return the schema of a template file."""
     shapes = {
         "template": text(), "title": text(), "code": named("code"), "units": _served(),
-        "covers": _each(texts()), "excludes": _each(texts()), "gives": _each(texts()), "notation": text(),
+        "covers": _settled_texts(), "excludes": _settled_texts(), "gives": _each(texts()), "notation": text(),
         "symbols": _each(mapping(_each(named("symbol")))),
         "given": _each(mapping(_each(maybe(named("given"))))),
         "parts": _each(mapping(_each(named("part")))),
@@ -74,6 +74,11 @@ def _each(schema: Schema) -> Schema:
     """Return a schema for a place that may be settled by system, year or both, also by one inside the other."""
     keyed = {"type": "object", "minProperties": 1, "propertyNames": {"pattern": _VARIANT}}
     return when(keyed, {"additionalProperties": when(keyed, {"additionalProperties": schema}, schema)}, schema)
+
+
+def _settled_texts() -> Schema:
+    """Return the schema of a list of texts, whole or each of them settled by system and year."""
+    return _each(texts() | {"items": _each(text())})
 
 
 def _served() -> Schema:

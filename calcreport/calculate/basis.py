@@ -16,6 +16,7 @@ from calcreport.calculate.model import (
     LinkedRows,
     LinkedValue,
     Worked,
+    singles,
 )
 from calcreport.core.expression import Name
 from calcreport.core.quantity import Amount
@@ -23,18 +24,7 @@ from calcreport.core.quantity import Amount
 
 def links_of(calculation: Calculation) -> list[tuple[GivenValue, LinkedValue]]:
     """Return the given values that are links, those of candidates too, with where they lead."""
-    found: list[tuple[GivenValue, LinkedValue]] = []
-    for value in calculation.handed:
-        cells: tuple[GivenValue, ...]
-        match value:
-            case GivenValue():
-                cells = (value,)
-            case GivenRows():
-                cells = tuple(cell for row in value.cells for cell in row)
-            case GivenPairs():
-                cells = tuple(cell for _, cell in value.cells)
-        found += [(cell, cell.value) for cell in cells if isinstance(cell.value, LinkedValue)]
-    return found
+    return [(value, value.value) for value in singles(calculation.handed) if isinstance(value.value, LinkedValue)]
 
 
 def fingerprint(settled: Calculation, calculation: Calculation, worked: dict[str, Worked]) -> str:
@@ -48,17 +38,20 @@ def fingerprint(settled: Calculation, calculation: Calculation, worked: dict[str
     for source in template.files:
         digest.update(source.text.encode())
     for value in (*settled.given, *(value for one in calculation.candidates for value in one.values)):
-        digest.update(f"\n{value.given.name}=".encode())
-        match value:
-            case GivenValue():
-                digest.update(_canonical(value, worked))
-            case GivenRows():
-                for name, cells in zip(value.names, value.cells, strict=True):
-                    digest.update(f"|{name}:".encode() + b",".join(_canonical(cell, worked) for cell in cells))
-            case GivenPairs():
-                for names, cell in value.cells:
-                    digest.update("/".join(names).encode() + _canonical(cell, worked))
+        digest.update(f"\n{value.given.name}=".encode() + _exactly(value, worked))
     return digest.hexdigest()[:16]
+
+
+def _exactly(value: GivenValue | GivenRows | GivenPairs, worked: dict[str, Worked]) -> bytes:
+    """Return what was given, the same however it was spelled."""
+    match value:
+        case GivenValue():
+            return _canonical(value, worked)
+        case GivenRows():
+            rows = zip(value.names, value.cells, strict=True)
+            return b"".join(f"|{n}:".encode() + b",".join(_exactly(c, worked) for c in cells) for n, cells in rows)
+        case GivenPairs():
+            return b"".join("/".join(names).encode() + _canonical(cell, worked) for names, cell in value.cells)
 
 
 def _canonical(value: GivenValue, worked: dict[str, Worked]) -> bytes:
@@ -82,7 +75,16 @@ def rests_on(calculation: Calculation, worked: dict[str, Worked]) -> tuple[objec
     given = tuple(_said(value) for value in calculation.given)
     candidates = tuple((one.texts, tuple(_said(value) for value in one.values)) for one in calculation.candidates)
     linked = tuple(worked[link.mark].values for _, link in links_of(calculation))
-    return calculation.mark, calculation.title, calculation.input_text, given, candidates, calculation.pinned, linked
+    return (
+        calculation.mark,
+        calculation.title,
+        calculation.input_text,
+        given,
+        candidates,
+        calculation.pinned,
+        calculation.members,
+        linked,
+    )
 
 
 def _said(value: GivenValue | GivenRows | GivenPairs) -> tuple[object, ...]:

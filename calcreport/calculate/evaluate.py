@@ -9,7 +9,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 from calcreport.calculate.compile import condition, formula
 from calcreport.calculate.judging import comparisons, deciding, kind_of, ratio_of
@@ -95,7 +95,7 @@ class Program:
         """Work all lines; returns what was worked even where the calculation stops."""
         run = _Run(self, values)
         stop: Stop | None = None
-        lines: list[WorkedLine] = []
+        lines = run.top
         try:
             for line in self.plan.lines:
                 found = run.line(line)
@@ -152,8 +152,8 @@ def _planned_checks(lines: tuple[PlannedLine, ...]) -> list[PlannedCheck]:
     return found
 
 
-def _not_evaluated(check: PlannedCheck, stop: Stop) -> WorkedCheck:
-    return WorkedCheck(check, "not evaluated", None, None, "condition", stop.words, None, ())
+def _not_evaluated(check: PlannedCheck, stop: Stop, opened: tuple[tuple[int, int], ...] = ()) -> WorkedCheck:
+    return WorkedCheck(check, "not evaluated", None, None, "condition", stop.told, None, opened)
 
 
 class _Run:
@@ -163,6 +163,8 @@ class _Run:
         self.program, self.values = program, values
         self.checks: list[WorkedCheck] = []
         self.opened: tuple[tuple[int, int], ...] = ()
+        #: lines worked outside all blocks
+        self.top: list[WorkedLine] = []
         #: unfinished lists of the blocks a stop breaks out of, innermost last
         self.unfinished: list[tuple[PlannedLine, list[WorkedLine]]] = []
 
@@ -274,12 +276,33 @@ class _Run:
         names = self.values.row_names(line.rows)
         rows: list[tuple[WorkedLine, ...]] = []
         before, opened = self.values.open[line.rows], self.opened
+        depth = len(self.unfinished)
         for row in range(len(names)):
             self.values.open[line.rows] = row
             self.opened = (*opened, (line.rows, row))
-            rows.append(self.lines(line, line.lines))
+            judged = len(self.checks)
+            try:
+                rows.append(self.lines(line, line.lines))
+            except _Stopped as stopped:
+                where = f"{self.program.plan.sets[line.rows].name} {names[row]}"
+                stop = replace(stopped.stop, where=f"{where}, {stopped.stop.where}".rstrip(", "))
+                self.stop_rows(line, row, {id(check.line) for check in self.checks[judged:]}, opened, stop)
+                if rows:
+                    # the rows before it stand where the whole block would
+                    around = self.unfinished[depth - 1][1] if depth else self.top
+                    around.append(WorkedEach(line, names[:row], tuple(rows), opened))
+                raise _Stopped(stop) from stopped
         self.values.open[line.rows], self.opened = before, opened
         return WorkedEach(line, names, tuple(rows), self.opened)
+
+    def stop_rows(
+        self, line: PlannedEach, row: int, reached: set[int], opened: tuple[tuple[int, int], ...], stop: Stop
+    ) -> None:
+        """Say of every check that the stopped row and the rows after it leave: not evaluated, in that row."""
+        planned = _planned_checks(line.lines)
+        for other in range(row, len(self.values.row_names(line.rows))):
+            left = planned if other > row else [check for check in planned if id(check) not in reached]
+            self.checks += [_not_evaluated(check, stop, (*opened, (line.rows, other))) for check in left]
 
     def unknown(self, line: PlannedUnknown) -> WorkedLine:
         """Find the root; its lines are left at their values there."""

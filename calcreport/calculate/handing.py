@@ -41,7 +41,7 @@ def hand_values(calculation: Calculation, plan: Plan, worked: dict[str, Worked],
     for planned in plan.givens:
         value = found.get(planned.given.name)
         if isinstance(value, GivenRows):
-            hander.rows(planned, value)
+            hander.rows(planned, value, ())
     for planned in plan.givens:
         value = found.get(planned.given.name)
         if isinstance(value, GivenValue):
@@ -55,12 +55,16 @@ class _Hander:
     def __init__(self, plan: Plan, values: Values, worked: dict[str, Worked], problems: Problems) -> None:
         self.plan, self.values, self.worked, self.problems = plan, values, worked, problems
 
-    def rows(self, planned: PlannedGiven, value: GivenRows) -> None:
-        self.values.names[planned.rows][()] = value.names
+    def rows(self, planned: PlannedGiven, value: GivenRows, outer: Key) -> None:
+        self.values.names[planned.rows][outer] = value.names
         for row, cells in enumerate(value.cells):
             by_name = {cell.given.name: cell for cell in cells}
             for column in planned.columns:
-                self.value(column, by_name[column.given.name], (row,))
+                cell = by_name[column.given.name]
+                if isinstance(cell, GivenRows):
+                    self.rows(column, cell, (*outer, row))
+                else:
+                    self.value(column, cell, (*outer, row))
 
     def value(self, planned: PlannedGiven, value: GivenValue, key: Key) -> None:
         handed = value.value

@@ -83,7 +83,7 @@ def resolve_rows(rows: GivenRows, linked: LinkedRows, worked: Worked, problems: 
     names = worked.values.names[index].get(tuple(outer))
     if names is None:
         problems.add("unknown-name", linked.rows.span, f"{linked.mark} made no rows of `{linked.rows.name}`",
-                     expected="rows on its sheets", found=f"it stopped: {worked.stop.words}" if worked.stop else
+                     expected="rows on its sheets", found=f"it stopped: {worked.stop.told}" if worked.stop else
                      "a branch not taken")  # fmt: skip
         return None
     if not _count_fits(rows, names, problems) or not _names_fit(rows, names, problems):

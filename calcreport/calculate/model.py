@@ -6,7 +6,7 @@ Kept in one though long: records that are read together.
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Iterator
 from dataclasses import dataclass, field
 from fractions import Fraction
 from typing import Literal, TypeAlias
@@ -14,6 +14,7 @@ from typing import Literal, TypeAlias
 from calcreport.core.expression import Compare, Condition, Expression
 from calcreport.core.source import Span
 from calcreport.plan.model import (
+    MEMBER,
     BarCallout,
     Calculation,
     Candidate,
@@ -46,6 +47,7 @@ from calcreport.plan.model import (
     Slot,
     Symbol,
     ValueOrigin,
+    singles,
 )
 
 Value: TypeAlias = "float | str | None"
@@ -119,6 +121,20 @@ def split_path(path: str) -> tuple[list[tuple[str, str]], str]:
     *steps, symbol = path.split("].")
     parted = (step.partition("[") for step in steps)
     return [(name, row) for name, _, row in parted], symbol
+
+
+def row_cells(
+    planned: PlannedGiven, value: GivenRows, outer: Key = ()
+) -> Iterator[tuple[PlannedGiven, Key, GivenValue]]:
+    """Return every cell of given rows with its column and its key, those of sets inside them too."""
+    columns = {column.given.name: column for column in planned.columns}
+    for row, cells in enumerate(value.cells):
+        for cell in cells:
+            column = columns[cell.given.name]
+            if isinstance(cell, GivenRows):
+                yield from row_cells(column, cell, (*outer, row))
+            else:
+                yield column, (*outer, row), cell
 
 
 Work: TypeAlias = Callable[[Values], float]
@@ -267,6 +283,20 @@ class Stop:
     #: 'requirement not met', 'division by zero' and the like, in words for the sheet
     words: str
     cite: str
+    #: the rows open there: 'member B9', '' for none
+    where: str = ""
+
+    @property
+    def told(self) -> str:
+        """The words with the rows they are of: 'member B9: division by zero'."""
+        return f"{self.where}: {self.words}" if self.where else self.words
+
+
+def _verdict(checks: tuple[WorkedCheck, ...], stopped: bool) -> Verdict:
+    verdicts = {check.verdict for check in checks}
+    if "NG" in verdicts:
+        return "NG"
+    return "not evaluated" if stopped or "not evaluated" in verdicts else "OK"
 
 
 @dataclass(frozen=True, slots=True)
@@ -301,12 +331,23 @@ class Worked:
         return slot, tuple(key)
 
     @property
+    def members(self) -> tuple[Member, ...]:
+        """The members it stands for: itself, or the rows that like members share it by."""
+        marks = self.calculation.members
+        if not marks:
+            return (Member(self.calculation.mark, self, (-1, -1), self.checks),)
+        index = next(given.rows for given in self.plan.givens if given.given.name == MEMBER)
+        by_row: dict[int, list[WorkedCheck]] = {row: [] for row in range(len(marks))}
+        for check in self.checks:
+            row = dict(check.open).get(index, -1)
+            for own in by_row if row < 0 else (row,):
+                by_row[own].append(check)
+        return tuple(Member(mark, self, (index, row), tuple(by_row[row])) for row, mark in enumerate(marks))
+
+    @property
     def verdict(self) -> Verdict:
         """NG if any check is, else not evaluated if any is, else OK."""
-        verdicts = {check.verdict for check in self.checks}
-        if "NG" in verdicts:
-            return "NG"
-        return "not evaluated" if self.stop or "not evaluated" in verdicts else "OK"
+        return _verdict(self.checks, self.stop is not None)
 
 
 @dataclass(frozen=True, slots=True)
@@ -362,6 +403,28 @@ class Margin:
 
 
 @dataclass(frozen=True, slots=True)
+class Member:
+    """One member of a building: a calculation of its own, or a row of one that like members share."""
+
+    mark: str
+    worked: Worked
+    #: the shared set and its row; (-1, -1) for a calculation of its own
+    place: tuple[int, int]
+    #: every check of this member, in page order
+    checks: tuple[WorkedCheck, ...]
+
+    @property
+    def verdict(self) -> Verdict:
+        """NG if any check is, else not evaluated if any is, else OK."""
+        alone = self.place[0] < 0
+        return _verdict(self.checks, alone and self.worked.stop is not None)
+
+    def owns(self, opened: tuple[tuple[int, int], ...]) -> bool:
+        """Tell whether what was worked in these open rows is of this member, or of all of them."""
+        return all(index != self.place[0] or row == self.place[1] for index, row in opened)
+
+
+@dataclass(frozen=True, slots=True)
 class WorkedProject:
     """All calculations, in the project's order, with the order they were worked in."""
 
@@ -372,6 +435,7 @@ class WorkedProject:
 
 
 __all__ = [
+    "MEMBER",
     "BarCallout",
     "Calculation",
     "Candidate",
@@ -387,6 +451,7 @@ __all__ = [
     "LinkedRows",
     "LinkedValue",
     "Margin",
+    "Member",
     "NoValue",
     "Plan",
     "PlannedArm",
@@ -429,5 +494,7 @@ __all__ = [
     "WorkedRows",
     "WorkedText",
     "WorkedUnknown",
+    "row_cells",
+    "singles",
     "split_path",
 ]

@@ -230,7 +230,8 @@ def _hold_dispositions(inputs: Inputs, kept: tuple[Worked, ...], problems: Probl
     """Hold every word of the engineer against a check or a limit state that is there."""
     if inputs.poisoned or len(kept) < len(inputs.calculations):
         return
-    checks = {f"{w.calculation.mark}.{check.line.name}" for w in kept for check in w.checks}
+    members = (member for w in kept for member in w.members)
+    checks = {f"{member.mark}.{check.line.name}" for member in members for check in member.checks}
     states = {state for w in kept for state in w.plan.template.excludes}
     states |= {f"{w.calculation.mark} {state}" for w in kept for state in w.plan.template.excludes}
     for disposition in inputs.project.dispositions:

@@ -35,21 +35,21 @@ def hold_release(project: WorkedProject, problems: Problems) -> None:
 
 
 def _hold_checks(worked: Worked, said: set[str], status: str, problems: Problems) -> None:
-    mark = worked.calculation.mark
     told: set[str] = set()
-    for check in worked.checks:
-        name = f"{mark}.{check.line.name}"
-        if check.verdict not in ("NG", "not evaluated") or name in told or name in said:
-            continue
-        told.add(name)
-        problems.add(
-            "not-ready",
-            worked.calculation.span,
-            f"`{name}` is {check.verdict}, and the status is `{status}`",
-            expected="OK, or the engineer's disposition of it",
-            found=check.verdict,
-            hint=f"under `dispositions:` write {{check: {name}, says: …}}; it is printed and hides nothing",
-        )
+    for member in worked.members:
+        for check in member.checks:
+            name = f"{member.mark}.{check.line.name}"
+            if check.verdict not in ("NG", "not evaluated") or name in told or name in said:
+                continue
+            told.add(name)
+            problems.add(
+                "not-ready",
+                worked.calculation.span,
+                f"`{name}` is {check.verdict}, and the status is `{status}`",
+                expected="OK, or the engineer's disposition of it",
+                found=check.verdict,
+                hint=f"under `dispositions:` write {{check: {name}, says: …}}; it is printed and hides nothing",
+            )
 
 
 def _hold_selection(worked: Worked, status: str, problems: Problems) -> None:

@@ -8,7 +8,7 @@ from argparse import Namespace
 from collections import Counter
 from pathlib import Path
 
-from calcreport.calculate.model import Worked, WorkedProject
+from calcreport.calculate.model import Member, WorkedProject
 from calcreport.commands.desk import Opened, open_project, say_problems
 from calcreport.commands.reconciling import Columns, Reconciler, names_of, row_mark
 from calcreport.core.problems import Problem, Problems, to_json
@@ -75,15 +75,15 @@ def _reconcile(arguments: Namespace, opened: Opened, project: WorkedProject, pro
     found = Reconciler(table, columns, Library(opened.world, Problems()), lengths.text, problems)
     rows = found.rows(arguments.hidden or "")
     chosen, aside = _chosen(arguments, project, rows, problems)
-    for worked in chosen:
-        if worked.calculation.mark in rows:
-            found.compare(worked, rows[worked.calculation.mark])
+    for member in chosen:
+        if member.mark in rows:
+            found.compare(member, rows[member.mark])
     _hold_compared(found, columns, chosen, table, problems)
     if arguments.hidden != "read":
         _hold_shown(found, problems)
-    marks = {worked.calculation.mark for worked in project.calculations}
+    marks = {member.mark for worked in project.calculations for member in worked.members}
     alone = tuple((mark, row_mark(columns.mark, row).place) for mark, row in rows.items() if mark not in marks)
-    return _Outcome(found, alone, tuple(w.calculation.mark for w in chosen if w.calculation.mark not in rows), aside)
+    return _Outcome(found, alone, tuple(member.mark for member in chosen if member.mark not in rows), aside)
 
 
 def _table(arguments: Namespace, problems: Problems) -> Table | None:
@@ -153,24 +153,26 @@ def _schedules(opened: Opened) -> list[Mapping]:
 
 def _chosen(
     arguments: Namespace, project: WorkedProject, rows: dict[str, SheetRow], problems: Problems
-) -> tuple[list[Worked], Counter[str]]:
-    """Return the calculations compared: of the template told, else of every template the drawings name a mark of."""
+) -> tuple[list[Member], Counter[str]]:
+    """Return the members compared: of the template told, else of every template the drawings name a mark of."""
     templates = {worked.calculation.template.name for worked in project.calculations}
     if arguments.template is not None and arguments.template not in templates:
         told = _told("--template", arguments.template)
         problems.add("no-template", told.span, f"no calculation is made by `{told.text[:60]}`",
                      expected=" or ".join(sorted(templates)), found=told.text[:60],
                      hint=problems.near(told.text, templates))  # fmt: skip
-    own = {w.calculation.template.name for w in project.calculations if w.calculation.mark in rows}
+    drawn = (w for w in project.calculations if any(member.mark in rows for member in w.members))
+    own = {worked.calculation.template.name for worked in drawn}
     own = own if arguments.template is None else {arguments.template}
-    chosen = [worked for worked in project.calculations if worked.calculation.template.name in own]
+    compared = (worked for worked in project.calculations if worked.calculation.template.name in own)
+    chosen = [member for worked in compared for member in worked.members]
     aside = Counter(w.calculation.template.name for w in project.calculations)
     return chosen, Counter({name: count for name, count in aside.items() if name not in own})
 
 
-def _hold_compared(found: Reconciler, columns: Columns, chosen: list[Worked], table: Table, problems: Problems) -> None:
+def _hold_compared(found: Reconciler, columns: Columns, chosen: list[Member], table: Table, problems: Problems) -> None:
     """Add a problem for a column told that no calculation has, and where nothing but marks could be compared."""
-    known = found.known | {name for worked in chosen for name in names_of(worked)} | {"size", "bars"}
+    known = found.known | {name for member in chosen for name in names_of(member)} | {"size", "bars"}
     for name, use in columns.named.items():
         if name not in known:
             place = Span(use.span.source, 0, len(name))

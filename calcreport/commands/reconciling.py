@@ -11,7 +11,7 @@ from collections import Counter
 from collections.abc import Iterator
 from fractions import Fraction
 
-from calcreport.calculate.model import BarCallout, Worked
+from calcreport.calculate.model import BarCallout, Member
 from calcreport.core.problems import Problems
 from calcreport.core.quantity import Amount, read_in_unit
 from calcreport.core.record import made, record, state
@@ -93,27 +93,28 @@ class Reconciler:
             found[mark.text] = row
         return found
 
-    def compare(self, worked: Worked, row: SheetRow) -> None:
-        """Compare one calculation with its row."""
+    def compare(self, member: Member, row: SheetRow) -> None:
+        """Compare one member with its row."""
         self.marks += 1
-        names = names_of(worked)
+        names = names_of(member)
         for name, one in names.items():
-            use = self.use(worked, name, one)
+            use = self.use(member, name, one)
             if use is not None:
-                self.value(worked, one, use, row)
+                self.value(member, one, use, row)
         for name, compared in (("size", self.size), ("bars", self.bars)):
             use = self.columns.named.get(name) or self.headed(name)
             if use is not None:
                 self.known.add(name)
-                compared(worked, use, row)
+                compared(member, use, row)
         self.known |= names.keys()
 
-    def use(self, worked: Worked, name: str, one: Taken) -> Use | None:
+    def use(self, member: Member, name: str, one: Taken) -> Use | None:
         """Return the column of a given value: as told, as the project's own schedule has it, or by its heading."""
-        told = self.columns.named.get(name) or self.columns.planned.get(worked.calculation.template.name, {}).get(name)
+        planned = self.columns.planned.get(member.worked.calculation.template.name, {})
+        told = self.columns.named.get(name) or planned.get(name)
         if told is not None or name != one.path:
             return told
-        return self.headed(one.path) or (self.headed(one.value.given.says) if not one.key else None)
+        return self.headed(one.path) or (self.headed(one.value.given.says) if "." not in one.path else None)
 
     def headed(self, name: str) -> Use | None:
         """Return the one column whose heading is a name, whatever its capitals."""
@@ -121,7 +122,7 @@ class Reconciler:
         found = exactly or [h for h in self.table.headings if len(name) > 2 and h.stem.casefold() == name.casefold()]
         return Use((found[0],), found[0].unit, None, found[0].cell.span) if len(found) == 1 else None
 
-    def value(self, worked: Worked, one: Taken, use: Use, row: SheetRow) -> None:
+    def value(self, member: Member, one: Taken, use: Use, row: SheetRow) -> None:
         """Compare a given value with its cell."""
         shown = self.cell(use, row)
         if shown is None:
@@ -130,24 +131,24 @@ class Reconciler:
         given, own = one.value.given, one.value.value
         self.values += 1
         if own is None or one.value.origin.kind == "none":
-            self.tell(worked, one.path, text in ("", "none"), text, "none", place)
+            self.tell(member, one.path, text in ("", "none"), text, "none", place)
         elif isinstance(own, BarCallout):
-            drawn = self.callout(worked, text, span, use.unit, given.kind == "spaced bars") if text else None
+            drawn = self.callout(member, text, span, use.unit, given.kind == "spaced bars") if text else None
             if drawn is not None or not text:
-                self.tell(worked, one.path, drawn is not None and meaning(drawn) == meaning(own), text, own.text, place)
+                self.tell(member, one.path, drawn is not None and meaning(drawn) == meaning(own), text, own.text, place)
         elif given.symbol is not None and given.symbol.unit is not None:
             unit = use.unit or (self.lengths if given.symbol.unit.dimension == LENGTH else "")
             amount = read_in_unit(with_unit(text, unit), span, self.problems, given.symbol.unit) if text else None
             if amount is not None or not text:
-                agrees = amount is not None and amount.value == exact(one, worked)
-                self.tell(worked, one.path, agrees, amount.text if amount else text, typed(one, worked), place)
+                agrees = amount is not None and amount.value == exact(one, member.worked)
+                self.tell(member, one.path, agrees, amount.text if amount else text, typed(one, member.worked), place)
         else:
-            word = str(worked.values.get(one.slot, one.key))
-            self.tell(worked, one.path, text.casefold() == word.casefold(), text, word, place)
+            word = str(member.worked.values.get(one.slot, one.key))
+            self.tell(member, one.path, text.casefold() == word.casefold(), text, word, place)
 
-    def size(self, worked: Worked, use: Use, row: SheetRow) -> None:
+    def size(self, member: Member, use: Use, row: SheetRow) -> None:
         """Compare `16 x 28 in` with the lengths of the result line, in their order."""
-        own, shown = sizes(worked), self.cell(use, row)
+        own, shown = sizes(member), self.cell(use, row)
         if shown is None or not own:
             return
         text, span, place = shown
@@ -157,8 +158,8 @@ class Reconciler:
         if text and None in drawn:
             return
         self.values += 1
-        agrees = [amount.value for amount in drawn if amount] == [exact(one, worked) for one in own]
-        self.tell(worked, "size", agrees, text, " × ".join(typed(one, worked) for one in own), place)
+        agrees = [amount.value for amount in drawn if amount] == [exact(one, member.worked) for one in own]
+        self.tell(member, "size", agrees, text, " × ".join(typed(one, member.worked) for one in own), place)
 
     def lengths_in(self, text: str, span: Span, unit: str, like: Unit) -> Iterator[Amount | None]:
         """Read lengths apart by `x`; a unit that stands behind the last is that of all."""
@@ -168,19 +169,19 @@ class Reconciler:
         for piece in pieces if text else ():
             yield read_in_unit(with_unit(piece, unit), span, self.problems, like)
 
-    def bars(self, worked: Worked, use: Use, row: SheetRow) -> None:
+    def bars(self, member: Member, use: Use, row: SheetRow) -> None:
         """Compare `first: 4-#9; stirrup: #4 @ 8 in` with all bars of the calculation, whatever their order."""
-        own, shown = callouts(worked), self.cell(use, row)
+        own, shown = callouts(member), self.cell(use, row)
         if shown is None or not own:
             return
         text, span, place = shown
         pieces = [piece.rpartition(":")[2].strip() for piece in re.split(r"[;,]", text) if piece.strip()]
-        drawn = [self.callout(worked, piece, span, use.unit, "@" in piece) for piece in pieces]
+        drawn = [self.callout(member, piece, span, use.unit, "@" in piece) for piece in pieces]
         if None in drawn:
             return
         self.values += 1
         agrees = Counter(meaning(one) for one in drawn if one) == Counter(meaning(one) for _, one in own)
-        self.tell(worked, "bars", agrees, text, "; ".join(f"{label}: {one.text}" for label, one in own), place)
+        self.tell(member, "bars", agrees, text, "; ".join(f"{label}: {one.text}" for label, one in own), place)
 
     def cell(self, use: Use, row: SheetRow) -> tuple[str, Span, str] | None:
         """Return text, span and place of a cell, '' for an empty one; None after adding a problem."""
@@ -195,8 +196,8 @@ class Reconciler:
         self.used |= {piece.index for piece in use.pieces if isinstance(piece, Heading)}
         return (scalar.text, scalar.span, scalar.span.place) if isinstance(scalar, Scalar) else None
 
-    def callout(self, worked: Worked, text: str, span: Span, unit: str, spaced: bool) -> BarCallout | None:
-        template = worked.calculation.template
+    def callout(self, member: Member, text: str, span: Span, unit: str, spaced: bool) -> BarCallout | None:
+        template = member.worked.calculation.template
         table = self.library.bar_table(template.name, template.system)
         if table is None:
             return None
@@ -204,19 +205,19 @@ class Reconciler:
         full = with_unit(text, unit or self.lengths)
         return read_callout(full, whole, table, spaced=spaced, problems=self.problems)
 
-    def tell(self, worked: Worked, what: str, agrees: bool, drawn: str, own: str, place: str) -> None:
+    def tell(self, member: Member, what: str, agrees: bool, drawn: str, own: str, place: str) -> None:
         if not agrees:
-            self.differences.append(Difference(worked.calculation.mark, what, drawn or "nothing", own, place))
+            self.differences.append(Difference(member.mark, what, drawn or "nothing", own, place))
 
 
-def names_of(worked: Worked) -> dict[str, Taken]:
+def names_of(member: Member) -> dict[str, Taken]:
     """Return the given values of a calculation by all names they may be asked for by.
 
     Where a set has bars once a row, `layer.first` is short for `layer.first.steel`; where it has them once, `layer` is.
     """
-    found = list(taken(worked))
+    found = list(taken(member))
     names = {one.path: one for one in found}
-    bars = [one for one in found if one.key and isinstance(one.value.value, BarCallout)]
+    bars = [one for one in found if "." in one.path and isinstance(one.value.value, BarCallout)]
     for depth in (1, 0):
         stems = Counter(".".join(one.path.split(".")[: depth + 1]) for one in bars)
         for one in bars:

@@ -36,7 +36,7 @@ def account(worked: Worked, governing: str = "") -> Account:
     template = calculation.template
     return Account(
         calculation.mark, calculation.title, template.name, template.code if template.year else "", worked.verdict,
-        governing, worked.stop.words if worked.stop else "", tuple(entry for entry, _ in placed_entries(worked)),
+        governing, worked.stop.told if worked.stop else "", tuple(entry for entry, _ in placed_entries(worked)),
     )  # fmt: skip
 
 

@@ -106,8 +106,8 @@ class _Linker:
 
     def given(self, given: Given, space: Space, sets: tuple[int, ...]) -> PlannedGiven:
         if given.kind == "rows":
-            rows = self.maker.row_set(given.name, space, (), given.row_names, given.span)
-            columns = tuple(self.given(column, space, (rows.index,)) for column in given.columns)
+            rows = self.maker.row_set(given.name, space, sets, given.row_names, given.span)
+            columns = tuple(self.given(column, space, (*sets, rows.index)) for column in given.columns)
             return PlannedGiven(given, -1, rows.index, columns, (), ())
         over = tuple(self.names.set_named(name.name, name.span, space) for name in given.over)
         assert given.symbol is not None

@@ -13,6 +13,7 @@ from calcreport.core.problems import Problems, listed
 from calcreport.core.source import Span
 from calcreport.core.units import dimension_words
 from calcreport.plan.model import (
+    MEMBER,
     Calculation,
     Given,
     GivenPairs,
@@ -25,6 +26,9 @@ from calcreport.plan.model import (
     RowSet,
     Slot,
 )
+
+#: how a path begins that was asked for by a member's mark
+_OF_MEMBER = f"{MEMBER}["
 
 
 def bind_links(inputs: Inputs, plans: dict[int, Plan], problems: Problems) -> Inputs:
@@ -50,7 +54,7 @@ def _is_open(value: GivenValue | GivenRows | GivenPairs) -> bool:
     """Tell whether a given value holds a link that is not bound by its own words."""
     match value:
         case GivenValue(_, handed):
-            return isinstance(handed, LinkedValue) and bool(handed.at)
+            return isinstance(handed, LinkedValue) and (bool(handed.at) or handed.path.startswith(_OF_MEMBER))
         case GivenRows():
             return value.linked is not None or any(_is_open(cell) for row in value.cells for cell in row)
         case GivenPairs(_, cells):
@@ -66,17 +70,28 @@ class _Binder:
             case GivenValue():
                 return self.value(value)
             case GivenRows():
-                cells = tuple(tuple(self.value(cell) for cell in row) for row in value.cells)
+                cells = tuple(tuple(self.cell(cell) for cell in row) for row in value.cells)
                 return replace(value, cells=cells, linked=self.rows(value.linked) if value.linked else None)
             case GivenPairs():
                 return replace(value, cells=tuple((names, self.value(cell)) for names, cell in value.cells))
 
+    def cell(self, cell: GivenValue | GivenRows) -> GivenValue | GivenRows:
+        if isinstance(cell, GivenValue):
+            return self.value(cell)
+        return replace(cell, cells=tuple(tuple(self.cell(inner) for inner in row) for row in cell.cells))
+
     def value(self, value: GivenValue) -> GivenValue:
         """Put the rows named under `at` into the path of a link, in the order of the sets."""
         link = value.value
-        if not isinstance(link, LinkedValue) or not link.at:
+        if not isinstance(link, LinkedValue) or not _is_open(value):
             return value
         plan = self.by_mark.get(link.mark)
+        if plan is not None and not link.at:
+            # what like members have in common has no rows, though it is asked for by a member's mark
+            symbol = link.path.rpartition("].")[2]
+            index = plan.by_path.get(symbol)
+            common = index is not None and not plan.slots[index].sets
+            return replace(value, value=replace(link, path=symbol)) if common else value
         slot = self.slot(link.mark, Name(link.path, link.span), plan, "") if plan is not None else None
         if plan is None or slot is None:
             return value

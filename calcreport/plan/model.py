@@ -2,6 +2,7 @@
 
 A plan belongs to a template settled for one system and year, and serves every calculation made by it. What reading
 made and planning leaves as it is goes on through here.
+Kept in one: records that are read together.
 """
 
 from __future__ import annotations
@@ -12,6 +13,7 @@ from typing import Literal, TypeAlias
 from calcreport.core.expression import Condition, Expression
 from calcreport.core.source import Citation, Span
 from calcreport.read.model import (
+    MEMBER,
     BarCallout,
     Calculation,
     Candidate,
@@ -30,6 +32,7 @@ from calcreport.read.model import (
     Symbol,
     Template,
     ValueOrigin,
+    singles,
 )
 
 
@@ -275,9 +278,44 @@ class Plan:
 
 
 __all__ = [
-    "BarCallout", "Calculation", "Candidate", "Case", "Expected", "FigureInput", "Given", "GivenPairs", "GivenRows",
-    "GivenValue", "Handed", "Inputs", "LinkedRows", "LinkedValue", "Plan", "PlannedArm", "PlannedBranchArm",
-    "PlannedBranches", "PlannedCheck", "PlannedColumn", "PlannedEach", "PlannedEntry", "PlannedFigure",
-    "PlannedGiven", "PlannedGives", "PlannedLine", "PlannedPart", "PlannedRequire", "PlannedRows", "PlannedText",
-    "PlannedUnknown", "Project", "Reason", "RowSet", "Slot", "Symbol", "Template", "ValueOrigin",
+    "MEMBER",
+    "BarCallout",
+    "Calculation",
+    "Candidate",
+    "Case",
+    "Expected",
+    "FigureInput",
+    "Given",
+    "GivenPairs",
+    "GivenRows",
+    "GivenValue",
+    "Handed",
+    "Inputs",
+    "LinkedRows",
+    "LinkedValue",
+    "Plan",
+    "PlannedArm",
+    "PlannedBranchArm",
+    "PlannedBranches",
+    "PlannedCheck",
+    "PlannedColumn",
+    "PlannedEach",
+    "PlannedEntry",
+    "PlannedFigure",
+    "PlannedGiven",
+    "PlannedGives",
+    "PlannedLine",
+    "PlannedPart",
+    "PlannedRequire",
+    "PlannedRows",
+    "PlannedText",
+    "PlannedUnknown",
+    "Project",
+    "Reason",
+    "RowSet",
+    "Slot",
+    "Symbol",
+    "Template",
+    "ValueOrigin",
+    "singles",
 ]  # fmt: skip

@@ -9,21 +9,23 @@ import re
 from collections.abc import Callable
 from dataclasses import dataclass, field
 
+from calcreport.core.expression import Name
 from calcreport.core.problems import Problems
 from calcreport.core.source import Span, TableSource
 from calcreport.read.candidates import Choice, read_choice
 from calcreport.read.fields import Fields, is_empty
 from calcreport.read.gathering import Gathered
 from calcreport.read.library import Editions, Library
-from calcreport.read.model import SYSTEMS, Calculation, Given, System
-from calcreport.read.nodes import Mapping, Scalar
+from calcreport.read.model import SYSTEMS, Calculation, Given, GivenPairs, GivenRows, GivenValue, System
+from calcreport.read.nodes import Mapping, Scalar, Sequence
 from calcreport.read.single_values import Material
+from calcreport.read.together import Gatherings, Shared, read_members, read_rows
 from calcreport.read.values import RowSource, ValueReader, is_complete
 
 MARK = re.compile(r"[A-Z][A-Za-z0-9]{0,11}")
 #: marks of the front sheets and appendices
 _RESERVED = ("COVER", "INDEX", "REVISIONS", "CRITERIA", "ASSUMPTIONS", "SUMMARY", "SAMPLER", "A", "B", "C")
-KEYS = ("mark", "title", "template", "units", "given", "choose", "pinned")
+KEYS = ("mark", "title", "template", "units", "given", "choose", "pinned", "members", "table")
 
 
 @dataclass(slots=True)
@@ -39,7 +41,19 @@ class CalculationReader:
     tables: Callable[[], RowSource]
     #: marks of calculations that had problems
     poisoned: set[str] = field(default_factory=set)
+    #: the shared calculation of every member that has none of its own
+    standing: dict[str, str] = field(default_factory=dict)
+    gatherings: Gatherings = field(init=False)
     _marks: dict[str, Span] = field(default_factory=dict)
+
+    def __post_init__(self) -> None:
+        self.gatherings = Gatherings()
+        for node in self.gathered.calculations:
+            mark, members = node.get("mark"), node.get("members")
+            for item in members.items if isinstance(members, Sequence) else ():
+                own = item.get("mark") if isinstance(item, Mapping) else None
+                if isinstance(own, Scalar) and isinstance(mark, Scalar):
+                    self.standing[own.text] = mark.text
 
     def read(self) -> tuple[Calculation, ...]:
         """Return the calculations that had no problem, in written order."""
@@ -73,26 +87,53 @@ class CalculationReader:
         given = fields.mapping("given")
         if given is None and fields.node_of("given") is not None:
             return None
-        materials = self.materials(fields, roles)
         bars = self.library.bar_table(template.name, system)
-        reader = ValueReader(materials, bars, node.span, self.problems, self.tables)
+        shared = read_members(fields, template.body.given, roles, self.mark)
+        own_roles = shared.roles if shared else ()
+        materials = self.materials(fields, tuple(role for role in roles if role not in own_roles))
+        reader = ValueReader(materials, bars, node.span, self.problems, self.standing, self.tables)
         choice = read_choice(fields, template.body.given, reader)
-        wanted = tuple(one for one in template.body.given if one.name not in choice.names)
-        values = reader.read(wanted, self.once(given or Mapping((), node.span), choice), _named(mark))
+        elsewhere = choice.names | frozenset(shared.names if shared else ())
+        wanted = tuple(one for one in template.body.given if one.name not in elsewhere)
+        node_given = self.once(given or Mapping((), node.span), choice, shared)
+        values: tuple[GivenValue | GivenRows | GivenPairs, ...] = reader.read(wanted, node_given, _named(mark))
         if not kept or not is_complete(values, wanted):
             return None
+        table = self.table(fields, shared)
+        if shared is not None:
+            values = (*values, read_rows(shared, template, reader, self.materials))
+            template = self.gatherings.template(template, shared, table)
         return Calculation(mark.text, title, template, values, node.span.text, mark.span,
-                           choice.candidates, choice.pinned)  # fmt: skip
+                           choice.candidates, choice.pinned, shared.marks if shared else ())  # fmt: skip
 
-    def once(self, given: Mapping, choice: Choice) -> Mapping:
-        """Return what is given without what the candidates choose, which must not be given too."""
+    def once(self, given: Mapping, choice: Choice, shared: Shared | None) -> Mapping:
+        """Return what is given in common, without what candidates choose or members have for themselves."""
+        columns = shared.names if shared else ()
         for key, _ in given.entries:
-            if key.text in choice.names:
-                first = choice.candidates[0].span.part(0, 1)
-                self.problems.add("given-twice", key.span, f"`{key.text[:40]}` is given, and the candidates choose it",
-                                  expected="one place", found="a given value and candidates",
-                                  related=((first, "the candidates"),))  # fmt: skip
-        return Mapping(tuple(entry for entry in given.entries if entry[0].text not in choice.names), given.span)
+            if key.text in choice.names or key.text in columns:
+                by = "the candidates choose it" if key.text in choice.names else "the members have it in a column"
+                self.say_twice(key, f"`{key.text[:40]}` is given, and {by}")
+        for candidate in choice.candidates[:1]:
+            for value in candidate.values:
+                if value.given.name in columns:
+                    self.problems.add("given-twice", candidate.span.part(0, 1),
+                                      f"`{value.given.name}` is chosen, and the members have it in a column",
+                                      expected="one place", found="two")  # fmt: skip
+        taken = (*choice.names, *columns)
+        return Mapping(tuple(entry for entry in given.entries if entry[0].text not in taken), given.span)
+
+    def say_twice(self, key: Scalar, words: str) -> None:
+        self.problems.add("given-twice", key.span, words, expected="one place", found="two")
+
+    def table(self, fields: Fields, shared: Shared | None) -> tuple[Name, ...]:
+        """Return the symbols that a table of like members is to show."""
+        names = tuple(Name(scalar.text, scalar.span) for scalar in fields.texts("table"))
+        if names and shared is None:
+            at = next(key.span for key, _ in fields.node.entries if key.text == "table")
+            self.problems.add("unknown-key", at, "`table` stands without members",
+                              expected="`members: [{mark: …}, …]`, or `together: MARK` in a schedule",
+                              found="one member")  # fmt: skip
+        return names
 
     def mark(self, mark: Scalar) -> bool:
         """Keep a mark: short, not one of the fronts, every one once."""

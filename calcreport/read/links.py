@@ -10,7 +10,7 @@ import re
 from calcreport.core.expression import Name
 from calcreport.core.problems import Problems, listed
 from calcreport.read.fields import Fields
-from calcreport.read.model import Given, GivenRows, GivenValue, LinkedRows, LinkedValue, ValueOrigin
+from calcreport.read.model import MEMBER, Given, GivenRows, GivenValue, LinkedRows, LinkedValue, ValueOrigin
 from calcreport.read.nodes import Mapping, Scalar
 
 _VALUE = re.compile(r"([A-Za-z][A-Za-z0-9]*)\.([A-Za-z][\w.\[\]+ /-]*)")
@@ -19,9 +19,12 @@ ROWS_KEYS = ("from", "at", "columns")
 
 
 def read_link(
-    given: Given, scalar: Scalar, at: tuple[tuple[Name, Name], ...], problems: Problems
+    given: Given, scalar: Scalar, at: tuple[tuple[Name, Name], ...], problems: Problems, shared: dict[str, str]
 ) -> LinkedValue | None:
-    """Read the name of another calculation's line; `at` names rows, and then the name has none in brackets."""
+    """Read the name of another calculation's line; `at` names rows, and then the name has none in brackets.
+
+    `shared` names the calculation of members that have none of their own, by their marks.
+    """
     match = _VALUE.fullmatch(scalar.text)
     if match is None or given.kind not in ("value", "pairs"):
         bars = given.kind in ("bars", "spaced bars")
@@ -33,7 +36,17 @@ def read_link(
         problems.add("not-a-link", scalar.span, "rows are named in brackets and under `at` too",
                      expected="the symbol alone beside `at`", found=scalar.text[:40])  # fmt: skip
         return None
-    return LinkedValue(match[1], match[2], scalar.span, at)
+    mark, path = match[1], match[2]
+    if mark not in shared:
+        return LinkedValue(mark, path, scalar.span, at)
+    if at:
+        return LinkedValue(shared[mark], path, scalar.span, (_member(mark, scalar), *at))
+    return LinkedValue(shared[mark], f"{MEMBER}[{mark}].{path}", scalar.span)
+
+
+def _member(mark: str, scalar: Scalar) -> tuple[Name, Name]:
+    at = scalar.span.part(0, len(mark))
+    return Name(MEMBER, at), Name(mark, at)
 
 
 def read_at(fields: Fields) -> tuple[tuple[Name, Name], ...]:
@@ -46,7 +59,7 @@ def read_at(fields: Fields) -> tuple[tuple[Name, Name], ...]:
     return tuple((Name(key.text, key.span), Name(row.text, row.span)) for key, row in found if row is not None)
 
 
-def read_linked_rows(given: Given, node: Mapping, problems: Problems) -> GivenRows | None:
+def read_linked_rows(given: Given, node: Mapping, problems: Problems, shared: dict[str, str]) -> GivenRows | None:
     """Read `{from: LC1.combination, at: {section: C3 foot}, columns: {P_u: P_u, M_u: M_u}}`."""
     before = problems.met
     fields = Fields(node, ROWS_KEYS, f"the rows of `{given.name}`", problems)
@@ -59,7 +72,9 @@ def read_linked_rows(given: Given, node: Mapping, problems: Problems) -> GivenRo
     if scalar is None or match is None or problems.met > before:
         return None
     rows = Name(match[2], scalar.span.part(match.start(2), match.end(2)))
-    linked = LinkedRows(match[1], rows, at, columns, same, scalar.span)
+    mark = match[1]
+    at = (_member(mark, scalar), *at) if mark in shared else at
+    linked = LinkedRows(shared.get(mark, mark), rows, at, columns, same, scalar.span)
     words = ", ".join([f"{match[1]} {match[2]}", *(row.name for _, row in at)])
     return GivenRows(given, (), (), ValueOrigin("line", words), node.span, linked)
 

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from calcreport.read.project_model import (
+    MEMBER,
     Assumption,
     BarCallout,
     BarGroup,
@@ -23,6 +24,7 @@ from calcreport.read.project_model import (
     Project,
     Reason,
     ValueOrigin,
+    singles,
 )
 from calcreport.read.template_model import (
     SYSTEMS,
@@ -52,6 +54,7 @@ from calcreport.read.template_model import (
 )
 
 __all__ = [
+    "MEMBER",
     "SYSTEMS",
     "Arm",
     "Assumption",
@@ -96,4 +99,5 @@ __all__ = [
     "Text",
     "Unknown",
     "ValueOrigin",
+    "singles",
 ]

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Iterable, Iterator
 from dataclasses import dataclass, replace
 from typing import Literal, TypeAlias
 
@@ -10,6 +10,9 @@ from calcreport.core.expression import Name
 from calcreport.core.quantity import Amount
 from calcreport.core.source import Source, Span
 from calcreport.read.template_model import Given, System, Template
+
+#: the set whose rows are like members that share one calculation
+MEMBER = "member"
 
 
 @dataclass(frozen=True, slots=True)
@@ -86,8 +89,8 @@ class GivenRows:
 
     given: Given
     names: tuple[str, ...]
-    #: one tuple a row, in the order of the given's columns
-    cells: tuple[tuple[GivenValue, ...], ...]
+    #: one tuple a row, in the order of the given's columns; a set of its own in a row of like members
+    cells: tuple[tuple[GivenValue | GivenRows, ...], ...]
     origin: ValueOrigin
     span: Span
     #: another calculation's rows: names and cells are empty until that one is worked
@@ -102,6 +105,19 @@ class GivenPairs:
     cells: tuple[tuple[tuple[str, ...], GivenValue], ...]
     origin: ValueOrigin
     span: Span
+
+
+def singles(values: Iterable[GivenValue | GivenRows | GivenPairs]) -> Iterator[GivenValue]:
+    """Return every single value, those in rows and pairs too."""
+    for value in values:
+        match value:
+            case GivenValue():
+                yield value
+            case GivenRows():
+                for row in value.cells:
+                    yield from singles(row)
+            case GivenPairs():
+                yield from (cell for _, cell in value.cells)
 
 
 @dataclass(frozen=True, slots=True)
@@ -129,6 +145,8 @@ class Calculation:
     #: the engineer's candidates in order of preference, and the place of the pinned one (-1: none)
     candidates: tuple[Candidate, ...] = ()
     pinned: int = -1
+    #: marks of the like members it stands for, rows of the set `member`; () for one member
+    members: tuple[str, ...] = ()
 
     @property
     def handed(self) -> tuple[GivenValue | GivenRows | GivenPairs, ...]:

@@ -18,6 +18,7 @@ from calcreport.read import (
     schedules,
     single_values,
     tables,
+    together,
 )
 from calcreport.read.library import ANY as ANY_EDITION
 from calcreport.read.library import Library
@@ -82,7 +83,7 @@ def _definitions(library: Library) -> dict[str, Schema]:
     calculation = {
         "mark": text(f"^({calculations.MARK.pattern})$"), "title": text(), "template": _template(takes),
         "units": choice(SYSTEMS), "given": mapping(named("value")), "choose": items(mapping(named("value"))) | _few(),
-        "pinned": mapping(named("value")),
+        "pinned": mapping(named("value")), "members": items(mapping(named("value"))), "table": texts(),
     }  # fmt: skip
     table = {
         "file": text(), "sheet": text(), "heading row": whole(1, 1000), "where": mapping(texts()),
@@ -92,6 +93,7 @@ def _definitions(library: Library) -> dict[str, Schema]:
     schedule = table | {
         "template": _template(takes), "mark": text(), "title": text(), "units": choice(SYSTEMS),
         "given": mapping(ANY), "choose": items(mapping(ANY)) | _few(), "pinned": mapping(ANY),
+        "together": text(), "table": texts(),
     }  # fmt: skip
     role, role_of_row = text(), {"anyOf": [text(), named("column")]}
     return {
@@ -120,12 +122,15 @@ def _definitions(library: Library) -> dict[str, Schema]:
         "column": closed(columns.USE_KEYS, _texts(columns.USE_KEYS), ("column",)),
         # a key that is none of these is a role of the template, with the mark of a material
         "calculation": closed(calculations.KEYS, calculation, ("mark", "title", "template"),
-            dependentRequired={"pinned": ["choose"]}, allOf=[
+            dependentRequired={"pinned": ["choose"], "table": ["members"]}, allOf=[
             _calculation_of(name, found) for name, found in takes.items()
         ]) | {"additionalProperties": role},
+        # like members on one calculation have one title, which no column gives
         "schedule": closed(schedules.KEYS, schedule, ("file", "template", "mark"), allOf=[
             _schedule_of(name, found) for name, found in takes.items()
-        ]) | {"additionalProperties": role_of_row},
+        ], **when(has("together"), {"properties": {"title": {"pattern": "^[^{]*$"}}})) | {
+            "additionalProperties": role_of_row
+        },
     }  # fmt: skip
 
 
@@ -195,11 +200,16 @@ def _calculation_of(name: str, takes: _Takes) -> Schema:
     values = {one.name: _value(one) | {"description": _says(one)} for one in takes.givens}
     given = {"properties": values, "propertyNames": {"enum": list(values)}}
     chosen = items(given)
-    then = _roles(calculations.KEYS, takes) | {"properties": {"given": given, "choose": chosen, "pinned": given}}
+    # a member has its mark, and roles of its own where the calculation names none for all
+    member = {"propertyNames": {"enum": [together.MARK, *values, *calculations.roles_of(takes.givens)]},
+              "properties": values, "required": [together.MARK]}  # fmt: skip
+    then = _roles(calculations.KEYS, takes) | {
+        "properties": {"given": given, "choose": chosen, "pinned": given, "members": items(member)}
+    }
     if takes.needed:
-        # candidates may choose what is needed
+        # candidates may choose what is needed, and members have it for themselves
         needed = {"required": ["given"], "properties": {"given": {"required": list(takes.needed)}}}
-        then |= when({"not": has("choose")}, needed)
+        then |= when({"not": {"anyOf": [has("choose"), has("members")]}}, needed)
     return _where_template(name, then)
 
 

@@ -22,9 +22,7 @@ from calcreport.read.nodes import Mapping, Node, Scalar, Sequence, Told
 from calcreport.read.sheets import SheetRow
 from calcreport.read.tables import TABLE_KEYS, Choice, Tables
 
-KEYS = (*TABLE_KEYS, "template", "mark", "title", "units", "columns", "given", "choose", "pinned")
-#: keys the language has and this version does not read
-_LATER = ("together",)
+KEYS = (*TABLE_KEYS, "template", "mark", "title", "units", "columns", "given", "choose", "pinned", "together", "table")
 
 
 @record
@@ -65,7 +63,7 @@ class ScheduleReader:
         """Return the calculations of one schedule."""
         template = self.template(node)
         roles = roles_of(template.body.given) if template else _others(node)
-        fields = Fields(node, (*KEYS, *roles), "a schedule", self.problems, _LATER)
+        fields = Fields(node, (*KEYS, *roles), "a schedule", self.problems)
         fields.scalar("template", required=True)
         before = self.problems.met
         table = self.tables.table(fields, self.label(fields))
@@ -77,13 +75,14 @@ class ScheduleReader:
         if template is not None and not self.hold_units(node, template, plan):
             return
         met = self.problems.met
-        found = 0
-        for row in self.tables.rows(plan.choice):
-            found += 1
-            calculation = self.calculation(node, row, plan)
-            if calculation is not None:
-                yield calculation
-        if not found and self.problems.met == met:
+        rows = list(self.tables.rows(plan.choice))
+        if fields.has("together") and rows:
+            shared = self.together(fields, rows, plan)
+            yield from (shared,) if shared is not None else ()
+        else:
+            found = (self.calculation(node, row, plan) for row in rows)
+            yield from (calculation for calculation in found if calculation is not None)
+        if not rows and self.problems.met == met:
             self.tables.say_no_rows(fields, table)
 
     def template(self, node: Mapping) -> Template | None:
@@ -111,7 +110,7 @@ class ScheduleReader:
             titled = text_use(title, table, self.problems) if "{" in title.text else title
         entries: list[tuple[Scalar, Node | Use | Filled]] = []
         for key, value in fields.node.entries:
-            if key.text in ("template", "units", "choose", "pinned", *roles):
+            if key.text in ("template", "units", "choose", "pinned", "table", *roles):
                 entries.append((key, prepare(value, table, self.problems)))
         entries.append((Scalar("given", fields.span, False), self.given(fields, table)))
         choice = self.tables.choice(fields, table)
@@ -148,6 +147,41 @@ class ScheduleReader:
                 self.tables.hold_unit(given, use, plan.choice)
         return self.problems.met == before
 
+    def together(self, fields: Fields, rows: list[SheetRow], plan: _Plan) -> Mapping | None:
+        """Return the one calculation of all rows: what is taken from columns a member, the rest in common."""
+        mark = fields.scalar("together", required=True)
+        if not isinstance(plan.title, Scalar):
+            self.problems.add("wrong-shape", plan.title.span, "the title is taken from a column",
+                              expected="one title for all, as they share one calculation", found="a column",
+                              hint="give each row a calculation of its own, or write the title out")  # fmt: skip
+        if mark is None or not isinstance(plan.title, Scalar):
+            return None
+        common: list[tuple[Scalar, Node]] = [(Scalar("mark", mark.span, False), mark)]
+        common.append((Scalar("title", mark.span, False), plan.title))
+        own: list[tuple[Scalar, Use | Filled]] = []
+        for key, value in plan.entries:
+            if key.text == "given" and isinstance(value, Filled) and isinstance(value.node, Mapping):
+                pairs = [(name, one) for (name, _), one in zip(value.node.entries, value.inner, strict=True)]
+                own += [(name, one) for name, one in pairs if isinstance(one, Use | Filled)]
+                rest = tuple((name, one) for name, one in pairs if not isinstance(one, Use | Filled))
+                common.append((key, Mapping(rest, value.node.span)))
+            elif isinstance(value, Use | Filled):
+                own.append((key, value))
+            else:
+                common.append((key, value))
+        members = [self.member(row, own, plan) for row in rows]
+        found = Sequence(tuple(member for member in members if member is not None), fields.span)
+        return Mapping((*common, (Scalar("members", mark.span, False), found)), fields.span)
+
+    def member(self, row: SheetRow, own: list[tuple[Scalar, Use | Filled]], plan: _Plan) -> Mapping | None:
+        mark = take(plan.mark, row, plan.table, self.problems)
+        if not isinstance(mark, Scalar):
+            return None
+        entries: list[tuple[Scalar, Node]] = [(Scalar("mark", mark.span, False), mark)]
+        for key, value in own:
+            entries.append((key, fill(value, row, plan.table, self.problems) or Told(key.span)))
+        return Mapping(tuple(entries), mark.span)
+
     def calculation(self, node: Mapping, row: SheetRow, plan: _Plan) -> Mapping | None:
         """Return the calculation of a row, None for one without a mark."""
         mark = take(plan.mark, row, plan.table, self.problems)
@@ -179,4 +213,4 @@ def _text(node: Node | None) -> str:
 
 def _others(node: Mapping) -> tuple[str, ...]:
     """Return the keys that may be material roles, where the template that would tell is not there."""
-    return tuple(key.text for key, _ in node.entries if key.text not in (*KEYS, *_LATER))
+    return tuple(key.text for key, _ in node.entries if key.text not in KEYS)

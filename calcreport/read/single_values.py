@@ -5,7 +5,7 @@ Text nodes in, `GivenValue` out. What is missing, bare or out of range is a prob
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from typing import TypeAlias
 
 from calcreport.core.expression import Name
@@ -35,6 +35,8 @@ class SingleReader:
     #: the calculation's own place
     home: Span
     problems: Problems
+    #: calculation that a member's mark stands on, for members that share one
+    shared: dict[str, str] = field(default_factory=dict)
 
     def value(self, given: Given, node: Node) -> GivenValue | None:
         """Read a value: text, `{value, source}` or `{from: MARK.symbol}`."""
@@ -62,7 +64,7 @@ class SingleReader:
 
     def link(self, given: Given, scalar: Scalar, at: tuple[tuple[Name, Name], ...]) -> GivenValue | None:
         """Read the name of another calculation's line."""
-        value = read_link(given, scalar, at, self.problems)
+        value = read_link(given, scalar, at, self.problems, self.shared)
         return GivenValue(given, value, ValueOrigin("line", scalar.text), scalar.span) if value is not None else None
 
     def none(self, given: Given, scalar: Scalar) -> GivenValue | None:

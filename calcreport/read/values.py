@@ -146,7 +146,7 @@ class ValueReader(SingleReader):
 
     def linked_rows(self, given: Given, node: Mapping) -> GivenRows | None:
         """Read rows taken from another calculation; a column of a material is the same in every row."""
-        found = read_linked_rows(given, node, self.problems)
+        found = read_linked_rows(given, node, self.problems, self.shared)
         if found is None or found.linked is None:
             return None
         named = {column.name for column, _ in found.linked.columns} | {v.given.name for v in found.linked.same}
@@ -228,7 +228,7 @@ def _origin(cells: Iterable[GivenValue]) -> ValueOrigin:
 def is_complete(values: tuple[GivenValue | GivenRows | GivenPairs, ...], givens: tuple[Given, ...]) -> bool:
     """Tell whether every given value was read, and every cell of its rows."""
     rows = [value for value in values if isinstance(value, GivenRows)]
-    whole = all(len(cells) == len(value.given.columns) for value in rows for cells in value.cells)
+    whole = all(is_complete(cells, value.given.columns) for value in rows for cells in value.cells)
     return whole and len(values) == len(givens) and all(len(r.names) == len(r.cells) for r in rows)
 
 

@@ -5,6 +5,8 @@ Worked lines in, lists of one kind out.
 
 from __future__ import annotations
 
+import math
+
 from calcreport.calculate.model import (
     WorkedBranches,
     WorkedCheck,
@@ -30,6 +32,13 @@ def checks_below(lines: tuple[WorkedLine, ...]) -> list[WorkedCheck]:
                 for row in line.rows:
                     found += checks_below(row)
     return found
+
+
+def severity(check: WorkedCheck) -> float:
+    """Return a check's ratio for ranking; one that fails without a ratio outranks any ratio."""
+    if check.ratio is not None:
+        return check.ratio
+    return math.inf if check.verdict == "NG" else -1.0
 
 
 def gives_below(lines: tuple[WorkedLine, ...]) -> list[WorkedGives]:

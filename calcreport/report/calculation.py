@@ -5,12 +5,12 @@
 
 from __future__ import annotations
 
-from calcreport.core.expression import Binary, Compare, Name
+from calcreport.core.expression import Name
 from calcreport.core.units import ONE
 from calcreport.report.candidates import candidate_blocks
-from calcreport.report.digits import number_text
+from calcreport.report.check_blocks import CheckBlocks
 from calcreport.report.drawings import draw
-from calcreport.report.forms import Opened, equation_unit, joint_comparisons
+from calcreport.report.forms import Opened, equation_unit
 from calcreport.report.given_blocks import GivenBlocks
 from calcreport.report.items import (
     Item,
@@ -35,12 +35,10 @@ from calcreport.report.items import (
 )
 from calcreport.report.model import (
     Block,
-    CheckLine,
     FigureBlock,
     Formula,
     Givens,
     Heading,
-    Letters,
     Line,
     Paragraph,
     ResultBox,
@@ -71,10 +69,9 @@ def _figure_first(blocks: list[Block]) -> list[Block]:
 class Composer:
     """Composes one calculation."""
 
-    def __init__(self, told: Told, dispositions: dict[str, tuple[str, ...]]) -> None:
-        #: the engineer's words by check
-        self.dispositions = dispositions
+    def __init__(self, told: Told, dispositions: dict[int, tuple[str, ...]]) -> None:
         self.told, self.given, self.rows = told, GivenBlocks(told), RowBlocks(told)
+        self.checks = CheckBlocks(told, dispositions)
         self.worked, self.forms, self.shared = told.worked, told.forms, told.shared
         self.values, self.slots = told.values, told.slots
 
@@ -117,7 +114,7 @@ class Composer:
             case SayMade():
                 return self.rows.made(item)
             case SayTable():
-                return (self.rows.table(item),)
+                return (self.rows.table(item), *self.checks.dispositions_left(item))
             case SayUnknown():
                 return self.unknown(item)
             case SayEquation():
@@ -125,14 +122,14 @@ class Composer:
             case SayBranch():
                 return self.branch(item)
             case SayCheck():
-                return (self.check(item), *self.disposition(item))
+                return (self.checks.check(item), *self.checks.disposition(item))
             case SayRequire():
-                return (self.require(item),)
+                return (self.checks.require(item),)
             case SayFigure():
                 figure = draw(item.worked, self.forms)
                 return (FigureBlock(figure),) if figure is not None else ()
             case SayStop():
-                return self.stopped(item)
+                return self.checks.stopped(item)
             case SayUnseen():
                 return ()
 
@@ -212,72 +209,6 @@ class Composer:
             return (Paragraph((says[:1].upper() + says[1:] + ":",), "plain"),) if says else ()
         shown = self.told.because(item.worked.line, item.worked.arm, item.worked.open)
         return (Paragraph(("Since ", shown, ":"), "plain"),) if shown is not None else ()
-
-    def check(self, item: SayCheck) -> Block:
-        """Return a check in full."""
-        check = item.worked
-        opened, by = check.open, check.by
-        formula: Formula
-        substituted: Formula | None = None
-        if by is None:
-            formula = self.shared.condition(check.line.holds)
-        elif check.ratio is None or check.kind == "condition":
-            formula = self.shared.condition(by.test)
-            substituted = self.told.numbers(by.test, opened)
-        elif check.kind == "ratio":
-            formula = self.shared.formula(by.test.left)
-        else:
-            formula, substituted = self.ratio_steps(by.test, opened)
-        figure = self.forms.ratio(check)
-        reason: Words = (check.reason,) if check.reason else ()
-        return CheckLine(
-            item.number,
-            self.told.anchor(item.number),
-            check.line.name,
-            formula,
-            substituted,
-            number_text(figure) if figure else "",
-            check.verdict,
-            reason,
-            self.told.source(check.line.cite.printed, (check.line.holds,), opened, item.number),
-        )
-
-    def disposition(self, item: SayCheck) -> tuple[Block, ...]:
-        """Return the engineer's word on a check that is NG."""
-        said = self.dispositions.get(item.worked.line.name, ()) if item.worked.verdict == "NG" else ()
-        return tuple(Paragraph((Strong("Engineer's disposition: "), words), "plain") for words in said)
-
-    def ratio_steps(self, test: Compare, opened: Opened) -> tuple[Formula, Formula | None]:
-        """Return demand over capacity with symbols and with numbers."""
-        demand, capacity = (test.left, test.right) if test.op in ("<", "<=") else (test.right, test.left)
-        node = self.shared.ratios.setdefault(id(test), Binary("/", demand, capacity, test.span))
-        return self.shared.formula(node), self.told.substitution(node, opened, ONE)
-
-    def require(self, item: SayRequire) -> Block:
-        """Return a requirement that was met."""
-        worked = item.worked
-        condition = worked.line.condition
-        shown = self.shared.condition(condition)
-        tests = joint_comparisons(condition)
-        if tests and all(self.forms.side(test, worked.open, "left") for test in tests):
-            items: list[Formula] = []
-            for test in tests:
-                items += [Letters(" and ")] if items else []
-                items.append(self.told.compared(test, worked.open))
-            shown = Row(tuple(items))
-        lane = self.told.source(worked.line.cite.printed, (condition,), worked.open, item.number)
-        return Statement(item.number, self.told.anchor(item.number), ("Required",), shown, lane)
-
-    def stopped(self, item: SayStop) -> tuple[Block, ...]:
-        """Say where the calculation stopped and what that leaves undone."""
-        words: Words = (Strong("Stopped: "), item.stop.words, ". Checks below this line are not evaluated.")
-        blocks: list[Block] = [Paragraph(words, "caution")]
-        for number, check in item.left:
-            shown = self.shared.condition(check.line.holds)
-            lane = SourceLane(check.line.cite.printed)
-            anchor = self.told.anchor(number)
-            blocks.append(CheckLine(number, anchor, check.line.name, shown, None, "", "not evaluated", (), lane))
-        return tuple(blocks)
 
     def text(self, item: SayText) -> tuple[Block, ...]:
         """Return words with their values."""

@@ -35,9 +35,10 @@ def _row(one: Tried, selection: Selection, forms: CalculationForms) -> TableRow:
     used = one.place == selection.used
     worked = forms.worked if used else one.worked
     check = governing(worked)
-    ratio, words = "", worked.stop.words if worked.stop else ""
+    ratio, words = "", worked.stop.told if worked.stop else ""
     if check is not None and not worked.stop:
-        figure = forms.ratio(check) if used else ratio_figure(check.ratio) if check.ratio is not None else None
+        own = ratio_figure(check.ratio, ok=check.verdict == "OK") if check.ratio is not None else None
+        figure = forms.ratio(check) if used else own
         ratio, words = number_text(figure) if figure else "", check.line.name
     outcome = "stopped" if worked.stop else worked.verdict
     cells = (f"{one.place + 1}", *selection.candidates[one.place].texts, words, ratio, outcome)

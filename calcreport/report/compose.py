@@ -9,7 +9,7 @@ from collections.abc import Callable
 from dataclasses import dataclass, replace
 from functools import partial
 
-from calcreport.calculate.model import Worked, WorkedProject
+from calcreport.calculate.model import Member, Worked, WorkedCheck, WorkedProject
 from calcreport.core.kept import FRESH, Fresh
 from calcreport.core.version import PROGRAM
 from calcreport.report import fronts
@@ -54,7 +54,11 @@ def compose(
     for done, worked in enumerate(project.calculations, 1):
         symbols = shared.setdefault(id(worked.plan), SymbolForms(Notation(worked.plan.slots)))
         mark = worked.calculation.mark
-        said = {name: dispositions(project, mark, name) for name in {check.line.name for check in worked.checks}}
+        said = {
+            id(check): dispositions(project, member.mark, check.line.name)
+            for member in worked.members
+            for check in member.checks
+        }
         # figures are solved with all calculations that links bind together: where they are kept, so are those' lines
         inputs = (scripts[mark], forms[mark], tuple(sorted(said.items())))
         blocks = kept.of("blocks", mark, inputs, Composer(Told(scripts[mark], forms, scripts, symbols), said).blocks)
@@ -142,8 +146,21 @@ def _calculation(project: WorkedProject, worked: Worked, script: Script, blocks:
 
 def _strip(worked: Worked, script: Script) -> str:
     """Return the words of the strip over a calculation that holds an NG, or did not run to its end."""
-    failed = [check for check in worst_checks(worked) if check.verdict == "NG"]
+    judged = [(member, check) for member in worked.members for check in worst_checks(member)]
+    failed: dict[str, list[tuple[Member, WorkedCheck]]] = {}
+    for member, check in judged:
+        if check.verdict == "NG":
+            failed.setdefault(check.line.name, []).append((member, check))
     if failed:
-        words = ", ".join(f"line {script.check_line.get(id(c), 0)} {c.line.name}" for c in failed)
-        return f"{len(failed)} CHECK{'S' if len(failed) > 1 else ''} NG IN THIS CALCULATION: {words}"
-    return "NOT EVALUATED TO THE END: " + worked.stop.words if worked.stop else ""
+        words = ", ".join(_failed(script, name, found) for name, found in failed.items())
+        count = sum(len(found) for found in failed.values())
+        return f"{count} CHECK{'S' if count > 1 else ''} NG IN THIS CALCULATION: {words}"
+    return "NOT EVALUATED TO THE END: " + worked.stop.told if worked.stop else ""
+
+
+def _failed(script: Script, name: str, found: list[tuple[Member, WorkedCheck]]) -> str:
+    """Return `line 31 shear`, or `line 31 shear of B7 B9` where like members share the calculation."""
+    lines = list(dict.fromkeys(script.check_line.get(id(check), 0) for _, check in found))
+    shared = found[0][0].place[0] >= 0
+    of = f" of {' '.join(member.mark for member, _ in found)}" if shared else ""
+    return f"line {lines[0]} {name}{of}"

@@ -416,7 +416,7 @@ class _Lines:
         if check.ratio is None or check.kind == "condition":
             return
         name: Id = ("ratio", self.forms.mark, id(check))
-        self.digits.add(name, ratio_figure(check.ratio))
+        self.digits.add(name, ratio_figure(check.ratio, ok=check.verdict == "OK"))
         inputs = self.inputs(by.test, check.open)
         required = by.test.op in (">", ">=")
 

@@ -24,6 +24,7 @@ from calcreport.calculate.model import (
     WorkedCheck,
     WorkedGives,
     WorkedUnknown,
+    row_cells,
 )
 from calcreport.core.expression import Binary, Call, Compare, Condition, Expression, Logic, Name, Node, Number
 from calcreport.core.units import NONE, ONE, Unit
@@ -140,10 +141,9 @@ def linked_values(worked: Worked) -> dict[tuple[int, Key], LinkedValue]:
             case GivenValue(_, LinkedValue() as link):
                 found[owner.slot, ()] = link
             case GivenRows():
-                for row, cells in enumerate(value.cells):
-                    for column, cell in zip(owner.columns, cells, strict=False):
-                        if isinstance(cell.value, LinkedValue):
-                            found[column.slot, (row,)] = cell.value
+                for column, key, cell in row_cells(owner, value):
+                    if isinstance(cell.value, LinkedValue):
+                        found[column.slot, key] = cell.value
             case GivenPairs():
                 names = [worked.values.names[index].get((), ()) for index in owner.over]
                 for row_names, cell in value.cells:
@@ -162,8 +162,12 @@ def reversed_sign(test: Compare) -> str:
     return found.op
 
 
-def ratio_figure(ratio: float) -> Figure:
-    """Return a ratio with three decimals, more where it would read 1.000 without being 1."""
+def ratio_figure(ratio: float, *, ok: bool = False) -> Figure:
+    """Return a ratio with three decimals, more where it would read 1.000 without being 1.
+
+    A limit met to the last bits was decided exactly: where it is OK, it reads 1.000.
+    """
+    ratio = 1.0 if ok and abs(ratio - 1.0) <= 1e-9 else ratio
     places = 3
     while places < 12 and rounded(ratio, places) == 1.0 and ratio != 1.0:
         places += 1

@@ -99,7 +99,8 @@ def cover(project: WorkedProject, result: tuple[Words, ...], loud: bool) -> Cove
     calculations = [worked.calculation for worked in project.calculations]
     groups: dict[str, list[str]] = {}
     for calculation in calculations:
-        groups.setdefault(calculation.template.title, []).append(calculation.mark)
+        count = f" ({len(calculation.members)} members)" if calculation.members else ""
+        groups.setdefault(calculation.template.title, []).append(calculation.mark + count)
     scope = tuple((" ".join(marks), title) for title, marks in groups.items())
     basis = [f"{name}: {code}" for name, code in facts.codes]
     basis[0] += ", no local amendments listed" if facts.amendments == "none" else f", amendments: {facts.amendments}"

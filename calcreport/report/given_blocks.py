@@ -13,6 +13,7 @@ from calcreport.calculate.model import (
     LinkedValue,
     PlannedGiven,
     ValueOrigin,
+    singles,
 )
 from calcreport.core.quantity import Amount
 from calcreport.core.units import NONE
@@ -36,6 +37,7 @@ from calcreport.report.model import (
 from calcreport.report.notation import (
     relation,
 )
+from calcreport.report.script import is_single
 from calcreport.report.told import Told
 
 
@@ -125,7 +127,7 @@ class GivenBlocks:
     def lane(self, value: GivenRows | GivenPairs) -> SourceLane:
         """Return the source lane of rows: a table, or the lines of another calculation that gave them."""
         if isinstance(value, GivenRows) and value.linked is not None:
-            links = [cell.value for row in value.cells for cell in row if isinstance(cell.value, LinkedValue)]
+            links = [cell.value for cell in singles((value,)) if isinstance(cell.value, LinkedValue)]
             script = self.told.scripts[value.linked.mark]
             lines = {script.line_of.get(link_place(link, script.worked), 0) for link in links}
             anchors = [f"{value.linked.mark}.{number}" for number in sorted(lines)]
@@ -140,25 +142,44 @@ class GivenBlocks:
 
     def given_table(self, item: SayRows) -> Block:
         """Return a set of given rows, or a value over pairs, as a table."""
+        if item.within is not None:
+            return self.inner_table(item, item.within)
         planned, value = item.given, self.given[item.given.given.name]
         if isinstance(value, GivenPairs):
             return self.pair_table(item, planned, value)
         assert isinstance(value, GivenRows)
         if not planned.columns:
             return self.names_only(item, planned, value)
-        if len(value.names) == 1:
+        if len(value.names) == 1 and not any(column.rows >= 0 for column in planned.columns):
             return self.single_row(item, planned, value)
-        columns = [Column((planned.given.name,))]
-        slots: list[int] = []
+        #: what follows a row's own number in the key: the one row of a set that each member has for itself
+        shown: list[tuple[int, Key]] = []
         for column in planned.columns:
-            slots += [column.slot, *column.outputs]
-        columns += [self.told.column(slot) for slot in slots]
+            if column.rows < 0:
+                shown += [(slot, ()) for slot in (column.slot, *column.outputs)]
+            elif is_single(column, self.told.worked):
+                shown += [(slot, (0,)) for inner in column.columns for slot in (inner.slot, *inner.outputs)]
+        columns = (Column((planned.given.name,)), *(self.told.column(slot) for slot, _ in shown))
         rows = tuple(
-            TableRow(((row_words(name),), *(self.told.cell(slot, (row,)) for slot in slots)))
+            TableRow(((row_words(name),), *(self.told.cell(slot, (row, *inner)) for slot, inner in shown)))
             for row, name in enumerate(value.names)
         )
         words = (planned.given.says or planned.given.name,)
-        return Table(tuple(columns), rows, words, item.number, self.told.anchor(item.number), self.lane(value))
+        return Table(columns, rows, words, item.number, self.told.anchor(item.number), self.lane(value))
+
+    def inner_table(self, item: SayRows, within: PlannedGiven) -> Block:
+        """Return the sets that members have for themselves as one table, a member's rows after another's."""
+        planned, value = item.given, self.given[within.given.name]
+        assert isinstance(value, GivenRows)
+        slots = [slot for column in planned.columns for slot in (column.slot, *column.outputs)]
+        columns = (Column((within.given.name,)), Column((planned.given.name,)), *map(self.told.column, slots))
+        rows = []
+        for member, mark in enumerate(value.names):
+            for row, name in enumerate(self.told.values.names[planned.rows].get((member,), ())):
+                cells = (self.told.cell(slot, (member, row)) for slot in slots)
+                rows.append(TableRow(((row_words(mark) if row == 0 else "",), (row_words(name),), *cells)))
+        words = (planned.given.says or planned.given.name,)
+        return Table(columns, tuple(rows), words, item.number, self.told.anchor(item.number), self.lane(value))
 
     def names_only(self, item: SayRows, planned: PlannedGiven, value: GivenRows) -> Block:
         """Return a set that has no columns: its row names in one line."""

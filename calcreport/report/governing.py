@@ -5,14 +5,14 @@ A worked calculation in, its checks ranked out.
 
 from __future__ import annotations
 
-from calcreport.calculate.model import Worked, WorkedCheck
-from calcreport.report.script import severity
+from calcreport.calculate.model import Member, Worked, WorkedCheck
+from calcreport.report.below import severity
 
 
-def worst_checks(worked: Worked) -> tuple[WorkedCheck, ...]:
+def worst_checks(owner: Worked | Member) -> tuple[WorkedCheck, ...]:
     """Return one check of each name, its worst row, in page order."""
     found: dict[str, WorkedCheck] = {}
-    for check in worked.checks:
+    for check in owner.checks:
         before = found.get(check.line.name)
         if before is None or rank(check) > rank(before):
             found[check.line.name] = check
@@ -25,7 +25,7 @@ def rank(check: WorkedCheck) -> tuple[int, float]:
     return order[check.verdict], severity(check)
 
 
-def governing(worked: Worked) -> WorkedCheck | None:
-    """Return the check that governs a calculation."""
-    judged = [check for check in worst_checks(worked) if check.verdict != "not applicable"]
+def governing(owner: Worked | Member) -> WorkedCheck | None:
+    """Return the check that governs a calculation or a member."""
+    judged = [check for check in worst_checks(owner) if check.verdict != "not applicable"]
     return max(judged, key=rank, default=None)

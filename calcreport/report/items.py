@@ -43,10 +43,11 @@ class SayNone:
 
 @dataclass(frozen=True, slots=True)
 class SayRows:
-    """A set of given rows as a table."""
+    """A set of given rows as a table; `within` is the set of members each of which has such a set for itself."""
 
     number: int
     given: PlannedGiven
+    within: PlannedGiven | None = None
 
 
 @dataclass(frozen=True, slots=True)
@@ -165,10 +166,10 @@ class SayFigure:
 
 @dataclass(frozen=True, slots=True)
 class SayStop:
-    """Where the calculation stopped, and the checks it did not reach, each with its line number."""
+    """Where the calculation stopped, and the checks it did not reach, each with its line number and its rows."""
 
     stop: Stop
-    left: tuple[tuple[int, WorkedCheck], ...]
+    left: tuple[tuple[int, tuple[WorkedCheck, ...]], ...]
 
 
 Item: TypeAlias = (

@@ -15,6 +15,8 @@ from calcreport.calculate.model import (
     GivenRows,
     GivenValue,
     Key,
+    Member,
+    PlannedGiven,
     Worked,
     WorkedBranches,
     WorkedEach,
@@ -44,25 +46,32 @@ class Taken:
     value: GivenValue
 
 
-def taken(worked: Worked) -> Iterator[Taken]:
-    """Return every single value given, those in rows too."""
+def taken(member: Member) -> Iterator[Taken]:
+    """Return every single value given to a member, those in rows too."""
+    worked = member.worked
     for planned in worked.plan.givens:
         value = next(v for v in worked.calculation.given if v.given.name == planned.given.name)
-        if isinstance(value, GivenValue):
-            yield Taken(value.given.name, planned.slot, (), value)
-        elif isinstance(value, GivenRows):
-            slots = {column.given.name: column.slot for column in planned.columns}
-            for row, (name, cells) in enumerate(zip(value.names, value.cells, strict=True)):
-                for cell in cells:
-                    path = f"{value.given.name}.{name}.{cell.given.name}"
-                    yield Taken(path, slots[cell.given.name], (row,), cell)
-        elif isinstance(value, GivenPairs):
-            continue
+        if planned.rows >= 0 and planned.rows == member.place[0] and isinstance(value, GivenRows):
+            row = member.place[1]
+            for column, cell in zip(planned.columns, value.cells[row], strict=True):
+                yield from _taken(column, cell, (row,), "")
+        elif not isinstance(value, GivenPairs):
+            yield from _taken(planned, value, (), "")
 
 
-def callouts(worked: Worked) -> tuple[tuple[str, BarCallout], ...]:
+def _taken(planned: PlannedGiven, value: GivenValue | GivenRows, key: Key, path: str) -> Iterator[Taken]:
+    here = f"{path}.{value.given.name}".lstrip(".")
+    if isinstance(value, GivenValue):
+        yield Taken(here, planned.slot, key, value)
+        return
+    for row, (name, cells) in enumerate(zip(value.names, value.cells, strict=True)):
+        for column, cell in zip(planned.columns, cells, strict=True):
+            yield from _taken(column, cell, (*key, row), f"{here}.{name}")
+
+
+def callouts(member: Member) -> tuple[tuple[str, BarCallout], ...]:
     """Return the bars of a member, each with what it is called."""
-    found = [(one.path, one.value.value) for one in taken(worked)]
+    found = [(one.path, one.value.value) for one in taken(member)]
     bars = [(path, value) for path, value in found if isinstance(value, BarCallout)]
     return tuple((_label(path, [other for other, _ in bars]), value) for path, value in bars)
 
@@ -74,29 +83,33 @@ def _label(path: str, paths: list[str]) -> str:
     return (stem if stem and alone else path).replace(".", " ") if column else path
 
 
-def sizes(worked: Worked) -> tuple[Taken, ...]:
+def sizes(member: Member) -> tuple[Taken, ...]:
     """Return the lengths given that stand in the result line, in its order."""
     lengths = {
         one.slot: one
-        for one in taken(worked)
-        if not one.key and one.value.given.symbol and one.value.given.symbol.unit
+        for one in taken(member)
+        if "." not in one.path and one.value.given.symbol and one.value.given.symbol.unit
         and one.value.given.symbol.unit.dimension == LENGTH and one.value.origin.kind != "none"
     }  # fmt: skip
-    pieces = [piece for line in result_lines(worked.lines) for piece in line.line.pieces if isinstance(piece, int)]
+    pieces = [piece for line in result_lines(member) for piece in line.line.pieces if isinstance(piece, int)]
     return tuple(lengths[slot] for slot in dict.fromkeys(pieces) if slot in lengths)
 
 
-def result_lines(lines: tuple[WorkedLine, ...]) -> Iterator[WorkedText]:
-    """Return the result lines that were reached, those of parts left aside."""
+def result_lines(member: Member) -> Iterator[WorkedText]:
+    """Return the result lines that a member reached, those of parts left aside."""
+    return (line for line in _result_lines(member.worked.lines) if member.owns(line.open))
+
+
+def _result_lines(lines: tuple[WorkedLine, ...]) -> Iterator[WorkedText]:
     for line in lines:
         match line:
             case WorkedText() if line.line.kind == "use":
                 yield line
             case WorkedBranches():
-                yield from result_lines(line.lines)
+                yield from _result_lines(line.lines)
             case WorkedEach():
                 for row in line.rows:
-                    yield from result_lines(row)
+                    yield from _result_lines(row)
             case _:
                 pass
 
@@ -117,22 +130,23 @@ def typed(one: Taken, worked: Worked) -> str:
 
 def members(project: WorkedProject, forms: dict[str, CalculationForms]) -> tuple[tuple[str, ...], ...]:
     """Return a row a member under `HEADINGS`."""
-    return tuple(_row(w, forms[w.calculation.mark]) for w in project.calculations if callouts(w) or sizes(w))
+    found = (member for worked in project.calculations for member in worked.members)
+    return tuple(_row(m, forms[m.worked.calculation.mark]) for m in found if callouts(m) or sizes(m))
 
 
-def _row(worked: Worked, forms: CalculationForms) -> tuple[str, ...]:
-    check = governing(worked)
+def _row(member: Member, forms: CalculationForms) -> tuple[str, ...]:
+    worked, check = member.worked, governing(member)
     figure = forms.ratio(check) if check is not None else None
     return (
-        worked.calculation.mark,
+        member.mark,
         worked.calculation.title,
-        " × ".join(typed(one, worked) for one in sizes(worked)),
-        "; ".join(f"{label}: {callout.text}" for label, callout in callouts(worked)),
+        " × ".join(typed(one, worked) for one in sizes(member)),
+        "; ".join(f"{label}: {callout.text}" for label, callout in callouts(member)),
         check.line.name if check is not None else "",
         number_text(figure) if figure is not None else "",
-        worked.verdict,
-        " ".join(_words(line, worked, forms) for line in result_lines(worked.lines))
-        or (f"stopped: {worked.stop.words}" if worked.stop else ""),
+        member.verdict,
+        " ".join(_words(line, worked, forms) for line in result_lines(member))
+        or (f"stopped: {worked.stop.told}" if worked.stop else ""),
     )
 
 

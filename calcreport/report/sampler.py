@@ -11,6 +11,7 @@ from dataclasses import dataclass, replace
 from calcreport.calculate.model import Margin, WorkedCheck, WorkedGives, WorkedProject
 from calcreport.core.expression import names
 from calcreport.core.units import ONE
+from calcreport.report.below import severity
 from calcreport.report.calculation import Composer
 from calcreport.report.compose import Composed, title_facts
 from calcreport.report.digits import Figure, make_figure, rounded
@@ -37,7 +38,6 @@ from calcreport.report.model import (
 )
 from calcreport.report.notation import Notation, show_figure
 from calcreport.report.premises import Premises
-from calcreport.report.script import severity
 from calcreport.report.told import SymbolForms, Told
 
 MARK, TITLE = "SAMPLER", "Reviewer's sampler"
@@ -176,7 +176,7 @@ class _Sampler:
             found.append(self.lead(mark, item.number, item.worked.line.name))
             composer = self.composer(mark)
             found += [self.own(composer.line(line)) for line in self.leading(mark, item)]
-            found.append(self.own(composer.check(item)))
+            found.append(self.own(composer.checks.check(item)))
         return found
 
     def leading(self, mark: str, item: SayCheck) -> list[SayLine]:

@@ -6,7 +6,6 @@ digits nor formulas.
 
 from __future__ import annotations
 
-import math
 from dataclasses import dataclass, field
 
 from calcreport.calculate.model import (
@@ -26,7 +25,7 @@ from calcreport.calculate.model import (
     WorkedText,
     WorkedUnknown,
 )
-from calcreport.report.below import checks_below, figures_below, gives_below, unknowns_below
+from calcreport.report.below import checks_below, figures_below, gives_below, severity, unknowns_below
 from calcreport.report.items import (
     Item,
     SayBranch,
@@ -72,9 +71,12 @@ def write_script(worked: Worked) -> Script:
         writer.items.append(SayChoice(writer.next(), worked.selection))
     _lines(writer, worked.lines)
     if worked.stop is not None:
-        unreached = (check for check in worked.checks if check.verdict == "not evaluated")
-        left = tuple((writer.next(), check) for check in unreached)
-        writer.check_line.update((id(check), number) for number, check in left)
+        unreached: dict[str, list[WorkedCheck]] = {}
+        for check in worked.checks:
+            if check.verdict == "not evaluated":
+                unreached.setdefault(check.line.name, []).append(check)
+        left = tuple((writer.next(), tuple(checks)) for checks in unreached.values())
+        writer.check_line.update((id(check), number) for number, checks in left for check in checks)
         writer.items.append(SayStop(worked.stop, left))
     return Script(worked, tuple(writer.items), writer.line_of, writer.check_line)
 
@@ -108,12 +110,28 @@ def _givens(writer: _Writer) -> None:
 def _given_table(writer: _Writer, given: PlannedGiven) -> None:
     number = writer.next()
     writer.items.append(SayRows(number, given))
-    values = writer.worked.values
     columns = given.columns if given.rows >= 0 else (given,)
     for column in columns:
-        for slot in (column.slot, *column.outputs):
-            for key in values.rows[slot]:
-                writer.line_of[slot, key] = number
+        if column.rows < 0:
+            _number_column(writer, column, number)
+            continue
+        alone = is_single(column, writer.worked)
+        own = number if alone else writer.next()
+        if not alone:
+            writer.items.append(SayRows(own, column, given))
+        for inner in column.columns:
+            _number_column(writer, inner, own)
+
+
+def _number_column(writer: _Writer, column: PlannedGiven, number: int) -> None:
+    for slot in (column.slot, *column.outputs):
+        for key in writer.worked.values.rows[slot]:
+            writer.line_of[slot, key] = number
+
+
+def is_single(column: PlannedGiven, worked: Worked) -> bool:
+    """Tell whether every member has one row of a set, so that the table of members can show it."""
+    return all(len(names) == 1 for names in worked.values.names[column.rows].values())
 
 
 def _lines(writer: _Writer, lines: tuple[WorkedLine, ...]) -> None:
@@ -203,17 +221,11 @@ def _worst(lines: tuple[WorkedLine, ...]) -> tuple[bool, float]:
     return failed, max((severity(check) for check in checks), default=-1.0)
 
 
-def severity(check: WorkedCheck) -> float:
-    """Return a check's ratio for ranking; one that fails without a ratio outranks any ratio."""
-    if check.ratio is not None:
-        return check.ratio
-    return math.inf if check.verdict == "NG" else -1.0
-
-
 def _rows_in_full(writer: _Writer, each: WorkedEach, name: str, rows: range | list[int]) -> None:
+    governs = ", which governs" if len(rows) < len(each.rows) else ""
     for row in rows:
         if len(each.rows) > 1:
-            writer.items.append(SayHeading(f"{name} {each.names[row]}", 3))
+            writer.items.append(SayHeading(f"{name} {each.names[row]}{governs}", 3))
         _lines(writer, each.rows[row])
 
 

@@ -8,7 +8,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
-from calcreport.calculate.model import Comparison, Worked, WorkedCheck, WorkedProject
+from calcreport.calculate.model import Comparison, Member, Worked, WorkedCheck, WorkedProject
 from calcreport.core.units import ONE
 from calcreport.report.candidates import headlines
 from calcreport.report.digits import number_text
@@ -20,7 +20,6 @@ from calcreport.report.items import Script
 from calcreport.report.model import (
     Block,
     Column,
-    Emphasis,
     Formula,
     Heading,
     Paragraph,
@@ -48,15 +47,20 @@ class Summary:
     open_assumptions: int
 
 
+def members_of(project: WorkedProject) -> tuple[Member, ...]:
+    """Return every member of the package, in order."""
+    return tuple(member for worked in project.calculations for member in worked.members)
+
+
 def summarise(project: WorkedProject, entries: tuple[RegisterEntry, ...]) -> Summary:
     """Return the counts."""
     failed, pending, checks = [], 0, 0
-    for worked in project.calculations:
-        for check in worst_checks(worked):
+    for member in members_of(project):
+        for check in worst_checks(member):
             checks += check.verdict != "not applicable"
             pending += check.verdict == "not evaluated"
             if check.verdict == "NG":
-                failed.append((worked.calculation.mark, check.line.name))
+                failed.append((member.mark, check.line.name))
     open_count = sum(entry.state.startswith("to be") for entry in entries)
     return Summary(len(project.calculations), checks, tuple(failed), pending, not_covered(project), open_count)
 
@@ -129,25 +133,16 @@ class SummarySheets:
     def attention(self, summary: Summary, entries: tuple[RegisterEntry, ...]) -> list[Block]:
         """Return what needs eyes: NG, not evaluated, not covered, unverified."""
         rows: list[TableRow] = []
-        for worked in self.project.calculations:
-            mark = worked.calculation.mark
-            for check in worst_checks(worked):
+        for member in members_of(self.project):
+            mark = member.worked.calculation.mark
+            for check in worst_checks(member):
                 if check.verdict in ("NG", "not evaluated"):
                     words = self.sides(check, mark) if check.verdict == "NG" else f"not evaluated: {check.reason}"
-                    said = dispositions(self.project, mark, check.line.name)
+                    said = dispositions(self.project, member.mark, check.line.name)
                     words += f". Engineer's disposition: {' '.join(said)}" if said else ""
-                    rows.append(
-                        TableRow(
-                            (
-                                (mark,),
-                                (check.line.name,),
-                                (words,),
-                                (self.ratio(check, mark),),
-                                self.place(check, mark),
-                            ),
-                            "loud",
-                        )
-                    )
+                    ratio, where = self.ratio(check, mark), self.place(check, mark)
+                    cells = ((member.mark,), (check.line.name,), (words,), (ratio,), where)
+                    rows.append(TableRow(cells, "loud"))
         for mark, words in headlines(self.project.calculations):
             rows.append(TableRow(((mark,), ("selection",), (words,), ("",), (mark,)), "loud"))
         for entry in entries:
@@ -170,33 +165,22 @@ class SummarySheets:
         return [Heading("Needs attention", 2), Table(columns, tuple(rows))]
 
     def members(self) -> list[Block]:
-        """Return a row a calculation with its governing check, highest ratio first."""
+        """Return a row a member with its governing check, highest ratio first."""
         ranked = sorted(
-            self.project.calculations, key=lambda w: rank(g) if (g := governing(w)) else (0, -1.0), reverse=True
+            members_of(self.project), key=lambda m: rank(g) if (g := governing(m)) else (0, -1.0), reverse=True
         )
         rows: list[TableRow] = []
         silent: list[str] = []
-        for worked in ranked:
-            mark, check = worked.calculation.mark, governing(worked)
+        for member in ranked:
+            mark, check = member.worked.calculation.mark, governing(member)
             if check is None:
-                silent.append(mark)
+                silent.append(member.mark)
                 continue
             demand, capacity = self.demand(check, mark)
-            emphasis: Emphasis = "loud" if check.verdict == "NG" else ""
-            rows.append(
-                TableRow(
-                    (
-                        (mark,),
-                        (worked.calculation.title,),
-                        (check.line.name,),
-                        (demand,),
-                        (capacity,),
-                        (self.ratio(check, mark) + (" NG" if check.verdict == "NG" else ""),),
-                        self.place(check, mark),
-                    ),
-                    emphasis,
-                )
-            )
+            ratio = self.ratio(check, mark) + (" NG" if check.verdict == "NG" else "")
+            title, where = member.worked.calculation.title, self.place(check, mark)
+            cells = ((member.mark,), (title,), (check.line.name,), (demand,), (capacity,), (ratio,), where)
+            rows.append(TableRow(cells, "loud" if check.verdict == "NG" else ""))
         columns = (
             Column(("Mark",)),
             Column(("Calculation",), stretch=1.4),
@@ -206,7 +190,7 @@ class SummarySheets:
             Column(("Ratio",), "right"),
             Column(("Where",)),
         )
-        blocks: list[Block] = [Heading("Governing check of every calculation", 2), Table(columns, tuple(rows))]
+        blocks: list[Block] = [Heading("Governing check of every member", 2), Table(columns, tuple(rows))]
         if silent:
             blocks.append(
                 Paragraph((f"Without checks of their own, giving values to others: {', '.join(silent)}.",), "note")
@@ -216,14 +200,14 @@ class SummarySheets:
     def grid(self) -> list[Block]:
         """Return every check of every calculation by template, and who covers what a template leaves out."""
         blocks: list[Block] = []
-        groups: dict[str, list[Worked]] = {}
-        for worked in self.project.calculations:
-            if worked.checks:
-                groups.setdefault(worked.calculation.template.title, []).append(worked)
+        groups: dict[str, list[Member]] = {}
+        for member in members_of(self.project):
+            if member.checks:
+                groups.setdefault(member.worked.calculation.template.title, []).append(member)
         for title, members in groups.items():
-            names = list(dict.fromkeys(check.line.name for worked in members for check in worst_checks(worked)))
+            names = list(dict.fromkeys(check.line.name for member in members for check in worst_checks(member)))
             notes: dict[Formula, str] = {}
-            rows = [self.grid_row(worked, names, notes) for worked in members]
+            rows = [self.grid_row(member, names, notes) for member in members]
             blocks.append(Heading(title, 2))
             blocks.append(Table((Column(("Mark",)), *(Column((name,), "right", 1.0) for name in names)), tuple(rows)))
             for condition, note in notes.items():
@@ -235,10 +219,10 @@ class SummarySheets:
             blocks.append(Table((Column(("Limit state",)), Column(("Covered by",), stretch=1.0)), tuple(rows)))
         return blocks
 
-    def grid_row(self, worked: Worked, names: list[str], notes: dict[Formula, str]) -> TableRow:
-        mark, chief = worked.calculation.mark, governing(worked)
-        cells: list[Words] = [(mark,)]
-        by_name = {check.line.name: check for check in worst_checks(worked)}
+    def grid_row(self, member: Member, names: list[str], notes: dict[Formula, str]) -> TableRow:
+        mark, chief = member.worked.calculation.mark, governing(member)
+        cells: list[Words] = [(member.mark,)]
+        by_name = {check.line.name: check for check in worst_checks(member)}
         for name in names:
             check = by_name.get(name)
             if check is None:
@@ -251,9 +235,9 @@ class SummarySheets:
                 cells.append((Strong(text),))
             else:
                 cells.append(
-                    (text if check.verdict != "not applicable" else self.not_applicable(worked, check, notes),)
+                    (text if check.verdict != "not applicable" else self.not_applicable(member.worked, check, notes),)
                 )
-        return TableRow(tuple(cells), "loud" if worked.verdict == "NG" else "")
+        return TableRow(tuple(cells), "loud" if member.verdict == "NG" else "")
 
     def not_applicable(self, worked: Worked, check: WorkedCheck, notes: dict[Formula, str]) -> str:
         """Return the mark of the note that says why a check is not applicable."""
@@ -306,15 +290,14 @@ def summary_lines(project: WorkedProject, forms: dict[str, CalculationForms], su
     """Return the check summary as a terminal shows it: a line a calculation, then the counts."""
     lines = []
     lines += [f"{mark:<8} selection: {words}" for mark, words in headlines(project.calculations)]
-    for worked in project.calculations:
-        check = governing(worked)
-        mark = worked.calculation.mark
+    for member in members_of(project):
+        check, title = governing(member), member.worked.calculation.title
         if check is None:
-            lines.append(f"{mark:<8} {'':>8}      {worked.calculation.title}")
+            lines.append(f"{member.mark:<8} {'':>8}      {title}")
             continue
-        figure = forms[mark].ratio(check)
+        figure = forms[member.worked.calculation.mark].ratio(check)
         ratio = number_text(figure) if figure else ""
-        lines.append(f"{mark:<8} {ratio:>8}  {check.verdict:<3} {worked.calculation.title}: {check.line.name}")
+        lines.append(f"{member.mark:<8} {ratio:>8}  {check.verdict:<3} {title}: {check.line.name}")
     lines.append(
         f"{counted(summary.checks, 'check')}: {len(summary.failed)} NG, {summary.not_evaluated} not evaluated; "
         f"{counted(len(summary.not_covered), 'limit state')} not covered, "

@@ -5,7 +5,7 @@ Scripts and forms in, lines of text out.
 
 from __future__ import annotations
 
-from calcreport.calculate.model import GivenPairs, GivenRows, GivenValue, Key, LinkedValue
+from calcreport.calculate.model import GivenPairs, GivenRows, GivenValue, Key, LinkedValue, row_cells
 from calcreport.core.expression import Name, Node, Over, children
 from calcreport.report.digits import number_text
 from calcreport.report.forms import CalculationForms, link_place, linked_values
@@ -16,15 +16,10 @@ DEEPEST, LONGEST = 40, 400
 
 
 def trace_lines(
-    mark: str, symbol: str, scripts: dict[str, Script], forms: dict[str, CalculationForms]
+    mark: str, slot: int, key: Key, scripts: dict[str, Script], forms: dict[str, CalculationForms]
 ) -> tuple[str, ...]:
-    """Return the tree of `MARK.SYMBOL`; a value with rows is traced for its first row."""
+    """Return the tree of one value of a calculation, by its slot and the key of its row."""
     tracer = _Tracer(scripts, forms)
-    slot = scripts[mark].worked.plan.by_path[symbol]
-    values = scripts[mark].worked.values
-    key = next(iter(values.rows[slot]), None) if values.sets[slot] else ()
-    if key is None or values.get(slot, key) is None:
-        return ()
     tracer.value(mark, slot, key, "", "")
     return tuple(tracer.lines[:LONGEST]) + (("…",) if len(tracer.lines) > LONGEST else ())
 
@@ -97,18 +92,27 @@ class _Tracer:
         return text if unit is None or unit.text == "1" else f"{text} {unit.text}"
 
     def origin(self, mark: str, slot: int, key: Key) -> str:
-        worked = self.scripts[mark].worked
         link = self.links(mark).get((slot, key))
         if link is not None:
             return f"[line {link.mark}.{link.path}]"
+        given = self.given(mark, slot, key)
+        return f"[{given.origin.kind} {given.origin.words}]".replace(" ]", "]") if given is not None else ""
+
+    def given(self, mark: str, slot: int, key: Key) -> GivenValue | None:
+        """Return what the project gave for a slot, or for the callout it is read off."""
+        worked = self.scripts[mark].worked
         for given, planned in zip(worked.calculation.given, worked.plan.givens, strict=True):
             match given:
                 case GivenValue() if slot in (planned.slot, *planned.outputs):
-                    return f"[{given.origin.kind} {given.origin.words}]".replace(" ]", "]")
-                case GivenRows() | GivenPairs() if slot == planned.slot or any(
-                    slot in (c.slot, *c.outputs) for c in planned.columns
-                ):
-                    return f"[{given.origin.kind} {given.origin.words}]".replace(" ]", "]")
+                    return given
+                case GivenRows():
+                    for column, place, cell in row_cells(planned, given):
+                        if place == key and slot in (column.slot, *column.outputs):
+                            return cell
+                case GivenPairs() if slot == planned.slot:
+                    names = [worked.values.names[index].get((), ()) for index in planned.over]
+                    row = tuple(known[place] for known, place in zip(names, key, strict=True))
+                    return dict(given.cells).get(row)
                 case _:
                     pass
-        return ""
+        return None

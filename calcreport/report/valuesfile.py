@@ -33,7 +33,7 @@ def values_file(
             "sheets": sheets.get(mark, 0),
             "fingerprint": worked.fingerprint,
             "verdict": worked.verdict,
-            "stopped": worked.stop.words if worked.stop else None,
+            "stopped": worked.stop.told if worked.stop else None,
             "lines": _lines(scripts[mark], forms[mark]),
             "checks": [_check(check, scripts[mark], forms[mark]) for check in worked.checks],
         }
@@ -127,7 +127,7 @@ def _selection(selection: Selection) -> dict[str, Any]:
             "verdict": one.worked.verdict,
             "governing": check.line.name if check else None,
             "ratio": check.ratio if check else None,
-            "stopped": one.worked.stop.words if one.worked.stop else None,
+            "stopped": one.worked.stop.told if one.worked.stop else None,
         })  # fmt: skip
     return {
         "candidates": len(selection.candidates),
@@ -174,7 +174,7 @@ def values_text(project: WorkedProject) -> list[str]:
             ratio = f"{check.ratio:.4f}" if check.ratio is not None else ""
             lines.append(f"  check {check.line.name:<34} {ratio:>9} {check.verdict}")
         if worked.stop:
-            lines.append(f"  stopped: {worked.stop.words}")
+            lines.append(f"  stopped: {worked.stop.told}")
     return lines
 
 

@@ -10,7 +10,7 @@ from dataclasses import dataclass
 from functools import partial
 from typing import Any
 
-from calcreport.calculate.model import Key, Worked, WorkedProject
+from calcreport.calculate.model import Key, Worked, WorkedProject, row_cells
 from calcreport.core.quantity import Amount
 from calcreport.plan.model import (
     BarCallout,
@@ -105,7 +105,7 @@ def _compare(worked: Worked, again: dict[str, Rework], make: Quantities) -> tupl
     except Stopped as error:
         stopped = str(error)
     if bool(stopped) != bool(worked.stop):
-        found.append(Difference(f"{mark} stop", worked.stop.words if worked.stop else "none", stopped or "none"))
+        found.append(Difference(f"{mark} stop", worked.stop.told if worked.stop else "none", stopped or "none"))
     count, largest, differing = _compare_values(worked, rework)
     found += differing
     judged = [check for check in worked.checks if check.verdict in ("OK", "NG")]
@@ -120,11 +120,15 @@ def _compare(worked: Worked, again: dict[str, Rework], make: Quantities) -> tupl
 def _given_names(worked: Worked, again: dict[str, Rework], index: int) -> list[tuple[Key, tuple[str, ...]]]:
     """Return the row names of a set handed over; sets made on the sheet, here or there, are made again."""
     for planned in worked.plan.givens:
-        if planned.rows == index:
-            value = next(v for v in worked.calculation.given if v.given.name == planned.given.name)
-            if isinstance(value, GivenRows) and value.linked is not None:
+        value = next(v for v in worked.calculation.given if v.given.name == planned.given.name)
+        if isinstance(value, GivenRows) and planned.rows == index:
+            if value.linked is not None:
                 return [((), _linked_names(value.linked, again[value.linked.mark]))]
-            return [((), value.names)] if isinstance(value, GivenRows) else []
+            return [((), value.names)]
+        for place, column in enumerate(planned.columns):
+            if isinstance(value, GivenRows) and column.rows == index:
+                inner = [(row, cells[place]) for row, cells in enumerate(value.cells)]
+                return [((row,), cell.names) for row, cell in inner if isinstance(cell, GivenRows)]
     return []
 
 
@@ -157,10 +161,8 @@ def _hand(worked: Worked, rework: Rework, again: dict[str, Rework], make: Quanti
             case GivenValue():
                 _hand_one(owner, value, (), rework, again, make)
             case GivenRows():
-                columns = {column.given.name: column for column in owner.columns}
-                for row, cells in enumerate(value.cells):
-                    for cell in cells:
-                        _hand_one(columns[cell.given.name], cell, (row,), rework, again, make)
+                for column, key, cell in row_cells(owner, value):
+                    _hand_one(column, cell, key, rework, again, make)
             case GivenPairs():
                 names = [rework.names.get((index, ()), ()) for index in owner.over]
                 for key in _keys([len(n) for n in names]):

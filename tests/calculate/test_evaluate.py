@@ -120,3 +120,24 @@ def test_rounding_to_a_practical_step_keeps_a_multiple(tmp_path: Path) -> None:
     lines = "lines:\n  - {gives: c, formula: 'rounddown(a + b, 0.1 in)', cite: geometry}\n"
     # 0.1 + 0.2 is 0.30000000000000004 in binary and three tenths on paper
     assert number(work_small(tmp_path, SYMBOLS + lines, "{a: 0.1 in, b: 0.2 in}"), "c") == pytest.approx(0.3, rel=1e-12)
+
+
+def test_a_stop_in_a_row_leaves_the_checks_of_later_rows_not_evaluated(tmp_path: Path) -> None:
+    template = """\
+symbols:
+  x: {unit: in, says: a length}
+given: {bar: {rows: {x: }}}
+lines:
+  - each: bar
+    lines:
+      - {require: 'x > 1 in', says: too short, cite: geometry}
+      - {check: long enough, holds: 'x >= 2 in', cite: geometry}
+"""
+    worked = work_small(tmp_path, template, "{bar: [{name: p, x: 3 in}, {name: q, x: 1 in}, {name: r, x: 4 in}]}")
+    assert worked.stop is not None and worked.stop.told == "bar q: requirement not met: too short"
+    assert [(check.open, check.verdict) for check in worked.checks] == [
+        (((0, 0),), "OK"), (((0, 1),), "not evaluated"), (((0, 2),), "not evaluated"),
+    ]  # fmt: skip
+    assert worked.verdict == "not evaluated"
+    # the row worked before it stands on the sheet
+    assert [type(line).__name__ for line in worked.lines] == ["WorkedEach"]

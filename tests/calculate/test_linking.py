@@ -72,7 +72,9 @@ def test_trace_goes_through_to_the_loads(tmp_path: Path) -> None:
     assert isinstance(opened, Opened)
     composed = report(opened.world, opened.source).composed
     assert composed is not None
-    lines = trace_lines("PD1", "r", composed.scripts, composed.forms)
+    slot = composed.scripts["PD1"].worked.plan.by_path["r"]
+    key = next(iter(composed.scripts["PD1"].worked.values.rows[slot]))
+    lines = trace_lines("PD1", slot, key, composed.scripts, composed.forms)
     text = "\n".join(lines)
     assert "P_u = 14 kip  [line LC1.section[foot].combination[1].P_u]" in text
     assert "P_u = 14 kip  = sum(k*P over load)" in text

@@ -203,6 +203,7 @@ def _inline_row(statement: Statement) -> list[InlineRow]:
 
 
 def _row_named(sets: dict[str, list[str]], text: str) -> tuple[str, str] | None:
+    text = text.removesuffix(", which governs")
     for name, rows in sets.items():
         if text.startswith(name + " ") and text[len(name) + 1 :].strip() in rows:
             return name, text[len(name) + 1 :].strip()

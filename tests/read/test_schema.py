@@ -50,7 +50,7 @@ DEFINED = {
     "a case": ("cases", "case"), "an entry `no case`": ("cases", "reason"), "`stops`": ("cases", "stops"), "the expectation of …": ("cases", "expected"),
 }  # fmt: skip
 #: mappings of other files, of a line's own keys, and those whose keys are all the author's
-ELSEWHERE = ("a bar table", "a bar size", "an include", "`where`", "`at`", "`columns`", "…")
+ELSEWHERE = ("a member", "a bar table", "a bar size", "an include", "`where`", "`at`", "`columns`", "…")
 
 
 @cache

@@ -40,7 +40,7 @@ def test_a_calculation_with_bars_is_a_member(tmp_path: Path) -> None:
 
 def test_the_size_is_what_the_result_line_names_in_its_order(tmp_path: Path) -> None:
     one = work_small(tmp_path, TEMPLATE, "{b: 16 in, h: 2 ft, c: 2 in}")
-    assert [size.path for size in sizes(one)] == ["h", "b"]
+    assert [size.path for size in sizes(one.members[0])] == ["h", "b"]
     # by hand: 16*24 = 384
     assert round(number(one, "A"), 9) == 384
 
@@ -48,5 +48,13 @@ def test_the_size_is_what_the_result_line_names_in_its_order(tmp_path: Path) -> 
 def test_every_given_value_has_a_name(tmp_path: Path) -> None:
     found = result(tmp_path, SCHEDULE, beams=TABLE)
     assert found.worked is not None
-    paths = [one.path for one in taken(found.worked.calculations[0])]
+    paths = [one.path for one in taken(found.worked.calculations[0].members[0])]
     assert paths == ["b", "h", "face", "n", "V", "f_c", "steel", "tie", "layer.first.y", "layer.first.A_i"]
+
+
+def test_like_members_on_one_calculation_are_rows_of_their_own(tmp_path: Path) -> None:
+    one = work_small(
+        tmp_path, TEMPLATE, "{c: 2 in}, members: [{mark: T2, b: 16 in, h: 2 ft}, {mark: T3, b: 1 ft, h: 9 in}]"
+    )
+    assert [[size.path for size in sizes(member)] for member in one.members] == [["h", "b"], ["h", "b"]]
+    assert [[one.path for one in taken(member)] for member in one.members] == [["c", "b", "h"]] * 2

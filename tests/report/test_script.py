@@ -32,4 +32,4 @@ def test_checks_a_stop_left_have_numbers_of_their_own(tmp_path: Path) -> None:
     }  # fmt: skip
     last = script.items[-1]
     assert isinstance(last, SayStop)
-    assert [(number, check.line.name) for number, check in last.left] == [(4, "first after"), (5, "second after")]
+    assert [(number, checks[0].line.name) for number, checks in last.left] == [(4, "first after"), (5, "second after")]

@@ -5,7 +5,7 @@ A World and a project's text in; problems and worked values out. `publish` goes 
 
 from __future__ import annotations
 
-from collections.abc import Callable, Iterable
+from collections.abc import Callable
 from dataclasses import dataclass, replace
 from functools import partial
 
@@ -97,24 +97,22 @@ def work(
 def _plans(inputs: Inputs, problems: Problems, kept: Fresh) -> dict[int, Plan]:
     plans: dict[int, Plan] = {}
     templates = {id(c.template): c.template for c in inputs.calculations}.values()
-    for template in sound_templates(templates, problems):
+    for template in templates:
         plan = kept.of("plan", id(template), (template,), partial(make_plan, template, problems))
         if plan is not None:
             plans[id(template)] = plan
     return plans
 
 
-def sound_templates(templates: Iterable[Template], problems: Problems) -> list[Template]:
-    """Return the templates whose files were read without a problem; others would only be misread further."""
-    return [template for template in templates if not problems.stand_in(template.files)]
-
-
 def make_plan(template: Template, problems: Problems) -> Plan | None:
-    """Plan a template: names bound, dimensions held, cited equations proved on request only."""
-    before = problems.met
+    """Plan a template: names bound, dimensions held, cited equations proved on request only.
+
+    A template with a problem in one of its files is looked through all the same, and then has no plan.
+    """
+    sound, before = not problems.stand_in(template.files), problems.met
     plan = link(template, problems)
     hold_dimensions(plan, problems)
-    return supply_closed(plan) if problems.met == before else None
+    return supply_closed(plan) if sound and problems.met == before else None
 
 
 def lint_template(world: World, name: str) -> TemplateReport:
@@ -128,16 +126,18 @@ def lint_template(world: World, name: str) -> TemplateReport:
         for year in (head.years if head else ()) or ("",):
             template = library.template(name, system, tuple(sorted(((code, year), (ANY, "")))), None)
             variants[f"{system} {year}".strip()] = template
-    for template in sound_templates([template for template in variants.values() if template is not None], problems):
+    for template in variants.values():
+        if template is None:
+            continue
         plan = make_plan(template, problems)
         if plan is not None:
             plans[id(template)] = plan
             prove_cited(plan, problems)
-    if problems:
-        return TemplateReport(problems.sorted(), tuple(variants), None, ())
-    holds = {variant: Reachable(plans[id(template)]) for variant, template in variants.items() if template is not None}
-    cases, missed = _run_cases(world, name, library, holds, problems)
-    return TemplateReport(problems.sorted(), tuple(variants), cases, missed)
+    holds = {variant: Reachable(plans[id(template)]) for variant, template in variants.items() if id(template) in plans}
+    # a case file is read beside problems of its template too, and worked where there is a plan
+    sound = not problems
+    cases, missed = _run_cases(world, name, library, holds, problems) if variants else (None, ())
+    return TemplateReport(problems.sorted(), tuple(variants), cases if sound else None, missed if sound else ())
 
 
 def _run_cases(
@@ -151,7 +151,9 @@ def _run_cases(
     reachable = {id(held.plan.template): held for held in holds.values()}
     found: set[Thing] = set()
     for case in file.cases:
-        held = reachable[id(case.calculation.template)]
+        held = reachable.get(id(case.calculation.template))
+        if held is None:
+            continue
         worked = run_case(case, held.plan, problems)
         if worked is not None:
             found |= reached(worked, held)

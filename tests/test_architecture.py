@@ -29,14 +29,14 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
     ("read", (
         "read", "read.bars", "read.bodies", "read.calculations", "read.candidates", "read.cases", "read.codes",
         "read.columns", "read.fields", "read.filled", "read.formulas", "read.gathering", "read.given", "read.library",
-        "read.lines", "read.links", "read.made_rows", "read.malformed", "read.model", "read.nodes", "read.project",
-        "read.project_model", "read.project_schema", "read.row_tables", "read.schedules", "read.shapes",
+        "read.lines", "read.links", "read.lost", "read.made_rows", "read.malformed", "read.model", "read.nodes",
+        "read.project", "read.project_model", "read.project_schema", "read.row_tables", "read.schedules", "read.shapes",
         "read.sheets", "read.single_values", "read.symbols", "read.tables", "read.template_model",
         "read.template_schema", "read.template_tables", "read.together", "read.values", "read.variants", "read.words",
         "read.workbook",
     )),
     ("plan", (
-        "plan", "plan.checks", "plan.closed", "plan.dimensions", "plan.equations", "plan.figures",
+        "plan", "plan.below", "plan.checks", "plan.closed", "plan.dimensions", "plan.equations", "plan.figures",
         "plan.formula_dimensions", "plan.link", "plan.links", "plan.made", "plan.model", "plan.names", "plan.parts",
         "plan.placing", "plan.proofs", "plan.space",
     )),

@@ -7,6 +7,7 @@ and poisons the calculations that stand on it, not the others.
 from __future__ import annotations
 
 import hashlib
+import re
 from collections.abc import Callable
 from dataclasses import replace
 from functools import partial
@@ -228,14 +229,17 @@ def _fits(value: GivenValue, link: LinkedValue, source: Worked, place: tuple[int
 
 def _hold_dispositions(inputs: Inputs, kept: tuple[Worked, ...], problems: Problems) -> None:
     """Hold every word of the engineer against a check or a limit state that is there."""
-    if inputs.poisoned or len(kept) < len(inputs.calculations):
-        return
-    members = (member for w in kept for member in w.members)
+    whole = not inputs.poisoned and len(kept) == len(inputs.calculations)
+    members = tuple(member for w in kept for member in w.members)
+    marks = {mark for w in kept for mark in (w.calculation.mark, *(member.mark for member in w.members))}
     checks = {f"{member.mark}.{check.line.name}" for member in members for check in member.checks}
     states = {state for w in kept for state in w.plan.template.excludes}
     states |= {f"{w.calculation.mark} {state}" for w in kept for state in w.plan.template.excludes}
     for disposition in inputs.project.dispositions:
         name, known = (disposition.check, checks) if disposition.check else (disposition.limit_state, states)
+        # a calculation that was not worked may hold what is named
+        if not whole and re.split(r"[. ]", name, maxsplit=1)[0] not in marks:
+            continue
         if name and name not in known:
             problems.add(
                 "unknown-name",

@@ -216,7 +216,8 @@ class _Parser(Cursor):
             return self.call() if self.after == "(" else self.name()
         if self.accept("("):
             body = self.sum()
-            self.expect(")", "after the bracket")
+            inside = self.text[token.start : self.next.start].rstrip()
+            self.expect(")", "after the bracket", f"it closes the bracket of `{inside[:40]}`")
             return body
         hint = ""
         if token.text in RELATIONS or token.text in ("is", "and", "or", "not", "given"):
@@ -300,6 +301,8 @@ class _Parser(Cursor):
         if not fewest <= len(arguments) <= most:
             wanted = f"{fewest} to {most} values" if most > fewest else f"{fewest} value{'s' if fewest > 1 else ''}"
             hint = f"over the rows of a set, write {token.text}(… over SET)" if token.text in OVER_FUNCTIONS else ""
+            if token.text == "by_units":
+                hint = "one for each unit system, in the order of `units`"
             self.stop(token.start, token.start + span.end - span.start, f"`{token.text}` takes {wanted}",
                       wanted, f"{len(arguments)}", hint)  # fmt: skip
         if token.text == "by_units":

@@ -119,10 +119,10 @@ class Cursor:
             return self.take().text
         return ""
 
-    def expect(self, text: str, why: str) -> None:
+    def expect(self, text: str, why: str, hint: str = "") -> None:
         """Take a token that must stand here."""
         if not self.accept(text):
-            self.stop(self.next.start, self.next.end, f"`{text}` is missing {why}", f"`{text}`", self.found())
+            self.stop(self.next.start, self.next.end, f"`{text}` is missing {why}", f"`{text}`", self.found(), hint)
 
     def found(self) -> str:
         """Return the next token in words."""

@@ -26,9 +26,12 @@ def plan_figure(line: Drawing, names: Names, space: Space, at: Context) -> Plann
         return PlannedFigure(kind.name, (), line.span)
     binder = _Binder(line, takes, names, space, at)
     inputs = []
+    #: inputs that an unknown one seems to mean: they are not missing besides
+    mistaken: set[str] = set()
     for name, formula in line.inputs:
         wanted = takes.get(name.name)
         if wanted is None:
+            mistaken.update(problems.close(name.name, takes))
             problems.add(
                 "unknown-key",
                 name.span,
@@ -37,9 +40,9 @@ def plan_figure(line: Drawing, names: Names, space: Space, at: Context) -> Plann
                 found=name.name[:40],
                 hint=problems.near(name.name, takes),
             )
-        else:
+        elif formula is not None:
             inputs.append(binder.bind(name, formula, wanted))
-    handed = {name.name for name, _ in line.inputs}
+    handed = {name.name for name, _ in line.inputs} | mistaken
     missing = [name for name in needed_inputs(kind.name) if name not in handed]
     if missing:
         problems.add("missing-key", kind.span, f"the figure `{kind.name}` needs more", expected=", ".join(missing),

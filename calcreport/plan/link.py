@@ -6,11 +6,12 @@ and at no dimension (`plan.dimensions` does).
 
 from __future__ import annotations
 
-from collections.abc import Iterator
 from dataclasses import replace
+from fractions import Fraction
 
-from calcreport.core.expression import Name
+from calcreport.core.expression import Name, Number
 from calcreport.core.problems import Problems
+from calcreport.plan.below import given_below
 from calcreport.plan.checks import CheckNames
 from calcreport.plan.equations import balanced
 from calcreport.plan.figures import plan_figure
@@ -39,7 +40,9 @@ from calcreport.plan.parts import PartHander
 from calcreport.plan.placing import needs_paper, once_only
 from calcreport.plan.space import Context, Known, Maker, Space
 from calcreport.read.model import (
+    EVERY,
     Branches,
+    Broken,
     Check,
     Drawing,
     Each,
@@ -61,35 +64,13 @@ def link(template: Template, problems: Problems) -> Plan:
     """Bind a template; where problems were added the plan serves to find more of them, and no calculation."""
     linker = _Linker(problems)
     body = template.body
-    space = Space({}, frozenset(_given_below(body.lines)))
+    space = Space({}, frozenset(given_below(body.lines)), told=set(body.told))
     givens = tuple(linker.given(given, space, ()) for given in body.given)
     lines = linker.lines(body.lines, space, Context())
     linker.hold_gives(body, space)
     covers = tuple(dict.fromkeys([*body.covers, *linker.covers]))
     slots = tuple(linker.maker.slots)
     return Plan(template, slots, tuple(linker.maker.sets), givens, lines, covers, {s.path: s.index for s in slots})
-
-
-def _given_below(lines: tuple[Line, ...]) -> Iterator[str]:
-    """Yield every name that lines of this name space give, at any depth."""
-    for line in lines:
-        match line:
-            case Gives(symbol):
-                yield symbol.name
-            case Branches(arms):
-                for arm in arms:
-                    yield from _given_below(arm.lines)
-            case Each(_, inner):
-                yield from _given_below(inner)
-            case Unknown(symbol):
-                yield symbol.name
-                yield from _given_below(line.lines)
-            case Rows(name, columns):
-                yield name
-                yield from (column.symbol.name for column in columns)
-            case PartUse(PartBody() as body, _, stem):
-                own = [name.name for name in body.gives] or [n.symbol.name for n in body.lines if isinstance(n, Gives)]
-                yield from (f"{stem}.{name}" if stem else name for name in own)
 
 
 class _Linker:
@@ -121,7 +102,7 @@ class _Linker:
     def hold_gives(self, body: PartBody, space: Space) -> None:
         """Hold the names a body says it gives against those its lines give."""
         for name in body.gives:
-            if name.name not in space.names and name.name not in space.told:
+            if name.name not in space.names and not space.is_told(name.name):
                 self.problems.add("unknown-name", name.span, f"no line gives `{name.name[:40]}`",
                                   expected="a name that the lines give in every branch", found=name.name[:40],
                                   hint=self.problems.near(name.name, space.names))  # fmt: skip
@@ -170,6 +151,9 @@ class _Linker:
                 return PlannedRequire(names.condition(condition, space, at), says, cite, span)
             case Drawing():
                 return plan_figure(line, names, space, at)
+            case Broken(lost, inner, span):
+                space.told.update(lost)
+                return PlannedPart("", "", self.lines(inner, space, at), span)
 
     def piece(self, piece: str | Name, space: Space, at: Context) -> str | int:
         if isinstance(piece, str):
@@ -184,7 +168,9 @@ class _Linker:
             when = None if arm.when is None else self.names.condition(arm.when, space, at)
             more = frozenset() if arm.when is None else assured(arm.when, space)
             inner = replace(at, assured=at.assured | more)
-            arms.append(PlannedArm(when, self.names.value(arm.formula, line.symbol, space, inner)))
+            lost = Number(Fraction(0), "0", None, line.span)
+            formula = self.names.value(arm.formula, line.symbol, space, inner) if arm.formula is not None else lost
+            arms.append(PlannedArm(when, formula))
         slot = self.maker.slot(line.symbol, space, at.open, line.name_span)
         cited = None
         if line.as_cited is not None:
@@ -239,8 +225,12 @@ class _Linker:
                 found="a check" if isinstance(unseen, Check) else f"a `{unseen.kind}` line",
                 hint="leave out `show: figure`, or put the line after the block",
             )
+        # what is not known inside may be a column of a set that could not be made out
+        columns = {EVERY} - space.told if index < 0 else set()
+        space.told |= columns
         lines = self.lines(line.lines, space, inner)
         table = tuple(self.table_column(column, space, inner) for column in line.table)
+        space.told -= columns
         return PlannedEach(index, lines, table, line.show, line.span)
 
     def unknown(self, line: Unknown, space: Space, at: Context) -> PlannedLine:
@@ -274,9 +264,10 @@ class _Linker:
     def part(self, line: PartUse, space: Space, at: Context) -> PlannedLine | None:
         body = line.body
         if body is None:
+            space.told.add(f"{line.stem}.{EVERY}" if line.stem else EVERY)
             return None
         self.covers.extend(body.covers)
-        inner = self.parts.inner_space(line, body, space, frozenset(_given_below(body.lines)))
+        inner = self.parts.inner_space(line, body, space, frozenset(given_below(body.lines)))
         seen = set(inner.names)
         handed = self.parts.hand_over(line, body, space, inner, at)
         with self.checks.part(line.name.name, line.name.span):

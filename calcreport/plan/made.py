@@ -96,6 +96,9 @@ class _RowsPlanner:
             elif cell is not None:
                 rows = self.names.sets[over] if over >= 0 else None
                 cells.append(self.mapping(cell.mapped, entry, column, rows))
+            else:
+                # told of already; the cells after it stay under their columns
+                cells.append(())
         pairing = tuple((variable.name, tuple(n.name for n in fits)) for variable, fits in entry.pairing)
         return PlannedEntry(entry.name.name, pairing, tuple(cells), when, entry.span)
 

@@ -27,6 +27,7 @@ from calcreport.core.problems import Problems, listed
 from calcreport.core.source import Span
 from calcreport.plan.model import RowSet, Slot, Symbol
 from calcreport.plan.space import Context, Space
+from calcreport.read.model import EVERY
 
 
 class Names:
@@ -54,7 +55,7 @@ class Names:
                               found="a formula")  # fmt: skip
             return node
         found = space.names.get(node.name)
-        if node.name in symbol.words or node.name in space.told:
+        if node.name in symbol.words or (found is None and space.is_told(node.name)):
             return node
         if isinstance(found, Slot) and found.symbol.kind == "word" and set(found.symbol.words) <= set(symbol.words):
             return self.expression(node, space, at)
@@ -72,7 +73,7 @@ class Names:
         found = space.names.get(name)
         if isinstance(found, RowSet):
             return found.index
-        if name in space.told:
+        if found is None and space.is_told(name):
             return -1
         if isinstance(found, Slot):
             self.problems.add(
@@ -151,15 +152,18 @@ class Names:
     def say_unknown(self, node: Name, space: Space) -> None:
         """Add the problem of a name that is not visible here."""
         name = node.name
-        if name in space.told:
+        if space.is_told(name):
             return
+        # where the mending is one line elsewhere, further uses say nothing new
         if name in space.partial or name in space.siblings:
+            space.told.add(name)
             known = space.partial.get(name) or space.siblings[name]
             self.problems.add("arms-differ", node.span, f"`{name}` is given in some branches only",
                               expected="a name given in every branch of the block above", found=name,
                               hint="use it inside those branches, or give it in the others too",
                               related=((known.span, "given here"),))  # fmt: skip
         elif name in space.later:
+            space.told.add(name)
             self.problems.add(
                 "used-before-given",
                 node.span,
@@ -169,14 +173,18 @@ class Names:
                 hint="the order on the page is the order of work: move the line that gives it up",
             )
         else:
+            hint = self.problems.near(name, space.names)
+            if not hint:
+                space.told.add(name)
             self.problems.add("unknown-name", node.span, f"`{name[:40]}` is not known here",
                               expected="a name given above", found=name[:40],
-                              hint=self.problems.near(name, space.names))  # fmt: skip
+                              hint=hint or "give it: under `given`, or by a line above this one")  # fmt: skip
 
     def hold_open(self, sets: tuple[int, ...], name: str, span: Span, at: Context) -> None:
         """Report a value used where one of its sets is not open."""
         closed = [self.sets[index].name for index in sets if index >= 0 and index not in at.open]
-        if closed:
+        # a set that could not be made out may be the one
+        if closed and -1 not in at.open:
             self.problems.add(
                 "row-leak",
                 span,
@@ -187,12 +195,15 @@ class Names:
 
     def _look_over(self, node: Over, space: Space, at: Context) -> None:
         index = self.set_named(node.rows, node.rows_span, space)
+        inner = replace(at, open=(*at.open, index))
         if index >= 0:
-            inner = replace(at, open=(*at.open, index))
             self.hold_open(self.sets[index].outer, node.rows, node.rows_span, at)
-            self.look(node.body, space, inner)
-            if node.where is not None:
-                self.look(node.where, space, inner)
+        else:
+            # what is not known here may be a column of that set
+            space = replace(space, told={EVERY})
+        self.look(node.body, space, inner)
+        if node.where is not None:
+            self.look(node.where, space, inner)
         if node.otherwise is not None:
             self.look(node.otherwise, space, at)
 

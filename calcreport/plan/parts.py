@@ -31,10 +31,10 @@ class PartHander:
         mark = f"{line.stem}." if line.stem else ""
         siblings = {name.removeprefix(mark): value for name, value in space.siblings.items() if name.startswith(mark)}
         if not body.sees_user:
-            return Space({}, later, space.stem + mark, siblings)
-        return Space(
-            dict(space.names), later | space.later, space.stem + mark, siblings, dict(space.partial), space.told
-        )
+            return Space({}, later, space.stem + mark, siblings, told=set(body.told))
+        space.told |= body.told
+        names = {name: value for name, value in space.names.items() if name not in later}
+        return Space(names, later | space.later, space.stem + mark, siblings, dict(space.partial), space.told)
 
     def hand_over(
         self, line: PartUse, body: PartBody, space: Space, inner: Space, at: Context
@@ -45,13 +45,15 @@ class PartHander:
         for name in line.same:
             given = wanted.get(name.name)
             if given is None:
-                self._say_not_wanted(name, wanted, line)
+                self._say_not_wanted(name, wanted, line, inner)
             else:
                 self._hand_same(given, name, space, inner, at)
         for name, formula in line.handed:
             given = wanted.get(name.name)
             if given is None:
-                self._say_not_wanted(name, wanted, line)
+                self._say_not_wanted(name, wanted, line, inner)
+            elif formula is None:
+                inner.told.add(name.name)
             elif given.symbol is None or given.kind not in ("value", "pairs"):
                 self.problems.add("part-not-handed", name.span, f"`{name.name}` of the part is {_kind(given)}",
                                   expected=f"`same: [{name.name}]`", found="a formula under `with`")  # fmt: skip
@@ -68,7 +70,7 @@ class PartHander:
                 expected=", ".join(missing), found="neither under `same` nor under `with`",
             )  # fmt: skip
         for given in body.given:
-            for inner_name in _all_names(given):
+            for inner_name in given.names():
                 if inner_name not in inner.names:
                     inner.told.add(inner_name)
         return (*lines, *_ranges(line, body, inner, at))
@@ -99,7 +101,7 @@ class PartHander:
     def _hand_columns(self, given: Given, rows: RowSet, name: Name, space: Space, inner: Space) -> bool:
         missing: list[str] = []
         for column in given.columns:
-            for wanted in _all_names(column):
+            for wanted in column.names():
                 found = space.names.get(wanted)
                 if isinstance(found, Slot) and rows.index in found.sets:
                     self._take(wanted, space, inner)
@@ -131,7 +133,11 @@ class PartHander:
         )  # fmt: skip
         return False
 
-    def _say_not_wanted(self, name: Name, wanted: dict[str, Given], line: PartUse) -> None:
+    def _say_not_wanted(self, name: Name, wanted: dict[str, Given], line: PartUse, inner: Space) -> None:
+        """Add `unknown-given`; a given that the name seems to mean is not missing besides."""
+        if inner.is_told(name.name):
+            return
+        inner.told.update(self.problems.close(name.name, wanted))
         self.problems.add("unknown-given", name.span, f"the part `{line.name.name}` takes no `{name.name[:40]}`",
                           expected=listed(wanted), found=name.name[:40],
                           hint=self.problems.near(name.name, wanted))  # fmt: skip
@@ -141,32 +147,31 @@ class PartHander:
         told = {name.name for name in body.gives}
         mark = f"{line.stem}." if line.stem else ""
         space.told |= {mark + name for name in inner.told} if not body.sees_user else set()
+        taken: dict[str, Known] = {}
         for name, value in inner.names.items():
             if name in hidden or (told and name not in told):
                 continue
-            taken = space.names.get(mark + name) or space.partial.get(mark + name)
-            if taken is not None and taken is not value:
-                self.problems.add(
-                    "part-clash",
-                    line.name.span,
-                    f"the part `{line.name.name}` gives `{name}`, which stands already",
-                    expected="names that are free",
-                    found=name,
-                    hint=f"write `as: name`, and use name.{name}",
-                    related=((taken.span, "given here"),),
-                )
+            known = space.names.get(mark + name) or space.partial.get(mark + name)
+            if known is not None and known is not value:
+                taken[name] = known
             else:
                 space.names[mark + name] = value
+        if taken:
+            first, *more = taken
+            also = "" if not more else f", with {len(more)} more"
+            self.problems.add(
+                "part-clash",
+                line.name.span,
+                f"the part `{line.name.name}` gives `{first}`, which stands already{also}",
+                expected="names that are free",
+                found=", ".join(taken),
+                hint=f"write `as: name`, and use name.{first}",
+                related=((taken[first].span, "given here"),),
+            )
 
 
 def _kind(given: Given) -> str:
     return {"rows": "a set", "bars": "a bar callout", "spaced bars": "a bar callout"}.get(given.kind, "a value")
-
-
-def _all_names(given: Given) -> tuple[str, ...]:
-    """Return the names a given brings along: its own, its columns', and those read off callouts."""
-    columns = tuple(name for column in given.columns for name in _all_names(column))
-    return (given.name, *(symbol.name for symbol, _ in given.gives), *columns)
 
 
 def _ranges(line: PartUse, body: PartBody, inner: Space, at: Context) -> Iterator[PlannedRequire]:

@@ -12,6 +12,7 @@ from calcreport.core.problems import Problems
 from calcreport.core.source import Span
 from calcreport.core.units import dimension_words
 from calcreport.plan.model import RowSet, Slot, Symbol
+from calcreport.read.model import EVERY
 
 Known: TypeAlias = Slot | RowSet
 
@@ -30,8 +31,13 @@ class Space:
     siblings: dict[str, Known] = field(default_factory=dict)
     #: given in some arms only of a block further up
     partial: dict[str, Known] = field(default_factory=dict)
-    #: names about which a problem was told
+    #: names about which a problem was told, `stem.*` for all of a part and `*` for all that are not known
     told: set[str] = field(default_factory=set)
+
+    def is_told(self, name: str) -> bool:
+        """Tell whether a name that is not visible here may be the work of a line that could not be read."""
+        stems = [name[:place] for place, sign in enumerate(name) if sign == "."]
+        return bool(self.told) and not self.told.isdisjoint((EVERY, name, *stems, *(f"{s}.{EVERY}" for s in stems)))
 
 
 @dataclass(frozen=True, slots=True)
@@ -67,6 +73,8 @@ class Maker:
 
     def _are_alike(self, sibling: Slot, symbol: Symbol, sets: tuple[int, ...], span: Span) -> bool:
         one, other = sibling.symbol.unit, symbol.unit
+        # a set that could not be made out may be any
+        sets = sibling.sets if -1 in (*sets, *sibling.sets) else sets
         found = dimension_words(other.dimension) if other else "a word"
         expected = dimension_words(one.dimension) if one else "a word"
         if found == expected and sibling.sets != sets:

@@ -121,7 +121,7 @@ def _read_group(text: str, span: Span, table: BarTable, problems: Problems) -> B
     if size is None:
         sizes = [s.name for s in table.sizes]
         problems.add(
-            "unknown-bar", span, f"`{match[2]}` is not a bar of this table",
+            "unknown-bar", span.part(match.start(2), match.end(2)), f"`{match[2]}` is not a bar of this table",
             expected=listed(sizes) + f" ({table.source})", found=match[2], hint=problems.near(match[2], sizes),
         )  # fmt: skip
         return None

@@ -15,8 +15,9 @@ from calcreport.read.fields import Fields, as_mapping
 from calcreport.read.formulas import FormulaReader
 from calcreport.read.given import read_givens
 from calcreport.read.lines import LineReader
+from calcreport.read.lost import lost_givens
 from calcreport.read.made_rows import ReadTable
-from calcreport.read.model import Given, PartBody
+from calcreport.read.model import EVERY, Given, PartBody
 from calcreport.read.nodes import Mapping, Node
 from calcreport.read.symbols import Table, read_symbols
 
@@ -42,6 +43,8 @@ class BodyReader:
     _entries: dict[str, Node] = field(default_factory=dict)
     _read: dict[str, PartBody | None] = field(default_factory=dict)
     _open: list[str] = field(default_factory=list)
+    #: whether `parts` stands there and could not be read
+    _unread: bool = False
 
     def template(self, settled: Mapping, title: str) -> tuple[PartBody, tuple[str, ...]]:
         """Return a template's body and the limit states it leaves out."""
@@ -49,6 +52,7 @@ class BodyReader:
         own = fields.mapping("symbols")
         self.table.update(read_symbols(own, self.problems) if own else {})
         parts = fields.mapping("parts")
+        self._unread = parts is None and fields.node_of("parts") is not None
         self._entries.update({key.text: value for key, value in parts.entries} if parts else {})
         body = self._body(fields, title, sees_user=False)
         for key, _ in parts.entries if parts else ():
@@ -59,7 +63,7 @@ class BodyReader:
     def part(self, name: str, span: Span) -> PartBody | None:
         """Return a part by its name: an entry of this file's `parts`, or another template."""
         if name not in self._entries:
-            return self.read_file(name, span)
+            return None if self._unread else self.read_file(name, span)
         if name in self._open:
             self.problems.add(
                 "part-loop",
@@ -84,6 +88,7 @@ class BodyReader:
         lines = LineReader(formulas, self.document, self.part, self.read_table, self.problems).lines(
             fields.items("lines", required=True)
         )
+        told = lost_givens(fields.node_of("given"), givens) if self.problems else frozenset()
         return PartBody(
             title=title,
             given=givens,
@@ -92,4 +97,5 @@ class BodyReader:
             sees_user=sees_user,
             covers=tuple(s.text for s in fields.texts("covers")) if not sees_user else (),
             span=fields.span,
+            told=frozenset({EVERY}) if "given" in fields.mistaken else told,
         )

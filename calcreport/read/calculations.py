@@ -58,12 +58,15 @@ class CalculationReader:
     def read(self) -> tuple[Calculation, ...]:
         """Return the calculations that had no problem, in written order."""
         found: list[Calculation] = []
+        #: a mark that stands twice still is that of the first
+        whole: set[str] = set()
         for node in self.gathered.calculations:
             before = self.problems.met
             calculation = self.calculation(node)
             if calculation is not None and self.problems.met == before:
                 found.append(calculation)
-            elif isinstance(mark := node.get("mark"), Scalar):
+                whole.add(calculation.mark)
+            elif isinstance(mark := node.get("mark"), Scalar) and mark.text not in whole:
                 self.poisoned.add(mark.text)
         return tuple(found)
 
@@ -157,7 +160,7 @@ class CalculationReader:
         for role in roles:
             scalar = fields.scalar(role)
             if scalar is None:
-                if fields.node_of(role) is not None:
+                if fields.node_of(role) is not None or role in fields.mistaken:
                     found[role] = None
                 continue
             if scalar.text not in known:

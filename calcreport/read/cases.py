@@ -10,9 +10,10 @@ from calcreport.core.problems import Problems
 from calcreport.core.quantity import Amount, read_amount
 from calcreport.core.source import Source
 from calcreport.core.units import dimension_words
+from calcreport.read.calculations import roles_of
 from calcreport.read.fields import Fields, as_items, as_mapping
 from calcreport.read.library import ANY, Library
-from calcreport.read.model import SYSTEMS, Calculation, Case, CaseFile, Expected, Reason, Template
+from calcreport.read.model import EVERY, SYSTEMS, Calculation, Case, CaseFile, Expected, Reason, Template
 from calcreport.read.nodes import Mapping, Node, Scalar, read_tree
 from calcreport.read.single_values import Material
 from calcreport.read.values import ValueReader, is_complete
@@ -66,10 +67,18 @@ class _CaseReader:
         settled = self.settled()
         if settled is None:
             return None
+        materials = self.materials()
+        if "materials" in fields.mistaken:
+            materials = dict.fromkeys(roles_of(settled.body.given))
         reader = ValueReader(
-            self.materials(), self.library.bar_table(self.template, settled.system), self.node.span, self.problems
+            materials, self.library.bar_table(self.template, settled.system), self.node.span, self.problems
         )
+        told = settled.body.told
         given = fields.mapping("given") or Mapping((), self.node.span)
+        if EVERY in told:
+            return None
+        # what the template could not be read to take is no mistake of the case
+        given = Mapping(tuple(entry for entry in given.entries if entry[0].text not in told), given.span)
         values = reader.read(settled.body.given, given, f"the case `{name[:60]}`")
         if self.problems.met > before or not is_complete(values, settled.body.given):
             return None

@@ -168,7 +168,7 @@ def _words(node: Node) -> str:
 
 def say_not_a_word(scalar: Scalar, words: tuple[str, ...], what: str, problems: Problems) -> None:
     """Add `not-a-word` for text outside a closed list."""
-    problems.add("not-a-word", scalar.span, f"{what} is not one of its words",
+    problems.add("not-a-word", scalar.span, f"`{scalar.text[:40]}` is not a word of {what}",
                  expected=listed(words), found=scalar.text[:40] or "nothing",
                  hint=problems.near(scalar.text, words))  # fmt: skip
 

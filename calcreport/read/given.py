@@ -77,6 +77,8 @@ class _Reader:
     def kind(self, fields: Fields) -> Literal["value", "bars", "spaced bars", "rows", "pairs"] | None:
         if fields.has("rows"):
             return "rows"
+        if "rows" in fields.mistaken:
+            return None
         scalar = fields.scalar("kind")
         if scalar is not None and scalar.text in _LATER:
             say_not_yet(scalar, self.problems)
@@ -101,6 +103,8 @@ class _Reader:
             return Symbol(self.key.text, fields.text("shows"), says, "word", None, (), None)
         told = self.key.text in self.table and base is None
         if told or (base is None and not any(fields.has(key) for key in ("unit", "one of", "kind", "says"))):
+            if base is None and fields.mistaken & {"unit", "one of", "kind", "says"}:
+                return None
             return find_symbol(self.key.text, self.key.span, self.table, self.problems)
         return read_symbol(self.key, fields, base, self.problems)
 

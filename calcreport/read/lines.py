@@ -13,11 +13,14 @@ from calcreport.core.problems import Problems, listed
 from calcreport.core.source import Span
 from calcreport.read.fields import Fields, as_mapping, say_not_yet
 from calcreport.read.formulas import FormulaReader
+from calcreport.read.lost import lost_names
 from calcreport.read.made_rows import ReadTable, RowsReader
 from calcreport.read.model import (
+    EVERY,
     Arm,
     BranchArm,
     Branches,
+    Broken,
     Check,
     Drawing,
     Each,
@@ -69,8 +72,13 @@ class LineReader:
                               expected=f"{MOST_LINES} at most", found=f"{len(nodes)}",
                               hint="share them between parts")  # fmt: skip
             return ()
-        found = (self.line(node) for node in nodes)
-        return tuple(line for line in found if line is not None)
+        found: list[Line] = []
+        for node in nodes:
+            line = self.line(node)
+            found += [line] if line is not None else []
+            if self.problems and (lost := lost_names(node, line)):
+                found.append(Broken(lost, (), node.span))
+        return tuple(found)
 
     def line(self, node: Node) -> Line | None:
         """Read one line by its kind."""
@@ -83,6 +91,8 @@ class LineReader:
             say_not_yet(later, self.problems)
             return None
         kind = next((key for key in keys if key in KINDS and not (key == "branches" and "gives" in keys)), "")
+        if kind == "branches" and not {*keys} <= {"branches", "only"}:
+            kind = ""
         if not kind:
             self.say_unknown(mapping)
             return None
@@ -121,7 +131,7 @@ class LineReader:
         cite = read_cite(fields, self.document, self.problems)
         arms = self.arms(fields)
         cited = self.formulas.equation(fields, "as cited")
-        if name is None or symbol is None or not arms:
+        if name is None or symbol is None:
             return None
         return Gives(symbol, arms, cite, cited, fields.span, name.span)
 
@@ -135,16 +145,16 @@ class LineReader:
                 found="both",
             )
         if fields.node_of("formula") is not None:
-            formula = self.formulas.formula(fields.node_of("formula"))
-            return (Arm(None, formula),) if formula is not None else ()
+            return (Arm(None, self.formulas.formula(fields.node_of("formula"))),)
         if fields.node_of("branches") is None:
-            fields.say_missing("formula")
+            if "branches" not in fields.mistaken:
+                fields.say_missing("formula")
             return ()
         nodes = fields.items("branches")
         found = (self.arm(node, place == len(nodes) - 1) for place, node in enumerate(nodes))
         arms = tuple(arm for arm in found if arm is not None)
         self.need_otherwise(nodes, fields)
-        return arms if len(arms) == len(nodes) else ()
+        return arms
 
     def arm(self, node: Node, last: bool) -> Arm | None:
         entry = as_mapping(node, "a branch", self.problems)
@@ -153,13 +163,11 @@ class LineReader:
         arm = Fields(entry, ARM_KEYS, "a branch", self.problems)
         if arm.has("otherwise"):
             self.hold_last(arm, last)
-            formula = self.formulas.formula(arm.node_of("otherwise"))
-            return Arm(None, formula) if formula is not None else None
+            return Arm(None, self.formulas.formula(arm.node_of("otherwise")))
         for key in ("when", "formula"):
             if arm.node_of(key) is None:
                 arm.say_missing(key)
-        when, formula = self.formulas.condition(arm.node_of("when")), self.formulas.formula(arm.node_of("formula"))
-        return Arm(when, formula) if when is not None and formula is not None else None
+        return Arm(self.formulas.case(arm.node_of("when")), self.formulas.formula(arm.node_of("formula")))
 
     def hold_last(self, arm: Fields, last: bool) -> None:
         if arm.has("when"):
@@ -189,10 +197,9 @@ class LineReader:
                 self.hold_last(arm, place == len(nodes) - 1)
             elif arm.node_of("when") is None:
                 arm.say_missing("when")
-            when = None if other else self.formulas.condition(arm.node_of("when"))
+            when = None if other else self.formulas.case(arm.node_of("when"))
             lines = self.lines(arm.items("otherwise" if other else "lines", required=True))
-            if other or when is not None:
-                arms.append(BranchArm(when, lines, arm.text("says"), entry.span))
+            arms.append(BranchArm(when, lines, arm.text("says"), entry.span))
         if nodes:
             self.need_otherwise(nodes, fields)
         return Branches(tuple(arms), fields.span)
@@ -221,7 +228,7 @@ class LineReader:
         lines = self.lines(fields.items("lines"))
         low, high = bounds if len(bounds) == 2 else (None, None)
         if name is None or symbol is None or equation is None or low is None or high is None:
-            return None
+            return Broken((name.text,) if name is not None else (EVERY,), lines, fields.span)
         return Unknown(symbol, low, high, *equation, lines, fields.span, name.span)
 
     def check(self, fields: Fields) -> Line | None:
@@ -245,14 +252,10 @@ class LineReader:
         inputs = self.handed(fields)
         return Drawing(Name(kind.text, kind.span), inputs, fields.span) if kind is not None else None
 
-    def handed(self, fields: Fields) -> tuple[tuple[Name, Expression], ...]:
+    def handed(self, fields: Fields) -> tuple[tuple[Name, Expression | None], ...]:
         mapping = fields.mapping("with")
-        found: list[tuple[Name, Expression]] = []
-        for key, value in mapping.entries if mapping else ():
-            formula = self.formulas.formula(value)
-            if formula is not None:
-                found.append((Name(key.text, key.span), formula))
-        return tuple(found)
+        entries = mapping.entries if mapping else ()
+        return tuple((Name(key.text, key.span), self.formulas.formula(value)) for key, value in entries)
 
     def part(self, fields: Fields) -> Line | None:
         name = fields.scalar("part", required=True)

@@ -8,8 +8,9 @@ Fields in, `Rows` out.
 from __future__ import annotations
 
 from collections.abc import Callable
+from fractions import Fraction
 
-from calcreport.core.expression import Expression, Name, Negate, Number
+from calcreport.core.expression import Compare, Expression, Name, Negate, Number
 from calcreport.core.source import Citation
 from calcreport.read.fields import Fields, as_mapping, as_scalar, is_empty
 from calcreport.read.formulas import FormulaReader
@@ -129,8 +130,10 @@ class RowsReader:
         mapping = as_mapping(node, "a row", self.problems)
         if mapping is None:
             return None
-        names = tuple(column.symbol.name for column in columns)
-        fields = Fields(mapping, (*ROW_KEYS, *names), "a row", self.problems)
+        columned = self.fields.node_of("columns")
+        names = tuple(key.text for key, _ in columned.entries) if isinstance(columned, Mapping) else ()
+        keys = (*ROW_KEYS, *names)
+        fields = Fields(mapping, keys if names else (k.text for k, _ in mapping.entries), "a row", self.problems)
         cells: list[tuple[str, Cell]] = []
         for column in columns:
             cell_node = fields.node_of(column.symbol.name)
@@ -140,7 +143,12 @@ class RowsReader:
             cell = self.cell(cell_node, column)
             if cell is not None:
                 cells.append((column.symbol.name, cell))
-        when = self.formulas.condition(fields.node_of("when"))
+        stated = fields.node_of("when")
+        when = self.formulas.condition(stated)
+        if when is None and stated is not None:
+            # a condition that could not be read still parts this row from others of its name
+            zero = Number(Fraction(0), "0", None, stated.span)
+            when = Compare("=", zero, zero, stated.span)
         name = fields.scalar("name")
         named = Name(name.text, name.span) if name else Name("", mapping.span.part(0, 1))
         return Entry(named, self.pairing(fields), tuple(cells), when, mapping.span)

@@ -27,10 +27,12 @@ from calcreport.read.project_model import (
     singles,
 )
 from calcreport.read.template_model import (
+    EVERY,
     SYSTEMS,
     Arm,
     BranchArm,
     Branches,
+    Broken,
     Cell,
     Check,
     Drawing,
@@ -54,6 +56,7 @@ from calcreport.read.template_model import (
 )
 
 __all__ = [
+    "EVERY",
     "MEMBER",
     "SYSTEMS",
     "Arm",
@@ -62,6 +65,7 @@ __all__ = [
     "BarGroup",
     "BranchArm",
     "Branches",
+    "Broken",
     "Calculation",
     "Candidate",
     "Case",

@@ -88,16 +88,54 @@ def read_tree(source: Source, problems: Problems) -> Node | None:
         return None
     if say_odd(source, problems):
         return None
-    before = problems.met
+    reader = _Reader(source, text, problems)
     try:
-        return _Reader(source, problems).read()
-    except _Stop:
+        root = reader.read()
+    except (_Stop, yaml.YAMLError) as error:
+        _tell_all(error, reader, problems)
         return None
-    except yaml.YAMLError as error:
-        # a value cut short by a comment sign takes its closing bracket with it: one cause, one problem
-        if problems.met == before:
-            say_malformed(error, source, problems)
-        return None
+    if root is None:
+        problems.add("not-yaml", Span(source, 0, 1), "the file is empty", expected="a mapping of keys", found="nothing")
+    return root
+
+
+def _tell_all(error: Exception, reader: _Reader, problems: Problems) -> None:
+    """Add what stopped a reader, then read on without the lines at fault: one run tells of all that is no YAML."""
+    source, text, spent = reader.source, reader.text, 0
+    while True:
+        at = reader.stopped
+        if isinstance(error, yaml.YAMLError):
+            at = say_malformed(error, source, text, reader.cuts, problems)
+        without, spent = _without(text, at), spent + len(text)
+        if without == text or spent > LARGEST:
+            return
+        text = without
+        reader = _Reader(source, text, problems)
+        try:
+            reader.read()
+            return
+        except (_Stop, yaml.YAMLError) as another:
+            error = another
+
+
+def _without(text: str, at: int) -> str:
+    """Return a text of the same length with a line blank, and those that stand under it."""
+    start = text.rfind("\n", 0, at) + 1
+    end = text.find("\n", start) % (len(text) + 1)
+    column = _indent(text[start:end])
+    if "\t" in text[start : start + column + 1]:
+        # how deep a tab was meant to be is told by the line above
+        above = text[:start].rstrip().rpartition("\n")[2]
+        column = _indent(above) + 2 * above.endswith(":")
+    for line in text[end:].splitlines(keepends=True):
+        if line.strip() and _indent(line) <= column:
+            break
+        end += len(line)
+    return text[:start] + re.sub(r"[^\n]", " ", text[start:end]) + text[end:]
+
+
+def _indent(line: str) -> int:
+    return len(line) - len(line.lstrip(" "))
 
 
 def say_odd(source: Source, problems: Problems) -> bool:
@@ -117,10 +155,15 @@ def say_odd(source: Source, problems: Problems) -> bool:
 
 
 class _Reader:
-    def __init__(self, source: Source, problems: Problems) -> None:
-        self.source, self.problems = source, problems
-        self.events = yaml.parse(source.text, Loader=_LOADER)
+    def __init__(self, source: Source, text: str, problems: Problems) -> None:
+        self.source, self.text, self.problems = source, text, problems
+        self.events = yaml.parse(text, Loader=_LOADER)
         self.count = 0
+        #: where values are cut short by a comment sign, and where reading stopped
+        self.cuts: list[int] = []
+        #: brackets and braces that are open
+        self.flow = 0
+        self.stopped = 0
 
     def read(self) -> Node | None:
         root: Node | None = None
@@ -129,9 +172,6 @@ class _Reader:
                 if root is not None:
                     self.stop("not-yaml", event, "a second document begins here", "one document a file", "`---`")
                 root = self.node(next(self.events), 0)
-        if root is None:
-            self.problems.add("not-yaml", Span(self.source, 0, 1), "the file is empty",
-                              expected="a mapping of keys", found="nothing")  # fmt: skip
         return root
 
     def span(self, event: yaml.Event) -> Span:
@@ -140,7 +180,9 @@ class _Reader:
         return Span(self.source, first.index, max(min(last.index, len(self.source.text)), first.index))
 
     def stop(self, slug: str, event: yaml.Event, message: str, expected: str, found: str, hint: str = "") -> NoReturn:
-        self.problems.add(slug, self.span(event), message, expected=expected, found=found, hint=hint)
+        span = self.span(event)
+        self.problems.add(slug, span, message, expected=expected, found=found, hint=hint)
+        self.stopped = span.start
         raise _Stop
 
     def node(self, event: yaml.Event, depth: int) -> Node:
@@ -162,9 +204,13 @@ class _Reader:
                       "text that begins with ! needs quotes")  # fmt: skip
         if isinstance(event, yaml.ScalarEvent):
             return self.scalar(event)
-        if isinstance(event, yaml.SequenceStartEvent):
-            return self.sequence(event, depth)
-        return self.mapping(event, depth)
+        in_flow = bool(getattr(event, "flow_style", False))
+        self.flow += in_flow
+        inner = (
+            self.sequence(event, depth) if isinstance(event, yaml.SequenceStartEvent) else self.mapping(event, depth)
+        )
+        self.flow -= in_flow
+        return inner
 
     def scalar(self, event: yaml.ScalarEvent) -> Scalar | Told:
         span, quoted = self.span(event), event.style in ("'", '"')
@@ -187,7 +233,8 @@ class _Reader:
         start = cut.end() - 2
         end = self.source.text.find("\n", start)
         tail = self.source.text[start : end if end >= 0 else None].rstrip()
-        lost = re.split(r"[,}\]]", tail)[0].rstrip()
+        lost = re.split(r"[,}\]]", tail)[0].rstrip() if self.flow else tail
+        self.cuts.append(start)
         self.problems.add(
             "comment-cut", Span(self.source, start, start + len(tail)), "the rest of this line is read as a comment",
             expected="text that holds # after a space, or begins with it, in quotes", found=tail[:60],

@@ -65,10 +65,10 @@ class ScheduleReader:
         roles = roles_of(template.body.given) if template else _others(node)
         fields = Fields(node, (*KEYS, *roles), "a schedule", self.problems)
         fields.scalar("template", required=True)
-        before = self.problems.met
         table = self.tables.table(fields, self.label(fields))
         plan = self.plan(fields, table, template, roles) if table is not None else None
-        if table is None or plan is None or self.problems.met > before:
+        # a column that could not be found takes its value away and no row; not so where rows are chosen by it
+        if table is None or plan is None or not _is_whole(plan.choice, fields):
             return
         taken = uses((plan.mark, plan.title, *(value for _, value in plan.entries)))
         self.tables.hold_shown(fields, plan.choice, taken)
@@ -128,24 +128,29 @@ class ScheduleReader:
                                   related=((stood[key.text], "the common value"),))  # fmt: skip
             elif isinstance(value, Scalar) or is_use(value):
                 found.append((key, prepare_use(value, table, self.problems)))
-            elif not isinstance(value, Told):
-                self.problems.add("wrong-shape", value.span.part(0, 1), f"`{key.text[:40]}` is not given a column",
-                                  expected="a heading, or {column: …, unit: …, if empty: …}",
-                                  found="a list" if isinstance(value, Sequence) else "a mapping",
-                                  hint="rows of a set stand under `given`")  # fmt: skip
+            else:
+                if not isinstance(value, Told):
+                    self.problems.add("wrong-shape", value.span.part(0, 1), f"`{key.text[:40]}` is not given a column",
+                                      expected="a heading, or {column: …, unit: …, if empty: …}",
+                                      found="a list" if isinstance(value, Sequence) else "a mapping",
+                                      hint="rows of a set stand under `given`")  # fmt: skip
+                found.append((key, Told(value.span)))
         span = (common or columns or fields.node).span
         node = Mapping(tuple((key, Told(key.span)) for key, _ in found), span)
         return Filled(node, tuple(inner for _, inner in found))
 
     def hold_units(self, node: Mapping, template: Template, plan: _Plan) -> bool:
         """Tell whether every column of bare numbers says their unit where one is needed; told once, at the heading."""
-        before = self.problems.met
+        good = True
         for path, said in schedule_columns(node).items():
             given = _declared(path, template.body.given)
-            use = read_use(said, plan.table, self.problems) if given is not None else None
+            named = given is not None and (isinstance(said, Scalar) or is_use(said))
+            use = read_use(said, plan.table, self.problems) if named else None
             if given is not None and use is not None:
+                before = self.problems.met
                 self.tables.hold_unit(given, use, plan.choice)
-        return self.problems.met == before
+                good = good and self.problems.met == before
+        return good
 
     def together(self, fields: Fields, rows: list[SheetRow], plan: _Plan) -> Mapping | None:
         """Return the one calculation of all rows: what is taken from columns a member, the rest in common."""
@@ -214,3 +219,10 @@ def _text(node: Node | None) -> str:
 def _others(node: Mapping) -> tuple[str, ...]:
     """Return the keys that may be material roles, where the template that would tell is not there."""
     return tuple(key.text for key, _ in node.entries if key.text not in KEYS)
+
+
+def _is_whole(choice: Choice, fields: Fields) -> bool:
+    """Tell whether all that chooses rows could be read."""
+    where = fields.node_of("where")
+    chosen = where is None or (isinstance(where, Mapping) and len(choice.where) == len(where.entries))
+    return chosen and bool(choice.hidden or not fields.has("hidden"))

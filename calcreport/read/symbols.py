@@ -72,7 +72,7 @@ def read_symbol(key: Scalar, fields: Fields, base: Symbol | None, problems: Prob
     words = tuple(scalar.text for scalar in fields.texts("one of"))
     unit = _unit(fields, problems)
     kind = fields.choice("kind", KINDS)
-    if not says and not fields.has("says"):
+    if not says and base is None and not fields.has("says"):
         fields.say_missing("says")
     if kind == "yes/no":
         words = YES_NO
@@ -84,7 +84,7 @@ def read_symbol(key: Scalar, fields: Fields, base: Symbol | None, problems: Prob
         return Symbol(name, shows, says, "quantity", unit, (), places)
     if base is not None:
         return replace(base, says=says, shows=shows, places=places)
-    if not any(fields.node_of(told) for told in ("unit", "one of", "kind")):
+    if not any(fields.node_of(told) or told in fields.mistaken for told in ("unit", "one of", "kind")):
         problems.add(
             "no-unit",
             key.span,

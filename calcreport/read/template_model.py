@@ -1,6 +1,7 @@
 """Templates as read: symbols, given declarations and lines with parsed formulas, settled for one system and year.
 
 Every leaf has its place. Names inside formulas are not bound yet; that is the plan's work.
+The records of one language, kept in one file.
 """
 
 from __future__ import annotations
@@ -84,6 +85,11 @@ class Given:
     gives: tuple[tuple[Symbol, str], ...]
     span: Span
 
+    def names(self) -> tuple[str, ...]:
+        """Return the names it brings along: its own, its columns', and those read off callouts."""
+        columns = tuple(name for column in self.columns for name in column.names())
+        return (self.name, *(symbol.name for symbol, _ in self.gives), *columns)
+
 
 @dataclass(frozen=True, slots=True)
 class Text:
@@ -100,7 +106,8 @@ class Arm:
     """One case of a formula: the condition (None: otherwise) and the formula."""
 
     when: Condition | None
-    formula: Expression
+    #: None where it could not be read
+    formula: Expression | None
 
 
 @dataclass(frozen=True, slots=True)
@@ -108,6 +115,7 @@ class Gives:
     """A line that gives one value."""
 
     symbol: Symbol
+    #: those that could be read
     arms: tuple[Arm, ...]
     cite: Citation
     #: the equation as the code states it, left and right, where the formula rearranges it
@@ -218,13 +226,13 @@ class Unknown:
 class PartUse:
     """Another template's lines, or those of an entry of `parts`."""
 
-    #: the part's own body, already read for this system and year; None where it could not be read
+    #: read for this system and year; None where it could not be read
     body: PartBody | None
     name: Name
     stem: str
     same: tuple[Name, ...]
-    #: (its given, formula or word handed to it)
-    handed: tuple[tuple[Name, Expression], ...]
+    #: (its given, formula or word handed to it; None where not read)
+    handed: tuple[tuple[Name, Expression | None], ...]
     span: Span
 
 
@@ -254,11 +262,24 @@ class Drawing:
     """A figure with what it is handed, by its own input names."""
 
     kind: Name
-    inputs: tuple[tuple[Name, Expression], ...]
+    #: None where a formula could not be read
+    inputs: tuple[tuple[Name, Expression | None], ...]
     span: Span
 
 
-Line: TypeAlias = Text | Gives | Branches | Rows | Each | Unknown | PartUse | Check | Require | Drawing
+@dataclass(frozen=True, slots=True)
+class Broken:
+    """Stands for what could not be read of a line: names it would give, and lines inside it that are whole."""
+
+    #: `EVERY` among them where nobody can tell the names
+    names: tuple[str, ...]
+    lines: tuple[Line, ...]
+    span: Span
+
+
+#: stands for all names where it is not known which a part or line would have given
+EVERY = "*"
+Line: TypeAlias = Text | Gives | Branches | Rows | Each | Unknown | PartUse | Check | Require | Drawing | Broken
 
 
 @dataclass(frozen=True, slots=True)
@@ -274,6 +295,8 @@ class PartBody:
     sees_user: bool
     covers: tuple[str, ...]
     span: Span
+    #: names of givens that could not be read
+    told: frozenset[str] = frozenset()
 
 
 @dataclass(frozen=True, slots=True)

@@ -44,6 +44,7 @@ class _Settler:
             "variant-hole", node.span.part(0, 1), "a unit system or year has nothing here",
             expected="an entry " + " or ".join(f"`{key}`" for key in self.wanted) + ", which the template serves",
             found="only " + ", ".join(key.text for key, _ in node.entries),
+            hint=f"add `{self.wanted[-2:][0]}: …` beside what stands there",
         )  # fmt: skip
         return Told(node.span)
 

@@ -30,7 +30,9 @@ def test_forty_mistakes_of_one_stage_are_told_in_one_run(tmp_path: Path) -> None
 
 
 def test_forty_mistakes_of_reading(tmp_path: Path) -> None:
-    lines = "".join(f"  - {{gives: r, formula: 'b {i} +', cite: geometry}}\n" for i in range(20))
+    lines = "".join(
+        f"  - {{gives: r{i}, unit: '1', says: ratio, formula: 'b {i} +', cite: geometry}}\n" for i in range(20)
+    )
     lines += "".join(f"  - {{give{i}: r}}\n" for i in range(20))
     make(tmp_path, template=TEMPLATE + lines)
     assert run("lint", str(tmp_path / "trial.yaml")).err.count("error[") == 40

@@ -136,8 +136,13 @@ Z = "  - {gives: z, formula: 'FORMULA', cite: geometry}\n"
             ["unknown-name"],
         ),
         (Z.replace("FORMULA", "sum(q over nowhere)"), ["unknown-name"]),
+        # what is not known over an unknown set may be a column of it; a name that stands nowhere is told of once,
+        # one that may be misspelt wherever it is
+        ("  - {check: one, holds: 'sum(x*q over nowhere) > q', cite: geometry}\n", ["unknown-name", "unknown-name"]),
+        ("  - {check: one, holds: 'q > 2*q', cite: geometry}\n", ["unknown-name"]),
+        ("  - {check: one, holds: 'xx > 2*xx', cite: geometry}\n", ["unknown-name", "unknown-name"]),
         # an entry of `parts` gives its names where it is used: twice is too often, under two stems it is not
-        ("  - {part: double}\n  - {part: double}\n", ["given-twice"]),
+        ("  - {part: double}\n  - {part: double}\n", ["part-clash"]),
         ("  - {part: double, as: one}\n  - {part: double, as: two}\n" + Z.replace("FORMULA", "one.y + two.y"), []),
         # names of a part with a stem are known by it alone, and below it
         ("  - {part: double, as: one}\n" + Z.replace("FORMULA", "y"), ["unknown-name"]),

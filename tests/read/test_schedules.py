@@ -201,7 +201,7 @@ def test_a_hidden_column_is_no_matter_until_it_is_asked_for(tmp_path: Path) -> N
 def test_every_row_with_a_problem_is_named_and_the_others_are_worked(tmp_path: Path) -> None:
     table = TABLE + "B3,3,,20,4-#8\nB4,4,12,20,4-#99\n"
     found = result(tmp_path, SCHEDULE, beams=table)
-    assert told(found.problems) == [("empty-cell", "beams.csv:4:6"), ("unknown-bar", "beams.csv:5:12")]
+    assert told(found.problems) == [("empty-cell", "beams.csv:4:6"), ("unknown-bar", "beams.csv:5:14")]
     assert found.worked is not None
     assert [one.calculation.mark for one in found.worked.calculations] == ["B1", "B2"]
 

@@ -20,7 +20,7 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
     ("core", (
         "core", "core.explained_files", "core.explained_projects", "core.explained_schedules",
         "core.explained_templates", "core.explanations", "core.expression", "core.figures", "core.fontfile",
-        "core.grammar", "core.kept", "core.late", "core.problems", "core.quantity", "core.record", "core.source",
+        "core.grammar", "core.kept", "core.late", "core.problems", "core.quantity", "core.record", "core.shows", "core.source",
         "core.tokens", "core.units", "core.version", "core.world",
     )),
     ("methods", (
@@ -51,7 +51,7 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
     )),
     ("history", ("history", "history.accounts", "history.differences", "history.model")),
     ("report", (
-        "report", "report.below", "report.calculation", "report.candidates", "report.check_blocks", "report.compared",
+        "report", "report.below", "report.calculation", "report.candidates", "report.chains", "report.check_blocks", "report.compared",
         "report.compose", "report.confirmations", "report.digits", "report.display", "report.drawings",
         "report.editions", "report.editions_text", "report.families", "report.forms", "report.formula_model",
         "report.fronts", "report.given_blocks", "report.governing", "report.items", "report.members", "report.model",

@@ -98,6 +98,13 @@ Those lines are worked once a trial, many times over, so nothing can be judged o
 
     - {unknown: c, …, lines: [{check: it, …}]}      wrong
     - {unknown: c, …, lines: […]}                   right, with the check as the next line""",
+    "bad-shows": """What a symbol shows cannot be read as one.
+A display is a letter, a word or the name of a Greek letter; a mark over one letter, as bar(y), hat(y), tilde(y) or
+dot(y); primes; and one subscript, in braces or not. Text with a space in it stands as it is.
+
+    shows: 'bar(y'           wrong
+    shows: 'bar(y)_t'        right, a y with a bar over it and the subscript t
+    shows: "eps_{cu}'"       right, as are eps'_cu, A_s,min, phiM_n and √f_c'""",
     "no-unit": """A symbol has no unit, no list of words and no kind.
 Without it no formula can be held. A pure number says so with unit '1'.
 

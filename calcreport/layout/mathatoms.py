@@ -7,6 +7,7 @@ from __future__ import annotations
 
 from calcreport.layout.mathstyle import MEDIUM, NONE, THICK, THIN, UNIT
 from calcreport.report.model import (
+    Accent,
     Big,
     Fence,
     Formula,
@@ -25,6 +26,7 @@ ORD, OP, BIN, REL, OPEN, CLOSE, PUNCT, INNER, SPACE, ROW = range(10)
 _KINDS: dict[type, int] = {
     Letters: ORD,
     Script: ORD,
+    Accent: ORD,
     Root: ORD,
     Stack: ORD,
     Fence: ORD,

@@ -19,6 +19,7 @@ from calcreport.layout.mathscripts import Scripted, attach
 from calcreport.layout.mathstyle import KEPT, NONE, Nucleus, Style
 from calcreport.layout.model import Box, Item, Placed
 from calcreport.report.model import (
+    Accent,
     Big,
     Fence,
     Formula,
@@ -56,6 +57,7 @@ class Formulas:
             Fraction: self._fraction,
             Root: self._root,
             Script: self._script,
+            Accent: self._accent,
             Fence: self._fence,
             Stack: self._stack,
             Big: self._big,
@@ -171,6 +173,13 @@ class Formulas:
         index = self._maybe(formula.index, style.kin("script", True).kin("script", True))
         return mathforms.root(style, body, index)
 
+    def _accent(self, formula: Accent, style: Style) -> Box:
+        return self._accented(formula, style).box
+
+    def _accented(self, formula: Accent, style: Style) -> Nucleus:
+        base = style.nucleus(formula.base.text, formula.base.style)
+        return mathforms.accent(style, base, style.nucleus(formula.mark, "upright"))
+
     def _fence(self, formula: Fence, style: Style) -> Box:
         if isinstance(formula.body, Letters) and formula.body.style == "upright":
             # a number in parentheses never grows: one piece
@@ -213,11 +222,13 @@ class Formulas:
 
     def _set_script(self, formula: Script, style: Style) -> Box:
         base = formula.base
-        nucleus = (
-            style.nucleus(base.text, base.style)
-            if isinstance(base, Letters)
-            else Nucleus(self._set(base, style), 0.0, 0, 0)
-        )
+        match base:
+            case Letters(text, face):
+                nucleus = style.nucleus(text, face)
+            case Accent():
+                nucleus = self._accented(base, style)
+            case _:
+                nucleus = Nucleus(self._set(base, style), 0.0, 0, 0)
         sub = self._scripted(formula.below, style.kin("script", True))
         sup = self._scripted(formula.above, style.kin("script", style.cramped))
         return attach(style, nucleus, sub, sup)

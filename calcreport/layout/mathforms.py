@@ -10,7 +10,7 @@ from __future__ import annotations
 from itertools import pairwise
 
 from calcreport.layout.delimiters import choose, grown, set_form
-from calcreport.layout.mathstyle import Style
+from calcreport.layout.mathstyle import Nucleus, Style
 from calcreport.layout.model import Box, Item, Placed, Stroke
 
 #: a fence grows once its body is taller than this many ems, then covers the first share of it and falls
@@ -64,6 +64,20 @@ def root(style: Style, body: Box, index: Box | None) -> Box:
     descent = max(body.descent, height - top)
     width = x + body.width + _AFTER_ROOT * style.size
     return Box(width, highest + value["RadicalExtraAscender"], descent, tuple(items))
+
+
+def accent(style: Style, base: Nucleus, mark: Nucleus) -> Nucleus:
+    """Set a mark over letters: its point over theirs, raised by what they stand above the height it is drawn for.
+
+    The width is that of the letters (appendix G, rule 12), and scripts come as near as without the mark.
+    """
+    point = style.fonts.math.top_point
+    letters, above = base.box, mark.box
+    at = point(base.first) * style.unit if base.first == base.last else letters.width / 2
+    rise = max(0.0, letters.ascent - style.value["AccentBaseHeight"])
+    items = (Placed(0.0, 0.0, letters), Placed(at - point(mark.first) * style.unit, -rise, above))
+    box = Box(letters.width, max(letters.ascent, rise + above.ascent), letters.descent, items)
+    return Nucleus(box, base.italic, base.first, base.last)
 
 
 def fence(style: Style, opening: str, body: Box, closing: str, holds_stack: bool) -> Box:

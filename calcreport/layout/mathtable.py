@@ -56,7 +56,7 @@ class Part:
 class MathTable:
     """The figures a formula setter asks of its font, in font units."""
 
-    __slots__ = ("_alternates", "_font", "_info", "_italics", "_kerns", "_sizes", "constants", "min_overlap")
+    __slots__ = ("_alternates", "_font", "_info", "_italics", "_kerns", "_points", "_sizes", "constants", "min_overlap")
 
     def __init__(self, font: FontFile) -> None:
         """Read the constants; KeyError when the font has no MATH table."""
@@ -82,17 +82,29 @@ class MathTable:
             coverage(font.data, base + variants + unpack_from(">H", font.data, base + variants + 2)[0]),
         )
         self._italics: dict[int, int] | None = None
+        self._points: dict[int, int] | None = None
         self._kerns: tuple[int, dict[int, int]] | None = None
         self._alternates: dict[int, tuple[int, ...]] | None = None
 
     def italics(self, glyph: int) -> int:
         """Give how far a slanted glyph leans over its advance."""
         if self._italics is None:
-            data, at = self._font.data, self._info + unpack_from(">H", self._font.data, self._info)[0]
-            covered = coverage(data, at + unpack_from(">H", data, at)[0])
-            values = unpack_from(">" + "h2x" * len(covered), data, at + 4)
-            self._italics = {glyph: values[i] for glyph, i in covered.items()}
+            self._italics = self._values(0)
         return self._italics.get(glyph, 0)
+
+    def top_point(self, glyph: int) -> float:
+        """Give the place across a glyph that marks over it are centred on; of a mark, the place that goes there."""
+        if self._points is None:
+            self._points = self._values(2)
+        found = self._points.get(glyph)
+        return self._font.advance(glyph) / 2 if found is None else found
+
+    def _values(self, place: int) -> dict[int, int]:
+        """Read a table of one value a glyph, whose offset stands at a place of the glyph information."""
+        data, at = self._font.data, self._info + unpack_from(">H", self._font.data, self._info + place)[0]
+        covered = coverage(data, at + unpack_from(">H", data, at)[0])
+        values = unpack_from(">" + "h2x" * len(covered), data, at + 4)
+        return {glyph: values[i] for glyph, i in covered.items()}
 
     def kern(self, glyph: int, corner: Corner, height: float) -> int:
         """Give the distance to add at a corner of a glyph for what touches it at a height."""

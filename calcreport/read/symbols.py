@@ -7,22 +7,26 @@ from __future__ import annotations
 
 import re
 from dataclasses import replace
+from fractions import Fraction
 from typing import TypeAlias
 
 from calcreport.core.expression import FUNCTIONS, OVER_FUNCTIONS
 from calcreport.core.problems import Problems
+from calcreport.core.shows import ACCENTS, read_shown
 from calcreport.core.source import Span
 from calcreport.core.tokens import KEYWORDS
-from calcreport.core.units import ONE, Unit, read_unit
+from calcreport.core.units import LENGTH, ONE, Unit, dimension_words, read_unit
 from calcreport.read.fields import Fields, as_mapping
 from calcreport.read.model import Symbol
 from calcreport.read.nodes import Mapping, Scalar
 
 #: keys that tell of a symbol, at its own entry or on the line that gives it
-OWN_KEYS = ("unit", "one of", "kind", "says", "shows", "places")
+OWN_KEYS = ("unit", "one of", "kind", "says", "shows", "places", "feet and inches")
 KEYS = (*OWN_KEYS, "only")
 #: a yes/no value is a word with this list
 YES_NO = ("yes", "no")
+#: parts of an inch that feet and inches may be rounded to
+INCHES = {"1 in": Fraction(1), **{f"1/{n} in": Fraction(1, n) for n in (2, 4, 8, 16, 32)}}
 KINDS = ("count", "yes/no", "quantity")
 NAME = re.compile(r"[A-Za-z][A-Za-z0-9_]{0,39}")
 _TAKEN = KEYWORDS | FUNCTIONS.keys() | OVER_FUNCTIONS | {"num", "qty"}
@@ -65,7 +69,7 @@ def read_symbol(key: Scalar, fields: Fields, base: Symbol | None, problems: Prob
     """Read symbol keys out of an entry, on top of `base`; adds `no-unit` where neither unit nor words are known."""
     name = key.text
     says = fields.text("says") or (base.says if base else "")
-    shows = fields.text("shows") or (base.shows if base else "")
+    shows = _shows(fields, problems) or (base.shows if base else "")
     places = fields.whole("places", low=0, high=8)
     if places is None and base:
         places = base.places
@@ -81,9 +85,10 @@ def read_symbol(key: Scalar, fields: Fields, base: Symbol | None, problems: Prob
     if kind == "count":
         return Symbol(name, shows, says, "count", ONE, (), 0)
     if unit is not None:
-        return Symbol(name, shows, says, "quantity", unit, (), places)
+        return Symbol(name, shows, says, "quantity", unit, (), places, _inches(fields, unit, base, problems))
     if base is not None:
-        return replace(base, says=says, shows=shows, places=places)
+        inches = _inches(fields, base.unit, base, problems)
+        return replace(base, says=says, shows=shows, places=places, inches=inches)
     if not any(fields.node_of(told) or told in fields.mistaken for told in ("unit", "one of", "kind")):
         problems.add(
             "no-unit",
@@ -106,6 +111,39 @@ def find_symbol(name: str, span: Span, table: Table, problems: Problems) -> Symb
             hint=problems.near(name, table) or "add it under `symbols:` with `says` and `unit`",
         )  # fmt: skip
     return symbol
+
+
+def _shows(fields: Fields, problems: Problems) -> str:
+    """Return the display of a symbol, or ''; adds `bad-shows`."""
+    scalar = fields.scalar("shows")
+    if scalar is None or not scalar.text or read_shown(scalar.text) is not None:
+        return scalar.text if scalar else ""
+    problems.add(
+        "bad-shows",
+        scalar.span,
+        f"`{scalar.text[:40]}` cannot be printed as a symbol",
+        expected="a letter or a word, with its mark, primes and one subscript",
+        found=scalar.text[:40],
+        hint=f"such as f_c', A_{{s,min}}, phiM_n or bar(y)_t; marks are {', '.join(ACCENTS)}",
+    )
+    return ""
+
+
+def _inches(fields: Fields, unit: Unit | None, base: Symbol | None, problems: Problems) -> Fraction | None:
+    """Return the part of an inch that feet and inches are rounded to, or None; only a length has them."""
+    text = fields.choice("feet and inches", tuple(INCHES))
+    if not text:
+        return base.inches if base and not fields.has("feet and inches") else None
+    if unit is None or unit.dimension != LENGTH:
+        scalar = fields.scalar("feet and inches")
+        assert scalar is not None
+        problems.add(
+            "unit-mismatch", scalar.span, "only a length has feet and inches",
+            expected="a symbol in ft, in or another unit of length",
+            found=dimension_words(unit.dimension) if unit else "a word",
+        )  # fmt: skip
+        return None
+    return INCHES[text]
 
 
 def _unit(fields: Fields, problems: Problems) -> Unit | None:

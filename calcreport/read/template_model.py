@@ -34,6 +34,8 @@ class Symbol:
     words: tuple[str, ...]
     #: fewest decimals printed, or None
     places: int | None
+    #: part of an inch to which a length is printed in feet and inches too, or None
+    inches: Fraction | None = None
 
 
 @dataclass(frozen=True, slots=True)

@@ -14,9 +14,7 @@ from calcreport.report.model import (
     Block,
     CheckLine,
     Formula,
-    Letters,
     Paragraph,
-    Row,
     SourceLane,
     Statement,
     Strong,
@@ -92,11 +90,7 @@ class CheckBlocks:
         shown = self.shared.condition(condition)
         tests = joint_comparisons(condition)
         if tests and all(self.forms.side(test, worked.open, "left") for test in tests):
-            items: list[Formula] = []
-            for test in tests:
-                items += [Letters(" and ")] if items else []
-                items.append(self.told.compared(test, worked.open))
-            shown = Row(tuple(items))
+            shown = self.told.all_compared(tests, worked.open)
         lane = self.told.source(worked.line.cite.printed, (condition,), worked.open, item.number)
         return Statement(item.number, self.told.anchor(item.number), ("Required",), shown, lane)
 

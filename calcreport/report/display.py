@@ -5,49 +5,19 @@ Symbols and units in, formula trees out. Knows no value.
 
 from __future__ import annotations
 
+import math
 import re
+from fractions import Fraction
 from typing import TypeAlias
 
 from calcreport.calculate.model import Slot, Symbol
+from calcreport.core.shows import GREEK, read_shown
 from calcreport.core.units import Unit
-from calcreport.report.model import Formula, Letters, Root, Row, Script
+from calcreport.report.model import Accent, Formula, Letters, Operator, Root, Row, Script, Space
 
 Slots: TypeAlias = tuple[Slot, ...]
 
-_GREEK = {
-    "alpha": "α",
-    "beta": "β",
-    "gamma": "γ",
-    "delta": "δ",
-    "epsilon": "ε",
-    "eps": "ε",
-    "zeta": "ζ",
-    "eta": "η",
-    "theta": "θ",
-    "kappa": "κ",
-    "lambda": "λ",
-    "mu": "μ",
-    "nu": "ν",
-    "xi": "ξ",
-    "pi": "π",
-    "rho": "ρ",
-    "sigma": "σ",
-    "tau": "τ",
-    "phi": "φ",
-    "chi": "χ",
-    "psi": "ψ",
-    "omega": "ω",
-    "Gamma": "Γ",
-    "Delta": "Δ",
-    "Theta": "Θ",
-    "Lambda": "Λ",
-    "Sigma": "Σ",
-    "Phi": "Φ",
-    "Psi": "Ψ",
-    "Omega": "Ω",
-}
-_GREEK_START = re.compile("(" + "|".join(sorted(_GREEK, key=len, reverse=True)) + r")(?=$|_|'|[A-Z]|\d)")
-PRIME = "′"
+PRIME, DOUBLE_PRIME = "′", "″"
 
 
 def show_symbol(symbol: Symbol) -> Formula:
@@ -56,25 +26,18 @@ def show_symbol(symbol: Symbol) -> Formula:
 
 
 def show_name(text: str) -> Formula:
-    """Return the display of `f_c'`, `phiM_n`, `A_s,min`, `√f_c'`."""
-    if " " in text:
+    """Return the display of `f_c'`, `phiM_n`, `A_s,min`, `bar(y)_t`, `√f_c'`."""
+    stem, _, rest = text.rpartition(".") if " " not in text else ("", "", "")
+    shown = read_shown(rest if stem else text)
+    if shown is None or shown.words:
         return Letters(text)
-    if text.startswith("√"):
-        return Root(show_name(text[1:]))
-    stem, _, rest = text.rpartition(".")
-    if stem:
-        text = rest
-    head = _GREEK_START.match(text)
-    if head and len(text) > head.end() and text[head.end()].isupper():
-        return Row((Letters(_GREEK[head[1]], "italic"), show_name(text[head.end() :])))
-    base, mark, below = text.partition("_")
-    primes = len(below) - len(below.rstrip("'")) if mark else len(base) - len(base.rstrip("'"))
-    above = Letters(PRIME * primes) if primes else None
-    shown = _letters(base.rstrip("'"))
-    subscript = _subscript(below.rstrip("'")) if below else None
-    if subscript is None and above is None:
-        return shown
-    return Script(shown, subscript, above)
+    base = Accent(_letters(shown.base), shown.accent) if shown.accent else _letters(shown.base)
+    below = _subscript(shown.below) if shown.below else None
+    above = Letters(PRIME * shown.primes) if shown.primes else None
+    found: Formula = base if below is None and above is None else Script(base, below, above)
+    if shown.heads:
+        found = Row((*(Letters(head, "italic") for head in shown.heads), found))
+    return Root(found) if shown.rooted else found
 
 
 def show_row(name: str) -> Formula:
@@ -91,23 +54,21 @@ def row_words(name: str) -> str:
     return re.sub(r"(?<=\w)-(?= |$)", "−", name)
 
 
-def _letters(text: str) -> Formula:
+def _letters(text: str) -> Letters:
     """Return base letters: one letter italic, a word upright, digits after a letter as they are."""
-    if text in _GREEK:
-        return Letters(_GREEK[text], "italic")
     if len(text) == 1 or (len(text) == 2 and text[0].isalpha() and text[1].isupper()):
         return Letters(text, "italic")
     return Letters(text, "upright")
 
 
-def _subscript(text: str) -> Formula:
+def _subscript(parts: tuple[str, ...]) -> Formula:
     pieces: list[Formula] = []
-    for place, piece in enumerate(re.split(r"[,_]", text)):
+    for place, piece in enumerate(parts):
         if place:
             pieces.append(Letters(","))
         letters = re.fullmatch(r"([A-Za-z])(\d*)", piece)
-        if piece in _GREEK:
-            pieces.append(Letters(_GREEK[piece], "italic"))
+        if piece in GREEK:
+            pieces.append(Letters(GREEK[piece], "italic"))
         elif letters:
             pieces.append(Letters(letters[1], "italic"))
             if letters[2]:
@@ -115,6 +76,32 @@ def _subscript(text: str) -> Formula:
         else:
             pieces.append(Letters(piece))
     return pieces[0] if len(pieces) == 1 else Row(tuple(pieces))
+
+
+def show_feet(length: float, step: Fraction) -> tuple[Formula, ...]:
+    """Return a length in inches as `= 18′-6 1/2″`, or `≈ 18′-6 7/16″ (to 1/16″)` where it is rounded to a step.
+
+    Half a step is rounded up; what lies within the last bits of a step is that step.
+    """
+    steps = math.floor(abs(length) / step + 0.5 + 1e-9)
+    exact = abs(steps * step - abs(length)) <= 1e-9 * abs(length)
+    whole, part = divmod(steps * step, 1)
+    feet, inches = divmod(int(whole), 12)
+    sign = "−" if length < 0 and steps else ""
+    text = f"{sign}{feet:,}{PRIME}-" if feet else sign
+    if inches or feet or not part:
+        text += f"{inches}"
+    items: list[Formula] = [Operator("=" if exact else "≈", "relation"), Letters(text)]
+    if part:
+        items += [Space("thin")] if inches or feet else []
+        items.append(Letters(f"{part.numerator}/{part.denominator}"))
+    items.append(Letters(DOUBLE_PRIME))
+    return tuple(items) if exact else (*items, Space("unit"), Letters(f"(to {step}{DOUBLE_PRIME})"))
+
+
+def trade_marks(text: str) -> str:
+    """Return typed feet and inches with the marks of the trade: 18′-6 1/2″."""
+    return text.replace("'", PRIME).replace('"', DOUBLE_PRIME)
 
 
 _POWERS = {2: "²", 3: "³", 4: "⁴"}

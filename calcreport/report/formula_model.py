@@ -65,6 +65,14 @@ class Script:
 
 
 @dataclass(frozen=True, slots=True)
+class Accent:
+    """A letter with a mark over it: a bar, a hat, a tilde, a dot, each the combining character of Unicode."""
+
+    base: Letters
+    mark: str
+
+
+@dataclass(frozen=True, slots=True)
 class Fence:
     """A body between delimiters that grow with it; either may be '' (the open side of a brace)."""
 
@@ -89,7 +97,7 @@ class Big:
     above: Formula | None = None
 
 
-Formula: TypeAlias = Letters | Operator | Space | Row | Fraction | Root | Script | Fence | Stack | Big
+Formula: TypeAlias = Letters | Operator | Space | Row | Fraction | Root | Script | Accent | Fence | Stack | Big
 
 
 # ---------------------------------------------------------------- words

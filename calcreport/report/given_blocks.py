@@ -17,7 +17,7 @@ from calcreport.calculate.model import (
 )
 from calcreport.core.quantity import Amount
 from calcreport.core.units import NONE
-from calcreport.report.display import row_words, show_row, show_symbol, unit_text
+from calcreport.report.display import row_words, show_row, show_symbol, trade_marks, unit_text
 from calcreport.report.forms import link_place
 from calcreport.report.items import SayNone, SayRows
 from calcreport.report.model import (
@@ -88,9 +88,10 @@ class GivenBlocks:
         if not isinstance(handed, Amount) or unit is None or value.origin.kind == "none":
             return shown
         feet = "'" in handed.text or '"' in handed.text or len(handed.text.split()) > 2
-        if handed.unit.scale == unit.scale and not feet:
+        told = self.told.slots[slot].symbol.inches is not None
+        if handed.unit.scale == unit.scale and (told or not feet):
             return shown
-        return Row((shown, Letters(f"  ({handed.text})")))
+        return Row((shown, Letters(f"  ({trade_marks(handed.text)})")))
 
     def with_outputs(self, shown: Formula, planned: PlannedGiven, key: Key) -> Formula:
         """Add what a callout gives: its area, diameter, count."""

@@ -10,6 +10,9 @@ from dataclasses import dataclass
 from typing import Literal, TypeAlias
 
 from calcreport.report.formula_model import (
+    Accent as Accent,
+)
+from calcreport.report.formula_model import (
     Big as Big,
 )
 from calcreport.report.formula_model import (

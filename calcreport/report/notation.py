@@ -6,6 +6,7 @@ Kept in one though long: one printer, a method for each node.
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass
 from fractions import Fraction as F
 
@@ -28,6 +29,7 @@ from calcreport.core.expression import (
     walk,
 )
 from calcreport.core.units import Unit
+from calcreport.report.chains import Chain, Side, find_chain
 from calcreport.report.digits import Figure, number_text
 from calcreport.report.display import Slots, show_symbol, show_unit
 from calcreport.report.model import Big, Fence, Formula, Fraction, Letters, Operator, Root, Row, Script, Space, Stack
@@ -253,11 +255,17 @@ class Notation:
 
     # -------------------------------------------------------- conditions
 
+    def chain(self, one: Condition, other: Condition) -> Chain | None:
+        """Return two comparisons as low < middle < high, where what is between prints alike."""
+        return find_chain(one, other, lambda a, b: self.formula(a) == self.formula(b))
+
     def condition(self, node: Condition) -> Formula:
         """Print a condition with symbols."""
         match node:
             case Compare(op, left, right):
                 return Row((*items_of(self.formula(left)), relation(op), *items_of(self.formula(right))))
+            case Logic("and", left, right) if found := self.chain(left, right):
+                return chain_row(found, lambda _, __, node: items_of(self.formula(node)))
             case Logic(op, left, right):
                 return Row((self.condition(left), Letters(f" {op} "), self.condition(right)))
             case Not(body):
@@ -267,6 +275,15 @@ class Notation:
                 return Row((shown, Letters(f" is {word}")))
             case IsGiven(name):
                 return Row((self.name(name).formula, Letters(" is given")))
+
+
+def chain_row(chain: Chain, shown: Callable[[Compare, Side, Expression], tuple[Formula, ...]]) -> Formula:
+    """Return a chain as a formula, each side as `shown` prints it."""
+    lower, upper = chain.lower, chain.upper
+    return Row((
+        *shown(lower.test, *lower.small), relation(lower.sign), *shown(lower.test, *lower.large),
+        relation(upper.sign), *shown(upper.test, *upper.large),
+    ))  # fmt: skip
 
 
 _OVER_WORDS = {"max": "max", "min": "min", "pick": "pick", "linear": "read"}

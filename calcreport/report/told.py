@@ -15,9 +15,9 @@ from calcreport.calculate.model import (
     WorkedGives,
 )
 from calcreport.core.expression import Binary, Compare, Condition, Expression, Is, Name, Negate, Number, Over, names
-from calcreport.core.units import ONE, Unit
+from calcreport.core.units import ONE, Unit, make_unit
 from calcreport.report.digits import Figure, number_text
-from calcreport.report.display import row_words, show_symbol, unit_text
+from calcreport.report.display import row_words, show_feet, show_symbol, unit_text
 from calcreport.report.forms import CalculationForms, Opened, is_size, side_unit
 from calcreport.report.items import Script
 from calcreport.report.model import (
@@ -31,6 +31,7 @@ from calcreport.report.model import (
 )
 from calcreport.report.notation import (
     Notation,
+    chain_row,
     has_values,
     reads_alike,
     relation,
@@ -38,6 +39,8 @@ from calcreport.report.notation import (
 )
 from calcreport.report.substitution import Printed, Substitution
 from calcreport.report.taken import rows_taken
+
+_INCH = make_unit((("in", 1),))
 
 
 @dataclass(slots=True)
@@ -98,7 +101,10 @@ class Told:
         if not isinstance(value, float):
             return Letters("none" if value is None else value)
         symbol = self.slots[slot].symbol
-        return show_figure(self.forms.figure(slot, key), symbol.unit)
+        shown = show_figure(self.forms.figure(slot, key), symbol.unit)
+        if symbol.inches is None:
+            return shown
+        return Row((shown, *show_feet(value / _INCH.size, symbol.inches)))
 
     def cell(self, slot: int, key: Key) -> Words:
         """Return a value as a table cell prints it: the unit stands in the heading."""
@@ -166,12 +172,7 @@ class Told:
         tests = self.forms.because(line, arm)
         if not tests:
             return self.word_because(line, arm)
-        items: list[Formula] = []
-        for place, test in enumerate(tests):
-            if place:
-                items.append(Letters(" and "))
-            items.append(self.compared(test, opened))
-        return Row(tuple(items))
+        return self.all_compared(tests, opened)
 
     def word_because(self, line: PlannedGives | PlannedBranches, arm: int) -> Formula | None:
         """Say which word chose an arm."""
@@ -190,6 +191,21 @@ class Told:
         left = self.sided(test, test.left, opened, "left")
         right = self.sided(test, test.right, opened, "right")
         return Row((*left, relation(test.op), *right))
+
+    def all_compared(self, tests: tuple[Compare, ...], opened: Opened) -> Formula:
+        """Return comparisons with their numbers, two of one thing as a chain: 0.75 <= lambda = 0.85 <= 1."""
+        items: list[Formula] = []
+        waiting = list(tests)
+        while waiting:
+            test = waiting.pop(0)
+            items += [Letters(" and ")] if items else []
+            chain = self.shared.notation.chain(test, waiting[0]) if waiting else None
+            if chain is None:
+                items.append(self.compared(test, opened))
+            else:
+                del waiting[0]
+                items.append(chain_row(chain, lambda test, side, node: self.sided(test, node, opened, side)))
+        return Row(tuple(items))
 
     def sided(self, test: Compare, node: Expression, opened: Opened, side: str) -> tuple[Formula, ...]:
         """Return one side of a comparison with its number."""

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from calcreport.report.model import (
+    Accent,
     Big,
     Fence,
     Formula,
@@ -155,6 +156,17 @@ LENGTH = row(
     symbol("d", "b"),
 )
 
+MARKS = row(
+    Script(Accent(variable("y"), "\u0304"), Letters("t")),
+    EQUALS,
+    Script(Accent(variable("ε"), "\u0302"), Letters("s"), Letters("′")),
+    PLUS,
+    Accent(variable("d"), "\u0303"),
+    MINUS,
+    Script(Accent(H, "\u0307"), None, Letters("2")),
+)
+RANGE = row("0.75", AT_MOST, LAMBDA, EQUALS, "0.85", AT_MOST, "1.0")
+
 ALL: dict[str, Formula] = {
     "moment": MOMENT,
     "block": BLOCK,
@@ -168,4 +180,6 @@ ALL: dict[str, Formula] = {
     "numbers": NUMBERS,
     "ratio": RATIO,
     "length": LENGTH,
+    "marks": MARKS,
+    "range": RANGE,
 }

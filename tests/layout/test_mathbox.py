@@ -36,10 +36,11 @@ from formulas import (
 )
 from ink import font, name_of, outside, overlaps, runs, strokes
 
+from calcreport.core.shows import ACCENTS
 from calcreport.layout.fonts import installed_fonts
 from calcreport.layout.mathbox import Formulas, FormulaStyle
 from calcreport.layout.model import Box, Placed
-from calcreport.report.model import Big, Fence, Formula, Fraction, Letters, Operator, Root, Row, Script, Stack
+from calcreport.report.model import Accent, Big, Fence, Formula, Fraction, Letters, Operator, Root, Row, Script, Stack
 
 SIZE = 10.0
 
@@ -288,6 +289,49 @@ def test_scripts_of_a_fence_hang_on_its_top_and_foot(formulas: Formulas) -> None
     assert -power.y == pytest.approx(base.box.ascent - constant("SuperscriptBaselineDropMax"))
 
 
+# ---------------------------------------------------------------- accents
+
+
+def point(glyph: str) -> float:
+    """Where a mark is centred over a glyph, or a mark's own point, in points at 10 pt (MathTopAccentAttachment)."""
+    table = font()["MATH"].table.MathGlyphInfo.MathTopAccentAttachment
+    places = dict(zip(table.TopAccentCoverage.glyphs, table.TopAccentAttachment, strict=True))
+    return float(places[glyph].Value) / 100
+
+
+@pytest.mark.parametrize(
+    ("word", "glyph"), [("bar", "uni0304"), ("hat", "uni0302"), ("tilde", "uni0303"), ("dot", "uni0307")]
+)
+@pytest.mark.parametrize(("letter", "under"), [("y", "u1D466"), ("d", "u1D451"), ("ε", "u1D700"), ("M", "u1D440")])
+def test_a_mark_is_centred_over_its_letter(formulas: Formulas, word: str, glyph: str, letter: str, under: str) -> None:
+    box = formulas.box(Accent(variable(letter), ACCENTS[word]), SIZE)
+    base, mark = runs(box)
+    # read as the letter, then the combining mark (The Unicode Standard, chapter 2: combining marks follow the base)
+    assert (base.text, mark.text) == (letter, ACCENTS[word])
+    assert (name_of(base.glyphs[0]), name_of(mark.glyphs[0])) == (under, glyph)
+    # point over point (OpenType specification, chapter MATH, MathTopAccentAttachment)
+    assert mark.x + point(glyph) == pytest.approx(base.x + point(under))
+    # raised by what the letter stands above AccentBaseHeight (The TeXbook, appendix G, rule 12)
+    glyf = font()["glyf"]
+    assert -mark.y == pytest.approx(max(0.0, glyf[under].yMax / 100 - constant("AccentBaseHeight")))
+    # the mark takes no width, and its ink is clear of the letter and inside the box
+    assert box.width == formulas.box(variable(letter), SIZE).width
+    assert box.ascent == pytest.approx(max(glyf[under].yMax, glyf[glyph].yMax - 100 * mark.y) / 100)
+    assert overlaps(box) == []
+
+
+def test_a_subscript_of_a_marked_letter_stands_where_it_does_without_the_mark(formulas: Formulas) -> None:
+    _, plain = runs(formulas.box(symbol("y", "t"), SIZE))
+    _, _, marked = runs(formulas.box(Script(Accent(variable("y"), ACCENTS["bar"]), Letters("t")), SIZE))
+    assert (marked.x, marked.y) == (plain.x, plain.y)
+
+
+def test_a_mark_in_a_subscript_is_of_its_size(formulas: Formulas) -> None:
+    *_, base, mark = runs(formulas.box(Script(A, Accent(variable("y"), ACCENTS["bar"])), SIZE))
+    assert (base.size, mark.size) == (7.0, 7.0)
+    assert base.y >= mark.y
+
+
 # ---------------------------------------------------------------- fences, stacks, limits
 
 
@@ -445,6 +489,7 @@ def test_nodes_of_every_kind_are_set(formulas: Formulas) -> None:
         brackets("1"),
         Stack((A,)),
         Big(Letters("max")),
+        Accent(variable("y"), ACCENTS["bar"]),
         M_N,
     ]
     assert all(formulas.box(kind, SIZE).width > 0 for kind in kinds)

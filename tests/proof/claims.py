@@ -7,6 +7,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from decimal import Decimal, DivisionByZero, InvalidOperation, localcontext
+from fractions import Fraction
 
 from .account import Account, Desk
 from .arithmetic import NONE, PRECISE, Mixed, Unknown, bare, valued, with_unit
@@ -14,6 +15,7 @@ from .calculations import Calculation
 from .conditions import chain, compare, in_unit, judge
 from .equations import printed_of, symbol_of
 from .expressions import Node, Number, Symbol, Unread, Work, as_printed, parse, split, symbols
+from .feet import agrees
 from .forms import callouts, digits_used, left_symbol, one_form, short, shown_elsewhere, substituted_forms
 from .letters import Token, plain
 from .rows import is_row_formula, other_rows, ratio_columns, row_formula, row_named
@@ -24,6 +26,8 @@ from .units import Printed, rounds_to, unit
 
 #: what keeps a line from being worked
 UNWORKED = (Unread, Unknown, Mixed, ValueError, DivisionByZero, InvalidOperation)
+#: marks of feet and inches
+_MARKS = {"′": "ft", "″": "in."}
 #: two routes with the same printed numbers may differ in the 30th digit
 SLACK = Decimal("1e-30")
 
@@ -87,6 +91,16 @@ def _statement(desk: Desk, statement: Statement) -> int:
         raise Unread(statement.unread)
     if any(item.statement is statement for item in desk.calculation.inline):
         return 0
+    if statement.feet is not None:
+        last = printed_of(split(statement.tokens, "relation")[0][-1])
+        if last is None:
+            raise Unread("feet and inches of no length")
+        desk.count("feet and inches")
+        inch = Fraction(with_unit(Printed("1", 0, last.unit)).number) / Fraction(
+            with_unit(Printed("1", 0, "in.")).number
+        )
+        if not agrees(statement.feet, last, inch):
+            desk.found("feet and inches are worth the decimals", str(statement))
     if statement.kind == "formula":
         return _formula(desk, statement, scope)
     if statement.kind == "check":
@@ -168,8 +182,8 @@ def _spelled(tokens: Sequence[Token]) -> Decimal:
                 row = row[2:]
             elif token.kind == "number":
                 number += Decimal(token.text.replace(",", ""))
-            elif unit(token.text) is not None:
-                total += number * with_unit(Printed("1", 0, token.text)).number
+            elif (name := _MARKS.get(token.text, token.text)) and unit(name) is not None:
+                total += number * with_unit(Printed("1", 0, name)).number
                 number = Decimal(0)
             elif token.text != "-":
                 raise Unread(f"a value spelled {plain(tokens)}")

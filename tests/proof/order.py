@@ -75,7 +75,7 @@ def _missing(line: NumberedLine, page: int, text: str) -> list[str]:
 def _pieces(statement: Statement) -> list[str]:
     found = [squeeze(statement.words)] if statement.words else []
     parts, _ = split(statement.tokens, "relation")
-    result = _flat(parts[-1]) if len(parts) > 1 and statement.kind == "formula" else None
+    result = _flat(parts[-1]) if len(parts) > 1 and statement.kind == "formula" and not statement.feet else None
     found += ["=" + result] if result else []
     if statement.kind == "check":
         found += [piece for piece in (statement.ratio, statement.verdict) if piece]
@@ -84,6 +84,9 @@ def _pieces(statement: Statement) -> list[str]:
 
 def _flat(tokens: Sequence[Token]) -> str | None:
     """Return a row as programs take it out; None where some of it is stacked or raised."""
-    if any(token.kind in ("fraction", "stack", "over", "root") or token.raised or token.power for token in tokens):
+    if any(
+        token.text in ("″", "′") or token.kind in ("fraction", "stack", "over", "root") or token.raised or token.power
+        for token in tokens
+    ):
         return None
     return squeeze(plain(list(tokens)).replace("_", "").replace("*", "×")).replace("-", "−") or None

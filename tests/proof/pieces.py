@@ -18,7 +18,7 @@ from .rules import RULE_REACH, Rule
 
 #: gap that ends a run, and a piece, in type sizes
 RUN_GAP, PIECE_GAP = 0.42, 0.78
-RELATIONS = "=≤≥<>≠"
+RELATIONS = "=≤≥<>≠≈"
 #: math axis above the baseline, in type sizes
 AXIS = 0.258
 

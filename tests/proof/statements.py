@@ -8,6 +8,7 @@ from __future__ import annotations
 import re
 from dataclasses import dataclass, field
 
+from .feet import Feet, part_feet
 from .formulas import read_tokens
 from .letters import Token, plain
 from .pieces import Piece
@@ -30,6 +31,8 @@ class Statement:
     condition: list[Token] = field(default_factory=list)
     ratio: str = ""
     verdict: str = ""
+    #: what its result is in feet and inches
+    feet: Feet | None = None
     #: ink that could not be read
     unread: str = ""
     #: (set, row) named by the heading above or by the words
@@ -145,6 +148,12 @@ class RowReader:
         return tokens, None
 
     def _math(self, tokens: list[Token], y: float, because: tuple[str, list[Token]] | None) -> None:
+        tokens, feet = part_feet(tokens)
+        self._join(tokens, y, because)
+        if feet is not None and self.line.statements:
+            self.line.statements[-1].feet = feet
+
+    def _join(self, tokens: list[Token], y: float, because: tuple[str, list[Token]] | None) -> None:
         statements = self.line.statements
         open_ = statements[-1] if statements and statements[-1].kind in ("formula", "check", "required") else None
         if tokens[-1].kind == "colon":

@@ -7,6 +7,7 @@ in smaller letters if even the longest words do not fit.
 
 from __future__ import annotations
 
+import re
 from dataclasses import dataclass, replace
 
 from calcreport.layout.kit import Kit
@@ -19,6 +20,8 @@ from calcreport.report.model import Column, Table, TableRow, Words
 
 #: Gap between columns, room above and below the text of a row, weight of the rules between rows.
 GUTTER, ABOVE, BELOW, FAINT = 10.0, 2.4, 0.3, 0.2
+#: whole digits of a number, which a point, its decimals and a verdict may follow
+_WHOLE = re.compile(r"[−+]?\d[\d,]*(?=\.\d|$| )")
 #: A word wider than this share of the lane may part rather than keep other columns narrow.
 LONGEST = 0.3
 
@@ -51,6 +54,8 @@ class Grid:
     widths: tuple[float, ...]
     letters: Letters
     lane: Lane
+    #: room behind the last whole digit of a column's numbers, which stand with their points under one another
+    tails: tuple[float, ...]
 
 
 def set_table(kit: Kit, table: Table, lane: Lane) -> tuple[Piece, ...]:
@@ -94,19 +99,47 @@ def grid_of(kit: Kit, table: Table, lane: Lane) -> Grid:
     else:
         widths = tuple(room * wide / sum(least) for wide in least)
     lefts = tuple(lane.left + sum(widths[:place]) + GUTTER * place for place in range(len(columns)))
-    return Grid(columns, lefts, widths, letters, lane)
+    return Grid(columns, lefts, widths, letters, lane, _tails(kit, table, letters))
 
 
 def _widths(kit: Kit, table: Table, letters: Letters, whole: bool) -> tuple[float, ...]:
     """Return each column's natural width, or the least that parts no word."""
     measure = kit.lettering.natural if whole else kit.lettering.longest
     widths = [measure(column.heading, letters.heading) for column in table.columns]
+    tails = _tails(kit, table, letters)
     for row in table.rows:
         face = letters.heavy if row.emphasis else letters.plain
         for place, cell in enumerate(row.cells):
             if cell:
-                widths[place] = max(widths[place], measure(cell, face))
+                lacking = _lacking(kit, cell, face, tails[place])
+                widths[place] = max(widths[place], measure(cell, face) + lacking)
     return tuple(width + 0.1 for width in widths)
+
+
+def _tails(kit: Kit, table: Table, letters: Letters) -> tuple[float, ...]:
+    """Return the widest end behind the whole digits of each column set to the right; 0 for other columns."""
+    tails = [0.0] * len(table.columns)
+    places = [place for place, column in enumerate(table.columns) if column.align == "right"]
+    for row in table.rows:
+        face = letters.heavy if row.emphasis else letters.plain
+        for place in places:
+            tails[place] = max(tails[place], _tail(kit, row.cells[place], face) or 0.0)
+    return tuple(tails)
+
+
+def _tail(kit: Kit, cell: Words, face: TextStyle) -> float | None:
+    """Return what stands behind the whole digits of a number; None where a cell begins with none."""
+    first = cell[0] if cell else None
+    match = _WHOLE.match(first) if isinstance(first, str) else None
+    if match is None or not isinstance(first, str):
+        return None
+    return kit.lettering.natural((first[match.end() :], *cell[1:]), face)
+
+
+def _lacking(kit: Kit, cell: Words, face: TextStyle, tail: float) -> float:
+    """Return how far short of its column's right edge a number ends, its point under the others."""
+    own = _tail(kit, cell, face) if tail else None
+    return 0.0 if own is None else tail - own
 
 
 def _stretched(columns: tuple[Column, ...], natural: tuple[float, ...], room: float) -> tuple[float, ...]:
@@ -135,8 +168,9 @@ def _cells(kit: Kit, grid: Grid, cells: tuple[Words, ...], style: TextStyle, row
     foot = top
     for place, lines in enumerate(set_cells):
         rows.y = top + first - (lines[0].ascent if lines else 0.0)
+        lacking = _lacking(kit, cells[place], style, grid.tails[place])
         for line in lines:
-            x = _aligned(grid, place, line)
+            x = max(grid.lefts[place], _aligned(grid, place, line) - lacking)
             baseline = rows.y + line.ascent
             rows.items.append(Placed(x, baseline, line))
             rows.y = baseline + max(line.descent, style.leading - line.ascent)

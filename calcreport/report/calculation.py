@@ -5,10 +5,13 @@
 
 from __future__ import annotations
 
+import re
+
 from calcreport.core.expression import Name
 from calcreport.core.units import ONE
 from calcreport.report.candidates import candidate_blocks
 from calcreport.report.check_blocks import CheckBlocks
+from calcreport.report.display import unit_text
 from calcreport.report.drawings import draw
 from calcreport.report.forms import Opened, equation_unit
 from calcreport.report.given_blocks import GivenBlocks
@@ -223,4 +226,14 @@ class Composer:
 
     def pieces(self, pieces: tuple[str | int, ...], opened: Opened) -> Words:
         """Return words in which each slot shows its value."""
-        return tuple(p if isinstance(p, str) else self.told.value(p, self.told.key(p, opened)) for p in pieces)
+        words: list[str | Formula] = []
+        stopped = False
+        for piece in pieces:
+            if isinstance(piece, str):
+                # a full stop behind `in.` is that stop
+                words.append(piece[1:] if stopped and re.match(r"\.(?!\w)", piece) else piece)
+            else:
+                words.append(self.told.value(piece, self.told.key(piece, opened)))
+                symbol = self.slots[piece].symbol
+                stopped = symbol.unit is not None and symbol.inches is None and unit_text(symbol.unit).endswith(".")
+        return tuple(words)

@@ -100,7 +100,7 @@ def _statement(desk: Desk, statement: Statement) -> int:
             with_unit(Printed("1", 0, "in.")).number
         )
         if not agrees(statement.feet, last, inch):
-            desk.found("feet and inches are worth the decimals", str(statement))
+            desk.found("two spellings of a given value agree", str(statement))
     if statement.kind == "formula":
         return _formula(desk, statement, scope)
     if statement.kind == "check":

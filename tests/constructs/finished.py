@@ -47,9 +47,12 @@ class Sheet:
         return row[at : at + len(wanted)]
 
 
-def finish(folder: Path, template: str, given: str) -> Sheet:
-    """Build the project and read its sheet."""
+def finish(folder: Path, template: str, given: str, system: str = "us") -> Sheet:
+    """Build the project in a system of units and read its sheet."""
     project, target = write_small(folder, template, given), folder / "package.pdf"
+    if system == "si":
+        _replace(folder / "small.yaml", "units: [us]", "units: [us, si]")
+        _replace(project, "units: us", "units: si")
     built = build(project, target)
     assert built.returncode in (0, 1), built.stdout + built.stderr
     document = pypdfium2.PdfDocument(target)
@@ -59,6 +62,10 @@ def finish(folder: Path, template: str, given: str) -> Sheet:
     frame = find_frame(ink)
     assert frame is not None and frame.lanes is not None
     return Sheet(_numbered(text.partition("PROJECT")[0]), ink, frame, built.returncode)
+
+
+def _replace(file: Path, old: str, new: str) -> None:
+    file.write_text(file.read_text(encoding="utf-8").replace(old, new), encoding="utf-8")
 
 
 def _numbered(text: str) -> dict[int, str]:

@@ -94,6 +94,7 @@ _FORMULA, _WORDS, _NAMES, _HANDED, _LINES = map(named, ("formula", "words", "nam
 _SYMBOL: dict[str, Schema] = {
     "unit": _WORDS, "one of": _NAMES, "kind": _each(choice(symbols.KINDS)), "says": _WORDS,
     "shows": _WORDS, "places": _each(whole(0, 8)),
+    "feet and inches": _each(choice(symbols.INCHES)),
 }  # fmt: skip
 
 

@@ -72,7 +72,7 @@ CONSTRUCTS: dict[str, tuple[str, dict[int, str], int]] = {
     "a part with a value handed": (
         TWICE + HEAD + "  - {part: twice, as: upper, with: {x: 'h - 3 in'}}\n",
         {
-            2: GIVEN[2] + " Twice",
+            2: GIVEN[2] + " Twice: upper",
             # 18 - 3 = 15, 15/12 = 1.25
             3: "distance x = h − 3 in. = 18 − 3 = 15 in. geometry 2",
             4: "factor k = x/b = 15/12 = 1.25 geometry 1 3",

@@ -92,7 +92,7 @@ TEXT = {
     12: "deepest layer, layer bottom ymax = max layer y = 15.5 in. geometry 5",
     13: "factors table pi qi Table 3.1 1 0 1 2 10 0.5",
     # half way: 1 − 0.5/2 = 0.75
-    14: "factor read from the table q = read table: pi=5 qi = 1 + (0.5 − 1)(5 − 0) 10 − 0 = 0.75 Table 3.1 13",
+    14: "factor read from the table q = read table: pi=5 qi = 1 + (0.5 − 1) 5 − 0 10 − 0 = 0.75 Table 3.1 13",
     15: "depth sought, so that b c 2 = S 1 10",
     # √3.3113 = 1.8197, printed at four digits
     16: "c = √S/b = √39.74/12 = 1.820 in. 1 10",

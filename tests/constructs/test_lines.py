@@ -99,7 +99,7 @@ TEXT = {
     # 12(3.3124) = 39.749, at three digits as the other side
     17: "left side there b c 2 = 12 (1.8202 ) = 39.7 in.³ 1 16",
     18: "right side there S = 39.7 in.³ 10",
-    19: "twice the width z = 2 b = 2 (12) = 24 in. geometry 1 layer bottom",
+    19: "twice the width z = 2 b = 2 (12) = 24 in. geometry 1 layer bottom, which governs",
     # 2.37(60) = 142.2
     20: "force of a layer f = Ai (60 ksi) = 2.37 (60) = 142.2 kip statics 5",
     21: "CHECK layer force f/100 kip = 142.2/100 1.422 NG 5.1 20",

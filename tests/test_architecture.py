@@ -20,16 +20,16 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
     ("core", (
         "core", "core.explained_files", "core.explained_projects", "core.explained_schedules",
         "core.explained_templates", "core.explanations", "core.expression", "core.figures", "core.fontfile",
-        "core.grammar", "core.kept", "core.late", "core.problems", "core.quantity", "core.record", "core.shows", "core.source",
+        "core.grammar", "core.inputs", "core.kept", "core.late", "core.methods", "core.problems", "core.quantity", "core.record", "core.shows", "core.source",
         "core.tokens", "core.units", "core.version", "core.world",
     )),
     ("methods", (
-        "methods", "methods.roots",
+        "methods", "methods.fibres", "methods.members", "methods.results", "methods.roots", "methods.table",
     )),
     ("read", (
         "read", "read.bars", "read.bodies", "read.calculations", "read.candidates", "read.cases", "read.codes",
         "read.columns", "read.fields", "read.filled", "read.formulas", "read.gathering", "read.given", "read.library",
-        "read.lines", "read.links", "read.lost", "read.made_rows", "read.malformed", "read.model", "read.nodes",
+        "read.lines", "read.links", "read.lost", "read.made_rows", "read.malformed", "read.method_lines", "read.model", "read.nodes",
         "read.project", "read.project_model", "read.project_schema", "read.row_tables", "read.schedules", "read.shapes",
         "read.sheets", "read.single_values", "read.symbols", "read.tables", "read.template_model",
         "read.template_schema", "read.template_tables", "read.together", "read.values", "read.variants", "read.words",
@@ -37,24 +37,24 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
     )),
     ("plan", (
         "plan", "plan.below", "plan.checks", "plan.closed", "plan.dimensions", "plan.equations", "plan.figures",
-        "plan.formula_dimensions", "plan.link", "plan.links", "plan.made", "plan.model", "plan.names", "plan.parts",
+        "plan.formula_dimensions", "plan.handed", "plan.link", "plan.links", "plan.made", "plan.methods", "plan.model", "plan.names", "plan.parts",
         "plan.placing", "plan.proofs", "plan.space",
     )),
     ("calculate", (
-        "calculate", "calculate.basis", "calculate.cases", "calculate.compile", "calculate.evaluate",
+        "calculate", "calculate.analysed", "calculate.basis", "calculate.cases", "calculate.compile", "calculate.evaluate",
         "calculate.exact", "calculate.handing", "calculate.judging", "calculate.linking", "calculate.margins",
         "calculate.model", "calculate.project", "calculate.reachable", "calculate.reached", "calculate.release",
         "calculate.selection",
     )),
     ("second", (
-        "second", "second.agreement", "second.quantities", "second.rework",
+        "second", "second.agreement", "second.closures", "second.quantities", "second.rework",
     )),
     ("history", ("history", "history.accounts", "history.differences", "history.model")),
     ("report", (
         "report", "report.below", "report.calculation", "report.candidates", "report.chains", "report.check_blocks", "report.compared",
         "report.compose", "report.confirmations", "report.digits", "report.display", "report.drawings",
         "report.editions", "report.editions_text", "report.families", "report.forms", "report.formula_model",
-        "report.fronts", "report.given_blocks", "report.governing", "report.items", "report.members", "report.model",
+        "report.fronts", "report.given_blocks", "report.governing", "report.items", "report.members", "report.method_blocks", "report.model",
         "report.notation", "report.premises", "report.row_blocks", "report.sampler", "report.script", "report.spaced",
         "report.substitution", "report.summary", "report.taken", "report.told", "report.traced", "report.valuesfile",
     )),
@@ -104,7 +104,7 @@ SEES: dict[str, frozenset[str]] = {
 #: libraries, each behind its one address
 LIBRARIES = {"yaml": "read.nodes"}
 #: libraries that core.late loads by name when they are needed, and those the program does without
-LATE = ("sympy", "pint", "mpmath", "scipy", "reportlab", "fontTools", "openpyxl", "xlsxwriter")
+LATE = ("numpy", "sympy", "pint", "mpmath", "scipy", "reportlab", "fontTools", "openpyxl", "xlsxwriter")
 #: names that must not be called, with the modules where one may be and why
 BANNED: dict[str, tuple[str, ...]] = {
     "eval": (), "compile": (), "__import__": (), "sympify": (), "parse_expr": (), "lambdify": (), "breakpoint": (),

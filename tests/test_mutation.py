@@ -238,6 +238,16 @@ def test_no_formula_of_the_library_is_passed_over() -> None:
         assert not missing, (variant.name, variant.words, sorted(missing)[:3])
 
 
+def test_a_method_and_its_twin_are_altered_too() -> None:
+    """Inputs of a method, the words that choose, the line as a whole; outputs of one dimension exchanged."""
+    found = mutants_of("aci318/flexure-layers", read_shelf(Disk(Path(), library_folder())))
+    said = {(mutant.line, mutant.says) for mutant in found}
+    assert ("section by fibres", "displaced is kept") in said
+    assert ("section by fibres", "line left out") in said
+    assert ("f of section by fibres", "1.01 × 0.85") in said
+    assert ("M_n by another method", "1.01 × 0.005") in said
+
+
 def test_a_template_that_is_wrong_already_is_refused(tmp_path: Path) -> None:
     with pytest.raises(Unsound, match="differs"):
         shelf(tmp_path, cases(), PLATE.replace("k*f*A", "k*f*A*1.1"))

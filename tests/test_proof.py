@@ -116,6 +116,10 @@ def test_checks_and_comparisons_read_true(proof: Proof) -> None:
     assert proof.account.counts["comparisons"] > 2
 
 
+def test_a_method_closes(proof: Proof) -> None:
+    none_of(proof.account.findings, "a method closes")
+
+
 def test_a_condition_names_what_the_sheet_shows(proof: Proof) -> None:
     none_of(proof.account.findings, "a condition names what the sheet shows")
 

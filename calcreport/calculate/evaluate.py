@@ -11,6 +11,7 @@ import math
 from collections.abc import Callable
 from dataclasses import dataclass, replace
 
+from calcreport.calculate.analysed import hand_over, keep_result
 from calcreport.calculate.compile import condition, formula
 from calcreport.calculate.judging import comparisons, deciding, kind_of, ratio_of
 from calcreport.calculate.model import (
@@ -26,6 +27,7 @@ from calcreport.calculate.model import (
     PlannedFigure,
     PlannedGives,
     PlannedLine,
+    PlannedMethod,
     PlannedPart,
     PlannedRequire,
     PlannedRows,
@@ -43,6 +45,7 @@ from calcreport.calculate.model import (
     WorkedFigure,
     WorkedGives,
     WorkedLine,
+    WorkedMethod,
     WorkedPart,
     WorkedRequire,
     WorkedRows,
@@ -51,7 +54,9 @@ from calcreport.calculate.model import (
 )
 from calcreport.core.expression import Compare, Condition, Expression, Name
 from calcreport.core.source import Citation, Span
+from calcreport.methods.results import NoResult
 from calcreport.methods.roots import NoRoot, find_root
+from calcreport.methods.table import WORKS
 
 #: rows of one set at most
 MOST_ROWS = 1000
@@ -208,6 +213,8 @@ class _Run:
                 return self.rows(line)
             case PlannedFigure():
                 return WorkedFigure(line, self.opened)
+            case PlannedMethod():
+                return self.method(line)
 
     # -------------------------------------------------------- values
 
@@ -357,6 +364,17 @@ class _Run:
             return None
         return fits[0][0], larger, fits[0][1]
 
+    def method(self, line: PlannedMethod) -> WorkedLine:
+        """Work a method; one that has no result stops the calculation."""
+        handed = hand_over(line, self.values, lambda node: self.value(node, line.span, line.cite))
+        try:
+            result = WORKS[line.kind](handed, self.values.spend)
+        except (NoResult, NoValue) as error:
+            raise _Stopped(Stop(line.span, f"{line.kind}: {error}", line.cite.printed)) from error
+        keep_result(line, result, self.values, self.put)
+        self.values.results[id(line), tuple(sorted(self.opened))] = result
+        return WorkedMethod(line, result, self.opened)
+
     def put(self, slot: int, value: float) -> None:
         """Store a value that no formula gave; what was worked exactly from an earlier one is forgotten."""
         self.values.exact.clear()
@@ -442,9 +460,11 @@ class _Run:
         ratio, side = chosen if chosen is not None else (None, None)
         reason = ""
         verdict: Verdict = "OK" if ok else "NG"
-        if side is not None and ratio is None and side.test.op not in ("=", "!="):
+        if line.bare:
+            ratio = None
+        elif side is not None and ratio is None and side.test.op not in ("=", "!="):
             reason = "no ratio: the capacity is not above zero"
-        kind: Kind = kind_of(side.test) if side is not None else "condition"
+        kind: Kind = kind_of(side.test) if side is not None and not line.bare else "condition"
         worked = WorkedCheck(line, verdict, side, ratio, kind, reason, None, self.opened)
         self.checks.append(worked)
         return worked

@@ -13,14 +13,15 @@ from typing import Literal, TypeAlias
 
 from calcreport.core.expression import Compare, Condition, Expression
 from calcreport.core.source import Span
+from calcreport.methods.results import Result
 from calcreport.plan.model import (
     MEMBER,
     BarCallout,
+    BoundInput,
     Calculation,
     Candidate,
     Case,
     Expected,
-    FigureInput,
     GivenPairs,
     GivenRows,
     GivenValue,
@@ -36,6 +37,7 @@ from calcreport.plan.model import (
     PlannedGiven,
     PlannedGives,
     PlannedLine,
+    PlannedMethod,
     PlannedPart,
     PlannedRequire,
     PlannedRows,
@@ -90,6 +92,10 @@ class Values:
     rough: bool = False
     #: work done so far
     spent: int = 0
+    #: the method that gave a value, by (slot, key)
+    by_method: dict[tuple[int, Key], PlannedMethod] = field(default_factory=dict)
+    #: what a method came to, by identity of its line and the rows open around it, in order of their sets
+    results: dict[tuple[int, tuple[tuple[int, int], ...]], Result] = field(default_factory=dict)
 
     def spend(self, work: int) -> None:
         """Count work; raises `NoValue` beyond the bound."""
@@ -261,6 +267,28 @@ class WorkedFigure:
     open: tuple[tuple[int, int], ...]
 
 
+@dataclass(frozen=True, slots=True)
+class WorkedMethod:
+    """A method worked, with its outputs and the sums that prove them."""
+
+    line: PlannedMethod
+    result: Result
+    open: tuple[tuple[int, int], ...]
+
+    def places(self, values: Values) -> tuple[tuple[int, Key], ...]:
+        """Return slot and key of every value taken here, rows of the sets made included."""
+        rows = dict(self.open)
+        found: list[tuple[int, Key]] = []
+        for slot, _ in self.line.outputs:
+            if not values.sets[slot]:
+                found.append((slot, ()))
+                continue
+            for key in values.rows[slot]:
+                if all(rows.get(index, row) == row for index, row in zip(values.sets[slot], key, strict=True)):
+                    found.append((slot, key))
+        return tuple(found)
+
+
 WorkedLine: TypeAlias = (
     WorkedGives
     | WorkedText
@@ -272,6 +300,7 @@ WorkedLine: TypeAlias = (
     | WorkedCheck
     | WorkedRequire
     | WorkedFigure
+    | WorkedMethod
 )
 
 
@@ -437,12 +466,12 @@ class WorkedProject:
 __all__ = [
     "MEMBER",
     "BarCallout",
+    "BoundInput",
     "Calculation",
     "Candidate",
     "Case",
     "Comparison",
     "Expected",
-    "FigureInput",
     "GivenPairs",
     "GivenRows",
     "GivenValue",
@@ -462,6 +491,7 @@ __all__ = [
     "PlannedGiven",
     "PlannedGives",
     "PlannedLine",
+    "PlannedMethod",
     "PlannedPart",
     "PlannedRequire",
     "PlannedRows",
@@ -488,6 +518,7 @@ __all__ = [
     "WorkedFigure",
     "WorkedGives",
     "WorkedLine",
+    "WorkedMethod",
     "WorkedPart",
     "WorkedProject",
     "WorkedRequire",

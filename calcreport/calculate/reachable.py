@@ -17,6 +17,7 @@ from calcreport.calculate.model import (
     PlannedFigure,
     PlannedGives,
     PlannedLine,
+    PlannedMethod,
     PlannedPart,
     PlannedRequire,
     PlannedRows,
@@ -92,7 +93,8 @@ class Reachable:
                     arm = self._add((id(line), number), "arm", f"branch {words}", at, _some(block.when), own)
                     self._lines(block.lines, arm or own or outer)
             case PlannedCheck():
-                for outcome in ("OK", "NG"):
+                # two methods that part are no case of the rule: nobody can hand over values for which they do
+                for outcome in ("OK",) if line.bare else ("OK", "NG"):
                     self._add((id(line), outcome), "check", f"{name} {outcome}", line.span, nodes, own)
             case PlannedRequire():
                 self._add((id(line), "unmet"), "require", f"{name} not met", line.span, nodes, own)
@@ -135,6 +137,8 @@ class Reachable:
                 return f"require {text_of(condition)}"
             case PlannedFigure(kind):
                 return f"figure {kind}"
+            case PlannedMethod(kind):
+                return f"method {kind}"
 
     # -------------------------------------------------------- tables
 
@@ -190,6 +194,8 @@ def nodes_of(line: PlannedLine) -> Iterator[Node]:
                 yield from _some(entry.when)
                 for cell in entry.cells:
                     yield from _cell(cell)
+        case PlannedMethod(inputs=inputs):
+            yield from (given.formula for given in inputs if given.formula is not None)
         case PlannedUnknown():
             yield from (line.low, line.high, line.left, line.right)
         case _:

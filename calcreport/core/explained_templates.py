@@ -93,7 +93,7 @@ Of `show: figure` nothing but figures reaches the sheets; what must be read woul
 
     - {each: point, show: figure, lines: [{check: it, …}]}      wrong
     - {each: point, lines: [{check: it, …}]}                    right""",
-    "not-in-unknown": """A check or figure stands among the lines of an `unknown`.
+    "not-in-unknown": """A check, a figure or a method stands among the lines of an `unknown`.
 Those lines are worked once a trial, many times over, so nothing can be judged or drawn there.
 
     - {unknown: c, …, lines: [{check: it, …}]}      wrong

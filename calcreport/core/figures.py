@@ -5,54 +5,36 @@ Declares names, shapes and dimensions of inputs; planning holds templates agains
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-from typing import Literal
-
+from calcreport.core.inputs import InputKind
 from calcreport.core.units import FORCE, LENGTH, NONE, Dimension, divide, multiply
 
 
-@dataclass(frozen=True, slots=True)
-class FigureInputKind:
-    """What one input takes."""
-
-    #: a number; a number for every row of the set handed as `rows` (or one for all of them); a set; a word
-    shape: Literal["number", "row number", "set", "word"]
-    dimension: Dimension = NONE
-    needed: bool = True
-    #: its symbol is printed beside it: only a symbol, or 0, may be handed
-    named: bool = False
-    #: input whose set a row number belongs to
-    rows: str = ""
-    #: words it knows
-    words: tuple[str, ...] = ()
+def _named(dimension: Dimension, *, needed: bool = True) -> InputKind:
+    return InputKind("number", dimension, needed, named=True)
 
 
-def _named(dimension: Dimension, *, needed: bool = True) -> FigureInputKind:
-    return FigureInputKind("number", dimension, needed, named=True)
+def _number(dimension: Dimension, *, needed: bool = True) -> InputKind:
+    return InputKind("number", dimension, needed)
 
 
-def _number(dimension: Dimension, *, needed: bool = True) -> FigureInputKind:
-    return FigureInputKind("number", dimension, needed)
-
-
-def _row(rows: str, dimension: Dimension, *, named: bool = False) -> FigureInputKind:
-    return FigureInputKind("row number", dimension, named=named, rows=rows)
+def _row(rows: str, dimension: Dimension, *, named: bool = False) -> InputKind:
+    return InputKind("row number", dimension, named=named, rows=rows)
 
 
 _MOMENT, _SPREAD = multiply(FORCE, LENGTH), divide(FORCE, LENGTH)
 
 #: inputs by name, by kind of figure
-FIGURES: dict[str, dict[str, FigureInputKind]] = {
+FIGURES: dict[str, dict[str, InputKind]] = {
     "beam section": {
         "b": _named(LENGTH), "h": _named(LENGTH), "c_c": _number(LENGTH), "d_s": _number(LENGTH),
-        "face": FigureInputKind("word", words=("bottom", "top")),
-        "layers": FigureInputKind("set"), "n": _row("layers", NONE), "d_b": _row("layers", LENGTH),
+        "face": InputKind("word", words=("bottom", "top")),
+        "layers": InputKind("set"), "n": _row("layers", NONE), "d_b": _row("layers", LENGTH),
         "y": _row("layers", LENGTH),
         "c": _named(LENGTH, needed=False), "a": _named(LENGTH, needed=False),
         "eps_cu": _named(NONE, needed=False), "eps_t": _named(NONE, needed=False),
     },
     "span": {
-        "l": _named(LENGTH), "loads": FigureInputKind("set"), "w": _row("loads", _SPREAD, named=True),
+        "l": _named(LENGTH), "loads": InputKind("set"), "w": _row("loads", _SPREAD, named=True),
         "P": _row("loads", FORCE, named=True), "x_P": _number(LENGTH), "M_u": _named(_MOMENT),
         "pinned": _number(LENGTH, needed=False), "roller": _number(LENGTH, needed=False),
         "fixed": _number(LENGTH, needed=False), "x_u": _number(LENGTH, needed=False),

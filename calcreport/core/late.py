@@ -10,7 +10,7 @@ from types import ModuleType
 from typing import Literal
 
 
-def load(name: Literal["mpmath", "sympy", "pint", "scipy.optimize", "openpyxl", "xlsxwriter"]) -> ModuleType:
+def load(name: Literal["mpmath", "sympy", "pint", "scipy.optimize", "numpy", "openpyxl", "xlsxwriter"]) -> ModuleType:
     """Return a library of the closed list, importing it the first time."""
     return import_module(name)
 

@@ -20,6 +20,7 @@ from calcreport.calculate.model import (
     WorkedEach,
     WorkedGives,
     WorkedLine,
+    WorkedMethod,
     WorkedPart,
     WorkedRequire,
     WorkedRows,
@@ -110,6 +111,10 @@ class _Entries:
                     yield from self.lines(line.lines)
                 case WorkedRows():
                     yield from self.made(line)
+                case WorkedMethod():
+                    text, cite = f"method: {line.line.kind}", line.line.cite.printed
+                    for slot, key in line.places(self.values):
+                        yield self.value("value", slot, key, text, "", cite), (slot, key)
                 case WorkedBranches() | WorkedPart():
                     yield from self.lines(line.lines)
                 case WorkedEach():

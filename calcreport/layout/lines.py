@@ -192,7 +192,7 @@ def set_statement(kit: Kit, statement: Statement, lane: Lane) -> Piece:
     else:
         baseline = rows.words(words, PLAIN, lane.left) if words else -1.0
         room = lane.width - INDENT
-        for place, box in enumerate(kit.rows(statement.formula, room)):
+        for place, box in enumerate(kit.rows(statement.formula, room) if formula.width else ()):
             x = lane.left + INDENT + (HANG if place else 0.0)
             first = rows.row(((x, box),), ROW)
             baseline = first if baseline < 0 else baseline

@@ -14,9 +14,11 @@ from calcreport.read.model import (
     Each,
     Gives,
     Line,
+    Method,
     PartBody,
     PartUse,
     Rows,
+    Twin,
     Unknown,
 )
 
@@ -41,6 +43,8 @@ def given_below(lines: tuple[Line, ...]) -> Iterator[str]:
             case Broken(names, inner):
                 yield from (name for name in names if name != EVERY)
                 yield from given_below(inner)
+            case Method() | Twin():
+                yield from line.names()
             case PartUse(PartBody() as body, _, stem):
                 own = [name.name for name in body.gives] or [n.symbol.name for n in body.lines if isinstance(n, Gives)]
                 yield from (f"{stem}.{name}" if stem else name for name in own)

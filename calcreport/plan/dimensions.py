@@ -7,10 +7,14 @@ from __future__ import annotations
 
 from calcreport.core.expression import Call, Expression, Name, Number, walk
 from calcreport.core.figures import FIGURES
+from calcreport.core.inputs import InputKind
+from calcreport.core.methods import METHODS
 from calcreport.core.problems import Problems
+from calcreport.core.source import Span
 from calcreport.core.units import ONE, dimension_words
 from calcreport.plan.formula_dimensions import AnyDimension, FormulaHolder
 from calcreport.plan.model import (
+    BoundInput,
     Plan,
     PlannedBranches,
     PlannedCheck,
@@ -18,6 +22,7 @@ from calcreport.plan.model import (
     PlannedFigure,
     PlannedGives,
     PlannedLine,
+    PlannedMethod,
     PlannedPart,
     PlannedRequire,
     PlannedRows,
@@ -67,7 +72,9 @@ class _Holder(FormulaHolder):
             case PlannedRequire(condition):
                 self.condition(condition)
             case PlannedFigure():
-                self.figure(line)
+                self.inputs(line.inputs, FIGURES.get(line.kind, {}), "figure", line.span)
+            case PlannedMethod():
+                self.method(line)
 
     def rows(self, line: PlannedRows) -> None:
         for column in line.columns:
@@ -114,21 +121,35 @@ class _Holder(FormulaHolder):
         root = f"qty(sqrt(num({name}, {unit.text})), {unit.text})"
         return f"where the clause takes {name} by its number in {unit.text}, write {root}"
 
-    def figure(self, line: PlannedFigure) -> None:
-        """Hold the numbers handed to a figure against what it takes."""
-        takes = FIGURES.get(line.kind, {})
-        for given in line.inputs:
+    def method(self, line: PlannedMethod) -> None:
+        """Hold what a method is handed, and what it gives against the units of our symbols."""
+        kind = METHODS[line.kind]
+        self.inputs(line.inputs, kind.takes, "method", line.span)
+        gives = {**kind.gives, **{name: found for columns in kind.sets.values() for name, found in columns.items()}}
+        for index, output in line.outputs:
+            slot, wanted = self.slots[index], gives[output]
+            unit = slot.symbol.unit
+            if unit is None or unit.dimension != wanted:
+                self.problems.add(
+                    "unit-mismatch", slot.span, f"the method gives another quantity as `{output}`",
+                    expected=f"{dimension_words(wanted)}, which `{output}` is",
+                    found=dimension_words(unit.dimension) if unit else "a word",
+                )  # fmt: skip
+
+    def inputs(self, inputs: tuple[BoundInput, ...], takes: dict[str, InputKind], what: str, at: Span) -> None:
+        """Hold the numbers handed to a figure or a method against what it takes."""
+        for given in inputs:
             wanted = takes[given.name].dimension
             slot = self.slots[given.slot] if given.slot >= 0 else None
             if given.formula is not None:
-                self.need(given.formula, wanted, f"the figure takes another quantity for `{given.name}`")
+                self.need(given.formula, wanted, f"the {what} takes another quantity for `{given.name}`")
             elif slot is not None and takes[given.name].shape in ("number", "row number"):
                 unit = slot.symbol.unit
                 if unit is None or unit.dimension != wanted:
                     self.problems.add(
                         "unit-mismatch",
-                        given.span or line.span,
-                        f"the figure takes another quantity for `{given.name}`",
+                        given.span or at,
+                        f"the {what} takes another quantity for `{given.name}`",
                         expected=dimension_words(wanted),
                         found=dimension_words(unit.dimension) if unit else "a word",
                     )

@@ -16,6 +16,7 @@ from calcreport.plan.checks import CheckNames
 from calcreport.plan.equations import balanced
 from calcreport.plan.figures import plan_figure
 from calcreport.plan.made import plan_rows
+from calcreport.plan.methods import plan_method, plan_twin
 from calcreport.plan.model import (
     Given,
     Plan,
@@ -48,11 +49,13 @@ from calcreport.read.model import (
     Each,
     Gives,
     Line,
+    Method,
     PartBody,
     PartUse,
     Require,
     Rows,
     Text,
+    Twin,
     Unknown,
 )
 
@@ -154,6 +157,10 @@ class _Linker:
             case Broken(lost, inner, span):
                 space.told.update(lost)
                 return PlannedPart("", "", self.lines(inner, space, at), span)
+            case Method():
+                return plan_method(line, names, self.maker, space, at)
+            case Twin():
+                return plan_twin(line, names, self.maker, space, at, self.checks)
 
     def piece(self, piece: str | Name, space: Space, at: Context) -> str | int:
         if isinstance(piece, str):
@@ -222,7 +229,11 @@ class _Linker:
                 unseen.span.part(0, 1),
                 "this line would stand on no sheet",
                 expected="lines that a figure rests on",
-                found="a check" if isinstance(unseen, Check) else f"a `{unseen.kind}` line",
+                found=f"a `{unseen.kind}` line"
+                if isinstance(unseen, Text)
+                else "a method, whose proof must be read"
+                if isinstance(unseen, Method)
+                else "a check",
                 hint="leave out `show: figure`, or put the line after the block",
             )
         # what is not known inside may be a column of a set that could not be made out
@@ -242,7 +253,7 @@ class _Linker:
                 inner.span.part(0, 1),
                 "this line cannot stand among the lines of an `unknown`",
                 expected="lines that are worked once a trial",
-                found="a check or a figure",
+                found="a check, a figure or a method",
                 hint="put it after the `unknown`",
             )
         lines = self.lines(line.lines, space, at)

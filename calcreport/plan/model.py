@@ -201,13 +201,14 @@ class PlannedPart:
 
 @dataclass(frozen=True, slots=True)
 class PlannedCheck:
-    """A check; `name` carries the stem of the part it stands in."""
+    """A check; `name` carries the stem of the part it stands in. A `bare` one is a condition without a ratio."""
 
     name: str
     holds: Condition
     says: str
     cite: Citation
     span: Span
+    bare: bool = False
 
 
 @dataclass(frozen=True, slots=True)
@@ -227,8 +228,8 @@ class PlannedRequire:
 
 
 @dataclass(frozen=True, slots=True)
-class FigureInput:
-    """One input of a figure: a slot, a set, a formula, or a word of the figure's own (each else empty)."""
+class BoundInput:
+    """One input of a figure or a method: a slot, a set, a formula, or a word of its own (each else empty)."""
 
     name: str
     slot: int = -1
@@ -244,7 +245,21 @@ class PlannedFigure:
     """A figure with its inputs bound."""
 
     kind: str
-    inputs: tuple[FigureInput, ...]
+    inputs: tuple[BoundInput, ...]
+    span: Span
+
+
+@dataclass(frozen=True, slots=True)
+class PlannedMethod:
+    """A method with its inputs bound, and the slots and sets its outputs fill."""
+
+    kind: str
+    inputs: tuple[BoundInput, ...]
+    #: (slot, name of the output or of a set's column)
+    outputs: tuple[tuple[int, str], ...]
+    #: (set of ours, name of the set it makes)
+    sets: tuple[tuple[int, str], ...]
+    cite: Citation
     span: Span
 
 
@@ -259,6 +274,7 @@ PlannedLine: TypeAlias = (
     | PlannedCheck
     | PlannedRequire
     | PlannedFigure
+    | PlannedMethod
 )
 
 
@@ -280,11 +296,11 @@ class Plan:
 __all__ = [
     "MEMBER",
     "BarCallout",
+    "BoundInput",
     "Calculation",
     "Candidate",
     "Case",
     "Expected",
-    "FigureInput",
     "Given",
     "GivenPairs",
     "GivenRows",
@@ -305,6 +321,7 @@ __all__ = [
     "PlannedGiven",
     "PlannedGives",
     "PlannedLine",
+    "PlannedMethod",
     "PlannedPart",
     "PlannedRequire",
     "PlannedRows",

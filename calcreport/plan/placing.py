@@ -7,14 +7,14 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 
-from calcreport.read.model import Branches, Check, Drawing, Each, Line, PartBody, PartUse, Text, Unknown
+from calcreport.read.model import Branches, Check, Drawing, Each, Line, Method, PartBody, PartUse, Text, Twin, Unknown
 
 
 def once_only(lines: tuple[Line, ...]) -> Iterator[Line]:
     """Yield the lines, at any depth and in parts, that have no place in the trials of an unknown."""
     for line in lines:
         match line:
-            case Check() | Drawing():
+            case Check() | Drawing() | Method() | Twin():
                 yield line
             case Branches(arms):
                 for arm in arms:
@@ -23,11 +23,11 @@ def once_only(lines: tuple[Line, ...]) -> Iterator[Line]:
                 yield from once_only(inner)
 
 
-def needs_paper(lines: tuple[Line, ...]) -> Iterator[Check | Text]:
+def needs_paper(lines: tuple[Line, ...]) -> Iterator[Check | Text | Method | Twin]:
     """Yield the lines, at any depth and in parts, that must be read on a sheet."""
     for line in lines:
         match line:
-            case Check() | Text(kind="caution" | "assume" | "use"):
+            case Check() | Method() | Twin() | Text(kind="caution" | "assume" | "use"):
                 yield line
             case Branches(arms):
                 for arm in arms:

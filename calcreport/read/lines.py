@@ -8,13 +8,14 @@ from __future__ import annotations
 from collections.abc import Callable
 from dataclasses import dataclass
 
-from calcreport.core.expression import Expression, Name
+from calcreport.core.expression import Name
 from calcreport.core.problems import Problems, listed
 from calcreport.core.source import Span
-from calcreport.read.fields import Fields, as_mapping, say_not_yet
+from calcreport.read.fields import Fields, as_mapping
 from calcreport.read.formulas import FormulaReader
 from calcreport.read.lost import lost_names
 from calcreport.read.made_rows import ReadTable, RowsReader
+from calcreport.read.method_lines import MethodReader, read_handed
 from calcreport.read.model import (
     EVERY,
     Arm,
@@ -42,10 +43,10 @@ KINDS: dict[str, tuple[str, ...]] = {
     "gives": ("formula", "branches", *OWN_KEYS, "cite", "as cited"),
     "branches": (), "rows": ("columns", "list", "spaced", "file", "says", "cite"), "each": ("lines", "table", "show"),
     "part": ("as", "same", "with"), "check": ("holds", "says", "cite"), "require": ("says", "cite"),
-    "figure": ("with",), "unknown": ("between", "satisfies", "lines", *OWN_KEYS),
+    "figure": ("with",), "method": ("with", "gives", "as", "cite"),
+    "by another method": ("method", "with", "output", "within", "cite"),
+    "unknown": ("between", "satisfies", "lines", *OWN_KEYS),
 }  # fmt: skip
-#: kinds of lines that the language has and this version does not read
-_LATER = ("method", "by another method")
 #: keys of a case of one value, and of a case that holds lines
 ARM_KEYS, BRANCH_KEYS = ("when", "formula", "otherwise"), ("when", "lines", "otherwise", "says")
 SHOWN = ("every", "figure")
@@ -86,11 +87,7 @@ class LineReader:
         if mapping is None:
             return None
         keys = [key.text for key, _ in mapping.entries]
-        later = next((key for key, _ in mapping.entries if key.text in _LATER), None)
-        if later is not None:
-            say_not_yet(later, self.problems)
-            return None
-        kind = next((key for key in keys if key in KINDS and not (key == "branches" and "gives" in keys)), "")
+        kind = _kind_of(keys)
         if kind == "branches" and not {*keys} <= {"branches", "only"}:
             kind = ""
         if not kind:
@@ -101,7 +98,8 @@ class LineReader:
         readers: dict[str, Callable[[Fields], Line | None]] = {
             "gives": self.gives, "branches": self.branches, "rows": self.rows, "each": self.each,
             "part": self.part, "check": self.check, "require": self.require, "figure": self.figure,
-            "unknown": self.unknown,
+            "unknown": self.unknown, "method": MethodReader(self.formulas, self.document).method,
+            "by another method": MethodReader(self.formulas, self.document).twin,
         }  # fmt: skip
         reader = readers.get(kind)
         return reader(fields) if reader else self.text(kind, fields)
@@ -112,7 +110,7 @@ class LineReader:
         self.problems.add(
             "unknown-line", first.span if first else mapping.span.part(0, 1), "this is not a kind of line",
             expected="a line that begins with " + listed(KINDS), found=word[:40] or "nothing",
-            hint=self.problems.near(word, (*KINDS, *_LATER)),
+            hint=self.problems.near(word, KINDS),
         )  # fmt: skip
 
     # -------------------------------------------------------- kinds
@@ -249,13 +247,8 @@ class LineReader:
 
     def figure(self, fields: Fields) -> Line | None:
         kind = fields.scalar("figure", required=True)
-        inputs = self.handed(fields)
+        inputs = read_handed(fields, self.formulas)
         return Drawing(Name(kind.text, kind.span), inputs, fields.span) if kind is not None else None
-
-    def handed(self, fields: Fields) -> tuple[tuple[Name, Expression | None], ...]:
-        mapping = fields.mapping("with")
-        entries = mapping.entries if mapping else ()
-        return tuple((Name(key.text, key.span), self.formulas.formula(value)) for key, value in entries)
 
     def part(self, fields: Fields) -> Line | None:
         name = fields.scalar("part", required=True)
@@ -263,8 +256,16 @@ class LineReader:
         if stem is not None and not hold_name(stem, self.problems):
             stem = None
         same = tuple(Name(scalar.text, scalar.span) for scalar in fields.texts("same"))
-        handed = self.handed(fields)
+        handed = read_handed(fields, self.formulas)
         if name is None:
             return None
         body = self.read_part(name.text, name.span)
         return PartUse(body, Name(name.text, name.span), stem.text if stem else "", same, handed, fields.span)
+
+
+def _kind_of(keys: list[str]) -> str:
+    """Return the kind of a line by its keys; a key that other kinds have too gives way to the one that has it."""
+    for kind in ("by another method", "method"):
+        if kind in keys:
+            return kind
+    return next((key for key in keys if key in KINDS and not (key == "branches" and "gives" in keys)), "")

@@ -8,6 +8,7 @@ from __future__ import annotations
 import re
 from collections.abc import Iterator
 
+from calcreport.core.methods import AGAIN, APART
 from calcreport.read.model import (
     EVERY,
     Branches,
@@ -16,8 +17,10 @@ from calcreport.read.model import (
     Given,
     Gives,
     Line,
+    Method,
     PartUse,
     Rows,
+    Twin,
     Unknown,
 )
 from calcreport.read.nodes import Mapping, Node, Scalar, Sequence, Told
@@ -67,6 +70,12 @@ def _named(node: Node) -> Iterator[str]:
     for key, value in node.entries:
         if key.text in _GIVING and isinstance(value, Scalar):
             yield value.text
+        elif key.text == "gives" and isinstance(value, Mapping):
+            stem = node.get("as")
+            mark = f"{stem.text}." if isinstance(stem, Scalar) else ""
+            yield from (mark + ours.text for ours, _ in value.entries)
+        elif key.text == "by another method" and isinstance(value, Scalar):
+            yield from (f"{value.text}.{word}" for word in (AGAIN, APART))
         elif key.text == "columns" and isinstance(value, Mapping):
             yield from (column.text for column, _ in value.entries)
         elif key.text == "spaced" and isinstance(value, Mapping):
@@ -114,5 +123,7 @@ def _given(line: Line) -> Iterator[str]:
         case Rows(name, columns):
             yield name
             yield from (column.symbol.name for column in columns)
+        case Method() | Twin():
+            yield from line.names()
         case PartUse():
             pass

@@ -42,6 +42,8 @@ from calcreport.read.template_model import (
     Gives,
     Line,
     MadeColumn,
+    Method,
+    Output,
     PartBody,
     PartUse,
     Range,
@@ -52,6 +54,7 @@ from calcreport.read.template_model import (
     System,
     Template,
     Text,
+    Twin,
     Unknown,
 )
 
@@ -89,6 +92,8 @@ __all__ = [
     "LinkedRows",
     "LinkedValue",
     "MadeColumn",
+    "Method",
+    "Output",
     "PartBody",
     "PartUse",
     "Project",
@@ -101,6 +106,7 @@ __all__ = [
     "System",
     "Template",
     "Text",
+    "Twin",
     "Unknown",
     "ValueOrigin",
     "singles",

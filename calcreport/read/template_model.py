@@ -11,6 +11,7 @@ from fractions import Fraction
 from typing import Literal, TypeAlias
 
 from calcreport.core.expression import Condition, Expression, Name
+from calcreport.core.methods import AGAIN, APART
 from calcreport.core.quantity import Amount
 from calcreport.core.source import Citation, Source, Span
 from calcreport.core.units import Unit
@@ -36,6 +37,8 @@ class Symbol:
     places: int | None
     #: part of an inch to which a length is printed in feet and inches too, or None
     inches: Fraction | None = None
+    #: `places` decimals and no more: what lies beyond them says nothing
+    fixed: bool = False
 
 
 @dataclass(frozen=True, slots=True)
@@ -281,7 +284,57 @@ class Broken:
 
 #: stands for all names where it is not known which a part or line would have given
 EVERY = "*"
-Line: TypeAlias = Text | Gives | Branches | Rows | Each | Unknown | PartUse | Check | Require | Drawing | Broken
+
+
+@dataclass(frozen=True, slots=True)
+class Output:
+    """One of a method's outputs under our name: a value, a set, or a column of a set it makes."""
+
+    name: Name
+    output: Name
+    #: None for a set, and where the method or the output is unknown
+    symbol: Symbol | None
+
+
+@dataclass(frozen=True, slots=True)
+class Method:
+    """Numerical analysis: its inputs by its own names, and the outputs taken."""
+
+    method: Name
+    #: None where a formula could not be read
+    inputs: tuple[tuple[Name, Expression | None], ...]
+    gives: tuple[Output, ...]
+    stem: str
+    cite: Citation
+    span: Span
+
+    def names(self) -> tuple[str, ...]:
+        """Return the names the line gives."""
+        return tuple(f"{self.stem}.{one.name.name}" if self.stem else one.name.name for one in self.gives)
+
+
+@dataclass(frozen=True, slots=True)
+class Twin:
+    """A value found once more by a method, and how far the two may be apart, relative."""
+
+    name: Name
+    method: Name
+    #: None where a formula could not be read
+    inputs: tuple[tuple[Name, Expression | None], ...]
+    #: the method's output, where more than one could be meant
+    output: Name | None
+    within: Expression
+    cite: Citation
+    span: Span
+
+    def names(self) -> tuple[str, ...]:
+        """Return the names the line gives: the second value and the difference."""
+        return f"{self.name.name}.{AGAIN}", f"{self.name.name}.{APART}"
+
+
+Line: TypeAlias = (
+    Text | Gives | Branches | Rows | Each | Unknown | PartUse | Check | Require | Drawing | Method | Twin | Broken
+)
 
 
 @dataclass(frozen=True, slots=True)

@@ -6,6 +6,7 @@ Nothing in, schemas out. Which names are known and which formulas hold is beyond
 from __future__ import annotations
 
 from calcreport.core.figures import FIGURES, needed_inputs
+from calcreport.core.methods import METHODS
 from calcreport.read import bodies, cases, given, library, lines, made_rows, symbols, words
 from calcreport.read.model import SYSTEMS
 from calcreport.read.shapes import (
@@ -183,6 +184,9 @@ _SHAPES: dict[str, dict[str, Schema]] = {
     "check": {"check": _WORDS, "holds": _FORMULA},
     "require": {"require": _FORMULA},
     "figure": {"figure": choice(FIGURES), "with": _HANDED},
+    "method": {"method": choice(METHODS), "with": _HANDED, "gives": _each(mapping(_WORDS)), "as": _each(text(_NAME))},
+    "by another method": {"by another method": _WORDS, "method": choice(METHODS), "with": _HANDED, "output": _WORDS,
+                          "within": _FORMULA},
     "unknown": {"unknown": _each(text(_NAME)), "satisfies": _FORMULA, "lines": _LINES,
                 "between": _each(items(_FORMULA) | {"minItems": 2, "maxItems": 2})},
 }  # fmt: skip
@@ -190,7 +194,10 @@ _SHAPES: dict[str, dict[str, Schema]] = {
 _NEEDED: dict[str, tuple[str, ...]] = {
     "gives": ("cite",), "rows": ("cite",), "each": ("lines",), "check": ("holds", "cite"),
     "require": ("says", "cite"), "unknown": ("between", "satisfies"),
+    "method": ("with", "gives", "cite"), "by another method": ("method", "with", "within", "cite"),
 }  # fmt: skip
+#: kinds whose first key is also a key of another kind, which then has it
+_GIVES_WAY = {"branches": "gives", "gives": "method", "method": "by another method"}
 
 
 def _kind(kind: str) -> Schema:
@@ -199,6 +206,8 @@ def _kind(kind: str) -> Schema:
     found = closed((kind, *lines.KINDS[kind], "only"), shapes, (kind, *_NEEDED.get(kind, ())))
     if kind == "figure":
         found |= {"allOf": [_drawn(name) for name in FIGURES]}
+    if kind in ("method", "by another method"):
+        found |= {"allOf": [_analysed(name) for name in METHODS]}
     if kind == "gives":
         found |= {"oneOf": [has("formula"), has("branches")]}
     return found
@@ -210,10 +219,18 @@ def _drawn(name: str) -> Schema:
     return when({"properties": {"figure": {"const": name}}}, {"properties": {"with": _each(inputs)}} | has("with"))
 
 
+def _analysed(name: str) -> Schema:
+    """Return what a method must be handed; what goes with a word is the planner's to hold."""
+    takes = METHODS[name].takes
+    needed = tuple(key for key, wanted in takes.items() if wanted.where is None)
+    inputs = closed(tuple(takes), dict.fromkeys(takes, _FORMULA), needed)
+    return when({"properties": {"method": {"const": name}}}, {"properties": {"with": _each(inputs)}} | has("with"))
+
+
 def _line() -> Schema:
-    """Return the schema of a line: by the key that says its kind, `branches` being one of the keys of `gives`."""
+    """Return the schema of a line: by the key that says its kind, where that is no key of another kind."""
     kinds = []
     for kind in lines.KINDS:
-        condition = has(kind) | ({"not": has("gives")} if kind == "branches" else {})
+        condition = has(kind) | ({"not": has(_GIVES_WAY[kind])} if kind in _GIVES_WAY else {})
         kinds.append(when(condition, named(f"{kind} line")))
     return {"type": "object", "anyOf": [has(kind) for kind in lines.KINDS], "allOf": kinds}

@@ -1,4 +1,4 @@
-"""What stands in worked lines at any depth: checks, values, unknowns, figures.
+"""What stands in worked lines at any depth: checks, values, unknowns, figures, methods.
 
 Worked lines in, lists of one kind out.
 """
@@ -14,6 +14,7 @@ from calcreport.calculate.model import (
     WorkedFigure,
     WorkedGives,
     WorkedLine,
+    WorkedMethod,
     WorkedPart,
     WorkedUnknown,
 )
@@ -83,4 +84,19 @@ def figures_below(lines: tuple[WorkedLine, ...]) -> list[WorkedFigure]:
             case WorkedEach():
                 for row in line.rows:
                     found += figures_below(row)
+    return found
+
+
+def methods_below(lines: tuple[WorkedLine, ...]) -> list[WorkedMethod]:
+    """Return every method worked in these lines, at any depth."""
+    found: list[WorkedMethod] = []
+    for line in lines:
+        match line:
+            case WorkedMethod():
+                found.append(line)
+            case WorkedPart() | WorkedBranches():
+                found += methods_below(line.lines)
+            case WorkedEach():
+                for row in line.rows:
+                    found += methods_below(row)
     return found

@@ -1,6 +1,7 @@
 """One calculation's script as blocks: given values, lines with formula and numbers, tables, checks, figures.
 
 `Script` and forms in, blocks out. Wording is the program's own; clauses stand in the source lane.
+Kept in one though long: a method for each kind of item.
 """
 
 from __future__ import annotations
@@ -27,7 +28,11 @@ from calcreport.report.items import (
     SayHeading,
     SayLine,
     SayMade,
+    SayMethod,
     SayNone,
+    SayOutput,
+    SayOutputs,
+    SayProof,
     SayRequire,
     SayRows,
     SayStop,
@@ -36,6 +41,7 @@ from calcreport.report.items import (
     SayUnknown,
     SayUnseen,
 )
+from calcreport.report.method_blocks import MethodBlocks
 from calcreport.report.model import (
     Block,
     FigureBlock,
@@ -75,6 +81,7 @@ class Composer:
     def __init__(self, told: Told, dispositions: dict[int, tuple[str, ...]]) -> None:
         self.told, self.given, self.rows = told, GivenBlocks(told), RowBlocks(told)
         self.checks = CheckBlocks(told, dispositions)
+        self.methods = MethodBlocks(told)
         self.worked, self.forms, self.shared = told.worked, told.forms, told.shared
         self.values, self.slots = told.values, told.slots
 
@@ -131,6 +138,8 @@ class Composer:
             case SayFigure():
                 figure = draw(item.worked, self.forms)
                 return (FigureBlock(figure),) if figure is not None else ()
+            case SayMethod() | SayOutput() | SayOutputs() | SayProof():
+                return self.methods.blocks(item)
             case SayStop():
                 return self.checks.stopped(item)
             case SayUnseen():

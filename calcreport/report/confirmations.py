@@ -25,6 +25,7 @@ from calcreport.calculate.model import (
     WorkedEach,
     WorkedGives,
     WorkedLine,
+    WorkedMethod,
     WorkedPart,
     WorkedProject,
     WorkedRequire,
@@ -39,10 +40,12 @@ from calcreport.report.forms import (
     Opened,
     PlanForms,
     equation_unit,
+    fixed_figure,
     holds,
     is_size,
     link_place,
     linked_values,
+    proof_unit,
     ratio_figure,
     reversed_sign,
     side_unit,
@@ -187,6 +190,8 @@ class _Lines:
                     self.unseen = before
                 case WorkedUnknown():
                     self.unknown(line)
+                case WorkedMethod():
+                    self.method(line)
                 case WorkedCheck():
                     self.check(line)
                 case WorkedRequire():
@@ -216,12 +221,31 @@ class _Lines:
         for side, node in (("left", line.line.left), ("right", line.line.right)):
             name = self.equation_side(line, side)
             inputs = self.inputs(node, line.open)
-            if inputs:
+            alone = self.slots[node.slot].symbol.unit if isinstance(node, Name) and inputs else None
+            if alone is not None and alone.scale == shown.scale:
+                # a symbol by itself has the form it has on its own line; two that are equal have one form
+                self.digits.join(self.digits.root(name), inputs[0][2])
+            elif inputs:
                 confirm = self.confirming(self.forms.worked.compiled(node), inputs, line.open)
                 self.digits.need(Sum(confirm, tuple(i for _, _, i in inputs), name))
 
     def equation_side(self, line: WorkedUnknown, side: str) -> Id:
         return ("equation", self.forms.mark, id(line.line), line.open, side)
+
+    def method(self, line: WorkedMethod) -> None:
+        """Add the values a method gave, and the sums that prove them with three decimals more than their terms."""
+        for slot, _ in line.line.outputs:
+            symbol = self.slots[slot].symbol
+            unit = symbol.unit or ONE
+            for key in self.values.rows[slot] if self.values.sets[slot] else ((),):
+                number = self.values.number(slot, key) / unit.size
+                self.digits.add(self.forms.id(slot, key), make_figure(number, unit.size, least=symbol.places or 0))
+        for place, proof in enumerate(line.result.proofs):
+            unit = proof_unit(line, place, self.forms.worked.plan.template.system)
+            largest = make_coarse_figure(proof.of / unit.size, unit.size)
+            gap = fixed_figure(proof.residual / unit.size, unit.size, largest.places + 3)
+            for part, figure in (("of", largest), ("residual", gap)):
+                self.digits.add(("proof", self.forms.mark, id(line.line), line.open, place, part), figure)
 
     def made(self, line: WorkedLine) -> None:
         """Add figures for the cells of a set made here."""
@@ -254,10 +278,16 @@ class _Lines:
         unit = symbol.unit or ONE
         number = self.values.number(slot, key) / unit.size
         name = self.forms.id(slot, key)
-        self.digits.add(name, make_figure(number, unit.size, least=symbol.places or 0))
+        least = symbol.places or 0
+        fixed = fixed_figure(number, unit.size, least) if symbol.fixed else None
+        self.digits.add(name, fixed or make_figure(number, unit.size, least=least))
         inputs = () if self.unseen else self.inputs(node, opened)
         if not inputs:
             return
+        if fixed is not None:
+            # what is held against one another stands with as many digits
+            for _, _, other in inputs:
+                self.digits.figure(other).dropped = True
         copied = self.copied(node, inputs, slot, key)
         if copied is not None:
             self.digits.join(name, copied)

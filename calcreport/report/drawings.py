@@ -8,7 +8,7 @@ from __future__ import annotations
 from collections.abc import Callable
 from dataclasses import dataclass
 
-from calcreport.calculate.model import FigureInput, Key, WorkedFigure
+from calcreport.calculate.model import BoundInput, Key, WorkedFigure
 from calcreport.core.figures import needed_inputs
 from calcreport.report.display import show_symbol
 from calcreport.report.forms import CalculationForms
@@ -32,7 +32,7 @@ class _Inputs:
     """Reads a figure's inputs."""
 
     forms: CalculationForms
-    inputs: dict[str, FigureInput]
+    inputs: dict[str, BoundInput]
     open: dict[int, int]
 
     def has(self, name: str) -> bool:

@@ -78,6 +78,11 @@ def choose_family(formula: Expression, result: Unit | None, slots: Slots, system
     return candidates[scores.index(min(scores))]
 
 
+def usual_family(system: str) -> Family:
+    """Return the family forces and moments are told in where no formula chooses one."""
+    return US[1] if system == "us" else SI[1]
+
+
 def _score(family: Family, units: list[Unit], result: Unit | None) -> float:
     score = sum(_cost(factor_to(unit, family)) for unit in units)
     if result is not None and factor_to(result, family) != 1:

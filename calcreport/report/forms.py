@@ -23,13 +23,15 @@ from calcreport.calculate.model import (
     Worked,
     WorkedCheck,
     WorkedGives,
+    WorkedMethod,
     WorkedUnknown,
     row_cells,
 )
 from calcreport.core.expression import Binary, Call, Compare, Condition, Expression, Logic, Name, Node, Number
+from calcreport.core.methods import METHODS
 from calcreport.core.units import NONE, ONE, Unit
 from calcreport.report.digits import Digits, Figure, Id, rounded
-from calcreport.report.families import Family, choose_family, dimension_of, factor_to
+from calcreport.report.families import Family, choose_family, dimension_of, factor_to, usual_family
 from calcreport.report.notation import reversed_condition
 
 Opened = tuple[tuple[int, int], ...]
@@ -94,6 +96,10 @@ class CalculationForms:
     def equation(self, worked: WorkedUnknown, side: str) -> Figure:
         """Return the figure of a side of an equation at its root."""
         return self.digits.figure(("equation", self.mark, id(worked.line), worked.open, side))
+
+    def proof(self, worked: WorkedMethod, place: int, part: str) -> Figure:
+        """Return the figure of a sum that proves a method's result (`residual`), or of its largest term (`of`)."""
+        return self.digits.figure(("proof", self.mark, id(worked.line), worked.open, place, part))
 
     def ratio(self, check: WorkedCheck) -> Figure | None:
         """Return the figure of a check's ratio."""
@@ -175,6 +181,11 @@ def ratio_figure(ratio: float, *, ok: bool = False) -> Figure:
     return Figure(ratio, 0, places, exact, 1.0, dropped=True)
 
 
+def fixed_figure(number: float, size: float, places: int) -> Figure:
+    """Return a form of so many decimals: more would print noise."""
+    return Figure(number, 0, places, rounded(number, places) == number, size, dropped=True)
+
+
 def holds(test: Compare, left: float, right: float) -> bool:
     """Tell whether two worked sides stand as a comparison says, ties included: what may be printed as true."""
     near = abs(left - right) <= 1e-9 * max(abs(left), abs(right))
@@ -192,6 +203,12 @@ def holds(test: Compare, left: float, right: float) -> bool:
 def is_size(node: Expression) -> TypeGuard[Call]:
     """Tell whether a side is the size of one symbol: |M_u|."""
     return isinstance(node, Call) and node.function == "abs" and isinstance(node.arguments[0], Name)
+
+
+def proof_unit(worked: WorkedMethod, place: int, system: str) -> Unit:
+    """Return the unit a sum that proves a method's result is printed in."""
+    dimension = METHODS[worked.line.kind].proves[place].dimension
+    return (usual_family(system).unit(dimension) if dimension != NONE else ONE) or ONE
 
 
 def equation_unit(line: PlannedUnknown, forms: CalculationForms) -> Unit:

@@ -19,6 +19,7 @@ from calcreport.calculate.model import (
     WorkedEach,
     WorkedFigure,
     WorkedGives,
+    WorkedMethod,
     WorkedRequire,
     WorkedRows,
     WorkedText,
@@ -165,6 +166,45 @@ class SayFigure:
 
 
 @dataclass(frozen=True, slots=True)
+class SayMethod:
+    """A method with what it is handed."""
+
+    number: int
+    worked: WorkedMethod
+
+
+@dataclass(frozen=True, slots=True)
+class SayOutput:
+    """A value a method gives; `of` is the line of the method."""
+
+    number: int
+    of: int
+    slot: int
+    key: Key
+
+
+@dataclass(frozen=True, slots=True)
+class SayOutputs:
+    """A set a method makes, as a table."""
+
+    number: int
+    of: int
+    worked: WorkedMethod
+    rows: int
+    columns: tuple[int, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class SayProof:
+    """A sum that proves a method's result, with its number."""
+
+    number: int
+    of: int
+    worked: WorkedMethod
+    place: int
+
+
+@dataclass(frozen=True, slots=True)
 class SayStop:
     """Where the calculation stopped, and the checks it did not reach, each with its line number and its rows."""
 
@@ -190,6 +230,10 @@ Item: TypeAlias = (
     | SayCheck
     | SayRequire
     | SayFigure
+    | SayMethod
+    | SayOutput
+    | SayOutputs
+    | SayProof
     | SayStop
 )
 

@@ -19,13 +19,14 @@ from calcreport.calculate.model import (
     WorkedFigure,
     WorkedGives,
     WorkedLine,
+    WorkedMethod,
     WorkedPart,
     WorkedRequire,
     WorkedRows,
     WorkedText,
     WorkedUnknown,
 )
-from calcreport.report.below import checks_below, figures_below, gives_below, severity, unknowns_below
+from calcreport.report.below import checks_below, figures_below, gives_below, methods_below, severity, unknowns_below
 from calcreport.report.items import (
     Item,
     SayBranch,
@@ -38,7 +39,11 @@ from calcreport.report.items import (
     SayHeading,
     SayLine,
     SayMade,
+    SayMethod,
     SayNone,
+    SayOutput,
+    SayOutputs,
+    SayProof,
     SayRequire,
     SayRows,
     SayStop,
@@ -175,6 +180,28 @@ def _lines(writer: _Writer, lines: tuple[WorkedLine, ...]) -> None:
                 writer.items.append(SayRequire(writer.next(), line))
             case WorkedFigure():
                 writer.items.append(SayFigure(line))
+            case WorkedMethod():
+                _method(writer, line)
+
+
+def _method(writer: _Writer, line: WorkedMethod) -> None:
+    """Number a method, every value it gives, every set, and every sum that proves them."""
+    values, number = writer.worked.values, writer.next()
+    writer.items.append(SayMethod(number, line))
+    rows, made = dict(line.open), [index for index, _ in line.line.sets]
+    for slot, _ in line.line.outputs:
+        if not set(values.sets[slot]) & set(made):
+            key = tuple(rows[index] for index in values.sets[slot])
+            writer.items.append(SayOutput(writer.next(), number, slot, key))
+            writer.line_of[slot, key] = writer.number
+    for index in made:
+        columns = tuple(slot for slot, _ in line.line.outputs if index in values.sets[slot])
+        writer.items.append(SayOutputs(writer.next(), number, line, index, columns))
+        for slot, key in line.places(values):
+            if index in values.sets[slot]:
+                writer.line_of[slot, key] = writer.number
+    for place in range(len(line.result.proofs)):
+        writer.items.append(SayProof(writer.next(), number, line, place))
 
 
 def _plain(lines: tuple[WorkedLine, ...]) -> bool:
@@ -241,6 +268,7 @@ def _number_rest(writer: _Writer, each: WorkedEach) -> None:
     for row in each.rows:
         given = [(line.line.slot, line.key) for line in gives_below(row)]
         given += [(line.line.slot, line.key) for line in unknowns_below(row)]
+        given += [place for method in methods_below(row) for place in method.places(writer.worked.values)]
         for slot, key in given:
             writer.line_of.setdefault((slot, key), told.get(slot, writer.number))
         for check in checks_below(row):

@@ -5,8 +5,9 @@ Scripts and forms in, lines of text out.
 
 from __future__ import annotations
 
-from calcreport.calculate.model import GivenPairs, GivenRows, GivenValue, Key, LinkedValue, row_cells
+from calcreport.calculate.model import GivenPairs, GivenRows, GivenValue, Key, LinkedValue, PlannedMethod, row_cells
 from calcreport.core.expression import Name, Node, Over, children
+from calcreport.core.methods import METHODS
 from calcreport.report.digits import number_text
 from calcreport.report.forms import CalculationForms, link_place, linked_values
 from calcreport.report.items import Script
@@ -34,12 +35,13 @@ class _Tracer:
     def value(self, mark: str, slot: int, key: Key, lead: str, branch: str) -> None:
         """Add a value's line and, below it, what it came from; a value told before is named only."""
         worked = self.scripts[mark].worked
-        formula = worked.values.worked.get((slot, key))
+        formula, method = worked.values.worked.get((slot, key)), worked.values.by_method.get((slot, key))
         number = self.scripts[mark].line_of.get((slot, key), 0)
         text = f"{worked.plan.slots[slot].path} = {self.shown(mark, slot, key)}"
         how = f"  = {formula.span.text.strip()}" if formula is not None else f"  {self.origin(mark, slot, key)}"
+        how = f"  by the method {method.kind}" if method is not None else how
         place = mark, slot, key
-        again = place in self.told and formula is not None
+        again = place in self.told and (formula is not None or method is not None)
         self.lines.append(f"{lead}{branch}{mark}.{number}  {text}{'  (above)' if again else how}")
         if again or len(lead) > 3 * DEEPEST:
             return
@@ -52,8 +54,10 @@ class _Tracer:
         """Return what a value came from, the last one marked."""
         worked = self.scripts[mark].worked
         found: list[tuple[str, int, Key]] = []
-        formula = worked.values.worked.get((slot, key))
-        if formula is not None:
+        formula, method = worked.values.worked.get((slot, key)), worked.values.by_method.get((slot, key))
+        if method is not None:
+            self.inputs(method, mark, slot, key, found)
+        elif formula is not None:
             rows = dict(zip(worked.values.sets[slot], key, strict=True))
             self.collect(formula, mark, rows, found)
         else:
@@ -80,6 +84,23 @@ class _Tracer:
         else:
             for child in children(node):
                 self.collect(child, mark, rows, found)
+
+    def inputs(self, method: PlannedMethod, mark: str, slot: int, key: Key, found: list[tuple[str, int, Key]]) -> None:
+        """Collect what a method was handed, row by row where it takes a number for every row."""
+        values = self.scripts[mark].worked.values
+        made = {index for index, _ in method.sets}
+        rows = {s: row for s, row in zip(values.sets[slot], key, strict=True) if s not in made}
+        sets = {given.name: given.rows for given in method.inputs}
+        for given in method.inputs:
+            owner = sets.get(METHODS[method.kind].takes[given.name].rows, -1)
+            if given.formula is None:
+                continue
+            if owner < 0:
+                self.collect(given.formula, mark, rows, found)
+                continue
+            outer = tuple(rows[other] for other in values.outer[owner])
+            for row in range(len(values.names[owner].get(outer, ()))):
+                self.collect(given.formula, mark, {**rows, owner: row}, found)
 
     def shown(self, mark: str, slot: int, key: Key) -> str:
         value = self.scripts[mark].worked.values.get(slot, key)

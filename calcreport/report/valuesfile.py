@@ -9,13 +9,14 @@ from typing import Any
 
 from calcreport.calculate.model import Key, Selection, Worked, WorkedCheck, WorkedGives, WorkedProject
 from calcreport.core.expression import names
+from calcreport.core.methods import METHODS
 from calcreport.core.units import ONE
 from calcreport.core.version import PROGRAM
 from calcreport.report.below import gives_below
 from calcreport.report.digits import number_text
-from calcreport.report.forms import CalculationForms, is_size, side_unit
+from calcreport.report.forms import CalculationForms, is_size, proof_unit, side_unit
 from calcreport.report.governing import governing
-from calcreport.report.items import SayLine, SayTable, SayUnseen, Script
+from calcreport.report.items import SayLine, SayOutput, SayOutputs, SayProof, SayTable, SayUnseen, Script
 
 FORMAT = 1
 
@@ -35,6 +36,7 @@ def values_file(
             "verdict": worked.verdict,
             "stopped": worked.stop.told if worked.stop else None,
             "lines": _lines(scripts[mark], forms[mark]),
+            "closures": _closures(scripts[mark], forms[mark]),
             "checks": [_check(check, scripts[mark], forms[mark]) for check in worked.checks],
         }
         if worked.selection is not None:
@@ -58,6 +60,11 @@ def _lines(script: Script, forms: CalculationForms) -> list[dict[str, Any]]:
         match item:
             case SayLine(_, worked):
                 found.append(_gives(worked, script, forms))
+            case SayOutput(_, _, slot, key):
+                found.append(_output(slot, key, script, forms))
+            case SayOutputs(_, _, worked):
+                places = worked.places(values)
+                found += [_output(slot, key, script, forms) for slot, key in places if slot in item.columns]
             case SayTable(worked=each) | SayUnseen(each):
                 rows = [gives for row in each.rows for gives in gives_below(row)]
                 told = {(line["gives"], tuple(line.get("rows", ()))) for line in found}
@@ -65,6 +72,29 @@ def _lines(script: Script, forms: CalculationForms) -> list[dict[str, Any]]:
                     entry = _gives(worked, script, forms)
                     if (entry["gives"], tuple(entry.get("rows", ()))) not in told:
                         found.append(entry)
+    return found
+
+
+def _output(slot: int, key: Key, script: Script, forms: CalculationForms) -> dict[str, Any]:
+    """Return a value that a method gave."""
+    line = script.worked.values.by_method[slot, key]
+    entry = _value(slot, key, script, forms)
+    number = next(s.of for s in script.items if isinstance(s, SayOutput | SayOutputs) and s.number == entry["line"])
+    return entry | {"method": line.kind, "cite": line.cite.printed, "from": [f"{forms.mark}.{number}"]}
+
+
+def _closures(script: Script, forms: CalculationForms) -> list[dict[str, Any]]:
+    """Return the sums that prove the results of methods."""
+    found: list[dict[str, Any]] = []
+    system = script.worked.plan.template.system
+    for item in script.items:
+        if isinstance(item, SayProof):
+            unit = proof_unit(item.worked, item.place, system)
+            proof = item.worked.result.proofs[item.place]
+            found.append({"line": item.number, "method": item.worked.line.kind,
+                          "name": METHODS[item.worked.line.kind].proves[item.place].name,
+                          "residual": proof.residual / unit.size, "of": proof.of / unit.size, "unit": unit.text,
+                          "from": [f"{forms.mark}.{item.of}"]})  # fmt: skip
     return found
 
 

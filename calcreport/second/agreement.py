@@ -20,7 +20,9 @@ from calcreport.plan.model import (
     LinkedRows,
     LinkedValue,
     PlannedGiven,
+    PlannedMethod,
 )
+from calcreport.second.closures import Found
 from calcreport.second.quantities import Quantities, make_quantities
 from calcreport.second.rework import Rework, Stopped
 
@@ -97,7 +99,9 @@ def _compare(worked: Worked, again: dict[str, Rework], make: Quantities) -> tupl
     """Work one calculation again and compare."""
     mark = worked.calculation.mark
     found: list[Difference] = []
-    rework = Rework(worked.plan, make, partial(_given_names, worked, again), partial(_root, worked))
+    rework = Rework(
+        worked.plan, make, partial(_given_names, worked, again), partial(_root, worked), partial(_found, worked)
+    )
     _hand(worked, rework, again, make)
     stopped = ""
     try:
@@ -150,6 +154,14 @@ def _root(worked: Worked, slot: int, key: Key) -> float:
     unit = worked.plan.slots[slot].symbol.unit
     assert unit is not None
     return worked.values.number(slot, key) / unit.size
+
+
+def _found(worked: Worked, line: PlannedMethod, opened: tuple[tuple[int, int], ...]) -> Found:
+    """Return what a method of the first path came to; `Stopped` where the first path came to nothing."""
+    result = worked.values.results.get((id(line), opened))
+    if result is None:
+        raise Stopped(f"{line.kind}: the first path came to no result")
+    return Found(result.outputs, {name: (made.names, made.columns) for name, made in result.sets.items()})
 
 
 def _hand(worked: Worked, rework: Rework, again: dict[str, Rework], make: Quantities) -> None:

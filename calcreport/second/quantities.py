@@ -53,6 +53,13 @@ class Quantities:
             found = found * self._named(name) ** power
         return found
 
+    def base(self, dimension: tuple[Any, ...]) -> Any:
+        """Return one of the base unit of a dimension: metre, newton, second."""
+        found = self.pure(1)
+        for name, power in zip(("meter", "newton", "second"), dimension, strict=True):
+            found = found * self.registry.Quantity(self.mp.mpf(1), name) ** int(power)
+        return found
+
     def _named(self, name: str) -> Any:
         """Return one of a listed unit; compounds are built from the names inside, never parsed."""
         known = _NAMES[name].strip("()")

@@ -27,6 +27,7 @@ from calcreport.core.expression import (
     Over,
     Strip,
 )
+from calcreport.core.methods import METHODS
 from calcreport.plan.model import (
     Plan,
     PlannedBranches,
@@ -34,11 +35,13 @@ from calcreport.plan.model import (
     PlannedEach,
     PlannedGives,
     PlannedLine,
+    PlannedMethod,
     PlannedPart,
     PlannedRequire,
     PlannedRows,
     PlannedUnknown,
 )
+from calcreport.second.closures import CLOSURES, Found, NotClosed
 from calcreport.second.quantities import Quantities
 
 Key = tuple[int, ...]
@@ -59,10 +62,13 @@ class Rework:
         make: Quantities,
         names: Callable[[int], list[tuple[Key, tuple[str, ...]]]],
         root: Callable[[int, Key], float],
+        result: Callable[[PlannedMethod, tuple[tuple[int, int], ...]], Found],
     ) -> None:
         self.plan, self.make = plan, make
         #: returns a root of the first path in its declared unit: roots are confirmed, not found again
         self.root = root
+        #: returns what a method of the first path came to, in base units: it is confirmed, not run again
+        self.result = result
         self.values: dict[tuple[int, Key], Any] = {}
         self.names: dict[tuple[int, Key], tuple[str, ...]] = {}
         for rows in plan.sets:
@@ -102,6 +108,8 @@ class Rework:
                 self.unknown(line)
             case PlannedRows():
                 self.rows(line)
+            case PlannedMethod():
+                self.method(line)
             case PlannedCheck(name, holds):
                 self.verdicts.append((name, self.holds(holds)))
             case PlannedRequire(condition, says):
@@ -139,6 +147,53 @@ class Rework:
         gap, largest = abs(left.magnitude - other), max(abs(left.magnitude), abs(other))
         if gap > RESIDUAL * largest:
             raise Stopped(f"the two sides differ by {float(gap / largest):.1e} at the root")
+
+    def method(self, line: PlannedMethod) -> None:
+        """Take what the first path's method came to, and hold it against what it was handed by its closures."""
+        takes, sets = METHODS[line.kind].takes, {given.name: given.rows for given in line.inputs if given.rows >= 0}
+        handed: dict[str, Any] = {}
+        for given in line.inputs:
+            if given.formula is None:
+                handed[given.name] = given.word
+                continue
+            one = self.make.base(takes[given.name].dimension)
+            if takes[given.name].shape != "row number":
+                handed[given.name] = self.number(given.formula, one)
+                continue
+            rows, handed[given.name] = sets[takes[given.name].rows], []
+            for row in range(len(self.row_names(rows))):
+                self.open[rows] = row
+                handed[given.name].append(self.number(given.formula, one))
+            self.open.pop(rows, None)
+        found = self.result(line, tuple(sorted(self.open.items())))
+        try:
+            CLOSURES[line.kind](handed, found, self.make.mp)
+        except NotClosed as error:
+            raise Stopped(f"{line.kind}: {error}") from error
+        self.take(line, found)
+
+    def number(self, formula: Expression, one: Any) -> Any:
+        """Return a formula as a number in base units."""
+        return (self.alike(self.work(formula), one)[0] / one).to("").magnitude
+
+    def take(self, line: PlannedMethod, found: Found) -> None:
+        """Store the outputs a line takes."""
+        ours = {name: index for index, name in line.sets}
+        for index, name in line.sets:
+            outer = tuple(self.open[other] for other in self.plan.sets[index].outer)
+            self.names[index, outer] = found.sets[name][0]
+        for slot, name in line.outputs:
+            unit = self.plan.slots[slot].symbol.unit
+            assert unit is not None
+            one = self.make.base(unit.dimension)
+            if name in found.outputs:
+                self.values[slot, self.key(slot)] = one * self.make.mp.mpf(found.outputs[name])
+                continue
+            owner = next(made for made in found.sets if name in found.sets[made][1])
+            for row, value in enumerate(found.sets[owner][1][name]):
+                self.open[ours[owner]] = row
+                self.values[slot, self.key(slot)] = one * self.make.mp.mpf(value)
+            self.open.pop(ours[owner], None)
 
     def rows(self, line: PlannedRows) -> None:
         """Make a set: every entry, every pairing that fits."""

@@ -11,6 +11,7 @@ from dataclasses import dataclass
 from typing import Any, Literal, TypeAlias
 
 from calcreport.core.expression import Condition, Expression, Node, Over, children
+from calcreport.core.methods import METHODS
 from calcreport.core.record import replace
 from calcreport.core.source import Span
 from calcreport.read.model import (
@@ -19,10 +20,12 @@ from calcreport.read.model import (
     Each,
     Gives,
     Line,
+    Method,
     PartBody,
     PartUse,
     Require,
     Rows,
+    Twin,
     Unknown,
 )
 
@@ -102,6 +105,19 @@ def _line(line: Line, steps: Steps) -> Iterator[Place]:
                 yield from _formula(formula, at, f"{given.name} of {name.name}", use)
             if body is not None:
                 yield from places(body, (*steps, "body"))
+        case Method(method, inputs) | Twin(_, method, inputs):
+            yield _record(line, steps, method.name, line.span)
+            takes = METHODS[method.name].takes if method.name in METHODS else {}
+            for number, (given, formula) in enumerate(inputs):
+                shape = takes[given.name].shape if given.name in takes else ""
+                if shape == "word":
+                    # a word of the method's own: what else it could be is no symbol of the template
+                    continue
+                if shape in ("number", "row number"):
+                    name = f"{given.name} of {method.name}"
+                    yield from _formula(formula, (*steps, "inputs", number, 1), name, "value")
+            if isinstance(line, Twin):
+                yield from _formula(line.within, (*steps, "within"), f"{line.name.name} by another method", "value")
         case Check(name, holds):
             yield _record(line, steps, f"check {name}", line.span)
             yield from _formula(holds, (*steps, "holds"), f"check {name}", "condition")

@@ -8,8 +8,10 @@ from __future__ import annotations
 from collections.abc import Iterator
 from typing import Any
 
+from calcreport.core.expression import Name
+from calcreport.core.methods import METHODS
 from calcreport.core.record import replace
-from calcreport.read.model import Branches, Cell, Check, Entry, Gives, Require, Rows, Text
+from calcreport.read.model import Branches, Cell, Check, Entry, Gives, Method, Require, Rows, Text, Twin
 
 from .formulas import Change
 
@@ -27,10 +29,50 @@ def record_changes(record: Any) -> Iterator[Change]:
             yield from _entry(record)
         case Cell():
             yield from _cell(record)
-        case Check() | Require():
+        case Method():
+            yield from _outputs(record)
+            yield from _words(record)
+        case Check() | Require() | Twin():
             yield Change("line left out", lambda found: Text("note", (" ",), None, found.span))
+            if isinstance(record, Twin):
+                yield from _words(record)
         case _:
             pass
+
+
+def _outputs(record: Method) -> Iterator[Change]:
+    """Yield outputs of one dimension exchanged."""
+    gives = METHODS[record.method.name].gives if record.method.name in METHODS else {}
+    for number, one in enumerate(record.gives):
+        for other in (name for name in gives if name != one.output.name and gives[name] == gives.get(one.output.name)):
+            yield Change(f"{one.name.name} is {other}", _output(number, other))
+
+
+def _words(record: Method | Twin) -> Iterator[Change]:
+    """Yield other words for inputs that choose one, unless other inputs go with the word."""
+    takes = METHODS[record.method.name].takes if record.method.name in METHODS else {}
+    ties = {wanted.where[0] for wanted in takes.values() if wanted.where is not None}
+    for number, (given, formula) in enumerate(record.inputs):
+        words = takes[given.name].words if given.name in takes and given.name not in ties else ()
+        for other in (word for word in words if isinstance(formula, Name) and word != formula.name):
+            yield Change(f"{given.name} is {other}", _handed(number, replace(formula, name=other)))
+
+
+def _handed(number: int, formula: Any) -> Any:
+    def apply(found: Any) -> Any:
+        new = (found.inputs[number][0], formula)
+        return replace(found, inputs=(*found.inputs[:number], new, *found.inputs[number + 1 :]))
+
+    return apply
+
+
+def _output(number: int, other: str) -> Any:
+    def apply(found: Method) -> Method:
+        one = found.gives[number]
+        new = replace(one, output=replace(one.output, name=other))
+        return replace(found, gives=(*found.gives[:number], new, *found.gives[number + 1 :]))
+
+    return apply
 
 
 def _arms(arms: tuple[Any, ...], field: str) -> Iterator[Change]:

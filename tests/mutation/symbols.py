@@ -21,6 +21,7 @@ from calcreport.read.model import (
     Given,
     Gives,
     Line,
+    Method,
     PartBody,
     PartUse,
     Rows,
@@ -146,6 +147,11 @@ def _lines(lines: tuple[Line, ...], found: Names) -> None:
                 found.words[name] = rows
                 for column in columns:
                     _symbol(column.symbol, column.symbol.name, found)
+            case Method(gives=gives, stem=stem):
+                for output in gives:
+                    if output.symbol is not None:
+                        name = output.name.name
+                        _symbol(output.symbol, f"{stem}.{name}" if stem else name, found)
             case PartUse(PartBody() as body, _, stem):
                 inner_names, told = names_of(body), {name.name for name in body.gives}
                 for name, dimension in inner_names.dimensions.items():

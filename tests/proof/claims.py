@@ -129,6 +129,9 @@ def _formula(desk: Desk, statement: Statement, scope: Scope) -> int:
             if not holds:
                 desk.found("printed comparisons are true", text)
         return 1
+    if tokens[0].kind == "relation" and any(token.kind == "word" and token.text == "of" for token in tokens):
+        _closure(desk, tokens)
+        return 1
     if len(parts) < 2:
         if all(token.kind in ("word", "comma", "sign", "number") for token in tokens):
             return 0  # a yes or no that is given, or the rows of a set
@@ -159,6 +162,15 @@ def _is_value(desk: Desk, tokens: Sequence[Token]) -> bool:
     known = desk.calculation.keys
     words = all(t.kind == "word" and t.text not in known and "_" not in t.text for t in tokens)
     return words or printed_of(tokens) is not None
+
+
+def _closure(desk: Desk, tokens: Sequence[Token]) -> None:
+    """A sum that proves a method comes to nothing beside its largest term: = 0.0000 kip of 180.0 kip."""
+    numbers = [Decimal(token.text.replace(",", "")) for token in tokens if token.kind == "number"]
+    units = [token.text for token in tokens if token.kind == "unit"]
+    desk.count("closures")
+    if len(numbers) != 2 or len(set(units)) > 1 or abs(numbers[0]) * 1000 > abs(numbers[1]):
+        desk.found("a method closes", plain(tokens))
 
 
 def _two_spellings(desk: Desk, tokens: Sequence[Token]) -> None:

@@ -164,12 +164,12 @@ def _governing(
             yield Finding("the summary governs", calculation.mark, 0, f"{cells}")
         return
     found = [s for line, s in checks if line.number == int(where[1])]
-    ratios = [float(s.ratio) if s.ratio else float("inf") for _, s in checks]
+    ratios = [_severity(s) for _, s in checks]
     if not found:
         yield Finding("the summary names a check", calculation.mark, int(where[1]), f"{cells}")
         return
     words = cells.get("Ratio", "").split()
-    ratio = float(found[0].ratio) if found[0].ratio else float("inf")
+    ratio = _severity(found[0])
     if (found[0].ratio and words[:1] != [found[0].ratio]) or ratio != max(ratios):
         yield Finding(
             "the summary shows the governing ratio",
@@ -181,6 +181,13 @@ def _governing(
         number, _, unit = cells.get(column, "").partition(" ")
         if number and (number, unit) not in calculation.shown and not _stands(number, found[0]):
             yield Finding("one printed form of a value", calculation.mark, int(where[1]), f"summary: {number} {unit}")
+
+
+def _severity(check: Statement) -> float:
+    """Rank a check: one that fails without a ratio first, a condition that holds last."""
+    if check.ratio:
+        return float(check.ratio)
+    return -1.0 if check.verdict == "OK" else float("inf")
 
 
 def _attention(
@@ -213,11 +220,11 @@ def _grid(
         title = [s for _, s in checks if s.words.removeprefix("CHECK").strip() == name]
         if not title:
             continue
-        worst = max(title, key=lambda s: float(s.ratio) if s.ratio else float("inf"))
+        worst = max(title, key=_severity)
         words = cell.split()
         # the row in full is the worst by all its checks: another row of the table may be worse by this one
         ratios = [worst.ratio, *_tabled(calculation, name)] if worst.ratio else []
-        shown = max(ratios, key=float) if ratios else "NG"
+        shown = max(ratios, key=float) if ratios else worst.verdict
         if shown not in words or ("NG" in words) != any(s.verdict == "NG" for s in title):
             yield Finding(
                 "the summary repeats the ratios",

@@ -50,7 +50,7 @@ def _head(line: NumberedLine) -> str:
     if first is None:
         return str(line.number)
     if first.words:
-        return f"{line.number}{squeeze(first.words)}"
+        return f"{line.number}{_said(first.words)}"
     name = symbol_of(split(first.tokens, "relation")[0][0]) if first.tokens else None
     return f"{line.number}{squeeze((name or '').replace('_', ''))}"
 
@@ -73,13 +73,18 @@ def _missing(line: NumberedLine, page: int, text: str) -> list[str]:
 
 
 def _pieces(statement: Statement) -> list[str]:
-    found = [squeeze(statement.words)] if statement.words else []
+    found = [_said(statement.words)] if statement.words else []
     parts, _ = split(statement.tokens, "relation")
     result = _flat(parts[-1]) if len(parts) > 1 and statement.kind == "formula" and not statement.feet else None
     found += ["=" + result] if result else []
     if statement.kind == "check":
         found += [piece for piece in (statement.ratio, statement.verdict) if piece]
     return found
+
+
+def _said(words: str) -> str:
+    """Return words as programs take them out: a symbol among them has its subscript on the line."""
+    return squeeze(re.sub(r"(?<=\b\w)_(?=\w)", "", words))
 
 
 def _flat(tokens: Sequence[Token]) -> str | None:

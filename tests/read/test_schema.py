@@ -173,7 +173,7 @@ def _listening(ear: _Ear, name: str, method: Any) -> Any:
 
 def definition(called: str) -> Schema | None:
     """Return the schema of a mapping by what the reader calls it."""
-    line = re.fullmatch(r"an? `(\w+)` line", called)
+    line = re.fullmatch(r"an? `([\w ]+)` line", called)
     kind, name = ("template", f"{line[1]} line") if line else DEFINED.get(called, ("", ""))
     if not kind:
         return None
@@ -289,6 +289,8 @@ UNSEEN = {
     "spaced-word": "whether a symbol of the notation is a word",
     "wrong-shape-figure": "whether a formula is a symbol alone",
     "wrong-shape-no-row": "whether a value of a row stands in a list",
+    "missing-key-twin": "whether two outputs of a method have the dimension of the value",
+    "unknown-key-method-word": "which inputs of a method go with a word",
     "unknown-key-gives": "whether a given value is of bars",
 }
 

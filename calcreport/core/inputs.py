@@ -1,0 +1,30 @@
+"""What one input of a figure or of a method takes: its shape, its dimension, the words it knows."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from typing import Literal
+
+from calcreport.core.units import NONE, Dimension
+
+
+@dataclass(frozen=True, slots=True)
+class InputKind:
+    """One input that code declares and a template hands over by name."""
+
+    #: a number; a number for every row of the set handed as `rows` (or one for all of them); a set; a word
+    shape: Literal["number", "row number", "set", "word"]
+    dimension: Dimension = NONE
+    needed: bool = True
+    #: its symbol is printed beside it: only a symbol, or 0, may be handed
+    named: bool = False
+    #: input whose set a row number belongs to
+    rows: str = ""
+    #: words it knows
+    words: tuple[str, ...] = ()
+    #: what it is, as the sheet says it, {} for what is handed; a space in front joins it to the one before
+    says: str = ""
+    #: whole numbers from the first to the second bound only
+    count: tuple[int, int] | None = None
+    #: (word input, its word): needed there, and taken nowhere else
+    where: tuple[str, str] | None = None

@@ -35,6 +35,7 @@ def make_parser() -> argparse.ArgumentParser:
         help="work every value again by other arithmetic and other unit factors, and say how they agree",
     )
     build.add_argument("--sampler", action="store_true", help="add the reviewer's sampler, which takes time")
+    build.add_argument("--no-attachments", action="store_true", help="leave input files and values out of the PDF")
     watch = commands.add_parser("watch", help="build again after every save, until interrupted")
     watch.add_argument("project", metavar="PROJECT", help="a project file, or a folder that holds project.yaml")
     watch.add_argument("-o", "--output", metavar="PDF", help="where to write it; beside the project file if not told")

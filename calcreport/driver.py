@@ -6,7 +6,7 @@ A World and a project's text in; problems and worked values out. `publish` goes 
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import dataclass, replace
+from dataclasses import dataclass, field, replace
 from functools import partial
 
 from calcreport.calculate.cases import run_case
@@ -25,6 +25,7 @@ from calcreport.plan.links import bind_links
 from calcreport.plan.model import Plan
 from calcreport.plan.proofs import prove_cited
 from calcreport.read.cases import read_cases
+from calcreport.read.codes import CLOSED_LISTS
 from calcreport.read.library import ANY, Library
 from calcreport.read.model import Inputs, Template
 from calcreport.read.project import ProjectReader
@@ -43,6 +44,8 @@ class Result:
     problems: tuple[Problem, ...]
     #: all that could be worked, also beside problems
     worked: WorkedProject | None = None
+    #: files its templates and its closed lists were read from, by the names they are asked for
+    templates: dict[str, Source] = field(default_factory=dict)
 
 
 @dataclass(frozen=True, slots=True)
@@ -74,8 +77,12 @@ def work(
     progress: Progress = silent,
     instead: Instead | None = None,
     kept: Fresh = FRESH,
+    status: str = "",
 ) -> Result:
-    """Read, plan and work a project; calculations without problems are worked even beside problems."""
+    """Read, plan and work a project; calculations without problems are worked even beside problems.
+
+    A `status` stands in place of the project's own, as on an earlier issue that is marked superseded.
+    """
     problems = Problems()
     library = kept.last("library")
     if not (isinstance(library, Library) and library.renew(world, problems)):
@@ -88,10 +95,19 @@ def work(
     if instead is not None:
         taken = (replace(c, pinned=instead.taken.get(c.mark, c.pinned)) for c in inputs.calculations)
         inputs = replace(inputs, calculations=tuple(taken))
+    if status:
+        inputs = replace(inputs, project=replace(inputs.project, status=status))
     plans = _plans(inputs, problems, kept)
     inputs = bind_links(inputs, plans, problems)
     worked = work_project(inputs, plans, problems, lambda done, total: progress("working", done, total), kept)
-    return Result(problems.sorted(), worked)
+    return Result(problems.sorted(), worked, _files_read(inputs, library))
+
+
+def _files_read(inputs: Inputs, library: Library) -> dict[str, Source]:
+    """Return what was read for the calculations, and the closed lists, whatever else an open project has kept."""
+    files = {source for calculation in inputs.calculations for source in calculation.template.files}
+    lists = (library.tree(name) for name in CLOSED_LISTS)
+    return library.named(files | {tree.span.source for tree in lists if tree is not None})
 
 
 def _plans(inputs: Inputs, problems: Problems, kept: Fresh) -> dict[int, Plan]:

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass, replace
+from dataclasses import dataclass, field, replace
 from typing import Literal, TypeAlias
 
 from calcreport.calculate.margins import least_margins
@@ -10,21 +10,30 @@ from calcreport.calculate.model import WorkedProject
 from calcreport.calculate.release import hold_release
 from calcreport.core.kept import FRESH, Fresh
 from calcreport.core.problems import Problem, Problems
-from calcreport.core.source import Source
+from calcreport.core.source import Source, TableSource
 from calcreport.core.world import World
-from calcreport.driver import Progress, silent, work
+from calcreport.driver import Progress, Result, silent, work
+from calcreport.history.frozen import TEMPLATES, VALUES, frozen_files
 from calcreport.layout.fonts import Fonts, installed_fonts
 from calcreport.layout.model import Pages
 from calcreport.layout.paginate import lay_out
 from calcreport.layout.places import sheets_of
-from calcreport.output.pdf import write_pdf
+from calcreport.output.pdf import Attachment, write_pdf
 from calcreport.report.compose import Composed, compose
 from calcreport.report.model import Part
 from calcreport.report.sampler import SIZES, Sampled, sampler, sampler_alone, with_sampler
+from calcreport.report.valuesfile import values_bytes, values_file
 from calcreport.second.agreement import Agreement, compare_paths
 
 #: the reviewer's sampler in the package, as the only sheet, or not at all: it asks for margins, which take time
 Sampling: TypeAlias = Literal["no", "added", "alone"]
+#: kinds of the files a package carries, by their ending (RFC 9512, RFC 4180, RFC 8259, ECMA-376); else plain text
+_MIME = {
+    "yaml": "application/yaml",
+    "csv": "text/csv",
+    "json": "application/json",
+    "xlsx": "application/vnd.openxmlformats-officedocument.spreadsheetml.sheet",
+}
 
 
 @dataclass(frozen=True, slots=True)
@@ -37,15 +46,25 @@ class Package:
     composed: Composed | None = None
     pages: Pages | None = None
     data: bytes = b""
+    #: what it was made from and the values it came to, by the names they are attached under
+    files: dict[str, bytes] = field(default_factory=dict)
     #: what the second path came to, where it was asked for
     agreement: Agreement | None = None
 
 
 def report(
-    world: World, source: Source, progress: Progress = silent, second: bool = False, kept: Fresh = FRESH
+    world: World,
+    source: Source,
+    progress: Progress = silent,
+    second: bool = False,
+    kept: Fresh = FRESH,
+    status: str = "",
 ) -> Package:
-    """Go as far as the composed report; with `second`, the disclosure says how the second path agrees."""
-    result = work(world, source, progress, kept=kept)
+    """Go as far as the composed report; with `second`, the disclosure says how the second path agrees.
+
+    A `status` stands in place of the project's own.
+    """
+    result = work(world, source, progress, kept=kept, status=status)
     if result.problems or result.worked is None:
         return Package(result.problems, result.worked)
     problems = Problems()
@@ -58,7 +77,19 @@ def report(
         agreement = compare_paths(result.worked)
     evidence = agreement.words if agreement else ()
     composed = compose(result.worked, lambda done, total: progress("composing", done, total), evidence, kept)
-    return Package((), result.worked, composed, agreement=agreement)
+    return Package((), result.worked, composed, agreement=agreement, files=_files(world, result))
+
+
+def _files(world: World, result: Result) -> dict[str, bytes]:
+    """Return the files a project was read from; its values are added when its sheets are counted."""
+    assert result.worked is not None
+    inputs: dict[str, bytes] = {}
+    for source in result.worked.project.files:
+        # a workbook is carried as it is, text as it was read
+        book = isinstance(source, TableSource) and source.sheet
+        data = world.project_bytes(source.name) if book else source.text.encode()
+        inputs[source.name] = data if isinstance(data, bytes) else b""
+    return frozen_files(inputs, {name: source.text.encode() for name, source in result.templates.items()})
 
 
 def build(
@@ -68,12 +99,15 @@ def build(
     second: bool = False,
     kept: Fresh = FRESH,
     sampled: Sampling = "no",
+    status: str = "",
+    attached: bool = True,
 ) -> Package:
     """Build the package of a project; steps whose inputs have not changed are taken from `kept`.
 
-    `sampled` adds the reviewer's sampler, or makes that one sheet alone.
+    `sampled` adds the reviewer's sampler, or makes that one sheet alone, which carries no files. A `status` stands in
+    place of the project's own. What the package is made from is attached to it.
     """
-    told = report(world, source, progress, second, kept)
+    told = report(world, source, progress, second, kept, status)
     if told.composed is None or told.worked is None:
         return told
     progress("laying out", 0, 1)
@@ -86,7 +120,26 @@ def build(
         whole = sampler_alone(sample, part) if sampled == "alone" else with_sampler(told.composed.report, part)
         pages = lay_out(whole, fonts)
     progress("writing", 0, 1)
-    return replace(told, pages=pages, data=write_pdf(pages, fonts.files, kept=kept))
+    files = told.files | {VALUES: package_values(replace(told, pages=pages))}
+    carried = attachments(files) if attached and sampled != "alone" else ()
+    return replace(told, pages=pages, data=write_pdf(pages, fonts.files, carried, kept), files=files)
+
+
+def package_values(package: Package) -> bytes:
+    """Return the values file of a package whose sheets are laid out."""
+    assert package.worked is not None and package.composed is not None and package.pages is not None
+    sheets = {page.part: page.count for page in package.pages.pages}
+    return values_bytes(values_file(package.worked, package.composed.forms, package.composed.scripts, sheets))
+
+
+def attachments(files: dict[str, bytes]) -> tuple[Attachment, ...]:
+    """Return files as a PDF carries them."""
+    found = []
+    for name, data in files.items():
+        kind, words = ("Data", "values of every line and check") if name == VALUES else ("Source", "input file")
+        words = "template file" if name.startswith(TEMPLATES) else words
+        found.append(Attachment(name, data, kind, _MIME.get(name.rpartition(".")[2].lower(), "text/plain"), words))
+    return tuple(found)
 
 
 def _fitted(sample: Sampled, fonts: Fonts) -> Part:

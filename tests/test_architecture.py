@@ -49,7 +49,7 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
     ("second", (
         "second", "second.agreement", "second.closures", "second.quantities", "second.rework",
     )),
-    ("history", ("history", "history.accounts", "history.differences", "history.model")),
+    ("history", ("history", "history.accounts", "history.differences", "history.frozen", "history.model")),
     ("report", (
         "report", "report.below", "report.calculation", "report.candidates", "report.chains", "report.check_blocks", "report.compared",
         "report.compose", "report.confirmations", "report.digits", "report.display", "report.drawings",

@@ -21,7 +21,8 @@ def run(arguments: Namespace) -> int:
         return say_problems(opened, arguments.json, tail=UNWRITTEN)
     progress = ProgressLine()
     sampled: Sampling = "added" if arguments.sampler else "no"
-    package = build(opened.world, opened.source, progress, arguments.second_path, sampled=sampled)
+    package = build(opened.world, opened.source, progress, arguments.second_path, sampled=sampled,
+                    attached=not arguments.no_attachments)  # fmt: skip
     progress.clear()
     if package.problems:
         return say_problems(package.problems, arguments.json, tail=UNWRITTEN)

@@ -2,13 +2,13 @@
 
 from __future__ import annotations
 
-import json
 from argparse import Namespace
 
 from calcreport.commands.desk import ProgressLine, open_project, say_problems
 from calcreport.driver import work
+from calcreport.history.frozen import VALUES
 from calcreport.publish import build
-from calcreport.report.valuesfile import values_file, values_text
+from calcreport.report.valuesfile import values_text
 
 
 def run(arguments: Namespace) -> int:
@@ -31,10 +31,6 @@ def run(arguments: Namespace) -> int:
     progress.clear()
     if package.composed is None or package.pages is None or package.worked is None:
         return say_problems(package.problems, True)
-    sheets: dict[str, int] = {}
-    for page in package.pages.pages:
-        sheets[page.part] = page.count
-    found = values_file(package.worked, package.composed.forms, package.composed.scripts, sheets)
-    print(json.dumps(found, indent=1, ensure_ascii=False))
+    print(package.files[VALUES].decode(), end="")
     summary = package.composed.summary
     return 1 if summary.failed or summary.not_evaluated else 0

@@ -10,6 +10,7 @@ from __future__ import annotations
 
 from collections.abc import Iterable, Mapping
 from functools import partial
+from hashlib import md5
 from sys import intern
 
 from calcreport.core.fontfile import FontFile
@@ -21,7 +22,7 @@ from calcreport.output.embed import embed_font
 from calcreport.output.file import PdfFile
 from calcreport.output.metadata import information, xmp_packet
 from calcreport.output.outline import outline_objects
-from calcreport.output.syntax import Numbers, name, number, reference, stream, string, text_string
+from calcreport.output.syntax import Numbers, name, number, reference, stream, string, text_bytes, text_string
 
 
 @record
@@ -237,14 +238,18 @@ def _names(
     trees = b"/Dests<</Names[%b]>>" % b" ".join(string(label) + place for label, place in labels)
     if not attachments:
         return {"Names": b"<<%b>>" % trees}
-    files = sorted((item.name.encode(), reference(file.add(_attachment(file, item)))) for item in attachments)
-    trees += b"/EmbeddedFiles<</Names[%b]>>" % b" ".join(string(key) + b" " + ref for key, ref in files)
+    files = sorted((text_bytes(item.name), reference(file.add(_attachment(file, item)))) for item in attachments)
+    pairs = b" ".join(string(key) + b" " + ref for key, ref in files)
+    # the tree is its own leaf, so it may do without limits (ISO 32000-1 clause 7.9.6)
+    trees += b"/EmbeddedFiles<</Names[%b]>>" % pairs
     return {"Names": b"<<%b>>" % trees, "AF": b"[%b]" % b" ".join(ref for _, ref in files)}
 
 
 def _attachment(file: PdfFile, item: Attachment) -> bytes:
     """Write the specification of an attached file."""
-    entries = b"/Type/EmbeddedFile/Subtype%b/Params<</Size %d>>" % (name(item.mime), len(item.data))
+    # a checksum for readers, not against anyone: the format knows MD5 alone; dates are left out, none is known
+    sums = md5(item.data, usedforsecurity=False).hexdigest().encode()
+    entries = b"/Type/EmbeddedFile/Subtype%b/Params<</Size %d/CheckSum<%b>>>" % (name(item.mime), len(item.data), sums)
     file.mark(item.data)
     body = reference(file.add(stream(item.data, entries)))
     title = text_string(item.name)

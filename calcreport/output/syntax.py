@@ -40,11 +40,15 @@ def string(data: bytes) -> bytes:
     return b"(" + escaped.replace(b"\r", b"\\r").replace(b"\n", b"\\n") + b")"
 
 
+def text_bytes(text: str) -> bytes:
+    """Return text for people in bytes: plain ASCII as it is, anything else as UTF-16 with its mark."""
+    return text.encode() if text.isascii() else b"\xfe\xff" + text.encode("utf-16-be")
+
+
 def text_string(text: str) -> bytes:
-    """Write text for people: plain ASCII as it is, anything else as UTF-16 with its mark."""
-    if text.isascii():
-        return string(text.encode())
-    return b"<FEFF" + text.encode("utf-16-be").hex().upper().encode() + b">"
+    """Write text for people as a string."""
+    data = text_bytes(text)
+    return string(data) if text.isascii() else b"<" + data.hex().upper().encode() + b">"
 
 
 def stream(data: bytes, entries: bytes = b"", compress: bool = True) -> bytes:

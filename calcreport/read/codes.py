@@ -15,6 +15,8 @@ from calcreport.read.fields import Fields, as_scalar, say_not_a_word
 from calcreport.read.library import INCOMPLETE, Library, split_code
 from calcreport.read.nodes import Mapping, Node, Scalar, Sequence
 
+#: files of the library that say which editions belong together and which criteria there are
+CLOSED_LISTS = ("codes.yaml", "criteria.yaml")
 #: fields a code is named for beside the two every package names
 OTHER_FIELDS = ("masonry", "steel", "timber", "soil", "bars")
 KEYS, ADOPTED_KEYS = ("adopted", "concrete", "loads", *OTHER_FIELDS), ("name", "year", "amendments")
@@ -88,7 +90,7 @@ def _other_edition(stated: Scalar, parts: tuple[str, str], asked: str, problems:
 
 def _permitted(adopted: str, library: Library) -> dict[str, tuple[str, ...]]:
     """Return the editions an adopted code refers to, by field."""
-    tree = library.tree("codes.yaml")
+    tree = library.tree(CLOSED_LISTS[0])
     known = tree.get("adopted") if tree else None
     refers = known.get(adopted) if isinstance(known, Mapping) else None
     return {
@@ -123,7 +125,7 @@ def read_criteria(
     node: Mapping | None, library: Library, system: str, problems: Problems
 ) -> tuple[tuple[str, str], ...]:
     """Read the criteria against the library's closed list."""
-    tree = library.tree("criteria.yaml")
+    tree = library.tree(CLOSED_LISTS[1])
     known = tree.get("criteria") if tree else None
     entries = {key.text: value for key, value in known.entries} if isinstance(known, Mapping) else {}
     if node is None:

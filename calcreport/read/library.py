@@ -6,6 +6,7 @@ Names in, `Template` records out. Files come through the World; formulas are par
 from __future__ import annotations
 
 import re
+from collections.abc import Iterable
 from dataclasses import dataclass, field
 from functools import partial
 
@@ -215,12 +216,13 @@ class Library:
             self._touched.pop()
         found = self._templates[key]
         for touched in self._touched:
-            touched.update(self._file_names(found))
+            touched.update(self.named(found.files if found else ()))
         return found
 
-    def _file_names(self, template: Template | None) -> tuple[str, ...]:
-        files = set(template.files) if template else set()
-        return tuple(name for name, source in self._found.items() if isinstance(source, Source) and source in files)
+    def named(self, files: Iterable[Source]) -> dict[str, Source]:
+        """Return files by the names they were asked for."""
+        wanted = set(files)
+        return {name: found for name, found in self._found.items() if isinstance(found, Source) and found in wanted}
 
     def _covers(self, head: TemplateHead, system: System, editions: dict[str, str], span: Span | None) -> bool:
         """Tell whether a template serves a unit system and the edition adopted; adds `edition-mix`."""

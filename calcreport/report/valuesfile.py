@@ -5,6 +5,7 @@ Worked calculations with forms and scripts in, one JSON-ready object or lines of
 
 from __future__ import annotations
 
+import json
 from typing import Any
 
 from calcreport.calculate.model import Key, Selection, Worked, WorkedCheck, WorkedGives, WorkedProject
@@ -47,8 +48,29 @@ def values_file(
         "status": project.project.status,
         "date": project.project.date,
         "fingerprint": project.fingerprint,
+        "file": project.project.files[0].name,
     }
     return {"program": PROGRAM, "format": FORMAT, "project": header, "calculations": calculations}
+
+
+def values_bytes(found: dict[str, Any]) -> bytes:
+    """Return the values file as it is written: a calculation's lines and checks each on a line of their own."""
+    facts = (f"{_json(key)}: {_json(value)}" for key, value in found.items() if key != "calculations")
+    parts = (f"{_json(mark)}: {_calculation_text(one)}" for mark, one in found["calculations"].items())
+    return ("{" + ",\n".join(facts) + ',\n"calculations": {\n' + ",\n".join(parts) + "\n}}\n").encode()
+
+
+def _calculation_text(one: dict[str, Any]) -> str:
+    pieces = []
+    for key, value in one.items():
+        rows = isinstance(value, list) and value
+        text = "[\n  " + ",\n  ".join(map(_json, value)) + "]" if rows else _json(value)
+        pieces.append(f" {_json(key)}: {text}")
+    return "{\n" + ",\n".join(pieces) + "}"
+
+
+def _json(value: object) -> str:
+    return json.dumps(value, ensure_ascii=False)
 
 
 def _lines(script: Script, forms: CalculationForms) -> list[dict[str, Any]]:

@@ -53,10 +53,19 @@ class TableHere:
     open: Rows
     pairs: tuple[str, str] | None
 
+    @property
+    def inner(self) -> str:
+        """The set that each member has for itself, its row names in the second column; '' for none."""
+        second = self.table.columns[1] if len(self.table.columns) > 2 else None
+        shared = self.table.set_name == "member" and second is not None and not second.math and not second.unit
+        return second.name if second is not None and shared and self.pairs is None and self.table.given else ""
+
     def rows_of(self, row: list[str], column: int) -> frozenset[tuple[str, str]]:
         """Return the rows that a cell belongs to."""
         first, _, second = self.table.set_name.partition(" / ")
         found = {pair for pair in self.open if pair[0] not in (first, second)} | {(first, row[0])}
+        if self.inner:
+            found.add((self.inner, row[1]))
         return frozenset(found | {(second, self.table.columns[column].name)} if second else found)
 
 
@@ -99,6 +108,8 @@ class Calculation:
         for here in self.tables:
             first, _, second = here.table.set_name.partition(" / ")
             found[first] += [row[0] for row in here.table.rows if row[0] not in found[first]]
+            if here.inner:
+                found[here.inner] = list(dict.fromkeys([*found[here.inner], *(row[1] for row in here.table.rows)]))
             if second:
                 found[second] += [c.name for c in here.table.columns[1:] if c.name not in found[second]]
         for item in self.inline:
@@ -121,6 +132,10 @@ class Calculation:
             self.keys[key.name].append(key)
         self.forms[key].append((printed, place))
         self.shown.add((printed.text, printed.unit))
+
+
+#: how a heading ends that sets one row out in full, before the table of all
+_GOVERNS = ", which governs"
 
 
 def assemble(pages: Sequence[SheetPage]) -> list[Calculation]:
@@ -156,19 +171,26 @@ def _open_rows(calculation: Calculation) -> None:
     """Follow the headings down the sheets: which row of which set stands open at each statement and table."""
     for line in calculation.lines:
         calculation.tables += [TableHere(table, line, (), _pairs(line, table)) for table in line.tables]
+        for table in line.tables:
+            _fill_down(table)
         for statement in line.statements:
             calculation.inline += _inline_row(statement)
     sets = calculation.set_rows()
     heading: Rows = ()
+    governs = False
     for line in calculation.lines:
         events: list[tuple[int, float, Statement | TableHere]] = [(s.page, -s.y, s) for s in line.statements]
         events += [(h.table.page, -h.table.y, h) for h in calculation.tables if h.line is line]
         for _, _, event in sorted(events, key=lambda e: e[:2]):
             if isinstance(event, TableHere):
+                if governs and heading and event.table.set_name == heading[0][0]:
+                    # the row told in full ends where the table of all rows stands
+                    heading, governs = (), False
                 event.open = heading
             elif event.kind == "heading":
                 row = _row_named(sets, event.words)
-                heading = (row,) if row else ()
+                if row or not governs:
+                    heading, governs = (row,) if row else (), bool(row) and event.words.endswith(_GOVERNS)
             else:
                 row = _row_named(sets, event.words.partition(":")[0]) if ":" in event.words else None
                 event.context = (*heading, row) if row else heading
@@ -202,8 +224,15 @@ def _inline_row(statement: Statement) -> list[InlineRow]:
     return found
 
 
+def _fill_down(table: Table) -> None:
+    """Put a member's mark into the rows that leave it out because they follow another row of that member."""
+    above = ""
+    for row in table.rows:
+        row[0] = above = row[0] or above
+
+
 def _row_named(sets: dict[str, list[str]], text: str) -> tuple[str, str] | None:
-    text = text.removesuffix(", which governs")
+    text = text.removesuffix(_GOVERNS)
     for name, rows in sets.items():
         if text.startswith(name + " ") and text[len(name) + 1 :].strip() in rows:
             return name, text[len(name) + 1 :].strip()
@@ -248,7 +277,8 @@ def _note(calculation: Calculation, name: str, context: Rows, tokens: Sequence[T
         calculation.words[name].append(("none", place))
     printed = printed_of(tokens)
     if printed is not None:
-        sets = calculation.belongs(name)
+        # every line told for one of like members is of that member
+        sets = calculation.belongs(name) | {"member"}
         calculation.note(Key(name, frozenset(pair for pair in context if pair[0] in sets)), printed, place)
     elif tokens:
         calculation.words[name].append((plain(tokens), place))

@@ -14,6 +14,7 @@ from .account import Finding
 from .calculations import Calculation
 from .equations import assignments, printed_of
 from .letters import plain
+from .members import failing, in_summary, results
 from .numbering import index_rows, lines_by_number
 from .package import Package, Page
 from .pieces import spaced
@@ -96,7 +97,8 @@ def _failures(package: Package) -> Iterator[Finding]:
     total = 0
     for calculation in package.calculations:
         failed = failed_checks(calculation)
-        total += len(failed)
+        shared = results(calculation)
+        total += failing(calculation) if shared else len(failed)
         titles = [s.words.removeprefix("CHECK").strip() for _, s in failed]
         for sheet in calculation.pages:
             if bool(failed) != ("NG" in sheet.strip):
@@ -112,7 +114,10 @@ def _failures(package: Package) -> Iterator[Finding]:
         entry = [row for row, cells in rows if cells.get("Mark") == calculation.mark]
         if not entry or any("NG" in " ".join(row).split() for row in entry) != bool(failed):
             yield Finding("NG in the index", calculation.mark, 0, f"{entry}, failed {titles}")
-        yield from _in_summary(package, calculation, failed)
+        if shared:
+            yield from in_summary(calculation, _summary_tables(package))
+        else:
+            yield from _in_summary(package, calculation, failed)
     cover = package.pages[0].text
     counted = re.search(r"(\d+) NG", cover)
     if counted is None or int(counted[1]) != total:

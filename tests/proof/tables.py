@@ -44,6 +44,12 @@ class Table:
     def set_name(self) -> str:
         return self.columns[0].name
 
+    @property
+    def given(self) -> bool:
+        """Whether the rows hold no ratio of a check: those stand in the last columns, under words without a unit."""
+        last = self.columns[-1]
+        return last.math or bool(last.unit)
+
     def column(self, name: str) -> int | None:
         """Return the place of a column of a symbol."""
         return next((i for i, c in enumerate(self.columns) if c.name == name and i), None)

@@ -100,3 +100,22 @@ def methods_below(lines: tuple[WorkedLine, ...]) -> list[WorkedMethod]:
                 for row in line.rows:
                     found += methods_below(row)
     return found
+
+
+def arms_below(lines: tuple[WorkedLine, ...]) -> tuple[tuple[int, int], ...]:
+    """Return the arm taken by every line and block that has several, in page order: alike where the path is."""
+    found: list[tuple[int, int]] = []
+    for line in lines:
+        match line:
+            case WorkedGives() if len(line.line.arms) > 1:
+                found.append((id(line.line), line.arm))
+            case WorkedBranches():
+                found += [(id(line.line), line.arm), *arms_below(line.lines)]
+            case WorkedPart() | WorkedUnknown():
+                found += arms_below(line.lines)
+            case WorkedEach():
+                for row in line.rows:
+                    found += arms_below(row)
+            case _:
+                pass
+    return tuple(found)

@@ -124,7 +124,7 @@ class Composer:
             case SayMade():
                 return self.rows.made(item)
             case SayTable():
-                return (self.rows.table(item), *self.checks.dispositions_left(item))
+                return (self.rows.table(item), *self.rows.other_branches(item), *self.checks.dispositions_left(item))
             case SayUnknown():
                 return self.unknown(item)
             case SayEquation():

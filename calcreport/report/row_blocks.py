@@ -10,7 +10,7 @@ from calcreport.calculate.model import (
     WorkedGives,
 )
 from calcreport.core.expression import Expression, Name, Number
-from calcreport.report.below import checks_below
+from calcreport.report.below import arms_below, checks_below
 from calcreport.report.digits import number_text
 from calcreport.report.display import row_words, show_row
 from calcreport.report.items import SayFormula, SayMade, SayTable
@@ -22,6 +22,7 @@ from calcreport.report.model import (
     Letters,
     Line,
     Operator,
+    Paragraph,
     Row,
     SourceLane,
     Space,
@@ -90,6 +91,19 @@ class RowBlocks:
             emphasis: Emphasis = "loud" if failed else "governing" if place == item.governing else ""
             rows.append(TableRow(tuple(cells), emphasis))
         return Table(tuple(columns), tuple(rows), (), item.number, self.told.anchor(item.number))
+
+    def other_branches(self, item: SayTable) -> tuple[Block, ...]:
+        """Name the rows that go by other branches than the one set out in full: their lines are not printed."""
+        if item.governing < 0:
+            return ()
+        each = item.worked
+        path = arms_below(each.rows[item.governing])
+        others = [name for name, row in zip(each.names, each.rows, strict=True) if arms_below(row) != path]
+        if not others:
+            return ()
+        listed = ", ".join(row_words(name) for name in others)
+        words = f"By other branches than {row_words(each.names[item.governing])} above: {listed}."
+        return (Paragraph((words,), "note"),)
 
     def made(self, item: SayMade) -> tuple[Block, ...]:
         """Return a set made here: a table of its rows, formulas shown where a cell holds one."""

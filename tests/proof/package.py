@@ -80,6 +80,7 @@ def read_package(path: Path) -> Package:
         links = list(_links(page, ink, numbers, annotations))
         sheet = read_sheet(ink, index)
         if sheet is not None:
+            sheet.text = page_text(ink)
             sheets.append(sheet)
         body = [g for g in ink.glyphs if g.text != " " and g.y > frame.block]
         tables = [] if sheet is not None else find_tables(body, ink.lines, index)[0]

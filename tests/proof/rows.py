@@ -103,18 +103,27 @@ def other_rows(desk: Desk, table: Table) -> None:
     """Rows in a table follow the formula printed in full for one of them, unless that one says `since`."""
     shown = [(s, line) for s, line in _in_full(desk.calculation, table) if s.kind == "formula" and s.tokens]
     names = Counter(left_symbol(s) for s, _ in shown)
+    elsewhere = _other_branches(desk.calculation)
     for statement, line in shown:
         name, parts = left_symbol(statement), split(statement.tokens, "relation")[0]
         place = table.column(name) if name else None
         if place is None or len(parts) < 3 or names[name] > 1 or any(s.because == "since" for s in line.statements):
             continue
         for row in table.rows:
-            if is_number(row[place]) and (table.set_name, row[0]) not in statement.context:
+            set_out = row[0] in elsewhere or (table.set_name, row[0]) in statement.context
+            if is_number(row[place]) and not set_out:
                 try:
                     unit = table.columns[place].unit
                     _work(desk, parts[1], name, ((table.set_name, row[0]),), Printed(row[place], 0, unit))
                 except (Unread, Unknown, Mixed) as error:
                     _unread(desk, table, f"row {row[0]} of {name}: {error}")
+
+
+def _other_branches(calculation: Calculation) -> set[str]:
+    """Return the rows that a note below their table says go by other branches than the one set out in full."""
+    words = " ".join(page.text.replace("\n", " ") for page in calculation.pages)
+    return {name.strip() for said in re.findall(r"By other branches than [^:]+: ([^.]+)\.", words)
+            for name in said.split(",")}  # fmt: skip
 
 
 def _unread(desk: Desk, table: Table, text: str) -> None:

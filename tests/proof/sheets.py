@@ -39,6 +39,8 @@ class SheetPage:
     boxes: list[list[Token]]
     strip: str
     problems: list[str]
+    #: all text of the page by rows, for notes below tables
+    text: str = ""
 
 
 def read_sheet(ink: PageInk, index: int) -> SheetPage | None:

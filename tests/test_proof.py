@@ -26,12 +26,14 @@ from tests.proof.claims import examine
 from tests.proof.frames import find_frame
 from tests.proof.glyphs import PageInk, Reader
 from tests.proof.marks import marks
+from tests.proof.members import in_summary, results
 from tests.proof.numbering import numbering
 from tests.proof.order import out_of_order
 from tests.proof.package import Package, read_package
 from tests.proof.prove import ROOT, Proof, prove
 from tests.proof.sampler import sampler
 from tests.proof.sheets import SheetPage, read_sheet
+from tests.proof.tables import Table
 
 SAMPLES = sorted(path.parent.name for path in (ROOT / "samples").glob("*/project.yaml"))
 SYSTEMS = {"random us": US, "random si": SI}
@@ -299,6 +301,35 @@ def test_planted_faults_of_the_sampler_are_found(subject: Package) -> None:
         tables = [replace(table, rows=[row, *table.rows[1:]])]
         assert claim in claims(replace(page, tables=tables)), text
     assert {f.claim for f in sampler(replace(subject, sampler=[page, page]))} == {"the sampler is one sheet"}
+
+
+def test_planted_faults_of_like_members_are_found(proofs: dict[str, Proof]) -> None:
+    package = read_package(proofs["long-floor"].path)
+    calculation = next(c for c in package.calculations if results(c))
+    summary = [table for page in package.pages if page.name.startswith("SUMMARY") for table in page.tables]
+
+    def claims(tables: list[Table]) -> set[str]:
+        return {finding.claim for finding in in_summary(calculation, tables)}
+
+    def with_cell(place: int, column: str, text: str) -> list[Table]:
+        at = next(i for i, c in enumerate(summary[place].columns) if c.name == column)
+        row = next(i for i, cells in enumerate(summary[place].rows) if cells[0] == "G6")
+        rows = [
+            [*cells[:at], text, *cells[at + 1 :]] if i == row else cells for i, cells in enumerate(summary[place].rows)
+        ]
+        return [*summary[:place], replace(summary[place], rows=rows), *summary[place + 1 :]]
+
+    governing = next(i for i, table in enumerate(summary) if table.column("Governing check"))
+    grid = next(i for i, table in enumerate(summary) if table.column("flexure"))
+    assert claims(summary) == set()
+    assert claims(with_cell(governing, "Ratio", "0.894")) == {"the summary shows the governing ratio"}
+    assert claims(with_cell(grid, "flexure", "0.894")) == {"the summary repeats the ratios"}
+    assert claims(summary[:governing]) == {"every member stands once in the summary"}
+    for here in calculation.tables:
+        if here.table.set_name == "member" and any(row[0] == "G9" for row in here.table.rows):
+            # the governing member's exact limit and its fellow's: with both gone another row is the worst
+            here.table.rows = [row for row in here.table.rows if row[0] != "G9"]
+    assert "the member told in full is the worst" in claims(summary)
 
 
 def test_order_is_judged(subject: Package) -> None:

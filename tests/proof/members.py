@@ -70,7 +70,6 @@ def _governs(calculation: Calculation, cells: dict[str, str], own: dict[str, str
     greatest = max((cell.split()[0] for cell in own.values()), key=float)
     shown = cells.get("Ratio", "").split()
     # a heading may run over two lines, of which one is read
-    check = next((cell for name, cell in own.items() if name in cells["Governing check"]), "")
     failed = any("NG" in cell.split() for cell in own.values())
     if (
         not {cell.split()[0] for name, cell in own.items() if name in cells["Governing check"]} >= set(shown[:1])

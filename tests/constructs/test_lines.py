@@ -86,19 +86,19 @@ TEXT = {
     8: "factor of the deep since h = 18 in. ≤ 20 in. m = h/b = 18/12 = 1.5 2.2 1 2",
     # 4(12) = 48
     9: "Required b = 12 in. ≤ h = 18 in. ≤ 4 b = 48 in. 1.1 1 2",
-    # 3 + 36.735 = 39.735, half up
-    10: "first moment of the steel S = ∑ layer Ai y = 1.2 (2.5) + 2.37 (15.5) = 39.74 in.³ statics 5",
+    # 3 + 36.735 = 39.735; five digits, as line 18 holds it against the other side of the equation
+    10: "first moment of the steel S = ∑ layer Ai y = 1.2 (2.5) + 2.37 (15.5) = 39.735 in.³ statics 5",
     11: "depth of the first layer, layer top y1 = ytop = 2.5 in. geometry 5",
     12: "deepest layer, layer bottom ymax = max layer y = 15.5 in. geometry 5",
     13: "factors table pi qi Table 3.1 1 0 1 2 10 0.5",
     # half way: 1 − 0.5/2 = 0.75
     14: "factor read from the table q = read table: pi=5 qi = 1 + (0.5 − 1) 5 − 0 10 − 0 = 0.75 Table 3.1 13",
     15: "depth sought, so that b c 2 = S 1 10",
-    # √3.3113 = 1.8197, printed at four digits
-    16: "c = √S/b = √39.74/12 = 1.820 in. 1 10",
-    # 12(3.3124) = 39.749, at three digits as the other side
-    17: "left side there b c 2 = 12 (1.8202 ) = 39.7 in.³ 1 16",
-    18: "right side there S = 39.7 in.³ 10",
+    # √3.31125 = 1.819684
+    16: "c = √S/b = √39.735/12 = 1.81968 in. 1 10",
+    # 12(3.3112353) = 39.7348, to the digits of the other side 39.735
+    17: "left side there b c 2 = 12 (1.819682 ) = 39.735 in.³ 1 16",
+    18: "right side there S = 39.735 in.³ 10",
     19: "twice the width z = 2 b = 2 (12) = 24 in. geometry 1 layer bottom, which governs",
     # 2.37(60) = 142.2
     20: "force of a layer f = Ai (60 ksi) = 2.37 (60) = 142.2 kip statics 5",

@@ -13,7 +13,9 @@ from calcreport.core.problems import Problem, Problems
 from calcreport.core.source import Source, TableSource
 from calcreport.core.world import World
 from calcreport.driver import Progress, Result, silent, work
+from calcreport.history.accounts import placed_entries
 from calcreport.history.frozen import TEMPLATES, VALUES, frozen_files
+from calcreport.history.model import Revised
 from calcreport.layout.fonts import Fonts, installed_fonts
 from calcreport.layout.model import Pages
 from calcreport.layout.paginate import lay_out
@@ -22,6 +24,7 @@ from calcreport.output.pdf import Attachment, write_pdf
 from calcreport.report.compose import Composed, compose
 from calcreport.report.model import Part
 from calcreport.report.sampler import SIZES, Sampled, sampler, sampler_alone, with_sampler
+from calcreport.report.value_lines import Finished
 from calcreport.report.valuesfile import values_bytes, values_file
 from calcreport.second.agreement import Agreement, compare_paths
 
@@ -125,13 +128,6 @@ def build(
     return replace(told, pages=pages, data=write_pdf(pages, fonts.files, carried, kept), files=files)
 
 
-def package_values(package: Package) -> bytes:
-    """Return the values file of a package whose sheets are laid out."""
-    assert package.worked is not None and package.composed is not None and package.pages is not None
-    sheets = {page.part: page.count for page in package.pages.pages}
-    return values_bytes(values_file(package.worked, package.composed.forms, package.composed.scripts, sheets))
-
-
 def attachments(files: dict[str, bytes]) -> tuple[Attachment, ...]:
     """Return files as a PDF carries them."""
     found = []
@@ -140,6 +136,18 @@ def attachments(files: dict[str, bytes]) -> tuple[Attachment, ...]:
         words = "template file" if name.startswith(TEMPLATES) else words
         found.append(Attachment(name, data, kind, _MIME.get(name.rpartition(".")[2].lower(), "text/plain"), words))
     return tuple(found)
+
+
+def package_values(package: Package) -> bytes:
+    """Return the values file of a package, with its sheets counted where they are laid out."""
+    assert package.worked is not None and package.composed is not None
+    composed, calculations = package.composed, package.worked.calculations
+    lines = {worked.calculation.mark: tuple(placed_entries(worked)) for worked in calculations}
+    finished = Finished(package.worked, composed.forms, composed.scripts, lines)
+    issue = package.worked.project.last_issue
+    revised = {worked.calculation.mark: Revised(issue.number, issue.date) for worked in calculations}
+    sheets = {page.part: page.count for page in package.pages.pages} if package.pages is not None else {}
+    return values_bytes(values_file(finished, sheets, revised, {}))
 
 
 def _fitted(sample: Sampled, fonts: Fonts) -> Part:

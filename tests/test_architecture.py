@@ -56,7 +56,8 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
         "report.editions", "report.editions_text", "report.families", "report.forms", "report.formula_model",
         "report.fronts", "report.given_blocks", "report.governing", "report.items", "report.members", "report.method_blocks", "report.model",
         "report.notation", "report.premises", "report.row_blocks", "report.sampler", "report.script", "report.spaced",
-        "report.substitution", "report.summary", "report.taken", "report.told", "report.traced", "report.valuesfile",
+        "report.substitution", "report.summary", "report.taken", "report.told", "report.traced", "report.value_lines",
+        "report.valuesfile",
     )),
     ("layout", (
         "layout", "layout.blocks", "layout.checks", "layout.cover", "layout.delimiters", "layout.drawing",

@@ -1,8 +1,8 @@
 """Two accounts of one calculation held against each other: what differs, and how many lines do not.
 
 A pure function of finished values. Lines are matched by kind and path, never by number; numbers are compared to the
-last bit, before any rounding. Whether the accounts come from two editions of a code or from two issues makes no
-difference here.
+last bit, before any rounding, and beside them what is printed where the accounts hold it. Whether the accounts come
+from two editions of a code or from two issues makes no difference here.
 """
 
 from __future__ import annotations
@@ -26,7 +26,14 @@ def differ(first: Account | None, second: Account | None) -> Difference:
         else:
             equal += 1
         changes += [_alone(inserted) for inserted in new.get(entry.identity, ())]
-    return Difference(first, second, tuple(changes), equal)
+    return Difference(first, second, tuple(changes), equal, _reordered(before, after))
+
+
+def _reordered(before: tuple[Entry, ...], after: tuple[Entry, ...]) -> bool:
+    """Tell whether the lines that both have stand in another order."""
+    one, two = [entry.identity for entry in before], [entry.identity for entry in after]
+    both = set(one) & set(two)
+    return [identity for identity in one if identity in both] != [identity for identity in two if identity in both]
 
 
 def _alone(entry: Entry) -> Change:
@@ -58,4 +65,9 @@ def _differs(first: Entry, second: Entry) -> tuple[Differs, ...]:
         found.append("citation")
     if first.verdict != second.verdict:
         found.append("verdict")
+    other_unit = first.unit != second.unit
+    if other_unit or ("value" not in found and first.shown != second.shown) or first.beside != second.beside:
+        found.append("print")
+    if first.linked != second.linked:
+        found.append("link")
     return tuple(found)

@@ -12,8 +12,11 @@ from calcreport.calculate.model import Key, WorkedCheck, WorkedGives, WorkedRequ
 from calcreport.core.record import record
 
 Kind: TypeAlias = Literal["given", "value", "check", "requirement"]
-#: what of a line differs; the last two stand alone
-Differs: TypeAlias = Literal["value", "formula", "case", "citation", "verdict", "only in first", "only in second"]
+#: what of a line differs: `print` where the value is the same and its digits, or others printed beside it, are not;
+#: `link` where it comes from another line of another calculation; the last two stand alone
+Differs: TypeAlias = Literal[
+    "value", "formula", "case", "citation", "verdict", "print", "link", "only in first", "only in second"
+]
 #: what the same line is known by in another account: kind, path, and which of several alike
 Identity: TypeAlias = tuple[Kind, str, int]
 #: a line in the run it was worked in: its record, or slot and key of a value that has none of its own
@@ -42,6 +45,16 @@ class Entry:
     cite: str
     #: of a check, else ''
     verdict: str
+    #: value as printed, with its unit and spelling as typed; '' in an account made without print
+    shown: str = ""
+    #: other numbers printed on the line: sides of a comparison, the result in other units
+    beside: tuple[str, ...] = ()
+    #: the line of another calculation a given value comes from, such as 'FL2.14', or ''
+    linked: str = ""
+    #: number of the line on its sheets; no part of a comparison, since an insertion moves it
+    line: int = 0
+    #: revision the line last changed in, '' where it stands as first issued
+    changed: str = ""
 
     @property
     def identity(self) -> Identity:
@@ -64,6 +77,18 @@ class Account:
     #: words of the stop, '' where it ran to its end
     stopped: str
     entries: tuple[Entry, ...]
+    #: over given values and template text; '' in an account made without it, as are the fields below
+    fingerprint: str = ""
+    #: (file, digest) of the template's files
+    files: tuple[tuple[str, str], ...] = ()
+    #: what the candidates came to, one text a row of their table, and before them the one used
+    selection: tuple[str, ...] = ()
+    #: the engineer's words on its checks
+    dispositions: tuple[str, ...] = ()
+    sheets: int = 0
+    #: revision it last changed in, and the date of that revision
+    revision: str = ""
+    date: str = ""
 
 
 @record
@@ -90,8 +115,10 @@ class Difference:
     second: Account | None
     #: in the order of the first, lines only in the second after the line they follow there
     changes: tuple[Change, ...]
-    #: lines found equal: value to the last bit, formula, case, citation and verdict
+    #: lines found equal: value to the last bit, formula, case, citation, verdict, and all that is printed
     equal: int
+    #: the lines on both sides stand in another order
+    reordered: bool = False
 
     @property
     def mark(self) -> str:
@@ -102,8 +129,27 @@ class Difference:
 
     @property
     def differs(self) -> bool:
-        """Whether anything at all differs."""
-        return bool(self.changes) or self.verdict_flipped or self.governing_changed or _stop(self)
+        """Whether anything at all differs, the mark apart."""
+        if self.changes or self.reordered or self.verdict_flipped or self.governing_changed:
+            return True
+        of = ("stopped", "title", "template", "fingerprint", "selection", "dispositions")
+        return any(self.other(field) for field in of)
+
+    def other(self, field: str) -> bool:
+        """Whether a field of the accounts differs."""
+        return _of(self.first, field) != _of(self.second, field)
+
+    @property
+    def renamed(self) -> bool:
+        """Whether the calculation stands on both sides, under another mark."""
+        return self.first is not None and self.second is not None and self.first.mark != self.second.mark
+
+    @property
+    def files(self) -> tuple[str, ...]:
+        """Files of the template that differ, or are on one side only."""
+        if self.first is None or self.second is None:
+            return ()
+        return tuple(dict.fromkeys(name for name, _ in sorted(set(self.first.files) ^ set(self.second.files))))
 
     @property
     def inputs(self) -> tuple[Change, ...]:
@@ -133,17 +179,112 @@ class Difference:
     @property
     def verdict_flipped(self) -> bool:
         """Whether the verdict of the calculation differs."""
-        return _of(self.first, "verdict") != _of(self.second, "verdict")
+        return self.other("verdict")
 
     @property
     def governing_changed(self) -> bool:
         """Whether another check governs."""
-        return _of(self.first, "governing") != _of(self.second, "governing")
-
-
-def _stop(difference: Difference) -> bool:
-    return _of(difference.first, "stopped") != _of(difference.second, "stopped")
+        return self.other("governing")
 
 
 def _of(account: Account | None, field: str) -> object:
     return getattr(account, field) if account is not None else None
+
+
+@record
+class Revised:
+    """The revision something last changed in."""
+
+    number: str
+    #: ISO date
+    date: str
+
+
+@record
+class Fact:
+    """A fact of the package that is printed on its first sheets: a criterion, an assumption, a code."""
+
+    #: 'criteria', 'assumption'
+    group: str
+    name: str
+    text: str
+
+
+@record
+class FactChange:
+    """A fact that differs; None where it is only on the other side."""
+
+    first: Fact | None
+    second: Fact | None
+
+    @property
+    def fact(self) -> Fact:
+        """The fact on the side it is on, the second before the first."""
+        found = self.second or self.first
+        assert found is not None
+        return found
+
+
+@record
+class Issued:
+    """A package as its values file tells it: what two issues are compared by."""
+
+    program: str
+    title: str
+    #: project number
+    number: str
+    #: last row of the revision record, and its date
+    revision: str
+    revision_date: str
+    date: str
+    status: str
+    facts: tuple[Fact, ...]
+    #: in the order of the package
+    accounts: tuple[Account, ...]
+
+
+@record
+class Comparison:
+    """Two issues held against each other."""
+
+    first: Issued
+    second: Issued
+    #: of every calculation, in the order of the second; those only in the first at the end
+    differences: tuple[Difference, ...]
+    facts: tuple[FactChange, ...]
+
+    @property
+    def changed(self) -> tuple[Difference, ...]:
+        """Calculations on both sides that differ, also in their mark alone."""
+        return tuple(d for d in self.differences if d.first and d.second and (d.differs or d.renamed))
+
+    @property
+    def unchanged(self) -> tuple[Difference, ...]:
+        """Calculations in which nothing differs: every line was compared."""
+        return tuple(d for d in self.differences if not d.differs and not d.renamed)
+
+    @property
+    def added(self) -> tuple[Difference, ...]:
+        """Calculations only in the second."""
+        return tuple(d for d in self.differences if d.first is None)
+
+    @property
+    def removed(self) -> tuple[Difference, ...]:
+        """Calculations only in the first."""
+        return tuple(d for d in self.differences if d.second is None)
+
+    @property
+    def calculations_differ(self) -> bool:
+        """Whether any calculation changed, came or went."""
+        return len(self.unchanged) < len(self.differences)
+
+    @property
+    def status_changed(self) -> bool:
+        """Whether the status differs."""
+        return self.first.status != self.second.status
+
+    @property
+    def differs(self) -> bool:
+        """Whether anything that is printed differs, the number and date of the issue apart."""
+        other_program = self.first.program != self.second.program
+        return self.calculations_differ or self.status_changed or bool(self.facts) or other_program

@@ -234,6 +234,11 @@ class Project:
     #: where another edition was asked for to compare with: what the adopted code refers to instead of it, or ''
     foreign: str = ""
 
+    @property
+    def last_issue(self) -> Issue:
+        """The last row of the revision record; 1 of the project's date where it has none."""
+        return self.issues[-1] if self.issues else Issue("1", self.date, "")
+
 
 @dataclass(frozen=True, slots=True)
 class Inputs:

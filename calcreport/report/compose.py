@@ -117,7 +117,7 @@ def _front(project: WorkedProject, mark: str, title: str, blocks: tuple[Block, .
 def title_facts(project: WorkedProject, subject: str, code: str = "", fingerprint: str = "") -> TitleFacts:
     """Return what the title block of a part says."""
     facts = project.project
-    issue = facts.issues[-1] if facts.issues else None
+    issue = facts.last_issue
     return TitleFacts(
         project=facts.title,
         project_number=facts.number,
@@ -125,8 +125,8 @@ def title_facts(project: WorkedProject, subject: str, code: str = "", fingerprin
         code=code,
         status=facts.status.upper(),
         status_note=fronts.STATUS_NOTES[facts.status],
-        revision=f"rev {issue.number}" if issue else "rev 1",
-        date=fronts.short_date(issue.date if issue else facts.date),
+        revision=f"rev {issue.number}",
+        date=fronts.short_date(issue.date),
         fingerprint=fingerprint,
         program=PROGRAM,
     )

@@ -105,11 +105,10 @@ def cover(project: WorkedProject, result: tuple[Words, ...], loud: bool) -> Cove
     basis = [f"{name}: {code}" for name, code in facts.codes]
     basis[0] += ", no local amendments listed" if facts.amendments == "none" else f", amendments: {facts.amendments}"
     basis += [f"{name}: {value}" for name, value in facts.criteria[:6]]
-    issue = facts.issues[-1].number if facts.issues else "1"
     return CoverFacts(
         title=facts.title,
         header=header,
-        issue=f"Issue {issue}",
+        issue=f"Issue {facts.last_issue.number}",
         date=date_words(facts.date),
         status=facts.status.upper(),
         status_note=STATUS_NOTES[facts.status],

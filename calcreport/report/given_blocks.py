@@ -12,6 +12,7 @@ from calcreport.calculate.model import (
     Key,
     LinkedValue,
     PlannedGiven,
+    Symbol,
     ValueOrigin,
     singles,
 )
@@ -84,14 +85,8 @@ class GivenBlocks:
 
     def as_typed(self, shown: Formula, value: GivenValue, slot: int) -> Formula:
         """Add the typed spelling where it is in another unit than the one used."""
-        handed, unit = value.value, self.told.slots[slot].symbol.unit
-        if not isinstance(handed, Amount) or unit is None or value.origin.kind == "none":
-            return shown
-        feet = "'" in handed.text or '"' in handed.text or len(handed.text.split()) > 2
-        told = self.told.slots[slot].symbol.inches is not None
-        if handed.unit.scale == unit.scale and (told or not feet):
-            return shown
-        return Row((shown, Letters(f"  ({trade_marks(handed.text)})")))
+        typed = typed_beside(value, self.told.slots[slot].symbol)
+        return Row((shown, Letters(f"  ({trade_marks(typed)})"))) if typed else shown
 
     def with_outputs(self, shown: Formula, planned: PlannedGiven, key: Key) -> Formula:
         """Add what a callout gives: its area, diameter, count."""
@@ -231,3 +226,12 @@ class GivenBlocks:
         unit = f", {unit_text(symbol.unit)}" if symbol.unit and symbol.unit.dimension != NONE else ""
         words: Words = (self.told.shared.symbol(planned.slot), f"  {planned.given.says}{unit}")
         return Table(columns, cells, words, item.number, self.told.anchor(item.number), self.lane(value))
+
+
+def typed_beside(value: GivenValue, symbol: Symbol) -> str:
+    """Return the typed spelling where it is printed beside the value: in another unit, or in feet and inches."""
+    handed, unit = value.value, symbol.unit
+    if not isinstance(handed, Amount) or unit is None or value.origin.kind == "none":
+        return ""
+    feet = "'" in handed.text or '"' in handed.text or len(handed.text.split()) > 2
+    return "" if handed.unit.scale == unit.scale and (symbol.inches is not None or not feet) else handed.text

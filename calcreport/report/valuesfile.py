@@ -1,54 +1,74 @@
 """The values file: every value and check with its line, printed form, citation and origin; and a plain text of it.
 
-Worked calculations with forms and scripts in, one JSON-ready object or lines of text out.
+Worked calculations with forms and scripts in, one JSON-ready object or lines of text out. The lines of a calculation
+are those of its account, in page order: all that another issue is compared by.
 """
 
 from __future__ import annotations
 
+import hashlib
 import json
 from typing import Any
 
-from calcreport.calculate.model import Key, Selection, Worked, WorkedCheck, WorkedGives, WorkedProject
-from calcreport.core.expression import names
+from calcreport.calculate.model import Selection, Worked, WorkedCheck, WorkedProject
 from calcreport.core.methods import METHODS
 from calcreport.core.units import ONE
 from calcreport.core.version import PROGRAM
-from calcreport.report.below import gives_below
-from calcreport.report.digits import number_text
-from calcreport.report.forms import CalculationForms, is_size, proof_unit, side_unit
+from calcreport.history.model import Identity, Revised
+from calcreport.report.forms import CalculationForms, proof_unit
 from calcreport.report.governing import governing
-from calcreport.report.items import SayLine, SayOutput, SayOutputs, SayProof, SayTable, SayUnseen, Script
+from calcreport.report.items import SayProof, Script
+from calcreport.report.summary import dispositions
+from calcreport.report.value_lines import Finished, LineWriter
 
-FORMAT = 1
+FORMAT = 2
 
 
 def values_file(
-    project: WorkedProject, forms: dict[str, CalculationForms], scripts: dict[str, Script], sheets: dict[str, int]
+    finished: Finished, sheets: dict[str, int], revised: dict[str, Revised], since: dict[str, dict[Identity, str]]
 ) -> dict[str, Any]:
-    """Return the values file as an object."""
+    """Return the values file as an object.
+
+    `sheets` counts the sheets by mark; `revised` is the revision each calculation last changed in, `since` that of
+    each line that has changed since it was first issued.
+    """
+    project = finished.project
     calculations: dict[str, Any] = {}
     for worked in project.calculations:
         mark = worked.calculation.mark
+        writer = LineWriter(worked, finished, since.get(mark, {}))
+        lines = finished.lines[mark]
+        chief = governing(worked)
         calculations[mark] = {
             "template": worked.calculation.template.name,
             "title": worked.calculation.title,
             "sheets": sheets.get(mark, 0),
             "fingerprint": worked.fingerprint,
+            "template_files": _digests(worked),
+            "revision": revised[mark].number,
+            "changed": revised[mark].date,
             "verdict": worked.verdict,
+            "governing": chief.line.name if chief is not None else None,
             "stopped": worked.stop.told if worked.stop else None,
-            "lines": _lines(scripts[mark], forms[mark]),
-            "closures": _closures(scripts[mark], forms[mark]),
-            "checks": [_check(check, scripts[mark], forms[mark]) for check in worked.checks],
+            "lines": [writer.line(entry, place) for entry, place in lines if not isinstance(place, WorkedCheck)],
+            "closures": _closures(finished.scripts[mark], finished.forms[mark]),
+            "checks": [writer.check(entry, place) for entry, place in lines if isinstance(place, WorkedCheck)],
         }
+        said = _dispositions(project, worked)
+        if said:
+            calculations[mark]["dispositions"] = said
         if worked.selection is not None:
             calculations[mark]["selection"] = _selection(worked.selection)
+    facts = project.project
     header = {
-        "title": project.project.title,
-        "number": project.project.number,
-        "status": project.project.status,
-        "date": project.project.date,
+        "title": facts.title,
+        "number": facts.number,
+        "status": facts.status,
+        "date": facts.date,
         "fingerprint": project.fingerprint,
         "file": project.project.files[0].name,
+        "revisions": [{"number": one.number, "date": one.date, "why": one.why} for one in facts.issues],
+        "facts": [list(fact) for fact in _facts(project)],
     }
     return {"program": PROGRAM, "format": FORMAT, "project": header, "calculations": calculations}
 
@@ -73,38 +93,6 @@ def _json(value: object) -> str:
     return json.dumps(value, ensure_ascii=False)
 
 
-def _lines(script: Script, forms: CalculationForms) -> list[dict[str, Any]]:
-    found: list[dict[str, Any]] = []
-    values = script.worked.values
-    for (slot, key), _ in sorted(values.given.items(), key=lambda item: (script.line_of.get(item[0], 0), item[0])):
-        found.append(_value(slot, key, script, forms))
-    for item in script.items:
-        match item:
-            case SayLine(_, worked):
-                found.append(_gives(worked, script, forms))
-            case SayOutput(_, _, slot, key):
-                found.append(_output(slot, key, script, forms))
-            case SayOutputs(_, _, worked):
-                places = worked.places(values)
-                found += [_output(slot, key, script, forms) for slot, key in places if slot in item.columns]
-            case SayTable(worked=each) | SayUnseen(each):
-                rows = [gives for row in each.rows for gives in gives_below(row)]
-                told = {(line["gives"], tuple(line.get("rows", ()))) for line in found}
-                for worked in rows:
-                    entry = _gives(worked, script, forms)
-                    if (entry["gives"], tuple(entry.get("rows", ()))) not in told:
-                        found.append(entry)
-    return found
-
-
-def _output(slot: int, key: Key, script: Script, forms: CalculationForms) -> dict[str, Any]:
-    """Return a value that a method gave."""
-    line = script.worked.values.by_method[slot, key]
-    entry = _value(slot, key, script, forms)
-    number = next(s.of for s in script.items if isinstance(s, SayOutput | SayOutputs) and s.number == entry["line"])
-    return entry | {"method": line.kind, "cite": line.cite.printed, "from": [f"{forms.mark}.{number}"]}
-
-
 def _closures(script: Script, forms: CalculationForms) -> list[dict[str, Any]]:
     """Return the sums that prove the results of methods."""
     found: list[dict[str, Any]] = []
@@ -120,51 +108,39 @@ def _closures(script: Script, forms: CalculationForms) -> list[dict[str, Any]]:
     return found
 
 
-def _value(slot: int, key: Key, script: Script, forms: CalculationForms) -> dict[str, Any]:
-    symbol = script.worked.plan.slots[slot]
-    unit = symbol.symbol.unit or ONE
-    value = script.worked.values.get(slot, key)
-    entry: dict[str, Any] = {"line": script.line_of.get((slot, key), 0), "gives": symbol.path}
-    if symbol.sets:
-        entry["rows"] = _row_names(symbol.sets, key, script)
-    if isinstance(value, float):
-        figure = forms.figure(slot, key)
-        power = f" × 10^{figure.exponent}" if figure.exponent else ""
-        entry |= {"value": value / unit.size, "unit": unit.text, "shown": number_text(figure) + power}
-    else:
-        entry |= {"value": value, "unit": None, "shown": value}
-    return entry
+def _digests(worked: Worked) -> dict[str, str]:
+    """Return sixteen hexadecimal digits over each file of a template, by the name it is asked for."""
+    files = worked.calculation.template.files
+    return {s.name.removeprefix("templates/"): hashlib.sha256(s.text.encode()).hexdigest()[:16] for s in files}
 
 
-def _row_names(sets: tuple[int, ...], key: Key, script: Script) -> list[str]:
-    values, plan = script.worked.values, script.worked.plan
-    rows = dict(zip(sets, key, strict=True))
-    found = []
-    for index in sets:
-        outer = tuple(rows[o] for o in plan.sets[index].outer)
-        found.append(values.names[index][outer][rows[index]])
-    return found
+def _facts(project: WorkedProject) -> list[tuple[str, str, str]]:
+    """Return what the sheets before the calculations say of the package: (group, name, text)."""
+    facts = project.project
+    found = [("project", name, getattr(facts, name)) for name in ("address", "client", "permit", "office", "contact")]
+    found += [("project", "paper", facts.paper), ("project", "units", facts.system)]
+    found += [("code", name, text) for name, text in facts.codes]
+    found += [("code", "amendments", facts.amendments)]
+    found += [("criteria", name, text) for name, text in facts.criteria]
+    for mark, properties in facts.materials:
+        found.append(("material", mark, ", ".join(f"{name} {text}" for name, text in properties)))
+    for number, one in enumerate(facts.assumptions, 1):
+        state = f", to be verified by {one.by}" if one.to_be_verified else ""
+        found.append(("assumption", f"P{number}", one.says + state))
+    found += [("elsewhere", what, where) for what, where in facts.elsewhere]
+    found += [("limit state", one.limit_state, one.says) for one in facts.dispositions if one.limit_state]
+    return [fact for fact in found if fact[2]]
 
 
-def _gives(worked: WorkedGives, script: Script, forms: CalculationForms) -> dict[str, Any]:
-    entry = _value(worked.line.slot, worked.key, script, forms)
-    formula = worked.line.arms[worked.arm].formula
-    entry["formula"] = formula.span.text.strip()
-    entry["cite"] = worked.line.cite.printed
-    rows = dict(worked.open)
-    shown: dict[str, str] = {}
-    origins: list[str] = []
-    for name in names(formula):
-        sets = script.worked.values.sets[name.slot] if name.slot >= 0 else ()
-        if name.slot < 0 or any(index not in rows for index in sets):
-            continue
-        key = tuple(rows[index] for index in sets)
-        value = _value(name.slot, key, script, forms)
-        shown[name.name] = f"{value['shown']} {value['unit'] or ''}".replace(" 1", "").strip()
-        origins.append(f"{forms.mark}.{value['line']}")
-    entry["shown_inputs"] = shown
-    entry["from"] = list(dict.fromkeys(origins))
-    return entry
+def _dispositions(project: WorkedProject, worked: Worked) -> list[str]:
+    """Return the engineer's words on checks that are NG, as the sheets of the calculation print them."""
+    return [
+        f"{member.mark} {check.line.name}: {words}"
+        for member in worked.members
+        for check in member.checks
+        if check.verdict == "NG"
+        for words in dispositions(project, member.mark, check.line.name)
+    ]
 
 
 def _selection(selection: Selection) -> dict[str, Any]:
@@ -188,31 +164,6 @@ def _selection(selection: Selection) -> dict[str, Any]:
         "pinned": selection.pinned,
         "tried": tried,
     }
-
-
-def _check(check: WorkedCheck, script: Script, forms: CalculationForms) -> dict[str, Any]:
-    entry: dict[str, Any] = {"name": check.line.name, "line": script.check_line.get(id(check), 0), "kind": check.kind}
-    by = check.by
-    if by is not None:
-        unit = side_unit(by.test, forms)
-        left, right = by.left / unit.size, by.right / unit.size
-        if check.kind in ("demand / capacity", "ratio"):
-            entry |= {"demand": left, "capacity": right}
-        elif check.kind == "required / provided":
-            entry |= {"required": right, "provided": left}
-        else:
-            entry |= {"left": left, "right": right}
-        entry["unit"] = unit.text
-        if is_size(by.test.left):
-            entry["of"] = "size"
-    entry |= {"ratio": check.ratio, "verdict": check.verdict, "cite": check.line.cite.printed}
-    if check.reason:
-        entry["reason"] = check.reason
-    if check.open:
-        entry["rows"] = [
-            script.worked.plan.sets[s].name + " " + script.worked.values.row_names(s)[r] for s, r in check.open
-        ]
-    return entry
 
 
 def values_text(project: WorkedProject) -> list[str]:

@@ -9,6 +9,9 @@ import jsonschema
 import pytest
 
 from calcreport.__main__ import main
+from calcreport.commands.desk import Opened, open_project
+from calcreport.history.accounts import placed_entries
+from calcreport.publish import package_values, report
 from calcreport.report import valuesfile
 
 SCHEMA = Path(valuesfile.__file__).with_name("values.schema.json")
@@ -50,3 +53,18 @@ def test_ratio_is_demand_over_capacity(values: dict) -> None:  # type: ignore[ty
                 assert check["ratio"] == pytest.approx(max(check["demand"], 0) / check["capacity"], rel=1e-12)
                 judged += 1
     assert judged
+
+
+def test_every_line_of_an_account_stands_in_the_file() -> None:
+    """What `placed_entries` yields and what the file lists are one, however the sheets tell it."""
+    opened = open_project("samples/mill-lane")
+    assert isinstance(opened, Opened)
+    package = report(opened.world, opened.source)
+    assert package.worked is not None
+    found = json.loads(package_values(package))["calculations"]
+    for worked in package.worked.calculations:
+        one = found[worked.calculation.mark]
+        listed = [(line["kind"], line["path"], line.get("again", 1)) for line in one["lines"]]
+        listed += [("check", check["path"], check.get("again", 1)) for check in one["checks"]]
+        assert sorted(listed) == sorted(entry.identity for entry, _ in placed_entries(worked))
+        assert len(set(listed)) == len(listed)

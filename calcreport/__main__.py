@@ -65,6 +65,9 @@ def make_parser() -> argparse.ArgumentParser:
     other.add_argument("--concrete", metavar="EDITION", help="the other edition of the concrete code")
     other.add_argument("--loads", metavar="EDITION", help="the other edition of the code of loads")
     editions.add_argument("-o", "--output", metavar="PDF", help="also write the comparison as sheets")
+    _field(
+        commands.add_parser("field", help="answer a question from the site: as designed against as built, one sheet")
+    )
     templates = commands.add_parser("templates", help="list the templates, or tell what one needs and decides")
     templates.add_argument("name", nargs="?", metavar="NAME")
     schedule = commands.add_parser("schedule", help="a row a member, for the schedule on the drawings")
@@ -76,6 +79,15 @@ def make_parser() -> argparse.ArgumentParser:
     explain = commands.add_parser("explain", help="tell what a problem means and how to mend it")
     explain.add_argument("slug", nargs="?", metavar="SLUG")
     return parser
+
+
+def _field(parser: argparse.ArgumentParser) -> None:
+    _project(parser)
+    parser.add_argument("mark", metavar="MARK", help="the calculation or member asked about")
+    told = "what was built otherwise: b=15in, h-=1in, layer[first].steel=3-#9, FL1.l=28ft"
+    parser.add_argument("change", metavar="CHANGE", nargs="+", help=told)
+    parser.add_argument("--reply", metavar="RFI", required=True, help="what it answers, such as RFI-031")
+    parser.add_argument("-o", "--output", metavar="PDF", help="a new file; named by the reply, beside the project file")
 
 
 def _reconcile(parser: argparse.ArgumentParser) -> None:

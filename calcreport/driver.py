@@ -25,6 +25,7 @@ from calcreport.plan.links import bind_links
 from calcreport.plan.model import Plan
 from calcreport.plan.proofs import prove_cited
 from calcreport.read.cases import read_cases
+from calcreport.read.changes import AsBuilt, build_otherwise
 from calcreport.read.codes import CLOSED_LISTS
 from calcreport.read.library import ANY, Library
 from calcreport.read.model import Inputs, Template
@@ -78,10 +79,11 @@ def work(
     instead: Instead | None = None,
     kept: Fresh = FRESH,
     status: str = "",
+    built: AsBuilt | None = None,
 ) -> Result:
     """Read, plan and work a project; calculations without problems are worked even beside problems.
 
-    A `status` stands in place of the project's own, as on an earlier issue that is marked superseded.
+    A `status` stands in place of the project's own, as on an earlier issue that is marked superseded. With `built` it is worked as built on site, for an answer and never for a package.
     """
     problems = Problems()
     library = kept.last("library")
@@ -97,6 +99,8 @@ def work(
         inputs = replace(inputs, calculations=tuple(taken))
     if status:
         inputs = replace(inputs, project=replace(inputs.project, status=status))
+    if built is not None:
+        inputs = build_otherwise(inputs, built, library, problems)
     plans = _plans(inputs, problems, kept)
     inputs = bind_links(inputs, plans, problems)
     worked = work_project(inputs, plans, problems, lambda done, total: progress("working", done, total), kept)

@@ -9,22 +9,17 @@ from pathlib import Path
 
 from calcreport.calculate.model import Worked, WorkedProject
 from calcreport.commands.desk import UNWRITTEN, Opened, ProgressLine, one_problem, open_project, say_problems
+from calcreport.commands.sides import accounted, make_side
 from calcreport.core.problems import Problem, nearest
 from calcreport.driver import Instead, Result, work
 from calcreport.filesystem import begins_with, replace_file
-from calcreport.history.accounts import account, placed_entries
 from calcreport.history.differences import differ
 from calcreport.layout.fonts import installed_fonts
 from calcreport.layout.paginate import lay_out
 from calcreport.output.pdf import write_pdf
-from calcreport.report.compared import Compared, Side
-from calcreport.report.confirmations import find_forms
+from calcreport.report.compared import Compared
 from calcreport.report.editions import editions_report
 from calcreport.report.editions_text import editions_lines, editions_object
-from calcreport.report.governing import governing
-from calcreport.report.notation import Notation
-from calcreport.report.script import write_script
-from calcreport.report.told import SymbolForms, Told
 
 #: in place of a mark: every calculation
 ALL = "all"
@@ -74,31 +69,13 @@ def compare(
     pairs = [(w, there[w.calculation.mark]) for w in chosen if w.calculation.mark in there]
     if not pairs:
         return tuple(p for w in chosen for p in _own(second, w)) or second.problems
-    design, other = _side(first.worked, field), _side(second.worked, field)
-    differences = tuple(differ(account(one, _chief(one)), account(two, _chief(two))) for one, two in pairs)
+    design, other = (
+        make_side(first.worked, _taken(first.worked, field)),
+        make_side(second.worked, _taken(second.worked, field)),
+    )
+    differences = tuple(differ(accounted(one), accounted(two)) for one, two in pairs)
     apart = tuple((w.calculation.mark, _why(second, w)) for w in chosen if w.calculation.mark not in there)
     return Compared(first.worked, design, other, differences, apart, _foreign(second.worked, other.code))
-
-
-def _chief(worked: Worked) -> str:
-    check = governing(worked)
-    return check.line.name if check is not None else ""
-
-
-def _side(project: WorkedProject, field: str) -> Side:
-    """Return one edition's calculations as they would be printed."""
-    forms = find_forms(project)
-    scripts = {w.calculation.mark: write_script(w) for w in project.calculations}
-    shared: dict[int, SymbolForms] = {}
-    told = {
-        mark: Told(script, forms, scripts,
-                   shared.setdefault(id(script.worked.plan), SymbolForms(Notation(script.worked.plan.slots))))
-        for mark, script in scripts.items()
-    }  # fmt: skip
-    places = {
-        w.calculation.mark: {entry.identity: place for entry, place in placed_entries(w)} for w in project.calculations
-    }
-    return Side(_taken(project, field), told, places)
 
 
 def _taken(project: WorkedProject, field: str) -> str:

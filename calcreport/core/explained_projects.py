@@ -48,6 +48,14 @@ the library are printed by `calcreport templates`.
 
     template: demo/beam-flexur       wrong
     template: demo/beam-flexure      right""",
+    "not-a-change": """A change as built does not say what was built otherwise, or names a value that is not to be set.
+A change names a given value as the project does, rows of sets in brackets, then the value as built or a difference.
+What a line works is not set, and what another calculation hands over is changed where it comes from. What like members
+have in common is changed for all of them, under the mark they share.
+
+    calcreport field samples/mill-lane B1 M_u=300kip*ft --reply RFI-031      wrong, from FL1
+    calcreport field samples/mill-lane FL1 l=29ft --reply RFI-031            right
+    calcreport field samples/mill-lane B1 'layer[first].steel=3-#9' h-=1in --reply RFI-031""",
     "not-a-date": """Text is not a date, or not a year.
 Dates are year-month-day with all digits, so that nobody mistakes the month; the day must exist. The program never
 reads a clock: the date is stated.

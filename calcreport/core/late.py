@@ -7,10 +7,12 @@ from __future__ import annotations
 
 from importlib import import_module
 from types import ModuleType
-from typing import Literal
+from typing import Literal, TypeAlias
+
+Library: TypeAlias = Literal["mpmath", "sympy", "pint", "scipy.optimize", "numpy", "openpyxl", "xlsxwriter", "pypdf"]
 
 
-def load(name: Literal["mpmath", "sympy", "pint", "scipy.optimize", "numpy", "openpyxl", "xlsxwriter"]) -> ModuleType:
+def load(name: Library) -> ModuleType:
     """Return a library of the closed list, importing it the first time."""
     return import_module(name)
 

@@ -98,7 +98,7 @@ def _row(compared: Compared, mark: str, change: Change) -> TableRow:
     side = compared.design if first is not None else compared.other
     cells: tuple[Words, ...] = (
         (str(number) if number else "–",),
-        _what(side.told[mark], change.entry, side.place(mark, change.entry)),
+        what_differs(side.told[mark], change.entry, side.place(mark, change.entry)),
         _cell(compared.design, mark, first, change),
         _cell(compared.other, mark, second, change),
         (change_words(compared, mark, change),),
@@ -106,7 +106,7 @@ def _row(compared: Compared, mark: str, change: Change) -> TableRow:
     return TableRow(cells, "governing" if "verdict" in change.differs else "")
 
 
-def _what(told: Told, entry: Entry, place: Place) -> Words:
+def what_differs(told: Told, entry: Entry, place: Place) -> Words:
     """Return the symbol of a value with its rows, or the words of a check or requirement."""
     *rows, _ = entry.path.split("].") if "]." in entry.path else [""]
     lead = "".join(f"{name} {row_words(row)}: " for name, _, row in (step.partition("[") for step in rows))

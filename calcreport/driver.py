@@ -24,8 +24,9 @@ from calcreport.plan.link import link
 from calcreport.plan.links import bind_links
 from calcreport.plan.model import Plan
 from calcreport.plan.proofs import prove_cited
+from calcreport.read.as_built import build_otherwise
 from calcreport.read.cases import read_cases
-from calcreport.read.changes import AsBuilt, build_otherwise
+from calcreport.read.changes import AsBuilt
 from calcreport.read.codes import CLOSED_LISTS
 from calcreport.read.library import ANY, Library
 from calcreport.read.model import Inputs, Template
@@ -83,7 +84,8 @@ def work(
 ) -> Result:
     """Read, plan and work a project; calculations without problems are worked even beside problems.
 
-    A `status` stands in place of the project's own, as on an earlier issue that is marked superseded. With `built` it is worked as built on site, for an answer and never for a package.
+    A `status` stands in place of the project's own, as on an earlier issue that is marked superseded.
+    With `built` it is worked as built on site, for an answer and never for a package.
     """
     problems = Problems()
     library = kept.last("library")

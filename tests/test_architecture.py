@@ -27,7 +27,8 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
         "methods", "methods.fibres", "methods.members", "methods.results", "methods.roots", "methods.table",
     )),
     ("read", (
-        "read", "read.bars", "read.bodies", "read.calculations", "read.candidates", "read.cases", "read.codes",
+        "read", "read.as_built", "read.bars", "read.bodies", "read.calculations", "read.candidates", "read.cases",
+        "read.changes", "read.codes",
         "read.columns", "read.fields", "read.filled", "read.formulas", "read.gathering", "read.given", "read.library",
         "read.lines", "read.links", "read.lost", "read.made_rows", "read.malformed", "read.method_lines", "read.model", "read.nodes",
         "read.project", "read.project_model", "read.project_schema", "read.row_tables", "read.schedules", "read.shapes",
@@ -49,9 +50,12 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
     ("second", (
         "second", "second.agreement", "second.closures", "second.quantities", "second.rework",
     )),
-    ("history", ("history", "history.accounts", "history.differences", "history.frozen", "history.model")),
+    ("history", (
+        "history", "history.accounts", "history.differences", "history.frozen", "history.model", "history.package",
+    )),
     ("report", (
-        "report", "report.below", "report.calculation", "report.candidates", "report.chains", "report.check_blocks", "report.compared",
+        "report", "report.answer", "report.answer_sheet", "report.answer_text", "report.below", "report.calculation",
+        "report.candidates", "report.chains", "report.check_blocks", "report.compared",
         "report.compose", "report.confirmations", "report.digits", "report.display", "report.drawings",
         "report.editions", "report.editions_text", "report.families", "report.forms", "report.formula_model",
         "report.fronts", "report.given_blocks", "report.governing", "report.items", "report.members", "report.method_blocks", "report.model",
@@ -76,9 +80,10 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
     ("publish", ("publish",)),
     ("session", ("session",)),
     ("commands", (
-        "commands", "commands.build", "commands.desk", "commands.editions", "commands.explain", "commands.lint",
+        "commands", "commands.build", "commands.desk", "commands.editions", "commands.explain", "commands.field",
+        "commands.lint",
         "commands.margins", "commands.new", "commands.reconcile", "commands.reconciling", "commands.sampler",
-        "commands.schedule", "commands.schema", "commands.templates",
+        "commands.schedule", "commands.schema", "commands.sides", "commands.templates",
         "commands.trace", "commands.values", "commands.watch",
     )),
     ("__main__", ("__main__", "__init__")),
@@ -105,7 +110,7 @@ SEES: dict[str, frozenset[str]] = {
 #: libraries, each behind its one address
 LIBRARIES = {"yaml": "read.nodes"}
 #: libraries that core.late loads by name when they are needed, and those the program does without
-LATE = ("numpy", "sympy", "pint", "mpmath", "scipy", "reportlab", "fontTools", "openpyxl", "xlsxwriter")
+LATE = ("numpy", "sympy", "pint", "mpmath", "scipy", "reportlab", "fontTools", "openpyxl", "xlsxwriter", "pypdf")
 #: names that must not be called, with the modules where one may be and why
 BANNED: dict[str, tuple[str, ...]] = {
     "eval": (), "compile": (), "__import__": (), "sympify": (), "parse_expr": (), "lambdify": (), "breakpoint": (),

@@ -291,6 +291,7 @@ class _Lines:
         copied = self.copied(node, inputs, slot, key)
         if copied is not None:
             self.digits.join(name, copied)
+            self.forms.copied.add(name)
             return
         confirm = self.confirming(work or self.forms.worked.compiled(node), inputs, opened)
         ids = tuple(i for _, _, i in inputs)

@@ -65,6 +65,8 @@ class CalculationForms:
     #: values the printed figures are written into while a line is confirmed
     shadow: Values
     shared: PlanForms
+    #: values that are another one, chosen or copied
+    copied: set[Id] = field(default_factory=set)
 
     @property
     def mark(self) -> str:
@@ -86,7 +88,7 @@ class CalculationForms:
 
     def copies(self, gives: WorkedGives) -> bool:
         """Tell whether a line only chooses or copies a value, so that a substitution says nothing new."""
-        return self.digits.root(self.id(gives.line.slot, gives.key)) != self.id(gives.line.slot, gives.key)
+        return self.id(gives.line.slot, gives.key) in self.copied
 
     def side(self, test: Compare, opened: Opened, side: str) -> Figure | None:
         """Return the figure of a side of a printed comparison."""

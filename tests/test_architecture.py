@@ -18,7 +18,8 @@ ROOT = Path(__file__).parents[1] / "calcreport"
 #: layer and its modules, lowest first; nothing imports a layer above its own
 LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
     ("core", (
-        "core", "core.explained_files", "core.explained_projects", "core.explained_schedules",
+        "core", "core.explained_files", "core.explained_projects", "core.explained_reviews",
+        "core.explained_schedules",
         "core.explained_templates", "core.explanations", "core.expression", "core.figures", "core.fontfile",
         "core.grammar", "core.inputs", "core.kept", "core.late", "core.methods", "core.problems", "core.quantity", "core.record", "core.shows", "core.source",
         "core.tokens", "core.units", "core.version", "core.world",
@@ -29,9 +30,9 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
     ("read", (
         "read", "read.as_built", "read.bars", "read.bodies", "read.calculations", "read.candidates", "read.cases",
         "read.changes", "read.codes",
-        "read.columns", "read.fields", "read.filled", "read.formulas", "read.gathering", "read.given", "read.library",
+        "read.columns", "read.comments", "read.comments_schema", "read.fields", "read.filled", "read.formulas", "read.gathering", "read.given", "read.library",
         "read.lines", "read.links", "read.lost", "read.made_rows", "read.malformed", "read.method_lines", "read.model", "read.nodes",
-        "read.project", "read.project_model", "read.project_schema", "read.row_tables", "read.schedules", "read.shapes",
+        "read.project", "read.project_model", "read.project_schema", "read.review_model", "read.row_tables", "read.schedules", "read.shapes",
         "read.sheets", "read.single_values", "read.symbols", "read.tables", "read.template_model",
         "read.template_schema", "read.template_tables", "read.together", "read.values", "read.variants", "read.words",
         "read.workbook",
@@ -42,7 +43,7 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
         "plan.placing", "plan.proofs", "plan.space",
     )),
     ("calculate", (
-        "calculate", "calculate.analysed", "calculate.basis", "calculate.cases", "calculate.compile", "calculate.evaluate",
+        "calculate", "calculate.analysed", "calculate.answer_model", "calculate.answered", "calculate.basis", "calculate.cases", "calculate.compile", "calculate.evaluate",
         "calculate.exact", "calculate.handing", "calculate.judging", "calculate.linking", "calculate.margins",
         "calculate.model", "calculate.project", "calculate.reachable", "calculate.reached", "calculate.release",
         "calculate.selection",
@@ -54,19 +55,19 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
         "history", "history.accounts", "history.differences", "history.frozen", "history.model", "history.package",
     )),
     ("report", (
-        "report", "report.answer", "report.answer_sheet", "report.answer_text", "report.below", "report.calculation",
+        "report", "report.answer", "report.answer_sheet", "report.answer_text", "report.answers", "report.below", "report.calculation",
         "report.candidates", "report.chains", "report.check_blocks", "report.compared",
         "report.compose", "report.confirmations", "report.digits", "report.display", "report.drawings",
         "report.editions", "report.editions_text", "report.families", "report.forms", "report.formula_model",
         "report.fronts", "report.given_blocks", "report.governing", "report.items", "report.members", "report.method_blocks", "report.model",
-        "report.notation", "report.premises", "report.row_blocks", "report.sampler", "report.script", "report.spaced",
+        "report.notation", "report.premises", "report.response", "report.row_blocks", "report.sampler", "report.script", "report.spaced", "report.statuses",
         "report.substitution", "report.summary", "report.taken", "report.told", "report.traced", "report.value_lines",
         "report.valuesfile",
     )),
     ("layout", (
-        "layout", "layout.blocks", "layout.checks", "layout.cover", "layout.delimiters", "layout.drawing",
-        "layout.figures", "layout.filling", "layout.flow", "layout.fonts", "layout.givens", "layout.index",
-        "layout.kit", "layout.lines", "layout.marks", "layout.mathatoms", "layout.mathbox", "layout.mathbreak",
+        "layout", "layout.banner", "layout.blocks", "layout.checks", "layout.cover", "layout.delimiters", "layout.drawing",
+        "layout.figures", "layout.filling", "layout.flow", "layout.fonts", "layout.grid", "layout.givens", "layout.index",
+        "layout.kit", "layout.lines", "layout.long_rows", "layout.marks", "layout.mathatoms", "layout.mathbox", "layout.mathbreak",
         "layout.mathforms", "layout.mathscripts", "layout.mathstyle", "layout.mathtable", "layout.model",
         "layout.opentype", "layout.paginate", "layout.pieces", "layout.places", "layout.section_figure", "layout.sheet",
         "layout.span_figure", "layout.tables", "layout.titleblock", "layout.words",
@@ -82,7 +83,7 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
     ("commands", (
         "commands", "commands.build", "commands.desk", "commands.editions", "commands.explain", "commands.field",
         "commands.lint",
-        "commands.margins", "commands.new", "commands.reconcile", "commands.reconciling", "commands.sampler",
+        "commands.margins", "commands.new", "commands.reconcile", "commands.reconciling", "commands.respond", "commands.responding", "commands.sampler",
         "commands.schedule", "commands.schema", "commands.sides", "commands.templates",
         "commands.trace", "commands.values", "commands.watch",
     )),
@@ -98,11 +99,12 @@ SEES: dict[str, frozenset[str]] = {
     "read": frozenset(),
     "plan": frozenset({"read.model"}),
     # numerical analysis knows nothing of the program: what works values may call it
-    "calculate": frozenset({"plan.model", "methods"}),
+    # a comment log answers from finished values and sheets, and passes the plan by
+    "calculate": frozenset({"plan.model", "methods", "read.review_model"}),
     # the second path works from the plan by itself, and is then held against what calculate made
     "second": frozenset({"plan.model", "calculate.model"}),
     "history": frozenset({"calculate.model"}),
-    "report": frozenset({"calculate.model", "history.model"}),
+    "report": frozenset({"calculate.model", "calculate.answer_model", "history.model", "read.review_model"}),
     "layout": frozenset({"report.model"}),
     "output": frozenset({"layout.model"}),
     "filesystem": frozenset(),

@@ -5,7 +5,7 @@
     #   found: an area, from b (in), h (in)
     #   see: 8:13 first here
 
-A problem in a table, which has no comments, stands in the project file with the table's name before its place.
+A comment log is answered from the project `included/reviewed.yaml`. A problem in a table, which has no comments, stands in the project file with the table's name before its place.
 Place, slug and every word are compared, and nothing else may be reported: one cause, one problem.
 """
 
@@ -17,6 +17,7 @@ from pathlib import Path
 
 import pytest
 
+from calcreport.commands.responding import respond
 from calcreport.core.explanations import EXPLANATIONS
 from calcreport.core.problems import Problem
 from calcreport.core.source import Source, Span
@@ -64,6 +65,10 @@ def problems_of(name: str) -> tuple[tuple[Problem, ...], dict[str, Source]]:
     world.read[source.name] = source
     if re.search(r"^(template|lines):", source.text, re.M) and not re.search(r"^project:", source.text, re.M):
         return lint_template(world, name).problems, world.read
+    if re.search(r"^cycle:", source.text, re.M):
+        project = world.project_text("included/reviewed.yaml")
+        assert isinstance(project, Source)
+        return respond(world, project, source).problems, world.read
     return report(world, source).problems, world.read
 
 

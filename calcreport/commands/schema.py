@@ -9,13 +9,14 @@ from pathlib import Path
 from calcreport.core.problems import Problems
 from calcreport.core.source import Source
 from calcreport.filesystem import Disk, library_folder, read_text
+from calcreport.read.comments_schema import comments_schema
 from calcreport.read.library import Library
 from calcreport.read.project_schema import project_schema
 from calcreport.read.shapes import Schema
 from calcreport.read.template_schema import cases_schema, template_schema
 from calcreport.report import valuesfile
 
-KINDS = ("project", "template", "cases", "values")
+KINDS = ("project", "template", "cases", "values", "comments")
 
 
 def run(arguments: Namespace) -> int:
@@ -31,6 +32,8 @@ def schema_of(kind: str) -> Schema:
         assert isinstance(found, Source)
         schema: Schema = json.loads(found.text)
         return schema
+    if kind == "comments":
+        return comments_schema()
     if kind == "project":
         folder = library_folder()
         return project_schema(Library(Disk(folder, folder), Problems()))

@@ -118,7 +118,7 @@ def _header(cells: _Cells, facts: CoverFacts) -> None:
     y += 9.0
     for line in facts.header:
         y = cells.lines((line,), _TEXT, cells.left, y, split - cells.left - _PAD)
-    right = top
+    right = status = top
     for text, styles, gap in (
         (facts.issue, _BIG, 1.0),
         (facts.date, (_TEXT,), 12.0),
@@ -126,9 +126,14 @@ def _header(cells: _Cells, facts: CoverFacts) -> None:
         (facts.status_note, (_TEXT,), 0.0),
     ):
         lines, style = fitted(lettering, text, styles, cells.right - split, 3 * styles[-1].leading)
+        status = right if text is facts.status else status
         placed, right = text_lines(lines, style, split, right)
         cells.items.extend(placed)
         right += gap
+    if facts.status_is_loud:
+        edge, foot = cells.right, right + 5.0
+        corners = ((split - 6.0, status - 5.0), (edge, status - 5.0), (edge, foot), (split - 6.0, foot))
+        cells.items.append(Stroke(corners, HEAVY, closed=True))
     cells.close(max(y, right) + 12.0 + 0.22 * cells.spare)
 
 

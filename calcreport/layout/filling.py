@@ -81,6 +81,8 @@ class Filling:
         self.first_block = 0
         self.held: list[_Held] = []
         self.last: tuple[float, Piece] | None = None
+        #: a row that may part: where it begins on this sheet, and its items so far by column
+        self.row: tuple[float, list[list[Item]]] = (0.0, [])
         self.beside: tuple[float, Lane] | None = None
         self.waiting: int | None = None
         #: a figure that waited until the lines ended, and the first block of the sheet it waited on
@@ -196,10 +198,26 @@ class Filling:
         items = piece.items
         if piece.opening and self.last is not None and not self.last[1].ruled:
             items = (*piece.opening, *items)
-        box = Box(self.kit.sheet.width, 0.0, piece.height, items)
-        self.sheets[-1].append(Placed(0.0, self.y, box))
+        if piece.cells:
+            self._put_cells(piece)
+        else:
+            box = Box(self.kit.sheet.width, 0.0, piece.height, items)
+            self.sheets[-1].append(Placed(0.0, self.y, box))
         self.last = (self.y, piece)
         self.y += piece.height
+
+    def _put_cells(self, piece: Piece) -> None:
+        """Place a line of a row that may part with the lines of the row before it on this sheet."""
+        if piece.continues and self.last is not None and self.last[1].cells:
+            self.sheets[-1].pop()
+        else:
+            self.row = (self.y, [[] for _ in piece.cells])
+        top, columns = self.row
+        for column, items in zip(columns, piece.cells, strict=True):
+            if items:
+                column.append(Placed(0.0, self.y - top, Box(self.kit.sheet.width, 0.0, piece.height, items)))
+        whole = tuple(item for column in columns for item in column)
+        self.sheets[-1].append(Placed(0.0, top, Box(self.kit.sheet.width, 0.0, self.y + piece.height - top, whole)))
 
     def _put_monster(self, piece: Piece) -> None:
         """Place a piece higher than a sheet, in strips."""

@@ -13,6 +13,7 @@ from dataclasses import astuple, dataclass
 from functools import partial
 
 from calcreport.core.kept import FRESH, Fresh
+from calcreport.layout.banner import banner_items
 from calcreport.layout.cover import set_cover
 from calcreport.layout.filling import Body
 from calcreport.layout.flow import flow
@@ -172,15 +173,20 @@ def _pages(desk: _Desk, part: Part, bodies: tuple[Body, ...]) -> tuple[Page, ...
     block = title_block(sheet, lettering, part.facts)
     frame = Placed(0.0, 0.0, desk.stripped if part.strip else desk.frame)
     strip = strip_items(sheet, lettering, part.strip) if part.strip else ()
+    facts = part.facts
+    # strokes keep off the cover, whose seal area stays clear
+    banner, banner_struck = (
+        banner_items(sheet, lettering, facts.banner, strokes) if facts.banner else () for strokes in (0, facts.strokes)
+    )
     count = len(bodies)
     pages: list[Page] = []
     for number, body in enumerate(bodies, start=1):
         label = sheet_label(part, number)
         around: tuple[Item, ...]
         if part.kind == "cover" and number == 1:
-            around = (Placed(0.0, 0.0, frame_box(sheet, foot=False)),)
+            around = (Placed(0.0, 0.0, frame_box(sheet, foot=False)), *banner)
         else:
-            around = (frame, Placed(0.0, 0.0, block), *sheet_number(sheet, lettering, label, count))
+            around = (frame, Placed(0.0, 0.0, block), *sheet_number(sheet, lettering, label, count), *banner_struck)
         pages.append(Page(label, part.mark, number, count, (*strip, *body.items), around))
     return tuple(pages)
 

@@ -32,6 +32,10 @@ class Piece:
     ruled: bool = False
     #: rule drawn at the piece's foot where a sheet ends after it
     closing: tuple[Item, ...] = ()
+    #: the same items by column, for a line of a row that may part: on one sheet such lines are read column by column
+    cells: tuple[tuple[Item, ...], ...] = ()
+    #: True for the second and later lines of such a row
+    continues: bool = False
 
 
 class Rows:

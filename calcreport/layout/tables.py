@@ -8,54 +8,22 @@ in smaller letters if even the longest words do not fit.
 from __future__ import annotations
 
 import re
-from dataclasses import dataclass, replace
+from dataclasses import replace
 
+from calcreport.layout.grid import ABOVE, BELOW, FAINT, GUTTER, LETTERS, Grid, Letters, aligned, edge, joined
 from calcreport.layout.kit import Kit
+from calcreport.layout.long_rows import paragraphs, set_long_row
 from calcreport.layout.marks import loud_side
-from calcreport.layout.model import Anchor, Box, Item, Placed, Stroke
+from calcreport.layout.model import Anchor, Item, Placed
 from calcreport.layout.pieces import Piece, Rows
 from calcreport.layout.sheet import HAIRLINE, OUTLINE, Lane
 from calcreport.layout.words import STRONG, TextStyle
 from calcreport.report.model import Column, Table, TableRow, Words
 
-#: Gap between columns, room above and below the text of a row, weight of the rules between rows.
-GUTTER, ABOVE, BELOW, FAINT = 10.0, 2.4, 0.3, 0.2
 #: whole digits of a number, which a point, its decimals and a verdict may follow
 _WHOLE = re.compile(r"[−+]?\d[\d,]*(?=\.\d|$| )")
 #: A word wider than this share of the lane may part rather than keep other columns narrow.
 LONGEST = 0.3
-
-
-@dataclass(frozen=True, slots=True)
-class Letters:
-    """The styles of a table's cells, of its governing and failing rows, and of its headings."""
-
-    plain: TextStyle
-    heavy: TextStyle
-    heading: TextStyle
-
-
-_LETTERS = tuple(
-    Letters(
-        TextStyle("regular", size, leading),
-        TextStyle("semibold", size, leading),
-        TextStyle("semibold", max(6.5, size - 1.0), leading),
-    )
-    for size, leading in ((8.5, 10.5), (7.5, 9.2), (6.5, 8.0))
-)
-
-
-@dataclass(frozen=True, slots=True)
-class Grid:
-    """Columns at fixed places, with the letters their cells are set in."""
-
-    columns: tuple[Column, ...]
-    lefts: tuple[float, ...]
-    widths: tuple[float, ...]
-    letters: Letters
-    lane: Lane
-    #: room behind the last whole digit of a column's numbers, which stand with their points under one another
-    tails: tuple[float, ...]
 
 
 def set_table(kit: Kit, table: Table, lane: Lane) -> tuple[Piece, ...]:
@@ -63,18 +31,21 @@ def set_table(kit: Kit, table: Table, lane: Lane) -> tuple[Piece, ...]:
     grid = grid_of(kit, table, lane)
     title = _title(kit, table, lane, "")
     head = _head(kit, grid)
-    again = _joined(_title(kit, table, lane, ", continued"), head) if table.title else head
-    opening = _joined(title, head) if title else head
+    again = joined(_title(kit, table, lane, ", continued"), head) if table.title else head
+    opening = joined(title, head) if title else head
     opening, marks = _numbered(kit, table, opening, grid)
     pieces: list[Piece] = [replace(opening, before=6.0, keep=bool(table.rows))]
     last = len(table.rows) - 1
     for place, row in enumerate(table.rows):
+        if row.over:
+            pieces += set_long_row(kit, grid, row, again, last=place == last)
+            continue
         piece = _row(kit, grid, row, again)
         if place == last:
             items = (*piece.items, *piece.closing)
         else:
             foot = piece.height
-            items = piece.items if row.emphasis == "loud" else (*piece.items, _rule(grid, foot, FAINT))
+            items = piece.items if row.emphasis == "loud" else (*piece.items, edge(grid, foot, FAINT))
         pieces.append(replace(piece, items=items, keep=last > 1 and place in (0, last - 1)))
     needed = marks - sum(piece.height for piece in pieces)
     if needed > 0:
@@ -86,7 +57,7 @@ def grid_of(kit: Kit, table: Table, lane: Lane) -> Grid:
     """Find the column widths of a table in a lane."""
     columns = table.columns
     room = lane.width - GUTTER * (len(columns) - 1)
-    for letters in _LETTERS:
+    for letters in LETTERS:
         natural = _widths(kit, table, letters, whole=True)
         if sum(natural) <= room:
             widths = _stretched(columns, natural, room)
@@ -110,9 +81,10 @@ def _widths(kit: Kit, table: Table, letters: Letters, whole: bool) -> tuple[floa
     for row in table.rows:
         face = letters.heavy if row.emphasis else letters.plain
         for place, cell in enumerate(row.cells):
-            if cell:
-                lacking = _lacking(kit, cell, face, tails[place])
-                widths[place] = max(widths[place], measure(cell, face) + lacking)
+            for words in paragraphs(cell) if row.over else (cell,):
+                if words:
+                    lacking = _lacking(kit, words, face, tails[place])
+                    widths[place] = max(widths[place], measure(words, face) + lacking)
     return tuple(width + 0.1 for width in widths)
 
 
@@ -170,23 +142,12 @@ def _cells(kit: Kit, grid: Grid, cells: tuple[Words, ...], style: TextStyle, row
         rows.y = top + first - (lines[0].ascent if lines else 0.0)
         lacking = _lacking(kit, cells[place], style, grid.tails[place])
         for line in lines:
-            x = max(grid.lefts[place], _aligned(grid, place, line) - lacking)
+            x = max(grid.lefts[place], aligned(grid, place, line) - lacking)
             baseline = rows.y + line.ascent
             rows.items.append(Placed(x, baseline, line))
             rows.y = baseline + max(line.descent, style.leading - line.ascent)
         foot = max(foot, rows.y)
     rows.y = foot
-
-
-def _aligned(grid: Grid, place: int, line: Box) -> float:
-    spare = grid.widths[place] - line.width
-    share = {"left": 0.0, "centre": 0.5, "right": 1.0}[grid.columns[place].align]
-    return grid.lefts[place] + max(0.0, spare) * share
-
-
-def _rule(grid: Grid, y: float, weight: float = HAIRLINE) -> Stroke:
-    right = grid.lefts[-1] + grid.widths[-1]
-    return Stroke(((grid.lane.left - 3.0, y), (right + 3.0, y)), weight)
 
 
 def _head(kit: Kit, grid: Grid) -> Piece:
@@ -197,13 +158,13 @@ def _head(kit: Kit, grid: Grid) -> Piece:
     ]
     most = max((len(lines) for lines in columns), default=0)
     height = ABOVE + BELOW + 0.6 + most * style.leading
-    items: list[Item] = [_rule(grid, 0.0, OUTLINE)] if most else []
+    items: list[Item] = [edge(grid, 0.0, OUTLINE)] if most else []
     for place, lines in enumerate(columns):
         y = height - BELOW - 0.6 - len(lines) * style.leading + style.rise
         for line in lines:
-            items.append(Placed(_aligned(grid, place, line), y, line))
+            items.append(Placed(aligned(grid, place, line), y, line))
             y += style.leading
-    items.append(_rule(grid, height, OUTLINE if not most else HAIRLINE))
+    items.append(edge(grid, height, OUTLINE if not most else HAIRLINE))
     return Piece(height, tuple(items))
 
 
@@ -213,14 +174,6 @@ def _title(kit: Kit, table: Table, lane: Lane, suffix: str) -> Piece | None:
     rows = Rows()
     rows.words(kit.lettering.set((*table.title, suffix), STRONG, lane.width), STRONG, lane.left)
     return Piece(rows.y + 2.0, tuple(rows.items))
-
-
-def _joined(above: Piece | None, below: Piece) -> Piece:
-    """Return one piece of two, the second under the first."""
-    if above is None:
-        return below
-    moved = Placed(0.0, above.height, Box(0.0, 0.0, below.height, below.items))
-    return Piece(above.height + below.height, (*above.items, moved))
 
 
 def _numbered(kit: Kit, table: Table, opening: Piece, grid: Grid) -> tuple[Piece, float]:
@@ -247,8 +200,8 @@ def _row(kit: Kit, grid: Grid, row: TableRow, again: Piece) -> Piece:
     items: list[Item] = [Anchor(row.anchor, grid.lane.left, 0.0)] if row.anchor else []
     items.extend(rows.items)
     if row.emphasis == "loud":
-        items.extend((_rule(grid, 0.0, OUTLINE), _rule(grid, rows.y, OUTLINE)))
+        items.extend((edge(grid, 0.0, OUTLINE), edge(grid, rows.y, OUTLINE)))
         items.append(loud_side(kit.sheet, rows.y))
     if row.delta:
         items.extend(kit.marks.delta(row.delta, rows.y, grid.lane, -1.9))
-    return Piece(rows.y, tuple(items), again=again, closing=(_rule(grid, rows.y),))
+    return Piece(rows.y, tuple(items), again=again, closing=(edge(grid, rows.y),))

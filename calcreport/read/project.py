@@ -121,19 +121,7 @@ class ProjectReader:
 
     def date(self, scalar: Scalar | None) -> str:
         """Read a date as year-month-day."""
-        if scalar is None:
-            return ""
-        match = DATE.fullmatch(scalar.text)
-        try:
-            return date(int(match[1]), int(match[2]), int(match[3])).isoformat() if match else self.no_date(scalar)
-        except ValueError:
-            return self.no_date(scalar)
-
-    def no_date(self, scalar: Scalar) -> str:
-        """Add `not-a-date`."""
-        self.problems.add("not-a-date", scalar.span, f"`{scalar.text[:40]}` is not a date",
-                          expected="year-month-day, such as 2026-11-16", found=scalar.text[:40])  # fmt: skip
-        return ""
+        return read_date(scalar, self.problems)
 
     def elsewhere(self, fields: Fields) -> tuple[tuple[str, str], ...]:
         """Read what this package leaves to others."""
@@ -173,3 +161,18 @@ class ProjectReader:
         """Return the entries of a list that must be mappings."""
         found = (as_mapping(item, what, self.problems) for item in fields.items(key))
         return tuple(mapping for mapping in found if mapping is not None)
+
+
+def read_date(scalar: Scalar | None, problems: Problems) -> str:
+    """Read a date as year-month-day; '' after adding `not-a-date`."""
+    if scalar is None:
+        return ""
+    match = DATE.fullmatch(scalar.text)
+    try:
+        if match is not None:
+            return date(int(match[1]), int(match[2]), int(match[3])).isoformat()
+    except ValueError:
+        pass
+    problems.add("not-a-date", scalar.span, f"`{scalar.text[:40]}` is not a date",
+                 expected="year-month-day, such as 2026-11-16", found=scalar.text[:40])  # fmt: skip
+    return ""

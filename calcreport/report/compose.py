@@ -21,6 +21,7 @@ from calcreport.report.items import Script
 from calcreport.report.model import Block, Index, IndexEntry, Part, Report, TitleFacts
 from calcreport.report.notation import Notation
 from calcreport.report.script import write_script
+from calcreport.report.statuses import STATUS_TEXTS
 from calcreport.report.summary import Summary, SummarySheets, dispositions, result_words, summarise
 from calcreport.report.told import SymbolForms, Told
 
@@ -118,17 +119,20 @@ def title_facts(project: WorkedProject, subject: str, code: str = "", fingerprin
     """Return what the title block of a part says."""
     facts = project.project
     issue = facts.last_issue
+    status = STATUS_TEXTS[facts.status]
     return TitleFacts(
         project=facts.title,
         project_number=facts.number,
         subject=subject,
         code=code,
         status=facts.status.upper(),
-        status_note=fronts.STATUS_NOTES[facts.status],
+        status_note=status.note,
         revision=f"rev {issue.number}",
         date=fronts.short_date(issue.date),
         fingerprint=fingerprint,
         program=PROGRAM,
+        banner=status.banner,
+        strokes=status.strokes,
     )
 
 

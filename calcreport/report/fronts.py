@@ -24,6 +24,7 @@ from calcreport.report.model import (
     TableRow,
     Words,
 )
+from calcreport.report.statuses import STATUS_TEXTS
 
 MONTHS = (
     "January",
@@ -39,14 +40,6 @@ MONTHS = (
     "November",
     "December",
 )
-STATUS_NOTES = {
-    "preliminary": "not for permit, not for construction",
-    "for review": "not for permit, not for construction",
-    "for permit": "not for construction",
-    "issued for construction": "",
-    "superseded": "replaced by a later issue, not for use",
-    "void": "not for use",
-}
 CAUTIONS = (
     "Prepared with a computer program. Every number can be worked again from its own sheet.",
     "Inputs are echoed in appendix A and are the user's; the program does not verify them.",
@@ -55,7 +48,6 @@ CAUTIONS = (
     "Adopted local codes and the judgement of the licensed engineer govern over anything printed here.",
     "Not final unless sealed, signed and dated by the engineer in responsible charge.",
 )
-SEAL_WORDS = "seal, signature and date of the engineer in responsible charge"
 
 
 def date_words(iso: str) -> str:
@@ -105,22 +97,24 @@ def cover(project: WorkedProject, result: tuple[Words, ...], loud: bool) -> Cove
     basis = [f"{name}: {code}" for name, code in facts.codes]
     basis[0] += ", no local amendments listed" if facts.amendments == "none" else f", amendments: {facts.amendments}"
     basis += [f"{name}: {value}" for name, value in facts.criteria[:6]]
+    status = STATUS_TEXTS[facts.status]
     return CoverFacts(
         title=facts.title,
         header=header,
         issue=f"Issue {facts.last_issue.number}",
         date=date_words(facts.date),
         status=facts.status.upper(),
-        status_note=STATUS_NOTES[facts.status],
+        status_note=status.note,
         scope=scope,
         elsewhere=facts.elsewhere,
         basis=tuple(basis),
         result=result,
         result_is_loud=loud,
-        cautions=CAUTIONS,
-        seal_words=SEAL_WORDS,
+        cautions=(status.caution, *CAUTIONS),
+        seal_words=status.seal_words,
         office=tuple(line for line in (facts.office, facts.contact) if line),
         fingerprint=grouped(project.fingerprint),
+        status_is_loud=bool(status.banner),
     )
 
 

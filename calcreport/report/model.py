@@ -193,6 +193,9 @@ class TableRow:
     emphasis: Emphasis = ""
     anchor: str = ""
     delta: str = ""
+    #: words set under the heading row where the row runs on from another sheet: '4, continued'. Such a row is long,
+    #: may part between its lines, and keeps the line ends of its texts; '' for a row that stays whole
+    over: str = ""
 
 
 @dataclass(frozen=True, slots=True)
@@ -319,6 +322,9 @@ class TitleFacts:
     fingerprint: str
     #: 'calcreport 0.1.0'
     program: str
+    #: words over the frame of a sheet that is out of use, and how many strokes cross it
+    banner: str = ""
+    strokes: int = 0
 
 
 @dataclass(frozen=True, slots=True)
@@ -346,6 +352,8 @@ class CoverFacts:
     seal_words: str
     office: tuple[str, ...]
     fingerprint: str
+    #: framed heavily: the package is out of use
+    status_is_loud: bool = False
 
 
 @dataclass(frozen=True, slots=True)

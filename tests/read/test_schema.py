@@ -47,6 +47,8 @@ DEFINED = {
     "a template": ("template", ""), "`code`": ("template", "code"), "the symbol …": ("template", "symbol"),
     "the given …": ("template", "given"), "the part …": ("template", "part"), "a branch": ("template", "branch"),
     "a branch of a value": ("template", "arm"), "the column …": ("template", "column"), "a row": ("template", "row"),
+    "a comment log": ("comments", "comment log"), "a comment": ("comments", "comment"),
+    "an entry of `answered`": ("comments", "other place"),
     "a case": ("cases", "case"), "an entry `no case`": ("cases", "reason"), "`stops`": ("cases", "stops"), "the expectation of …": ("cases", "expected"),
 }  # fmt: skip
 #: mappings of other files, of a line's own keys, and those whose keys are all the author's
@@ -270,6 +272,7 @@ def test_the_library(path: Path) -> None:
 def test_samples(path: Path) -> None:
     own = (path.parent / f"{path.stem.removesuffix('.cases')}.cases.yaml").exists()
     kind = "cases" if path.name.endswith(".cases.yaml") else "template" if own else "project"
+    kind = "comments" if path.name.startswith("comments") else kind
     assert faults(kind, path) == []
 
 
@@ -278,8 +281,8 @@ def test_samples(path: Path) -> None:
 #: mistakes that are structure, which the schema must refuse
 STRUCTURE = ("unknown-key", "unknown-line", "wrong-shape", "missing-key", "not-yet", "no-cite", "no-otherwise")
 #: slugs whose mistakes a schema sees where a list of words, a form or a template's names are written in it
-SEEN_IN_PART = ("bad-mark", "comment-cut", "edition-mix", "missing-value", "not-a-date", "not-a-number", "not-a-word",
-                "not-yaml", "odd-character", "row-count", "unknown-given", "yaml-feature")  # fmt: skip
+SEEN_IN_PART = ("bad-comment-number", "bad-mark", "comment-cut", "edition-mix", "missing-value", "not-a-date",
+                "not-a-number", "not-a-place", "not-a-word", "not-answered", "not-yaml", "odd-character", "row-count", "unknown-given", "yaml-feature")  # fmt: skip
 #: those of them that no schema sees: what stands there depends on other files or other lines, or on the words of a text
 UNSEEN = {
     "missing-key-says": "a symbol that the notation does not know needs its meaning on the line",
@@ -297,6 +300,8 @@ UNSEEN = {
 
 def _kind_of(name: str) -> str:
     text = (MISTAKES / f"{name}.yaml").read_text("utf-8")
+    if re.search(r"^cycle:", text, re.M):
+        return "comments"
     template = re.search(r"^(template|lines):", text, re.M) and not re.search(r"^project:", text, re.M)
     return "template" if template else "mistaken project"
 

@@ -7,6 +7,8 @@ from __future__ import annotations
 
 import glob
 import os
+import shutil
+from collections.abc import Callable, Mapping
 from contextlib import suppress
 from dataclasses import dataclass
 from pathlib import Path
@@ -19,6 +21,8 @@ from calcreport.core.world import NO_SUCH_FILE
 LARGEST_TEXT, LARGEST_BYTES = 8_000_000, 100_000_000
 #: an unfinished file this much older than a finished one (seconds) was left by a run that was killed
 _LEFT_BEHIND = 600.0
+#: the folder of frozen issues beside a project file, and the record in the folder of each
+ISSUES, ISSUE_RECORD = "issues", "issue.yaml"
 #: times of writing and of change, size, number
 Stamp: TypeAlias = tuple[int, int, int, int]
 
@@ -68,6 +72,9 @@ def inside(folder: Path, path: str) -> tuple[Path | None, str]:
     """Return the real path of a file inside a folder, or None and why it may not be read."""
     if not path or len(path) > 300 or "\0" in path or "\\" in path or Path(path).is_absolute():
         return None, "it is not a path inside the folder"
+    if os.path.normpath(path).split(os.sep)[0] == os.pardir:
+        # also where it comes back in: then it would hang on what the folder is called
+        return None, "it leads outside the folder"
     try:
         real, home = Path(os.path.realpath(folder / path)), Path(os.path.realpath(folder))
         if home != real and home not in real.parents:
@@ -154,11 +161,15 @@ def make_files(files: dict[Path, bytes]) -> str:
 def replace_file(path: Path, data: bytes) -> str:
     """Write a file whole or not at all: beside it first, then moved into place. Returns '' or why not."""
     beside = path.parent / f".{path.name[:80]}.{os.getpid()}.part"
+    if _is_frozen(path):
+        return "it would stand in a frozen issue"
     try:
         if path.exists() and not path.is_file():
             return "something that is not a file stands there"
         beside.unlink(missing_ok=True)
         _write_beside(beside, data)
+        if path.exists():
+            shutil.copymode(path, beside)
         os.replace(beside, path)
     except OSError as error:
         return (error.strerror or "the file cannot be written").lower()
@@ -167,6 +178,51 @@ def replace_file(path: Path, data: bytes) -> str:
             beside.unlink(missing_ok=True)
     _sweep(path)
     return ""
+
+
+def _is_frozen(path: Path) -> bool:
+    """Tell whether a path leads into a folder of `issues` that holds the record of an issue."""
+    parents = Path(os.path.abspath(path)).parents
+    return any(folder.parent.name == ISSUES and os.path.isfile(folder / ISSUE_RECORD) for folder in parents)
+
+
+def stands(path: Path) -> str:
+    """Return the name of what stands at a path, however it is capitalised, or ''."""
+    try:
+        names = os.listdir(path.parent)
+    except OSError:
+        return ""
+    return next((name for name in names if name.casefold() == path.name.casefold()), "")
+
+
+def put_folder(path: Path, files: Mapping[str, bytes], last: Callable[[], str]) -> str:
+    """Make a folder of files where nothing stands: written beside its place, then moved into it, all or none of it.
+
+    `last` is called when the files are written and before they are moved, and may say why they must not be. Missing
+    folders above are made. Returns '' or why not; then nothing is left, neither files nor folders.
+    """
+    beside = path.parent / f".{path.name}.{os.getpid()}.part"
+    why, made = "", [folder for folder in (path.parent, *path.parent.parents) if not folder.exists()]
+    try:
+        path.parent.mkdir(parents=True, exist_ok=True)
+        shutil.rmtree(beside, ignore_errors=True)
+        for name, data in files.items():
+            file = beside / name
+            file.parent.mkdir(parents=True, exist_ok=True)
+            _write(os.open(file, os.O_CREAT | os.O_EXCL | os.O_WRONLY, 0o644), data, None)
+        why = last() or ("something stands there" if stands(path) else "")
+        if not why:
+            os.rename(beside, path)
+    except OSError as error:
+        why = (error.strerror or "the folder cannot be written").lower()
+    finally:
+        shutil.rmtree(beside, ignore_errors=True)
+        for folder in made if why or not path.exists() else ():
+            with suppress(OSError):
+                folder.rmdir()
+    if not why:
+        _sweep(path)
+    return why
 
 
 def _write_beside(path: Path, data: bytes) -> None:
@@ -189,9 +245,12 @@ def _write(handle: int, data: bytes, name: Path | None) -> None:
 
 
 def _sweep(path: Path) -> None:
-    """Remove what earlier runs that were killed left beside a file now written."""
+    """Remove what earlier runs that were killed left beside a file or a folder now written."""
     with suppress(OSError):
         written = path.stat().st_mtime
         for left in path.parent.glob(f".{glob.escape(path.name[:80])}.*.part"):
             if written - left.stat().st_mtime > _LEFT_BEHIND:
-                left.unlink(missing_ok=True)
+                if left.is_dir() and not left.is_symlink():
+                    shutil.rmtree(left, ignore_errors=True)
+                else:
+                    left.unlink(missing_ok=True)

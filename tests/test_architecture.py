@@ -18,7 +18,7 @@ ROOT = Path(__file__).parents[1] / "calcreport"
 #: layer and its modules, lowest first; nothing imports a layer above its own
 LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
     ("core", (
-        "core", "core.explained_files", "core.explained_projects", "core.explained_reviews",
+        "core", "core.explained_files", "core.explained_issues", "core.explained_projects", "core.explained_reviews",
         "core.explained_schedules",
         "core.explained_templates", "core.explanations", "core.expression", "core.figures", "core.fontfile",
         "core.grammar", "core.inputs", "core.kept", "core.late", "core.methods", "core.problems", "core.quantity", "core.record", "core.shows", "core.source",
@@ -30,9 +30,11 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
     ("read", (
         "read", "read.as_built", "read.bars", "read.bodies", "read.calculations", "read.candidates", "read.cases",
         "read.changes", "read.codes",
-        "read.columns", "read.comments", "read.comments_schema", "read.fields", "read.filled", "read.formulas", "read.gathering", "read.given", "read.library",
-        "read.lines", "read.links", "read.lost", "read.made_rows", "read.malformed", "read.method_lines", "read.model", "read.nodes",
-        "read.project", "read.project_model", "read.project_schema", "read.review_model", "read.row_tables", "read.schedules", "read.shapes",
+        "read.columns", "read.comments", "read.comments_schema", "read.fields", "read.filled", "read.formulas",
+        "read.gathering", "read.given", "read.issued", "read.library", "read.lines", "read.links", "read.lost",
+        "read.made_rows", "read.malformed", "read.method_lines", "read.model", "read.nodes", "read.project",
+        "read.project_model", "read.project_schema", "read.review_model", "read.revision_record", "read.row_tables",
+        "read.schedules", "read.shapes",
         "read.sheets", "read.single_values", "read.symbols", "read.tables", "read.template_model",
         "read.template_schema", "read.template_tables", "read.together", "read.values", "read.variants", "read.words",
         "read.workbook",
@@ -81,10 +83,12 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
     ("publish", ("publish",)),
     ("session", ("session",)),
     ("commands", (
-        "commands", "commands.build", "commands.desk", "commands.editions", "commands.explain", "commands.field",
+        "commands", "commands.build", "commands.desk", "commands.editions", "commands.explain",
+        "commands.issue", "commands.field",
         "commands.lint",
-        "commands.margins", "commands.new", "commands.reconcile", "commands.reconciling", "commands.respond", "commands.responding", "commands.sampler",
-        "commands.schedule", "commands.schema", "commands.sides", "commands.templates",
+        "commands.margins", "commands.new", "commands.reconcile", "commands.reconciling", "commands.record_row",
+        "commands.respond", "commands.responding", "commands.sampler", "commands.schedule", "commands.schema",
+        "commands.sides", "commands.since", "commands.templates",
         "commands.trace", "commands.values", "commands.watch",
     )),
     ("__main__", ("__main__", "__init__")),

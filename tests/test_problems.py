@@ -120,9 +120,13 @@ def test_every_message_says_what_was_expected_and_found() -> None:
 #: slugs that no file of the corpus can show, with the test that does
 ELSEWHERE = {
     "bad-cell": "tests/read/test_workbook.py",
+    "bad-revision": "tests/commands/test_issue.py",
     "cannot-write": "tests/commands/test_build.py",
     "file-too-large": "tests/commands/test_hostile.py",
     "hidden-rows": "tests/read/test_workbook.py",
+    "issue-altered": "tests/commands/test_issue.py",
+    "issue-exists": "tests/commands/test_issue.py",
+    "not-an-issue": "tests/commands/test_issue.py",
     "not-a-change": "tests/commands/test_field.py",
 }
 

@@ -6,24 +6,39 @@ import json
 import os
 import sys
 from dataclasses import dataclass
+from hashlib import sha256
 from pathlib import Path
 
 from calcreport.core.problems import MOST_KEPT, Problem, Problems, render, to_json
 from calcreport.core.source import Source
-from calcreport.filesystem import Disk, library_folder, read_text
+from calcreport.filesystem import ISSUE_RECORD, Disk, library_folder, read_text
+from calcreport.history.frozen import Frozen
+from calcreport.read.issued import IssueRecord, read_issue
 
 
 @dataclass(frozen=True, slots=True)
 class Opened:
     """A project file with the world it lives in."""
 
+    #: the project file, of an issue its folder
     path: Path
-    world: Disk
+    world: Disk | Frozen
     source: Source
+    #: what the record says where a frozen issue was opened
+    issue: IssueRecord | None = None
+
+    def beside(self, ending: str) -> Path:
+        """Return where a result is written if not told: beside the project file, or beside the folder of an issue."""
+        return self.path.with_name(self.path.name + ending) if self.issue else self.path.with_suffix(ending)
 
 
 def open_project(name: str) -> Opened | tuple[Problem, ...]:
-    """Open a project file, or the `project.yaml` of a folder; returns the problem where it cannot be read."""
+    """Open a project file, the `project.yaml` of a folder, or a folder that holds a frozen issue.
+
+    Returns the problems where it cannot be read, or where an issue is not as it was frozen.
+    """
+    if os.path.isfile(os.path.join(name, ISSUE_RECORD)):
+        return open_issue(Path(name))
     path = Path(name, "project.yaml") if os.path.isdir(name) else Path(name)
     found = read_text(path.parent, path.name)
     if isinstance(found, str):
@@ -31,6 +46,44 @@ def open_project(name: str) -> Opened | tuple[Problem, ...]:
             "no-file", f"{str(path)[:200]} cannot be read", "a project file, or a folder with project.yaml", found
         )
     return Opened(path, Disk(path.parent, library_folder()), found)
+
+
+def open_issue(folder: Path) -> Opened | tuple[Problem, ...]:
+    """Open a frozen issue; every file of it is held against its digest first."""
+    folder = folder if folder.name else Path(os.path.abspath(folder))
+    problems = Problems()
+    record = open_record(folder, problems)
+    if record is None:
+        return problems.sorted()
+    disk = Disk(folder, folder)
+    files: dict[str, bytes] = {}
+    for name, digest in record.files.items():
+        data = disk.project_bytes(name)
+        found = sha256(data).hexdigest() if isinstance(data, bytes) else data
+        if isinstance(data, bytes) and found == digest:
+            files[name] = data
+            continue
+        problems.add("issue-altered", record.places[name], f"`{name[:80]}` is not the file that was issued",
+                     expected="the file with this digest",
+                     found=f"one with the digest {found[:16]}…" if isinstance(data, bytes) else found,
+                     hint="put the file back as it was issued; what has changed belongs in the next issue")  # fmt: skip
+    if problems:
+        return problems.sorted()
+    world = Frozen(files, folder.as_posix())
+    source = world.project()
+    if isinstance(source, str):
+        return one_problem("no-file", f"{folder} cannot be built", "a frozen project file", source)
+    return Opened(folder, world, source, record)
+
+
+def open_record(folder: Path, problems: Problems) -> IssueRecord | None:
+    """Return what the record of an issue says, or None after adding why it cannot be read."""
+    found = read_text(folder, ISSUE_RECORD)
+    if isinstance(found, str):
+        problems.add("no-file", None, f"{folder / ISSUE_RECORD} cannot be read", expected="the record of an issue",
+                     found=found)  # fmt: skip
+        return None
+    return read_issue(found, problems)
 
 
 def one_problem(slug: str, message: str, expected: str, found: str, hint: str = "") -> tuple[Problem, ...]:

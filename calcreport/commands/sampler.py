@@ -22,7 +22,7 @@ def run(arguments: Namespace) -> int:
     progress.clear()
     if package.problems or package.composed is None:
         return say_problems(package.problems, arguments.json, tail=UNWRITTEN)
-    target = Path(arguments.output) if arguments.output else opened.path.with_suffix(f".{MARK.lower()}.pdf")
+    target = Path(arguments.output) if arguments.output else opened.beside(f".{MARK.lower()}.pdf")
     failure = put_package(target, package.data)
     if failure:
         return say_problems(failure, arguments.json, tail=UNWRITTEN)

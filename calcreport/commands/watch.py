@@ -16,6 +16,7 @@ from calcreport.commands.build import put_package
 from calcreport.commands.desk import UNWRITTEN, ProgressLine, one_problem, open_project, say_problems
 from calcreport.core.problems import Problem
 from calcreport.core.source import Source
+from calcreport.history.frozen import Frozen
 from calcreport.publish import Package
 from calcreport.session import Reading, Session
 
@@ -32,6 +33,9 @@ def run(arguments: Namespace) -> int:
     opened = open_project(arguments.project)
     if isinstance(opened, tuple):
         return say_problems(opened)
+    if isinstance(opened.world, Frozen):
+        return say_problems(one_problem("not-an-issue", f"{opened.path} is a frozen issue", "a project somebody edits",
+                                        "files that are kept as they are"))  # fmt: skip
     target = Path(arguments.output) if arguments.output else opened.path.with_suffix(".pdf")
     watch = _Watch(Reading(opened.path, opened.world), target)
     try:

@@ -18,6 +18,8 @@ from calcreport.core.world import NO_SUCH_FILE
 #: where the files of a project, and those a template is asked for by, stand among the frozen ones
 INPUTS, TEMPLATES = "inputs/", "templates/"
 VALUES = "values.json"
+#: the package itself, in the folder of an issue
+PACKAGE = "package.pdf"
 
 
 def frozen_files(inputs: Mapping[str, bytes], templates: Mapping[str, bytes]) -> dict[str, bytes]:
@@ -76,4 +78,5 @@ class Frozen:
             text = data.decode("utf-8")
         except UnicodeDecodeError as error:
             return f"it is not UTF-8 text: see line {data.count(10, 0, error.start) + 1}"
-        return Source(shown, text.removeprefix("\ufeff").replace("\r\n", "\n"), self.folder)
+        folder = f"{self.folder}/{INPUTS}".rstrip("/") if self.folder and kind == INPUTS else self.folder
+        return Source(shown, text.removeprefix("\ufeff").replace("\r\n", "\n"), folder)

@@ -71,6 +71,8 @@ _ODD_WORDS = {
     "\u2029": "a paragraph separator",
 }
 _CUT = re.compile(r"[ \t]*#\w")
+#: text that is the same with quotes and without
+_PLAIN = re.compile(r"[^\W_](?:[\w /.()+;–-]*[\w.)])?")
 _LOADER = getattr(yaml, "CSafeLoader", yaml.SafeLoader)
 
 
@@ -136,6 +138,14 @@ def _without(text: str, at: int) -> str:
 
 def _indent(line: str) -> int:
     return len(line) - len(line.lstrip(" "))
+
+
+def written(text: str) -> str:
+    """Return text as it is written in a file: plain where nothing in it could be read otherwise, else in quotes.
+
+    For text on one line; it may stand in brackets and braces too.
+    """
+    return text if _PLAIN.fullmatch(text) else "'" + text.replace("'", "''") + "'"
 
 
 def say_odd(source: Source, problems: Problems) -> bool:

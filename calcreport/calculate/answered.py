@@ -20,7 +20,12 @@ def find_answers(
     project: WorkedProject, log: CommentLog, fronts: Collection[str], problems: Problems
 ) -> dict[Pointer, AnswerPlace]:
     """Find what every pointer of a log names; `fronts` are the marks of the sheets round the calculations."""
-    finder = _Finder(project, tuple(fronts), problems)
+    members = {member.mark: member for worked in project.calculations for member in worked.members}
+    for worked in project.calculations:
+        # what like members share is found whole under its own mark
+        mark = worked.calculation.mark
+        members.setdefault(mark, Member(mark, worked, (-1, -1), worked.checks))
+    finder = _Finder(members, tuple(fronts), problems)
     pointers = [p for comment in log.comments for p in comment.answered if isinstance(p, Pointer)]
     found = {pointer: finder.find(pointer) for pointer in pointers}
     return {pointer: place for pointer, place in found.items() if place is not None}
@@ -28,7 +33,8 @@ def find_answers(
 
 @dataclass(slots=True)
 class _Finder:
-    project: WorkedProject
+    #: members, and calculations that like members share, by mark
+    members: dict[str, Member]
     fronts: tuple[str, ...]
     problems: Problems
 
@@ -41,14 +47,9 @@ class _Finder:
             self.problems.add("unknown-name", pointer.span, f"`{mark}` has no lines of its own", expected=mark,
                               found=f"{mark}.{path}"[:40])  # fmt: skip
             return None
-        members = {member.mark: member for worked in self.project.calculations for member in worked.members}
-        shared = {worked.calculation.mark: worked for worked in self.project.calculations}
-        if mark in members:
-            return self.within(pointer, members[mark])
-        if mark in shared:
-            worked = shared[mark]
-            return self.within(pointer, Member(mark, worked, (-1, -1), worked.checks))
-        known = list(dict.fromkeys([*members, *shared, *self.fronts]))
+        if mark in self.members:
+            return self.within(pointer, self.members[mark])
+        known = list(dict.fromkeys([*self.members, *self.fronts]))
         # an appendix has a letter alone, which is near to every mark
         near = self.problems.near(mark, [name for name in known if len(name) > 1])
         self.problems.add("unknown-name", at, f"the package holds no `{mark}`",

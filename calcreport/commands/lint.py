@@ -33,7 +33,7 @@ def run(arguments: Namespace) -> int:
             one_problem("wrong-shape", f"{arguments.file} is neither a project nor a template",
                         "a project file, a template file, or a template's name",
                         "neither `project:` nor `template:` at the left margin",
-                        "an included file is read with the project that includes it"),
+                        "an included file is read with the project that includes it, a comment log by `respond`"),
             arguments.json,
         )  # fmt: skip
     result = work(opened.world, opened.source)

@@ -63,7 +63,7 @@ def respond(world: World, source: Source, comments: Source, progress: Progress =
 def _hold_letters(log: CommentLog, fonts: Fonts, problems: Problems) -> None:
     """Add a problem for a comment that the sheets cannot quote letter for letter."""
     for comment in log.comments:
-        lacking = fonts.missing(re.sub(r"\s", "", comment.says))
+        lacking = fonts.missing(re.sub("[ \t\n]", "", comment.says))
         if lacking:
             where = comment.span.source.text.find(lacking[0], comment.span.start)
             problems.add("odd-character", Span(comment.span.source, where, where + 1),

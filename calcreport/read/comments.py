@@ -48,9 +48,10 @@ def read_comments(source: Source, problems: Problems) -> CommentLog | None:
     if received and date and sent is not None and date < received:
         problems.add("answered-before", sent.span, "the letter is dated before the comments it answers",
                      expected=f"{received} or later", found=date)  # fmt: skip
-    if fields.node_of("reviewer") is None:
+    before_reviewer = problems.met
+    reviewer = tuple(line.text for line in fields.texts("reviewer") if line.text.strip())
+    if not reviewer and problems.met == before_reviewer:
         fields.say_missing("reviewer")
-    reviewer = tuple(line.text for line in fields.texts("reviewer"))
     comments = _comments(fields, problems)
     if problems.met > before or cycle is None:
         return None

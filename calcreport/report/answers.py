@@ -7,16 +7,19 @@ that stands on no sheet is a problem.
 from __future__ import annotations
 
 import re
-from collections.abc import Mapping
+from collections.abc import Callable, Mapping
 from dataclasses import dataclass
+from functools import cache
 
 from calcreport.calculate.answer_model import AnswerPlace
-from calcreport.calculate.model import WorkedProject
+from calcreport.calculate.model import WorkedProject, split_path
 from calcreport.core.problems import Problems
 from calcreport.read.review_model import Comment, CommentLog, OtherPlace, Pointer
+from calcreport.report.below import checks_below, gives_below
 from calcreport.report.compose import Composed
 from calcreport.report.display import show_symbol
-from calcreport.report.model import Words
+from calcreport.report.items import SayTable, Script
+from calcreport.report.model import Formula, Words
 
 _RUN = re.compile("  +")
 
@@ -61,10 +64,13 @@ def resolve(
 ) -> tuple[Answer, ...]:
     """Return every comment with its answer; `places` holds every pointer of the log."""
     answers: list[Answer] = []
+    lines = cache(lambda mark: _Lines(package.composed.scripts[mark]))
     for comment in log.comments:
         found: dict[str, Where] = {}
         for one in comment.answered:
-            where = _outside(one) if isinstance(one, OtherPlace) else _inside(one, places[one], package, problems)
+            where = (
+                _outside(one) if isinstance(one, OtherPlace) else _inside(one, places[one], package, lines, problems)
+            )
             if where is not None:
                 found.setdefault(where.pointer, where)
         answers.append(Answer(comment, tuple(found.values())))
@@ -78,15 +84,16 @@ def _outside(other: OtherPlace) -> Where:
     return Where(text, "", (), text)
 
 
-def _inside(pointer: Pointer, place: AnswerPlace, package: Sheets, problems: Problems) -> Where | None:
+def _inside(
+    pointer: Pointer, place: AnswerPlace, package: Sheets, lines: Callable[[str], _Lines], problems: Problems
+) -> Where | None:
     written = f"{pointer.mark}.{pointer.path}" if pointer.path else pointer.mark
     if place.value is None and not place.checks:
         sheets = package.parts[place.mark]
         text = sheets[0] if len(sheets) == 1 else f"{sheets[0]} to {sheets[-1]}"
         return Where(written, place.mark, tuple((sheet, ()) for sheet in sheets), text)
-    script = package.composed.scripts[place.mark]
-    told = [script.check_line.get(id(check), 0) for check in place.checks]
-    told += [script.line_of.get(place.value, 0)] if place.value is not None else []
+    told = [lines(place.mark).checks.get(id(check), 0) for check in place.checks]
+    told += [lines(place.mark).values.get(place.value, 0)] if place.value is not None else []
     numbers = sorted({number for number in told if number})
     if not numbers:
         verdicts = ", ".join(dict.fromkeys(check.verdict for check in place.checks))
@@ -97,9 +104,25 @@ def _inside(pointer: Pointer, place: AnswerPlace, package: Sheets, problems: Pro
     by_sheet: dict[str, list[int]] = {}
     for number in numbers:
         by_sheet.setdefault(package.sheets[f"{place.mark}.{number}"], []).append(number)
-    text = "; ".join(f"{sheet}, {lines_words(lines)}" for sheet, lines in by_sheet.items())
-    found = tuple((sheet, tuple(lines)) for sheet, lines in by_sheet.items())
-    return Where(written, place.mark, found, text, _what(place, package))
+    text = "; ".join(f"{sheet}, {lines_words(some)}" for sheet, some in by_sheet.items())
+    found = tuple((sheet, tuple(some)) for sheet, some in by_sheet.items())
+    return Where(written, place.mark, found, text, _what(pointer, place, package))
+
+
+class _Lines:
+    """The line every value and check of a calculation is told on: of rows not set out in full, their table's."""
+
+    def __init__(self, script: Script) -> None:
+        self.checks, self.values = dict(script.check_line), dict(script.line_of)
+        for table in script.items:
+            if not isinstance(table, SayTable):
+                continue
+            for place, row in enumerate(table.worked.rows):
+                if place == table.governing:
+                    continue
+                self.checks |= {id(one): table.number for one in checks_below(row) if one.line.name in table.checks}
+                given = [(one.line.slot, one.key) for one in gives_below(row)]
+                self.values |= {value: table.number for value in given if value[0] in table.columns}
 
 
 def lines_words(numbers: list[int]) -> str:
@@ -108,11 +131,17 @@ def lines_words(numbers: list[int]) -> str:
     return f"lines {', '.join(most)} and {last}" if most else f"line {last}"
 
 
-def _what(place: AnswerPlace, package: Sheets) -> Words:
+def _what(pointer: Pointer, place: AnswerPlace, package: Sheets) -> Words:
+    """Return what stands on the line: a symbol or the name of a check, with the member and the rows it is of."""
+    words: list[Formula | str] = []
     if place.value is None:
-        return (place.checks[0].line.name,)
-    slot = package.composed.scripts[place.mark].worked.plan.slots[place.value[0]]
-    return (show_symbol(slot.symbol),)
+        words.append(place.checks[0].line.name)
+    else:
+        slot = package.composed.scripts[place.mark].worked.plan.slots[place.value[0]]
+        words.append(show_symbol(slot.symbol))
+    words += [f" of {pointer.mark}"] if pointer.mark != place.mark else []
+    rows = ", ".join(f"{name} {row}" for name, row in split_path(pointer.path)[0])
+    return (*words, f" ({rows})") if rows else tuple(words)
 
 
 def as_written(text: str) -> str:

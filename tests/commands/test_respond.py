@@ -13,6 +13,7 @@ import pypdf
 import pytest
 
 from calcreport.core.explained_reviews import REVIEWS
+from calcreport.layout.fonts import installed_fonts
 from tests.commands.desk import HEAD, PROJECT, make, names, run
 
 #: by hand: b is line 1, r line 2, A line 3, the checks lines 4 and 5
@@ -195,6 +196,40 @@ lines:
     assert ran.code == 0, ran.err + ran.out
     answered = json.loads(ran.out)["comments"][0]["answered"]
     assert [one["text"] for one in answered] == ["T1-1, line 4", "T1-1, line 5", "T1-1, lines 3 and 5"]
+    assert "T1-1,line5:ratio(stripright)" in joined(texts(tmp_path / "comments.pdf")[1])
+
+
+#: a tie of P on A: what stands for every member is a row, what governs is set out in full
+TIES = """\
+template: trial
+title: Trial
+code: {name: OWN}
+units: [us]
+symbols: {P: {unit: kip, says: force}, A: {unit: in^2, says: area}, f: {unit: ksi, says: stress}}
+given: {A: , P: }
+lines:
+  - {gives: f, formula: 'P/A', cite: statics}
+  - {check: stress, holds: 'f <= 10 ksi', cite: statics}
+"""
+
+
+def test_like_members_are_found_in_full_or_in_their_table(tmp_path: Path) -> None:
+    """By hand: A is line 1, the table of members line 2; B2, at 8/2 = 4 against 6/2 = 3 ksi, is told on 3 and 4; the
+    table of all is line 5.
+    """
+    shared = "  - {mark: BB, title: ties, template: trial, given: {A: 2 in^2}, members: "
+    project = HEAD + "calculations:\n" + shared + "[{mark: B1, P: 6 kip}, {mark: B2, P: 8 kip}]}\n"
+    at = "[BB, B1.P, B1.A, B2.f, B2.stress, B1.stress, BB.stress]"
+    log = LOG + re.sub(r"answered: .*", f"answered: {at}", ONE)
+    ran = run("respond", str(tmp_path), str(write(tmp_path, log, project, TIES)), "--json")
+    assert ran.code == 0, ran.err + ran.out
+    answered = json.loads(ran.out)["comments"][0]["answered"]
+    assert {one["at"]: one["text"] for one in answered} == {
+        "BB": "BB-1", "B1.P": "BB-1, line 2", "B1.A": "BB-1, line 1", "B2.f": "BB-1, line 3",
+        "B2.stress": "BB-1, line 4", "B1.stress": "BB-1, line 5", "BB.stress": "BB-1, lines 4 and 5",
+    }  # fmt: skip
+    matrix = joined(texts(tmp_path / "comments.pdf")[1])
+    assert "BB-1,line5:stressofB1" in matrix and "BB-1,line4:stressofB2" in matrix
 
 
 def test_a_failing_check_is_told_in_the_letter(tmp_path: Path) -> None:
@@ -223,6 +258,21 @@ def test_nothing_is_written_beside_problems(tmp_path: Path, change: tuple[str, s
         ran.code == 2 and f"comments.yaml:{13 if 'answered' in change[0] or '.' in change[0][:3] else 11}:" in ran.err
     )
     assert f"error[{slug}]" in ran.err and says in ran.err and names(tmp_path) == before
+
+
+@pytest.mark.parametrize("reviewer", ["", " []", " ['']"])
+def test_a_letter_needs_whom_it_answers(tmp_path: Path, reviewer: str) -> None:
+    log = re.sub(r"reviewer:.*", f"reviewer:{reviewer}", LOG + ONE)
+    ran = run("respond", str(tmp_path), str(write(tmp_path, log)))
+    assert ran.code == 2 and "a comment log needs `reviewer`" in ran.err
+
+
+def test_a_letter_the_faces_lack_is_no_box_on_paper(tmp_path: Path) -> None:
+    for sign in "\u6881\U0001f3d7\u2009":
+        ran = run("respond", str(tmp_path), str(write(tmp_path, LOG + ONE.replace("not mm", f"not {sign}"))))
+        lacking = installed_fonts().missing(sign)
+        assert (ran.code == 2 and f"U+{ord(sign):04X}" in ran.err) is bool(lacking), sign
+    assert installed_fonts().missing("\u6881\U0001f3d7") == "\u6881\U0001f3d7"
 
 
 def test_no_log_no_letter(tmp_path: Path) -> None:

@@ -18,7 +18,7 @@ from pathlib import Path
 from calcreport.calculate.release import hold_release
 from calcreport.commands.desk import UNWRITTEN, Opened, ProgressLine, one_problem, open_project, say_problems
 from calcreport.commands.record_row import Row, choose_row
-from calcreport.commands.since import selection_words, selections
+from calcreport.commands.since import other_project, selection_words, selections
 from calcreport.core.problems import Problem, Problems
 from calcreport.core.source import Source
 from calcreport.core.version import PROGRAM
@@ -71,6 +71,11 @@ def _make(opened: Opened, why: str | None, number: str | None, progress: Progres
     issues = opened.path.parent / ISSUES
     if os.path.lexists(issues) and Path(os.path.realpath(issues)).parent != Path(os.path.realpath(issues.parent)):
         return one_problem("cannot-write", f"{issues} leads elsewhere", "a folder beside the project file", "a link")
+    last = first.worked.project.issues[-1].number if first.worked.project.issues else ""
+    if other := other_project(opened, last):
+        return one_problem("issue-exists", f"issue {last} beside {opened.path.name} is of another project",
+                           "a folder for each project", f"issues of {other}",
+                           "move one of the two with all it reads; its issues go with it")  # fmt: skip
     row = choose_row(opened.source, first.worked.project, why, number, lambda name: stands(issues / name), problems)
     raw = opened.world.project_bytes(opened.path.name)
     if row is None or isinstance(raw, str):

@@ -10,9 +10,10 @@ from hashlib import sha256
 from calcreport.calculate.model import WorkedProject
 from calcreport.commands.desk import Opened, open_record
 from calcreport.core.problems import Problems
+from calcreport.core.source import Source
 from calcreport.core.version import PROGRAM
-from calcreport.filesystem import ISSUES, stands
-from calcreport.history.frozen import PACKAGE
+from calcreport.filesystem import ISSUES, read_text, stands
+from calcreport.history.frozen import PACKAGE, VALUES, stated
 from calcreport.publish import Package
 from calcreport.read.issued import IssueRecord
 
@@ -31,6 +32,17 @@ def selections(project: WorkedProject) -> dict[str, dict[str, str]]:
 def selection_words(values: dict[str, str]) -> str:
     """Return a selection as one line."""
     return ", ".join(f"{name} {text}" for name, text in values.items())
+
+
+def other_project(opened: Opened, number: str) -> str:
+    """Return the name of the project file an issue was made from where it is another one of the same folder, or ''.
+
+    A file that is no longer there has been renamed: then the issue is of this project.
+    """
+    home = opened.path.parent
+    found = read_text(home / ISSUES / number, VALUES)
+    name = stated({VALUES: found.text.encode()}).get("file", "") if isinstance(found, Source) else ""
+    return name if name and name != opened.path.name and stands(home / name) else ""
 
 
 class Since:
@@ -84,7 +96,7 @@ def _last_issue(opened: Opened, project: WorkedProject) -> tuple[IssueRecord | N
     """Return the record of the newest row that was issued, or None and why it cannot be read, '' where none was."""
     folder = opened.path.parent / ISSUES
     number = next((row.number for row in reversed(project.project.issues) if stands(folder / row.number)), "")
-    if not number:
+    if not number or other_project(opened, number):
         return None, ""
     problems = Problems()
     record = open_record(folder / number, problems)

@@ -285,6 +285,21 @@ def test_no_log_no_letter(tmp_path: Path) -> None:
     assert kept.read_text() == "not a PDF"
 
 
+def test_a_frozen_issue_answers_for_itself(tmp_path: Path) -> None:
+    """The letter to issue 1 names the lines of issue 1, whatever becomes of the project."""
+    path = write(tmp_path)
+    assert run("issue", str(tmp_path)).code == 0
+    made = [run("respond", str(tmp_path / "issues" / "1"), str(path), "-o", str(tmp_path / "1.pdf")).code]
+    before = (tmp_path / "1.pdf").read_bytes()
+    more = TEMPLATE.replace("lines:\n", "lines:\n  - {gives: p, formula: '4*b', cite: geometry}\n")
+    more = more.replace("symbols:\n", "symbols:\n  p: {unit: in, says: girth}\n")
+    (tmp_path / "trial.yaml").write_text(more, encoding="utf-8")
+    made += [run("respond", str(tmp_path / "issues" / "1"), str(path), "-o", str(tmp_path / "1.pdf")).code]
+    assert made == [0, 0] and (tmp_path / "1.pdf").read_bytes() == before
+    # by hand: in the project as it is now a line stands before the area
+    assert "T1-1, line 4;" in run("respond", str(tmp_path), str(path), "-o", str(tmp_path / "2.pdf")).out
+
+
 def test_the_same_log_gives_the_same_bytes(tmp_path: Path) -> None:
     path = write(tmp_path)
     assert run("respond", str(tmp_path), str(path)).code == 0
@@ -297,6 +312,29 @@ def test_problems_of_project_and_log_are_told_together(tmp_path: Path) -> None:
     path = write(tmp_path, LOG + ONE.replace("status: clarified", "status: closed"), PROJECT.replace("3 in", "3"))
     ran = run("respond", str(tmp_path), str(path), "--json")
     assert {problem["slug"] for problem in json.loads(ran.out)["problems"]} == {"bare-number", "not-a-word"}
+
+
+def test_the_samples_answers_stand_where_the_letter_says(tmp_path: Path) -> None:
+    """Every check the letter names is found on that sheet with that number, by another reader of the package's PDF."""
+    folder = Path(__file__).parents[2] / "samples" / "mill-lane"
+    package = tmp_path / "package.pdf"
+    assert run("build", str(folder), "-o", str(package)).code == 0
+    reader = pypdf.PdfReader(package)
+    log = str(folder / "comments-1.yaml")
+    ran = run("respond", str(folder), log, "--json", "-o", str(tmp_path / "r.pdf"))
+    assert ran.code == 0, ran.err
+    told = 0
+    for comment in json.loads(ran.out)["comments"]:
+        for at in comment["answered"]:
+            for one in at["sheets"]:
+                text = reader.pages[reader.page_labels.index(one["sheet"])].extract_text()
+                name = at["at"].partition(".")[2]
+                for line in one["lines"]:
+                    assert re.search(rf"^{line}\b", text, re.M), (at, line)
+                    if " " in name:
+                        told += 1
+                        assert re.search(rf"^{line}\s*CHECK {name}", text, re.M), (at, line)
+    assert told == 3, "minimum steel, pad stress, bearing on the wall"
 
 
 def test_every_problem_of_logs_is_explained() -> None:

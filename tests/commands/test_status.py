@@ -123,6 +123,24 @@ def test_a_changed_value_is_no_change_of_status(tmp_path: Path) -> None:
     assert contents[0].get_object().get_data() != before["T1-1"]
 
 
+def test_a_frozen_issue_marked_superseded_keeps_every_body(tmp_path: Path) -> None:
+    """All bodies, the echo too: what is echoed is what was frozen. The cover says it."""
+    make(tmp_path)
+    assert run("issue", str(tmp_path)).code == 0
+    issue = tmp_path / "issues" / "1"
+    assert run("build", str(issue), "--superseded", "-o", str(tmp_path / "old.pdf")).code == 0
+    readers = [pypdf.PdfReader(path) for path in (issue / "package.pdf", tmp_path / "old.pdf")]
+    bodies = []
+    for reader in readers:
+        contents = [page["/Contents"] for page in reader.pages]
+        bodies.append(
+            [one[0].get_object().get_data() for one in contents if isinstance(one, pypdf.generic.ArrayObject)]
+        )
+    labels = readers[0].page_labels
+    assert [label for label, a, b in zip(labels, *bodies, strict=True) if a != b] == ["COVER"]
+    assert all(joined(LOUD["superseded"]) in joined(page.extract_text()) for page in readers[1].pages)
+
+
 @pytest.fixture(scope="module")
 def fonts() -> Fonts:
     return installed_fonts()

@@ -77,6 +77,9 @@ def make_parser() -> argparse.ArgumentParser:
     _field(
         commands.add_parser("field", help="answer a question from the site: as designed against as built, one sheet")
     )
+    verify = commands.add_parser("verify", help="hold a package against what the files inside it give")
+    verify.add_argument("package", metavar="PACKAGE", help="a package as PDF")
+    verify.add_argument("--json", action="store_true", help="for machines")
     templates = commands.add_parser("templates", help="list the templates, or tell what one needs and decides")
     templates.add_argument("name", nargs="?", metavar="NAME")
     schedule = commands.add_parser("schedule", help="a row a member, for the schedule on the drawings")

@@ -121,6 +121,11 @@ def begins_with(path: Path, mark: bytes) -> bool:
         return False
 
 
+def read_file(path: Path) -> bytes | str:
+    """Return the bytes of a file that a person names, or why not."""
+    return _read(path, LARGEST_BYTES) if path.is_file() or not path.exists() else "it is not a file"
+
+
 def _read(path: Path, largest: int) -> bytes | str:
     try:
         if path.stat().st_size > largest:

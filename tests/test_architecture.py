@@ -54,7 +54,8 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
         "second", "second.agreement", "second.closures", "second.quantities", "second.rework",
     )),
     ("history", (
-        "history", "history.accounts", "history.differences", "history.frozen", "history.model", "history.package",
+        "history", "history.accounts", "history.alterations", "history.differences", "history.frozen", "history.model",
+        "history.package",
     )),
     ("report", (
         "report", "report.answer", "report.answer_sheet", "report.answer_text", "report.answers", "report.below", "report.calculation",
@@ -89,7 +90,7 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
         "commands.margins", "commands.new", "commands.reconcile", "commands.reconciling", "commands.record_row",
         "commands.respond", "commands.responding", "commands.sampler", "commands.schedule", "commands.schema",
         "commands.sides", "commands.since", "commands.templates",
-        "commands.trace", "commands.values", "commands.watch",
+        "commands.trace", "commands.values", "commands.verify", "commands.watch",
     )),
     ("__main__", ("__main__", "__init__")),
 )  # fmt: skip

@@ -128,6 +128,7 @@ ELSEWHERE = {
     "issue-exists": "tests/commands/test_issue.py",
     "not-an-issue": "tests/commands/test_issue.py",
     "not-a-change": "tests/commands/test_field.py",
+    "not-a-package": "tests/commands/test_verify.py",
 }
 
 

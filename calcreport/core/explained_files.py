@@ -34,6 +34,12 @@ must be UTF-8 text. Check the spelling and where the file lies.
 
     - include: /home/me/level-3.yaml     wrong
     - include: level-3.yaml              right""",
+    "not-a-package": """A PDF cannot be read as a package, or does not carry the files it was made from.
+A package is read under bounds: an encrypted or damaged file, or one that unpacks to more than a package holds, is
+refused, and no password is tried. To be worked again it must carry its input files, its templates and values.json, as
+packages do unless they are built with --no-attachments; a portal may have dropped them.
+
+    calcreport verify mill-lane.pdf""",
     "not-a-callout": """Text does not name bars in a form the program knows.
 Bars are written as a count and a size, several sizes joined by +; bars at a spacing with @ and, for stirrups, the
 legs. Text in which # follows a space or comes first needs quotes.

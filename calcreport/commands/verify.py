@@ -15,7 +15,9 @@ from calcreport.core.source import Source
 from calcreport.core.version import PROGRAM
 from calcreport.filesystem import library_folder, read_file, read_text
 from calcreport.history.alterations import (
+    DRESS,
     Finding,
+    Thing,
     altered_catalog,
     altered_files,
     altered_sheet,
@@ -30,6 +32,9 @@ from calcreport.report.fronts import counted
 from calcreport.second.agreement import Agreement, compare_paths
 
 UNSAID = "; the package was not held against anything"
+#: the order findings are told in, causes first, and how many of a kind the terminal shows
+THINGS: tuple[Thing, ...] = ("template", "input", "file", "second path", "number", "sheet")
+MOST_SAID = 16
 PROVES = (
     "The files inside this PDF, its values and its sheets belong together: every number attached and every sheet is "
     "what these inputs and templates give when they are worked again here, by the program and by its second path."
@@ -157,10 +162,21 @@ def _sheets(package: PackageFile, data: bytes, again: PackageFile, made: bytes) 
             findings.append(Finding("sheet", again.sheets[b].label, "", "", "is missing from the file"))
         else:
             findings += altered_sheet(package.sheets[a], again.sheets[b], *next(words))
+    # the same fonts serve all sheets: where they are others, that is one thing
+    dressed = [f.where for f in findings if f.words == DRESS]
+    findings = [_echoed(f) for f in findings if f.words != DRESS]
+    findings += [Finding("sheet", ", ".join(dressed), "", "", DRESS)] if dressed else []
     kept = [label for sheet in package.sheets if (label := sheet.label)]
     if not pairs and kept != [sheet.label for sheet in again.sheets]:
         findings.append(Finding("sheet", "all", "", "", "stand in another order"))
     return findings
+
+
+def _echoed(finding: Finding) -> Finding:
+    """Return a finding on a sheet that echoes the input files as one of inputs."""
+    if not finding.where.startswith("A-"):
+        return finding
+    return Finding("input", f"{finding.where}, the echo of the input files", finding.found, finding.made, finding.words)
 
 
 def _verdict(templates: list[Finding], values: list[Finding], sheets: list[Finding]) -> str:
@@ -191,14 +207,17 @@ def _lines(name: str, found: Verified) -> Iterable[str]:
     if found.package.signatures:
         signed = counted(found.package.signatures, "signature")
         yield f"{signed} in the file, not looked into; what a signature draws is not compared"
-    for finding in found.findings:
-        yield f"{finding.thing:<12}{finding.where}: {_words(finding)}"
     if not found.findings:
         same = "; made again it is the same byte for byte" if found.same_bytes else ""
         yield f"match: every attached value and every sheet is what the files inside give{same}"
         yield PROVES
     else:
         yield f"differs: {counted(len(found.findings), 'finding')}. {found.verdict}".rstrip()
+        for thing in THINGS:
+            ones = [finding for finding in found.findings if finding.thing == thing]
+            yield from (f"  {thing:<12}{finding.where}: {_words(finding)}" for finding in ones[:MOST_SAID])
+            if len(ones) > MOST_SAID:
+                yield f"  {thing:<12}and {len(ones) - MOST_SAID} more, all with --json"
     yield NOT_PROVED
 
 
@@ -206,7 +225,11 @@ def _words(finding: Finding) -> str:
     if not finding.found and not finding.made:
         return finding.words
     where = f", {finding.words}" if finding.words else ""
-    return f"{finding.found or 'nothing'} in the file, {finding.made or 'nothing'} from the files inside{where}"
+    found, made = finding.found or "nothing", finding.made or "nothing"
+    if finding.thing == "second path":
+        return f"{found} by the second path, {made} by the first"
+    said = "printed" if finding.thing == "sheet" or "the echo of" in finding.where else "in values.json"
+    return f"{found} {said}, {made} from the files inside{where}"
 
 
 def _object(name: str, found: Verified) -> dict[str, Any]:

@@ -17,6 +17,8 @@ from calcreport.history.package import SIGNED, PackageFile, PrintedSheet
 Thing: TypeAlias = Literal["input", "number", "sheet", "template", "file", "second path"]
 #: numbers of two machines may part in their last digits: as a share of the larger
 ALIKE = 1e-12
+#: what is said of a sheet that reads alike and does not show alike
+DRESS = "its size, fonts or links are others"
 #: words of a sheet that are compared one by one, and passages named of one sheet
 MOST_WORDS, MOST_PASSAGES = 6_000, 5
 
@@ -126,9 +128,13 @@ def _line(side: Any, mark: str, group: str, key: str) -> dict[str, Any]:
 
 
 def _told(value: Any) -> str:
+    """Return a value, a line or a check in words."""
     if isinstance(value, dict):
-        shown = value.get("shown", value.get("ratio"))
-        return f"{shown} {value.get('unit') or ''}".replace(" 1", "").strip() if shown is not None else "a line"
+        unit = value.get("verdict", value.get("unit"))
+        parts = [str(part) for part in (value.get("shown"), "" if unit in (None, "1") else unit) if part]
+        return " ".join(parts)[:80] or "a line"
+    if isinstance(value, list):
+        return "; ".join(map(_told, value))[:80] or "nothing"
     return "nothing" if value is None else str(value)[:80]
 
 
@@ -174,9 +180,9 @@ def altered_sheet(one: PrintedSheet, other: PrintedSheet, words: list[str], woul
     over = [kind for kind in one.laid_over if kind != "signature" and kind not in other.laid_over]
     if over:
         findings.append(Finding("sheet", other.label, "", "", f"something is laid over it: {', '.join(over)[:80]}"))
-    elif one.dress != other.dress:
-        findings.append(Finding("sheet", other.label, "", "", "its size, fonts or links are others"))
-    if not findings:
+    if not findings and one.dress != other.dress:
+        findings.append(Finding("sheet", other.label, "", "", DRESS))
+    elif not findings:
         findings.append(Finding("sheet", other.label, "", "", "is drawn otherwise, though its words read alike"))
     return findings
 
@@ -189,7 +195,7 @@ def _passages(label: str, words: list[str], would: list[str]) -> Iterator[Findin
         yield Finding("sheet", label, " ".join(words[c:d])[:120], " ".join(would[a:b])[:120],
                       f"after `{before}`" if before else "")  # fmt: skip
     if len(changes) > MOST_PASSAGES:
-        yield Finding("sheet", label, "", "", f"and {len(changes) - MOST_PASSAGES} passages more")
+        yield Finding("sheet", label, "", "", f"and {len(changes) - MOST_PASSAGES} more of its passages")
 
 
 def altered_catalog(found: PackageFile, made: PackageFile) -> list[Finding]:

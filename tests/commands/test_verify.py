@@ -136,10 +136,10 @@ def test_an_attached_input(tmp_path: Path, plain: bytes) -> None:
     # the beam of 10 in. by 18 in. carries 80 psf and 125 psf over 8 ft
     found = findings(tmp_path, replaced(plain, "inputs/project.yaml", "q_L: {value: 125 psf", "q_L: {value: 100 psf"))
     inputs = {one["where"]: one for one in found["input"]}
-    assert list(inputs) == ["FL1.q_L"]
+    assert list(inputs) == ["FL1.q_L", "A-1, the echo of the input files"]
     assert (inputs["FL1.q_L"]["found"], inputs["FL1.q_L"]["made"]) == ("125 psf", "100 psf")
-    echoed = [one for one in found["sheet"] if one["where"].startswith("A-")]
-    assert any(one["found"] == "125" and one["made"] == "100" for one in echoed), echoed
+    echoed = inputs["A-1, the echo of the input files"]
+    assert (echoed["found"], echoed["made"]) == ("125", "100")
     assert {"FL1.M_u", "B1.M_u", "B1.flexure"} <= {one["where"] for one in found["number"]}
     assert "template" not in found
     ran = verified(tmp_path, (tmp_path / "package.pdf").read_bytes())
@@ -148,15 +148,15 @@ def test_an_attached_input(tmp_path: Path, plain: bytes) -> None:
 
 def test_words_of_an_input_that_no_number_rests_on(tmp_path: Path, plain: bytes) -> None:
     found = findings(tmp_path, replaced(plain, "inputs/project.yaml", "stock room in place", "archive in place"))
-    assert "input" not in found and "template" not in found
-    assert any(one["where"].startswith("A-") and one["made"] == "archive" for one in found["sheet"])
+    assert "template" not in found
+    assert any(one["where"].startswith("A-1, the echo") and one["made"] == "archive" for one in found["input"])
 
 
 def test_an_attached_value(tmp_path: Path, plain: bytes) -> None:
     found = findings(tmp_path, replaced(plain, "values.json", '"ratio": 1.0503975501009932', '"ratio": 0.95'))
     assert list(found) == ["number"] and len(found["number"]) == 1
     one = found["number"][0]
-    assert (one["where"], one["found"]) == ("B1.flexure", "0.95") and one["made"].startswith("1.05039")
+    assert (one["where"], one["found"]) == ("B1.flexure", "0.95") and one["made"].startswith("1.0503975501")
     ran = verified(tmp_path, (tmp_path / "package.pdf").read_bytes())
     assert ran.code == 1 and "The sheets are what the files inside give; values.json is not." in ran.out
 

@@ -147,6 +147,8 @@ def make_folder(path: Path) -> str:
 def make_files(files: dict[Path, bytes]) -> str:
     """Write files that are not there yet, all or none of them. Returns '' or why not."""
     made: list[Path] = []
+    if any(map(_is_frozen, files)):
+        return "it would stand in a frozen issue"
     why = ""
     try:
         for path, data in files.items():

@@ -131,7 +131,10 @@ def _sides(side: Side, mark: str, entry: Entry | None) -> Words:
     place, told = side.place(mark, entry), side.told[mark]
     assert isinstance(place, WorkedCheck)
     numbers: Formula | None = told.numbers(place.by.test, place.open) if place.by is not None else None
-    return (numbers,) if numbers is not None else (place.reason or "–",)
+    if numbers is None:
+        return (place.reason or "–",)
+    # a comparison that does not hold is not printed as if it did
+    return (numbers, " not met") if place.verdict == "NG" else (numbers,)
 
 
 def _values(answer: Answer, changes: list[tuple[str, Change]]) -> Table:

@@ -171,6 +171,23 @@ def test_nothing_that_stands_there_is_touched(mill: Path) -> None:
     assert over.code == 2 and (mill / "project.pdf").read_bytes() == before[mill / "project.pdf"]
 
 
+def test_as_designed_is_what_was_issued(mill: Path) -> None:
+    assert run("issue", str(mill)).code == 0
+    issue = mill / "issues" / "1"
+    frozen = {path: path.read_bytes() for path in issue.rglob("*") if path.is_file()}
+    # the project goes on: the beam is 18 in. wide in the next issue
+    text = (mill / "level-2.yaml").read_text(encoding="utf-8")
+    (mill / "level-2.yaml").write_text(text.replace("      b: 16 in\n", "      b: 18 in\n"), encoding="utf-8")
+    ran = run("field", str(issue), "B1", "b=15in", "--reply", "RFI-031", "--json")
+    width = rows(json.loads(ran.out), "changed")["B1.b"]
+    assert ran.code == 0 and [width[side]["shown"] for side in ("as_designed", "as_built")] == ["16 in.", "15 in."]
+    assert (mill / "issues" / "RFI-031.pdf").exists()
+    inside = run("field", str(issue), "B1", "b=15in", "--reply", "RFI-032", "-o", str(issue / "RFI-032.pdf"))
+    assert inside.code == 2 and "it would stand in a frozen issue" in inside.err
+    assert {path: path.read_bytes() for path in issue.rglob("*") if path.is_file()} == frozen
+    assert run("verify", str(issue / "package.pdf")).code == 0
+
+
 @pytest.mark.parametrize(("mark", "change"), [("B1", "b=15in"), ("FL1", "l=31ft"), ("SE1", "t_w=9in")])
 def test_the_sheet(mill: Path, mark: str, change: str) -> None:
     asked(mill, mark, change)
@@ -181,6 +198,8 @@ def test_the_sheet(mill: Path, mark: str, change: str) -> None:
                   "FIELD QUESTION", "Disposition of the engineer of record", "ORIGINATOR"):  # fmt: skip
         assert words in text, words
     assert not any(word in text.casefold() for word in BANNED)
+    # a comparison that does not hold says so, and a requirement that stops a calculation
+    assert (" not met" in text) == (mark != "B1")
     first = (mill.parent / "answer.pdf").read_bytes()
     asked(mill, mark, change, name="again.pdf")
     assert (mill.parent / "again.pdf").read_bytes() == first

@@ -182,3 +182,12 @@ def ratio_words(answer: Answer, mark: str, entry: Entry | None, built: bool) -> 
     assert isinstance(place, WorkedCheck)
     ratio = side.told[mark].forms.ratio(place)
     return f"{number_text(ratio)} {place.verdict}" if ratio else place.verdict
+
+
+def missing_words(answer: Answer, mark: str, change: Change) -> str:
+    """Return what stands where one side has no such line: a calculation that stopped did not reach it."""
+    account = next(d.first if change.first is None else d.second for d in answer.affected if d.mark == mark)
+    if account is None or not account.stopped:
+        return "no such line"
+    is_stop = change.entry.kind == "requirement" and change.entry.path.rpartition("].")[2] in account.stopped
+    return "not met" if is_stop else "not reached"

@@ -17,6 +17,7 @@ from calcreport.report.answer import (
     Answer,
     beside,
     headline,
+    missing_words,
     ratio_words,
     unaffected_words,
 )
@@ -149,8 +150,8 @@ def _values(answer: Answer, changes: list[tuple[str, Change]]) -> Table:
             (_line(answer, mark, change),),
             what_differs(side.told[mark], change.entry, side.place(mark, change.entry)),
             (_says(side, mark, change.entry),),
-            _value(answer.compared.design, mark, change.first),
-            _value(answer.compared.other, mark, change.second),
+            _value(answer.compared.design, mark, change.first) or (missing_words(answer, mark, change),),
+            _value(answer.compared.other, mark, change.second) or (missing_words(answer, mark, change),),
             (change_words(answer.compared, mark, change),),
         )
         rows.append(TableRow(cells))
@@ -159,7 +160,7 @@ def _values(answer: Answer, changes: list[tuple[str, Change]]) -> Table:
 
 def _value(side: Side, mark: str, entry: Entry | None) -> Words:
     if entry is None:
-        return ("no such line",)
+        return ()
     place = side.place(mark, entry)
     if isinstance(place, WorkedCheck | WorkedRequire):
         return ("met",)

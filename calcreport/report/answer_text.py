@@ -14,6 +14,7 @@ from calcreport.report.answer import (
     Answer,
     beside,
     headline,
+    missing_words,
     unaffected_words,
 )
 from calcreport.report.compared import Side, change_words, printed_value
@@ -44,13 +45,13 @@ def _rows(answer: Answer, mark: str, change: Change) -> list[str]:
     head = (
         f"  {f'{mark}.{number}' if number else mark:<8}{change.entry.path}{f'  {change_said}' if change_said else ''}"
     )
-    return [head, *(f"          {name:<{len(DESIGNED)}}  {_shown(side, mark, entry)}"
+    return [head, *(f"          {name:<{len(DESIGNED)}}  {_shown(side, mark, entry) or missing_words(answer, mark, change)}"
                     for name, side, entry in ((DESIGNED, compared.design, change.first),
                                               (BUILT, compared.other, change.second)))]  # fmt: skip
 
 
 def _shown(side: Side, mark: str, entry: Entry | None) -> str:
-    return printed_value(side, mark, entry) if entry is not None else "no such line"
+    return printed_value(side, mark, entry) if entry is not None else ""
 
 
 def answer_object(answer: Answer, sheet: str) -> dict[str, Any]:

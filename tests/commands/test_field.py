@@ -101,6 +101,9 @@ def test_beyond_the_range_of_a_template_there_is_no_number(mill: Path) -> None:
     # by hand: the pad of 5 in. leaves 2.5 in. on both sides of a wall of 10 in.; of 9 in. it does not
     told = answered(mill, "SE1", "t_w=9in", code=1)
     assert "near edge distance" in told["stopped"]["SE1"]
+    ran = run("field", str(mill), "SE1", "t_w=9in", "--reply", "RFI-032")
+    after = [line.strip() for line in ran.out.split("\n") if line.strip().startswith("as built  ")]
+    assert after.count("as built     not met") == 1 and "as built     not reached" in after
     assert all(one["as_built"] is None or one["as_built"]["verdict"] == "not evaluated" for one in told["checks"])
 
 

@@ -12,7 +12,7 @@ from fractions import Fraction
 
 from calcreport.calculate.evaluate import Program
 from calcreport.calculate.handing import empty_values
-from calcreport.calculate.model import Margin, Values, Worked, WorkedProject
+from calcreport.calculate.model import Key, Margin, PlannedGiven, Values, Worked, WorkedProject
 
 #: a value is moved down to a quarter and up to four times itself
 WIDEST = 4.0
@@ -21,18 +21,29 @@ STEPS, HALVINGS = 24, 30
 
 
 def find_margins(worked: Worked) -> tuple[Margin, ...]:
-    """Return the margins of every judged check against every given number that is not zero."""
+    """Return the margins of every judged check against every given number that is not zero, those in rows too.
+
+    Like members have checks of their own, named with their marks; what one of them is given moves its checks alone.
+    """
     program = Program(worked.plan)
     base = _verdicts(worked)
     found: list[Margin] = []
     for (slot, key), _ in sorted(worked.values.given.items()):
         value = worked.values.get(slot, key)
-        if key or not isinstance(value, float) or value == 0.0 or worked.plan.slots[slot].symbol.kind == "count":
+        if not isinstance(value, float) or value == 0.0 or worked.plan.slots[slot].symbol.kind == "count":
             continue
-        ways = [_flips(worked, program, slot, value, base, way) for way in (1 / WIDEST, WIDEST)]
-        for check in base:
-            found.append(Margin(check, slot, value, ways[0].get(check), ways[1].get(check)))
+        own = _moved_by(worked, slot, key, base)
+        ways = [_flips(worked, program, (slot, key, value), own, way) for way in (1 / WIDEST, WIDEST)]
+        for check in own:
+            found.append(Margin(check, slot, value, ways[0].get(check), ways[1].get(check), key))
     return tuple(found)
+
+
+def _moved_by(worked: Worked, slot: int, key: Key, base: dict[str, bool]) -> dict[str, bool]:
+    """Return the checks that a given value can move: those of its member, where it is of one."""
+    rows = tuple(zip(worked.values.sets[slot], key, strict=True))
+    owners = [member.mark for member in worked.members if member.place in rows]
+    return {name: ok for name, ok in base.items() if name.startswith(f"{owners[0]} ")} if owners else base
 
 
 def least_margins(project: WorkedProject, progress: Callable[[int, int], None]) -> tuple[tuple[str, Margin], ...]:
@@ -44,7 +55,9 @@ def least_margins(project: WorkedProject, progress: Callable[[int, int], None]) 
     for done, worked in enumerate(project.calculations, 1):
         narrowest: dict[str, Margin] = {}
         program = Program(worked.plan)
-        for margin in find_margins(worked) if worked.checks else ():
+        # a value in rows, or of one of like members, has no place of its own in a table of margins
+        alone = find_margins(worked) if worked.checks and not worked.calculation.members else ()
+        for margin in (margin for margin in alone if not margin.key):
             before = narrowest.get(margin.check)
             judged = _judged(margin, worked, program) if before is None or margin.share < before.share else None
             if judged is not None and (before is None or judged.share < before.share):
@@ -57,24 +70,25 @@ def least_margins(project: WorkedProject, progress: Callable[[int, int], None]) 
 def _judged(margin: Margin, worked: Worked, program: Program) -> Margin | None:
     """Return a margin without the ways that end in no verdict; None where neither is left."""
     ways = [
-        end if end is not None and margin.check in _moved(worked, program, margin.slot, end) else None
+        end if end is not None and margin.check in _moved(worked, program, (margin.slot, margin.key), end) else None
         for end in (margin.lower, margin.upper)
     ]
     return replace(margin, lower=ways[0], upper=ways[1]) if ways != [None, None] else None
 
 
 def _flips(
-    worked: Worked, program: Program, slot: int, value: float, base: dict[str, bool], end: float
+    worked: Worked, program: Program, given: tuple[int, Key, float], base: dict[str, bool], end: float
 ) -> dict[str, float]:
     """Return the value at which each check flips on the way from the value to `end` times it."""
+    slot, key, value = given
     waiting = dict(base)
     found: dict[str, float] = {}
     inner = 1.0
     for step in range(1, STEPS + 1):
         outer = end ** (step / STEPS)
-        there = _moved(worked, program, slot, value * outer)
+        there = _moved(worked, program, (slot, key), value * outer)
         for check in [c for c in waiting if there.get(c) != waiting[c]]:
-            found[check] = value * _halved(worked, program, (slot, value), (check, base[check]), (inner, outer))
+            found[check] = value * _halved(worked, program, given, (check, base[check]), (inner, outer))
             del waiting[check]
         if not waiting:
             break
@@ -83,24 +97,31 @@ def _flips(
 
 
 def _halved(
-    worked: Worked, program: Program, given: tuple[int, float], check: tuple[str, bool], ends: tuple[float, float]
+    worked: Worked,
+    program: Program,
+    given: tuple[int, Key, float],
+    check: tuple[str, bool],
+    ends: tuple[float, float],
 ) -> float:
     """Return the factor at which one check flips between two factors, on the side where it has flipped."""
     inner, outer = ends
     for _ in range(HALVINGS):
         middle = (inner + outer) / 2
-        if _moved(worked, program, given[0], given[1] * middle).get(check[0]) == check[1]:
+        if _moved(worked, program, given[:2], given[2] * middle).get(check[0]) == check[1]:
             inner = middle
         else:
             outer = middle
     return outer
 
 
-def _moved(worked: Worked, program: Program, slot: int, value: float) -> dict[str, bool]:
+def _moved(worked: Worked, program: Program, place: tuple[int, Key], value: float) -> dict[str, bool]:
     """Return the verdicts with one given value moved; a check that is not reached is missing."""
-    values = _given_again(worked)
-    values.given[slot, ()] = Fraction(value)
-    values.plain[slot] = value
+    values, (slot, key) = _given_again(worked), place
+    values.given[slot, key] = Fraction(value)
+    if values.sets[slot]:
+        values.rows[slot][key] = value
+    else:
+        values.plain[slot] = value
     return _verdicts(program.run(worked.calculation, values, ""))
 
 
@@ -114,12 +135,18 @@ def _given_again(worked: Worked) -> Values:
         else:
             values.plain[slot] = worked.values.get(slot, key)
     for planned in worked.plan.givens:
-        for column in planned.columns or (planned,):
-            if column.slot >= 0 and worked.plan.slots[column.slot].symbol.unit is None:
-                _copy_words(worked.values, values, column.slot)
-        if planned.rows >= 0:
-            values.names[planned.rows] = dict(worked.values.names[planned.rows])
+        _copy_rows(planned, worked, values)
     return values
+
+
+def _copy_rows(planned: PlannedGiven, worked: Worked, values: Values) -> None:
+    """Copy words and row names, of sets that each member has for itself too."""
+    if planned.slot >= 0 and worked.plan.slots[planned.slot].symbol.unit is None:
+        _copy_words(worked.values, values, planned.slot)
+    if planned.rows >= 0:
+        values.names[planned.rows] = dict(worked.values.names[planned.rows])
+    for column in planned.columns:
+        _copy_rows(column, worked, values)
 
 
 def _copy_words(old: Values, new: Values, slot: int) -> None:
@@ -132,7 +159,10 @@ def _copy_words(old: Values, new: Values, slot: int) -> None:
 def _verdicts(worked: Worked) -> dict[str, bool]:
     """Return whether each judged check is OK in every row; unreached and inapplicable ones are missing."""
     found: dict[str, bool] = {}
-    for check in worked.checks:
-        if check.verdict in ("OK", "NG"):
-            found[check.line.name] = found.get(check.line.name, True) and check.verdict == "OK"
+    for member in worked.members:
+        mark = f"{member.mark} " if worked.calculation.members else ""
+        for check in member.checks:
+            if check.verdict in ("OK", "NG"):
+                name = mark + check.line.name
+                found[name] = found.get(name, True) and check.verdict == "OK"
     return found

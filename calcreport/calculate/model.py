@@ -418,6 +418,8 @@ class Margin:
     value: float
     lower: float | None
     upper: float | None
+    #: the row of a value in rows
+    key: Key = ()
 
     @property
     def share(self) -> float:

@@ -6,7 +6,7 @@ import json
 from argparse import Namespace
 
 from calcreport.calculate.margins import find_margins
-from calcreport.calculate.model import Margin, Worked
+from calcreport.calculate.model import MEMBER, Margin, Worked
 from calcreport.commands.desk import open_project, say_problems
 from calcreport.driver import work
 
@@ -37,11 +37,23 @@ def _lines(mark: str, worked: Worked, margins: tuple[Margin, ...]) -> list[str]:
     lines: list[str] = []
     for check in dict.fromkeys(margin.check for margin in margins):
         narrow = sorted((m for m in margins if m.check == check and m.share < float("inf")), key=lambda m: m.share)
-        lines.append(f"{mark}.{check}" + ("" if narrow else "  no value at hand flips it alone"))
+        own, _, name = check.partition(" ") if worked.calculation.members else (mark, "", check)
+        lines.append(f"{own}.{name}" + ("" if narrow else "  no value at hand flips it alone"))
         for margin in narrow[:SHOWN]:
             ways = [_way(worked, margin, end) for end in (margin.lower, margin.upper) if end is not None]
-            lines.append(f"  {worked.plan.slots[margin.slot].path:<12} {' or '.join(ways)}")
+            lines.append(f"  {_name(worked, margin):<12} {' or '.join(ways)}")
     return lines
+
+
+def _name(worked: Worked, margin: Margin) -> str:
+    """Return what a value is called in links and `trace`: 'b', 'layer[first].y'."""
+    sets, names = worked.values.sets[margin.slot], ""
+    for place, index in enumerate(sets):
+        outer = margin.key[: len(worked.values.outer[index])]
+        names += f"{worked.plan.sets[index].name}[{worked.values.names[index][outer][margin.key[place]]}]."
+    # a member's value stands under its mark
+    own = f"{MEMBER}[{margin.check.partition(' ')[0]}]." if worked.calculation.members else ""
+    return (names + worked.plan.slots[margin.slot].path).removeprefix(own)
 
 
 def _way(worked: Worked, margin: Margin, end: float) -> str:
@@ -54,5 +66,6 @@ def _record(margin: Margin, worked: Worked) -> dict[str, object]:
     slot = worked.plan.slots[margin.slot]
     size = slot.symbol.unit.size if slot.symbol.unit is not None else 1.0
     ends = [None if end is None else end / size for end in (margin.lower, margin.upper)]
-    return {"check": margin.check, "given": slot.path, "value": margin.value / size, "lower": ends[0], "upper": ends[1],
+    return {"check": margin.check, "given": _name(worked, margin), "value": margin.value / size,
+            "lower": ends[0], "upper": ends[1],
             "unit": slot.symbol.unit.text if slot.symbol.unit is not None else ""}  # fmt: skip

@@ -74,3 +74,36 @@ def test_least_margins_are_where_a_verdict_changes_and_not_where_a_calculation_s
     assert (mark, least.check, least.lower) == ("T1", "width", None)
     assert least.share == pytest.approx(0.25, rel=1e-6)
     assert least.nearest is not None and least.nearest > least.value
+
+
+ROWS = """\
+symbols:
+  a: {unit: in, says: a length}
+  b: {unit: in, says: a width}
+  c: {unit: in^2, says: an area}
+given: {b: , bar: {rows: {a: }}}
+lines:
+  - {gives: c, formula: 'b*sum(a over bar)', cite: geometry}
+  - {check: area, holds: 'c <= 24 in^2', cite: geometry}
+"""
+
+
+def test_a_value_in_rows_moves_too(tmp_path: Path) -> None:
+    worked = work_small(tmp_path, ROWS, "{b: 2 in, bar: [{name: p, a: 4 in}, {name: q, a: 2 in}]}")
+    found = {(worked.plan.slots[m.slot].path, m.key): m for m in find_margins(worked)}
+    # 2(a + 2) = 24 at a = 10 in, two and a half times 4; 2(4 + a) = 24 at 8 in, four times 2: the end of the search
+    assert found["a", (0,)].upper == pytest.approx(10 * 0.0254, rel=1e-7)
+    assert found["b", ()].upper == pytest.approx(4 * 0.0254, rel=1e-7)
+
+
+def test_a_value_of_one_of_like_members_moves_its_own_checks(tmp_path: Path) -> None:
+    members = "{mark: S1, bar: [{a: 4 in}, {a: 2 in}]}, {mark: S2, bar: [{a: 10 in}]}"
+    worked = work_small(tmp_path, ROWS, f"{{b: 2 in}}, members: [{members}]")
+    found = {(m.check, worked.plan.slots[m.slot].path, m.key): m for m in find_margins(worked)}
+    assert {key[0] for key in found} == {"S1 area", "S2 area"}
+    assert found["S1 area", "a", (0, 0)].upper == pytest.approx(10 * 0.0254, rel=1e-7)
+    # 2(12) = 24; 6b = 24 and 10b = 24 for the width they have in common
+    assert found["S2 area", "a", (1, 0)].upper == pytest.approx(12 * 0.0254, rel=1e-7)
+    assert found["S1 area", "b", ()].upper == pytest.approx(4 * 0.0254, rel=1e-7)
+    assert found["S2 area", "b", ()].upper == pytest.approx(2.4 * 0.0254, rel=1e-7)
+    assert ("S1 area", "a", (1, 0)) not in found

@@ -45,9 +45,12 @@ def _rows(answer: Answer, mark: str, change: Change) -> list[str]:
     head = (
         f"  {f'{mark}.{number}' if number else mark:<8}{change.entry.path}{f'  {change_said}' if change_said else ''}"
     )
-    return [head, *(f"          {name:<{len(DESIGNED)}}  {_shown(side, mark, entry) or missing_words(answer, mark, change)}"
-                    for name, side, entry in ((DESIGNED, compared.design, change.first),
-                                              (BUILT, compared.other, change.second)))]  # fmt: skip
+    rows = [head]
+    for name, side, entry in ((DESIGNED, compared.design, change.first), (BUILT, compared.other, change.second)):
+        rows.append(
+            f"          {name:<{len(DESIGNED)}}  {_shown(side, mark, entry) or missing_words(answer, mark, change)}"
+        )
+    return rows
 
 
 def _shown(side: Side, mark: str, entry: Entry | None) -> str:

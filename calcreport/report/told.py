@@ -171,10 +171,10 @@ class Told:
             return None
         tests = self.forms.because(line, arm)
         if not tests:
-            return self.word_because(line, arm)
+            return self.word_because(line, arm, opened)
         return self.all_compared(tests, opened)
 
-    def word_because(self, line: PlannedGives | PlannedBranches, arm: int) -> Formula | None:
+    def word_because(self, line: PlannedGives | PlannedBranches, arm: int, opened: Opened) -> Formula | None:
         """Say which word chose an arm."""
         whens = [a.when for a in line.arms if a.when is not None]
         when = line.arms[arm].when
@@ -182,7 +182,7 @@ class Told:
             return self.shared.condition(when)
         first = whens[0] if whens else None
         if isinstance(first, Is) and first.bound < 0:
-            value = self.values.get(first.name.slot, ())
+            value = self.values.get(first.name.slot, self.key(first.name.slot, opened))
             return Row((self.shared.symbol(first.name.slot), Letters(f" is {value}")))
         return None
 

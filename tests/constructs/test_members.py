@@ -95,3 +95,25 @@ def test_members_stand_below_one_another_at_the_left_edge(shared: Sheet) -> None
         for words in others:
             starts = [glyph.left for glyph in shared.row(words) if glyph.text == "T"]
             assert round(starts[0], 1) == round(left, 1)
+
+
+WORDED = """\
+symbols:
+  P: {unit: kip, says: force}
+  f: {unit: kip, says: force counted}
+  end: {one of: [fixed, free], says: end}
+given: {P: , end: }
+lines:
+  - branches:
+      - when: 'end is fixed'
+        lines: [{gives: f, formula: 'P', cite: statics}]
+      - otherwise: [{gives: f, formula: '2*P', cite: statics}]
+  - {check: force, holds: 'f <= 10 kip', cite: statics}
+"""
+
+
+def test_a_word_of_a_member_says_why_a_branch_holds(tmp_path: Path) -> None:
+    members = "{mark: T7, P: 3 kip, end: fixed}, {mark: T8, P: 4 kip, end: free}"
+    sheet = finish(tmp_path, WORDED, f"{{}}, members: [{members}]")
+    # 2(4) = 8 governs over 3
+    assert "member T8, which governs Since end is free:" in sheet.lines[1]

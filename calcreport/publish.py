@@ -3,7 +3,8 @@
 from __future__ import annotations
 
 from dataclasses import dataclass, field, replace
-from typing import Literal, TypeAlias
+from functools import partial
+from typing import Any, Literal, TypeAlias
 
 from calcreport.calculate.margins import least_margins
 from calcreport.calculate.model import WorkedProject
@@ -15,17 +16,19 @@ from calcreport.core.world import World
 from calcreport.driver import Progress, Result, silent, work
 from calcreport.history.accounts import placed_entries
 from calcreport.history.frozen import TEMPLATES, VALUES, frozen_files
-from calcreport.history.model import Revised
 from calcreport.layout.fonts import Fonts, installed_fonts
 from calcreport.layout.model import Pages
 from calcreport.layout.paginate import lay_out
 from calcreport.layout.places import sheets_of
 from calcreport.output.pdf import Attachment, write_pdf
-from calcreport.report.compose import Composed, compose
+from calcreport.reissue import since_last_issue
+from calcreport.report.changes import Changes
+from calcreport.report.compose import Composed, compose, tell
+from calcreport.report.deltas import Shown
 from calcreport.report.model import Part
 from calcreport.report.sampler import SIZES, Sampled, sampler, sampler_alone, with_sampler
 from calcreport.report.value_lines import Finished
-from calcreport.report.valuesfile import values_bytes, values_file
+from calcreport.report.valuesfile import count_sheets, date_values, values_bytes, values_file
 from calcreport.second.agreement import Agreement, compare_paths
 
 #: the reviewer's sampler in the package, as the only sheet, or not at all: it asks for margins, which take time
@@ -51,6 +54,8 @@ class Package:
     data: bytes = b""
     #: what it was made from and the values it came to, by the names they are attached under
     files: dict[str, bytes] = field(default_factory=dict)
+    #: the values file as an object, its sheets not counted yet
+    values: dict[str, Any] = field(default_factory=dict)
     #: what the second path came to, where it was asked for
     agreement: Agreement | None = None
 
@@ -62,10 +67,11 @@ def report(
     second: bool = False,
     kept: Fresh = FRESH,
     status: str = "",
+    marks: Shown = "last",
 ) -> Package:
     """Go as far as the composed report; with `second`, the disclosure says how the second path agrees.
 
-    A `status` stands in place of the project's own.
+    A `status` stands in place of the project's own. `marks` says of which revisions changed lines are marked.
     """
     result = work(world, source, progress, kept=kept, status=status)
     if result.problems or result.worked is None:
@@ -79,14 +85,24 @@ def report(
         progress("working again", 0, 1)
         agreement = compare_paths(result.worked)
     evidence = agreement.words if agreement else ()
-    composed = compose(result.worked, lambda done, total: progress("composing", done, total), evidence, kept)
-    return Package((), result.worked, composed, agreement=agreement, files=_files(world, result))
+    telling = tell(result.worked, kept)
+    lines = {worked.calculation.mark: tuple(placed_entries(worked)) for worked in result.worked.calculations}
+    values = values_file(Finished(result.worked, telling.forms, telling.scripts, lines))
+    last = since_last_issue(world, result.worked, values, problems)
+    if problems:
+        return Package(problems.sorted(), result.worked)
+    files = _files(world, result, {last.name: last.data} if last is not None else {})
+    changes = Changes(last.comparison, last.revisions, result.worked, lines, marks) if last is not None else None
+    if last is not None:
+        date_values(values, last.revisions)
+    told = partial(progress, "composing")
+    composed = compose(result.worked, telling, told, evidence, kept, changes)
+    return Package((), result.worked, composed, agreement=agreement, files=files, values=values)
 
 
-def _files(world: World, result: Result) -> dict[str, bytes]:
+def _files(world: World, result: Result, inputs: dict[str, bytes]) -> dict[str, bytes]:
     """Return the files a project was read from; its values are added when its sheets are counted."""
     assert result.worked is not None
-    inputs: dict[str, bytes] = {}
     for source in result.worked.project.files:
         # a workbook is carried as it is, text as it was read
         book = isinstance(source, TableSource) and source.sheet
@@ -104,13 +120,14 @@ def build(
     sampled: Sampling = "no",
     status: str = "",
     attached: bool = True,
+    marks: Shown = "last",
 ) -> Package:
     """Build the package of a project; steps whose inputs have not changed are taken from `kept`.
 
     `sampled` adds the reviewer's sampler, or makes that one sheet alone, which carries no files. A `status` stands in
     place of the project's own. What the package is made from is attached to it.
     """
-    told = report(world, source, progress, second, kept, status)
+    told = report(world, source, progress, second, kept, status, marks)
     if told.composed is None or told.worked is None:
         return told
     progress("laying out", 0, 1)
@@ -140,14 +157,9 @@ def attachments(files: dict[str, bytes]) -> tuple[Attachment, ...]:
 
 def package_values(package: Package) -> bytes:
     """Return the values file of a package, with its sheets counted where they are laid out."""
-    assert package.worked is not None and package.composed is not None
-    composed, calculations = package.composed, package.worked.calculations
-    lines = {worked.calculation.mark: tuple(placed_entries(worked)) for worked in calculations}
-    finished = Finished(package.worked, composed.forms, composed.scripts, lines)
-    issue = package.worked.project.last_issue
-    revised = {worked.calculation.mark: Revised(issue.number, issue.date) for worked in calculations}
-    sheets = {page.part: page.count for page in package.pages.pages} if package.pages is not None else {}
-    return values_bytes(values_file(finished, sheets, revised, {}))
+    if package.pages is not None:
+        count_sheets(package.values, {page.part: page.count for page in package.pages.pages})
+    return values_bytes(package.values)
 
 
 def _fitted(sample: Sampled, fonts: Fonts) -> Part:

@@ -123,6 +123,7 @@ ELSEWHERE = {
     "bad-revision": "tests/commands/test_issue.py",
     "cannot-write": "tests/commands/test_build.py",
     "file-too-large": "tests/commands/test_hostile.py",
+    "no-values": "tests/commands/test_compare.py",
     "hidden-rows": "tests/read/test_workbook.py",
     "issue-altered": "tests/commands/test_issue.py",
     "issue-exists": "tests/commands/test_issue.py",

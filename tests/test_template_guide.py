@@ -20,7 +20,7 @@ import pytest
 from calcreport.driver import lint_template, work
 from calcreport.filesystem import Disk, library_folder, read_text
 from calcreport.read.lines import KINDS
-from calcreport.report.compose import compose
+from calcreport.report.compose import compose, tell
 from tests.commands.desk import run
 from tests.plain import rows
 
@@ -107,7 +107,7 @@ def printed(folder: Path, example: Example, given: str) -> list[str]:
     assert not isinstance(source, str)
     result = work(disk, source)
     assert not result.problems and result.worked is not None, result.problems
-    report = compose(result.worked, lambda done, total: None).report
+    report = compose(result.worked, tell(result.worked), lambda done, total: None).report
     part = next(part for part in report.parts if part.mark == "T1")
     return rows(part.blocks)
 

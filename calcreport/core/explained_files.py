@@ -40,6 +40,12 @@ refused, and no password is tried. To be worked again it must carry its input fi
 packages do unless they are built with --no-attachments; a portal may have dropped them.
 
     calcreport verify mill-lane.pdf""",
+    "no-values": """What is to be compared holds no values the program can read.
+Issues are compared by their values files: values.json in a folder of issues/, the file of that name inside a package,
+or what a project comes to now. One that was cut short, changed by hand, or written by an older program is not taken.
+
+    calcreport compare issues/1 issues/2
+    calcreport compare issues/2 project.yaml""",
     "not-a-callout": """Text does not name bars in a form the program knows.
 Bars are written as a count and a size, several sizes joined by +; bars at a spacing with @ and, for stirrups, the
 legs. Text in which # follows a space or comes first needs quotes.

@@ -70,4 +70,6 @@ def _differs(first: Entry, second: Entry) -> tuple[Differs, ...]:
         found.append("print")
     if first.linked != second.linked:
         found.append("link")
+    if first.taken != second.taken and not found:
+        found.append("inputs")
     return tuple(found)

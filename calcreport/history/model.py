@@ -13,9 +13,10 @@ from calcreport.core.record import record
 
 Kind: TypeAlias = Literal["given", "value", "check", "requirement"]
 #: what of a line differs: `print` where the value is the same and its digits, or others printed beside it, are not;
-#: `link` where it comes from another line of another calculation; the last two stand alone
+#: `link` where it comes from another line of another calculation; `inputs` where it takes other values and comes to
+#: the same; the last two stand alone
 Differs: TypeAlias = Literal[
-    "value", "formula", "case", "citation", "verdict", "print", "link", "only in first", "only in second"
+    "value", "formula", "case", "citation", "verdict", "print", "link", "inputs", "only in first", "only in second"
 ]
 #: what the same line is known by in another account: kind, path, and which of several alike
 Identity: TypeAlias = tuple[Kind, str, int]
@@ -49,6 +50,8 @@ class Entry:
     shown: str = ""
     #: other numbers printed on the line: sides of a comparison, the result in other units
     beside: tuple[str, ...] = ()
+    #: values it takes, as printed in its substitution
+    taken: tuple[str, ...] = ()
     #: the line of another calculation a given value comes from, such as 'FL2.14', or ''
     linked: str = ""
     #: number of the line on its sheets; no part of a comparison, since an insertion moves it
@@ -85,6 +88,8 @@ class Account:
     selection: tuple[str, ...] = ()
     #: the engineer's words on its checks
     dispositions: tuple[str, ...] = ()
+    #: the sums that prove the results of methods
+    closures: tuple[str, ...] = ()
     sheets: int = 0
     #: revision it last changed in, and the date of that revision
     revision: str = ""
@@ -98,6 +103,11 @@ class Change:
     first: Entry | None
     second: Entry | None
     differs: tuple[Differs, ...]
+
+    @property
+    def quiet(self) -> bool:
+        """Whether the line takes other values and comes to the same: printed otherwise, but no row of a report."""
+        return self.differs == ("inputs",)
 
     @property
     def entry(self) -> Entry:
@@ -132,7 +142,7 @@ class Difference:
         """Whether anything at all differs, the mark apart."""
         if self.changes or self.reordered or self.verdict_flipped or self.governing_changed:
             return True
-        of = ("stopped", "title", "template", "fingerprint", "selection", "dispositions")
+        of = ("stopped", "title", "template", "fingerprint", "selection", "dispositions", "closures")
         return any(self.other(field) for field in of)
 
     def other(self, field: str) -> bool:
@@ -201,6 +211,20 @@ class Revised:
 
 
 @record
+class Revisions:
+    """What each calculation and line of an issue says of its last change."""
+
+    #: number of the issue they follow from
+    before: str
+    #: the revision being made
+    now: Revised
+    #: by mark
+    revised: dict[str, Revised]
+    #: by mark, then the lines that have changed since they were first issued
+    since: dict[str, dict[Identity, str]]
+
+
+@record
 class Fact:
     """A fact of the package that is printed on its first sheets: a criterion, an assumption, a code."""
 
@@ -241,6 +265,8 @@ class Issued:
     facts: tuple[Fact, ...]
     #: in the order of the package
     accounts: tuple[Account, ...]
+    #: the issue its revisions follow from, '' where it was held against none
+    since: str = ""
 
 
 @record
@@ -262,6 +288,13 @@ class Comparison:
     def unchanged(self) -> tuple[Difference, ...]:
         """Calculations in which nothing differs: every line was compared."""
         return tuple(d for d in self.differences if not d.differs and not d.renamed)
+
+    @property
+    def returned(self) -> tuple[Difference, ...]:
+        """Calculations in which nothing differs although they changed in an issue between: they were changed back."""
+        if self.second.since in ("", self.first.revision):
+            return ()
+        return tuple(d for d in self.unchanged if d.other("revision"))
 
     @property
     def added(self) -> tuple[Difference, ...]:

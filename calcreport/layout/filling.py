@@ -13,9 +13,9 @@ from typing import TypeAlias
 from calcreport.layout.blocks import narrowed, set_block, stands_alone
 from calcreport.layout.figures import draw
 from calcreport.layout.kit import Kit
-from calcreport.layout.marks import GAP
+from calcreport.layout.marks import GAP, cloud
 from calcreport.layout.model import Box, Item, Placed
-from calcreport.layout.pieces import Piece, Rows, parted
+from calcreport.layout.pieces import Cloud, Piece, Rows, parted
 from calcreport.layout.sheet import Lane
 from calcreport.layout.words import QUIET
 from calcreport.report.model import Block, FigureBlock
@@ -87,6 +87,8 @@ class Filling:
         self.waiting: int | None = None
         #: a figure that waited until the lines ended, and the first block of the sheet it waited on
         self.stranded: tuple[int, int] | None = None
+        #: the revision cloud being drawn, its top and its foot so far
+        self.round: tuple[Cloud, float, float] | None = None
 
     def run(self, order: tuple[int, ...]) -> None:
         """Place every block."""
@@ -105,6 +107,7 @@ class Filling:
             self._break()
             self._block(figure)
             self._settle()
+        self._end_cloud()
         self._clear()
         self.feet[-1] = self.y
 
@@ -204,6 +207,7 @@ class Filling:
             box = Box(self.kit.sheet.width, 0.0, piece.height, items)
             self.sheets[-1].append(Placed(0.0, self.y, box))
         self.last = (self.y, piece)
+        self._cloud(piece)
         self.y += piece.height
 
     def _put_cells(self, piece: Piece) -> None:
@@ -218,6 +222,23 @@ class Filling:
                 column.append(Placed(0.0, self.y - top, Box(self.kit.sheet.width, 0.0, piece.height, items)))
         whole = tuple(item for column in columns for item in column)
         self.sheets[-1].append(Placed(0.0, top, Box(self.kit.sheet.width, 0.0, self.y + piece.height - top, whole)))
+
+    def _cloud(self, piece: Piece) -> None:
+        """Draw on at the cloud round the pieces above, or begin one, or end it."""
+        mark = piece.cloud
+        if mark is not None and self.kit.clouded not in ("", mark.revision):
+            mark = None
+        if self.round is not None and self.round[0] != mark:
+            self._end_cloud()
+        if mark is not None:
+            top = self.round[1] if self.round is not None else self.y
+            self.round = (mark, top, self.y + piece.height)
+
+    def _end_cloud(self) -> None:
+        if self.round is not None:
+            mark, top, foot = self.round
+            self.sheets[-1].append(cloud(mark.left, top - mark.out, mark.right, foot + mark.out))
+            self.round = None
 
     def _put_monster(self, piece: Piece) -> None:
         """Place a piece higher than a sheet, in strips."""
@@ -234,6 +255,7 @@ class Filling:
             y, piece = self.last
             box = Box(self.kit.sheet.width, 0.0, piece.height, piece.closing)
             self.sheets[-1].append(Placed(0.0, y, box))
+        self._end_cloud()
         self._clear()
         self.feet[-1] = self.y
         self.sheets.append([])

@@ -34,6 +34,8 @@ class Kit:
     marks: Marks
     #: width of the widest symbol of the part's lines, at most `SYMBOL_CAP`
     symbols: float
+    #: revision whose changed lines are clouded; '' clouds all that carry a delta
+    clouded: str = ""
 
     def math(self, formula: Formula, size: float = MATH) -> Box:
         """Return the box of a formula set inside a row."""

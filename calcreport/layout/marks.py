@@ -10,15 +10,15 @@ import math
 from itertools import pairwise
 
 from calcreport.layout.model import Anchor, Box, Circle, Item, Link, Placed, Stroke
-from calcreport.layout.pieces import Piece, Rows
+from calcreport.layout.pieces import Cloud, Piece, Rows
 from calcreport.layout.sheet import HAIRLINE, HEAVY, MM, OUTLINE, Lane, Sheet
 from calcreport.layout.words import CITATION, SOURCE, Lettering
 from calcreport.report.model import Reference, SourceLane
 
 #: Gap above a numbered line.
 GAP = 2.6
-#: Line weight of a revision cloud.
-CLOUD = 0.5
+#: Line weight of a revision cloud, and how far it reaches beyond a line and beyond a row between rules.
+CLOUD, OUT, OUT_OF_ROW = 0.5, 0.0, 0.9
 #: Rise of a cloud's bow at five points along it.
 _BOW = (0.0, 0.76, 1.24, 1.24, 0.76)
 #: Radius of the tick ring a checker fills by pencil.
@@ -65,8 +65,8 @@ class Marks:
         items.extend(placed)
         height = max(height, foot)
         if delta:
-            items.extend(self.delta(delta, height, lane, 1.6))
-        return Piece(height, tuple(items), GAP)
+            items.extend(self.delta(delta, height))
+        return Piece(height, tuple(items), GAP, cloud=self.cloud(delta, lane, OUT))
 
     def number(self, number: int) -> Box:
         """Return the number and the ring beside it, left and right of the axis of the number lane.
@@ -124,21 +124,20 @@ class Marks:
             done = self._sources[citation] = (box, step * len(lines))
         return done
 
-    def delta(self, revision: str, height: float, lane: Lane, out: float) -> list[Item]:
-        """Return the revision delta in the left margin and the cloud round what stands in the lane.
-
-        The cloud reaches `out` points beyond the strip above and below; negative where strips touch.
-        """
-        sheet = self.sheet
-        left, right = edges(sheet, lane)
-        x, y = sheet.left - 5.5 * MM, min(height, 20.0) / 2
-        sides = ((x, y - 7.0), (x + 7.0, y + 5.0), (x - 7.0, y + 5.0))
-        label = self.lettering.label(revision, "semibold", 6.5)
+    def delta(self, revision: str, height: float) -> list[Item]:
+        """Return the revision delta in the left margin beside a piece of some height."""
+        x, y = self.sheet.left - 5.5 * MM, min(height, 20.0) / 2
+        sides = ((x, y - 6.0), (x + 6.2, y + 4.4), (x - 6.2, y + 4.4))
+        label = self.lettering.label(revision, "semibold", 6.0 if len(revision) < 2 else 4.8)
         return [
             Stroke(sides, OUTLINE, closed=True),
-            Placed(x - label.width / 2, y + 3.4, label),
-            cloud(left + 2.0, -out, right - 2.0, height + out),
+            Placed(x - label.width / 2, y + 3.2, label),
         ]
+
+    def cloud(self, revision: str, lane: Lane, out: float) -> Cloud | None:
+        """Return the cloud round what stands in the lane, None without a revision."""
+        left, right = edges(self.sheet, lane)
+        return Cloud(revision, left + 2.0, right - 2.0, out) if revision else None
 
 
 def cloud(left: float, top: float, right: float, foot: float) -> Stroke:

@@ -62,7 +62,7 @@ def lay_out(report: Report, fonts: Fonts, kept: Fresh = FRESH) -> Pages:
     for part in report.parts:
         if part.index is None and part.cover is None:
             desk = laned if _needs_lanes(part) else wide
-            inputs = (part.blocks, bool(part.strip), desk is laned, report.paper)
+            inputs = (part.blocks, bool(part.strip), desk is laned, report.paper, part.clouded)
             bodies[part.mark] = kept.of("bodies", part.mark, inputs, partial(_bodies, desk, part, part.blocks))
     covers = [part for part in report.parts if part.cover is not None]
     for part in covers:
@@ -109,7 +109,7 @@ def _needs_lanes(part: Part) -> bool:
 
 def _bodies(desk: _Desk, part: Part, blocks: tuple[Block, ...]) -> tuple[Body, ...]:
     """Lay out the blocks of one part."""
-    kit = Kit(desk.sheet, desk.lettering, desk.marks, _symbol_column(desk.lettering, blocks))
+    kit = Kit(desk.sheet, desk.lettering, desk.marks, _symbol_column(desk.lettering, blocks), part.clouded)
     top = desk.sheet.body_top + (STRIP if part.strip else 0.0)
     return flow(kit, blocks, top)
 

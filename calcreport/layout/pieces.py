@@ -15,6 +15,17 @@ from calcreport.layout.words import TextStyle
 
 
 @dataclass(frozen=True, slots=True)
+class Cloud:
+    """The revision cloud round a changed piece, or round several that follow one another."""
+
+    revision: str
+    left: float
+    right: float
+    #: how far it reaches beyond the piece above and below
+    out: float
+
+
+@dataclass(frozen=True, slots=True)
 class Piece:
     """A strip of the body, with what paginating must know about it; points."""
 
@@ -36,6 +47,8 @@ class Piece:
     cells: tuple[tuple[Item, ...], ...] = ()
     #: True for the second and later lines of such a row
     continues: bool = False
+    #: drawn where the piece is placed, as one with those of its neighbours
+    cloud: Cloud | None = None
 
 
 class Rows:

@@ -12,6 +12,7 @@ from calcreport.core.expression import Name
 from calcreport.core.units import ONE
 from calcreport.report.candidates import candidate_blocks
 from calcreport.report.check_blocks import CheckBlocks
+from calcreport.report.deltas import NO_DELTAS, Deltas, marked
 from calcreport.report.display import unit_text
 from calcreport.report.drawings import draw
 from calcreport.report.forms import Opened, equation_unit
@@ -78,7 +79,8 @@ def _figure_first(blocks: list[Block]) -> list[Block]:
 class Composer:
     """Composes one calculation."""
 
-    def __init__(self, told: Told, dispositions: dict[int, tuple[str, ...]]) -> None:
+    def __init__(self, told: Told, dispositions: dict[int, tuple[str, ...]], deltas: Deltas = NO_DELTAS) -> None:
+        self.deltas = deltas
         self.told, self.given, self.rows = told, GivenBlocks(told), RowBlocks(told)
         self.checks = CheckBlocks(told, dispositions)
         self.methods = MethodBlocks(told)
@@ -89,7 +91,7 @@ class Composer:
         """Return all blocks in order."""
         found: list[Block] = [self.opening()]
         for item in self.told.script.items:
-            found.extend(self.item(item))
+            found.extend(marked(item, self.item(item), self.told, self.deltas))
         return tuple(_figure_first(found))
 
     def opening(self) -> Block:

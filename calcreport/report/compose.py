@@ -8,13 +8,17 @@ from __future__ import annotations
 from collections.abc import Callable
 from dataclasses import dataclass, replace
 from functools import partial
+from typing import Literal
 
 from calcreport.calculate.model import Member, Worked, WorkedCheck, WorkedProject
 from calcreport.core.kept import FRESH, Fresh
 from calcreport.core.version import PROGRAM
+from calcreport.history.model import Revised
 from calcreport.report import fronts
 from calcreport.report.calculation import Composer
+from calcreport.report.changes import Changes, change_blocks, cover_words
 from calcreport.report.confirmations import find_forms
+from calcreport.report.deltas import NO_DELTAS
 from calcreport.report.forms import CalculationForms
 from calcreport.report.governing import worst_checks
 from calcreport.report.items import Script
@@ -27,6 +31,14 @@ from calcreport.report.told import SymbolForms, Told
 
 
 @dataclass(frozen=True, slots=True)
+class Telling:
+    """How calculations are told: their forms and scripts, before any words."""
+
+    forms: dict[str, CalculationForms]
+    scripts: dict[str, Script]
+
+
+@dataclass(frozen=True, slots=True)
 class Composed:
     """A report with what the values file and the terminal say of it too."""
 
@@ -36,18 +48,28 @@ class Composed:
     scripts: dict[str, Script]
 
 
-def compose(
-    project: WorkedProject,
-    progress: Callable[[int, int], None],
-    evidence: tuple[str, ...] = (),
-    kept: Fresh = FRESH,
-) -> Composed:
-    """Compose the package; `evidence` is what the disclosure says of the second path."""
+def tell(project: WorkedProject, kept: Fresh = FRESH) -> Telling:
+    """Return the order in which each calculation is told, and the printed form of every value."""
     scripts: dict[str, Script] = {}
     for worked in project.calculations:
         mark = worked.calculation.mark
         scripts[mark] = kept.of("script", mark, (worked.values,), partial(write_script, worked))
-    forms = find_forms(project, kept)
+    return Telling(find_forms(project, kept), scripts)
+
+
+def compose(
+    project: WorkedProject,
+    telling: Telling,
+    progress: Callable[[int, int], None],
+    evidence: tuple[str, ...] = (),
+    kept: Fresh = FRESH,
+    changes: Changes | None = None,
+) -> Composed:
+    """Compose the package; `evidence` is what the disclosure says of the second path.
+
+    `changes` are those since the issue before; without them every sheet is of the last row of the revision record.
+    """
+    forms, scripts = telling.forms, telling.scripts
     entries = fronts.register(project, scripts)
     summary = summarise(project, entries)
     shared: dict[int, SymbolForms] = {}
@@ -61,12 +83,16 @@ def compose(
             for check in member.checks
         }
         # figures are solved with all calculations that links bind together: where they are kept, so are those' lines
-        inputs = (scripts[mark], forms[mark], tuple(sorted(said.items())))
-        blocks = kept.of("blocks", mark, inputs, Composer(Told(scripts[mark], forms, scripts, symbols), said).blocks)
-        parts.append(_calculation(project, worked, scripts[mark], blocks))
+        deltas = changes.deltas(mark) if changes is not None else NO_DELTAS
+        inputs = (scripts[mark], forms[mark], tuple(sorted(said.items())), deltas.plain)
+        composer = Composer(Told(scripts[mark], forms, scripts, symbols), said, deltas)
+        blocks = kept.of("blocks", mark, inputs, composer.blocks)
+        revised = changes.revisions.revised[mark] if changes is not None else None
+        part = _calculation(project, worked, scripts[mark], blocks, revised)
+        parts.append(replace(part, clouded=deltas.now) if deltas.now else part)
         progress(done, len(project.calculations))
     sheets = SummarySheets(project, forms, scripts).blocks(summary, entries)
-    report = _report(project, summary, tuple(parts), sheets, fronts.assumptions(entries), evidence)
+    report = _report(project, summary, tuple(parts), sheets, fronts.assumptions(entries), evidence, changes)
     return Composed(report, summary, forms, scripts)
 
 
@@ -77,26 +103,29 @@ def _report(
     summary_blocks: tuple[Block, ...],
     register: tuple[Block, ...],
     evidence: tuple[str, ...],
+    changes: Changes | None,
 ) -> Report:
-    facts = project.project
+    facts, now = project.project, changes.revisions.now if changes is not None else None
     loud = bool(summary.failed or summary.not_evaluated)
     cover = Part(
         "COVER",
         "Cover",
         "cover",
-        title_facts(project, "Cover"),
-        cover=fronts.cover(project, result_words(project, summary), loud),
+        title_facts(project, "Cover", revised=now),
+        cover=fronts.cover(project, (*result_words(project, summary), *cover_words(changes)), loud, now),
     )
+    told = [_front(project, "CHANGES", "Change report", change_blocks(changes), now)] if changes is not None else []
     front = [
-        _front(project, "CRITERIA", "Design criteria and assumptions", (*fronts.criteria(project), *register)),
-        _front(project, "SUMMARY", "Check summary", summary_blocks),
+        *told,
+        _front(project, "CRITERIA", "Design criteria and assumptions", (*fronts.criteria(project), *register), now),
+        _front(project, "SUMMARY", "Check summary", summary_blocks, now),
     ]
     back = [
-        _front(project, "A", "Appendix A: input echo", fronts.echo(facts.files), "appendix"),
-        _front(project, "B", "Appendix B: program disclosure", fronts.disclosure(project, evidence), "appendix"),
+        _front(project, "A", "Appendix A: input echo", fronts.echo(facts.files), now, "appendix"),
+        _front(project, "B", "Appendix B: program disclosure", fronts.disclosure(project, evidence), now, "appendix"),
     ]
     title = "Revision record and index"
-    index = Part("INDEX", title, "index", title_facts(project, title), fronts.revisions(project))
+    index = Part("INDEX", title, "index", title_facts(project, title, revised=now), fronts.revisions(project))
     entries = tuple(_entry(project, part) for part in (cover, index, *front, *calculations, *back))
     index = replace(index, index=Index(entries))
     parts = (cover, index, *front, *calculations, *back)
@@ -111,15 +140,24 @@ def _entry(project: WorkedProject, part: Part) -> IndexEntry:
     )
 
 
-def _front(project: WorkedProject, mark: str, title: str, blocks: tuple[Block, ...], kind: str = "front") -> Part:
-    return Part(mark, title, "appendix" if kind == "appendix" else "front", title_facts(project, title), blocks)
+def _front(
+    project: WorkedProject,
+    mark: str,
+    title: str,
+    blocks: tuple[Block, ...],
+    now: Revised | None,
+    kind: Literal["front", "appendix"] = "front",
+) -> Part:
+    return Part(mark, title, kind, title_facts(project, title, revised=now), blocks)
 
 
-def title_facts(project: WorkedProject, subject: str, code: str = "", fingerprint: str = "") -> TitleFacts:
-    """Return what the title block of a part says."""
+def title_facts(
+    project: WorkedProject, subject: str, code: str = "", fingerprint: str = "", revised: Revised | None = None
+) -> TitleFacts:
+    """Return what the title block of a part says; of the last row of the revision record unless told otherwise."""
     facts = project.project
-    issue = facts.last_issue
     status = STATUS_TEXTS[facts.status]
+    revised = revised or Revised(facts.last_issue.number, facts.last_issue.date)
     return TitleFacts(
         project=facts.title,
         project_number=facts.number,
@@ -127,8 +165,8 @@ def title_facts(project: WorkedProject, subject: str, code: str = "", fingerprin
         code=code,
         status=facts.status.upper(),
         status_note=status.note,
-        revision=f"rev {issue.number}",
-        date=fronts.short_date(issue.date),
+        revision=f"rev {revised.number}",
+        date=fronts.short_date(revised.date),
         fingerprint=fingerprint,
         program=PROGRAM,
         banner=status.banner,
@@ -136,7 +174,9 @@ def title_facts(project: WorkedProject, subject: str, code: str = "", fingerprin
     )
 
 
-def _calculation(project: WorkedProject, worked: Worked, script: Script, blocks: tuple[Block, ...]) -> Part:
+def _calculation(
+    project: WorkedProject, worked: Worked, script: Script, blocks: tuple[Block, ...], revised: Revised | None
+) -> Part:
     calculation, template = worked.calculation, worked.calculation.template
     system = "in.-lb" if template.system == "us" else "SI"
     facts = title_facts(
@@ -144,6 +184,7 @@ def _calculation(project: WorkedProject, worked: Worked, script: Script, blocks:
         f"{calculation.mark}  {calculation.title}",
         f"{template.code} ({system})",
         f"input {fronts.grouped(worked.fingerprint[:8])}",
+        revised,
     )
     return Part(calculation.mark, calculation.title, "calculation", facts, blocks, strip=_strip(worked, script))
 

@@ -10,6 +10,7 @@ from dataclasses import dataclass
 from calcreport.calculate.model import WorkedProject, WorkedText
 from calcreport.core.source import Source
 from calcreport.core.version import PROGRAM
+from calcreport.history.model import Revised
 from calcreport.report.display import show_name
 from calcreport.report.items import SayText, Script
 from calcreport.report.model import (
@@ -82,8 +83,8 @@ class RegisterEntry:
     where: Words
 
 
-def cover(project: WorkedProject, result: tuple[Words, ...], loud: bool) -> CoverFacts:
-    """Return what the cover says."""
+def cover(project: WorkedProject, result: tuple[Words, ...], loud: bool, now: Revised | None = None) -> CoverFacts:
+    """Return what the cover says; `now` is the revision being made where that is not a row of the record."""
     facts = project.project
     header = tuple(line for line in (facts.address, f"Project {facts.number}") if line)
     header += (f"Client: {facts.client}",) if facts.client else ()
@@ -101,7 +102,7 @@ def cover(project: WorkedProject, result: tuple[Words, ...], loud: bool) -> Cove
     return CoverFacts(
         title=facts.title,
         header=header,
-        issue=f"Issue {facts.last_issue.number}",
+        issue=f"Issue {now.number if now is not None else facts.last_issue.number}",
         date=date_words(facts.date),
         status=facts.status.upper(),
         status_note=status.note,

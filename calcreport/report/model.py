@@ -390,6 +390,8 @@ class Part:
     index: Index | None = None
     #: words of the strip under the top frame edge: '1 CHECK NG IN THIS CALCULATION: LINE 31, SHEAR'
     strip: str = ""
+    #: revision whose changed lines are clouded; '' clouds every line with a delta
+    clouded: str = ""
 
 
 @dataclass(frozen=True, slots=True)

@@ -21,7 +21,7 @@ from calcreport.calculate.model import (
 from calcreport.core.expression import Compare, names
 from calcreport.core.record import record
 from calcreport.core.units import ONE
-from calcreport.history.model import Entry, Identity, Place
+from calcreport.history.model import Entry, Place
 from calcreport.report.below import unknowns_below
 from calcreport.report.digits import Figure, number_text
 from calcreport.report.forms import (
@@ -51,11 +51,10 @@ class Finished:
 class LineWriter:
     """Writes the lines of one calculation."""
 
-    def __init__(self, worked: Worked, finished: Finished, since: dict[Identity, str]) -> None:
+    def __init__(self, worked: Worked, finished: Finished) -> None:
         mark = worked.calculation.mark
         self.worked, self.values, self.slots = worked, worked.values, worked.plan.slots
         self.script, self.forms, self.scripts = finished.scripts[mark], finished.forms[mark], finished.scripts
-        self.since = since
         self.linked = linked_values(worked)
         self.required = {id(i.worked): i.number for i in self.script.items if isinstance(i, SayRequire)}
         self.unknowns = {(one.line.slot, one.key): one for one in unknowns_below(worked.lines)}
@@ -103,8 +102,6 @@ class LineWriter:
         printed = [text for text in beside if text]
         if printed:
             found["beside"] = printed
-        if entry.identity in self.since:
-            found["changed"] = self.since[entry.identity]
         return found
 
     def beside(self, gives: WorkedGives) -> list[str]:

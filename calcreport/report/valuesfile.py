@@ -14,7 +14,7 @@ from calcreport.calculate.model import Selection, Worked, WorkedCheck, WorkedPro
 from calcreport.core.methods import METHODS
 from calcreport.core.units import ONE
 from calcreport.core.version import PROGRAM
-from calcreport.history.model import Identity, Revised
+from calcreport.history.model import Kind, Revisions
 from calcreport.report.forms import CalculationForms, proof_unit
 from calcreport.report.governing import governing
 from calcreport.report.items import SayProof, Script
@@ -24,29 +24,24 @@ from calcreport.report.value_lines import Finished, LineWriter
 FORMAT = 2
 
 
-def values_file(
-    finished: Finished, sheets: dict[str, int], revised: dict[str, Revised], since: dict[str, dict[Identity, str]]
-) -> dict[str, Any]:
-    """Return the values file as an object.
-
-    `sheets` counts the sheets by mark; `revised` is the revision each calculation last changed in, `since` that of
-    each line that has changed since it was first issued.
-    """
+def values_file(finished: Finished) -> dict[str, Any]:
+    """Return the values file as an object, before its sheets are counted and its changes dated."""
     project = finished.project
+    issue = project.project.last_issue
     calculations: dict[str, Any] = {}
     for worked in project.calculations:
         mark = worked.calculation.mark
-        writer = LineWriter(worked, finished, since.get(mark, {}))
+        writer = LineWriter(worked, finished)
         lines = finished.lines[mark]
         chief = governing(worked)
         calculations[mark] = {
             "template": worked.calculation.template.name,
             "title": worked.calculation.title,
-            "sheets": sheets.get(mark, 0),
+            "sheets": 0,
             "fingerprint": worked.fingerprint,
             "template_files": _digests(worked),
-            "revision": revised[mark].number,
-            "changed": revised[mark].date,
+            "revision": issue.number,
+            "changed": issue.date,
             "verdict": worked.verdict,
             "governing": chief.line.name if chief is not None else None,
             "stopped": worked.stop.told if worked.stop else None,
@@ -71,6 +66,25 @@ def values_file(
         "facts": [list(fact) for fact in _facts(project)],
     }
     return {"program": PROGRAM, "format": FORMAT, "project": header, "calculations": calculations}
+
+
+def date_values(found: dict[str, Any], revisions: Revisions) -> None:
+    """Write into a values file when each calculation and line last changed, and by which issue that is told."""
+    found["project"]["since"] = revisions.before
+    for mark, one in found["calculations"].items():
+        revised, since = revisions.revised[mark], revisions.since[mark]
+        one["revision"], one["changed"] = revised.number, revised.date
+        for line in (*one["lines"], *one["checks"]):
+            kind: Kind = line["kind"] if "gives" in line else "check"
+            number = since.get((kind, line["path"], line.get("again", 1)))
+            if number is not None:
+                line["changed"] = number
+
+
+def count_sheets(found: dict[str, Any], sheets: dict[str, int]) -> None:
+    """Write into a values file how many sheets each calculation has."""
+    for mark, one in found["calculations"].items():
+        one["sheets"] = sheets.get(mark, 0)
 
 
 def values_bytes(found: dict[str, Any]) -> bytes:
@@ -124,9 +138,9 @@ def _facts(project: WorkedProject) -> list[tuple[str, str, str]]:
     found += [("criteria", name, text) for name, text in facts.criteria]
     for mark, properties in facts.materials:
         found.append(("material", mark, ", ".join(f"{name} {text}" for name, text in properties)))
-    for number, one in enumerate(facts.assumptions, 1):
+    for one in facts.assumptions:
         state = f", to be verified by {one.by}" if one.to_be_verified else ""
-        found.append(("assumption", f"P{number}", one.says + state))
+        found.append(("assumption", "", one.says + state))
     found += [("elsewhere", what, where) for what, where in facts.elsewhere]
     found += [("limit state", one.limit_state, one.says) for one in facts.dispositions if one.limit_state]
     return [fact for fact in found if fact[2]]

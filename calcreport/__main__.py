@@ -35,6 +35,11 @@ def make_parser() -> argparse.ArgumentParser:
         help="work every value again by other arithmetic and other unit factors, and say how they agree",
     )
     build.add_argument("--sampler", action="store_true", help="add the reviewer's sampler, which takes time")
+    build.add_argument(
+        "--marks",
+        choices=("last", "all", "none"),
+        help="triangles beside lines changed in the last revision (if not told), in all of them, or none",
+    )
     build.add_argument("--no-attachments", action="store_true", help="leave input files and values out of the PDF")
     build.add_argument("--superseded", action="store_true", help="an issue again, marked superseded")
     issue = commands.add_parser("issue", help="freeze a project with its package as an issue beside the project file")

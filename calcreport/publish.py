@@ -94,7 +94,7 @@ def report(
     files = _files(world, result, {last.name: last.data} if last is not None else {})
     changes = Changes(last.comparison, last.revisions, result.worked, lines, marks) if last is not None else None
     if last is not None:
-        date_values(values, last.revisions)
+        date_values(values, last.revisions, marks)
     told = partial(progress, "composing")
     composed = compose(result.worked, telling, told, evidence, kept, changes)
     return Package((), result.worked, composed, agreement=agreement, files=files, values=values)

@@ -11,6 +11,7 @@ from calcreport.commands.desk import UNWRITTEN, ProgressLine, one_problem, open_
 from calcreport.commands.since import Since
 from calcreport.core.problems import Problem
 from calcreport.filesystem import begins_with, replace_file
+from calcreport.history.frozen import Frozen, marks_of
 from calcreport.publish import Package, Sampling, build
 from calcreport.report.summary import summary_lines
 
@@ -26,11 +27,10 @@ def run(arguments: Namespace) -> int:
         return say_problems(wrong, arguments.json, tail=UNWRITTEN)
     progress = ProgressLine()
     sampled: Sampling = "added" if arguments.sampler else "no"
-    status = "superseded" if arguments.superseded else ""
-    attached = not arguments.no_attachments
-    package = build(
-        opened.world, opened.source, progress, arguments.second_path, sampled=sampled, status=status, attached=attached
-    )
+    marks = arguments.marks or (marks_of(opened.world.files) if isinstance(opened.world, Frozen) else "last")
+    package = build(opened.world, opened.source, progress, arguments.second_path, sampled=sampled,
+                    status="superseded" if arguments.superseded else "", attached=not arguments.no_attachments,
+                    marks=marks)  # fmt: skip
     progress.clear()
     if package.problems:
         return say_problems(package.problems, arguments.json, tail=UNWRITTEN)

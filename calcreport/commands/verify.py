@@ -25,7 +25,7 @@ from calcreport.history.alterations import (
     parted_sheets,
     read_values,
 )
-from calcreport.history.frozen import INPUTS, TEMPLATES, VALUES, Frozen, stated
+from calcreport.history.frozen import INPUTS, TEMPLATES, VALUES, Frozen, marks_of, stated
 from calcreport.history.package import PackageFile, read_package, sheet_words
 from calcreport.publish import Package, build
 from calcreport.report.fronts import counted
@@ -112,7 +112,7 @@ def _made_again(world: Frozen, source: Source, package: PackageFile, data: bytes
     second = any("Second path." in " ".join(words) for words in sheet_words(data, last))
     status = stated(package.files).get("status", "")
     return build(world, source, progress, second, sampled="added" if sampled else "no",
-                 status=status if status == "superseded" else "")  # fmt: skip
+                 status=status if status == "superseded" else "", marks=marks_of(package.files))  # fmt: skip
 
 
 def _held(package: PackageFile, data: bytes, made: Package, progress: ProgressLine) -> Verified:

@@ -65,8 +65,8 @@ def _differs(first: Entry, second: Entry) -> tuple[Differs, ...]:
         found.append("citation")
     if first.verdict != second.verdict:
         found.append("verdict")
-    other_unit = first.unit != second.unit
-    if other_unit or ("value" not in found and first.shown != second.shown) or first.beside != second.beside:
+    printed = (first.unit, first.shown, first.beside) != (second.unit, second.shown, second.beside)
+    if printed and "value" not in found:
         found.append("print")
     if first.linked != second.linked:
         found.append("link")

@@ -11,6 +11,7 @@ import json
 import posixpath
 from collections.abc import Mapping
 from dataclasses import dataclass
+from typing import Literal
 
 from calcreport.core.source import Source
 from calcreport.core.world import NO_SUCH_FILE
@@ -37,6 +38,12 @@ def stated(files: Mapping[str, bytes]) -> dict[str, str]:
         return {}
     facts = found.get("project") if isinstance(found, dict) else None
     return {key: one for key, one in facts.items() if isinstance(one, str)} if isinstance(facts, dict) else {}
+
+
+def marks_of(files: Mapping[str, bytes]) -> Literal["last", "all", "none"]:
+    """Return which changes the sheets were marked by, as the frozen values say."""
+    found = stated(files).get("marks")
+    return "all" if found == "all" else "none" if found == "none" else "last"
 
 
 @dataclass(frozen=True, slots=True)

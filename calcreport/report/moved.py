@@ -34,7 +34,7 @@ def issue_words(comparison: Comparison) -> tuple[str, str]:
 def dated(comparison: Comparison) -> tuple[str, str]:
     """Return both sides with their dates and statuses."""
     sides = zip(issue_words(comparison), (comparison.first, comparison.second), strict=True)
-    one, two = (f"{words} of {short_date(side.date)}, {side.status}" for words, side in sides)
+    one, two = (f"{words} of {short_date(side.revision_date)}, {side.status}" for words, side in sides)
     return one, two
 
 

@@ -68,9 +68,10 @@ def values_file(finished: Finished) -> dict[str, Any]:
     return {"program": PROGRAM, "format": FORMAT, "project": header, "calculations": calculations}
 
 
-def date_values(found: dict[str, Any], revisions: Revisions) -> None:
-    """Write into a values file when each calculation and line last changed, and by which issue that is told."""
-    found["project"]["since"] = revisions.before
+def date_values(found: dict[str, Any], revisions: Revisions, marks: str) -> None:
+    """Write into a values file when each calculation and line last changed, by which issue that is told, and which
+    changes the sheets mark."""
+    found["project"] |= {"since": revisions.before, "marks": marks}
     for mark, one in found["calculations"].items():
         revised, since = revisions.revised[mark], revisions.since[mark]
         one["revision"], one["changed"] = revised.number, revised.date

@@ -1,7 +1,8 @@
 """What a calculation came to, line by line, and how two such accounts differ. Frozen; numbers are unrounded.
 
 An account names lines by path and rows, never by number, so that it means the same in another issue, in another
-edition of a code, and in a file. Nothing here knows pages or printed digits.
+edition of a code, and in a file. Nothing here knows pages; printed digits are texts beside the numbers. Kept in one:
+records that are read together.
 """
 
 from __future__ import annotations

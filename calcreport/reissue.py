@@ -14,7 +14,7 @@ from calcreport.core.problems import Problems
 from calcreport.core.record import record
 from calcreport.core.world import NO_SUCH_FILE, World
 from calcreport.history.comparison import compare_issues
-from calcreport.history.frozen import VALUES
+from calcreport.history.frozen import VALUES, stated
 from calcreport.history.issued import issued, read_values
 from calcreport.history.model import Comparison, Issued, Revised, Revisions
 from calcreport.history.revisions import revise
@@ -53,6 +53,8 @@ def since_last_issue(
         data = world.project_bytes(name)
         if data == NO_SUCH_FILE:
             continue
+        if isinstance(data, bytes) and _of_another(world, data, project):
+            continue
         before = _read(data)
         if isinstance(before, str):
             problems.add("no-values", None, f"{name[:200]} cannot be compared with",
@@ -68,6 +70,12 @@ def since_last_issue(
         assert isinstance(data, bytes)
         return Reissue(comparison, revise(comparison, made), name, data)
     return None
+
+
+def _of_another(world: World, data: bytes, project: WorkedProject) -> bool:
+    """Tell whether an issue was made from another project file of the same folder, one that is still there."""
+    name = stated({VALUES: data}).get("file", "")
+    return bool(name) and name != project.project.files[0].name and isinstance(world.project_bytes(name), bytes)
 
 
 def _read(data: bytes | str) -> Issued | str:

@@ -15,6 +15,7 @@ from calcreport.commands.desk import Opened, open_project
 from calcreport.history.frozen import VALUES
 from calcreport.publish import Package, build
 from calcreport.report.deltas import Shown
+from tests.commands.desk import run
 
 TEMPLATE = """\
 template: bar
@@ -38,7 +39,7 @@ HEAD = """\
 project: {{title: Trial, number: T1, address: none}}
 office: {{name: (office)}}
 status: {status}
-date: 2026-11-16
+date: 2026-11-{day}
 units: us
 codes: {{adopted: {{name: IBC, year: 2024, amendments: none}}, concrete: ACI 318-19, loads: ASCE/SEI 7-22}}
 criteria: {{risk category: II, seismic design category: B}}
@@ -66,7 +67,7 @@ class Project:
     def build(self, marks: Shown = "last") -> Package:
         """Build the package as the files stand now."""
         rows = ", ".join(f"{{number: {n}, date: 2026-11-{15 + n}, why: issue {n}}}" for n in range(1, self.number + 1))
-        text = HEAD.format(status=self.status, revisions=rows) + self.calculations
+        text = HEAD.format(status=self.status, revisions=rows, day=15 + self.number) + self.calculations
         (self.folder / "project.yaml").write_text(text, encoding="utf-8")
         (self.folder / "bar.yaml").write_text(self.template, encoding="utf-8")
         opened = open_project(str(self.folder))
@@ -76,11 +77,11 @@ class Project:
         return package
 
     def issue(self) -> Package:
-        """Build, keep the values file as an issue does, and go on to the next number."""
+        """Build, issue, and go on to the next number."""
         package = self.build()
+        assert run("issue", str(self.folder)).code in (0, 1)
         place = self.folder / "issues" / str(self.number)
-        place.mkdir(parents=True)
-        (place / VALUES).write_bytes(package.files[VALUES])
+        assert (place / "package.pdf").read_bytes() == package.data
         (self.folder / f"{self.number}.pdf").write_bytes(package.data)
         self.number += 1
         return package

@@ -28,9 +28,9 @@ def run(arguments: Namespace) -> int:
     progress = ProgressLine()
     sampled: Sampling = "added" if arguments.sampler else "no"
     marks = arguments.marks or (marks_of(opened.world.files) if isinstance(opened.world, Frozen) else "last")
+    attached = not arguments.no_attachments
     package = build(opened.world, opened.source, progress, arguments.second_path, sampled=sampled,
-                    status="superseded" if arguments.superseded else "", attached=not arguments.no_attachments,
-                    marks=marks)  # fmt: skip
+                    status="superseded" if arguments.superseded else "", attached=attached, marks=marks)  # fmt: skip
     progress.clear()
     if package.problems:
         return say_problems(package.problems, arguments.json, tail=UNWRITTEN)

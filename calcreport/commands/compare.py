@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import json
-import os
 from argparse import Namespace
 from pathlib import Path
 
@@ -11,7 +10,7 @@ from calcreport.commands.desk import ProgressLine, one_problem, open_project, sa
 from calcreport.core.problems import Problem
 from calcreport.filesystem import Disk, begins_with
 from calcreport.history.comparison import compare_issues
-from calcreport.history.frozen import VALUES
+from calcreport.history.frozen import VALUES, Frozen
 from calcreport.history.issued import issued, read_values
 from calcreport.history.model import Issued
 from calcreport.history.package import read_package
@@ -38,48 +37,34 @@ def run(arguments: Namespace) -> int:
 
 def _side(name: str) -> Issued | tuple[Problem, ...]:
     """Return what a side came to: a package's or an issue's values as frozen, a project's as they are now."""
-    data: bytes | str
     if begins_with(Path(name), b"%PDF-"):
-        data = _attached(Path(name))
-    elif os.path.isfile(os.path.join(name, VALUES)):
-        data = _bytes(Path(name, VALUES))
-    else:
-        return _worked(name)
-    found = read_values(data) if isinstance(data, bytes) else data
-    side = issued(found) if isinstance(found, dict) else found
-    return side if isinstance(side, Issued) else _unreadable(name, side)
+        return _told(name, _attached(Path(name)))
+    opened = open_project(name)
+    if isinstance(opened, tuple):
+        return opened
+    if isinstance(opened.world, Frozen):
+        return _told(name, opened.world.files.get(VALUES, f"an issue without {VALUES}"))
+    progress = ProgressLine()
+    package = build(opened.world, opened.source, progress)
+    progress.clear()
+    return package.problems or _told(name, package.files[VALUES])
 
 
 def _attached(path: Path) -> bytes | str:
     """Return the values inside a PDF, or why there are none."""
-    data = _bytes(path)
+    data = Disk(path.parent, path.parent).project_bytes(path.name)
     found = read_package(data) if isinstance(data, bytes) else data
     if isinstance(found, str):
         return found
     return found.files.get(VALUES, f"a PDF that carries no {VALUES}")
 
 
-def _bytes(path: Path) -> bytes | str:
-    return Disk(path.parent, path.parent).project_bytes(path.name)
-
-
-def _worked(name: str) -> Issued | tuple[Problem, ...]:
-    opened = open_project(name)
-    if isinstance(opened, tuple):
-        return opened
-    progress = ProgressLine()
-    package = build(opened.world, opened.source, progress)
-    progress.clear()
-    if package.problems:
-        return package.problems
-    values = read_values(package.files[VALUES])
-    assert isinstance(values, dict)
-    side = issued(values)
-    assert isinstance(side, Issued)
-    return side
-
-
-def _unreadable(name: str, why: str) -> tuple[Problem, ...]:
+def _told(name: str, data: bytes | str) -> Issued | tuple[Problem, ...]:
+    """Return what a values file tells, or the problem where it tells nothing."""
+    found = read_values(data) if isinstance(data, bytes) else data
+    side = issued(found) if isinstance(found, dict) else found
+    if isinstance(side, Issued):
+        return side
     expected = "an issue, a project or a package with its values"
-    hint = "an issue is a folder of `issues/` with values.json; a package carries it"
-    return one_problem("no-values", f"{name[:200]} cannot be compared", expected, why, hint)
+    hint = "an issue is a folder of `issues/`; a package carries its values unless it was built without attachments"
+    return one_problem("no-values", f"{name[:200]} cannot be compared", expected, side, hint)

@@ -6,7 +6,9 @@ import json
 from pathlib import Path
 
 import pytest
+from pypdf import PdfWriter
 
+from calcreport.history.frozen import VALUES
 from tests.commands.desk import run
 from tests.reissued import Project
 
@@ -60,22 +62,38 @@ def test_nothing_differs(issues: Project) -> None:
 
 
 @pytest.mark.parametrize(
-    ("data", "found"),
+    ("values", "found"),
     [
-        (b"%PDF-1.7 cut short", "a damaged file"),
         (b"{}", "it holds no values of calculations"),
         (b'{"calculations": {}, "format": 7}', "its format is 7"),
         (b'{"calculations": {"B1": 1}, "format": 2, "project": {}}', "is not what a values file holds there"),
         (b"[" * 100_000, "it is no JSON"),
+        (None, "a PDF that carries no values.json"),
     ],
 )
-def test_a_side_that_cannot_be_read(issues: Project, data: bytes, found: str) -> None:
-    other = issues.folder / "other"
-    other.mkdir()
-    place = other / ("p.pdf" if data.startswith(b"%PDF") else "values.json")
-    place.write_bytes(data)
-    ran = run("compare", str(issues.folder / "1.pdf"), str(place if place.suffix == ".pdf" else other))
+def test_a_package_whose_values_cannot_be_read(issues: Project, values: bytes | None, found: str) -> None:
+    writer = PdfWriter(clone_from=issues.folder / "1.pdf")
+    kept = {name: data[0] for name, data in writer.attachments.items()} | {VALUES: values}
+    writer._root_object["/Names"].get_object().pop("/EmbeddedFiles")  # type: ignore[attr-defined]
+    for name, data in kept.items():
+        if data is not None:
+            writer.add_attachment(name, data)
+    writer.write(issues.folder / "p.pdf")
+    ran = run("compare", str(issues.folder / "p.pdf"), str(issues.folder / "2.pdf"))
     assert ran.code == 2 and "error[no-values]" in ran.err and found in ran.err and not ran.out
+
+
+def test_a_file_cut_short(issues: Project) -> None:
+    (issues.folder / "p.pdf").write_bytes(b"%PDF-1.7 cut short")
+    ran = run("compare", str(issues.folder / "p.pdf"), str(issues.folder / "2.pdf"))
+    assert ran.code == 2 and "error[no-values]" in ran.err and "a damaged file" in ran.err
+
+
+def test_an_issue_that_was_altered(issues: Project) -> None:
+    place = issues.folder / "issues" / "1" / VALUES
+    place.write_text(place.read_text().replace("30.0", "31.0"))
+    ran = run("compare", str(issues.folder / "issues" / "1"), str(issues.folder / "2.pdf"))
+    assert ran.code == 2 and "error[issue-altered]" in ran.err
 
 
 def test_a_side_that_is_not_there(issues: Project) -> None:

@@ -85,7 +85,7 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
     ("publish", ("publish",)),
     ("session", ("session",)),
     ("commands", (
-        "commands", "commands.build", "commands.desk", "commands.editions", "commands.explain",
+        "commands", "commands.build", "commands.compare", "commands.desk", "commands.editions", "commands.explain",
         "commands.issue", "commands.field",
         "commands.lint",
         "commands.margins", "commands.new", "commands.reconcile", "commands.reconciling", "commands.record_row",

@@ -99,8 +99,6 @@ def work(
     if instead is not None:
         taken = (replace(c, pinned=instead.taken.get(c.mark, c.pinned)) for c in inputs.calculations)
         inputs = replace(inputs, calculations=tuple(taken))
-    if status:
-        inputs = replace(inputs, project=replace(inputs.project, status=status))
     if built is not None:
         inputs = build_otherwise(inputs, built, library, problems)
     plans = _plans(inputs, problems, kept)

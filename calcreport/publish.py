@@ -71,13 +71,15 @@ def report(
 ) -> Package:
     """Go as far as the composed report; with `second`, the disclosure says how the second path agrees.
 
-    A `status` stands in place of the project's own. `marks` says of which revisions changed lines are marked.
+    A `status` stands in place of the project's own on sheets and in the values, as on an issue marked superseded; what
+    has changed since the issue before is told as it was. `marks` says of which revisions changed lines are marked.
     """
-    result = work(world, source, progress, kept=kept, status=status)
+    result = work(world, source, progress, kept=kept)
     if result.problems or result.worked is None:
         return Package(result.problems, result.worked)
     problems = Problems()
-    hold_release(result.worked, problems)
+    if not status:
+        hold_release(result.worked, problems)
     if problems:
         return Package(problems.sorted(), result.worked)
     agreement = None
@@ -95,9 +97,13 @@ def report(
     changes = Changes(last.comparison, last.revisions, result.worked, lines, marks) if last is not None else None
     if last is not None:
         date_values(values, last.revisions, marks)
+    worked = result.worked
+    if status:
+        worked = replace(worked, project=replace(worked.project, status=status))
+        values["project"]["status"] = status
     told = partial(progress, "composing")
-    composed = compose(result.worked, telling, told, evidence, kept, changes)
-    return Package((), result.worked, composed, agreement=agreement, files=files, values=values)
+    composed = compose(worked, telling, told, evidence, kept, changes)
+    return Package((), worked, composed, agreement=agreement, files=files, values=values)
 
 
 def _files(world: World, result: Result, inputs: dict[str, bytes]) -> dict[str, bytes]:

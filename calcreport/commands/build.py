@@ -27,7 +27,8 @@ def run(arguments: Namespace) -> int:
         return say_problems(wrong, arguments.json, tail=UNWRITTEN)
     progress = ProgressLine()
     sampled: Sampling = "added" if arguments.sampler else "no"
-    marks = arguments.marks or (marks_of(opened.world.files) if isinstance(opened.world, Frozen) else "last")
+    made = marks_of(opened.world.files) if isinstance(opened.world, Frozen) else "last"
+    marks = arguments.marks or made
     attached = not arguments.no_attachments
     package = build(opened.world, opened.source, progress, arguments.second_path, sampled=sampled,
                     status="superseded" if arguments.superseded else "", attached=attached, marks=marks)  # fmt: skip
@@ -39,7 +40,7 @@ def run(arguments: Namespace) -> int:
     failure = put_package(target, package.data)
     if failure:
         return say_problems(failure, arguments.json, tail=UNWRITTEN)
-    plain = attached and not (arguments.second_path or arguments.sampler or arguments.superseded)
+    plain = attached and marks == made and not (arguments.second_path or arguments.sampler or arguments.superseded)
     return _tell(package, target, arguments.json, Since(opened, package, plain))
 
 

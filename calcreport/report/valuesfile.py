@@ -104,8 +104,8 @@ def _calculation_text(one: dict[str, Any]) -> str:
     return "{\n" + ",\n".join(pieces) + "}"
 
 
-def _json(value: object) -> str:
-    return json.dumps(value, ensure_ascii=False)
+#: one encoder for all: making one takes longer than most lines
+_json = json.JSONEncoder(ensure_ascii=False).encode
 
 
 def _closures(script: Script, forms: CalculationForms) -> list[dict[str, Any]]:

@@ -81,27 +81,42 @@ def test_an_issue_is_built_again_from_its_own_files_alone(tmp_path: Path, sample
     assert tree(tmp_path / "archived") == before
 
 
-def test_an_old_issue_marked_superseded(tmp_path: Path) -> None:
+def test_old_issues_marked_superseded(tmp_path: Path) -> None:
+    """The first, and a second whose sheets tell what has changed since: as it was then, whatever became of it."""
     shutil.copytree(SAMPLES / "canal-shelter", tmp_path, dirs_exist_ok=True)
     assert issue(tmp_path).code == 0
-    ran = run("build", str(tmp_path / "issues" / "1"), "--superseded")
-    assert ran.code == 0, ran.err
-    issued = pypdf.PdfReader(tmp_path / "issues" / "1" / "package.pdf")
-    marked = pypdf.PdfReader(tmp_path / "issues" / "1-superseded.pdf")
-    assert len(issued.pages) == len(marked.pages)
-    for place, (one, other) in enumerate(zip(issued.pages, marked.pages, strict=True)):
-        (body, block), (marked_body, marked_block) = (
-            [part.get_object().get_data() for part in page["/Contents"]]  # type: ignore[union-attr, attr-defined]
-            for page in (one, other)
-        )
-        # the cover names the status in its body; of every other sheet the title block alone differs
-        assert (body == marked_body and block != marked_block) if place else body != marked_body
-        assert "SUPERSEDED" in other.extract_text() and "not for use" in other.extract_text()
-        assert "SUPERSEDED" not in one.extract_text()
-    # what it was made from is carried unchanged
-    for name, data in issued.attachments.items():
-        assert name == "values.json" or marked.attachments[name] == data
-    assert json.loads(marked.attachments["values.json"][0])["project"]["status"] == "superseded"
+    edit(tmp_path / "project.yaml", "status: preliminary\n", "status: for review\n")
+    assert issue(tmp_path, "--why", "posts settled").code == 0
+    for number, place_of_changes in (("1", ()), ("2", ("CHANGES-1",))):
+        assert run("build", str(tmp_path / "issues" / number), "--superseded").code == 0
+        issued = pypdf.PdfReader(tmp_path / "issues" / number / "package.pdf")
+        marked = pypdf.PdfReader(tmp_path / "issues" / f"{number}-superseded.pdf")
+        assert issued.page_labels == marked.page_labels and set(place_of_changes) <= set(issued.page_labels)
+        for place, (one, other) in enumerate(zip(issued.pages, marked.pages, strict=True)):
+            (body, block), (marked_body, marked_block) = (
+                [part.get_object().get_data() for part in page["/Contents"]]  # type: ignore[union-attr, attr-defined]
+                for page in (one, other)
+            )
+            # the cover names the status in its body; of every other sheet what stands round the body alone differs
+            assert (body == marked_body and block != marked_block) if place else body != marked_body
+            assert "SUPERSEDED" in other.extract_text() and "SUPERSEDED" not in one.extract_text()
+        # what it was made from is carried unchanged
+        for name, data in issued.attachments.items():
+            assert name == "values.json" or marked.attachments[name] == data
+        assert json.loads(marked.attachments["values.json"][0])["project"]["status"] == "superseded"
+
+
+def test_an_issue_with_other_marks_than_its_own_is_not_held_against_it(tmp_path: Path) -> None:
+    make(tmp_path)
+    assert issue(tmp_path).code == 0
+    edit(tmp_path / "project.yaml", "3 in", "2 in")
+    assert issue(tmp_path, "--why", "narrower").code == 0
+    folder = str(tmp_path / "issues" / "2")
+    # what it was compared with stands among its own inputs
+    assert (tmp_path / "issues" / "2" / "inputs" / "issues" / "1" / "values.json").is_file()
+    assert "the same bytes as issued" in run("build", folder).out
+    ran = run("build", folder, "--marks", "none")
+    assert ran.code == 0 and "as issued" not in ran.out and "differs" not in ran.out
 
 
 def test_only_an_issue_is_marked_superseded_and_no_issue_is_watched_or_issued(tmp_path: Path) -> None:

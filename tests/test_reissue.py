@@ -12,10 +12,13 @@ from pathlib import Path
 import pytest
 
 from calcreport.history.comparison import compare_issues
+from calcreport.history.differences import differ
 from calcreport.history.frozen import INPUTS, VALUES, Frozen
 from calcreport.history.issued import issued, read_values
-from calcreport.history.model import Comparison, Difference, Issued
+from calcreport.history.model import Account, Comparison, Difference, Issued
 from calcreport.publish import Package, build
+from calcreport.report.model import Table
+from calcreport.report.moved import flip_words
 from tests.reissued import CALCULATIONS, TEMPLATE, Project, revisions, sheets, values, words
 
 FRONTS = {"COVER", "INDEX-1", "CHANGES-1", "CRITERIA-1", "SUMMARY-1", "A-1", "B-1"}
@@ -267,3 +270,29 @@ def test_values_file_tells_the_marks(project: Project) -> None:
     found = json.loads(project.build(marks="all").files[VALUES])["project"]
     assert found["since"] == "1" and found["marks"] == "all"
     assert [line.get("changed") for line in values(project.build())["T1"]["lines"]] == ["2", None, None, "2"]
+
+
+def test_rows_of_candidates_are_marked(project: Project) -> None:
+    choice = "choose: [{A: 1 in^2}, {A: 2 in^2}]"
+    project.change("given: {P: 10 kip, A: 2 in^2, s_max: 20 ksi}", f"{choice}, given: {{P: 30 kip, s_max: 20 ksi}}")
+    project.issue()
+    # 30/1 and 36/1 are over 20, 30/2 and 36/2 are not: the same one is used, and both rows have other ratios
+    project.change("P: 30 kip", "P: 36 kip")
+    second = project.issue()
+    assert second.composed is not None
+    part = next(part for part in second.composed.report.parts if part.mark == "T1")
+    (table,) = (block for block in part.blocks if isinstance(block, Table))
+    assert [row.delta for row in table.rows] == ["2", "2"]
+    assert "Selection A 2 in^2 as before, candidates' outcomes changed" in words(second, "CHANGES-1")
+
+
+def test_another_row_told_in_full_is_said() -> None:
+    """Of like members the governing one is told in full: where another governs, other lines are printed."""
+    one, two = (account("member G9, which governs"), account("member G4, which governs"))
+    found = differ(one, two)
+    assert found.differs and not found.changes
+    assert flip_words(found) == ("told in full now: member G4, which governs",)
+
+
+def account(*headings: str) -> Account:
+    return Account("B1", "Beam", "beam", "", "OK", "flexure", "", (), headings=headings)

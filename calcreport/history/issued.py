@@ -71,6 +71,7 @@ def _account(mark: str, one: dict[str, Any]) -> Account:
         tuple((name, str(digest)) for name, digest in sorted(files.items())),
         tuple(_selection(one.get("selection"))),
         tuple(_texts(one, "dispositions")), tuple(_plain({k: v for k, v in c.items() if k in _SUM}) for c in closures),
+        tuple(_texts(one, "headings")),
         _whole(one, "sheets"), _text(one, "revision"), _text(one, "changed"),
     )  # fmt: skip
 

@@ -91,6 +91,8 @@ class Account:
     dispositions: tuple[str, ...] = ()
     #: the sums that prove the results of methods
     closures: tuple[str, ...] = ()
+    #: headings of the rows and parts told in full
+    headings: tuple[str, ...] = ()
     sheets: int = 0
     #: revision it last changed in, and the date of that revision
     revision: str = ""
@@ -143,7 +145,7 @@ class Difference:
         """Whether anything at all differs, the mark apart."""
         if self.changes or self.reordered or self.verdict_flipped or self.governing_changed:
             return True
-        of = ("stopped", "title", "template", "fingerprint", "selection", "dispositions", "closures")
+        of = ("stopped", "title", "template", "fingerprint", "selection", "dispositions", "closures", "headings")
         return any(self.other(field) for field in of)
 
     def other(self, field: str) -> bool:

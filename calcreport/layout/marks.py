@@ -134,10 +134,10 @@ class Marks:
             Placed(x - label.width / 2, y + 3.2, label),
         ]
 
-    def cloud(self, revision: str, lane: Lane, out: float) -> Cloud | None:
-        """Return the cloud round what stands in the lane, None without a revision."""
+    def cloud(self, revision: str, lane: Lane, out: float, most: float = math.inf) -> Cloud | None:
+        """Return the cloud round what stands in the lane, no further right than `most`; None without a revision."""
         left, right = edges(self.sheet, lane)
-        return Cloud(revision, left + 2.0, right - 2.0, out) if revision else None
+        return Cloud(revision, left + 2.0, min(right - 2.0, most), out) if revision else None
 
 
 def cloud(left: float, top: float, right: float, foot: float) -> Stroke:

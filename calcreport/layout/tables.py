@@ -204,5 +204,5 @@ def _row(kit: Kit, grid: Grid, row: TableRow, again: Piece) -> Piece:
         items.append(loud_side(kit.sheet, rows.y))
     if row.delta:
         items.extend(kit.marks.delta(row.delta, rows.y))
-    cloud = kit.marks.cloud(row.delta, grid.lane, OUT_OF_ROW)
+    cloud = kit.marks.cloud(row.delta, grid.lane, OUT_OF_ROW, grid.lefts[-1] + grid.widths[-1] + 7.0)
     return Piece(rows.y, tuple(items), again=again, closing=(edge(grid, rows.y),), cloud=cloud)

@@ -55,7 +55,7 @@ class Changes:
         shown = {one: number for one, number in since.items() if self.marks == "all" or number == now}
         order = tuple(dict.fromkeys((*sorted(set(since.values()) - {now}, key=_numbered), now)))
         places = {entry.identity: place for entry, place in self.lines[mark]}
-        return deltas(shown, places, _formulas(found), now, order, (found.other("selection"), found.other("closures")))
+        return deltas(shown, places, _formulas(found), now, order, _candidates(found), found.other("closures"))
 
 
 def _numbered(number: str) -> tuple[int, str]:
@@ -70,6 +70,17 @@ def _formulas(difference: Difference) -> frozenset[Identity]:
         change.second.identity for change in difference.changes if change.second is not None
         and (change.first is None or told & set(change.differs))
     )  # fmt: skip
+
+
+def _candidates(difference: Difference) -> tuple[int, ...]:
+    """Return the rows of the table of candidates that were not there before as they are, counted from 0."""
+    first, second = difference.first, difference.second
+    if first is None or second is None or first.selection == second.selection:
+        return ()
+    # the candidate used and what the sheet says of it stand before the rows
+    rows = second.selection[2:]
+    used = first.selection[:1] != second.selection[:1]
+    return tuple(place for place, row in enumerate(rows) if used or row not in first.selection[2:])
 
 
 def change_blocks(changes: Changes) -> tuple[Block, ...]:
@@ -182,13 +193,16 @@ def _row(worked: Worked, places: dict[Identity, Place], change: Change) -> Table
 
 def _name(worked: Worked, place: Place, entry: Entry) -> Words:
     """Return `combination 2: M_0  moment at the support`: the rows a value is of, its symbol, what it is."""
-    if isinstance(place, WorkedCheck | WorkedRequire):
+    if isinstance(place, WorkedRequire):
         return (kind_words(entry),)
+    steps, path = split_path(entry.path)
+    rows = [f"{name} {row_words(row)}" for name, row in steps]
+    if isinstance(place, WorkedCheck):
+        return (f"{', '.join(rows)}: " if rows else "", f"check {path}")
     slot = place.line.slot if isinstance(place, WorkedGives) else place[0]
     symbol = worked.plan.slots[slot].symbol
-    steps, path = split_path(entry.path)
-    of = [f"{name} {row_words(row)}" for name, row in steps]
-    of += [stem] if (stem := path.rpartition(".")[0]) else []
+    stem = path.rpartition(".")[0]
+    of = [*rows, stem] if stem else rows
     return (f"{', '.join(of)}: " if of else "", show_symbol(symbol), f"  {symbol.says}")
 
 

@@ -57,8 +57,8 @@ class Deltas:
     others: dict[int, str]
     #: values whose formula, case or source differs now
     formulas: frozenset[tuple[int, Key]]
-    #: another candidate is used now; the sums that prove a method differ
-    selection: bool
+    #: rows of the table of candidates that differ now; the sums that prove a method differ
+    candidates: tuple[int, ...]
     closures: bool
     #: all of this in plain values, by which two of them are told apart
     plain: tuple[object, ...] = ()
@@ -70,7 +70,7 @@ class Deltas:
         return max(found, key=self.order.index) if found else ""
 
 
-NO_DELTAS = Deltas("", (), {}, {}, frozenset(), False, False)
+NO_DELTAS = Deltas("", (), {}, {}, frozenset(), (), False)
 
 
 def deltas(
@@ -79,9 +79,10 @@ def deltas(
     formulas: frozenset[Identity],
     now: str,
     order: tuple[str, ...],
-    whole: tuple[bool, bool],
+    candidates: tuple[int, ...],
+    closures: bool,
 ) -> Deltas:
-    """Return the changed lines of a calculation; `whole` says whether its selection and its closures differ."""
+    """Return the changed lines of a calculation; rows of candidates and closures are those that differ now."""
     values: dict[tuple[int, Key], str] = {}
     others: dict[int, str] = {}
     for identity, number in since.items():
@@ -91,8 +92,8 @@ def deltas(
         elif place is not None:
             values[_slot(place)] = number
     changed = frozenset(_slot(places[one]) for one in formulas if one[0] in ("given", "value"))
-    plain = (now, order, tuple(sorted(since.items())), tuple(sorted(formulas)), *whole)
-    return Deltas(now, order, values, others, changed, *whole, plain)
+    plain = (now, order, tuple(sorted(since.items())), tuple(sorted(formulas)), candidates, closures)
+    return Deltas(now, order, values, others, changed, candidates, closures, plain)
 
 
 def _slot(place: Place) -> tuple[int, Key]:
@@ -117,9 +118,8 @@ def marked(item: Item, blocks: tuple[Block, ...], told: Told, found: Deltas) -> 
             return (_with(first, found.of((given.slot, ()) for given in item.givens)), *rest)
         case SayRows():
             return (_set(first, item, told, found), *rest)
-        case SayChoice(selection=selection):
-            used = sum(one.place < selection.used for one in selection.tried)
-            return (_table(first, {used: found.now if found.selection else ""}), *rest)
+        case SayChoice():
+            return (_table(first, dict.fromkeys(found.candidates, found.now)), *rest)
         case SayLine():
             return (_with(first, found.of([(item.worked.line.slot, item.worked.key)])), *rest)
         case SayFormula():

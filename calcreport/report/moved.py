@@ -121,6 +121,9 @@ def flip_words(difference: Difference) -> tuple[str, ...]:
         found.append(_selection(first, second))
     if difference.files:
         found.append(f"template text changed: {', '.join(difference.files)}")
+    if difference.other("headings"):
+        told = [words for words in second.headings if words not in first.headings]
+        found.append(f"told in full now: {', '.join(told)}" if told else "fewer rows told in full")
     found += [words for field, words in _OTHER if difference.other(field)]
     if difference.reordered:
         found.append("lines in another order")

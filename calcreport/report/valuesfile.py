@@ -17,7 +17,7 @@ from calcreport.core.version import PROGRAM
 from calcreport.history.model import Kind, Revisions
 from calcreport.report.forms import CalculationForms, proof_unit
 from calcreport.report.governing import governing
-from calcreport.report.items import SayProof, Script
+from calcreport.report.items import SayHeading, SayProof, Script
 from calcreport.report.summary import dispositions
 from calcreport.report.value_lines import Finished, LineWriter
 
@@ -45,6 +45,7 @@ def values_file(finished: Finished) -> dict[str, Any]:
             "verdict": worked.verdict,
             "governing": chief.line.name if chief is not None else None,
             "stopped": worked.stop.told if worked.stop else None,
+            "headings": [item.text for item in finished.scripts[mark].items if isinstance(item, SayHeading)],
             "lines": [writer.line(entry, place) for entry, place in lines if not isinstance(place, WorkedCheck)],
             "closures": _closures(finished.scripts[mark], finished.forms[mark]),
             "checks": [writer.check(entry, place) for entry, place in lines if isinstance(place, WorkedCheck)],

@@ -55,6 +55,7 @@ class LineWriter:
         mark = worked.calculation.mark
         self.worked, self.values, self.slots = worked, worked.values, worked.plan.slots
         self.script, self.forms, self.scripts = finished.scripts[mark], finished.forms[mark], finished.scripts
+        self.made: dict[tuple[int, Key], dict[str, Any]] = {}
         self.linked = linked_values(worked)
         self.required = {id(i.worked): i.number for i in self.script.items if isinstance(i, SayRequire)}
         self.unknowns = {(one.line.slot, one.key): one for one in unknowns_below(worked.lines)}
@@ -72,8 +73,7 @@ class LineWriter:
                 sides = joint_comparisons(place.line.condition)
                 beside = [self.side(test, place.open, side) for test in sides for side in ("left", "right")]
             case WorkedGives():
-                found = self.value(place.line.slot, place.key)
-                found["formula"] = entry.formula
+                found = self.value(place.line.slot, place.key) | {"formula": entry.formula}
                 beside = self.beside(place)
             case slot, key:
                 found = self.value(slot, key) | ({"formula": entry.formula} if entry.formula else {})
@@ -124,7 +124,13 @@ class LineWriter:
         return figure_text(figure) if figure is not None else ""
 
     def value(self, slot: int, key: Key) -> dict[str, Any]:
-        """Return a value with its number, printed form and rows."""
+        """Return a value with its number, printed form and rows; made once, as many formulas take it."""
+        found = self.made.get((slot, key))
+        if found is None:
+            found = self.made[slot, key] = self._value(slot, key)
+        return found
+
+    def _value(self, slot: int, key: Key) -> dict[str, Any]:
         symbol = self.slots[slot]
         unit = symbol.symbol.unit or ONE
         value = self.values.get(slot, key)

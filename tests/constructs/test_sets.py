@@ -1,0 +1,108 @@
+"""Points at equal distances, rows worked once in a table, and a method with its closures: text and places by hand."""
+
+from __future__ import annotations
+
+import pytest
+
+from tests.constructs.finished import Sheet, finish
+
+SPACED = """\
+symbols:
+  l: {unit: ft, says: span}
+  w: {unit: kip/ft, says: load}
+  x: {unit: ft, says: place}
+  M: {unit: kip*ft, says: moment}
+  M_m: {unit: kip*ft, says: greatest}
+given: {l: , w: }
+lines:
+  - {rows: point, cite: geometry, spaced: {symbol: x, from: '0', to: l, count: 5}}
+  - each: point
+    table: [x, M]
+    lines: [{gives: M, formula: 'w*x*(l - x)/2', cite: statics}]
+  - {gives: M_m, formula: 'max(M over point)', cite: statics}
+"""
+# 2 kip/ft on 10 ft: 2(2.5)(7.5)/2 = 18.75, 2(5)(5)/2 = 25
+POINTS = {
+    3: "place, 5 values in equal steps x from 0 ft to l = 10 ft geometry 1",
+    4: "moment M = w x(l − x) 2 statics 1 2 3",
+    5: "point x ft M kip·ft 1 0 0 2 2.5 18.75 3 5 25 4 7.5 18.75 5 10 0",
+    6: "greatest, point 3 Mm = max point M = 25 kip·ft statics 4",
+}
+METHOD = """\
+symbols:
+  l: {unit: ft, says: span}
+  w: {unit: kip/ft, says: load}
+  EI: {unit: kip*ft^2, says: stiffness}
+  x: {unit: ft, says: place}
+  V: {unit: kip, says: shear}
+  M: {unit: kip*ft, says: moment}
+  z: {unit: ft, says: place of the support}
+  R: {unit: kip, says: reaction}
+given: {EI: , span: {rows: {l: , w: }, says: spans}}
+lines:
+  - method: member on supports
+    with: {spans: span, l: l, w: w, EI: EI, left: supported, right: supported, parts: '2'}
+    gives: {station: stations, x: x, V: V, M: M, support: supports, z: x_R, R: R}
+    cite: statics
+"""
+# two spans of 8 ft under 2 kip/ft: w l/8 = 2, so the end reactions are 3(2)(8)/8 = 6 and the middle one 10(2)(8)/8 = 20 kip;
+# over the middle support -w l^2/8 = -16, at midspan 6(4) - 2(4)(2) = 8 kip ft; the shears there 6 - 8 = -2 and 10 - 8 = 2
+MEMBER = {
+    4: "station x ft V kip M kip·ft 3 1.0 0 6 0 1.1 4 −2 8 1.2 8 −10 −16 2.0 8 10 −16 2.1 12 2 8 2.2 16 −6 0",
+    5: "support z ft R kip 3 1 0 6 2 8 20 3 16 6",
+}
+# the sums that prove it: 6 + 20 + 6 - 2(16) = 0, greatest term 20; 20(8) + 6(16) - 16(4) - 16(12) = 0, greatest term 192;
+# the slopes over the middle support are both zero, those at the ends w l^3/(48 EI) = 1024/432000 = 0.002370
+CLOSURES = {
+    6: "forces: reactions − loads = 0.00000 kip of 20.00 kip 3",
+    7: "moments about the left end: of reactions − of loads = 0.0000 kip·ft of 192.0 kip·ft 3",
+    8: "continuity: largest difference of the slopes left and right of a support = 0.000000000 of 0.002370 3",
+}
+
+
+@pytest.fixture(scope="module")
+def points(tmp_path_factory: pytest.TempPathFactory) -> Sheet:
+    return finish(tmp_path_factory.mktemp("points"), SPACED, "{l: 10 ft, w: 2 kip/ft}")
+
+
+@pytest.fixture(scope="module")
+def member(tmp_path_factory: pytest.TempPathFactory) -> Sheet:
+    spans = "[{name: a, l: 8 ft, w: 2 kip/ft}, {name: b, l: 8 ft, w: 2 kip/ft}]"
+    return finish(tmp_path_factory.mktemp("member"), METHOD, f"{{EI: 9000 kip*ft^2, span: {spans}}}")
+
+
+@pytest.mark.parametrize("number", sorted(POINTS))
+def test_points_in_reading_order(points: Sheet, number: int) -> None:
+    assert points.lines[number] == POINTS[number]
+
+
+@pytest.mark.parametrize("number", sorted(MEMBER))
+def test_what_a_method_gives_in_reading_order(member: Sheet, number: int) -> None:
+    assert member.lines[number] == MEMBER[number]
+
+
+@pytest.mark.parametrize("number", sorted(CLOSURES))
+def test_the_sums_that_prove_a_method_stand_below_it(member: Sheet, number: int) -> None:
+    assert member.lines[number] == CLOSURES[number]
+
+
+def test_a_table_begins_where_the_words_of_lines_do(points: Sheet) -> None:
+    # one left edge of the work lane: common practice of typesetting
+    words = points.row("moment M")
+    head = points.row("point x ft M kip·ft")
+    lanes = points.frame.lanes
+    assert lanes is not None
+    edges = [min(g.left for g in row if g.left > lanes[0] and g.text.strip()) for row in (words, head)]
+    assert edges[0] == pytest.approx(edges[1], abs=0.1)
+
+
+def test_a_minus_hangs_left_of_the_digits_of_its_column(member: Sheet) -> None:
+    # digits of one column end at one edge, signs before them: common practice of tables
+    rows = [member.row("1.1 4 −2 8"), member.row("2.1 12 2 8")]
+    ends = []
+    for row in rows:
+        glyphs = [g for g in row if g.text.strip()]
+        text = "".join(g.text for g in glyphs)
+        at = text.index("−2") + 1 if "−2" in text else text.index("128") - 0 if "128" in text else text.rindex("28")
+        ends.append(glyphs[at].right)
+    assert ends[0] == pytest.approx(ends[1], abs=0.1)

@@ -237,7 +237,7 @@ class Filling:
     def _end_cloud(self) -> None:
         if self.round is not None:
             mark, top, foot = self.round
-            self.sheets[-1].append(cloud(mark.left, top - mark.out, mark.right, foot + mark.out))
+            self.sheets[-1].append(cloud(mark.left, top + mark.inside[0], mark.right, foot - mark.inside[1]))
             self.round = None
 
     def _put_monster(self, piece: Piece) -> None:

@@ -9,7 +9,7 @@ from __future__ import annotations
 from dataclasses import dataclass, replace
 
 from calcreport.layout.kit import EQUALS_GAP, HANG, INDENT, SYMBOL_CAP, Kit
-from calcreport.layout.marks import OUT_OF_ROW
+from calcreport.layout.marks import IN_ROW
 from calcreport.layout.model import Anchor, Box, Item, Placed
 from calcreport.layout.pieces import Piece, Rows
 from calcreport.layout.sheet import Lane
@@ -75,7 +75,7 @@ def _set_row(kit: Kit, row: GivenRow, columns: _Columns) -> Piece:
     height = max(rows.y, _source(kit, row, baseline, items))
     if row.delta:
         items.extend(kit.marks.delta(row.delta, height))
-    cloud = kit.marks.cloud(row.delta, lane, OUT_OF_ROW)
+    cloud = kit.marks.cloud(row.delta, lane, IN_ROW)
     return Piece(height, tuple(items), closing=(kit.rule(lane, height),), cloud=cloud)
 
 

@@ -17,8 +17,10 @@ from calcreport.report.model import Reference, SourceLane
 
 #: Gap above a numbered line.
 GAP = 2.6
-#: Line weight of a revision cloud, and how far it reaches beyond a line and beyond a row between rules.
-CLOUD, OUT, OUT_OF_ROW = 0.5, 0.0, 0.9
+#: Line weight of a revision cloud.
+CLOUD = 0.5
+#: How far its edges stand inside a line, and inside a row between rules, above and below.
+IN_LINE, IN_ROW = (0.6, 0.6), (1.1, 0.2)
 #: Rise of a cloud's bow at five points along it.
 _BOW = (0.0, 0.76, 1.24, 1.24, 0.76)
 #: Radius of the tick ring a checker fills by pencil.
@@ -66,7 +68,7 @@ class Marks:
         height = max(height, foot)
         if delta:
             items.extend(self.delta(delta, height))
-        return Piece(height, tuple(items), GAP, cloud=self.cloud(delta, lane, OUT))
+        return Piece(height, tuple(items), GAP, cloud=self.cloud(delta, lane, IN_LINE))
 
     def number(self, number: int) -> Box:
         """Return the number and the ring beside it, left and right of the axis of the number lane.
@@ -134,10 +136,10 @@ class Marks:
             Placed(x - label.width / 2, y + 3.2, label),
         ]
 
-    def cloud(self, revision: str, lane: Lane, out: float, most: float = math.inf) -> Cloud | None:
+    def cloud(self, revision: str, lane: Lane, inside: tuple[float, float], most: float = math.inf) -> Cloud | None:
         """Return the cloud round what stands in the lane, no further right than `most`; None without a revision."""
         left, right = edges(self.sheet, lane)
-        return Cloud(revision, left + 2.0, min(right - 2.0, most), out) if revision else None
+        return Cloud(revision, left + 2.0, min(right - 2.0, most), inside) if revision else None
 
 
 def cloud(left: float, top: float, right: float, foot: float) -> Stroke:

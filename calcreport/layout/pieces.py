@@ -21,8 +21,8 @@ class Cloud:
     revision: str
     left: float
     right: float
-    #: how far it reaches beyond the piece above and below
-    out: float
+    #: how far its upper and lower edge stand inside the piece, so that its bows clear the lines above and below
+    inside: tuple[float, float]
 
 
 @dataclass(frozen=True, slots=True)

@@ -13,7 +13,7 @@ from dataclasses import replace
 from calcreport.layout.grid import ABOVE, BELOW, FAINT, GUTTER, LETTERS, Grid, Letters, aligned, edge, joined
 from calcreport.layout.kit import Kit
 from calcreport.layout.long_rows import paragraphs, set_long_row
-from calcreport.layout.marks import OUT_OF_ROW, loud_side
+from calcreport.layout.marks import IN_ROW, loud_side
 from calcreport.layout.model import Anchor, Item, Placed
 from calcreport.layout.pieces import Piece, Rows
 from calcreport.layout.sheet import HAIRLINE, OUTLINE, Lane
@@ -204,5 +204,5 @@ def _row(kit: Kit, grid: Grid, row: TableRow, again: Piece) -> Piece:
         items.append(loud_side(kit.sheet, rows.y))
     if row.delta:
         items.extend(kit.marks.delta(row.delta, rows.y))
-    cloud = kit.marks.cloud(row.delta, grid.lane, OUT_OF_ROW, grid.lefts[-1] + grid.widths[-1] + 7.0)
+    cloud = kit.marks.cloud(row.delta, grid.lane, IN_ROW, grid.lefts[-1] + grid.widths[-1] + 7.0)
     return Piece(rows.y, tuple(items), again=again, closing=(edge(grid, rows.y),), cloud=cloud)

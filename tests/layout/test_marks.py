@@ -36,9 +36,9 @@ def test_every_reference_is_a_link_inside_the_source_lane(kit: Kit) -> None:
 
 
 def test_the_delta_stands_outside_the_frame_and_the_cloud_round_the_lane(kit: Kit, fonts: Fonts) -> None:
-    mark = kit.marks.cloud("2", kit.sheet.text, 1.6)
-    assert mark is not None and mark.revision == "2" and kit.marks.cloud("", kit.sheet.text, 1.6) is None
-    drawn = cloud(mark.left, -mark.out, mark.right, 40.0 + mark.out)
+    mark = kit.marks.cloud("2", kit.sheet.text, (0.5, 0.5))
+    assert mark is not None and mark.revision == "2" and kit.marks.cloud("", kit.sheet.text, (0.5, 0.5)) is None
+    drawn = cloud(mark.left, mark.inside[0], mark.right, 40.0 - mark.inside[1])
     triangle, number, round_it = inked((*kit.marks.delta("2", 40.0), drawn), fonts)
     assert triangle.left > 0 and triangle.right < kit.sheet.left
     assert triangle.left < number.left and number.right < triangle.right

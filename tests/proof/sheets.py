@@ -51,6 +51,10 @@ def read_sheet(ink: PageInk, index: int) -> SheetPage | None:
     return _Page(ink, frame, frame.lanes, index).read()
 
 
+#: line weight of revision clouds, which no other line has
+CLOUD = 0.5
+
+
 class _Page:
     """One page being read."""
 
@@ -63,12 +67,13 @@ class _Page:
         self.roof = min(strips, default=frame.top)
         self.strip = spaced(g for g in ink.glyphs if g.y > self.roof and g.y < frame.top) if strips else ""
         body = [g for g in body if g.y < self.roof]
-        self.numbers = [g for g in body if g.right <= self.left]
+        # the number of a revision stands in its triangle outside the frame
+        self.numbers = [g for g in body if frame.left <= g.left and g.right <= self.left]
         self.sources = [g for g in body if g.left >= self.right]
         self.work = [g for g in body if self.left < g.left and g.right < self.right + 1]
         self.strokes = [
             line for line in ink.lines
-            if min(line.x0, line.x1) >= self.left + 1 and max(line.x0, line.x1) <= self.right + 1
+            if abs(line.width - CLOUD) > 0.01 and min(line.x0, line.x1) >= self.left + 1 and max(line.x0, line.x1) <= self.right + 1
             and frame.block + 1 < min(line.y0, line.y1) and max(line.y0, line.y1) < self.roof
         ]  # fmt: skip
         self.areas = [

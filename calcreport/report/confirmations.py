@@ -292,6 +292,7 @@ class _Lines:
         if copied is not None:
             self.digits.join(name, copied)
             self.forms.copied.add(name)
+            self.order_chosen(node, inputs, copied)
             return
         confirm = self.confirming(work or self.forms.worked.compiled(node), inputs, opened)
         ids = tuple(i for _, _, i in inputs)
@@ -371,6 +372,15 @@ class _Lines:
             if self.values.number(other, other_key) == value and other_unit.scale == unit.scale:
                 return name
         return None
+
+    def order_chosen(self, node: Expression, inputs: list[tuple[int, Key, Id]], chosen: Id) -> None:
+        """Let the value that a max or min takes be the greatest or least in print too."""
+        sign = {"max": ">=", "min": "<="}.get(node.function) if isinstance(node, Call | Over) else None
+        if sign is None or (isinstance(node, Over) and node.where is not None):
+            return
+        for _, _, other in inputs:
+            if self.digits.root(other) != self.digits.root(chosen):
+                self.digits.need_order(Order(chosen, other, sign))
 
     def confirming(
         self, work: Work, inputs: list[tuple[int, Key, Id]], opened: Opened

@@ -264,7 +264,9 @@ class Digits:
             open_names = [n for n in (order.left, order.right) if not self._full(self.figure(n))]
             if not open_names:
                 break
-            for name in open_names:
+            # the coarser one first: 30.4 beside 30.36 becomes 30.36
+            fewest = min(self.figure(name).places for name in open_names)
+            for name in (name for name in open_names if self.figure(name).places == fewest):
                 self._gain(self.root(name))
                 changed.append(self.root(name))
         return changed

@@ -56,7 +56,8 @@ def find_path(worked: Worked, path: str, span: Span, problems: Problems) -> tupl
     place = slot, tuple(key)
     if values.get(*place) is None:
         problems.add("unknown-name", span, f"`{symbol}` of {mark} was not worked", expected="a value on its sheets",
-                     found="a branch not taken, or a value that may be absent")  # fmt: skip
+                     found=f"{mark} stopped: {worked.stop.told}" if worked.stop else
+                     "a branch not taken, or a value that may be absent")  # fmt: skip
         return None
     return place
 

@@ -67,6 +67,11 @@ def least_margins(project: WorkedProject, progress: Callable[[int, int], None]) 
     return tuple(sorted(found, key=lambda pair: pair[1].share))
 
 
+def is_judged(margin: Margin, end: float, worked: Worked) -> bool:
+    """Tell whether the check has a verdict where a value is moved to; False where the calculation stops before it."""
+    return margin.check in _moved(worked, Program(worked.plan), (margin.slot, margin.key), end)
+
+
 def _judged(margin: Margin, worked: Worked, program: Program) -> Margin | None:
     """Return a margin without the ways that end in no verdict; None where neither is left."""
     ways = [

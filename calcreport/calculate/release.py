@@ -36,6 +36,15 @@ def hold_release(project: WorkedProject, problems: Problems) -> None:
 
 def _hold_checks(worked: Worked, said: set[str], status: str, problems: Problems) -> None:
     told: set[str] = set()
+    if worked.stop is not None and not any(check.verdict == "not evaluated" for check in worked.checks):
+        problems.add(
+            "not-ready",
+            worked.calculation.span,
+            f"`{worked.calculation.mark}` is not evaluated to its end, and the status is `{status}`",
+            expected="a calculation that runs to its end",
+            found=worked.stop.told,
+            hint="correct what it is given, or use a template that covers it",
+        )
     for member in worked.members:
         for check in member.checks:
             name = f"{member.mark}.{check.line.name}"

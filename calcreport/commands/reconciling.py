@@ -11,7 +11,7 @@ from collections import Counter
 from collections.abc import Iterator
 from fractions import Fraction
 
-from calcreport.calculate.model import BarCallout, Member
+from calcreport.calculate.model import BarCallout, Key, Member
 from calcreport.core.problems import Problems
 from calcreport.core.quantity import Amount, read_in_unit
 from calcreport.core.record import made, record, state
@@ -97,9 +97,12 @@ class Reconciler:
         """Compare one member with its row."""
         self.marks += 1
         names = names_of(member)
+        done: set[tuple[int, Key]] = set()
         for name, one in names.items():
             use = self.use(member, name, one)
-            if use is not None:
+            # a value asked for by a short name too is compared once
+            if use is not None and (one.slot, one.key) not in done:
+                done.add((one.slot, one.key))
                 self.value(member, one, use, row)
         for name, compared in (("size", self.size), ("bars", self.bars)):
             use = self.columns.named.get(name) or self.headed(name)

@@ -143,6 +143,9 @@ def _read_feet(text: str) -> Amount | None:
             return None
         inches += Fraction(int(top), int(under))
     if feet:
+        # 24 ft 13 in is a slip, and so is 24 ft -6 in, which might mean either way
+        if inches >= 12 or re.search(r"\s-\d", text.lstrip(" +-")):
+            return None
         inches += 12 * Fraction(match["feet"])
     sign = -1 if match["sign"] == "-" else 1
     typed = _FOOT if feet else _INCH

@@ -29,6 +29,9 @@ from calcreport.report.statuses import STATUS_TEXTS
 from calcreport.report.summary import Summary, SummarySheets, dispositions, result_words, summarise
 from calcreport.report.told import SymbolForms, Told
 
+#: how the strip over a calculation begins that stopped
+_STOPPED = "NOT EVALUATED TO THE END: "
+
 
 @dataclass(frozen=True, slots=True)
 class Telling:
@@ -135,9 +138,7 @@ def _report(
 
 
 def _entry(project: WorkedProject, part: Part) -> IndexEntry:
-    return IndexEntry(
-        part.mark, part.title, part.mark, "NG" if part.strip else "", part.facts.revision, part.facts.date
-    )
+    return IndexEntry(part.mark, part.title, part.mark, _flag(part), part.facts.revision, part.facts.date)
 
 
 def _front(
@@ -200,7 +201,7 @@ def _strip(worked: Worked, script: Script) -> str:
         words = ", ".join(_failed(script, name, found) for name, found in failed.items())
         count = sum(len(found) for found in failed.values())
         return f"{count} CHECK{'S' if count > 1 else ''} NG IN THIS CALCULATION: {words}"
-    return "NOT EVALUATED TO THE END: " + worked.stop.told if worked.stop else ""
+    return _STOPPED + worked.stop.told if worked.stop else ""
 
 
 def _failed(script: Script, name: str, found: list[tuple[Member, WorkedCheck]]) -> str:
@@ -209,3 +210,10 @@ def _failed(script: Script, name: str, found: list[tuple[Member, WorkedCheck]]) 
     shared = found[0][0].place[0] >= 0
     of = f" of {' '.join(member.mark for member, _ in found)}" if shared else ""
     return f"line {lines[0]} {name}{of}"
+
+
+def _flag(part: Part) -> str:
+    """Return what the index says beside a part: an NG in it, or that it did not run to its end."""
+    if not part.strip:
+        return ""
+    return "not evaluated" if part.strip.startswith(_STOPPED) else "NG"

@@ -5,6 +5,7 @@ A worked project in, blocks and cover facts out. Texts are cautions and records;
 
 from __future__ import annotations
 
+import re
 from dataclasses import dataclass
 
 from calcreport.calculate.model import WorkedProject, WorkedText
@@ -215,9 +216,11 @@ def echo(files: tuple[Source, ...]) -> tuple[Block, ...]:
 
 
 def _kept(text: str) -> str:
-    """Keep the indent of a line of a file."""
-    bare = text.expandtabs(4).lstrip(" ")
-    return "\N{NO-BREAK SPACE}" * (len(text.expandtabs(4)) - len(bare)) + bare
+    """Keep the blanks of a line of a file: its indent, and where several stand together."""
+    bare = text.expandtabs(4)
+    indent = len(bare) - len(bare.lstrip(" "))
+    rest = re.sub(r" {2,}", lambda run: "\N{NO-BREAK SPACE}" * (len(run[0]) - 1) + " ", bare[indent:])
+    return "\N{NO-BREAK SPACE}" * indent + rest
 
 
 def disclosure(project: WorkedProject, evidence: tuple[str, ...]) -> tuple[Block, ...]:

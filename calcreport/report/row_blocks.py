@@ -7,12 +7,14 @@ from __future__ import annotations
 
 from calcreport.calculate.model import (
     PlannedGives,
+    WorkedCheck,
     WorkedGives,
 )
 from calcreport.core.expression import Expression, Name, Number
 from calcreport.report.below import arms_below, checks_below
 from calcreport.report.digits import number_text
 from calcreport.report.display import row_words, show_row
+from calcreport.report.governing import rank
 from calcreport.report.items import SayFormula, SayMade, SayTable
 from calcreport.report.model import (
     Block,
@@ -80,14 +82,17 @@ class RowBlocks:
             cells: list[Words] = [(row_words(row_name),)]
             for slot in item.columns:
                 cells.append(self.told.cell(slot, self.told.key(slot, opened)))
-            by_name = {check.line.name: check for check in checks_below(each.rows[place])}
+            # a check may stand in rows of its own inside this one: the worst of them is this row's
+            by_name: dict[str, WorkedCheck] = {}
+            for check in sorted(checks_below(each.rows[place]), key=rank):
+                by_name[check.line.name] = check
             failed = False
             for check_name in item.checks:
-                check = by_name.get(check_name)
-                ratio = self.forms.ratio(check) if check else None
-                failed = failed or (check is not None and check.verdict == "NG")
-                text = number_text(ratio) if ratio else check.verdict if check else "–"
-                cells.append((f"{text} NG" if check and check.verdict == "NG" and ratio else text,))
+                worst = by_name.get(check_name)
+                ratio = self.forms.ratio(worst) if worst else None
+                failed = failed or (worst is not None and worst.verdict == "NG")
+                text = number_text(ratio) if ratio else worst.verdict if worst else "–"
+                cells.append((f"{text} NG" if worst and worst.verdict == "NG" and ratio else text,))
             emphasis: Emphasis = "loud" if failed else "governing" if place == item.governing else ""
             rows.append(TableRow(tuple(cells), emphasis))
         return Table(tuple(columns), tuple(rows), (), item.number, self.told.anchor(item.number))

@@ -52,6 +52,14 @@ def members_of(project: WorkedProject) -> tuple[Member, ...]:
     return tuple(member for worked in project.calculations for member in worked.members)
 
 
+def stopped(project: WorkedProject) -> tuple[Worked, ...]:
+    """Return the calculations that stopped without a check that could say so."""
+    return tuple(
+        worked for worked in project.calculations
+        if worked.stop is not None and not any(check.verdict == "not evaluated" for check in worked.checks)
+    )  # fmt: skip
+
+
 def summarise(project: WorkedProject, entries: tuple[RegisterEntry, ...]) -> Summary:
     """Return the counts."""
     failed, pending, checks = [], 0, 0
@@ -61,6 +69,8 @@ def summarise(project: WorkedProject, entries: tuple[RegisterEntry, ...]) -> Sum
             pending += check.verdict == "not evaluated"
             if check.verdict == "NG":
                 failed.append((member.mark, check.line.name))
+    # a calculation that stopped before any check of its own leaves something open too: what others take from it
+    pending += len(stopped(project))
     open_count = sum(entry.state.startswith("to be") for entry in entries)
     return Summary(len(project.calculations), checks, tuple(failed), pending, not_covered(project), open_count)
 
@@ -143,6 +153,10 @@ class SummarySheets:
                     ratio, where = self.ratio(check, mark), self.place(check, mark)
                     cells = ((member.mark,), (check.line.name,), (words,), (ratio,), where)
                     rows.append(TableRow(cells, "loud"))
+        for worked in stopped(self.project):
+            words = f"not evaluated to the end: {worked.stop.told if worked.stop else ''}"
+            mark = worked.calculation.mark
+            rows.append(TableRow(((mark,), ("calculation",), (words,), ("",), (mark,)), "loud"))
         for mark, words in headlines(self.project.calculations):
             rows.append(TableRow(((mark,), ("selection",), (words,), ("",), (mark,)), "loud"))
         for entry in entries:
@@ -292,6 +306,8 @@ def summary_lines(project: WorkedProject, forms: dict[str, CalculationForms], su
     lines += [f"{mark:<8} selection: {words}" for mark, words in headlines(project.calculations)]
     for member in members_of(project):
         check, title = governing(member), member.worked.calculation.title
+        if member.worked.stop is not None and member.verdict == "not evaluated":
+            lines.append(f"{member.mark:<8} stopped: {member.worked.stop.told}")
         if check is None:
             lines.append(f"{member.mark:<8} {'':>8}      {title}")
             continue

@@ -50,3 +50,25 @@ def test_an_uncovered_limit_state_stops_it(tmp_path: Path) -> None:
 def test_an_open_assumption_stops_it(tmp_path: Path) -> None:
     assert slugs(tmp_path, "1 in", more="assumptions: [{says: dry, to be verified: yes, by: owner}]\n") == ["not-ready"]
     assert slugs(tmp_path, "1 in", more="assumptions: [{says: dry, to be verified: no}]\n") == []
+
+
+def test_a_calculation_that_stopped_without_a_check_stops_it_too(tmp_path: Path) -> None:
+    template = """\
+symbols: {a: {unit: in, says: a length}, c: {unit: in, says: a length}}
+given: {a: }
+lines:
+  - {require: 'a <= 2 in', says: too long, cite: geometry}
+  - {gives: c, formula: '2*a', cite: geometry}
+"""
+
+    def found(a: str, status: str) -> tuple[list[str], int]:
+        path = write_small(tmp_path, template, f"{{a: {a}}}")
+        path.write_text(path.read_text().replace("status: preliminary", f"status: {status}"))
+        opened = open_project(str(path))
+        assert isinstance(opened, Opened)
+        package = report(opened.world, opened.source)
+        return [p.slug for p in package.problems], package.composed.summary.not_evaluated if package.composed else -1
+
+    assert found("3 in", "for permit") == (["not-ready"], -1)
+    assert found("3 in", "for review") == ([], 1)
+    assert found("1 in", "for permit") == ([], 0)

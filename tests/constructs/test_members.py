@@ -119,3 +119,21 @@ def test_a_word_of_a_member_says_why_a_branch_holds(tmp_path: Path) -> None:
     sheet = finish(tmp_path, WORDED, f"{{}}, members: [{members}]")
     # 2(4) = 8 governs over 3
     assert "member T8, which governs Since end is free:" in sheet.lines[1]
+
+
+LAYERED = """\
+symbols:
+  a: {unit: in, says: a length}
+given: {bar: {rows: {a: }}}
+lines:
+  - each: bar
+    table: [a]
+    lines: [{check: length, holds: 'a <= 10 in', cite: geometry}]
+"""
+
+
+def test_a_check_in_rows_of_a_member_is_told_by_its_worst_row(tmp_path: Path) -> None:
+    members = "{mark: T7, bar: [{a: 8 in}, {a: 3 in}]}, {mark: T8, bar: [{a: 11 in}, {a: 2 in}]}"
+    sheet = finish(tmp_path, LAYERED, f"{{}}, members: [{members}]")
+    # T7: 8/10 and 3/10; T8: 11/10 and 2/10, the last row of neither is its worst
+    assert "member length T7 0.800 T8 1.100 NG" in " ".join(sheet.lines.values())

@@ -76,3 +76,11 @@ def test_every_other_number_does(text: str) -> None:
     amount, problems = _read(text, "kip")
     assert amount is None
     assert problems.sorted()[0].slug == ("unit-mismatch" if "in" in text else "bare-number")
+
+
+@pytest.mark.parametrize("text", ["24 ft 13 in", "24 ft 12 in", "24 ft -6 in", "24' -6\""])
+def test_feet_with_a_foot_of_inches_or_less_than_none_are_refused(text: str) -> None:
+    problems = Problems()
+    source = Source("x", text)
+    assert read_amount(text, Span(source, 0, len(text)), problems) is None
+    assert [problem.slug for problem in problems.sorted()] != []

@@ -21,7 +21,7 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
         "core", "core.explained_files", "core.explained_issues", "core.explained_projects", "core.explained_reviews",
         "core.explained_schedules",
         "core.explained_templates", "core.explanations", "core.expression", "core.figures", "core.fontfile",
-        "core.grammar", "core.inputs", "core.kept", "core.late", "core.methods", "core.problems", "core.quantity", "core.record", "core.shows", "core.source",
+        "core.grammar", "core.inputs", "core.kept", "core.late", "core.methods", "core.problems", "core.quantity", "core.record", "core.rows", "core.shows", "core.source",
         "core.tokens", "core.units", "core.version", "core.world",
     )),
     ("methods", (

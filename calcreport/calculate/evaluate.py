@@ -53,13 +53,12 @@ from calcreport.calculate.model import (
     WorkedUnknown,
 )
 from calcreport.core.expression import Compare, Condition, Expression, Name
+from calcreport.core.rows import MOST_ROWS, fits
 from calcreport.core.source import Citation, Span
 from calcreport.methods.results import NoResult
 from calcreport.methods.roots import NoRoot, find_root
 from calcreport.methods.table import WORKS
 
-#: rows of one set at most
-MOST_ROWS = 1000
 #: what a line costs beside one row that a formula goes through
 _LINE_COST = 8
 
@@ -414,8 +413,8 @@ class _Run:
         listed = self.program.plan.sets[over].row_names if over >= 0 else ()
         found: list[tuple[tuple[str, str], ...]] = [()]
         for variable, patterns in entry.pairing:
-            fits = [name for name in names if any(_fits(name, pattern, listed) for pattern in patterns)]
-            found = [(*pairing, (variable, name)) for pairing in found for name in fits]
+            fitting = [name for name in names if fits(name, patterns, listed)]
+            found = [(*pairing, (variable, name)) for pairing in found for name in fitting]
         return found
 
     def cells(self, line: PlannedRows, number: int, pairing: dict[str, str]) -> None:
@@ -472,9 +471,3 @@ class _Run:
 
 def _no_work(values: Values) -> float:
     raise NoValue("a word has no number")
-
-
-def _fits(name: str, pattern: str, listed: tuple[str, ...]) -> bool:
-    if pattern.endswith("*"):
-        return name.startswith(pattern[:-1]) and name not in listed
-    return name == pattern

@@ -18,6 +18,7 @@ from calcreport.calculate.model import (
     split_path,
 )
 from calcreport.core.problems import Problems, listed
+from calcreport.core.rows import fits, wanted
 from calcreport.core.source import Span
 
 
@@ -120,26 +121,18 @@ def _count_fits(rows: GivenRows, names: tuple[str, ...], problems: Problems) -> 
     given = rows.given
     if given.least <= len(names) <= given.most:
         return True
-    most = "" if given.most >= 1000 else f" to {given.most}"
     problems.add("row-count", rows.linked.span if rows.linked else rows.span,
                  f"`{given.name}` would have {len(names)} rows",
-                 expected=f"{given.least}{most} rows" if most else f"{given.least} or more rows",
-                 found=f"{len(names)}")  # fmt: skip
+                 expected=wanted(given.least, given.most), found=f"{len(names)}")  # fmt: skip
     return False
 
 
 def _names_fit(rows: GivenRows, names: tuple[str, ...], problems: Problems) -> bool:
     patterns = rows.given.row_names
-    stray = next((name for name in names if patterns and not any(_fits(name, p, patterns) for p in patterns)), None)
+    stray = next((name for name in names if patterns and not fits(name, patterns, patterns)), None)
     if stray is None:
         return True
     problems.add("not-a-row", rows.linked.rows.span if rows.linked else rows.span,
                  f"`{rows.given.name}` has no row named `{stray[:40]}`", expected=listed(patterns),
                  found=stray[:40])  # fmt: skip
     return False
-
-
-def _fits(name: str, pattern: str, listed_names: tuple[str, ...]) -> bool:
-    if pattern.endswith("*"):
-        return name.startswith(pattern[:-1]) and name not in listed_names
-    return name == pattern

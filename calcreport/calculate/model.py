@@ -360,6 +360,11 @@ class Worked:
         return slot, tuple(key)
 
     @property
+    def stopped_unseen(self) -> bool:
+        """Whether it stopped without a check that could say so, as one that only gives values to others."""
+        return self.stop is not None and not any(check.verdict == "not evaluated" for check in self.checks)
+
+    @property
     def members(self) -> tuple[Member, ...]:
         """The members it stands for: itself, or the rows that like members share it by."""
         marks = self.calculation.members
@@ -463,6 +468,11 @@ class WorkedProject:
     calculations: tuple[Worked, ...]
     order: tuple[int, ...]
     fingerprint: str
+
+    @property
+    def members(self) -> tuple[Member, ...]:
+        """Every member, in order."""
+        return tuple(member for worked in self.calculations for member in worked.members)
 
 
 __all__ = [

@@ -36,7 +36,7 @@ def hold_release(project: WorkedProject, problems: Problems) -> None:
 
 def _hold_checks(worked: Worked, said: set[str], status: str, problems: Problems) -> None:
     told: set[str] = set()
-    if worked.stop is not None and not any(check.verdict == "not evaluated" for check in worked.checks):
+    if worked.stop is not None and worked.stopped_unseen:
         problems.add(
             "not-ready",
             worked.calculation.span,
@@ -67,8 +67,7 @@ def _hold_selection(worked: Worked, status: str, problems: Problems) -> None:
     if selection is None or selection.pinned:
         return
     candidate = selection.candidates[selection.used]
-    pairs = zip(candidate.values, candidate.texts, strict=True)
-    text = ", ".join(f"{value.given.name}: {text}" for value, text in pairs)
+    text = ", ".join(f"{name}: {text}" for name, text in candidate.named)
     problems.add(
         "not-ready",
         worked.calculation.span,

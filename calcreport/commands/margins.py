@@ -24,7 +24,7 @@ def run(arguments: Namespace) -> int:
     if result.problems or result.worked is None:
         return say_problems(result.problems, arguments.json)
     mark = arguments.mark
-    marks = [m.mark for w in result.worked.calculations for m in w.members]
+    marks = [member.mark for member in result.worked.members]
     marks += [w.calculation.mark for w in result.worked.calculations if w.calculation.members]
     if mark is not None and mark not in marks:
         return say_problems(one_problem("unknown-name", f"there is no calculation `{mark[:40]}`",

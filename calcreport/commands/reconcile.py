@@ -81,7 +81,7 @@ def _reconcile(arguments: Namespace, opened: Opened, project: WorkedProject, pro
     _hold_compared(found, columns, chosen, table, problems)
     if arguments.hidden != "read":
         _hold_shown(found, problems)
-    marks = {member.mark for worked in project.calculations for member in worked.members}
+    marks = {member.mark for member in project.members}
     alone = tuple((mark, row_mark(columns.mark, row).place) for mark, row in rows.items() if mark not in marks)
     return _Outcome(found, alone, tuple(member.mark for member in chosen if member.mark not in rows), aside)
 

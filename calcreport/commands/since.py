@@ -24,8 +24,7 @@ def selections(project: WorkedProject) -> dict[str, dict[str, str]]:
     for worked in project.calculations:
         if worked.selection is not None:
             candidate = worked.selection.candidates[worked.selection.used]
-            pairs = zip(candidate.values, candidate.texts, strict=True)
-            found[worked.calculation.mark] = {value.given.name: text for value, text in pairs}
+            found[worked.calculation.mark] = dict(candidate.named)
     return found
 
 

@@ -10,6 +10,7 @@ from dataclasses import replace
 
 from calcreport.core.expression import Name
 from calcreport.core.problems import Problems, listed
+from calcreport.core.rows import fits
 from calcreport.core.source import Span
 from calcreport.core.units import dimension_words
 from calcreport.plan.model import (
@@ -175,9 +176,7 @@ class _Binder:
     def hold_row(self, mark: str, row: Name, owner: RowSet) -> None:
         """Hold a row's name against the names its set can have, where they are known beforehand."""
         known = owner.row_names
-        if known and not any(
-            row.name == pattern or (pattern.endswith("*") and row.name.startswith(pattern[:-1])) for pattern in known
-        ):
+        if known and not fits(row.name, known, known):
             self.problems.add("not-a-row", row.span, f"{mark} has no row `{row.name[:40]}` in `{owner.name}`",
                               expected=listed(known), found=row.name[:40],
                               hint=self.problems.near(row.name, known))  # fmt: skip

@@ -24,6 +24,7 @@ from calcreport.core.expression import (
     rebuilt_expression,
 )
 from calcreport.core.problems import Problems, listed
+from calcreport.core.rows import fits
 from calcreport.core.source import Span
 from calcreport.plan.model import RowSet, Slot, Symbol
 from calcreport.plan.space import Context, Space
@@ -225,7 +226,7 @@ class Names:
     def hold_row(self, name: str, rows: RowSet, span: Span) -> None:
         """Report a row name that a set cannot have."""
         known = rows.row_names
-        if known and not any(_fits(name, pattern, known) for pattern in known):
+        if known and name not in known and not fits(name, known, known):
             self.problems.add("not-a-row", span, f"`{rows.name}` has no row `{name[:40]}`", expected=listed(known),
                               found=name[:40], hint=self.problems.near(name, known))  # fmt: skip
 
@@ -269,9 +270,3 @@ def _bound(node: Node, space: Space) -> Node:
             return replace(node, bound=found.index) if isinstance(found, RowSet) else node
         case _:
             return node
-
-
-def _fits(name: str, pattern: str, listed_names: tuple[str, ...]) -> bool:
-    if pattern.endswith("*"):
-        return name == pattern or (name.startswith(pattern[:-1]) and name not in listed_names)
-    return name == pattern

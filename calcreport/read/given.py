@@ -11,6 +11,7 @@ from typing import Literal
 from calcreport.core.expression import Name
 from calcreport.core.problems import Problems, listed
 from calcreport.core.quantity import Amount, read_in_unit
+from calcreport.core.rows import MOST_ROWS
 from calcreport.core.units import LENGTH, NONE, Dimension, dimension_words, multiply
 from calcreport.read.fields import Fields, as_mapping, is_empty, say_not_a_word, say_not_yet
 from calcreport.read.model import Given, Range, Symbol
@@ -26,7 +27,6 @@ OUTPUTS: dict[str, Dimension] = {
 GIVEN_KINDS = (*KINDS, "bars", "spaced bars")
 #: kinds the language has and this version does not read
 _LATER = ("station",)
-MOST_ROWS = 1000
 _ONE_SIDED = re.compile(r"(>=|<=|>|<)\s*(.+)")
 _INTERVAL = re.compile(r"([\[(])\s*([^,]+),\s*([^,]+?)\s*([\])])")
 

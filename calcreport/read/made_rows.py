@@ -11,10 +11,10 @@ from collections.abc import Callable
 from fractions import Fraction
 
 from calcreport.core.expression import Compare, Expression, Name, Negate, Number
+from calcreport.core.rows import MOST_ROWS
 from calcreport.core.source import Citation
 from calcreport.read.fields import Fields, as_mapping, as_scalar, is_empty
 from calcreport.read.formulas import FormulaReader
-from calcreport.read.given import MOST_ROWS
 from calcreport.read.model import Cell, Entry, MadeColumn, Rows, Spaced
 from calcreport.read.nodes import Mapping, Node, Scalar
 from calcreport.read.symbols import OWN_KEYS, hold_name

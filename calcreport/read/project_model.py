@@ -129,6 +129,11 @@ class Candidate:
     texts: tuple[str, ...]
     span: Span
 
+    @property
+    def named(self) -> tuple[tuple[str, str], ...]:
+        """What it chooses, by name, as it was typed."""
+        return tuple((value.given.name, text) for value, text in zip(self.values, self.texts, strict=True))
+
 
 @dataclass(frozen=True, slots=True)
 class Calculation:

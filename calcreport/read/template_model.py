@@ -1,7 +1,7 @@
 """Templates as read: symbols, given declarations and lines with parsed formulas, settled for one system and year.
 
 Every leaf has its place. Names inside formulas are not bound yet; that is the plan's work.
-The records of one language, kept in one file.
+Kept in one: records that are read together.
 """
 
 from __future__ import annotations

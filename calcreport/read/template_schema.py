@@ -7,6 +7,7 @@ from __future__ import annotations
 
 from calcreport.core.figures import FIGURES, needed_inputs
 from calcreport.core.methods import METHODS
+from calcreport.core.rows import MOST_ROWS
 from calcreport.read import bodies, cases, given, library, lines, made_rows, symbols, words
 from calcreport.read.model import SYSTEMS
 from calcreport.read.shapes import (
@@ -135,7 +136,7 @@ def _given() -> Schema:
     shapes: dict[str, Schema] = {
         **_SYMBOL, "only": _only(), "kind": _each(choice(given.GIVEN_KINDS)), "range": _WORDS, "if none": _WORDS,
         "material": _WORDS, "property": _WORDS, "rows": _each(mapping(_each(maybe(named("column given"))))),
-        "names": _NAMES, "least": _each(whole(0, given.MOST_ROWS)), "most": _each(whole(1, given.MOST_ROWS)),
+        "names": _NAMES, "least": _each(whole(0, MOST_ROWS)), "most": _each(whole(1, MOST_ROWS)),
         "over": _NAMES, "gives": _each(mapping(_each(choice(given.OUTPUTS)))),
     }  # fmt: skip
     return closed(given.KEYS, shapes)

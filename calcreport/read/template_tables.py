@@ -8,12 +8,12 @@ from __future__ import annotations
 import re
 
 from calcreport.core.problems import Problems
+from calcreport.core.rows import MOST_ROWS
 from calcreport.core.source import Source
 from calcreport.read.columns import make_table, take, text_use
 from calcreport.read.nodes import Scalar
 from calcreport.read.sheets import read_text_table
 
-MOST_ROWS = 1000
 _BESIDE = re.compile(r"[A-Za-z0-9][\w.-]*\.csv")
 
 

@@ -11,9 +11,9 @@ from dataclasses import replace
 
 from calcreport.core.expression import Name
 from calcreport.core.record import made, record, state
+from calcreport.core.rows import MOST_ROWS
 from calcreport.core.source import Span
 from calcreport.read.fields import Fields, as_mapping
-from calcreport.read.given import MOST_ROWS
 from calcreport.read.model import (
     MEMBER,
     Branches,

@@ -12,6 +12,8 @@ from typing import Protocol
 
 from calcreport.core.problems import listed
 from calcreport.core.record import record
+from calcreport.core.rows import fits
+from calcreport.core.rows import wanted as rows_wanted
 from calcreport.core.source import Span
 from calcreport.read.fields import as_items, as_mapping, as_scalar, is_empty
 from calcreport.read.links import read_linked_rows
@@ -111,10 +113,8 @@ class ValueReader(SingleReader):
         if self.problems.met > before:
             return None
         if not given.least <= len(items) <= given.most:
-            most = "" if given.most >= 1000 else f" to {given.most}"
-            wanted = f"{given.least}{most} rows" if most else f"{given.least} or more rows"
             self.problems.add("row-count", node.span.part(0, 1), f"`{given.name}` has {len(items)} rows",
-                              expected=wanted, found=f"{len(items)}")  # fmt: skip
+                              expected=rows_wanted(given.least, given.most), found=f"{len(items)}")  # fmt: skip
             return None
         names: list[str] = []
         cells: list[tuple[GivenValue, ...]] = []
@@ -158,7 +158,7 @@ class ValueReader(SingleReader):
         """Keep a row's name, or its number; a name outside the set's list or twice is a problem."""
         name = label.text if label else str(number)
         span = label.span if label else at.part(0, 1)
-        if given.row_names and not any(fits(name, pattern, given.row_names) for pattern in given.row_names):
+        if given.row_names and not fits(name, given.row_names, given.row_names):
             self.problems.add(
                 "not-a-row",
                 span,
@@ -230,10 +230,3 @@ def is_complete(values: tuple[GivenValue | GivenRows | GivenPairs, ...], givens:
     rows = [value for value in values if isinstance(value, GivenRows)]
     whole = all(is_complete(cells, value.given.columns) for value in rows for cells in value.cells)
     return whole and len(values) == len(givens) and all(len(r.names) == len(r.cells) for r in rows)
-
-
-def fits(name: str, pattern: str, row_names: tuple[str, ...]) -> bool:
-    """Tell whether a name is the listed one, or ends a stem that takes no name listed in full."""
-    if pattern.endswith("*"):
-        return name.startswith(pattern[:-1]) and name not in row_names
-    return name == pattern

@@ -29,10 +29,12 @@ LARGEST_PACKED, LARGEST_UNPACKED, MOST_SWELLING, MOST_PARTS, MOST_TAGS = 20_000_
 _SMALL = 1_000_000
 #: bounds of a sheet: rows, columns, cells of the area used
 _MOST_ROW, _MOST_COLUMN, _MOST_CELLS = 100_000, 1000, 1_000_000
-#: how the library tells of a damaged file
+#: how the archive's library tells of a damaged file
+_PACKED = (BadZipFile, zlib.error, OSError, EOFError, KeyError, ValueError, NotImplementedError, RuntimeError,
+           OverflowError)  # fmt: skip
+#: how the workbook's library does, its own asserts and slips among them: held against nothing but calls into it
 _DAMAGE = (
-    BadZipFile, zlib.error, ParseError, ExpatError, OSError, EOFError, KeyError, ValueError, TypeError, AttributeError,
-    IndexError, NotImplementedError, RuntimeError, OverflowError, AssertionError, UnboundLocalError,
+    *_PACKED, ParseError, ExpatError, TypeError, AttributeError, IndexError, AssertionError, UnboundLocalError,
 )  # fmt: skip
 _FORMULA = re.compile(rb"<(?:\w+:)?f[ />]")
 #: elements whose areas the library writes out cell by cell, and how many cells they may come to
@@ -83,11 +85,18 @@ def _open(data: bytes) -> tuple[Any, Any] | str:
         warnings.simplefilter("ignore")
         try:
             found = _inspect(data)
-            if isinstance(found, str):
-                return found
+        except _PACKED as error:
+            return _damaged(error)
+        if isinstance(found, str):
+            return found
+        try:
             return _load(data, values=True), _load(data, values=False) if found else None
         except _DAMAGE as error:
-            return f"a damaged file ({type(error).__name__})"
+            return _damaged(error)
+
+
+def _damaged(error: Exception) -> str:
+    return f"a damaged file ({type(error).__name__})"
 
 
 def _refuse(file: Scalar, found: str, problems: Problems) -> None:

@@ -12,10 +12,10 @@ from dataclasses import dataclass
 from functools import cache
 
 from calcreport.calculate.answer_model import AnswerPlace
-from calcreport.calculate.model import WorkedProject, split_path
+from calcreport.calculate.model import WorkedCheck, WorkedGives, WorkedProject, split_path
 from calcreport.core.problems import Problems
 from calcreport.read.review_model import Comment, CommentLog, OtherPlace, Pointer
-from calcreport.report.below import checks_below, gives_below
+from calcreport.report.below import below
 from calcreport.report.compose import Composed
 from calcreport.report.display import show_symbol
 from calcreport.report.items import SayTable, Script
@@ -120,8 +120,10 @@ class _Lines:
             for place, row in enumerate(table.worked.rows):
                 if place == table.governing:
                     continue
-                self.checks |= {id(one): table.number for one in checks_below(row) if one.line.name in table.checks}
-                given = [(one.line.slot, one.key) for one in gives_below(row)]
+                self.checks |= {
+                    id(one): table.number for one in below(row, WorkedCheck) if one.line.name in table.checks
+                }
+                given = [(one.line.slot, one.key) for one in below(row, WorkedGives)]
                 self.values |= {value: table.number for value in given if value[0] in table.columns}
 
 

@@ -68,8 +68,7 @@ def moved_words(selection: Selection) -> str:
 
 
 def _words(candidate: Candidate) -> str:
-    pairs = zip(candidate.values, candidate.texts, strict=True)
-    return ", ".join(f"{value.given.name} {text}" for value, text in pairs)
+    return ", ".join(f"{name} {text}" for name, text in candidate.named)
 
 
 def headlines(calculations: tuple[Worked, ...]) -> tuple[tuple[str, str], ...]:

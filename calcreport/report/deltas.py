@@ -14,7 +14,7 @@ from calcreport.calculate.model import Key, PlannedGiven, WorkedCheck, WorkedGiv
 from calcreport.core.expression import names
 from calcreport.core.record import record
 from calcreport.history.model import Identity, Place
-from calcreport.report.below import checks_below
+from calcreport.report.below import below
 from calcreport.report.items import (
     Item,
     SayCheck,
@@ -223,7 +223,7 @@ def _rows(block: Block, item: SayTable, told: Told, found: Deltas) -> Block:
     for place in range(len(each.names)):
         opened = (*each.open, (each.line.rows, place))
         slots = [(slot, told.key(slot, opened)) for slot in item.columns]
-        rows[place] = found.of(slots, checks_below(each.rows[place]))
+        rows[place] = found.of(slots, below(each.rows[place], WorkedCheck))
     return _table(block, rows)
 
 

@@ -130,8 +130,7 @@ def typed(one: Taken, worked: Worked) -> str:
 
 def members(project: WorkedProject, forms: dict[str, CalculationForms]) -> tuple[tuple[str, ...], ...]:
     """Return a row a member under `HEADINGS`."""
-    found = (member for worked in project.calculations for member in worked.members)
-    return tuple(_row(m, forms[m.worked.calculation.mark]) for m in found if callouts(m) or sizes(m))
+    return tuple(_row(m, forms[m.worked.calculation.mark]) for m in project.members if callouts(m) or sizes(m))
 
 
 def _row(member: Member, forms: CalculationForms) -> tuple[str, ...]:

@@ -11,7 +11,7 @@ from calcreport.calculate.model import (
     WorkedGives,
 )
 from calcreport.core.expression import Expression, Name, Number
-from calcreport.report.below import arms_below, checks_below
+from calcreport.report.below import arms_below, below
 from calcreport.report.digits import number_text
 from calcreport.report.display import row_words, show_row
 from calcreport.report.governing import rank
@@ -84,7 +84,7 @@ class RowBlocks:
                 cells.append(self.told.cell(slot, self.told.key(slot, opened)))
             # a check may stand in rows of its own inside this one: the worst of them is this row's
             by_name: dict[str, WorkedCheck] = {}
-            for check in sorted(checks_below(each.rows[place]), key=rank):
+            for check in sorted(below(each.rows[place], WorkedCheck), key=rank):
                 by_name[check.line.name] = check
             failed = False
             for check_name in item.checks:

@@ -26,7 +26,7 @@ from calcreport.calculate.model import (
     WorkedText,
     WorkedUnknown,
 )
-from calcreport.report.below import checks_below, figures_below, gives_below, methods_below, severity, unknowns_below
+from calcreport.report.below import below, severity
 from calcreport.report.items import (
     Item,
     SayBranch,
@@ -216,7 +216,7 @@ def _each(writer: _Writer, each: WorkedEach) -> None:
         _figures_only(writer, each)
     elif each.line.show == "every" or len(rows) <= 1:
         _rows_in_full(writer, each, name, range(len(rows)))
-    elif any(checks_below(row) for row in rows):
+    elif any(below(row, WorkedCheck) for row in rows):
         governing = max(range(len(rows)), key=lambda row: _worst(rows[row]))
         _rows_in_full(writer, each, name, [governing])
         _number_rest(writer, each)
@@ -233,17 +233,17 @@ def _each(writer: _Writer, each: WorkedEach) -> None:
 def _figures_only(writer: _Writer, each: WorkedEach) -> None:
     """Tell the figures alone; what they rest on is in the values file, under the line before them."""
     for row in each.rows:
-        for line in gives_below(row):
+        for line in below(row, WorkedGives):
             writer.line_of.setdefault((line.line.slot, line.key), writer.number)
-        for unknown in unknowns_below(row):
+        for unknown in below(row, WorkedUnknown):
             writer.line_of.setdefault((unknown.line.slot, unknown.key), writer.number)
-        writer.items.extend(SayFigure(figure) for figure in figures_below(row))
+        writer.items.extend(SayFigure(figure) for figure in below(row, WorkedFigure))
     writer.items.append(SayUnseen(each))
 
 
 def _worst(lines: tuple[WorkedLine, ...]) -> tuple[bool, float]:
     """Rank a row by its worst check: NG first, then by ratio."""
-    checks = checks_below(lines)
+    checks = below(lines, WorkedCheck)
     failed = any(check.verdict == "NG" for check in checks)
     return failed, max((severity(check) for check in checks), default=-1.0)
 
@@ -262,16 +262,16 @@ def _number_rest(writer: _Writer, each: WorkedEach) -> None:
     checks = {
         check.line.name: writer.check_line.get(id(check))
         for row in each.rows
-        for check in checks_below(row)
+        for check in below(row, WorkedCheck)
         if id(check) in writer.check_line
     }
     for row in each.rows:
-        given = [(line.line.slot, line.key) for line in gives_below(row)]
-        given += [(line.line.slot, line.key) for line in unknowns_below(row)]
-        given += [place for method in methods_below(row) for place in method.places(writer.worked.values)]
+        given = [(line.line.slot, line.key) for line in below(row, WorkedGives)]
+        given += [(line.line.slot, line.key) for line in below(row, WorkedUnknown)]
+        given += [place for method in below(row, WorkedMethod) for place in method.places(writer.worked.values)]
         for slot, key in given:
             writer.line_of.setdefault((slot, key), told.get(slot, writer.number))
-        for check in checks_below(row):
+        for check in below(row, WorkedCheck):
             writer.check_line.setdefault(id(check), checks.get(check.line.name) or writer.number)
 
 
@@ -291,7 +291,7 @@ def _formulas_once(writer: _Writer, each: WorkedEach) -> None:
 
 def _table(writer: _Writer, each: WorkedEach, governing: int) -> None:
     columns = each.line.table or tuple(_slots_given(each))
-    checks = tuple(dict.fromkeys(check.line.name for row in each.rows for check in checks_below(row)))
+    checks = tuple(dict.fromkeys(check.line.name for row in each.rows for check in below(row, WorkedCheck)))
     writer.items.append(SayTable(writer.next(), each, columns, checks, governing))
 
 

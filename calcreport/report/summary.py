@@ -47,30 +47,17 @@ class Summary:
     open_assumptions: int
 
 
-def members_of(project: WorkedProject) -> tuple[Member, ...]:
-    """Return every member of the package, in order."""
-    return tuple(member for worked in project.calculations for member in worked.members)
-
-
-def stopped(project: WorkedProject) -> tuple[Worked, ...]:
-    """Return the calculations that stopped without a check that could say so."""
-    return tuple(
-        worked for worked in project.calculations
-        if worked.stop is not None and not any(check.verdict == "not evaluated" for check in worked.checks)
-    )  # fmt: skip
-
-
 def summarise(project: WorkedProject, entries: tuple[RegisterEntry, ...]) -> Summary:
     """Return the counts."""
     failed, pending, checks = [], 0, 0
-    for member in members_of(project):
+    for member in project.members:
         for check in worst_checks(member):
             checks += check.verdict != "not applicable"
             pending += check.verdict == "not evaluated"
             if check.verdict == "NG":
                 failed.append((member.mark, check.line.name))
     # a calculation that stopped before any check of its own leaves something open too: what others take from it
-    pending += len(stopped(project))
+    pending += sum(worked.stopped_unseen for worked in project.calculations)
     open_count = sum(entry.state.startswith("to be") for entry in entries)
     return Summary(len(project.calculations), checks, tuple(failed), pending, not_covered(project), open_count)
 
@@ -143,7 +130,7 @@ class SummarySheets:
     def attention(self, summary: Summary, entries: tuple[RegisterEntry, ...]) -> list[Block]:
         """Return what needs eyes: NG, not evaluated, not covered, unverified."""
         rows: list[TableRow] = []
-        for member in members_of(self.project):
+        for member in self.project.members:
             mark = member.worked.calculation.mark
             for check in worst_checks(member):
                 if check.verdict in ("NG", "not evaluated"):
@@ -153,7 +140,7 @@ class SummarySheets:
                     ratio, where = self.ratio(check, mark), self.place(check, mark)
                     cells = ((member.mark,), (check.line.name,), (words,), (ratio,), where)
                     rows.append(TableRow(cells, "loud"))
-        for worked in stopped(self.project):
+        for worked in (one for one in self.project.calculations if one.stopped_unseen):
             words = f"not evaluated to the end: {worked.stop.told if worked.stop else ''}"
             mark = worked.calculation.mark
             rows.append(TableRow(((mark,), ("calculation",), (words,), ("",), (mark,)), "loud"))
@@ -180,9 +167,7 @@ class SummarySheets:
 
     def members(self) -> list[Block]:
         """Return a row a member with its governing check, highest ratio first."""
-        ranked = sorted(
-            members_of(self.project), key=lambda m: rank(g) if (g := governing(m)) else (0, -1.0), reverse=True
-        )
+        ranked = sorted(self.project.members, key=lambda m: rank(g) if (g := governing(m)) else (0, -1.0), reverse=True)
         rows: list[TableRow] = []
         silent: list[str] = []
         for member in ranked:
@@ -215,7 +200,7 @@ class SummarySheets:
         """Return every check of every calculation by template, and who covers what a template leaves out."""
         blocks: list[Block] = []
         groups: dict[str, list[Member]] = {}
-        for member in members_of(self.project):
+        for member in self.project.members:
             if member.checks:
                 groups.setdefault(member.worked.calculation.template.title, []).append(member)
         for title, members in groups.items():
@@ -304,7 +289,7 @@ def summary_lines(project: WorkedProject, forms: dict[str, CalculationForms], su
     """Return the check summary as a terminal shows it: a line a calculation, then the counts."""
     lines = []
     lines += [f"{mark:<8} selection: {words}" for mark, words in headlines(project.calculations)]
-    for member in members_of(project):
+    for member in project.members:
         check, title = governing(member), member.worked.calculation.title
         if member.worked.stop is not None and member.verdict == "not evaluated":
             lines.append(f"{member.mark:<8} stopped: {member.worked.stop.told}")

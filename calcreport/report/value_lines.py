@@ -22,7 +22,7 @@ from calcreport.core.expression import Compare, names
 from calcreport.core.record import record
 from calcreport.core.units import ONE
 from calcreport.history.model import Entry, Place
-from calcreport.report.below import unknowns_below
+from calcreport.report.below import below
 from calcreport.report.digits import Figure, number_text
 from calcreport.report.forms import (
     CalculationForms,
@@ -58,7 +58,7 @@ class LineWriter:
         self.made: dict[tuple[int, Key], dict[str, Any]] = {}
         self.linked = linked_values(worked)
         self.required = {id(i.worked): i.number for i in self.script.items if isinstance(i, SayRequire)}
-        self.unknowns = {(one.line.slot, one.key): one for one in unknowns_below(worked.lines)}
+        self.unknowns = {(one.line.slot, one.key): one for one in below(worked.lines, WorkedUnknown)}
         self.plain = {planned.slot: planned.given.name for planned in worked.plan.givens}
         self.given = {one.given.name: one for one in worked.calculation.given}
 

@@ -164,10 +164,9 @@ def _selection(selection: Selection) -> dict[str, Any]:
     tried: list[dict[str, Any]] = []
     for one in selection.tried:
         candidate, check = selection.candidates[one.place], governing(one.worked)
-        pairs = zip(candidate.values, candidate.texts, strict=True)
         tried.append({
             "number": one.place + 1,
-            "values": {value.given.name: text for value, text in pairs},
+            "values": dict(candidate.named),
             "verdict": one.worked.verdict,
             "governing": check.line.name if check else None,
             "ratio": check.ratio if check else None,

@@ -418,6 +418,15 @@ def test_a_write_that_fails_leaves_neither_issue_nor_row(
     assert issue(tmp_path, "--why", "again").code == 0
 
 
+def test_a_file_where_the_folder_of_issues_would_be(tmp_path: Path) -> None:
+    make(tmp_path)
+    (tmp_path / "issues").write_text("notes", encoding="utf-8")
+    before = tree(tmp_path)
+    ran = issue(tmp_path)
+    assert ran.code == 2 and "error[cannot-write]" in ran.err
+    assert tree(tmp_path) == before
+
+
 def test_a_folder_that_may_not_be_written_to(tmp_path: Path) -> None:
     make(tmp_path)
     tmp_path.chmod(0o555)

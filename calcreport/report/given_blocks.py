@@ -144,7 +144,7 @@ class GivenBlocks:
         if isinstance(value, GivenPairs):
             return self.pair_table(item, planned, value)
         assert isinstance(value, GivenRows)
-        if not planned.columns:
+        if not planned.columns or not value.names:
             return self.names_only(item, planned, value)
         if len(value.names) == 1 and not any(column.rows >= 0 for column in planned.columns):
             return self.single_row(item, planned, value)
@@ -178,8 +178,8 @@ class GivenBlocks:
         return Table(columns, tuple(rows), words, item.number, self.told.anchor(item.number), self.lane(value))
 
     def names_only(self, item: SayRows, planned: PlannedGiven, value: GivenRows) -> Block:
-        """Return a set that has no columns: its row names in one line."""
-        items: list[Formula] = []
+        """Return a set that has no columns, or no rows: its row names in one line, or that there are none."""
+        items: list[Formula] = [] if value.names else [Letters("none")]
         for name in value.names:
             items += [Letters(",  ")] if items else []
             items.append(show_row(name))

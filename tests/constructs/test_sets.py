@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from pathlib import Path
+
 import pytest
 
 from tests.constructs.finished import Sheet, finish
@@ -106,3 +108,18 @@ def test_a_minus_hangs_left_of_the_digits_of_its_column(member: Sheet) -> None:
         at = text.index("−2") + 1 if "−2" in text else text.index("128") - 0 if "128" in text else text.rindex("28")
         ends.append(glyphs[at].right)
     assert ends[0] == pytest.approx(ends[1], abs=0.1)
+
+
+EMPTY = """\
+symbols:
+  q_D: {unit: psf, says: dead load}
+  q_i: {unit: psf, says: load of a layer}
+given: {layer: {rows: {q_i: }, least: 0, says: layers of the floor}}
+lines: [{gives: q_D, formula: 'sum(q_i over layer)', cite: statics}]
+"""
+
+
+def test_a_set_without_rows_is_one_line_and_no_table(tmp_path: Path) -> None:
+    sheet = finish(tmp_path, EMPTY, "{layer: []}")
+    assert sheet.lines[1] == "layers of the floor none project file"
+    assert sheet.lines[2].endswith("= 0 psf statics")

@@ -146,7 +146,9 @@ class PartHander:
         """Let the user see what the part gives, under its stem if it has one."""
         told = {name.name for name in body.gives}
         mark = f"{line.stem}." if line.stem else ""
-        space.told |= {mark + name for name in inner.told} if not body.sees_user else set()
+        if not body.sees_user:
+            # what was handed over well is known, and a wrong use of it by the user is still to be told
+            space.told |= {mark + name for name in inner.told if name not in inner.names}
         taken: dict[str, Known] = {}
         for name, value in inner.names.items():
             if name in hidden or (told and name not in told):

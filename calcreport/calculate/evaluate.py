@@ -437,7 +437,7 @@ class _Run:
     def require(self, line: PlannedRequire) -> WorkedLine | None:
         if not self.holds(line.condition, line.span, line.cite):
             raise _Stopped(Stop(line.span, line.stops_with, line.cite.printed))
-        if line.silent:
+        if line.silent or line.quiet:
             return None
         return WorkedRequire(line, self.compared(line.condition, line.span, line.cite), self.opened)
 

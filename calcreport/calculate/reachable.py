@@ -74,6 +74,9 @@ class Reachable:
         if isinstance(line, PlannedRequire) and line.silent:
             return
         name, nodes = self.named(line), tuple(nodes_of(line))
+        if isinstance(line, PlannedRequire) and line.quiet:
+            self._add((id(line), "unmet"), "require", f"{name} not met", line.span, nodes, outer)
+            return
         own = self._add((id(line), ""), "line", name, line.span, nodes, outer)
         for node in nodes:
             self._tables(node, name, own)

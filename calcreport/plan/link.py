@@ -150,8 +150,8 @@ class _Linker:
             case Check(name, holds, says, cite, span):
                 self.checks.take(space.stem + name, span)
                 return PlannedCheck(space.stem + name, names.condition(holds, space, at), says, cite, span)
-            case Require(condition, says, cite, span):
-                return PlannedRequire(names.condition(condition, space, at), says, cite, span)
+            case Require(condition, says, cite, quiet, span):
+                return PlannedRequire(names.condition(condition, space, at), says, cite, span, quiet=quiet)
             case Drawing():
                 return plan_figure(line, names, space, at)
             case Broken(lost, inner, span):

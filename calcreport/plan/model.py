@@ -213,13 +213,16 @@ class PlannedCheck:
 
 @dataclass(frozen=True, slots=True)
 class PlannedRequire:
-    """A condition to go on; a `silent` one, the range of what a part is handed, is printed only where it stops."""
+    """A condition to go on."""
 
     condition: Condition
     says: str
     cite: Citation
     span: Span
+    #: the range of what a part is handed, which no author wrote: printed only where it stops
     silent: bool = False
+    #: printed only where it stops, at the wish of its author
+    quiet: bool = False
 
     @property
     def stops_with(self) -> str:

@@ -42,7 +42,7 @@ KINDS: dict[str, tuple[str, ...]] = {
     "heading": (), "note": ("cite",), "caution": ("cite",), "assume": ("cite",), "use": ("cite",),
     "gives": ("formula", "branches", *OWN_KEYS, "cite", "as cited"),
     "branches": (), "rows": ("columns", "list", "spaced", "file", "says", "cite"), "each": ("lines", "table", "show"),
-    "part": ("as", "same", "with"), "check": ("holds", "says", "cite"), "require": ("says", "cite"),
+    "part": ("as", "same", "with"), "check": ("holds", "says", "cite"), "require": ("says", "cite", "show"),
     "figure": ("with",), "method": ("with", "gives", "as", "cite"),
     "by another method": ("method", "with", "output", "within", "cite"),
     "unknown": ("between", "satisfies", "lines", *OWN_KEYS),
@@ -50,6 +50,8 @@ KINDS: dict[str, tuple[str, ...]] = {
 #: keys of a case of one value, and of a case that holds lines
 ARM_KEYS, BRANCH_KEYS = ("when", "formula", "otherwise"), ("when", "lines", "otherwise", "says")
 SHOWN = ("every", "figure")
+#: a requirement may be printed only where it is not met
+REQUIRED_SHOWN = ("unmet",)
 MOST_LINES = 400
 
 
@@ -243,7 +245,8 @@ class LineReader:
         condition = self.formulas.condition(fields.node_of("require"))
         says = fields.text("says", required=True)
         cite = read_cite(fields, self.document, self.problems)
-        return Require(condition, says, cite, fields.span) if condition is not None else None
+        quiet = fields.choice("show", REQUIRED_SHOWN) == "unmet"
+        return Require(condition, says, cite, quiet, fields.span) if condition is not None else None
 
     def figure(self, fields: Fields) -> Line | None:
         kind = fields.scalar("figure", required=True)

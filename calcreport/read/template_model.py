@@ -259,6 +259,8 @@ class Require:
     condition: Condition
     says: str
     cite: Citation
+    #: printed only where it is not met
+    quiet: bool
     span: Span
 
 

@@ -183,7 +183,7 @@ _SHAPES: dict[str, dict[str, Schema]] = {
     "each": {"each": _WORDS, "lines": _LINES, "table": _NAMES, "show": _each(choice(lines.SHOWN))},
     "part": {"part": _WORDS, "as": _each(text(_NAME)), "same": _NAMES, "with": _HANDED},
     "check": {"check": _WORDS, "holds": _FORMULA},
-    "require": {"require": _FORMULA},
+    "require": {"require": _FORMULA, "show": _each(choice(lines.REQUIRED_SHOWN))},
     "figure": {"figure": choice(FIGURES), "with": _HANDED},
     "method": {"method": choice(METHODS), "with": _HANDED, "gives": _each(mapping(_WORDS)), "as": _each(text(_NAME))},
     "by another method": {"by another method": _WORDS, "method": choice(METHODS), "with": _HANDED, "output": _WORDS,

@@ -40,6 +40,23 @@ CONSTRUCTS: dict[str, tuple[str, dict[int, str], int]] = {
         {3: "Required b = 12 in. ≥ 10 in. and h = 18 in. ≥ 10 in. 1.1 1 2"},
         0,
     ),
+    "require shown where it is not met": (
+        HEAD
+        + "  - {require: 'h >= b', says: upright sections only, cite: '1.1', show: unmet}\n"
+        + "  - {gives: x, formula: 'h - b', cite: geometry}\n",
+        # 18 - 12 = 6
+        {3: "distance x = h − b = 18 − 12 = 6 in. geometry 1 2"},
+        0,
+    ),
+    "require shown, as it is not met": (
+        HEAD + "  - {require: 'h <= b', says: flat sections only, cite: '1.1', show: unmet}\n",
+        {
+            0: "NOT EVALUATED TO THE END: requirement not met: flat sections only",
+            2: GIVEN[2] + " Stopped: requirement not met: flat sections only. "
+            "Checks below this line are not evaluated.",
+        },
+        1,
+    ),
     "require not met": (
         HEAD
         + "  - {require: 'h <= b', says: flat sections only, cite: '1.1'}\n"

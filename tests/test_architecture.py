@@ -73,7 +73,7 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
         "layout.kit", "layout.lines", "layout.long_rows", "layout.marks", "layout.mathatoms", "layout.mathbox", "layout.mathbreak",
         "layout.mathforms", "layout.mathscripts", "layout.mathstyle", "layout.mathtable", "layout.model",
         "layout.opentype", "layout.paginate", "layout.pieces", "layout.places", "layout.section_figure", "layout.sheet",
-        "layout.span_figure", "layout.tables", "layout.titleblock", "layout.words",
+        "layout.span_figure", "layout.strength_figure", "layout.tables", "layout.titleblock", "layout.words",
     )),
     ("output", (
         "output", "output.content", "output.embed", "output.file", "output.metadata", "output.outline", "output.pdf",

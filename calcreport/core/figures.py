@@ -23,6 +23,26 @@ def _row(rows: str, dimension: Dimension, *, named: bool = False) -> InputKind:
 
 _MOMENT, _SPREAD = multiply(FORCE, LENGTH), divide(FORCE, LENGTH)
 
+
+def _along(dimension: Dimension) -> dict[str, InputKind]:
+    """Return what demand against strength along a member takes: stations, and pieces with their strength.
+
+    A piece has one strength, or one at either end of it. Strength against the other sign is `against`; without it the
+    strength holds for both signs.
+    """
+    return {
+        "stations": InputKind("set"), "x": _row("stations", LENGTH),
+        "demand": _row("stations", dimension, named=True),
+        "least_demand": InputKind("row number", dimension, False, rows="stations"),
+        "pieces": InputKind("set"),
+        "from": _row("pieces", LENGTH, named=True), "to": _row("pieces", LENGTH, named=True),
+        "strength": _row("pieces", dimension, named=True),
+        "strength_to": InputKind("row number", dimension, False, named=True, rows="pieces"),
+        "against": InputKind("row number", dimension, False, named=True, rows="pieces"),
+        "against_to": InputKind("row number", dimension, False, named=True, rows="pieces"),
+    }  # fmt: skip
+
+
 #: inputs by name, by kind of figure
 FIGURES: dict[str, dict[str, InputKind]] = {
     "beam section": {
@@ -40,6 +60,8 @@ FIGURES: dict[str, dict[str, InputKind]] = {
         "fixed": _number(LENGTH, needed=False), "x_u": _number(LENGTH, needed=False),
         "w_u": _number(_SPREAD, needed=False), "P_u": _number(FORCE, needed=False),
     },
+    "shear strength along span": _along(FORCE),
+    "moment strength along span": _along(_MOMENT),
 }  # fmt: skip
 
 

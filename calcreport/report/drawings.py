@@ -1,4 +1,4 @@
-"""Figures from a calculation's own values: the section with its bars, the span with its loads and moments.
+"""Figures from a calculation's own values: section with bars, span with loads and moments, demand against strength.
 
 A worked figure and forms in, a figure record out. What each kind is handed is declared in `core.figures`.
 """
@@ -15,12 +15,14 @@ from calcreport.report.forms import CalculationForms
 from calcreport.report.model import (
     Bar,
     BeamLoad,
+    Curve,
     Figure,
     Formula,
     Letters,
     Row,
     SectionFigure,
     SpanFigure,
+    StrengthFigure,
 )
 from calcreport.report.notation import relation, show_figure
 
@@ -80,7 +82,12 @@ def draw(worked: WorkedFigure, forms: CalculationForms) -> Figure | None:
     needed = needed_inputs(worked.line.kind)
     if not all(inputs.has(name) for name in needed):
         return None
-    makers: dict[str, Callable[[_Inputs], Figure]] = {"beam section": _section, "span": _span}
+    makers: dict[str, Callable[[_Inputs], Figure]] = {
+        "beam section": _section,
+        "span": _span,
+        "shear strength along span": _shear_strength,
+        "moment strength along span": _moment_strength,
+    }
     return makers[worked.line.kind](inputs)
 
 
@@ -182,3 +189,60 @@ def _shape(length: float, w: float, p: float, at: float, cantilever: bool) -> Ca
         return -(w * (length - x) ** 2 / 2 + p * max(at - x, 0.0))
 
     return hanging if cantilever else simple
+
+
+def _shear_strength(inputs: _Inputs) -> Figure:
+    """Return factored shear against design strength along a member, positive values above the base line."""
+    return _strength(inputs, "shear", down=False)
+
+
+def _moment_strength(inputs: _Inputs) -> Figure:
+    """Return factored moments against design strength along a member, positive values below the base line."""
+    return _strength(inputs, "moment", down=True)
+
+
+def _strength(inputs: _Inputs, what: str, *, down: bool) -> Figure:
+    stations, pieces = inputs.inputs["stations"].rows, inputs.inputs["pieces"].rows
+    at = [(stations, row) for row, _ in enumerate(inputs.rows("stations"))]
+    demands = [
+        tuple((inputs.number("x", row), inputs.number(name, row)) for row in at)
+        for name in ("demand", "least_demand")
+        if name in inputs.inputs
+    ]
+    along = sorted(
+        ((pieces, row) for row, _ in enumerate(inputs.rows("pieces"))), key=lambda row: inputs.number("from", row)
+    )
+    strengths = [_steps(inputs, along, "strength", "strength_to", 1.0)]
+    least = min(value for curve in demands for _, value in curve)
+    if "against" in inputs.inputs:
+        strengths.append(_steps(inputs, along, "against", "against_to", -1.0))
+    elif least < 0:
+        strengths.append(tuple((x, -value) for x, value in strengths[0]))
+    largest = max(range(len(at)), key=lambda row: abs(demands[0][row][1]))
+    labels = []
+    for number, row in enumerate(along):
+        middle = (inputs.number("from", row) + inputs.number("to", row)) / 2
+        labels.append((middle, inputs.number("strength", row), inputs.label("strength", row, symbol=number == 0)))
+    ticks = [(inputs.number("from", row), inputs.label("from", row, symbol=False)) for row in along]
+    ticks.append((inputs.number("to", along[-1]), inputs.label("to", along[-1], symbol=False)))
+    return StrengthFigure(
+        start=min(ticks[0][0], *(x for x, _ in demands[0])),
+        end=max(ticks[-1][0], *(x for x, _ in demands[0])),
+        demands=tuple(demands),
+        strengths=tuple(strengths),
+        demand_labels=((*demands[0][largest], inputs.label("demand", at[largest])),),
+        strength_labels=tuple(labels),
+        ticks=tuple(ticks),
+        down=down,
+        alternative=f"Factored {what} against design strength along the member, to scale.",
+    )
+
+
+def _steps(inputs: _Inputs, along: list[tuple[int, int]], name: str, end: str, sign: float) -> Curve:
+    """Return the strength of the pieces one after the other, from where each begins to where it ends."""
+    points: list[tuple[float, float]] = []
+    for row in along:
+        value = inputs.number(name, row)
+        last = inputs.number(end, row) if end in inputs.inputs else value
+        points += [(inputs.number("from", row), sign * value), (inputs.number("to", row), sign * last)]
+    return tuple(points)

@@ -280,7 +280,30 @@ class SpanFigure:
     alternative: str
 
 
-Figure: TypeAlias = SectionFigure | SpanFigure
+#: (position in metres, value in any one unit)
+Curve: TypeAlias = tuple[tuple[float, float], ...]
+
+
+@dataclass(frozen=True, slots=True)
+class StrengthFigure:
+    """Demand against strength along a member, both to one scale."""
+
+    #: ends of the base line, metres
+    start: float
+    end: float
+    demands: tuple[Curve, ...]
+    strengths: tuple[Curve, ...]
+    #: (position, value it stands at, label)
+    demand_labels: tuple[tuple[float, float, Formula], ...]
+    strength_labels: tuple[tuple[float, float, Formula], ...]
+    #: (position, label) under the drawing
+    ticks: tuple[tuple[float, Formula], ...]
+    #: positive values stand below the base line, as moments on the tension side
+    down: bool
+    alternative: str
+
+
+Figure: TypeAlias = SectionFigure | SpanFigure | StrengthFigure
 
 
 @dataclass(frozen=True, slots=True)

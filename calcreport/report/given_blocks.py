@@ -121,20 +121,22 @@ class GivenBlocks:
                 return ("project file",)
 
     def lane(self, value: GivenRows | GivenPairs) -> SourceLane:
-        """Return the source lane of rows: a table, or the lines of another calculation that gave them."""
-        if isinstance(value, GivenRows) and value.linked is not None:
-            links = [cell.value for cell in singles((value,)) if isinstance(cell.value, LinkedValue)]
-            script = self.told.scripts[value.linked.mark]
-            lines = {script.line_of.get(link_place(link, script.worked), 0) for link in links}
-            anchors = [f"{value.linked.mark}.{number}" for number in sorted(lines)]
-            return SourceLane(value.origin.words, tuple(Reference(anchor, anchor) for anchor in anchors))
+        """Return the source lane of rows: a table, or the lines of other calculations that gave them or some cells."""
         match value.origin.kind:
             case "schedule" | "candidate":
-                return SourceLane(f"{value.origin.kind} {value.origin.words}")
-            case "table":
-                return SourceLane(value.origin.words)
+                words = f"{value.origin.kind} {value.origin.words}"
+            case "table" | "line":
+                words = value.origin.words
             case _:
-                return SourceLane("project file")
+                words = "project file"
+        lines: dict[str, set[int]] = {}
+        for cell in singles((value,)):
+            if isinstance(cell.value, LinkedValue):
+                script = self.told.scripts[cell.value.mark]
+                place = link_place(cell.value, script.worked)
+                lines.setdefault(cell.value.mark, set()).add(script.line_of.get(place, 0))
+        anchors = [f"{mark}.{number}" for mark, numbers in lines.items() for number in sorted(numbers)]
+        return SourceLane(words, tuple(Reference(anchor, anchor) for anchor in anchors))
 
     def given_table(self, item: SayRows) -> Block:
         """Return a set of given rows, or a value over pairs, as a table."""

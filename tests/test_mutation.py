@@ -242,9 +242,9 @@ def test_a_method_and_its_twin_are_altered_too() -> None:
     """Inputs of a method, the words that choose, the line as a whole; outputs of one dimension exchanged."""
     found = mutants_of("aci318/flexure-layers", read_shelf(Disk(Path(), library_folder())))
     said = {(mutant.line, mutant.says) for mutant in found}
-    assert ("section by fibres", "displaced is kept") in said
-    assert ("section by fibres", "line left out") in said
-    assert ("f of section by fibres", "1.01 × 0.85") in said
+    assert ("section in bands by fibres", "displaced is kept") in said
+    assert ("section in bands by fibres", "line left out") in said
+    assert ("f of section in bands by fibres", "1.01 × 0.85") in said
     assert ("M_n by another method", "1.01 × 0.005") in said
 
 

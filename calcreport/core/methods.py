@@ -57,25 +57,36 @@ _MOMENT, _SPREAD = multiply(FORCE, LENGTH), divide(FORCE, LENGTH)
 
 #: what a value found by another method adds to its name: the second value, and the difference
 AGAIN, APART = "twin", "difference"
+#: what a section by fibres takes besides its outline
+_FIBRES: dict[str, InputKind] = {
+    "layers": InputKind("set", says="steel {}"),
+    "y": _row("layers", " at {} from the compressed face", LENGTH),
+    "A_s": _row("layers", " of area {}", _AREA),
+    "P": _number("axial force {}", FORCE),
+    "stress": _word("concrete stress {}", "uniform", "parabola"),
+    "f": _number(" of {}", STRESS),
+    "share": _number(" over {} c", NONE, ("stress", "uniform")),
+    "eps_0": _number(" level from a strain of {}", NONE, ("stress", "parabola")),
+    "eps_cu": _number("strain {} at the compressed face", NONE),
+    "f_y": _number("steel strength {}", STRESS),
+    "E_s": _number(" and modulus {}", STRESS),
+    "displaced": _word("displaced concrete {}", "deducted", "kept"),
+    "fibres": _count("{} fibres", 10, 2000),
+}  # fmt: skip
 #: signature by name
 METHODS: dict[str, MethodKind] = {
     "section by fibres": MethodKind(
+        takes={"b": _number("width {}", LENGTH), "h": _number("depth {}", LENGTH), **_FIBRES},
+        gives={"c": LENGTH, "M": _MOMENT, "C": FORCE, "F": FORCE, "eps_t": NONE},
+        proves=(Closure("equilibrium", "force in the concrete + force in the steel − axial force", FORCE),),
+        says="Plane sections; compression positive; the moment about mid-depth.",
+    ),
+    "section in bands by fibres": MethodKind(
         takes={
-            "b": _number("width {}", LENGTH),
-            "h": _number("depth {}", LENGTH),
-            "layers": InputKind("set", says="steel {}"),
-            "y": _row("layers", " at {} from the compressed face", LENGTH),
-            "A_s": _row("layers", " of area {}", _AREA),
-            "P": _number("axial force {}", FORCE),
-            "stress": _word("concrete stress {}", "uniform", "parabola"),
-            "f": _number(" of {}", STRESS),
-            "share": _number(" over {} c", NONE, ("stress", "uniform")),
-            "eps_0": _number(" level from a strain of {}", NONE, ("stress", "parabola")),
-            "eps_cu": _number("strain {} at the compressed face", NONE),
-            "f_y": _number("steel strength {}", STRESS),
-            "E_s": _number(" and modulus {}", STRESS),
-            "displaced": _word("displaced concrete {}", "deducted", "kept"),
-            "fibres": _count("{} fibres", 10, 2000),
+            "bands": InputKind("set", says="from the compressed face down, each {}"),
+            "b": _row("bands", " of width {}", LENGTH),
+            "to": _row("bands", " to a depth of {}", LENGTH),
+            **_FIBRES,
         },
         gives={"c": LENGTH, "M": _MOMENT, "C": FORCE, "F": FORCE, "eps_t": NONE},
         proves=(Closure("equilibrium", "force in the concrete + force in the steel − axial force", FORCE),),

@@ -1,9 +1,10 @@
-"""The strength of a rectangular section with layers of steel, by fibres: axial force given, bending sought.
+"""The strength of a section with layers of steel, by fibres: axial force given, bending sought.
 
 Numbers in base units in, `Result` out. Plane sections, the compressed face at a given strain. The depth is cut into
-fibres of one thickness. Under a uniform stress a fibre counts as far as the stressed depth covers it, about the middle
-of what it covers, so that the sum jumps nowhere; under the parabola each fibre has the stress at its middle, an error
-that falls with the square of the fibres. Steel is elastic up to its strength. No equation of any design code.
+fibres of one thickness, and these where the width changes: a section is one band, or several below each other. Under a
+uniform stress a fibre counts as far as the stressed depth covers it, about the middle of what is covered, so that the
+sum jumps nowhere; under the parabola each fibre has the stress at its middle, an error that falls with the square
+of the fibres. Steel is elastic up to its strength. No equation of any design code.
 """
 
 from __future__ import annotations
@@ -23,8 +24,9 @@ BALANCE = 1e-9
 class Section:
     """A section with its materials; base units."""
 
-    b: float
     h: float
+    #: width, upper and lower edge of every band, from the compressed face down
+    bands: tuple[tuple[float, float, float], ...]
     layers: tuple[tuple[float, float], ...]
     #: 'uniform' or 'parabola'
     shape: str
@@ -41,21 +43,21 @@ class Section:
         """Return the force of the concrete and its moment about mid-depth."""
         thick = self.h / self.fibres
         force = moment = 0.0
-        depth = min(self.measure * c, self.h)
-        for place in range(self.fibres):
-            top = place * thick
-            if self.shape == "uniform":
-                covered = min(thick, depth - top)
-                if covered <= 0.0:
+        depth = self.measure * c if self.shape == "uniform" else c
+        for width, upper, lower in self.bands:
+            for place in range(int(upper / thick), self.fibres):
+                top, bottom = max(upper, place * thick), min(lower, (place + 1) * thick)
+                if top >= min(lower, depth):
                     break
-                share, arm = self.stress * covered, self.h / 2 - (top + covered / 2)
-            else:
-                middle = top + thick / 2
-                if middle >= c:
+                if self.shape == "uniform":
+                    bottom = min(bottom, depth)
+                elif (top + bottom) / 2 >= c:
                     break
-                share, arm = self.concrete_stress(c, middle) * thick, self.h / 2 - middle
-            force += share * self.b
-            moment += share * self.b * arm
+                middle = (top + bottom) / 2
+                stress = self.stress if self.shape == "uniform" else self.concrete_stress(c, middle)
+                share = stress * max(bottom - top, 0.0) * width
+                force += share
+                moment += share * (self.h / 2 - middle)
         return force, moment
 
     def concrete_stress(self, c: float, y: float) -> float:
@@ -82,10 +84,26 @@ class Section:
 
 def section_by_fibres(handed: Handed, spend: Spend) -> Result:
     """Return the neutral axis, the moment and the forces; raises `NoResult`."""
-    section, axial = _section(handed), number(handed, "P")
+    b, h = number(handed, "b"), number(handed, "h")
+    return _strength(_section(handed, h, ((b, 0.0, h),), "b" if b <= 0 else ""), number(handed, "P"), spend)
+
+
+def section_in_bands_by_fibres(handed: Handed, spend: Spend) -> Result:
+    """Return the same of a section whose width changes with depth; raises `NoResult`."""
+    bands, upper = [], 0.0
+    for width, lower in zip(numbers(handed, "b"), numbers(handed, "to"), strict=True):
+        if width <= 0 or lower <= upper:
+            raise NoResult("every band needs a width, and a lower edge below that of the band before")
+        bands.append((width, upper, lower))
+        upper = lower
+    return _strength(_section(handed, upper, tuple(bands), ""), number(handed, "P"), spend)
+
+
+def _strength(section: Section, axial: float, spend: Spend) -> Result:
+    """Return the result for a section under an axial force."""
 
     def unbalanced(c: float) -> float:
-        spend(section.fibres + len(section.layers))
+        spend(section.fibres + len(section.bands) + len(section.layers))
         return section.concrete(c)[0] + section.steel(c)[0] - axial
 
     try:
@@ -103,19 +121,18 @@ def section_by_fibres(handed: Handed, spend: Spend) -> Result:
     return Result(outputs, (Proof(residual, largest),))
 
 
-def _section(handed: Handed) -> Section:
+def _section(handed: Handed, h: float, bands: tuple[tuple[float, float, float], ...], wrong: str) -> Section:
     """Return the section handed over; a size that is none is no section."""
     layers = tuple(zip(numbers(handed, "y"), numbers(handed, "A_s"), strict=True))
     shape = str(handed["stress"])
     measure = number(handed, "share" if shape == "uniform" else "eps_0")
-    sizes = ("b", "h", "f", "eps_cu", "f_y", "E_s")
-    wrong = next((name for name in sizes if number(handed, name) <= 0), "")
+    sizes = {"h": h, **{name: number(handed, name) for name in ("f", "eps_cu", "f_y", "E_s")}}
+    wrong = wrong or next((name for name, size in sizes.items() if size <= 0), "")
     if wrong or measure <= 0 or (shape == "uniform" and measure > 1):
         raise NoResult(f"a section needs {wrong or 'a stressed depth'} above zero")
     if not layers:
         raise NoResult("a section needs a layer of steel")
-    if any(not 0 <= y <= number(handed, "h") or area < 0 for y, area in layers):
+    if any(not 0 <= y <= h or area < 0 for y, area in layers):
         raise NoResult("a layer of steel stands outside the section")
-    b, h, stress, eps_cu, f_y, modulus = (number(handed, name) for name in sizes)
-    return Section(b, h, layers, shape, stress, measure, eps_cu, f_y, modulus, handed["displaced"] == "deducted",
-                   int(number(handed, "fibres")))  # fmt: skip
+    return Section(h, bands, layers, shape, sizes["f"], measure, sizes["eps_cu"], sizes["f_y"], sizes["E_s"],
+                   handed["displaced"] == "deducted", int(number(handed, "fibres")))  # fmt: skip

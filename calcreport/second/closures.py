@@ -5,6 +5,7 @@ Numbers in base units and what the first path found in; silence, or `NotClosed`.
 
 from __future__ import annotations
 
+import itertools
 from collections.abc import Callable
 from dataclasses import dataclass
 from typing import Any
@@ -34,7 +35,10 @@ def _close(what: str, terms: list[Any]) -> None:
 
 def _section_by_fibres(handed: dict[str, Any], found: Found, mp: Any) -> None:
     """Equilibrium at the neutral axis found, and the moment there, from strains at every fibre."""
-    c, half = mp.mpf(found.outputs["c"]), handed["h"] / 2
+    c = mp.mpf(found.outputs["c"])
+    widths, edges = (handed["b"], handed["to"]) if "to" in handed else ([handed["b"]], [handed["h"]])
+    depth = edges[-1]
+    half = depth / 2
     uniform, count = handed["stress"] == "uniform", int(handed["fibres"])
 
     def concrete(y: Any) -> Any:
@@ -44,15 +48,13 @@ def _section_by_fibres(handed: dict[str, Any], found: Found, mp: Any) -> None:
         return handed["f"] * (1 - (1 - part) ** 2)
 
     forces: list[tuple[Any, Any]] = []
-    edge = min(handed["share"] * c, handed["h"]) if uniform else mp.mpf(0)
-    for place in range(count):
-        upper, lower = handed["h"] * place / count, handed["h"] * (place + 1) / count
-        if uniform:
-            lower = max(upper, min(lower, edge))
-            forces.append((handed["f"] * handed["b"] * (lower - upper), (upper + lower) / 2))
-        else:
-            middle = (upper + lower) / 2
-            forces.append((concrete(middle) * handed["b"] * (lower - upper), middle))
+    cuts = sorted({depth * place / count for place in range(count)} | {mp.mpf(edge) for edge in edges})
+    stressed = handed["share"] * c if uniform else depth
+    for upper, lower in itertools.pairwise(cuts):
+        width = next(width for width, edge in zip(widths, edges, strict=True) if edge >= lower)
+        end = max(upper, min(lower, stressed))
+        middle = (upper + end) / 2
+        forces.append(((handed["f"] if uniform else concrete(middle)) * width * (end - upper), middle))
     whole = sum(force for force, _ in forces)
     bars: list[tuple[Any, Any]] = []
     for y, area in zip(handed["y"], handed["A_s"], strict=True):
@@ -117,5 +119,6 @@ def _stations(handed: dict[str, Any], found: Found, starts: list[Any], reactions
 
 CLOSURES: dict[str, Callable[[dict[str, Any], Found, Any], None]] = {
     "section by fibres": _section_by_fibres,
+    "section in bands by fibres": _section_by_fibres,
     "member on supports": _member_on_supports,
 }

@@ -8,7 +8,7 @@ from typing import Any
 import mpmath
 import pytest
 
-from calcreport.methods.fibres import section_by_fibres
+from calcreport.methods.fibres import section_by_fibres, section_in_bands_by_fibres
 from calcreport.methods.results import Handed, NoResult
 
 MP = mpmath.mp.clone()
@@ -100,6 +100,85 @@ def test_the_error_of_a_parabola_falls_with_the_square_of_the_fibres() -> None:
         result = section_by_fibres({**LEVEL, "fibres": fibres}, quiet)
         errors.append(abs(result.outputs["M"] - float(exact)) / float(exact))
     assert errors[0] < 2e-4 and errors[1] < errors[0] / 4 and errors[2] < errors[1] / 4
+
+
+#: a flange 30 in. wide and 4 in. thick on a web of 14 in., kip and in.
+FLANGED: Handed = {**{name: value for name, value in DOUBLE.items() if name not in ("b", "h")}, "bands": 2.0,
+                   "b": (30.0, 14.0), "to": (4.0, 24.0)}  # fmt: skip
+
+
+def under_flange(handed: Handed, c: Any) -> tuple[Any, Any]:
+    """Return force and moment about mid-depth of a uniform stress: a web of full depth, and what the flange adds."""
+    (wide, web), (thick, h) = handed["b"], handed["to"]
+    a = min(MP.mpf(handed["share"]) * c, MP.mpf(h))
+    stem = MP.mpf(handed["f"]) * web * a
+    sides = MP.mpf(handed["f"]) * (wide - web) * min(a, thick)
+    return stem + sides, stem * (h - a) / 2 + sides * (h - min(a, thick)) / 2
+
+
+def strength_of(handed: Handed, concrete: Callable[[Handed, Any], tuple[Any, Any]]) -> tuple[Any, Any]:
+    """Return the same of a section in bands, whose depth is where the last one ends."""
+    (*_, h), found = handed["to"], concrete
+    return strength({**handed, "h": h}, lambda _, c: found(handed, c))
+
+
+@pytest.mark.parametrize(
+    "change",
+    [{}, {"displaced": "kept"}, {"P": 300.0}, {"A_s": (0.5, 2.0)}, {"fibres": 37.0}, {"fibres": 24.0},
+     {"to": (4.03, 24.0)}, {"b": (14.0, 30.0)}],
+)  # fmt: skip
+def test_a_flange_is_worked_to_the_last_bits(change: dict[str, Any]) -> None:
+    handed = {**FLANGED, **change}
+    result = section_in_bands_by_fibres(handed, quiet)
+    c, moment = strength_of(handed, under_flange)
+    assert result.outputs["c"] == pytest.approx(float(c), rel=1e-12)
+    assert result.outputs["M"] == pytest.approx(float(moment), rel=1e-12)
+    (proof,) = result.proofs
+    assert abs(proof.residual) <= 1e-12 * proof.of
+
+
+def test_a_flange_by_hand() -> None:
+    # steel 8(60) = 480; flange 3.4(16)(4) = 217.6; web 262.4 = 3.4(14)a, a = 5.512605 in., c = 6.485418 in.
+    # M = 217.6(21.5 - 2) + 262.4(21.5 - 2.756303) = 9161.546 kip-in
+    result = section_in_bands_by_fibres({**FLANGED, "y": (21.5,), "A_s": (8.0,), "layers": 1.0}, quiet)
+    assert result.outputs["c"] == pytest.approx(6.485418, abs=1e-6)
+    assert result.outputs["M"] == pytest.approx(9161.546, abs=0.001)
+
+
+def test_the_parabola_under_a_flange() -> None:
+    def sides(handed: Handed, c: Any) -> tuple[Any, Any]:
+        plain = {**LEVEL, "h": 24.0, "b": 14.0}
+        force, moment = parabola(plain, c)
+        eps_cu, eps_0 = MP.mpf("0.003"), MP.mpf("0.002")
+        knots = sorted({MP.mpf(0), min(c / 3, MP.mpf(4)), min(c, MP.mpf(4))})
+
+        def stress(y: Any) -> Any:
+            part = max(MP.mpf(0), min(MP.mpf(1), eps_cu * (c - y) / c / eps_0))
+            return MP.mpf("3.4") * 16 * (2 * part - part**2)
+
+        return force + MP.quad(stress, knots), moment + MP.quad(lambda y: stress(y) * (12 - y), knots)
+
+    handed = {**{name: value for name, value in LEVEL.items() if name not in ("b", "h")}, "bands": 2.0,
+              "b": (30.0, 14.0), "to": (4.0, 24.0), "fibres": 800.0}  # fmt: skip
+    result = section_in_bands_by_fibres(handed, quiet)
+    c, moment = strength_of(handed, sides)
+    assert result.outputs["c"] == pytest.approx(float(c), rel=1e-5)
+    assert result.outputs["M"] == pytest.approx(float(moment), rel=1e-5)
+
+
+@pytest.mark.parametrize(
+    ("change", "words"),
+    [
+        ({"to": (24.0, 4.0)}, "below that of the band before"),
+        ({"to": (4.0, 4.0)}, "below that of the band before"),
+        ({"b": (30.0, 0.0)}, "needs a width"),
+        ({"b": (), "to": (), "bands": 0.0}, "needs h above zero"),
+        ({"y": (2.5, 24.5)}, "stands outside"),
+    ],
+)
+def test_no_bands_that_are_none(change: dict[str, Any], words: str) -> None:
+    with pytest.raises(NoResult, match=words):
+        section_in_bands_by_fibres({**FLANGED, **change}, quiet)
 
 
 @pytest.mark.parametrize(

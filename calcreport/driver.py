@@ -27,7 +27,8 @@ from calcreport.plan.proofs import prove_cited
 from calcreport.read.as_built import build_otherwise
 from calcreport.read.cases import read_cases
 from calcreport.read.changes import AsBuilt
-from calcreport.read.codes import CLOSED_LISTS
+from calcreport.read.codes import CODES
+from calcreport.read.criteria import CRITERIA
 from calcreport.read.library import ANY, Library
 from calcreport.read.model import Inputs, Template
 from calcreport.read.project import ProjectReader
@@ -110,7 +111,7 @@ def work(
 def _files_read(inputs: Inputs, library: Library) -> dict[str, Source]:
     """Return what was read for the calculations, and the closed lists, whatever else an open project has kept."""
     files = {source for calculation in inputs.calculations for source in calculation.template.files}
-    lists = (library.tree(name) for name in CLOSED_LISTS)
+    lists = (library.tree(name) for name in (CODES, CRITERIA))
     return library.named(files | {tree.span.source for tree in lists if tree is not None})
 
 

@@ -29,7 +29,7 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
     )),
     ("read", (
         "read", "read.as_built", "read.bars", "read.bodies", "read.calculations", "read.candidates", "read.cases",
-        "read.changes", "read.codes",
+        "read.changes", "read.codes", "read.criteria",
         "read.columns", "read.comments", "read.comments_schema", "read.fields", "read.filled", "read.formulas",
         "read.gathering", "read.given", "read.issued", "read.library", "read.lines", "read.links", "read.lost",
         "read.made_rows", "read.malformed", "read.method_lines", "read.model", "read.nodes", "read.project",
@@ -58,7 +58,7 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
         "history.model", "history.package", "history.revisions",
     )),
     ("report", (
-        "report", "report.answer", "report.answer_sheet", "report.answer_text", "report.answers", "report.below", "report.calculation",
+        "report", "report.alike", "report.answer", "report.answer_sheet", "report.answer_text", "report.answers", "report.below", "report.calculation",
         "report.candidates", "report.changes", "report.changes_text", "report.chains", "report.check_blocks", "report.compared",
         "report.compose", "report.confirmations", "report.deltas", "report.digits", "report.display", "report.drawings",
         "report.editions", "report.editions_text", "report.families", "report.forms", "report.formula_model",

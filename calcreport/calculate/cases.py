@@ -8,7 +8,7 @@ from __future__ import annotations
 from calcreport.calculate.evaluate import Program
 from calcreport.calculate.handing import hand_values
 from calcreport.calculate.linking import find_path
-from calcreport.calculate.model import Case, Expected, Plan, Worked
+from calcreport.calculate.model import Case, Expected, Plan, Worked, WorkedCheck
 from calcreport.core.problems import Problems
 from calcreport.core.quantity import Amount
 
@@ -38,12 +38,9 @@ def run_case(case: Case, plan: Plan, problems: Problems) -> Worked | None:
 def _hold(case: Case, expected: Expected, worked: Worked, problems: Problems) -> None:
     checks = [check for check in worked.checks if check.line.name == expected.name]
     if expected.outcome:
-        worst = "NG" if any(c.verdict == "NG" for c in checks) else checks[0].verdict if checks else "no such check"
-        evaluated = [c for c in checks if c.verdict in ("OK", "NG")]
-        if worst == "not applicable" and evaluated:
-            worst = evaluated[0].verdict
-        if worst != expected.outcome:
-            _say(case, expected, expected.outcome, worst, problems)
+        found = _outcome(expected.name, checks, worked)
+        if found != expected.outcome:
+            _say(case, expected, expected.outcome, found, problems)
     if expected.value is None:
         return
     if checks and expected.name not in worked.plan.by_path:
@@ -63,6 +60,16 @@ def _hold(case: Case, expected: Expected, worked: Worked, problems: Problems) ->
         _say(case, expected, expected.value.text, f"a value in {unit.text}", problems)
         return
     _compare(case, expected, value if isinstance(value, float) else None, expected.value.unit.size, problems)
+
+
+def _outcome(name: str, checks: list[WorkedCheck], worked: Worked) -> str:
+    """Return what checks of a name come to, or whether a limit state is left out."""
+    if not checks:
+        left = "not covered" if name in worked.left_out else "not applicable"
+        return left if name in worked.plan.leaves else "no such check"
+    worst = "NG" if any(check.verdict == "NG" for check in checks) else checks[0].verdict
+    evaluated = [check for check in checks if check.verdict in ("OK", "NG")]
+    return evaluated[0].verdict if worst == "not applicable" and evaluated else worst
 
 
 def _compare(case: Case, expected: Expected, value: float | None, size: float, problems: Problems) -> None:

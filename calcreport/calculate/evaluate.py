@@ -115,6 +115,7 @@ class Program:
             checks += [_not_evaluated(check, stop) for check in left]
         return Worked(
             calculation, self.plan, values, tuple(lines), tuple(checks), stop, fingerprint, self.work, self.test,
+            left_out=tuple(dict.fromkeys([*self.plan.template.excludes, *run.left])),
             broken_off=tuple(owner for owner, _ in run.unfinished) if stop is not None else (),
         )  # fmt: skip
 
@@ -166,6 +167,8 @@ class _Run:
     def __init__(self, program: Program, values: Values) -> None:
         self.program, self.values = program, values
         self.checks: list[WorkedCheck] = []
+        #: limit states that cautions reached say are left out
+        self.left: list[str] = []
         self.opened: tuple[tuple[int, int], ...] = ()
         #: lines worked outside all blocks
         self.top: list[WorkedLine] = []
@@ -197,6 +200,7 @@ class _Run:
             case PlannedCheck():
                 return self.check(line)
             case PlannedText():
+                self.left.extend(line.leaves)
                 return WorkedText(line, self.opened)
             case PlannedBranches():
                 return self.branches(line)

@@ -349,6 +349,8 @@ class Worked:
     selection: Selection | None = None
     #: blocks that a stop left unfinished, outermost first
     broken_off: tuple[PlannedLine, ...] = ()
+    #: limit states left out: by the template always, or by a caution that was reached
+    left_out: tuple[str, ...] = ()
 
     def place(self, path: str) -> tuple[int, Key]:
         """Return slot and key of a value by a path that was found good: `combination[4 W+].P_u`."""

@@ -233,8 +233,8 @@ def _hold_dispositions(inputs: Inputs, kept: tuple[Worked, ...], problems: Probl
     members = tuple(member for w in kept for member in w.members)
     marks = {mark for w in kept for mark in (w.calculation.mark, *(member.mark for member in w.members))}
     checks = {f"{member.mark}.{check.line.name}" for member in members for check in member.checks}
-    states = {state for w in kept for state in w.plan.template.excludes}
-    states |= {f"{w.calculation.mark} {state}" for w in kept for state in w.plan.template.excludes}
+    states = {state for w in kept for state in w.plan.leaves}
+    states |= {f"{w.calculation.mark} {state}" for w in kept for state in w.plan.leaves}
     for disposition in inputs.project.dispositions:
         name, known = (disposition.check, checks) if disposition.check else (disposition.limit_state, states)
         # a calculation that was not worked may hold what is named

@@ -80,7 +80,7 @@ def _hold_selection(worked: Worked, status: str, problems: Problems) -> None:
 
 def _hold_limit_states(worked: Worked, said: set[str], status: str, problems: Problems) -> None:
     mark = worked.calculation.mark
-    left = [state for state in worked.plan.template.excludes if state not in said and f"{mark} {state}" not in said]
+    left = [state for state in worked.left_out if state not in said and f"{mark} {state}" not in said]
     if left:
         problems.add(
             "not-ready",

@@ -48,7 +48,7 @@ def _described(head: TemplateHead, library: Library, problems: Problems) -> list
         f"{head.name}: {head.title}",
         f"  code      {_editions(head)}",
         f"  decides   {', '.join(plan.covers) or 'nothing; a part of others'}",
-        f"  leaves    {', '.join(template.excludes) or 'nothing named'}",
+        f"  leaves    {', '.join(plan.leaves) or 'nothing named'}",
         "  needs",
     ]
     for given in plan.givens:
@@ -72,4 +72,5 @@ def _given(planned: PlannedGiven, plan: Plan, indent: str) -> list[str]:
     notes = [given.range.text] if given.range else []
     notes += ["may be none"] if given.if_none is not None else []
     notes += [f"from material: {given.material}"] if given.material else []
+    notes += [f"from the criteria: {given.criterion.name}"] if given.criterion is not None else []
     return [f"{indent}{given.name:<14} {kind:<14} {given.says}{'  (' + '; '.join(notes) + ')' if notes else ''}"]

@@ -27,7 +27,7 @@ No order of work exists, so no value can be trusted. State one of the values in 
     B1 takes M_u from FL1, and FL1 takes h from B1      wrong""",
     "missing-value": """A value the template needs is not given.
 No value is ever assumed. Give it under `given`, with its unit; write `none` where the template allows that; for a
-material property name the material beside `template:`.
+material property name the material beside `template:`; what a template reads from the criteria stands under `criteria`.
 
     given: {b: 16 in, h: 28 in}
     concrete: C5""",

@@ -55,7 +55,8 @@ branches of one block a name may stand once in each. A part used twice takes `as
     - {check: least spacing, holds: 's >= s_min', cite: '4.3'}    right""",
     "given-twice": """A name is given a second time where it already stands.
 A name means one thing from the line that gives it to the end, so that a reader need not ask which one is meant. Take
-another name. In the branches of one block a name may be given once in each.
+another name. In the branches of one block a name may be given once in each. A criterion of the project stands among the
+criteria alone, and in no calculation.
 
     - {gives: a, formula: 'b/2', cite: geometry}
     - {gives: a, formula: 'b/3', cite: geometry}      wrong""",

@@ -72,8 +72,9 @@ def link(template: Template, problems: Problems) -> Plan:
     lines = linker.lines(body.lines, space, Context())
     linker.hold_gives(body, space)
     covers = tuple(dict.fromkeys([*body.covers, *linker.covers]))
-    slots = tuple(linker.maker.slots)
-    return Plan(template, slots, tuple(linker.maker.sets), givens, lines, covers, {s.path: s.index for s in slots})
+    leaves = tuple(dict.fromkeys([*template.excludes, *linker.leaves]))
+    slots, sets = tuple(linker.maker.slots), tuple(linker.maker.sets)
+    return Plan(template, slots, sets, givens, lines, covers, leaves, {s.path: s.index for s in slots})
 
 
 class _Linker:
@@ -84,6 +85,7 @@ class _Linker:
         self.parts = PartHander(self.names, self.maker, problems)
         self.checks = CheckNames(problems)
         self.covers: list[str] = []
+        self.leaves: list[str] = []
         self.count = 0
 
     # -------------------------------------------------------- givens
@@ -133,8 +135,9 @@ class _Linker:
     def line(self, line: Line, space: Space, at: Context) -> PlannedLine | None:
         names = self.names
         match line:
-            case Text(kind, pieces, cite, span):
-                return PlannedText(kind, tuple(self.piece(p, space, at) for p in pieces), cite, span)
+            case Text(kind, pieces, cite, span, leaves):
+                self.leaves.extend(leaves)
+                return PlannedText(kind, tuple(self.piece(p, space, at) for p in pieces), cite, span, leaves)
             case Gives():
                 return self.gives(line, space, at)
             case Branches():

@@ -88,6 +88,8 @@ class PlannedText:
     pieces: tuple[str | int, ...]
     cite: Citation | None
     span: Span
+    #: limit states left out where it is reached
+    leaves: tuple[str, ...]
 
 
 @dataclass(frozen=True, slots=True)
@@ -292,6 +294,8 @@ class Plan:
     lines: tuple[PlannedLine, ...]
     #: limit states decided here, parts included
     covers: tuple[str, ...]
+    #: limit states it leaves out, always or where a line says so
+    leaves: tuple[str, ...]
     #: slot by path, for links, trace and tests
     by_path: dict[str, int]
 

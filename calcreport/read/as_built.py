@@ -131,6 +131,11 @@ class _Changer:
         if isinstance(before.value, LinkedValue):
             self.say_linked(before.value.mark, before.value.path)
             return before
+        if before.given.criterion is not None:
+            self.problems.add("not-a-change", self.change.span, f"`{self.named}` is a criterion of the whole project",
+                              expected="a value of one calculation", found=before.given.criterion.name,
+                              hint="change it under `criteria:`")  # fmt: skip
+            return before
         template = self.calculation.template
         bars = self.library.bar_table(template.name, template.system)
         scalar = self.sum(before) if self.change.sign else self.change.scalar

@@ -13,6 +13,7 @@ from calcreport.core.expression import Name
 from calcreport.core.problems import Problems
 from calcreport.core.source import Span, TableSource
 from calcreport.read.candidates import Choice, read_choice
+from calcreport.read.criteria import Criteria
 from calcreport.read.fields import Fields, is_empty
 from calcreport.read.gathering import Gathered
 from calcreport.read.library import Editions, Library
@@ -36,6 +37,7 @@ class CalculationReader:
     gathered: Gathered
     system: System
     editions: Editions
+    criteria: Criteria
     problems: Problems
     #: what reads the tables that rows are given from, made when first needed
     tables: Callable[[], RowSource]
@@ -94,7 +96,7 @@ class CalculationReader:
         shared = read_members(fields, template.body.given, roles, self.mark)
         own_roles = shared.roles if shared else ()
         materials = self.materials(fields, tuple(role for role in roles if role not in own_roles))
-        reader = ValueReader(materials, bars, node.span, self.problems, self.standing, self.tables)
+        reader = ValueReader(materials, bars, node.span, self.problems, self.standing, self.criteria, self.tables)
         choice = read_choice(fields, template.body.given, reader)
         elsewhere = choice.names | frozenset(shared.names if shared else ())
         wanted = tuple(one for one in template.body.given if one.name not in elsewhere)

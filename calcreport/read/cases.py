@@ -22,7 +22,8 @@ KEYS = ("case", "units", "year", "given", "materials", "expect", "stops")
 #: keys of an entry that says why no case reaches something
 REASON_KEYS = ("no case", "because")
 STOPS_KEYS, EXPECTED_KEYS = ("line", "source"), ("value", "tol", "outcome", "ratio", "source")
-VERDICTS = ("OK", "NG", "not applicable", "not evaluated")
+#: what a check may come to; a limit state that a caution may leave out is not covered or not applicable
+VERDICTS = ("OK", "NG", "not applicable", "not evaluated", "not covered")
 
 
 def read_cases(template: str, source: Source, library: Library, problems: Problems) -> CaseFile:

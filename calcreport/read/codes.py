@@ -1,7 +1,6 @@
-"""Adopted codes and design criteria of a project, held against closed lists that are data of the library.
+"""Adopted codes of a project, held against a closed list that is data of the library.
 
-Mappings in, editions and rows for the front sheets out. `codes.yaml` says which editions an adopted code refers
-to, `criteria.yaml` which criteria there are.
+Mappings in, editions and rows for the front sheets out. `codes.yaml` says which editions an adopted code refers to.
 """
 
 from __future__ import annotations
@@ -9,14 +8,12 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 from calcreport.core.problems import Problems
-from calcreport.core.quantity import read_in_unit
-from calcreport.core.units import read_unit
-from calcreport.read.fields import Fields, as_scalar, say_not_a_word
+from calcreport.read.fields import Fields
 from calcreport.read.library import INCOMPLETE, Library, split_code
-from calcreport.read.nodes import Mapping, Node, Scalar, Sequence
+from calcreport.read.nodes import Mapping, Scalar, Sequence
 
-#: files of the library that say which editions belong together and which criteria there are
-CLOSED_LISTS = ("codes.yaml", "criteria.yaml")
+#: file of the library that says which editions belong together
+CODES = "codes.yaml"
 #: fields a code is named for beside the two every package names
 OTHER_FIELDS = ("masonry", "steel", "timber", "soil", "bars")
 KEYS, ADOPTED_KEYS = ("adopted", "concrete", "loads", *OTHER_FIELDS), ("name", "year", "amendments")
@@ -90,7 +87,7 @@ def _other_edition(stated: Scalar, parts: tuple[str, str], asked: str, problems:
 
 def _permitted(adopted: str, library: Library) -> dict[str, tuple[str, ...]]:
     """Return the editions an adopted code refers to, by field."""
-    tree = library.tree(CLOSED_LISTS[0])
+    tree = library.tree(CODES)
     known = tree.get("adopted") if tree else None
     refers = known.get(adopted) if isinstance(known, Mapping) else None
     return {
@@ -119,43 +116,3 @@ def _mixed(adopted: str, node: Mapping, library: Library, problems: Problems) ->
                 hint="where a local amendment adopts another edition, name that code as the adopted one",
             )  # fmt: skip
     return mixed
-
-
-def read_criteria(
-    node: Mapping | None, library: Library, system: str, problems: Problems
-) -> tuple[tuple[str, str], ...]:
-    """Read the criteria against the library's closed list."""
-    tree = library.tree(CLOSED_LISTS[1])
-    known = tree.get("criteria") if tree else None
-    entries = {key.text: value for key, value in known.entries} if isinstance(known, Mapping) else {}
-    if node is None:
-        return ()
-    fields = Fields(node, entries, "`criteria`", problems)
-    rows: list[tuple[str, str]] = []
-    for key, value in node.entries:
-        scalar = as_scalar(value, f"`{key.text[:40]}`", problems) if key.text in entries else None
-        if scalar is not None and _holds(scalar, key.text, entries[key.text], system, problems):
-            rows.append((key.text, scalar.text))
-    for name, entry in entries.items():
-        required = entry.get("required") if isinstance(entry, Mapping) else None
-        if isinstance(required, Scalar) and required.text == "yes" and fields.node_of(name) is None:
-            fields.say_missing(name)
-    return tuple(rows)
-
-
-def _holds(scalar: Scalar, name: str, entry: Node, system: str, problems: Problems) -> bool:
-    """Hold one criterion against its entry: a closed list of words, a unit, or free text."""
-    if not isinstance(entry, Mapping):
-        return True
-    words, unit = entry.get("one of"), entry.get("unit")
-    if isinstance(words, Sequence):
-        allowed = tuple(w.text for w in words.items if isinstance(w, Scalar))
-        if scalar.text not in allowed:
-            say_not_a_word(scalar, allowed, f"`{name}`", problems)
-            return False
-    if isinstance(unit, Mapping):
-        unit = unit.get(system)
-    if isinstance(unit, Scalar):
-        read = read_unit(unit.text, unit.span, problems)
-        return read is not None and read_in_unit(scalar.text, scalar.span, problems, read) is not None
-    return True

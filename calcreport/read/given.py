@@ -19,7 +19,20 @@ from calcreport.read.nodes import Mapping, Node, Scalar
 from calcreport.read.symbols import KEYS as SYMBOL_KEYS
 from calcreport.read.symbols import KINDS, Table, find_symbol, hold_name, read_symbol
 
-KEYS = (*SYMBOL_KEYS, "range", "if none", "material", "property", "rows", "names", "least", "most", "over", "gives")
+KEYS = (
+    *SYMBOL_KEYS,
+    "range",
+    "if none",
+    "material",
+    "property",
+    "criterion",
+    "rows",
+    "names",
+    "least",
+    "most",
+    "over",
+    "gives",
+)
 #: what a callout gives, in which dimension
 OUTPUTS: dict[str, Dimension] = {
     "area": multiply(LENGTH, LENGTH), "diameter": LENGTH, "count": NONE, "spacing": LENGTH,
@@ -65,6 +78,7 @@ class _Reader:
             if_none=self.if_none(fields, kind, symbol),
             material=fields.text("material"),
             property=fields.text("property") or self.key.text,
+            criterion=self.criterion(fields, kind),
             columns=self.columns(rows) if rows else (),
             row_names=tuple(scalar.text for scalar in fields.texts("names")),
             least=1 if least is None else least,
@@ -108,12 +122,26 @@ class _Reader:
             return find_symbol(self.key.text, self.key.span, self.table, self.problems)
         return read_symbol(self.key, fields, base, self.problems)
 
+    def criterion(self, fields: Fields, kind: str) -> Name | None:
+        """Return the criterion a single value is read from; only one value, from one place."""
+        scalar = fields.scalar("criterion")
+        if scalar is not None and (kind != "value" or fields.has("material")):
+            found = "a material" if fields.has("material") else "rows" if kind == "rows" else f"{kind}"
+            self.problems.add("wrong-shape", scalar.span, f"{self.what} cannot be read from the criteria",
+                              expected="one quantity or word, from one place", found=found)  # fmt: skip
+            return None
+        return Name(scalar.text, scalar.span) if scalar is not None else None
+
     def columns(self, node: Mapping) -> tuple[Given, ...]:
         columns = read_givens(node, self.table, self.problems)
         for column in columns:
             if column.kind in ("rows", "pairs"):
                 self.problems.add("wrong-shape", column.span, f"the column `{column.name}` cannot hold rows",
                                   expected="a value, a word or bars", found="a set in a set")  # fmt: skip
+            elif column.criterion is not None:
+                self.problems.add("wrong-shape", column.criterion.span, f"the column `{column.name}` is a criterion",
+                                  expected="a value of its own beside the set: a criterion is the same in every row",
+                                  found="a column")  # fmt: skip
         return tuple(column for column in columns if column.kind not in ("rows", "pairs"))
 
     def gives(self, fields: Fields, kind: str) -> tuple[tuple[Symbol, str], ...]:

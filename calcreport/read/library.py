@@ -16,6 +16,7 @@ from calcreport.core.source import Source, Span
 from calcreport.core.world import NO_SUCH_FILE, World
 from calcreport.read.bars import BarTable, read_bar_table
 from calcreport.read.bodies import TEMPLATE_KEYS, BodyReader
+from calcreport.read.criteria import hold_criteria
 from calcreport.read.fields import Fields, as_mapping
 from calcreport.read.model import SYSTEMS, PartBody, System, Template
 from calcreport.read.nodes import Mapping, Scalar, read_tree
@@ -101,6 +102,9 @@ class Library:
         """Return the tree of a library file; None where there is none, or where it cannot be read."""
         for touched in self._touched:
             touched.add(file)
+        return self._tree(file)
+
+    def _tree(self, file: str) -> Mapping | None:
         if file not in self._trees:
             found = self._find(file)
             if isinstance(found, str) and found != NO_SUCH_FILE:
@@ -160,11 +164,9 @@ class Library:
         codes = tuple((system, leaf.text) for system, leaf in leaves if isinstance(leaf, Scalar))
         if len(codes) < len(served):
             return None
-        return TemplateHead(name, title, codes, tuple(y.text for y in years), self._ordered(systems), tree, source)
-
-    def _ordered(self, systems: tuple[str, ...]) -> tuple[System, ...]:
-        """Return the systems in the order written, which is the order of `by_units`."""
-        return tuple(s for name in dict.fromkeys(systems) for s in SYSTEMS if s == name)
+        # in the order written, which is that of `by_units`
+        ordered = tuple(s for name in dict.fromkeys(systems) for s in SYSTEMS if s == name)
+        return TemplateHead(name, title, codes, tuple(y.text for y in years), ordered, tree, source)
 
     def symbols(self, folder: str, system: str, year: str) -> Table | None:
         """Return the notation of a folder; a folder without a table has none, None where it cannot be read."""
@@ -267,6 +269,7 @@ class Library:
         self._open.pop()
         if found is None:
             return None
+        hold_criteria(found[0].given, self._tree, system, self.problems)
         shown = code_label(code, year) if head.years else code
         self.bar_table(head.name, system)
         files = tuple(s for s in (self._found.get(f) for f in sorted(self._touched[-1])) if isinstance(s, Source))

@@ -39,7 +39,7 @@ from calcreport.read.words import read_citation, read_cite, read_pieces
 
 #: kind of line by its first key: further keys allowed
 KINDS: dict[str, tuple[str, ...]] = {
-    "heading": (), "note": ("cite",), "caution": ("cite",), "assume": ("cite",), "use": ("cite",),
+    "heading": (), "note": ("cite",), "caution": ("leaves out", "cite"), "assume": ("cite",), "use": ("cite",),
     "gives": ("formula", "branches", *OWN_KEYS, "cite", "as cited"),
     "branches": (), "rows": ("columns", "list", "spaced", "file", "says", "cite"), "each": ("lines", "table", "show"),
     "part": ("as", "same", "with"), "check": ("holds", "says", "cite"), "require": ("says", "cite", "show"),
@@ -121,9 +121,10 @@ class LineReader:
         scalar = fields.scalar(kind, required=True)
         cite = fields.scalar("cite")
         cited = read_citation(cite, self.document, self.problems) if cite else None
+        left = tuple(one.text for one in fields.texts("leaves out"))
         if scalar is None:
             return None
-        return Text(kind, read_pieces(scalar, self.problems), cited, fields.span)  # type: ignore[arg-type]
+        return Text(kind, read_pieces(scalar, self.problems), cited, fields.span, left)  # type: ignore[arg-type]
 
     def gives(self, fields: Fields) -> Line | None:
         name = fields.scalar("gives", required=True)

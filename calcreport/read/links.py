@@ -114,7 +114,7 @@ def hold_columns(given: Given, mapping: Mapping, fields: Fields, *more: str) -> 
         problems.add("unknown-given", key.span, f"`{given.name}` has no column `{key.text[:40]}`",
                      expected=listed(wanted), found=key.text[:40], hint=problems.near(key.text, wanted))  # fmt: skip
         meant.update(problems.close(key.text, wanted))
-    missing = [c.name for c in given.columns if c.name not in found and c.name not in meant and not c.material]
+    missing = [c.name for c in given.columns if c.name not in found and c.name not in meant and not c.elsewhere()]
     if missing:
         problems.add("missing-value", mapping.span.part(0, 1), f"`{given.name}` needs more columns",
                      expected=", ".join(missing), found="not under `columns`")  # fmt: skip

@@ -15,7 +15,8 @@ from calcreport.core.problems import Problems
 from calcreport.core.source import Source
 from calcreport.core.world import World
 from calcreport.read.calculations import CalculationReader
-from calcreport.read.codes import Codes, read_codes, read_criteria
+from calcreport.read.codes import Codes, read_codes
+from calcreport.read.criteria import CRITERIA, Criteria, read_criteria
 from calcreport.read.fields import Fields, as_mapping
 from calcreport.read.gathering import Gathered, Gatherer
 from calcreport.read.library import Library
@@ -54,6 +55,9 @@ class ProjectReader:
         stated = fields.choice("units", SYSTEMS, required=True)
         system: System = "si" if stated == "si" else "us"
         codes = read_codes(fields.mapping("codes", required=True), self.library, self.problems, self.instead)
+        criteria = read_criteria(
+            fields.mapping("criteria", required=True), self.library.tree(CRITERIA), system, self.problems
+        )
         gatherer = Gatherer(self.world, source, self.problems)
         gatherer.gather(fields)
         editions = tuple(sorted(codes.editions.items()))
@@ -63,11 +67,12 @@ class ProjectReader:
             reading = load_schedules().ScheduleReader
             reading(self.library, system, editions, gathered, tables(), self.problems).read()
         reader = CalculationReader(
-            self.library, gathered, system, editions, self.problems, lambda: load_row_tables().RowTables(tables())
-        )
+            self.library, gathered, system, editions, criteria, self.problems,
+            lambda: load_row_tables().RowTables(tables()),
+        )  # fmt: skip
         # without a unit system no template can be chosen: that one problem is enough
         calculations = reader.read() if stated else ()
-        project = self.header(fields, system, codes, gathered)
+        project = self.header(fields, system, codes, criteria, gathered)
         if not stated:
             return None
         if fields.node_of("calculations") is not None and not gathered.calculations:
@@ -81,7 +86,7 @@ class ProjectReader:
             self.problems.add("missing-key", at, "the project holds no calculation", expected="one or more",
                               found="an empty list")  # fmt: skip
 
-    def header(self, fields: Fields, system: System, codes: Codes, gathered: Gathered) -> Project:
+    def header(self, fields: Fields, system: System, codes: Codes, criteria: Criteria, gathered: Gathered) -> Project:
         """Read what stands outside the calculations."""
         head = self.block(fields, "project", HEAD_KEYS)
         office = self.block(fields, "office", OFFICE_KEYS)
@@ -101,7 +106,7 @@ class ProjectReader:
             codes=codes.rows,
             amendments=codes.amendments,
             editions=tuple(sorted(codes.editions.items())),
-            criteria=read_criteria(fields.mapping("criteria", required=True), self.library, system, self.problems),
+            criteria=criteria.rows,
             materials=tuple(
                 (mark, tuple((name, scalar.text) for name, scalar in (found or {}).items() if scalar is not None))
                 for mark, (_, found) in gathered.materials.items()

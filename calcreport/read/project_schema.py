@@ -20,6 +20,7 @@ from calcreport.read import (
     tables,
     together,
 )
+from calcreport.read.criteria import CRITERIA
 from calcreport.read.library import ANY as ANY_EDITION
 from calcreport.read.library import Library
 from calcreport.read.model import SYSTEMS, Given
@@ -155,7 +156,7 @@ def _told() -> Schema:
 
 def _criteria(library: Library) -> Schema:
     """Return the schema of the criteria, which are data of the library."""
-    tree = library.tree("criteria.yaml")
+    tree = library.tree(CRITERIA)
     known = tree.get("criteria") if tree is not None else None
     shapes: dict[str, Schema] = {}
     required: list[str] = []
@@ -173,7 +174,7 @@ class _Takes:
     """What a template must be given, in whichever system and year it serves."""
 
     givens: tuple[Given, ...]
-    #: names asked for in every one of them and by no material
+    #: names asked for in every one of them and read from no material or criterion
     needed: tuple[str, ...]
 
 
@@ -190,7 +191,7 @@ def _takes(library: Library) -> dict[str, _Takes]:
                 variants += [template.body.given] if template is not None else []
         if variants:
             givens = {one.name: one for variant in reversed(variants) for one in variant}
-            always = set.intersection(*({one.name for one in variant if not one.material} for variant in variants))
+            always = set.intersection(*({one.name for one in variant if not one.elsewhere()} for variant in variants))
             found[name] = _Takes(tuple(givens.values()), tuple(one for one in givens if one in always))
     return found
 
@@ -235,7 +236,7 @@ def _value(given: Given) -> Schema:
     if given.kind == "rows":
         columns = {one.name: named("one value") | {"description": _says(one)} for one in given.columns}
         row = closed((ROW_NAME, *columns), {ROW_NAME: text(), **columns}, columns)
-        needed = [one.name for one in given.columns if not one.material]
+        needed = [one.name for one in given.columns if not one.elsewhere()]
         linked = _with_columns("rows of another", needed, list(columns))
         taken = when(has("from"), linked, _with_columns("rows of a table", needed, [ROW_NAME, *columns]))
         return _by_shape(items(row), taken)
@@ -266,5 +267,6 @@ def _says(given: Given) -> str:
     range_words = given.range.text if given.range is not None else ""
     none = "or none" if given.if_none is not None else ""
     material = f"from the material named under {given.material}" if given.material else ""
-    told = [given.says, f"in {unit}" if unit and unit != "1" else "", words, range_words, none, material]
+    criterion = f"from the criterion {given.criterion.name}" if given.criterion is not None else ""
+    told = [given.says, f"in {unit}" if unit and unit != "1" else "", words, range_words, none, material, criterion]
     return "; ".join(word for word in told if word)

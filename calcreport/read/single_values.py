@@ -9,10 +9,11 @@ from dataclasses import dataclass, field
 from typing import TypeAlias
 
 from calcreport.core.expression import Name
-from calcreport.core.problems import Problems
+from calcreport.core.problems import Problems, listed
 from calcreport.core.quantity import Amount, read_in_unit
 from calcreport.core.source import Span, TableSource
 from calcreport.read.bars import BarTable, read_callout
+from calcreport.read.criteria import Criteria
 from calcreport.read.fields import Fields, as_scalar, say_not_a_word
 from calcreport.read.links import read_at, read_link
 from calcreport.read.model import BarCallout, Given, GivenValue, Handed, ValueOrigin
@@ -37,6 +38,8 @@ class SingleReader:
     problems: Problems
     #: calculation that a member's mark stands on, for members that share one
     shared: dict[str, str] = field(default_factory=dict)
+    #: what the project states for all of it; None for a case beside a template, which gives it like any other value
+    criteria: Criteria | None = None
 
     def value(self, given: Given, node: Node) -> GivenValue | None:
         """Read a value: text, `{value, source}` or `{from: MARK.symbol}`."""
@@ -164,6 +167,31 @@ class SingleReader:
             return self.none(given, scalar)
         value = self.typed(given, scalar)
         return None if value is None else GivenValue(given, value, ValueOrigin("material", mark.text), scalar.span)
+
+    def from_criterion(self, given: Given, key: Scalar | None, what: str) -> GivenValue | None:
+        """Read what the project states once for all its calculations; `key` where this one states it too."""
+        assert self.criteria is not None and given.criterion is not None
+        name, stated = given.criterion.name, self.criteria.stated
+        scalar = stated.get(name)
+        if key is not None:
+            self.problems.add(
+                "given-twice", key.span, f"`{given.name}` is a criterion of the whole project",
+                expected=f"`{name}` under `criteria:` alone", found=f"a value for {what}",
+                related=((scalar.span, "the criterion"),) if scalar is not None else (),
+            )  # fmt: skip
+            return None
+        if name not in stated and self.criteria.span is not None:
+            words = f": {listed(given.symbol.words)}" if given.symbol and given.symbol.words else ""
+            self.problems.add(
+                "missing-value", self.criteria.span.part(0, 1), f"the criteria do not state `{name[:40]}`",
+                expected=f"{wanted(given)}{words}", found="no such criterion",
+                hint=f"write `{name[:40]}: …` under `criteria:`",
+                related=((self.home.part(0, 1), f"{what} needs it"),),
+            )  # fmt: skip
+        if scalar is None:
+            return None
+        value = self.typed(given, scalar)
+        return None if value is None else GivenValue(given, value, ValueOrigin("criteria", ""), scalar.span)
 
 
 def origin_at(span: Span) -> ValueOrigin:

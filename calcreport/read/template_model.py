@@ -78,6 +78,8 @@ class Given:
     #: material role it is read from, '' for none, and the property's name there
     material: str
     property: str
+    #: criterion of the project it is read from
+    criterion: Name | None
     #: columns of rows
     columns: tuple[Given, ...]
     #: permitted row names, stems end in `*`; () for any
@@ -89,6 +91,10 @@ class Given:
     #: values read off a bar callout: (symbol, 'area' | 'diameter' | 'count' | 'spacing')
     gives: tuple[tuple[Symbol, str], ...]
     span: Span
+
+    def elsewhere(self) -> bool:
+        """Whether a project need not state it beside the template."""
+        return bool(self.material) or self.criterion is not None
 
     def names(self) -> tuple[str, ...]:
         """Return the names it brings along: its own, its columns', and those read off callouts."""
@@ -104,6 +110,8 @@ class Text:
     pieces: tuple[str | Name, ...]
     cite: Citation | None
     span: Span
+    #: limit states that a caution says are left out where it is reached
+    leaves: tuple[str, ...] = ()
 
 
 @dataclass(frozen=True, slots=True)

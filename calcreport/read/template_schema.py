@@ -135,7 +135,8 @@ def _years() -> Schema:
 def _given() -> Schema:
     shapes: dict[str, Schema] = {
         **_SYMBOL, "only": _only(), "kind": _each(choice(given.GIVEN_KINDS)), "range": _WORDS, "if none": _WORDS,
-        "material": _WORDS, "property": _WORDS, "rows": _each(mapping(_each(maybe(named("column given"))))),
+        "material": _WORDS, "property": _WORDS, "criterion": _WORDS,
+        "rows": _each(mapping(_each(maybe(named("column given"))))),
         "names": _NAMES, "least": _each(whole(0, MOST_ROWS)), "most": _each(whole(1, MOST_ROWS)),
         "over": _NAMES, "gives": _each(mapping(_each(choice(given.OUTPUTS)))),
     }  # fmt: skip

@@ -144,8 +144,8 @@ def _columns(template: Template, shared: Shared) -> tuple[Given, ...]:
 def _given(template: Template, shared: Shared) -> tuple[Given, ...]:
     """Return what is given in common, then the set of members with what each has for itself."""
     common = tuple(given for given in template.body.given if given.name not in shared.names)
-    member = Given(MEMBER, "rows", None, "like members, a row each", None, None, "", "", _columns(template, shared), (),
-                   1, MOST_ROWS, (), (), shared.span)  # fmt: skip
+    member = Given(MEMBER, "rows", None, "like members, a row each", None, None, "", "", None,
+                   _columns(template, shared), (), 1, MOST_ROWS, (), (), shared.span)  # fmt: skip
     return (*common, member)
 
 

@@ -76,6 +76,8 @@ class ValueReader(SingleReader):
     def one(self, given: Given, node: Mapping, what: str, *, told: bool) -> GivenValue | GivenRows | GivenPairs | None:
         """Read one given value, of whatever kind; `told` where an unknown name seems to mean it."""
         key, value = next(((k, v) for k, v in node.entries if k.text == given.name), (None, None))
+        if given.criterion is not None and self.criteria is not None:
+            return self.from_criterion(given, key, what)
         if isinstance(value, Told):
             return None
         if value is None or is_empty(value):

@@ -15,6 +15,7 @@ from calcreport.calculate.model import (
     WorkedGives,
     WorkedLine,
     WorkedPart,
+    WorkedText,
     WorkedUnknown,
 )
 
@@ -36,6 +37,12 @@ def below(lines: tuple[WorkedLine, ...], kind: type[T]) -> list[T]:
             case _:
                 pass
     return found
+
+
+def only_words(lines: tuple[WorkedLine, ...]) -> bool:
+    """Tell whether lines come to words alone, which say by themselves what they are of."""
+    inner = (only_words(x.lines) if isinstance(x, WorkedBranches) else isinstance(x, WorkedText) for x in lines)
+    return bool(lines) and all(inner)
 
 
 def severity(check: WorkedCheck) -> float:

@@ -19,6 +19,7 @@ from calcreport.report.forms import Opened, equation_unit
 from calcreport.report.given_blocks import GivenBlocks
 from calcreport.report.items import (
     Item,
+    SayAlike,
     SayBranch,
     SayCheck,
     SayChoice,
@@ -30,7 +31,6 @@ from calcreport.report.items import (
     SayLine,
     SayMade,
     SayMethod,
-    SayNone,
     SayOutput,
     SayOutputs,
     SayProof,
@@ -109,8 +109,8 @@ class Composer:
         match item:
             case SayGivens():
                 return (Givens(tuple(self.given.given_row(number, given) for number, given in item.rows)),)
-            case SayNone():
-                return (self.given.none(item),)
+            case SayAlike():
+                return (self.given.alike(item),)
             case SayRows():
                 return (self.given.given_table(item),)
             case SayChoice():

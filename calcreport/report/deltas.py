@@ -17,6 +17,7 @@ from calcreport.history.model import Identity, Place
 from calcreport.report.below import below
 from calcreport.report.items import (
     Item,
+    SayAlike,
     SayCheck,
     SayChoice,
     SayEquation,
@@ -25,7 +26,6 @@ from calcreport.report.items import (
     SayLine,
     SayMade,
     SayMethod,
-    SayNone,
     SayOutput,
     SayOutputs,
     SayProof,
@@ -114,7 +114,7 @@ def marked(item: Item, blocks: tuple[Block, ...], told: Told, found: Deltas) -> 
             rows = zip(first.rows, item.rows, strict=True)
             whole = (replace(row, delta=found.of(_single(given))) for row, (_, given) in rows)
             return (Givens(tuple(whole)), *rest)
-        case SayNone():
+        case SayAlike():
             return (_with(first, found.of((given.slot, ()) for given in item.givens)), *rest)
         case SayRows():
             return (_set(first, item, told, found), *rest)

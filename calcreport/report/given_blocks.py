@@ -20,7 +20,7 @@ from calcreport.core.quantity import Amount
 from calcreport.core.units import NONE
 from calcreport.report.display import row_words, show_row, show_symbol, trade_marks, unit_text
 from calcreport.report.forms import link_place
-from calcreport.report.items import SayNone, SayRows
+from calcreport.report.items import SayAlike, SayRows
 from calcreport.report.model import (
     Block,
     Column,
@@ -70,15 +70,15 @@ class GivenBlocks:
             self.origin(value.origin, value.value),
         )
 
-    def none(self, item: SayNone) -> Block:
-        """Return the values there are none of, and what they count as."""
+    def alike(self, item: SayAlike) -> Block:
+        """Return the values there are none of, and what they count as; or those that are answered by no."""
         values = [self.told.values.get(given.slot) for given in item.givens]
         zero = all(value == 0.0 for value in values)
         items: list[Formula] = []
         for given in item.givens:
             items += [Letters(",  ")] if items else []
             items.append(self.told.shared.symbol(given.slot))
-        words = "none, counted as 0" if zero else "none"
+        words = "none, counted as 0" if item.word == "none" and zero else item.word
         anchor = self.told.anchor(item.number)
         origins = dict.fromkeys(self.given[given.given.name].origin.words or "project file" for given in item.givens)
         return Statement(item.number, anchor, (words,), Row(tuple(items)), SourceLane(", ".join(origins)))
@@ -113,6 +113,8 @@ class GivenBlocks:
                 return (f"material {origin.words}",)
             case "source":
                 return (origin.words,)
+            case "criteria":
+                return ("criteria",)
             case "schedule" | "candidate":
                 return (f"{origin.kind} {origin.words}",)
             case "none" if origin.words:

@@ -35,10 +35,11 @@ class SayGivens:
 
 
 @dataclass(frozen=True, slots=True)
-class SayNone:
-    """Given values the project says there are none of, in one line."""
+class SayAlike:
+    """Given values to which the project says one word, in one line: those it has none of, those that are not so."""
 
     number: int
+    word: Literal["none", "no"]
     givens: tuple[PlannedGiven, ...]
 
 
@@ -214,7 +215,7 @@ class SayStop:
 
 Item: TypeAlias = (
     SayGivens
-    | SayNone
+    | SayAlike
     | SayRows
     | SayChoice
     | SayText

@@ -26,9 +26,11 @@ from calcreport.calculate.model import (
     WorkedText,
     WorkedUnknown,
 )
-from calcreport.report.below import below, severity
+from calcreport.report.alike import alike
+from calcreport.report.below import below, only_words, severity
 from calcreport.report.items import (
     Item,
+    SayAlike,
     SayBranch,
     SayCheck,
     SayChoice,
@@ -40,7 +42,6 @@ from calcreport.report.items import (
     SayLine,
     SayMade,
     SayMethod,
-    SayNone,
     SayOutput,
     SayOutputs,
     SayProof,
@@ -87,13 +88,11 @@ def write_script(worked: Worked) -> Script:
 
 
 def _givens(writer: _Writer) -> None:
-    none = {value.given.name for value in writer.worked.calculation.given if value.origin.kind == "none"}
-    plain = [given for given in writer.worked.plan.givens if given.rows < 0 and not given.over]
-    idle = tuple(given for given in plain if given.given.name in none)
-    idle = idle if len(idle) > 1 else ()
+    joined = alike(writer.worked)
+    own = [given for given in writer.worked.plan.givens if given.rows < 0 and not given.over]
     rows = []
-    for given in plain:
-        if given in idle:
+    for given in own:
+        if any(given in givens for givens in joined.values()):
             continue
         number = writer.next()
         rows.append((number, given))
@@ -101,10 +100,10 @@ def _givens(writer: _Writer) -> None:
             writer.line_of[slot, ()] = number
     if rows:
         writer.items.append(SayGivens(tuple(rows)))
-    if idle:
+    for word, givens in joined.items():
         number = writer.next()
-        writer.items.append(SayNone(number, idle))
-        for given in idle:
+        writer.items.append(SayAlike(number, word, givens))
+        for given in givens:
             for slot in (given.slot, *given.outputs):
                 writer.line_of[slot, ()] = number
     for given in writer.worked.plan.givens:
@@ -150,7 +149,7 @@ def _lines(writer: _Writer, lines: tuple[WorkedLine, ...]) -> None:
                 writer.items.append(SayText(line))
             case WorkedPart():
                 title = ": ".join(words for words in (line.line.title, line.line.stem) if words)
-                if title:
+                if title and not only_words(line.lines):
                     writer.items.append(SayHeading(title, 3))
                 _lines(writer, line.lines)
             case WorkedBranches():

@@ -68,7 +68,7 @@ def not_covered(project: WorkedProject) -> tuple[tuple[str, tuple[str, ...]], ..
     found: dict[str, list[str]] = {}
     for worked in project.calculations:
         mark = worked.calculation.mark
-        for state in worked.plan.template.excludes:
+        for state in worked.left_out:
             if f"{mark} {state}" not in said and state not in said:
                 found.setdefault(state, []).append(mark)
     return tuple((state, tuple(marks)) for state, marks in found.items())

@@ -71,6 +71,7 @@ _SECTION = """  - mark: B{place}
       d_agg: 3/4 in
       rounded_eps_ty: no
       third_more: {third}
+      in_sfrs: no
 """
 
 

@@ -41,6 +41,7 @@ _SCHEDULE = """schedules:
       c_l: none
       d_agg: 3/4 in
       rounded_eps_ty: no
+      in_sfrs: no
 """
 _HEADINGS = ("Mark", "Concrete", "Width (in)", "Depth (in)", "Bottom", "Moment (kip-ft)", "Third")
 #: lines of a section as one would type them for SymPy, with the unit of each result

@@ -190,7 +190,7 @@ def test_a_beam_under_an_earlier_edition(tmp_path: Path) -> None:
     beam = (
         "  - {mark: B1, title: beam, template: aci318/beam-flexure, concrete: C4, bars: G60, given: {b: 12 in, "
         "h: 19.01 in, c_c: 1.5 in, stirrup: '#3', face: bottom, layer: [{name: first, steel: '3#10'}], c_l: none, "
-        "M_u: 200 kip*ft, d_agg: 0.75 in, rounded_eps_ty: no, third_more: no}}\n"
+        "M_u: 200 kip*ft, d_agg: 0.75 in, rounded_eps_ty: no, third_more: no, in_sfrs: no}}\n"
     )
     code, told = compared(make(tmp_path, beam))
     found = changes(told, "B1")

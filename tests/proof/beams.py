@@ -150,6 +150,7 @@ def _section(system: System, draw: Random, place: int, size: tuple[float, float]
         "d_agg": draw.choice(system.aggregates),
         "rounded_eps_ty": draw.choice(("yes", "no")) if grade == 0 else "no",
         "third_more": draw.choice(("yes", "no")),
+        "in_sfrs": draw.choice(("yes", "no")),
     }
     return _calculation(f"B{place}", "aci318/beam-flexure", concrete, f"G{grade}", given)
 
@@ -194,6 +195,7 @@ def _edge(mark: str, title: str, moment: str, layers: str, **other: str) -> str:
     given = {
         "b": "10 in", "h": "18 in", "c_c": "1.5 in", "stirrup": "'#3'", "face": "bottom", "layer": layers,
         "c_l": "none", "M_u": moment, "d_agg": "3/4 in", "rounded_eps_ty": "no", "third_more": "no",
+        "in_sfrs": "no",
     }  # fmt: skip
     text = _calculation(mark, "aci318/beam-flexure", "C0", "G0", given | other)
     return text.replace(f"Section at the greatest moment, beam {mark}", title)

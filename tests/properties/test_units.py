@@ -46,7 +46,7 @@ FIRST = {name: spellings[0] for name, spellings in SAME.items()}
 _GIVEN = ("b", "h", "c_c", "c_l", "M_u", "d_agg")
 _REST = (
     "stirrup: '#4', face: bottom, layer: [{name: first, steel: 3-#9}, {name: second, steel: 2-#8}], "
-    "rounded_eps_ty: no, third_more: no"
+    "rounded_eps_ty: no, third_more: no, in_sfrs: no"
 )
 
 

@@ -47,6 +47,35 @@ def test_an_uncovered_limit_state_stops_it(tmp_path: Path) -> None:
     assert slugs(tmp_path, "1 in", excludes="[shear]", more=word) == []
 
 
+def test_a_caution_leaves_a_limit_state_out_where_it_is_reached(tmp_path: Path) -> None:
+    template = """\
+symbols: {a: {unit: in, says: a length}}
+given: {a: }
+lines:
+  - branches:
+      - {when: 'a > 1 in', lines: [{caution: Longer than an inch., leaves out: [creep, sway]}]}
+      - otherwise: [{note: Short.}]
+  - {check: short, holds: 'a <= 2 in', cite: geometry}
+"""
+
+    def found(a: str, more: str = "", status: str = "for permit") -> tuple[list[str], tuple[tuple[str, ...], ...]]:
+        path = write_small(tmp_path, template, f"{{a: {a}}}")
+        path.write_text(path.read_text().replace("status: preliminary", f"status: {status}") + more)
+        opened = open_project(str(path))
+        assert isinstance(opened, Opened)
+        package = report(opened.world, opened.source)
+        left = package.composed.summary.not_covered if package.composed else ()
+        return [problem.found or problem.slug for problem in package.problems], left
+
+    assert found("2 in", status="for review") == ([], (("creep", ("T1",)), ("sway", ("T1",))))
+    assert found("2 in") == (["creep, sway"], ())
+    word = "dispositions: [{limit state: creep, covered by: package 2}]\n"
+    assert found("2 in", word) == (["sway"], ())
+    # nothing is left out where the caution is not reached; a word on it stays a word on something that is there
+    assert found("1 in", word, "for review") == ([], ())
+    assert found("1 in", "dispositions: [{limit state: fire, covered by: none}]\n", "for review")[0] == ["fire"]
+
+
 def test_an_open_assumption_stops_it(tmp_path: Path) -> None:
     assert slugs(tmp_path, "1 in", more="assumptions: [{says: dry, to be verified: yes, by: owner}]\n") == ["not-ready"]
     assert slugs(tmp_path, "1 in", more="assumptions: [{says: dry, to be verified: no}]\n") == []

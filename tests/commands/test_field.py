@@ -127,6 +127,7 @@ def test_beyond_the_range_of_a_template_there_is_no_number(mill: Path) -> None:
         ("B1", "b=16in", "`B1.b` is 16 in as designed too"),
         ("B1", "b=1'-4\"", "as designed too"),
         ("B1", "b-=0in", "as designed too"),
+        ("B1", "sdc=C", "`B1.sdc` is a criterion of the whole project"),
         ("B1", "b", "`b` is no change"),
         ("B1", "", "is no change"),
         ("B1", "b=", "is no change"),

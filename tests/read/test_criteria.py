@@ -12,7 +12,7 @@ from calcreport.core.quantity import Amount
 from calcreport.driver import Result, work
 from calcreport.filesystem import Disk, read_text
 from calcreport.publish import report
-from calcreport.report.model import Givens, GivenRow
+from calcreport.report.model import GivenRow, Givens
 
 LIBRARY = Path(__file__).parents[1] / "problems" / "library"
 HEAD = """\

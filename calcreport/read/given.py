@@ -33,6 +33,8 @@ KEYS = (
     "over",
     "gives",
 )
+#: keys that do not stand beside `criterion`
+NO_CRITERION = ("material", "rows", "over")
 #: what a callout gives, in which dimension
 OUTPUTS: dict[str, Dimension] = {
     "area": multiply(LENGTH, LENGTH), "diameter": LENGTH, "count": NONE, "spacing": LENGTH,

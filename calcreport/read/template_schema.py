@@ -140,12 +140,13 @@ def _given() -> Schema:
         "names": _NAMES, "least": _each(whole(0, MOST_ROWS)), "most": _each(whole(1, MOST_ROWS)),
         "over": _NAMES, "gives": _each(mapping(_each(choice(given.OUTPUTS)))),
     }  # fmt: skip
-    return closed(given.KEYS, shapes)
+    # a criterion is one value from one place
+    return closed(given.KEYS, shapes) | when(has("criterion"), {"not": {"anyOf": list(map(has, given.NO_CRITERION))}})
 
 
 def _column_given() -> Schema:
     """Return the schema of a column: a declaration that holds no rows of its own."""
-    return {"allOf": [named("given"), {"not": {"anyOf": [has("rows"), has("over")]}}]}
+    return {"allOf": [named("given"), {"not": {"anyOf": [has("rows"), has("over"), has("criterion")]}}]}
 
 
 def _row() -> Schema:
@@ -172,7 +173,8 @@ def _cases(name: str) -> Schema:
 
 #: what stands under the keys of lines
 _SHAPES: dict[str, dict[str, Schema]] = {
-    "heading": {"heading": _WORDS}, "note": {"note": _WORDS}, "caution": {"caution": _WORDS},
+    "heading": {"heading": _WORDS}, "note": {"note": _WORDS}, 
+    "caution": {"caution": _WORDS, "leaves out": _NAMES},
     "assume": {"assume": _WORDS}, "use": {"use": _WORDS},
     "gives": {"gives": _each(text(_NAME)), "formula": _FORMULA, "branches": _each(_cases("arm")),
               "as cited": _FORMULA},

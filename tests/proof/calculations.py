@@ -19,8 +19,8 @@ from .statements import NumberedLine, Statement
 from .tables import Table
 from .units import Printed, is_number
 
-#: words of a line of values given as none
-LEFT_OUT = re.compile(r"none, counted as (\S+)")
+#: words of a line of values given as none, or of answers that are no
+LEFT_OUT = re.compile(r"none, counted as (\S+)|no")
 #: (set, row) pairs that stand open
 Rows = tuple[tuple[str, str], ...]
 
@@ -261,13 +261,13 @@ def _register(calculation: Calculation) -> None:
 
 
 def _left_out(calculation: Calculation, statement: Statement, place: Place) -> None:
-    """Register what is given as none in one line: `none, counted as 0   b_t, q_D`."""
+    """Register what is given as none in one line, `none, counted as 0   b_t, q_D`, and answers: `no   SFRS`."""
     counted = LEFT_OUT.fullmatch(statement.words)
-    if counted is not None and is_number(counted[1]):
-        for part in split(statement.tokens, "comma")[0]:
-            name = symbol_of(part)
-            if name is not None:
-                calculation.words[name].append(("none", place))
+    for part in split(statement.tokens, "comma")[0] if counted is not None else ():
+        name = symbol_of(part)
+        if counted is not None and name is not None:
+            calculation.words[name].append((statement.words.split(",")[0], place))
+            if counted[1] is not None and is_number(counted[1]):
                 calculation.note(Key(name, frozenset()), Printed(counted[1]), place)
 
 

@@ -25,7 +25,8 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
         "core.tokens", "core.units", "core.version", "core.world",
     )),
     ("methods", (
-        "methods", "methods.fibres", "methods.members", "methods.results", "methods.roots", "methods.table",
+        "methods", "methods.envelopes", "methods.fibres", "methods.members", "methods.results", "methods.roots",
+        "methods.spans", "methods.stations", "methods.table",
     )),
     ("read", (
         "read", "read.as_built", "read.bars", "read.bodies", "read.calculations", "read.candidates", "read.cases",
@@ -51,7 +52,8 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
         "calculate.selection",
     )),
     ("second", (
-        "second", "second.agreement", "second.closures", "second.quantities", "second.rework",
+        "second", "second.agreement", "second.closing", "second.closures", "second.continuous", "second.quantities",
+        "second.rework",
     )),
     ("history", (
         "history", "history.accounts", "history.alterations", "history.comparison", "history.differences", "history.frozen", "history.issued",
@@ -65,7 +67,7 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
         "report.fronts", "report.given_blocks", "report.governing", "report.items", "report.members", "report.method_blocks", "report.model",
         "report.moved", "report.notation", "report.premises", "report.response", "report.row_blocks", "report.sampler", "report.script", "report.spaced", "report.statuses",
         "report.substitution", "report.summary", "report.taken", "report.told", "report.traced", "report.value_lines",
-        "report.valuesfile",
+        "report.valuesfile", "report.writer",
     )),
     ("layout", (
         "layout", "layout.banner", "layout.blocks", "layout.checks", "layout.cover", "layout.delimiters", "layout.drawing",

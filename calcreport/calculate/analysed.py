@@ -6,8 +6,9 @@ A planned method and `Values` in; what the method takes out, and its result kept
 from __future__ import annotations
 
 from collections.abc import Callable
+from typing import Any
 
-from calcreport.calculate.model import PlannedMethod, Values
+from calcreport.calculate.model import BoundInput, PlannedMethod, Values
 from calcreport.core.expression import Expression
 from calcreport.core.methods import METHODS
 from calcreport.methods.results import Handed, Result
@@ -18,39 +19,43 @@ def hand_over(line: PlannedMethod, values: Values, work: Callable[[Expression], 
     takes, sets = METHODS[line.kind].takes, {given.name: given.rows for given in line.inputs if given.rows >= 0}
     handed: Handed = {}
     for given in line.inputs:
-        if given.formula is None:
-            handed[given.name] = given.word or float(len(values.row_names(given.rows)))
-        elif takes[given.name].shape == "row number":
-            handed[given.name] = _by_row(given.formula, sets[takes[given.name].rows], values, work)
+        if given.rows >= 0:
+            handed[given.name] = values.row_names(given.rows)
         else:
-            handed[given.name] = work(given.formula)
+            rows = tuple(sets[name] for name in takes[given.name].rows)
+            handed[given.name] = _by_row(given, rows, values, work)
     return handed
 
 
-def _by_row(formula: Expression, rows: int, values: Values, work: Callable[[Expression], float]) -> tuple[float, ...]:
-    before, found = values.open[rows], []
-    for row in range(len(values.row_names(rows))):
-        values.open[rows] = row
-        found.append(work(formula))
-    values.open[rows] = before
+def _by_row(given: BoundInput, rows: tuple[int, ...], values: Values, work: Callable[[Expression], float]) -> Any:
+    """Return a number or a word; a tuple with one for every row of the first of `rows`, and so on inside it."""
+    if not rows and given.formula is not None:
+        return work(given.formula)
+    if not rows:
+        return given.word or values.get(given.slot, values.key(given.slot))
+    before, found = values.open[rows[0]], []
+    for row in range(len(values.row_names(rows[0]))):
+        values.open[rows[0]] = row
+        found.append(_by_row(given, rows[1:], values, work))
+    values.open[rows[0]] = before
     return tuple(found)
 
 
 def keep_result(line: PlannedMethod, result: Result, values: Values, put: Callable[[int, float], None]) -> None:
     """Store the outputs a line takes; `put` fills a slot in the open rows."""
-    ours = {name: index for index, name in line.sets}
     for index, name in line.sets:
-        outer = tuple(values.open[other] for other in values.outer[index])
-        values.names[index][outer] = result.sets[name].names
+        outer = values.outer[index]
+        for key, names in result.sets[name].items():
+            around = tuple(values.open[other] for other in outer[: len(outer) - len(key)])
+            values.names[index][(*around, *key)] = names
     for slot, name in line.outputs:
-        owner = next((made for made in result.sets if name in result.sets[made].columns), "")
-        if not owner:
-            put(slot, result.outputs[name])
-            values.by_method[slot, values.key(slot)] = line
-            continue
-        before = values.open[ours[owner]]
-        for row, value in enumerate(result.sets[owner].columns[name]):
-            values.open[ours[owner]] = row
+        over = METHODS[line.kind].gives[name].over
+        own = values.sets[slot][len(values.sets[slot]) - len(over) :]
+        before = [values.open[index] for index in own]
+        for key, value in result.by_row[name].items() if over else (((), result.outputs[name]),):
+            for index, row in zip(own, key, strict=True):
+                values.open[index] = row
             put(slot, value)
             values.by_method[slot, values.key(slot)] = line
-        values.open[ours[owner]] = before
+        for index, row in zip(own, before, strict=True):
+            values.open[index] = row

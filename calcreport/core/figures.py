@@ -18,7 +18,7 @@ def _number(dimension: Dimension, *, needed: bool = True) -> InputKind:
 
 
 def _row(rows: str, dimension: Dimension, *, named: bool = False) -> InputKind:
-    return InputKind("row number", dimension, named=named, rows=rows)
+    return InputKind("row number", dimension, named=named, rows=(rows,))
 
 
 _MOMENT, _SPREAD = multiply(FORCE, LENGTH), divide(FORCE, LENGTH)
@@ -33,13 +33,13 @@ def _along(dimension: Dimension) -> dict[str, InputKind]:
     return {
         "stations": InputKind("set"), "x": _row("stations", LENGTH),
         "demand": _row("stations", dimension, named=True),
-        "least_demand": InputKind("row number", dimension, False, rows="stations"),
+        "least_demand": InputKind("row number", dimension, False, rows=("stations",)),
         "pieces": InputKind("set"),
         "from": _row("pieces", LENGTH, named=True), "to": _row("pieces", LENGTH, named=True),
         "strength": _row("pieces", dimension, named=True),
-        "strength_to": InputKind("row number", dimension, False, named=True, rows="pieces"),
-        "against": InputKind("row number", dimension, False, named=True, rows="pieces"),
-        "against_to": InputKind("row number", dimension, False, named=True, rows="pieces"),
+        "strength_to": InputKind("row number", dimension, False, named=True, rows=("pieces",)),
+        "against": InputKind("row number", dimension, False, named=True, rows=("pieces",)),
+        "against_to": InputKind("row number", dimension, False, named=True, rows=("pieces",)),
     }  # fmt: skip
 
 

@@ -12,14 +12,16 @@ from calcreport.core.units import NONE, Dimension
 class InputKind:
     """One input that code declares and a template hands over by name."""
 
-    #: a number; a number for every row of the set handed as `rows` (or one for all of them); a set; a word
-    shape: Literal["number", "row number", "set", "word"]
+    #: a number; a number or a word for every row, or pair of rows, of the sets handed as `rows` (or one for all of
+    #: them); a set; a word
+    shape: Literal["number", "row number", "row word", "set", "word"]
     dimension: Dimension = NONE
+    #: False for what may be left out; the rows of a set left out are left out with it
     needed: bool = True
     #: its symbol is printed beside it: only a symbol, or 0, may be handed
     named: bool = False
-    #: input whose set a row number belongs to
-    rows: str = ""
+    #: inputs whose sets a row number or row word belongs to, outer first
+    rows: tuple[str, ...] = ()
     #: words it knows
     words: tuple[str, ...] = ()
     #: what it is, as the sheet says it, {} for what is handed; a space in front joins it to the one before

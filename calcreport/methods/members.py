@@ -1,156 +1,207 @@
-"""A straight member of one stiffness on supports that do not settle, under a uniform load a span, by stiffness.
+"""A straight member on supports that do not settle, spans of their own stiffness, by the stiffness method.
 
-Numbers in base units in, `Result` out. Every support and free end is a node with a deflection (up) and a slope
-(anticlockwise); the loads of a span act as their fixed-end forces; shears and moments inside a span follow by statics.
-Method: the direct stiffness method (common practice), its equations solved by the library.
+Numbers in base units in, `Result` out. Unknown are the slopes (anticlockwise) of the supports that turn; an overhang
+acts by its root moment. Every load case, and every span of a patterned one, is solved by itself: greatest and least
+over all arrangements are the sums of what adds and of what takes away. Method: slope deflection in matrix form
+(common practice), its equations solved by the library.
 """
 
 from __future__ import annotations
 
 from dataclasses import dataclass
-from itertools import pairwise
+from typing import Any
 
 from calcreport.core.late import load
-from calcreport.methods.results import Handed, MadeSet, NoResult, Proof, Result, Spend, number, numbers
+from calcreport.methods.results import Handed, NoResult, Spend, number, numbers, rows_of
+from calcreport.methods.spans import Loads, Spread
 
 #: spans at most
 MOST_SPANS = 50
-#: what is left of terms that cancel is rounding below this share of the largest
-NOISE = 1e-13
-#: sums further from nothing than this share of their largest term prove no result
-CLOSED = 1e-9
+
+
+@dataclass(frozen=True, slots=True)
+class Loading:
+    """Loads that always act together: a case on all spans, or a patterned case on one."""
+
+    case: int
+    #: loads by span
+    on: dict[int, Loads]
+    #: acts or not as is worse
+    patterned: bool
 
 
 @dataclass(frozen=True, slots=True)
 class Member:
-    """A member with its loads; base units. `held` tells of every node whether it is a support."""
+    """A member with its loads; base units."""
 
     lengths: tuple[float, ...]
-    loads: tuple[float, ...]
-    stiffness: float
-    held: tuple[bool, ...]
+    stiffness: tuple[float, ...]
+    hold: tuple[str, ...]
+    springs: tuple[float, ...]
+    loadings: tuple[Loading, ...]
 
-    def nodes(self) -> tuple[float, ...]:
+    def starts(self) -> tuple[float, ...]:
         """Return the places of supports and free ends from the left end."""
         found = [0.0]
         for length in self.lengths:
             found.append(found[-1] + length)
         return tuple(found)
 
-
-def member_on_supports(handed: Handed, spend: Spend) -> Result:
-    """Return stations with shear and moment, and the reactions; raises `NoResult`."""
-    member, parts = _member(handed), int(number(handed, "parts"))
-    count = len(member.lengths)
-    spend(4 * (count + 1) ** 3 + count * parts)
-    moved = _deflected(member)
-    ends = [_end_forces(member, span, moved) for span in range(count)]
-    reactions = [0.0] * (count + 1)
-    for span, (left, _, right, _) in enumerate(ends):
-        reactions[span] += left
-        reactions[span + 1] += right
-    return _result(member, parts, moved, ends, reactions)
+    def hangs(self, span: int) -> str:
+        """Return the side on which a span is free, or nothing."""
+        return "left" if self.hold[span] == "free" else "right" if self.hold[span + 1] == "free" else ""
 
 
-def _member(handed: Handed) -> Member:
+@dataclass(frozen=True, slots=True)
+class Solved:
+    """Every loading solved: arrays by loading and node or span; moments sagging, slopes anticlockwise."""
+
+    slopes: Any
+    #: moments at the left and right end of spans, shear at their left end
+    left: Any
+    right: Any
+    shear: Any
+    #: forces of the supports up; moments right of them less those left of them
+    reactions: Any
+    taken: Any
+
+
+def member_handed(handed: Handed, spend: Spend) -> Member:
     """Return the member handed over; one that would fall is none."""
-    lengths, loads = numbers(handed, "l"), numbers(handed, "w")
-    if not 0 < len(lengths) <= MOST_SPANS:
+    lengths, stiffness = numbers(handed, "l"), numbers(handed, "EI")
+    hold, springs = handed["hold"], numbers(handed, "k")
+    count = len(lengths)
+    if not 0 < count <= MOST_SPANS:
         raise NoResult(f"a member has between 1 and {MOST_SPANS} spans")
-    if min(lengths) <= 0 or number(handed, "EI") <= 0:
-        raise NoResult("a member needs lengths and a stiffness above zero")
-    inner = (True,) * (len(lengths) - 1)
-    held = (handed["left"] == "supported", *inner, handed["right"] == "supported")
-    if sum(held) < 2:
-        raise NoResult("a member on fewer than two supports falls")
-    return Member(lengths, loads, number(handed, "EI"), held)
+    if len(hold) != count + 1:
+        raise NoResult(f"{count} spans stand on {count + 1} supports, free ends counted, not on {len(hold)}")
+    if min(lengths) <= 0 or min(stiffness) <= 0:
+        raise NoResult("a member needs lengths and stiffnesses above zero")
+    if "free" in hold[1:-1]:
+        raise NoResult("only an end of a member is free")
+    if any(word == "spring" and k <= 0 for word, k in zip(hold, springs, strict=True)):
+        raise NoResult("a spring needs a stiffness above zero")
+    held = [word for word in hold if word != "free"]
+    if not held or held == ["pinned"]:
+        raise NoResult("a member on one pinned support, or none, falls")
+    spend(count * (count + 1) ** 2)
+    member = Member(lengths, stiffness, hold, springs, _loadings(handed, lengths))
+    spend(len(member.loadings) * count)
+    return member
 
 
-def _deflected(member: Member) -> list[float]:
-    """Return deflection and slope of every node in turn."""
+def _loadings(handed: Handed, lengths: tuple[float, ...]) -> tuple[Loading, ...]:
+    """Return what acts together; what has no load is left out."""
+    found: list[Loading] = []
+    placed = [_span_of(handed, "n_s", row, lengths, ("s_1", "s_2")) for row in range(len(rows_of(handed, "patches")))]
+    at = [_span_of(handed, "n_P", row, lengths, ("s_P",)) for row in range(len(rows_of(handed, "points")))]
+    for case, word in enumerate(handed["placing"]):
+        on: dict[int, Loads] = {}
+        for span, length in enumerate(lengths):
+            w = handed["w"][span][case]
+            spread = [Spread(0.0, length, w, w)] if w else []
+            for row, (own, (start, end)) in enumerate(placed):
+                first, last = handed["w_1"][row][case], handed["w_2"][row][case]
+                if own == span and (first or last):
+                    spread.append(Spread(start, end, first, last))
+            points = [(s, handed["P"][row][case]) for row, (own, (s,)) in enumerate(at) if own == span]
+            loads = Loads(tuple(spread), tuple(point for point in points if point[1]))
+            if loads.spread or loads.points:
+                on[span] = loads
+        if word == "patterned":
+            found += [Loading(case, {span: loads}, True) for span, loads in on.items()]
+        elif on:
+            found.append(Loading(case, on, False))
+    return tuple(found)
+
+
+def _span_of(
+    handed: Handed, name: str, row: int, lengths: tuple[float, ...], places: tuple[str, ...]
+) -> tuple[int, tuple[float, ...]]:
+    """Return the span a load stands in and its places there; outside of it is a load on nothing."""
+    which = handed["patches" if name == "n_s" else "points"][row]
+    span, found = handed[name][row], tuple(handed[place][row] for place in places)
+    if span != int(span) or not 1 <= span <= len(lengths):
+        raise NoResult(f"load {which}: there is no span number {span:g}")
+    length = lengths[int(span) - 1]
+    if found[0] < 0 or found[-1] > length * (1 + 1e-12) or (len(found) > 1 and found[0] >= found[1]):
+        raise NoResult(f"load {which} does not stand within its span")
+    return int(span) - 1, tuple(min(place, length) for place in found)
+
+
+def solve(member: Member) -> Solved:
+    """Return slopes, end forces and reactions of every loading."""
     numpy = load("numpy")
-    size = 2 * len(member.held)
-    matrix, forces = numpy.zeros((size, size)), numpy.zeros(size)
+    count, size = len(member.lengths), len(member.loadings)
+    matrix, forces = numpy.zeros((count + 1, count + 1)), numpy.zeros((count + 1, size))
+    fixed = numpy.zeros((size, count, 2))
     for span, length in enumerate(member.lengths):
-        at = slice(2 * span, 2 * span + 4)
-        matrix[at, at] += numpy.array(_stiffness(member.stiffness, length))
-        forces[at] += numpy.array(_fixed(member.loads[span], length))
-    free = [place for place in range(size) if place % 2 or not member.held[place // 2]]
-    moved = numpy.zeros(size)
-    moved[free] = numpy.linalg.solve(matrix[numpy.ix_(free, free)], forces[free])
-    return [float(value) for value in moved]
+        side = member.hangs(span)
+        if not side:
+            stiff = 2 * member.stiffness[span] / length
+            matrix[span : span + 2, span : span + 2] += stiff * numpy.array([[2.0, 1.0], [1.0, 2.0]])
+        for number_, loading in enumerate(member.loadings):
+            if span not in loading.on:
+                continue
+            ends = _ends(loading.on[span], length, side)
+            fixed[number_, span] = ends
+            forces[span, number_] -= ends[0]
+            forces[span + 1, number_] -= ends[1]
+    for node, word in enumerate(member.hold):
+        matrix[node, node] += member.springs[node] if word == "spring" else 0.0
+    free = [node for node, word in enumerate(member.hold) if word not in ("fixed", "free")]
+    slopes = numpy.zeros((count + 1, size))
+    if free and size:
+        slopes[free] = numpy.linalg.solve(matrix[numpy.ix_(free, free)], forces[free])
+    return _ends_of(member, slopes.T, fixed)
 
 
-def _stiffness(stiffness: float, length: float) -> list[list[float]]:
-    """Return forces and moments at the ends of a span for unit deflections and slopes there."""
-    a, b, c = 12 * stiffness / length**3, 6 * stiffness / length**2, 2 * stiffness / length
-    return [[a, b, -a, b], [b, 2 * c, -b, c], [-a, -b, a, -b], [b, c, -b, 2 * c]]
+def _ends(loads: Loads, length: float, side: str) -> tuple[float, float]:
+    """Return the moments (anticlockwise) that hold the ends of a loaded span, or the root of an overhang."""
+    if side == "right":
+        return loads.weighed(lambda s: s), 0.0
+    if side == "left":
+        return 0.0, -loads.weighed(lambda s: length - s)
+    left, right = loads.fixed(length)
+    return left, -right
 
 
-def _fixed(load_: float, length: float) -> list[float]:
-    """Return the forces and moments by which a load acts on the nodes of its span."""
-    force, moment = load_ * length / 2, load_ * length**2 / 12
-    return [-force, -moment, -force, moment]
-
-
-def _end_forces(member: Member, span: int, moved: list[float]) -> list[float]:
-    """Return the forces (up) and moments (anticlockwise) on the ends of a span: left, left, right, right."""
-    length, at = member.lengths[span], moved[2 * span : 2 * span + 4]
-    rows, fixed = _stiffness(member.stiffness, length), _fixed(member.loads[span], length)
-    return [sum(k * u for k, u in zip(row, at, strict=True)) - f for row, f in zip(rows, fixed, strict=True)]
-
-
-def _result(member: Member, parts: int, moved: list[float], ends: list[list[float]], reactions: list[float]) -> Result:
-    nodes = member.nodes()
-    names, places, shears, moments = [], [], [], []
+def _ends_of(member: Member, slopes: Any, fixed: Any) -> Solved:
+    numpy = load("numpy")
+    count, size = len(member.lengths), len(member.loadings)
+    left, right, shear = (numpy.zeros((size, count)) for _ in range(3))
+    reactions, taken = numpy.zeros((size, count + 1)), numpy.zeros((size, count + 1))
     for span, length in enumerate(member.lengths):
-        shear, moment, load_ = ends[span][0], -ends[span][1], member.loads[span]
-        for part in range(parts + 1):
-            x = length * part / parts
-            names.append(f"{span + 1}.{part}")
-            places.append(nodes[span] + x)
-            shears.append(_sum(shear, -load_ * x))
-            moments.append(_sum(moment, shear * x, -load_ * x * x / 2))
-    own = [node for node, held in enumerate(member.held) if held]
-    columns = {"x": tuple(places), "V": tuple(shears), "M": tuple(moments)}
-    supports = {"x_R": tuple(nodes[n] for n in own), "R": tuple(reactions[n] for n in own)}
-    proofs = _proofs(member, moved, ends, supports)
-    if any(abs(proof.residual) > CLOSED * proof.of for proof in proofs):
-        raise NoResult("the sums do not close to one part in 1,000,000,000")
-    return Result({}, proofs, {
-        "stations": MadeSet(tuple(names), columns),
-        "supports": MadeSet(tuple(str(n + 1) for n in range(len(own))), supports),
-    })  # fmt: skip
+        stiff = 0.0 if member.hangs(span) else 2 * member.stiffness[span] / length
+        left[:, span] = -(fixed[:, span, 0] + stiff * (2 * slopes[:, span] + slopes[:, span + 1]))
+        right[:, span] = fixed[:, span, 1] + stiff * (slopes[:, span] + 2 * slopes[:, span + 1])
+        for number_, loading in enumerate(member.loadings):
+            loads = loading.on.get(span, Loads())
+            whole = loads.effect(length, 0)
+            turned = right[number_, span] - left[number_, span] + loads.effect(length, 1)
+            side = member.hangs(span)
+            shear[number_, span] = 0.0 if side == "left" else whole if side == "right" else turned / length
+            reactions[number_, span + 1] += whole
+        reactions[:, span] += shear[:, span]
+        reactions[:, span + 1] -= shear[:, span]
+        taken[:, span] += left[:, span]
+        taken[:, span + 1] -= right[:, span]
+    for node, word in enumerate(member.hold):
+        if word in ("free", "pinned"):
+            taken[:, node] = 0.0
+        if word == "free":
+            reactions[:, node] = 0.0
+    return Solved(slopes, left, right, shear, reactions, taken)
 
 
-def _sum(*terms: float) -> float:
-    """Add up; what is left of terms that cancel to the last bits is nothing."""
-    found = sum(terms)
-    return found if abs(found) > NOISE * max(map(abs, terms)) else 0.0
+def curvature_terms(member: Member, solved: Solved, which: int, span: int, x: float) -> tuple[float, float]:
+    """Return the areas under M/EI of one loading from the left of a span to a place: slope and deflection they add."""
+    loads = member.loadings[which].on.get(span, Loads())
+    left, shear, stiffness = float(solved.left[which, span]), float(solved.shear[which, span]), member.stiffness[span]
+    turned = (left * x + shear * x**2 / 2 - loads.effect(x, 2)) / stiffness
+    return turned, (left * x**2 / 2 + shear * x**3 / 6 - loads.effect(x, 3)) / stiffness
 
 
-def _proofs(
-    member: Member, moved: list[float], ends: list[list[float]], supports: dict[str, tuple[float, ...]]
-) -> tuple[Proof, ...]:
-    nodes = member.nodes()
-    loads = [load_ * length for load_, length in zip(member.loads, member.lengths, strict=True)]
-    turned = [force * (nodes[n] + nodes[n + 1]) / 2 for n, force in enumerate(loads)]
-    held = [force * x for force, x in zip(supports["R"], supports["x_R"], strict=True)]
-    slopes = [_slopes(member, span, moved, ends[span]) for span in range(len(loads))]
-    gaps = [right[0] - left[1] for left, right in pairwise(slopes)]
-    return (
-        Proof(sum(supports["R"]) - sum(loads), max(map(abs, (*loads, *supports["R"])))),
-        Proof(sum(held) - sum(turned), max(map(abs, (*held, *turned)))),
-        Proof(max(gaps, key=abs, default=0.0), max(abs(slope) for pair in slopes for slope in pair)),
-    )
-
-
-def _slopes(member: Member, span: int, moved: list[float], ends: list[float]) -> tuple[float, float]:
-    """Return the slopes at the ends of a span from its moments by the areas under them, not from the nodes' own."""
-    length, load_ = member.lengths[span], member.loads[span]
-    left, right = -ends[1], ends[3]
-    chord = (moved[2 * span + 2] - moved[2 * span]) / length
-    bent = load_ * length**3 / 24
-    one = chord - (bent + length * (2 * left + right) / 6) / member.stiffness
-    other = chord + (bent + length * (left + 2 * right) / 6) / member.stiffness
-    return one, other
+def parts_of(handed: Handed) -> int:
+    """Return into how many equal parts stations divide a span."""
+    return int(number(handed, "parts"))

@@ -4,10 +4,13 @@ from __future__ import annotations
 
 from collections.abc import Callable
 from dataclasses import dataclass, field
-from typing import TypeAlias
+from typing import Any, TypeAlias
 
-#: number by name, or numbers by row for a row number; a word; the rows of a set handed are their number
-Handed: TypeAlias = "dict[str, float | str | tuple[float, ...]]"
+#: by name: a number; a word; the row names of a set; for numbers and words by row a tuple, for those by pairs of rows
+#: of two sets a tuple of tuples
+Handed: TypeAlias = "dict[str, Any]"
+#: rows of the sets an output or a made set belongs to, in the order the signature names them
+Key: TypeAlias = tuple[int, ...]
 #: counts work against a bound; raises where there is too much
 Spend: TypeAlias = Callable[[int], None]
 
@@ -25,20 +28,22 @@ class Proof:
 
 
 @dataclass(frozen=True, slots=True)
-class MadeSet:
-    """Rows a method makes, with their columns."""
-
-    names: tuple[str, ...]
-    columns: dict[str, tuple[float, ...]]
-
-
-@dataclass(frozen=True, slots=True)
 class Result:
     """The result of one method; proofs in the order its signature names them."""
 
     outputs: dict[str, float]
     proofs: tuple[Proof, ...]
-    sets: dict[str, MadeSet] = field(default_factory=dict)
+    #: row names of the sets it makes, by the rows they lie inside
+    sets: dict[str, dict[Key, tuple[str, ...]]] = field(default_factory=dict)
+    #: outputs over rows
+    by_row: dict[str, dict[Key, float]] = field(default_factory=dict)
+
+
+def rows_of(handed: Handed, name: str) -> tuple[Any, ...]:
+    """Return the row names of a set, or an input by row; nothing where the set is left out."""
+    found = handed.get(name, ())
+    assert isinstance(found, tuple)
+    return found
 
 
 def number(handed: Handed, name: str) -> float:

@@ -4,8 +4,8 @@ from __future__ import annotations
 
 from collections.abc import Callable
 
+from calcreport.methods.envelopes import member_on_supports
 from calcreport.methods.fibres import section_by_fibres, section_in_bands_by_fibres
-from calcreport.methods.members import member_on_supports
 from calcreport.methods.results import Handed, Result, Spend
 
 WORKS: dict[str, Callable[[Handed, Spend], Result]] = {

@@ -125,9 +125,8 @@ class _Holder(FormulaHolder):
         """Hold what a method is handed, and what it gives against the units of our symbols."""
         kind = METHODS[line.kind]
         self.inputs(line.inputs, kind.takes, "method", line.span)
-        gives = {**kind.gives, **{name: found for columns in kind.sets.values() for name, found in columns.items()}}
         for index, output in line.outputs:
-            slot, wanted = self.slots[index], gives[output]
+            slot, wanted = self.slots[index], kind.gives[output].dimension
             unit = slot.symbol.unit
             if unit is None or unit.dimension != wanted:
                 self.problems.add(

@@ -53,7 +53,7 @@ class Binder:
         match wanted.shape:
             case "set":
                 return self.set(name, formula)
-            case "word":
+            case "word" | "row word":
                 return self.word(name, formula, wanted)
             case _:
                 return self.number(name, formula, wanted)
@@ -67,7 +67,7 @@ class Binder:
     def word(self, name: Name, formula: Expression, wanted: InputKind) -> BoundInput:
         found = self.space.names.get(formula.name) if isinstance(formula, Name) else None
         if isinstance(formula, Name) and isinstance(found, Slot) and set(found.symbol.words) <= set(wanted.words):
-            self.names.hold_open(found.sets, formula.name, formula.span, self.at)
+            self.names.hold_open(found.sets, formula.name, formula.span, self.rows_open(wanted))
             return BoundInput(name.name, slot=found.index, span=formula.span)
         if isinstance(formula, Name) and formula.name in wanted.words:
             return BoundInput(name.name, word=formula.name)
@@ -87,10 +87,13 @@ class Binder:
         return BoundInput(name.name, formula=self.names.expression(formula, self.space, self.at))
 
     def rows_open(self, wanted: InputKind) -> Context:
-        """Return where a number stands: with the rows of its set open, if it has one."""
-        rows = self.handed.get(wanted.rows)
-        owner = self.space.names.get(rows.name) if isinstance(rows, Name) else None
-        return replace(self.at, open=(*self.at.open, owner.index)) if isinstance(owner, RowSet) else self.at
+        """Return where a number or a word stands: with the rows of its sets open, if it has some."""
+        opened = self.at.open
+        for name in wanted.rows:
+            rows = self.handed.get(name)
+            owner = self.space.names.get(rows.name) if isinstance(rows, Name) else None
+            opened = (*opened, owner.index) if isinstance(owner, RowSet) else opened
+        return replace(self.at, open=opened)
 
     def say_shape(self, name: Name, formula: Expression, expected: str) -> None:
         self.problems.add("wrong-shape", formula.span, f"the {self.what} takes something else for `{name.name}`",

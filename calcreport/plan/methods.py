@@ -10,7 +10,7 @@ from dataclasses import replace
 from calcreport.core.expression import Expression, Name, Number, literal
 from calcreport.core.grammar import read_condition, read_formula
 from calcreport.core.inputs import InputKind
-from calcreport.core.methods import AGAIN, APART, METHODS, MethodKind, outputs_of
+from calcreport.core.methods import AGAIN, APART, METHODS, MethodKind, OutputKind, outputs_of, rests_on
 from calcreport.core.problems import Problems, listed
 from calcreport.core.source import Citation, Source, Span
 from calcreport.core.units import ONE
@@ -46,33 +46,74 @@ def plan_method(line: Method, names: Names, maker: Maker, space: Space, at: Cont
         space.told.update(line.names())
         return None
     inputs = _bind(line.method, kind, line.inputs, names, space, at)
-    own = [output for output in line.gives if output.output.name in kind.sets]
-    sets = {output.output.name: _make_set(line, output, maker, space, at) for output in own}
+    _hold_sets(inputs, line.inputs, kind, names, at)
+    handed = {given.name: given.rows for given in inputs if kind.takes[given.name].shape == "set"}
+    sets: dict[str, int] = {}
+    for output in line.gives:
+        inside = kind.sets.get(output.output.name)
+        if inside is not None:
+            outer = (*at.open, *(handed.get(name, -1) for name in inside))
+            sets[output.output.name] = _make_set(line, output, maker, space, outer)
     outputs: list[tuple[int, str]] = []
     for output in line.gives:
         name, problems = output.output, names.problems
-        owner = next((owner for owner, columns in kind.sets.items() if name.name in columns), "")
+        over = kind.gives[name.name].over if name.name in kind.gives else ()
+        owner = next((owner for owner in over if owner in kind.sets and owner not in sets), "")
         if name.name in kind.sets:
             continue
         if name.name not in outputs_of(line.method.name):
             problems.add("unknown-name", name.span, f"the method `{line.method.name}` gives no `{name.name[:40]}`",
                          expected=listed(outputs_of(line.method.name)), found=name.name[:40],
                          hint=problems.near(name.name, outputs_of(line.method.name)))  # fmt: skip
-        elif owner and owner not in sets:
+        elif owner:
             problems.add("unknown-name", name.span, f"`{name.name}` is a column of `{owner}`, which is not taken",
                          expected=f"a name of ours for `{owner}` too", found="the column alone")  # fmt: skip
         elif output.symbol is not None:
-            around = (*at.open, sets[owner]) if owner else at.open
+            around = (*at.open, *({**handed, **sets}.get(one, -1) for one in over))
             outputs.append((_make_slot(line, output, output.symbol, around, maker, space), name.name))
             continue
         space.told.add(_with_stem(line, output))
-    return PlannedMethod(
-        line.method.name, inputs, tuple(outputs), tuple((n, name) for name, n in sets.items()), line.cite, line.span
-    )
+    table = None if line.table is None else _table(line, line.table, outputs, names, space)
+    made = tuple((number, name) for name, number in sets.items())
+    return PlannedMethod(line.method.name, inputs, tuple(outputs), made, line.cite, line.span, table)
 
 
-def _make_set(line: Method, output: Output, maker: Maker, space: Space, at: Context) -> int:
-    return maker.row_set(_with_stem(line, output), space, at.open, (), output.name.span).index
+def _table(
+    line: Method, table: tuple[Name, ...], outputs: list[tuple[int, str]], names: Names, space: Space
+) -> tuple[int, ...]:
+    """Return the slots of the outputs that are printed."""
+    ours = {slot for slot, _ in outputs}
+    found: list[int] = []
+    for name in table:
+        known = space.names.get(name.name)
+        if isinstance(known, Slot) and known.index in ours:
+            found.append(known.index)
+        elif not space.is_told(name.name):
+            given = [one for one in line.names() if isinstance(space.names.get(one), Slot)]
+            names.problems.add("unknown-name", name.span, f"this method gives no `{name.name[:40]}`",
+                               expected=listed(given), found=name.name[:40],
+                               hint=names.problems.near(name.name, given))  # fmt: skip
+    return tuple(found)
+
+
+def _hold_sets(inputs: tuple[BoundInput, ...], handed: Inputs, kind: MethodKind, names: Names, at: Context) -> None:
+    """Hold the sets handed over: each once, and none of whose rows one is open here already."""
+    taken: set[int] = set()
+    spans = {name.name: (formula.span, formula.span.text) for name, formula in handed if formula is not None}
+    for given in inputs:
+        if kind.takes[given.name].shape != "set" or given.rows < 0:
+            continue
+        span, text = spans[given.name]
+        names.hold_open(names.sets[given.rows].outer, text.strip(), span, at)
+        if given.rows in taken or given.rows in at.open:
+            why = "a row of it is open here" if given.rows in at.open else "it is handed over twice"
+            names.problems.add("row-leak", span, f"the method cannot take all rows of `{text.strip()[:40]}`: {why}",
+                               expected="a set of its own for each input", found=text.strip()[:40])  # fmt: skip
+        taken.add(given.rows)
+
+
+def _make_set(line: Method, output: Output, maker: Maker, space: Space, outer: tuple[int, ...]) -> int:
+    return maker.row_set(_with_stem(line, output), space, outer, (), output.name.span).index
 
 
 def _make_slot(line: Method, output: Output, symbol: Symbol, sets: tuple[int, ...], maker: Maker, space: Space) -> int:
@@ -98,10 +139,14 @@ def _bind(
     def is_idle(wanted: InputKind) -> bool:
         return wanted.where is not None and wanted.where[0] in known and words[wanted.where[0]] != wanted.where[1]
 
-    def is_needed(wanted: InputKind) -> bool:
+    taken = {name.name for name, _ in handed}
+
+    def is_needed(name: str, wanted: InputKind) -> bool:
+        if not set(rests_on(kind.takes, name)) <= taken:
+            return False
         return wanted.where is None or words.get(wanted.where[0]) == wanted.where[1]
 
-    needed = tuple(name for name, wanted in kind.takes.items() if is_needed(wanted))
+    needed = tuple(name for name, wanted in kind.takes.items() if is_needed(name, wanted))
     for name, formula in handed:
         wanted = kind.takes.get(name.name)
         if wanted is None or formula is None:
@@ -111,6 +156,11 @@ def _bind(
             names.problems.add("unknown-key", name.span, f"`{name.name}` has no use here",
                                expected=f"`{name.name}` with `{other}: {word}` only",
                                found=f"`{other}: {words[other]}`")  # fmt: skip
+        without = next((rows for rows in rests_on(kind.takes, name.name) if rows not in taken), "")
+        if without:
+            names.problems.add("unknown-key", name.span, f"`{name.name}` has no use here",
+                               expected=f"`{name.name}` with `{without}` only",
+                               found=f"no `{without}`")  # fmt: skip
         value = literal(formula)
         if wanted.count is not None and (
             value is None or value.denominator != 1 or not wanted.count[0] <= value <= wanted.count[1]
@@ -122,7 +172,7 @@ def _bind(
 
 
 class _MethodBinder(Binder):
-    """Binds the inputs of a method: every number is a formula, and a word is one of its own."""
+    """Binds the inputs of a method: every number is a formula; a word is one of its own, or by row one of ours."""
 
     def number(self, name: Name, formula: Expression, wanted: InputKind) -> BoundInput:
         bound = self.names.expression(formula, self.space, self.rows_open(wanted))
@@ -131,6 +181,8 @@ class _MethodBinder(Binder):
     def word(self, name: Name, formula: Expression, wanted: InputKind) -> BoundInput:
         if isinstance(formula, Name) and formula.name in wanted.words:
             return BoundInput(name.name, word=formula.name)
+        if wanted.shape == "row word":
+            return super().word(name, formula, wanted)
         found = formula.span.text.strip()[:40]
         self.problems.add("not-a-word", formula.span, f"the method takes one of its words for `{name.name}`",
                           expected=listed(wanted.words), found=found,
@@ -199,7 +251,7 @@ def _output(line: Twin, kind: MethodKind, first: Slot, problems: Problems) -> st
         problems.add("unit-mismatch", line.name.span, f"`{line.name.name}` is a word, which no method gives",
                      expected="a quantity", found="a word")  # fmt: skip
         return ""
-    alike = [name for name, dimension in kind.gives.items() if dimension == unit.dimension]
+    alike = [name for name, given in kind.gives.items() if given == OutputKind(unit.dimension)]
     if line.output is not None:
         if line.output.name in alike:
             return line.output.name

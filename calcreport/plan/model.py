@@ -266,6 +266,8 @@ class PlannedMethod:
     sets: tuple[tuple[int, str], ...]
     cite: Citation
     span: Span
+    #: slots of the outputs that are printed; None for all
+    table: tuple[int, ...] | None = None
 
 
 PlannedLine: TypeAlias = (

@@ -43,7 +43,7 @@ KINDS: dict[str, tuple[str, ...]] = {
     "gives": ("formula", "branches", *OWN_KEYS, "cite", "as cited"),
     "branches": (), "rows": ("columns", "list", "spaced", "file", "says", "cite"), "each": ("lines", "table", "show"),
     "part": ("as", "same", "with"), "check": ("holds", "says", "cite"), "require": ("says", "cite", "show"),
-    "figure": ("with",), "method": ("with", "gives", "as", "cite"),
+    "figure": ("with",), "method": ("with", "gives", "as", "table", "cite"),
     "by another method": ("method", "with", "output", "within", "cite"),
     "unknown": ("between", "satisfies", "lines", *OWN_KEYS),
 }  # fmt: skip

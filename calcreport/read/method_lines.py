@@ -48,13 +48,15 @@ class MethodReader:
             if output is not None and hold_name(ours, self.formulas.problems):
                 symbol = self.symbol(ours, output, name.text)
                 found.append(Output(Name(ours.text, ours.span), Name(output.text, output.span), symbol))
-        return Method(Name(name.text, name.span), inputs, tuple(found), stem.text if stem else "", cite, fields.span)
+        shown = tuple(Name(scalar.text, scalar.span) for scalar in fields.texts("table"))
+        table = shown if fields.node_of("table") is not None else None
+        own = stem.text if stem else ""
+        return Method(Name(name.text, name.span), inputs, tuple(found), own, cite, fields.span, table)
 
     def symbol(self, ours: Scalar, output: Scalar, method: str) -> Symbol | None:
         """Return the symbol of an output; sets have none, and what the method does not give needs none."""
         kind = METHODS.get(method)
-        columns = [column for columns in kind.sets.values() for column in columns] if kind else []
-        if kind is None or (output.text not in kind.gives and output.text not in columns):
+        if kind is None or output.text not in kind.gives:
             return None
         return find_symbol(ours.text, ours.span, self.formulas.table, self.formulas.problems)
 

@@ -317,6 +317,8 @@ class Method:
     stem: str
     cite: Citation
     span: Span
+    #: our names of the outputs that are printed; None for all
+    table: tuple[Name, ...] | None = None
 
     def names(self) -> tuple[str, ...]:
         """Return the names the line gives."""

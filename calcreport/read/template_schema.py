@@ -6,7 +6,7 @@ Nothing in, schemas out. Which names are known and which formulas hold is beyond
 from __future__ import annotations
 
 from calcreport.core.figures import FIGURES, needed_inputs
-from calcreport.core.methods import METHODS
+from calcreport.core.methods import METHODS, rests_on
 from calcreport.core.rows import MOST_ROWS
 from calcreport.read import bodies, cases, given, library, lines, made_rows, symbols, words
 from calcreport.read.model import SYSTEMS
@@ -188,7 +188,8 @@ _SHAPES: dict[str, dict[str, Schema]] = {
     "check": {"check": _WORDS, "holds": _FORMULA},
     "require": {"require": _FORMULA, "show": _each(choice(lines.REQUIRED_SHOWN))},
     "figure": {"figure": choice(FIGURES), "with": _HANDED},
-    "method": {"method": choice(METHODS), "with": _HANDED, "gives": _each(mapping(_WORDS)), "as": _each(text(_NAME))},
+    "method": {"method": choice(METHODS), "with": _HANDED, "gives": _each(mapping(_WORDS)), "as": _each(text(_NAME)),
+               "table": _NAMES},
     "by another method": {"by another method": _WORDS, "method": choice(METHODS), "with": _HANDED, "output": _WORDS,
                           "within": _FORMULA},
     "unknown": {"unknown": _each(text(_NAME)), "satisfies": _FORMULA, "lines": _LINES,
@@ -226,7 +227,7 @@ def _drawn(name: str) -> Schema:
 def _analysed(name: str) -> Schema:
     """Return what a method must be handed; what goes with a word is the planner's to hold."""
     takes = METHODS[name].takes
-    needed = tuple(key for key, wanted in takes.items() if wanted.where is None)
+    needed = tuple(key for key, wanted in takes.items() if wanted.where is None and not rests_on(takes, key))
     inputs = closed(tuple(takes), dict.fromkeys(takes, _FORMULA), needed)
     return when({"properties": {"method": {"const": name}}}, {"properties": {"with": _each(inputs)}} | has("with"))
 

@@ -228,14 +228,12 @@ def _rows(block: Block, item: SayTable, told: Told, found: Deltas) -> Block:
 
 
 def _outputs(block: Block, item: SayOutputs, told: Told, found: Deltas) -> Block:
-    """Mark rows of a set that a method makes."""
-    rows: dict[int, list[tuple[int, Key]]] = {}
-    for slot, key in item.worked.places(told.values):
-        if slot in item.columns:
-            rows.setdefault(dict(zip(told.values.sets[slot], key, strict=True)).get(item.rows, 0), []).append(
-                (slot, key)
-            )
-    return _table(block, {row: found.of(places) for row, places in rows.items()})
+    """Mark rows of a table of what a method gives."""
+    rows: dict[int, str] = {}
+    for row, key in enumerate(item.keys(told.values)):
+        opened = (*item.worked.open, *zip(item.sets, key, strict=True))
+        rows[row] = found.of([(slot, told.key(slot, opened)) for slot in item.columns])
+    return _table(block, rows)
 
 
 def _taken(formula: object, told: Told) -> list[tuple[int, Key]]:

@@ -38,8 +38,8 @@ from calcreport.report.model import (
 from calcreport.report.notation import (
     relation,
 )
-from calcreport.report.script import is_single
 from calcreport.report.told import Told
+from calcreport.report.writer import is_single
 
 
 class GivenBlocks:

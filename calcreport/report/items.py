@@ -13,6 +13,7 @@ from calcreport.calculate.model import (
     PlannedGiven,
     Selection,
     Stop,
+    Values,
     Worked,
     WorkedBranches,
     WorkedCheck,
@@ -186,13 +187,26 @@ class SayOutput:
 
 @dataclass(frozen=True, slots=True)
 class SayOutputs:
-    """A set a method makes, as a table."""
+    """What a method gives over the same rows, as a table: of a set, or of all groups of rows of several sets."""
 
     number: int
     of: int
     worked: WorkedMethod
-    rows: int
+    sets: tuple[int, ...]
     columns: tuple[int, ...]
+
+    def keys(self, values: Values) -> tuple[Key, ...]:
+        """Return the rows of the table, each by its rows in `sets`."""
+        rows = dict(self.worked.open)
+        found: list[Key] = [()]
+        for place, index in enumerate(self.sets):
+            keys: list[Key] = []
+            for key in found:
+                opened = {**rows, **dict(zip(self.sets[:place], key, strict=True))}
+                outer = tuple(opened[other] for other in values.outer[index])
+                keys += [(*key, row) for row in range(len(values.names[index].get(outer, ())))]
+            found = keys
+        return tuple(found)
 
 
 @dataclass(frozen=True, slots=True)

@@ -7,7 +7,7 @@ from __future__ import annotations
 
 from typing import TypeAlias
 
-from calcreport.core.expression import Expression
+from calcreport.core.expression import Expression, Name
 from calcreport.core.methods import METHODS
 from calcreport.core.units import ONE
 from calcreport.report.display import row_words
@@ -63,10 +63,13 @@ class MethodBlocks:
             if given is None:
                 continue
             before, _, after = wanted.says.partition("{}")
-            words.append(before if not words or before.startswith(" ") else f", {before}")
+            words.append(before if not words or before.startswith((" ", ",")) else f", {before}")
             if given.formula is not None:
                 words.append(self.shared.formula(given.formula))
                 nodes.append(given.formula)
+            elif given.slot >= 0:
+                words.append(self.shared.symbol(given.slot))
+                nodes.append(Name(self.told.slots[given.slot].symbol.name, given.span or line.span, given.slot))
             else:
                 words.append(given.word or self.worked.plan.sets[given.rows].name)
             words.append(after)
@@ -87,16 +90,21 @@ class MethodBlocks:
         )  # fmt: skip
 
     def outputs(self, item: SayOutputs) -> Block:
-        """Return a set a method makes."""
-        plan = self.worked.plan
-        rows = dict(item.worked.open)
-        outer = tuple(rows[index] for index in plan.sets[item.rows].outer)
-        columns = (Column((plan.sets[item.rows].name,)), *(self.told.column(slot) for slot in item.columns))
+        """Return what a method gives over rows: a row for every row of a set, or group of rows of several."""
+        plan, values = self.worked.plan, self.told.values
+        head = ", ".join(plan.sets[index].name for index in item.sets)
+        columns = (Column((head,)), *(self.told.column(slot) for slot in item.columns))
         found = []
-        for row, name in enumerate(self.told.values.names[item.rows][outer]):
-            opened = (*item.worked.open, (item.rows, row))
+        for key in item.keys(values):
+            opened = (*item.worked.open, *zip(item.sets, key, strict=True))
+            rows = dict(opened)
+            names = [
+                values.names[index][tuple(rows[other] for other in values.outer[index])][rows[index]]
+                for index in item.sets
+            ]
             cells: tuple[Words, ...] = tuple(self.told.cell(s, self.told.key(s, opened)) for s in item.columns)
-            found.append(TableRow(((row_words(name),), *cells)))
+            # one name a row: what a row is found by is its first cell
+            found.append(TableRow(((", ".join(map(row_words, names)),), *cells)))
         return Table(columns, tuple(found), (), item.number, self.told.anchor(item.number), self.lane(item.of))
 
     def proof(self, item: SayProof) -> Block:

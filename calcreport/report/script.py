@@ -6,11 +6,7 @@ digits nor formulas.
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field
-
 from calcreport.calculate.model import (
-    Key,
-    PlannedGiven,
     PlannedGives,
     Worked,
     WorkedBranches,
@@ -26,27 +22,18 @@ from calcreport.calculate.model import (
     WorkedText,
     WorkedUnknown,
 )
-from calcreport.report.alike import alike
 from calcreport.report.below import below, only_words, severity
 from calcreport.report.items import (
-    Item,
-    SayAlike,
     SayBranch,
     SayCheck,
     SayChoice,
     SayEquation,
     SayFigure,
     SayFormula,
-    SayGivens,
     SayHeading,
     SayLine,
     SayMade,
-    SayMethod,
-    SayOutput,
-    SayOutputs,
-    SayProof,
     SayRequire,
-    SayRows,
     SayStop,
     SayTable,
     SayText,
@@ -54,25 +41,13 @@ from calcreport.report.items import (
     SayUnseen,
     Script,
 )
-
-
-@dataclass(slots=True)
-class _Writer:
-    worked: Worked
-    items: list[Item] = field(default_factory=list)
-    line_of: dict[tuple[int, Key], int] = field(default_factory=dict)
-    check_line: dict[int, int] = field(default_factory=dict)
-    number: int = 0
-
-    def next(self) -> int:
-        self.number += 1
-        return self.number
+from calcreport.report.writer import Writer, tell_givens, tell_method
 
 
 def write_script(worked: Worked) -> Script:
     """Return the items of a calculation in printed order."""
-    writer = _Writer(worked)
-    _givens(writer)
+    writer = Writer(worked)
+    tell_givens(writer)
     if worked.selection is not None:
         writer.items.append(SayChoice(writer.next(), worked.selection))
     _lines(writer, worked.lines)
@@ -87,58 +62,7 @@ def write_script(worked: Worked) -> Script:
     return Script(worked, tuple(writer.items), writer.line_of, writer.check_line)
 
 
-def _givens(writer: _Writer) -> None:
-    joined = alike(writer.worked)
-    own = [given for given in writer.worked.plan.givens if given.rows < 0 and not given.over]
-    rows = []
-    for given in own:
-        if any(given in givens for givens in joined.values()):
-            continue
-        number = writer.next()
-        rows.append((number, given))
-        for slot in (given.slot, *given.outputs):
-            writer.line_of[slot, ()] = number
-    if rows:
-        writer.items.append(SayGivens(tuple(rows)))
-    for word, givens in joined.items():
-        number = writer.next()
-        writer.items.append(SayAlike(number, word, givens))
-        for given in givens:
-            for slot in (given.slot, *given.outputs):
-                writer.line_of[slot, ()] = number
-    for given in writer.worked.plan.givens:
-        if given.rows >= 0 or given.over:
-            _given_table(writer, given)
-
-
-def _given_table(writer: _Writer, given: PlannedGiven) -> None:
-    number = writer.next()
-    writer.items.append(SayRows(number, given))
-    columns = given.columns if given.rows >= 0 else (given,)
-    for column in columns:
-        if column.rows < 0:
-            _number_column(writer, column, number)
-            continue
-        alone = is_single(column, writer.worked)
-        own = number if alone else writer.next()
-        if not alone:
-            writer.items.append(SayRows(own, column, given))
-        for inner in column.columns:
-            _number_column(writer, inner, own)
-
-
-def _number_column(writer: _Writer, column: PlannedGiven, number: int) -> None:
-    for slot in (column.slot, *column.outputs):
-        for key in writer.worked.values.rows[slot]:
-            writer.line_of[slot, key] = number
-
-
-def is_single(column: PlannedGiven, worked: Worked) -> bool:
-    """Tell whether every member has one row of a set, so that the table of members can show it."""
-    return all(len(names) == 1 for names in worked.values.names[column.rows].values())
-
-
-def _lines(writer: _Writer, lines: tuple[WorkedLine, ...]) -> None:
+def _lines(writer: Writer, lines: tuple[WorkedLine, ...]) -> None:
     for line in lines:
         match line:
             case WorkedGives():
@@ -180,27 +104,7 @@ def _lines(writer: _Writer, lines: tuple[WorkedLine, ...]) -> None:
             case WorkedFigure():
                 writer.items.append(SayFigure(line))
             case WorkedMethod():
-                _method(writer, line)
-
-
-def _method(writer: _Writer, line: WorkedMethod) -> None:
-    """Number a method, every value it gives, every set, and every sum that proves them."""
-    values, number = writer.worked.values, writer.next()
-    writer.items.append(SayMethod(number, line))
-    rows, made = dict(line.open), [index for index, _ in line.line.sets]
-    for slot, _ in line.line.outputs:
-        if not set(values.sets[slot]) & set(made):
-            key = tuple(rows[index] for index in values.sets[slot])
-            writer.items.append(SayOutput(writer.next(), number, slot, key))
-            writer.line_of[slot, key] = writer.number
-    for index in made:
-        columns = tuple(slot for slot, _ in line.line.outputs if index in values.sets[slot])
-        writer.items.append(SayOutputs(writer.next(), number, line, index, columns))
-        for slot, key in line.places(values):
-            if index in values.sets[slot]:
-                writer.line_of[slot, key] = writer.number
-    for place in range(len(line.result.proofs)):
-        writer.items.append(SayProof(writer.next(), number, line, place))
+                tell_method(writer, line)
 
 
 def _plain(lines: tuple[WorkedLine, ...]) -> bool:
@@ -208,7 +112,7 @@ def _plain(lines: tuple[WorkedLine, ...]) -> bool:
     return all(isinstance(line, WorkedGives | WorkedText) for line in lines)
 
 
-def _each(writer: _Writer, each: WorkedEach) -> None:
+def _each(writer: Writer, each: WorkedEach) -> None:
     rows = each.rows
     name = writer.worked.plan.sets[each.line.rows].name
     if each.line.show == "figure":
@@ -229,7 +133,7 @@ def _each(writer: _Writer, each: WorkedEach) -> None:
             _table(writer, each, -1)
 
 
-def _figures_only(writer: _Writer, each: WorkedEach) -> None:
+def _figures_only(writer: Writer, each: WorkedEach) -> None:
     """Tell the figures alone; what they rest on is in the values file, under the line before them."""
     for row in each.rows:
         for line in below(row, WorkedGives):
@@ -247,7 +151,7 @@ def _worst(lines: tuple[WorkedLine, ...]) -> tuple[bool, float]:
     return failed, max((severity(check) for check in checks), default=-1.0)
 
 
-def _rows_in_full(writer: _Writer, each: WorkedEach, name: str, rows: range | list[int]) -> None:
+def _rows_in_full(writer: Writer, each: WorkedEach, name: str, rows: range | list[int]) -> None:
     governs = ", which governs" if len(rows) < len(each.rows) else ""
     for row in rows:
         if len(each.rows) > 1:
@@ -255,7 +159,7 @@ def _rows_in_full(writer: _Writer, each: WorkedEach, name: str, rows: range | li
         _lines(writer, each.rows[row])
 
 
-def _number_rest(writer: _Writer, each: WorkedEach) -> None:
+def _number_rest(writer: Writer, each: WorkedEach) -> None:
     """Give the lines of rows told only in the table the number of the row told in full."""
     told = {slot: number for (slot, _), number in writer.line_of.items()}
     checks = {
@@ -274,7 +178,7 @@ def _number_rest(writer: _Writer, each: WorkedEach) -> None:
             writer.check_line.setdefault(id(check), checks.get(check.line.name) or writer.number)
 
 
-def _formulas_once(writer: _Writer, each: WorkedEach) -> None:
+def _formulas_once(writer: Writer, each: WorkedEach) -> None:
     for place, line in enumerate(each.rows[0]):
         if isinstance(line, WorkedText):
             writer.items.append(SayText(line))
@@ -288,7 +192,7 @@ def _formulas_once(writer: _Writer, each: WorkedEach) -> None:
             writer.line_of[one.line.slot, one.key] = number
 
 
-def _table(writer: _Writer, each: WorkedEach, governing: int) -> None:
+def _table(writer: Writer, each: WorkedEach, governing: int) -> None:
     columns = each.line.table or tuple(_slots_given(each))
     checks = tuple(dict.fromkeys(check.line.name for row in each.rows for check in below(row, WorkedCheck)))
     writer.items.append(SayTable(writer.next(), each, columns, checks, governing))

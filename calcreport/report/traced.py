@@ -92,15 +92,18 @@ class _Tracer:
         rows = {s: row for s, row in zip(values.sets[slot], key, strict=True) if s not in made}
         sets = {given.name: given.rows for given in method.inputs}
         for given in method.inputs:
-            owner = sets.get(METHODS[method.kind].takes[given.name].rows, -1)
-            if given.formula is None:
-                continue
-            if owner < 0:
-                self.collect(given.formula, mark, rows, found)
-                continue
-            outer = tuple(rows[other] for other in values.outer[owner])
-            for row in range(len(values.names[owner].get(outer, ()))):
-                self.collect(given.formula, mark, {**rows, owner: row}, found)
+            opened = [rows]
+            for owner in (sets[name] for name in METHODS[method.kind].takes[given.name].rows):
+                opened = [
+                    {**around, owner: row}
+                    for around in opened
+                    for row in range(len(values.names[owner].get(tuple(around[s] for s in values.outer[owner]), ())))
+                ]
+            for around in opened:
+                if given.formula is not None:
+                    self.collect(given.formula, mark, around, found)
+                elif given.slot >= 0:
+                    found.append((mark, given.slot, tuple(around[s] for s in values.sets[given.slot])))
 
     def shown(self, mark: str, slot: int, key: Key) -> str:
         value = self.scripts[mark].worked.values.get(slot, key)

@@ -84,7 +84,8 @@ class LineWriter:
             found |= self.inputs(place)
         elif isinstance(place, tuple) and place in self.values.by_method:
             said = (item for item in self.script.items if isinstance(item, SayOutput | SayOutputs))
-            method = next(item.of for item in said if item.number == found["line"])
+            # what is not printed has the number of the method already
+            method = next((item.of for item in said if item.number == found["line"]), found["line"])
             found |= {"method": self.values.by_method[place].kind, "from": [f"{self.forms.mark}.{method}"]}
         elif isinstance(place, tuple) and place in self.linked:
             link = self.linked[place]

@@ -22,7 +22,7 @@ from calcreport.plan.model import (
     PlannedGiven,
     PlannedMethod,
 )
-from calcreport.second.closures import Found
+from calcreport.second.closing import Found
 from calcreport.second.quantities import Quantities, make_quantities
 from calcreport.second.rework import Rework, Stopped
 
@@ -161,7 +161,7 @@ def _found(worked: Worked, line: PlannedMethod, opened: tuple[tuple[int, int], .
     result = worked.values.results.get((id(line), opened))
     if result is None:
         raise Stopped(f"{line.kind}: the first path came to no result")
-    return Found(result.outputs, {name: (made.names, made.columns) for name, made in result.sets.items()})
+    return Found(result.outputs, result.sets, result.by_row)
 
 
 def _hand(worked: Worked, rework: Rework, again: dict[str, Rework], make: Quantities) -> None:

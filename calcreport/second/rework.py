@@ -29,6 +29,7 @@ from calcreport.core.expression import (
 )
 from calcreport.core.methods import METHODS
 from calcreport.plan.model import (
+    BoundInput,
     Plan,
     PlannedBranches,
     PlannedCheck,
@@ -41,7 +42,8 @@ from calcreport.plan.model import (
     PlannedRows,
     PlannedUnknown,
 )
-from calcreport.second.closures import CLOSURES, Found, NotClosed
+from calcreport.second.closing import Found, NotClosed
+from calcreport.second.closures import CLOSURES
 from calcreport.second.quantities import Quantities
 
 Key = tuple[int, ...]
@@ -153,18 +155,12 @@ class Rework:
         takes, sets = METHODS[line.kind].takes, {given.name: given.rows for given in line.inputs if given.rows >= 0}
         handed: dict[str, Any] = {}
         for given in line.inputs:
-            if given.formula is None:
-                handed[given.name] = given.word
-                continue
-            one = self.make.base(takes[given.name].dimension)
-            if takes[given.name].shape != "row number":
-                handed[given.name] = self.number(given.formula, one)
-                continue
-            rows, handed[given.name] = sets[takes[given.name].rows], []
-            for row in range(len(self.row_names(rows))):
-                self.open[rows] = row
-                handed[given.name].append(self.number(given.formula, one))
-            self.open.pop(rows, None)
+            wanted = takes[given.name]
+            if given.rows >= 0:
+                handed[given.name] = self.row_names(given.rows)
+            else:
+                rows = [sets[name] for name in wanted.rows]
+                handed[given.name] = self.by_row(given, rows, self.make.base(wanted.dimension))
         found = self.result(line, tuple(sorted(self.open.items())))
         try:
             CLOSURES[line.kind](handed, found, self.make.mp)
@@ -172,28 +168,37 @@ class Rework:
             raise Stopped(f"{line.kind}: {error}") from error
         self.take(line, found)
 
+    def by_row(self, given: BoundInput, rows: list[int], one: Any) -> Any:
+        """Return a number in base units or a word; for every row of the first of `rows` a list of what is inside."""
+        if rows:
+            found = []
+            for row in range(len(self.row_names(rows[0]))):
+                self.open[rows[0]] = row
+                found.append(self.by_row(given, rows[1:], one))
+            self.open.pop(rows[0], None)
+            return found
+        if given.formula is not None:
+            return self.number(given.formula, one)
+        return given.word or self.values[given.slot, self.key(given.slot)]
+
     def number(self, formula: Expression, one: Any) -> Any:
         """Return a formula as a number in base units."""
         return (self.alike(self.work(formula), one)[0] / one).to("").magnitude
 
     def take(self, line: PlannedMethod, found: Found) -> None:
         """Store the outputs a line takes."""
-        ours = {name: index for index, name in line.sets}
         for index, name in line.sets:
-            outer = tuple(self.open[other] for other in self.plan.sets[index].outer)
-            self.names[index, outer] = found.sets[name][0]
+            outer = self.plan.sets[index].outer
+            for key, names in found.sets[name].items():
+                around = tuple(self.open[other] for other in outer[: len(outer) - len(key)])
+                self.names[index, (*around, *key)] = names
         for slot, name in line.outputs:
             unit = self.plan.slots[slot].symbol.unit
             assert unit is not None
-            one = self.make.base(unit.dimension)
-            if name in found.outputs:
-                self.values[slot, self.key(slot)] = one * self.make.mp.mpf(found.outputs[name])
-                continue
-            owner = next(made for made in found.sets if name in found.sets[made][1])
-            for row, value in enumerate(found.sets[owner][1][name]):
-                self.open[ours[owner]] = row
-                self.values[slot, self.key(slot)] = one * self.make.mp.mpf(value)
-            self.open.pop(ours[owner], None)
+            one, sets = self.make.base(unit.dimension), self.plan.slots[slot].sets
+            for key, value in found.by_row[name].items() if name in found.by_row else (((), found.outputs[name]),):
+                around = tuple(self.open[index] for index in sets[: len(sets) - len(key)])
+                self.values[slot, (*around, *key)] = one * self.make.mp.mpf(value)
 
     def rows(self, line: PlannedRows) -> None:
         """Make a set: every entry, every pairing that fits."""

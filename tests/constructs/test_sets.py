@@ -35,30 +35,48 @@ symbols:
   l: {unit: ft, says: span}
   w: {unit: kip/ft, says: load}
   EI: {unit: kip*ft^2, says: stiffness}
+  hold: {one of: [pinned, fixed, spring, free], says: how it holds}
+  placing: {one of: [everywhere, patterned], says: how it lies}
   x: {unit: ft, says: place}
   V: {unit: kip, says: shear}
   M: {unit: kip*ft, says: moment}
-  z: {unit: ft, says: place of the support}
+  M_hi: {unit: kip*ft, says: greatest moment}
   R: {unit: kip, says: reaction}
-given: {EI: , span: {rows: {l: , w: }, says: spans}}
+given:
+  EI:
+  span: {rows: {l: }, says: spans}
+  support: {rows: {hold: }, says: supports}
+  load: {rows: {placing: }, says: load cases}
+  w: {over: [span, load]}
 lines:
   - method: member on supports
-    with: {spans: span, l: l, w: w, EI: EI, left: supported, right: supported, parts: '2'}
-    gives: {station: stations, x: x, V: V, M: M, support: supports, z: x_R, R: R}
+    with: {spans: span, l: l, EI: EI, cut: '1 ft', supports: support, hold: hold, k: '0', face: '1 ft', cases: load,
+      placing: placing, w: w, parts: '2'}
+    gives: {station: stations, x: x, V: V, M: M, M_hi: M_hi, R: R}
+    table: [V, M, R]
     cite: statics
 """
 # two spans of 8 ft under 2 kip/ft: w l/8 = 2, so the end reactions are 3(2)(8)/8 = 6 and the middle one 10(2)(8)/8 = 20 kip;
-# over the middle support -w l^2/8 = -16, at midspan 6(4) - 2(4)(2) = 8 kip ft; the shears there 6 - 8 = -2 and 10 - 8 = 2
+# V = 6 - 2x and M = 6x - x^2 in the first span, 10 - 2x and -16 + 10x - x^2 in the second; faces 1 ft from the
+# supports, sections 1 ft from the faces
 MEMBER = {
-    4: "station x ft V kip M kip·ft 3 1.0 0 6 0 1.1 4 −2 8 1.2 8 −10 −16 2.0 8 10 −16 2.1 12 2 8 2.2 16 −6 0",
-    5: "support z ft R kip 3 1 0 6 2 8 20 3 16 6",
+    6: "Member on supports: each span of length l and stiffness EI, each support (hold), a spring by 0, with "
+    "faces 1 ft from its line and sections 1 ft from those, each load (placing), w along a span, 2 parts a span. "
+    "Supports hold without settling; loads down, reactions up, sagging positive; places from the left of a span. A "
+    "patterned case lies on any spans, and its greatest and least are over every arrangement. Stations are at the parts, "
+    "the faces, the sections, the loads, and where the factored moment is greatest and least. statics 1 2 3 4 5",
+    7: "span, station, load V kip M kip·ft 6 a, start, D 6 0 a, left, D 4 5 a, left_d, D 2 8 a, middle, D −2 8 a, right_d, D −6 0 "
+    "a, right, D −8 −7 a, end, D −10 −16 b, start, D 10 −16 b, left, D 8 −7 b, left_d, D 6 0 b, middle, D 2 8 b, right_d, D −2 8 "
+    "b, right, D −4 5 b, end, D −6 0",
+    8: "support, load R kip 6 A, D 6 B, D 20 C, D 6",
 }
 # the sums that prove it: 6 + 20 + 6 - 2(16) = 0, greatest term 20; 20(8) + 6(16) - 16(4) - 16(12) = 0, greatest term 192;
-# the slopes over the middle support are both zero, those at the ends w l^3/(48 EI) = 1024/432000 = 0.002370
+# the slopes over the middle support are both zero, the largest area under M/EI 10(8)(8)/2/9000 = 0.03556
 CLOSURES = {
-    6: "forces: reactions − loads = 0.00000 kip of 20.00 kip 3",
-    7: "moments about the left end: of reactions − of loads = 0.0000 kip·ft of 192.0 kip·ft 3",
-    8: "continuity: largest difference of the slopes left and right of a support = 0.000000000 of 0.002370 3",
+    9: "forces: reactions − loads = 0.00000 kip of 20.00 kip 6",
+    10: "moments about the left end: of reactions − of loads = 0.0000 kip·ft of 192.0 kip·ft 6",
+    11: "continuity: largest gap between the slopes left and right of a support and of what holds it, by the areas under M/EI "
+    "= 0.00000000 of 0.03556 6",
 }
 
 
@@ -69,8 +87,10 @@ def points(tmp_path_factory: pytest.TempPathFactory) -> Sheet:
 
 @pytest.fixture(scope="module")
 def member(tmp_path_factory: pytest.TempPathFactory) -> Sheet:
-    spans = "[{name: a, l: 8 ft, w: 2 kip/ft}, {name: b, l: 8 ft, w: 2 kip/ft}]"
-    return finish(tmp_path_factory.mktemp("member"), METHOD, f"{{EI: 9000 kip*ft^2, span: {spans}}}")
+    given = """{EI: 9000 kip*ft^2, span: [{name: a, l: 8 ft}, {name: b, l: 8 ft}], load: [{name: D, placing: everywhere}],
+      support: [{name: A, hold: pinned}, {name: B, hold: pinned}, {name: C, hold: pinned}],
+      w: {a: {D: 2 kip/ft}, b: {D: 2 kip/ft}}}"""
+    return finish(tmp_path_factory.mktemp("member"), METHOD, given)
 
 
 @pytest.mark.parametrize("number", sorted(POINTS))
@@ -100,7 +120,7 @@ def test_a_table_begins_where_the_words_of_lines_do(points: Sheet) -> None:
 
 def test_a_minus_hangs_left_of_the_digits_of_its_column(member: Sheet) -> None:
     # digits of one column end at one edge, signs before them: common practice of tables
-    rows = [member.row("1.1 4 −2 8"), member.row("2.1 12 2 8")]
+    rows = [member.row("a, middle, D −2 8"), member.row("b, middle, D 2 8")]
     ends = []
     for row in rows:
         glyphs = [g for g in row if g.text.strip()]

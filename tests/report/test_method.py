@@ -18,7 +18,7 @@ from calcreport.driver import work
 from calcreport.second.agreement import compare_paths
 from tests.proof.package import read_package
 from tests.proof.prove import Proof, look
-from tests.small import number, verdicts, work_small, write_small
+from tests.small import number, verdicts, work_or_problems, work_small, write_small
 
 #: width 14 in., depth 24 in., 3 in.^2 of steel at 21.5 in., 4 ksi concrete under 0.85 of it
 TEMPLATE = """\
@@ -178,37 +178,65 @@ def test_in_every_row_of_a_set(tmp_path: Path) -> None:
 BEAM = """\
 symbols:
   l: {unit: ft, says: span}
-  w_u: {unit: kip/ft, says: factored load}
+  w: {unit: kip/ft, says: load}
   EI: {unit: kip*ft^2, says: stiffness, shows: EI}
+  hold: {one of: [pinned, fixed, spring, free], says: how it holds}
+  placing: {one of: [everywhere, patterned], says: how it lies}
+  n: {unit: '1', says: number of the span}
+  a: {unit: ft, says: place}
+  P: {unit: kip, says: point load}
   x: {unit: ft, says: place}
-  V_u: {unit: kip, says: shear}
-  M_u: {unit: kip*ft, says: moment}
-  x_R: {unit: ft, says: place of the support}
+  M: {unit: kip*ft, says: moment}
+  M_lo: {unit: kip*ft, says: least moment}
   R: {unit: kip, says: reaction}
-  M_least: {unit: kip*ft, says: largest hogging moment}
-  M_r: {unit: kip*ft, says: resistance}
-given: {EI: , M_r: , span: {rows: {l: , w_u: }, says: spans}}
+  R_hi: {unit: kip, says: greatest reaction}
+  R_most: {unit: kip, says: largest reaction}
+  R_r: {unit: kip, says: resistance}
+given:
+  EI:
+  R_r:
+  span: {rows: {l: }, says: spans}
+  support: {rows: {hold: }, says: supports}
+  load: {rows: {placing: }, says: load cases}
+  w: {over: [span, load]}
+  point: {rows: {n: , a: }, least: 0, says: point loads}
+  P: {over: [point, load]}
 lines:
   - method: member on supports
-    with: {spans: span, l: l, w: w_u, EI: EI, left: supported, right: free, parts: '2'}
-    gives: {station: stations, x: x, V_u: V, M_u: M, support: supports, x_R: x_R, R: R}
+    with: {spans: span, l: l, EI: EI, cut: '0', supports: support, hold: hold, k: '0', face: '0', cases: load, placing: placing,
+      w: w, points: point, n_P: n, s_P: a, P: P, parts: '2'}
+    gives: {station: stations, x: x, M: M, M_lo: M_lo, R: R, R_hi: R_hi}
+    table: [R, R_hi]
     cite: statics
-  - {gives: M_least, formula: 'min(M_u over station)', cite: statics}
-  - {check: hogging, holds: 'abs(M_least) <= M_r', cite: statics}
+  - each: load
+    table: [R_most]
+    lines:
+      - {gives: R_most, formula: 'max(R_hi over support)', cite: statics}
+      - {check: bearing, holds: 'R_most <= R_r', cite: statics}
 """
-#: two spans of 20 ft and an overhang of 4 ft under 1 kip/ft
-SPANS = "{EI: 90000 kip*ft^2, M_r: 60 kip*ft, span: [{l: 20 ft, w_u: 1 kip/ft}, {l: 20 ft, w_u: 1 kip/ft}, {l: 4 ft, w_u: 1 kip/ft}]}"
+#: two spans of 20 ft and an overhang of 4 ft under 1 kip/ft, dead and, wherever it is worse, live
+SPANS = """{EI: 90000 kip*ft^2, R_r: 30 kip, span: [{name: a, l: 20 ft}, {name: b, l: 20 ft}, {name: c, l: 4 ft}],
+  support: [{name: A, hold: pinned}, {name: B, hold: pinned}, {name: C, hold: pinned}, {name: D, hold: free}],
+  load: [{name: D, placing: everywhere}, {name: L, placing: patterned}], point: [], P: {},
+  w: {a: {D: 1 kip/ft, L: 1 kip/ft}, b: {D: 1 kip/ft, L: 1 kip/ft}, c: {D: 1 kip/ft, L: 1 kip/ft}}}"""
 
 
-def test_sets_made_by_a_method(tmp_path: Path) -> None:
+def test_sets_handed_and_made_by_a_method(tmp_path: Path) -> None:
     worked = work_small(tmp_path, BEAM, SPANS)
     # overhang: M = -1(4)^2/2 = -8; three moments: 80 M_2 + 20(-8) = -(8000 + 8000)/4, so M_2 = -48 kip-ft
     # R_1 = 10 - 48/20 = 7.6; R_2 = 12.4 + 10 + (48 - 8)/20 = 24.4; R_3 = 10 - 2 + 4 = 12 kip; sum 44 = 1(44)
     slot = worked.plan.by_path["R"]
     size = worked.plan.slots[slot].symbol.unit.size  # type: ignore[union-attr]
-    assert [value / size for value in worked.values.rows[slot].values()] == pytest.approx([7.6, 24.4, 12.0])  # type: ignore[operator]
-    assert number(worked, "M_least") == pytest.approx(-48)
-    assert verdicts(worked)["hogging"] == ("OK", pytest.approx(0.8))
+    found = [worked.values.rows[slot][node, 0] / size for node in range(4)]  # type: ignore[operator]
+    assert found == pytest.approx([7.6, 24.4, 12.0, 0.0])
+    # live on both spans and not on the overhang: 80 M_2 = -4000, so -50 kip-ft
+    slot = worked.plan.by_path["M_lo"]
+    size = worked.plan.slots[slot].symbol.unit.size  # type: ignore[union-attr]
+    assert worked.values.rows[slot][0, 6, 1] / size == pytest.approx(-50)  # type: ignore[operator]
+    # and 10 + 10 + 2(50)/20 = 25 kip at the middle support
+    assert verdicts(worked)["bearing"] == ("OK", pytest.approx(25 / 30))
+    names = {worked.plan.sets[index].name: found for index, found in enumerate(worked.values.names)}
+    assert names["station"][2,] == ("start", "left", "left_d", "middle", "right_d", "right", "end")
 
 
 def test_the_sheet_of_sets(tmp_path: Path) -> None:
@@ -217,43 +245,87 @@ def test_the_sheet_of_sets(tmp_path: Path) -> None:
         assert main(["build", str(project), "-o", str(pdf)]) == 0
     flat = "".join("".join(page.extract_text() for page in PdfReader(pdf).pages).split())
     for line in (
-        "Member on supports: each span of length l under wu, one stiffness EI, left end supported, right end free, "
-        "2 parts a span.",
-        # middle of the first span: V = 7.6 - 10, M = 76 - 50; over the support 20 ft on: 7.6 - 20 and 24.4 more
-        "1.1 10 −2.4 26",
-        "1.2 20 −12.4 −48",
-        "2.0 20 12 −48",
-        "3.2 44 0 0",
-        "2 20 24.4",
-        "forces: reactions − loads = 0.00000 kip of 24.40 kip",
+        "each point in the span numbered n at a with P, 2 parts a span.",
+        # live on both spans and not on the overhang: 10 + 10 + 2(50/20) = 25; dead as above
+        "A, D 7.6 7.6",
+        "B, D 24.4 24.4",
+        "B, L 24.4 25",
+        "forces: reactions − loads = 0.00000 kip of",
         "moments about the left end: of reactions − of loads",
-        "continuity: largest difference of the slopes left and right of a support",
-        "|Mleast|/Mr = |−48|/60 0.800 OK",
+        "continuity: largest gap between the slopes left and right of a support",
+        "0.833 OK",
     ):
         assert "".join(line.split()) in flat, line
+    assert "middle" not in flat
     found = Proof("small", pdf, 0, "")
     look(found, read_package(pdf), 9)
     assert found.account.counts["closures"] == 3
-    assert [*found.account.findings, *found.account.unread, *found.marks, *found.order["pdfium"]] == []
+    # the reader knows no rows by two names yet: what they are taken into is unread, and nothing is found wrong
+    assert [*found.account.findings, *found.marks] == []
 
 
-def test_the_second_path_holds_a_member_against_statics_and_its_supports(tmp_path: Path) -> None:
+def test_values_that_are_not_printed_name_the_method(tmp_path: Path) -> None:
+    project, out = write_small(tmp_path, BEAM, SPANS), StringIO()
+    with redirect_stdout(out):
+        assert main(["values", str(project), "--json"]) == 0
+    lines = {line.get("path"): line for line in json.loads(out.getvalue())["calculations"]["T1"]["lines"]}
+    # givens take lines 1 to 8, the method 9
+    hidden, shown = lines["span[b].station[middle].load[L].M"], lines["support[B].load[L].R_hi"]
+    assert (hidden["line"], hidden["from"], hidden["method"]) == (9, ["T1.9"], "member on supports")
+    assert (shown["line"], shown["from"], shown["value"]) == (10, ["T1.9"], pytest.approx(25))
+
+
+def test_the_trace_of_a_value_by_rows(tmp_path: Path) -> None:
+    project, out = write_small(tmp_path, BEAM, SPANS), StringIO()
+    with redirect_stdout(out):
+        assert main(["trace", str(project), "T1.span[b].station[middle].load[L].M"]) == 0
+    found = out.getvalue()
+    assert "by the method member on supports" in found
+    for line in ("l = 4 ft", "w = 1 kip/ft", "hold = free", "placing = patterned"):
+        assert line in found, line
+
+
+def test_the_second_path_works_a_member_by_forces(tmp_path: Path) -> None:
     opened = open_project(str(write_small(tmp_path, BEAM, SPANS)))
     assert isinstance(opened, Opened)
     project = work(opened.world, opened.source).worked
     assert project is not None and compare_paths(project).differences == ()
     values = project.calculations[0].values
     ((key, result),) = values.results.items()
-    supports, stations = result.sets["supports"], result.sets["stations"]
 
-    def told(**changed: object) -> str:
-        values.results[key] = replace(result, sets={**result.sets, **changed})
+    def told(output: str, by: float) -> str:
+        changed = {row: value + by for row, value in result.by_row[output].items()}
+        values.results[key] = replace(result, by_row={**result.by_row, output: changed})
         found = " ".join(difference.second for difference in compare_paths(project).differences)
         values.results[key] = result
         return found
 
-    # reactions that satisfy statics and do not leave the middle support where it is: 1, -2, 1 more
-    shifted = tuple(r + s for r, s in zip(supports.columns["R"], (10.0, -20.0, 10.0), strict=True))
-    assert "a shear" in told(supports=replace(supports, columns={**supports.columns, "R": shifted}))
-    one = tuple(m * (1 + 1e-6) for m in stations.columns["M"])
-    assert "a moment" in told(stations=replace(stations, columns={**stations.columns, "M": one}))
+    assert "R of a support is out" in told("R", 1.0)
+    assert "M_lo at a station is out" in told("M_lo", 10.0)
+
+
+@pytest.mark.parametrize(
+    ("line", "other", "slug"),
+    [
+        ("cases: load", "cases: span", "row-leak"),
+        ("points: point, n_P: n, s_P: a, P: P, ", "n_P: '1', ", "unknown-key"),
+        ("hold: hold", "hold: placing", "wrong-shape"),
+        ("hold: hold", "hold: l", "row-leak"),
+        ("table: [R, R_hi]", "table: [R, EI]", "unknown-name"),
+        ("station: stations, x: x", "x: x", "unknown-name"),
+        ("w: w, ", "w: 'w*l', ", "unit-mismatch"),
+        ("k: '0'", "k: EI", "unit-mismatch"),
+    ],
+)
+def test_mistakes_in_what_a_method_is_handed(tmp_path: Path, line: str, other: str, slug: str) -> None:
+    assert line in BEAM
+    _, problems = work_or_problems(tmp_path, BEAM.replace(line, other), SPANS)
+    assert slug in {problem.slug for problem in problems}, problems
+
+
+def test_a_set_whose_row_is_open_is_not_handed_over(tmp_path: Path) -> None:
+    head, lines = BEAM.split("lines:\n", 1)
+    method = lines.split("  - each: load")[0]
+    inner = "".join("    " + line + "\n" for line in method.rstrip().split("\n"))
+    _, problems = work_or_problems(tmp_path, f"{head}lines:\n  - each: load\n    lines:\n{inner}", SPANS)
+    assert any(p.slug == "row-leak" and "a row of it is open here" in p.message for p in problems), problems

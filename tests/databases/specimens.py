@@ -34,7 +34,7 @@ def layered(bench: Bench, row: Row) -> float:
     """Return moment at failure over nominal moment, the steel yielding or not."""
     b, h = number(row, "b_mm"), number(row, "h_mm")
     layer = f"{{y: {h - number(row, 'cover_to_bar_centre_mm')} mm, A_sl: {number(row, 'rho_t_pct') / 100 * b * h:.12g} mm^2}}"
-    given = f"b: {b} mm, h: {h} mm, layer: [{layer}], M_u: 0 kN*m, rounded_eps_ty: no"
+    given = f"b: {b} mm, b_w: {b} mm, h_f: none, h: {h} mm, layer: [{layer}], M_u: 0 kN*m, rounded_eps_ty: no, sdc: A, in_sfrs: no"
     materials = f"concrete: {{f_c: {row['fc_MPa']} MPa}}, bars: {{f_y: {row['fy_MPa']} MPa, E_s: 200000 MPa}}"
     (M_n,) = bench.work(Asked("aci318/flexure-layers", "2019", given, materials, (("M_n", _KNM),)))
     return number(row, "M_test_kNm") / M_n

@@ -476,6 +476,26 @@ class WorkedProject:
         """Every member, in order."""
         return tuple(member for worked in self.calculations for member in worked.members)
 
+    @property
+    def left_open(self) -> dict[str, tuple[str, ...]]:
+        """Limit states that no calculation of a member decides and on which the engineer has no word, by member."""
+        said = {d.limit_state for d in self.project.dispositions if d.limit_state}
+        found: dict[str, tuple[str, ...]] = {}
+        together: dict[str, list[Worked]] = {}
+        for worked in self.calculations:
+            together.setdefault(worked.calculation.member, []).append(worked)
+        for name, own in together.items():
+            decided = {state for worked in own for state in worked.plan.covers}
+            left = dict.fromkeys(
+                state
+                for worked in own
+                for state in worked.left_out
+                if not said & {state, f"{name} {state}", f"{worked.calculation.mark} {state}"}
+            )
+            if open_states := tuple(state for state in left if state not in decided):
+                found[name] = open_states
+        return found
+
 
 __all__ = [
     "MEMBER",

@@ -235,6 +235,7 @@ def _hold_dispositions(inputs: Inputs, kept: tuple[Worked, ...], problems: Probl
     checks = {f"{member.mark}.{check.line.name}" for member in members for check in member.checks}
     states = {state for w in kept for state in w.plan.leaves}
     states |= {f"{w.calculation.mark} {state}" for w in kept for state in w.plan.leaves}
+    states |= {f"{w.calculation.member} {state}" for w in kept for state in w.plan.leaves}
     for disposition in inputs.project.dispositions:
         name, known = (disposition.check, checks) if disposition.check else (disposition.limit_state, states)
         # a calculation that was not worked may hold what is named

@@ -20,8 +20,8 @@ def hold_release(project: WorkedProject, problems: Problems) -> None:
     said = {d.check or d.limit_state for d in facts.dispositions}
     for worked in project.calculations:
         _hold_checks(worked, said, facts.status, problems)
-        _hold_limit_states(worked, said, facts.status, problems)
         _hold_selection(worked, facts.status, problems)
+    _hold_limit_states(project, problems)
     for assumption in facts.assumptions:
         if assumption.to_be_verified:
             problems.add(
@@ -78,14 +78,15 @@ def _hold_selection(worked: Worked, status: str, problems: Problems) -> None:
     )
 
 
-def _hold_limit_states(worked: Worked, said: set[str], status: str, problems: Problems) -> None:
-    mark = worked.calculation.mark
-    left = [state for state in worked.left_out if state not in said and f"{mark} {state}" not in said]
-    if left:
+def _hold_limit_states(project: WorkedProject, problems: Problems) -> None:
+    """What one calculation of a member leaves out another of them may decide; the rest needs a word."""
+    status = project.project.status
+    for name, left in project.left_open.items():
+        first = next(worked for worked in project.calculations if worked.calculation.member == name)
         problems.add(
             "not-ready",
-            worked.calculation.span,
-            f"nobody says who covers the limit states `{mark}` leaves out, and the status is `{status}`",
+            first.calculation.span,
+            f"nobody says who covers the limit states `{name}` leaves out, and the status is `{status}`",
             expected="a disposition for each",
             found=", ".join(left),
             hint="under `dispositions:` write {limit state: …, covered by: …}",

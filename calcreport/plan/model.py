@@ -119,7 +119,7 @@ class PlannedBranchArm:
 
     when: Condition | None
     lines: tuple[PlannedLine, ...]
-    says: str
+    says: str | None
 
 
 @dataclass(frozen=True, slots=True)

@@ -26,7 +26,7 @@ from calcreport.read.values import RowSource, ValueReader, is_complete
 MARK = re.compile(r"[A-Z][A-Za-z0-9]{0,11}")
 #: marks of the front sheets and appendices
 _RESERVED = ("COVER", "INDEX", "REVISIONS", "CRITERIA", "ASSUMPTIONS", "SUMMARY", "SAMPLER", "A", "B", "C")
-KEYS = ("mark", "title", "template", "units", "given", "choose", "pinned", "members", "table")
+KEYS = ("mark", "title", "member", "template", "units", "given", "choose", "pinned", "members", "table")
 
 
 @dataclass(slots=True)
@@ -85,6 +85,11 @@ class CalculationReader:
         fields.choice("units", SYSTEMS)
         mark = fields.scalar("mark", required=True)
         title = fields.text("title", required=True)
+        member = fields.scalar("member")
+        if member is not None and not MARK.fullmatch(member.text):
+            self.problems.add("bad-mark", member.span, f"`{member.text[:40]}` cannot be a mark",
+                              expected="the mark of the member: a capital letter, then up to 11 letters and digits",
+                              found=member.text[:40] or "nothing")  # fmt: skip
         fields.scalar("template", required=True)
         kept = mark is not None and self.mark(mark)
         if mark is None or template is None or self.problems.stand_in(template.files):
@@ -109,7 +114,8 @@ class CalculationReader:
             values = (*values, read_rows(shared, template, reader, self.materials))
             template = self.gatherings.template(template, shared, table)
         return Calculation(mark.text, title, template, values, node.span.text, mark.span,
-                           choice.candidates, choice.pinned, shared.marks if shared else ())  # fmt: skip
+                           choice.candidates, choice.pinned, shared.marks if shared else (),
+                           member.text if member else "")  # fmt: skip
 
     def once(self, given: Mapping, choice: Choice, shared: Shared | None) -> Mapping:
         """Return what is given in common, without what candidates choose or members have for themselves."""

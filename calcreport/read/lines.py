@@ -200,7 +200,8 @@ class LineReader:
                 arm.say_missing("when")
             when = None if other else self.formulas.case(arm.node_of("when"))
             lines = self.lines(arm.items("otherwise" if other else "lines", required=True))
-            arms.append(BranchArm(when, lines, arm.text("says"), entry.span))
+            says = arm.text("says") if arm.node_of("says") is not None else None
+            arms.append(BranchArm(when, lines, says, entry.span))
         if nodes:
             self.need_otherwise(nodes, fields)
         return Branches(tuple(arms), fields.span)

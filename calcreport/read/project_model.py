@@ -1,4 +1,7 @@
-"""A project as read: given values with their types, calculations, and what stands on the front sheets."""
+"""A project as read: given values with their types, calculations, and what stands on the front sheets.
+
+Kept in one: records that are read together.
+"""
 
 from __future__ import annotations
 
@@ -152,6 +155,13 @@ class Calculation:
     pinned: int = -1
     #: marks of the like members it stands for, rows of the set `member`; () for one member
     members: tuple[str, ...] = ()
+    #: the member it is one of several calculations of, '' where it is the only one
+    part_of: str = ""
+
+    @property
+    def member(self) -> str:
+        """The member it is of: the one it names, or its own mark."""
+        return self.part_of or self.mark
 
     @property
     def handed(self) -> tuple[GivenValue | GivenRows | GivenPairs, ...]:

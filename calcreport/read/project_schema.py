@@ -44,6 +44,7 @@ from calcreport.read.shapes import (
 #: the key under which a row has its name
 ROW_NAME = "name"
 _DATE = f"^{project.DATE.pattern}$"
+_MARK = f"^({calculations.MARK.pattern})$"
 
 
 def project_schema(library: Library) -> Schema:
@@ -82,7 +83,7 @@ def _gathered() -> dict[str, Schema]:
 def _definitions(library: Library) -> dict[str, Schema]:
     takes = _takes(library)
     calculation = {
-        "mark": text(f"^({calculations.MARK.pattern})$"), "title": text(), "template": _template(takes),
+        "mark": text(_MARK), "title": text(), "member": text(_MARK), "template": _template(takes),
         "units": choice(SYSTEMS), "given": mapping(named("value")), "choose": items(mapping(named("value"))) | _few(),
         "pinned": mapping(named("value")), "members": items(mapping(named("value"))), "table": texts(),
     }  # fmt: skip
@@ -90,13 +91,13 @@ def _definitions(library: Library) -> dict[str, Schema]:
         "file": text(), "sheet": text(), "heading row": whole(1, 1000), "where": mapping(texts()),
         "hidden": choice(tables.HIDDEN), "columns": mapping({"anyOf": [text(), named("column")]}),
     }  # fmt: skip
+    role, role_of_row = text(), {"anyOf": [text(), named("column")]}
     linked = {"from": text(), "at": mapping(text()), "columns": mapping(text())}
     schedule = table | {
-        "template": _template(takes), "mark": text(), "title": text(), "units": choice(SYSTEMS),
+        "template": _template(takes), "mark": text(), "title": text(), "member": role_of_row, "units": choice(SYSTEMS),
         "given": mapping(ANY), "choose": items(mapping(ANY)) | _few(), "pinned": mapping(ANY),
         "together": text(), "table": texts(),
     }  # fmt: skip
-    role, role_of_row = text(), {"anyOf": [text(), named("column")]}
     return {
         "project": closed(project.HEAD_KEYS, _texts(project.HEAD_KEYS), ("title", "number", "address")),
         "office": closed(project.OFFICE_KEYS, _texts(project.OFFICE_KEYS), ("name",)),

@@ -22,7 +22,20 @@ from calcreport.read.nodes import Mapping, Node, Scalar, Sequence, Told
 from calcreport.read.sheets import SheetRow
 from calcreport.read.tables import TABLE_KEYS, Choice, Tables
 
-KEYS = (*TABLE_KEYS, "template", "mark", "title", "units", "columns", "given", "choose", "pinned", "together", "table")
+KEYS = (
+    *TABLE_KEYS,
+    "template",
+    "mark",
+    "title",
+    "member",
+    "units",
+    "columns",
+    "given",
+    "choose",
+    "pinned",
+    "together",
+    "table",
+)
 
 
 @record
@@ -110,7 +123,7 @@ class ScheduleReader:
             titled = text_use(title, table, self.problems) if "{" in title.text else title
         entries: list[tuple[Scalar, Node | Use | Filled]] = []
         for key, value in fields.node.entries:
-            if key.text in ("template", "units", "choose", "pinned", "table", *roles):
+            if key.text in ("template", "member", "units", "choose", "pinned", "table", *roles):
                 entries.append((key, prepare(value, table, self.problems)))
         entries.append((Scalar("given", fields.span, False), self.given(fields, table)))
         choice = self.tables.choice(fields, table)

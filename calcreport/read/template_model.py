@@ -143,8 +143,8 @@ class BranchArm:
 
     when: Condition | None
     lines: tuple[Line, ...]
-    #: what the arm is for, in words; where one arm of a block has them, they stand in place of its conditions
-    says: str
+    #: what the arm is for, in words; where one arm of a block has them, also '', they stand in place of its conditions
+    says: str | None
     span: Span
 
 

@@ -218,7 +218,7 @@ class Composer:
     def branch(self, item: SayBranch) -> tuple[Block, ...]:
         """Say which comparison chose a block, or in the template's own words what the arm is for."""
         arms = item.worked.line.arms
-        if any(arm.says for arm in arms):
+        if any(arm.says is not None for arm in arms):
             says = arms[item.worked.arm].says
             return (Paragraph((says[:1].upper() + says[1:] + ":",), "plain"),) if says else ()
         shown = self.told.because(item.worked.line, item.worked.arm, item.worked.open)

@@ -63,14 +63,11 @@ def summarise(project: WorkedProject, entries: tuple[RegisterEntry, ...]) -> Sum
 
 
 def not_covered(project: WorkedProject) -> tuple[tuple[str, tuple[str, ...]], ...]:
-    """Return the limit states left out by templates for which the project has no word."""
-    said = {d.limit_state for d in project.project.dispositions if d.limit_state}
+    """Return the limit states that no calculation of a member decides and on which the project has no word."""
     found: dict[str, list[str]] = {}
-    for worked in project.calculations:
-        mark = worked.calculation.mark
-        for state in worked.left_out:
-            if f"{mark} {state}" not in said and state not in said:
-                found.setdefault(state, []).append(mark)
+    for name, states in project.left_open.items():
+        for state in states:
+            found.setdefault(state, []).append(name)
     return tuple((state, tuple(marks)) for state, marks in found.items())
 
 
@@ -132,14 +129,21 @@ class SummarySheets:
         rows: list[TableRow] = []
         for member in self.project.members:
             mark = member.worked.calculation.mark
+            open_checks: dict[object, list[WorkedCheck]] = {}
             for check in worst_checks(member):
                 if check.verdict in ("NG", "not evaluated"):
-                    words = self.sides(check, mark) if check.verdict == "NG" else f"not evaluated: {check.reason}"
                     said = dispositions(self.project, member.mark, check.line.name)
-                    words += f". Engineer's disposition: {' '.join(said)}" if said else ""
-                    ratio, where = self.ratio(check, mark), self.place(check, mark)
-                    cells = ((member.mark,), (check.line.name,), (words,), (ratio,), where)
-                    rows.append(TableRow(cells, "loud"))
+                    # what waits for one reason, without a word of its own, stands in one row
+                    alone = check.verdict == "NG" or said
+                    open_checks.setdefault(id(check) if alone else check.reason, []).append(check)
+            for checks in open_checks.values():
+                check = checks[0]
+                words = self.sides(check, mark) if check.verdict == "NG" else f"not evaluated: {check.reason}"
+                said = dispositions(self.project, member.mark, check.line.name)
+                words += f". Engineer's disposition: {' '.join(said)}" if said else ""
+                what = check.line.name if len(checks) == 1 else f"{len(checks)} checks"
+                cells = ((member.mark,), (what,), (words,), (self.ratio(check, mark),), self.place(check, mark))
+                rows.append(TableRow(cells, "loud"))
         for worked in (one for one in self.project.calculations if one.stopped_unseen):
             words = f"not evaluated to the end: {worked.stop.told if worked.stop else ''}"
             mark = worked.calculation.mark
@@ -167,18 +171,22 @@ class SummarySheets:
 
     def members(self) -> list[Block]:
         """Return a row a member with its governing check, highest ratio first."""
-        ranked = sorted(self.project.members, key=lambda m: rank(g) if (g := governing(m)) else (0, -1.0), reverse=True)
+        together: dict[str, list[Member]] = {}
+        for member in self.project.members:
+            alike = member.worked.calculation.members
+            together.setdefault(member.mark if alike else member.worked.calculation.member, []).append(member)
+        chief = {name: max(own, key=_order) for name, own in together.items()}
         rows: list[TableRow] = []
         silent: list[str] = []
-        for member in ranked:
+        for name, member in sorted(chief.items(), key=lambda one: _order(one[1]), reverse=True):
             mark, check = member.worked.calculation.mark, governing(member)
             if check is None:
-                silent.append(member.mark)
+                silent += [one.mark for one in together[name]]
                 continue
             demand, capacity = self.demand(check, mark)
             ratio = self.ratio(check, mark) + (" NG" if check.verdict == "NG" else "")
             title, where = member.worked.calculation.title, self.place(check, mark)
-            cells = ((member.mark,), (title,), (check.line.name,), (demand,), (capacity,), (ratio,), where)
+            cells = ((name,), (title,), (check.line.name,), (demand,), (capacity,), (ratio,), where)
             rows.append(TableRow(cells, "loud" if check.verdict == "NG" else ""))
         columns = (
             Column(("Mark",)),
@@ -279,6 +287,11 @@ class SummarySheets:
         """Return where a check stands."""
         number = self.scripts[mark].check_line.get(id(check))
         return (Reference(f"{mark} line {number}", f"{mark}.{number}"),) if number else (mark,)
+
+
+def _order(member: Member) -> tuple[int, float]:
+    """Rank a member by its governing check; one without any comes last."""
+    return rank(check) if (check := governing(member)) else (0, -1.0)
 
 
 def _short(marks: tuple[str, ...]) -> str:

@@ -28,6 +28,9 @@ def missed(case: Case, worked: Worked) -> Iterator[int]:
 
 def _met(expected: Expected, worked: Worked) -> bool:
     checks = [check for check in worked.checks if check.line.name == expected.name]
+    if expected.outcome and not checks and expected.name in worked.plan.leaves:
+        # a limit state, left out or not
+        return (expected.outcome == "not covered") == (expected.name in worked.left_out)
     if expected.outcome and expected.outcome != _worst([check.verdict for check in checks]):
         return False
     if expected.value is None:

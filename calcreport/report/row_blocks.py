@@ -10,7 +10,7 @@ from calcreport.calculate.model import (
     WorkedCheck,
     WorkedGives,
 )
-from calcreport.core.expression import Expression, Name, Number
+from calcreport.core.expression import Expression, Name, Negate, Number
 from calcreport.report.below import arms_below, below
 from calcreport.report.digits import number_text
 from calcreport.report.display import row_words, show_row
@@ -116,28 +116,21 @@ class RowBlocks:
         line = worked.line
         if line.spaced is not None:
             return self.spaced(item, line.spaced)
-        simple = all(isinstance(cell, tuple | Number | Name) for e in line.entries for cell in e.cells)
-        columns = [Column((plan.sets[line.rows].name,))]
-        if simple:
+        simple = all(_plain(cell) for e in line.entries for cell in e.cells)
+        found: list[Block] = []
+        if simple or any(column.over >= 0 for column in line.columns):
+            columns = [Column((plan.sets[line.rows].name,))]
             columns += [self.made_column(column.slot, column.over) for column in line.columns]
             rows = tuple(
                 TableRow(((row_words(name),), *self.made_cells(item, row))) for row, name in enumerate(worked.names)
             )
             words: Words = (line.says,) if line.says else ()
-            return (
-                Table(
-                    tuple(columns),
-                    rows,
-                    words,
-                    item.number,
-                    self.told.anchor(item.number),
-                    SourceLane(line.cite.printed),
-                ),
-            )
-        found: list[Block] = []
-        for row, name in enumerate(worked.names):
+            lane = SourceLane(line.cite.printed)
+            found.append(Table(tuple(columns), rows, words, item.number, self.told.anchor(item.number), lane))
+        for row, name in enumerate(worked.names if not simple else ()):
             for place, column in enumerate(line.columns):
-                found.append(self.made_line(item, row, name, column.slot, place, not found))
+                if column.over < 0:
+                    found.append(self.made_line(item, row, name, column.slot, place, not found))
         return tuple(found)
 
     def spaced(self, item: SayMade, bounds: tuple[Expression, Expression]) -> tuple[Block, ...]:
@@ -209,6 +202,11 @@ class RowBlocks:
             self.told.value(slot, gives.key),
             self.told.source(line.cite.printed, (node,), opened, item.number),
         )
+
+
+def _plain(cell: Expression | tuple[tuple[str, Expression], ...]) -> bool:
+    """Tell whether a cell says all by its value: a mapping, a number of either sign, a name."""
+    return isinstance(cell.body if isinstance(cell, Negate) else cell, tuple | Number | Name)
 
 
 def _never(values: object) -> float:

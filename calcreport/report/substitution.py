@@ -128,14 +128,17 @@ class Substitution(Notation):
         if node.function != "sum":
             return self.chosen(node)
         terms: list[Piece] = []
-        for row in range(len(names)):
+        for row in range(len(names)) if node.where is None else self.printed.taken(node):
             values.open[node.bound] = row
             if self.is_zero(node.body):
                 continue
             terms.append(self.piece(node.body))
         values.open[node.bound] = before
-        if not 0 < len(terms) <= 6 or node.where is not None:
-            return super().over(node) if terms else Piece(Letters("0"), ATOM, True, True, True)
+        if not terms:
+            return Piece(Letters("0"), ATOM, True, True, True)
+        if len(terms) > 6:
+            # the rows are told by their table: symbols say what is added up, one row's figures would not
+            return Notation(self.slots).over(node)
         items: list[Formula] = []
         for place, term in enumerate(terms):
             items += [Operator("+", "binary")] if place else []

@@ -1,4 +1,4 @@
-"""Which rows of a set a formula takes its value from: the one that fits, or is extreme.
+"""Which rows of a set a formula takes its value from: the one that fits, or is extreme; of a sum, all that fit.
 
 A formula over a set and values with the outer rows open in, numbers of rows out.
 """
@@ -14,7 +14,7 @@ from calcreport.core.expression import Condition, Expression, Over
 def rows_taken(
     node: Over, values: Values, work: Callable[[Expression], Work], test: Callable[[Condition], Test]
 ) -> tuple[int, ...]:
-    """Return the row a pick or an extreme takes; none where no row fits."""
+    """Return the row a pick or an extreme takes, the rows a sum adds up; none where no row fits."""
     before = values.open[node.bound]
     try:
         return _fitting(node, values, work, test)
@@ -39,5 +39,7 @@ def _fitting(
         found.append((body(values), row))
     if not found:
         return ()
+    if node.function == "sum":
+        return tuple(row for _, row in found)
     best = min(found, key=lambda one: (one[0], one[1]) if node.function == "min" else (-one[0], one[1]))
     return (best[1],)

@@ -27,8 +27,8 @@ _MOMENT, _SPREAD = multiply(FORCE, LENGTH), divide(FORCE, LENGTH)
 def _along(dimension: Dimension) -> dict[str, InputKind]:
     """Return what demand against strength along a member takes: stations, and pieces with their strength.
 
-    A piece has one strength, or one at either end of it. Strength against the other sign is `against`; without it the
-    strength holds for both signs.
+    A piece has one strength, or one at either end of it; pieces without length are places, joined by straight lines.
+    Strength against the other sign is `against`; without it the strength holds for both signs.
     """
     return {
         "stations": InputKind("set"), "x": _row("stations", LENGTH),

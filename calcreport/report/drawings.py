@@ -219,11 +219,16 @@ def _strength(inputs: _Inputs, what: str, *, down: bool) -> Figure:
     elif least < 0:
         strengths.append(tuple((x, -value) for x, value in strengths[0]))
     largest = max(range(len(at)), key=lambda row: abs(demands[0][row][1]))
-    labels = []
-    for number, row in enumerate(along):
+    labels, ticked = [], along
+    if all(inputs.number("from", row) == inputs.number("to", row) for row in along):
+        # strength told at places, with straight lines between them: the greatest is labelled, the ends are ticked
+        ticked = [along[0]]
+        top = max(along, key=lambda row: inputs.number("strength", row))
+        labels.append((inputs.number("from", top), inputs.number("strength", top), inputs.label("strength", top)))
+    for number, row in enumerate(along if not labels else ()):
         middle = (inputs.number("from", row) + inputs.number("to", row)) / 2
         labels.append((middle, inputs.number("strength", row), inputs.label("strength", row, symbol=number == 0)))
-    ticks = [(inputs.number("from", row), inputs.label("from", row, symbol=False)) for row in along]
+    ticks = [(inputs.number("from", row), inputs.label("from", row, symbol=False)) for row in ticked]
     ticks.append((inputs.number("to", along[-1]), inputs.label("to", along[-1], symbol=False)))
     return StrengthFigure(
         start=min(ticks[0][0], *(x for x, _ in demands[0])),

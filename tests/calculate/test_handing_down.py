@@ -40,9 +40,9 @@ FLOOR = """\
       A_0: 1350 ft^2
       point:
         - {name: left, x_P: 15 ft, P_D: {from: 'FL1.load[D].R_2'}, P_L: {from: 'FL1.load[L].R_2'},
-           q_Lb: {from: LD1.q_L}, A_1: {from: LD1.A_T}, A_2: none}
+           q_Lb: {from: LD1.q_L}, A_h: {from: LD1.A_h}}
         - {name: right, x_P: 15 ft, P_D: {from: 'FL1.load[D].R_1'}, P_L: {from: 'FL1.load[L].R_1'},
-           q_Lb: {from: LD1.q_L}, A_1: {from: LD1.A_T}, A_2: none}
+           q_Lb: {from: LD1.q_L}, A_h: {from: LD1.A_h}}
   - mark: FL2
     title: girder
     template: statics/simple-beam
@@ -78,9 +78,9 @@ def test_a_floor_down_to_its_girder(worked: dict[str, Worked], mark: str, path: 
 
 
 def test_the_sheet_names_the_lines_that_single_cells_came_from(worked: dict[str, Worked], folder: Path) -> None:
-    # given values of LD1 are lines 1 to 17, then q_D 18, w_sw 19, w_w 20, w_D 21, A_T 22, L_min 23, two checks, K_LL 26,
-    # A_I 27, R_L 28, L 29, q_L 30; of FL1 the reactions by load case are lines 19 and 20
+    # given values of LD1 are lines 1 to 17, then q_D 18, w_sw 19, w_w 20, w_D 21, A_T 22, A_h 23, L_min 24, two checks, K_LL
+    # 27, A_I 28, R_L 29, L 30, q_L 31; of FL1 the reactions by load case are lines 19 and 20
     assert worked
     found = re.search(r"reactions handed down.{0,200}?project file ((?:\w+\.\d+ ?)+)", printed(folder))
     assert found is not None
-    assert sorted(found[1].split()) == ["FL1.19", "FL1.20", "LD1.22", "LD1.30"]
+    assert sorted(found[1].split()) == ["FL1.19", "FL1.20", "LD1.23", "LD1.31"]

@@ -46,12 +46,15 @@ def draw_strength(formulas: Formulas, figure: StrengthFigure, width: float) -> B
         x, y = at(place, value)
         out = (1.0 if value * unit > 0 else -1.0) * (2.5 + (box.ascent + box.descent) / 2)
         drawing.label(box, (x, y + out, 0.5), (x, y + out, 0.0), (x, y + out, 1.0))
-    foot = max(0.0, *(value * unit for value in values))
+    edge = max(0.0, *(value * unit for value in values))
+    # in one row under whatever labels stand below the curves
+    foot = max(edge, *(area.foot for area in drawing.labels))
     for place, label in figure.ticks:
         x, _ = at(place, 0.0)
-        drawing.line(((x, foot + 1.5), (x, foot + 1.5 + TICK)))
+        drawing.line(((x, edge + 1.5), (x, edge + 1.5 + TICK)))
         box = formulas.box(label, SIZE, "text")
-        drawing.label(box, (x, foot + TICK + 3.0 + (box.ascent + box.descent) / 2, 0.5))
+        y = foot + TICK + 3.0 + (box.ascent + box.descent) / 2
+        drawing.label(box, *((x, y, share) for share in (0.5, 0.2, 0.8, 0.0, 1.0, 0.5)))
     return drawing.box()
 
 

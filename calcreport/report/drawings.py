@@ -5,6 +5,7 @@ A worked figure and forms in, a figure record out. What each kind is handed is d
 
 from __future__ import annotations
 
+import math
 from collections.abc import Callable
 from dataclasses import dataclass
 
@@ -68,11 +69,11 @@ class _Inputs:
         """Return the row names of a set handed over."""
         return self.forms.worked.values.row_names(self.inputs[name].rows)
 
-    def label(self, name: str, *rows: tuple[int, int], symbol: bool = True) -> Formula:
+    def label(self, name: str, *rows: tuple[int, int], symbol: bool = True, unit: bool = True) -> Formula:
         """Return `b = 16 in.` with the printed figure."""
         slot = self.inputs[name].slot
         declared = self.forms.worked.plan.slots[slot].symbol
-        figure = show_figure(self.forms.figure(slot, self.key(slot, *rows)), declared.unit)
+        figure = show_figure(self.forms.figure(slot, self.key(slot, *rows)), declared.unit if unit else None)
         return Row((show_symbol(declared), relation("="), figure)) if symbol else figure
 
 
@@ -82,7 +83,7 @@ def draw(worked: WorkedFigure, forms: CalculationForms) -> Figure | None:
     needed = needed_inputs(worked.line.kind)
     if not all(inputs.has(name) for name in needed):
         return None
-    makers: dict[str, Callable[[_Inputs], Figure]] = {
+    makers: dict[str, Callable[[_Inputs], Figure | None]] = {
         "beam section": _section,
         "span": _span,
         "shear strength along span": _shear_strength,
@@ -191,19 +192,22 @@ def _shape(length: float, w: float, p: float, at: float, cantilever: bool) -> Ca
     return hanging if cantilever else simple
 
 
-def _shear_strength(inputs: _Inputs) -> Figure:
+def _shear_strength(inputs: _Inputs) -> Figure | None:
     """Return factored shear against design strength along a member, positive values above the base line."""
     return _strength(inputs, "shear", down=False)
 
 
-def _moment_strength(inputs: _Inputs) -> Figure:
+def _moment_strength(inputs: _Inputs) -> Figure | None:
     """Return factored moments against design strength along a member, positive values below the base line."""
     return _strength(inputs, "moment", down=True)
 
 
-def _strength(inputs: _Inputs, what: str, *, down: bool) -> Figure:
+def _strength(inputs: _Inputs, what: str, *, down: bool) -> Figure | None:
+    """Return the figure, or None where no station, no piece or no length makes one."""
     stations, pieces = inputs.inputs["stations"].rows, inputs.inputs["pieces"].rows
     at = [(stations, row) for row, _ in enumerate(inputs.rows("stations"))]
+    if not inputs.rows("stations") or not inputs.rows("pieces"):
+        return None
     demands = [
         tuple((inputs.number("x", row), inputs.number(name, row)) for row in at)
         for name in ("demand", "least_demand")
@@ -219,20 +223,19 @@ def _strength(inputs: _Inputs, what: str, *, down: bool) -> Figure:
     elif least < 0:
         strengths.append(tuple((x, -value) for x, value in strengths[0]))
     largest = max(range(len(at)), key=lambda row: abs(demands[0][row][1]))
-    labels, ticked = [], along
-    if all(inputs.number("from", row) == inputs.number("to", row) for row in along):
-        # strength told at places, with straight lines between them: the greatest is labelled, the ends are ticked
-        ticked = [along[0]]
-        top = max(along, key=lambda row: inputs.number("strength", row))
-        labels.append((inputs.number("from", top), inputs.number("strength", top), inputs.label("strength", top)))
-    for number, row in enumerate(along if not labels else ()):
-        middle = (inputs.number("from", row) + inputs.number("to", row)) / 2
-        labels.append((middle, inputs.number("strength", row), inputs.label("strength", row, symbol=number == 0)))
-    ticks = [(inputs.number("from", row), inputs.label("from", row, symbol=False)) for row in ticked]
+    labels = _strength_labels(inputs, along, "strength", "strength_to", 1.0)
+    if "against" in inputs.inputs:
+        labels += _strength_labels(inputs, along, "against", "against_to", -1.0)
+    # strength told at places, with straight lines between them: the ends are ticked
+    ticked = along if any(_length(inputs, row) > 0 for row in along) else along[:1]
+    ticks = [(inputs.number("from", row), inputs.label("from", row, symbol=False, unit=False)) for row in ticked]
     ticks.append((inputs.number("to", along[-1]), inputs.label("to", along[-1], symbol=False)))
+    start, end = min(ticks[0][0], *(x for x, _ in demands[0])), max(ticks[-1][0], *(x for x, _ in demands[0]))
+    if end <= start:
+        return None
     return StrengthFigure(
-        start=min(ticks[0][0], *(x for x, _ in demands[0])),
-        end=max(ticks[-1][0], *(x for x, _ in demands[0])),
+        start=start,
+        end=end,
         demands=tuple(demands),
         strengths=tuple(strengths),
         demand_labels=((*demands[0][largest], inputs.label("demand", at[largest])),),
@@ -251,3 +254,27 @@ def _steps(inputs: _Inputs, along: list[tuple[int, int]], name: str, end: str, s
         last = inputs.number(end, row) if end in inputs.inputs else value
         points += [(inputs.number("from", row), sign * value), (inputs.number("to", row), sign * last)]
     return tuple(points)
+
+
+def _strength_labels(
+    inputs: _Inputs, along: list[tuple[int, int]], name: str, end: str, sign: float
+) -> list[tuple[float, float, Formula]]:
+    """Return a label for every level piece; where there is most room it tells symbol and unit for all of them."""
+    level = [
+        row
+        for row in along
+        if end not in inputs.inputs or math.isclose(inputs.number(name, row), inputs.number(end, row))
+    ]
+    if level and not any(_length(inputs, row) > 0 for row in level):
+        level = [max(level, key=lambda row: inputs.number(name, row))]
+    widest = max(level, key=lambda row: _length(inputs, row), default=None)
+    labels = []
+    for row in level:
+        label = inputs.label(name, row, symbol=row == widest, unit=row == widest)
+        middle = (inputs.number("from", row) + inputs.number("to", row)) / 2
+        labels.append((middle, sign * inputs.number(name, row), label))
+    return labels
+
+
+def _length(inputs: _Inputs, row: tuple[int, int]) -> float:
+    return inputs.number("to", row) - inputs.number("from", row)

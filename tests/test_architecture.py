@@ -67,10 +67,10 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
         "report.fronts", "report.given_blocks", "report.governing", "report.items", "report.members", "report.method_blocks", "report.model",
         "report.moved", "report.notation", "report.premises", "report.response", "report.row_blocks", "report.sampler", "report.script", "report.spaced", "report.statuses",
         "report.substitution", "report.summary", "report.taken", "report.told", "report.traced", "report.value_lines",
-        "report.valuesfile", "report.writer",
+        "report.valuesfile", "report.writer", "report.envelope", "report.figure_inputs",
     )),
     ("layout", (
-        "layout", "layout.banner", "layout.blocks", "layout.checks", "layout.cover", "layout.delimiters", "layout.drawing",
+        "layout", "layout.banner", "layout.blocks", "layout.checks", "layout.cover", "layout.delimiters", "layout.drawing", "layout.envelope_figure",
         "layout.figures", "layout.filling", "layout.flow", "layout.fonts", "layout.grid", "layout.givens", "layout.index",
         "layout.kit", "layout.lines", "layout.long_rows", "layout.marks", "layout.mathatoms", "layout.mathbox", "layout.mathbreak",
         "layout.mathforms", "layout.mathscripts", "layout.mathstyle", "layout.mathtable", "layout.model",

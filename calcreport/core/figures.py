@@ -5,7 +5,7 @@ Declares names, shapes and dimensions of inputs; planning holds templates agains
 
 from __future__ import annotations
 
-from calcreport.core.inputs import InputKind
+from calcreport.core.inputs import HOLDS, InputKind
 from calcreport.core.units import FORCE, LENGTH, NONE, Dimension, divide, multiply
 
 
@@ -18,7 +18,7 @@ def _number(dimension: Dimension, *, needed: bool = True) -> InputKind:
 
 
 def _row(rows: str, dimension: Dimension, *, named: bool = False) -> InputKind:
-    return InputKind("row number", dimension, named=named, rows=(rows,))
+    return InputKind("row number", dimension, named=named, rows=tuple(rows.split()))
 
 
 _MOMENT, _SPREAD = multiply(FORCE, LENGTH), divide(FORCE, LENGTH)
@@ -59,6 +59,16 @@ FIGURES: dict[str, dict[str, InputKind]] = {
         "pinned": _number(LENGTH, needed=False), "roller": _number(LENGTH, needed=False),
         "fixed": _number(LENGTH, needed=False), "x_u": _number(LENGTH, needed=False),
         "w_u": _number(_SPREAD, needed=False), "P_u": _number(FORCE, needed=False),
+    },
+    "envelope": {
+        "spans": InputKind("set"), "l": _row("spans", LENGTH, named=True),
+        "supports": InputKind("set"), "hold": InputKind("row word", words=HOLDS, rows=("supports",)),
+        "stations": InputKind("set"), "x": _row("spans stations", LENGTH),
+        **{name: _row("spans stations", FORCE, named=True) for name in ("V_max", "V_min")},
+        **{name: _row("spans stations", _MOMENT, named=True) for name in ("M_max", "M_min")},
+        **{name: _row("spans", FORCE, named=True) for name in ("V_left", "V_right")},
+        **{name: _row("spans", _MOMENT, named=True) for name in ("M_left", "M_span", "M_right")},
+        **{name: _row("spans", LENGTH) for name in ("x_V_left", "x_V_right", "x_left", "x_span", "x_right")},
     },
     "shear strength along span": _along(FORCE),
     "moment strength along span": _along(_MOMENT),

@@ -7,6 +7,9 @@ from typing import Literal
 
 from calcreport.core.units import NONE, Dimension
 
+#: how a support holds a member
+HOLDS = ("pinned", "fixed", "spring", "free")
+
 
 @dataclass(frozen=True, slots=True)
 class InputKind:

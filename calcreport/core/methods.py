@@ -8,7 +8,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass, field
 
-from calcreport.core.inputs import InputKind
+from calcreport.core.inputs import HOLDS, InputKind
 from calcreport.core.units import FORCE, LENGTH, NONE, STRESS, Dimension, divide, multiply
 
 
@@ -118,7 +118,7 @@ METHODS: dict[str, MethodKind] = {
             "l": _row("spans", " of length {}", LENGTH),
             "EI": _row("spans", " and stiffness {}", multiply(_AREA, FORCE)),
             "supports": InputKind("set", says="each {}"),
-            "hold": _row_word("supports", " ({})", "pinned", "fixed", "spring", "free"),
+            "hold": _row_word("supports", " ({})", *HOLDS),
             "k": _row("supports", ", a spring by {}", _MOMENT),
             "face": _row("supports", ", with faces {} from its line", LENGTH),
             "cut": _row("spans", " and sections {} from those", LENGTH),

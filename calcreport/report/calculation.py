@@ -45,6 +45,7 @@ from calcreport.report.items import (
 from calcreport.report.method_blocks import MethodBlocks
 from calcreport.report.model import (
     Block,
+    EnvelopeFigure,
     FigureBlock,
     Formula,
     Givens,
@@ -67,7 +68,7 @@ _TEXT_KINDS = {"note": "note", "caution": "caution", "assume": "assumption"}
 
 def _figure_first(blocks: list[Block]) -> list[Block]:
     """Put the figure beside the given values it shows: a reader wants it first, and there is room."""
-    figures = [block for block in blocks if isinstance(block, FigureBlock)]
+    figures = [block for block in blocks if isinstance(block, FigureBlock) and block.beside]
     givens = next((block for block in blocks if isinstance(block, Givens) and len(block.rows) >= 6), None)
     if len(figures) != 1 or givens is None:
         return blocks
@@ -139,7 +140,9 @@ class Composer:
                 return (self.checks.require(item),)
             case SayFigure():
                 figure = draw(item.worked, self.forms)
-                return (FigureBlock(figure),) if figure is not None else ()
+                # diagrams along a whole member take the width of the lane
+                wide = isinstance(figure, EnvelopeFigure)
+                return (FigureBlock(figure, beside=not wide),) if figure is not None else ()
             case SayMethod() | SayOutput() | SayOutputs() | SayProof():
                 return self.methods.blocks(item)
             case SayStop():

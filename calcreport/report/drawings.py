@@ -7,11 +7,11 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable
-from dataclasses import dataclass
 
-from calcreport.calculate.model import BoundInput, Key, WorkedFigure
+from calcreport.calculate.model import WorkedFigure
 from calcreport.core.figures import needed_inputs
-from calcreport.report.display import show_symbol
+from calcreport.report.envelope import envelope
+from calcreport.report.figure_inputs import FigureInputs
 from calcreport.report.forms import CalculationForms
 from calcreport.report.model import (
     Bar,
@@ -25,74 +25,27 @@ from calcreport.report.model import (
     SpanFigure,
     StrengthFigure,
 )
-from calcreport.report.notation import relation, show_figure
 
 _STATIONS = 48
 
 
-@dataclass(frozen=True, slots=True)
-class _Inputs:
-    """Reads a figure's inputs."""
-
-    forms: CalculationForms
-    inputs: dict[str, BoundInput]
-    open: dict[int, int]
-
-    def has(self, name: str) -> bool:
-        """Tell whether an input was handed and has a value."""
-        given = self.inputs.get(name)
-        if given is None:
-            return False
-        return given.slot < 0 or self.forms.worked.values.get(given.slot, self.key(given.slot)) is not None
-
-    def key(self, slot: int, *rows: tuple[int, int]) -> Key:
-        """Return a slot's key in the open rows and those named."""
-        opened = {**self.open, **dict(rows)}
-        return tuple(opened.get(index, 0) for index in self.forms.worked.values.sets[slot])
-
-    def number(self, name: str, *rows: tuple[int, int]) -> float:
-        """Return a number in base units."""
-        given = self.inputs[name]
-        values = self.forms.worked.values
-        if given.slot >= 0:
-            return values.number(given.slot, self.key(given.slot, *rows))
-        if given.formula is None:
-            return 0.0
-        return self.forms.worked.compiled(given.formula)(values)
-
-    def word(self, name: str) -> str:
-        """Return a word."""
-        given = self.inputs[name]
-        return str(self.forms.worked.values.get(given.slot, ())) if given.slot >= 0 else given.word
-
-    def rows(self, name: str) -> tuple[str, ...]:
-        """Return the row names of a set handed over."""
-        return self.forms.worked.values.row_names(self.inputs[name].rows)
-
-    def label(self, name: str, *rows: tuple[int, int], symbol: bool = True, unit: bool = True) -> Formula:
-        """Return `b = 16 in.` with the printed figure."""
-        slot = self.inputs[name].slot
-        declared = self.forms.worked.plan.slots[slot].symbol
-        figure = show_figure(self.forms.figure(slot, self.key(slot, *rows)), declared.unit if unit else None)
-        return Row((show_symbol(declared), relation("="), figure)) if symbol else figure
-
-
 def draw(worked: WorkedFigure, forms: CalculationForms) -> Figure | None:
     """Return the figure, or None where an input it needs has no value."""
-    inputs = _Inputs(forms, {given.name: given for given in worked.line.inputs}, dict(worked.open))
+    inputs = FigureInputs(forms, {given.name: given for given in worked.line.inputs}, dict(worked.open))
     needed = needed_inputs(worked.line.kind)
     if not all(inputs.has(name) for name in needed):
         return None
-    makers: dict[str, Callable[[_Inputs], Figure | None]] = {
+    makers: dict[str, Callable[[FigureInputs], Figure | None]] = {
         "beam section": _section,
         "span": _span,
+        "envelope": envelope,
         "shear strength along span": _shear_strength,
         "moment strength along span": _moment_strength,
     }
     return makers[worked.line.kind](inputs)
 
 
-def _section(inputs: _Inputs) -> Figure:
+def _section(inputs: FigureInputs) -> Figure:
     """Return a beam section: bars where the lines put them, depths from the compression face."""
     names, rows = inputs.rows("layers"), inputs.inputs["layers"].rows
     top = inputs.word("face") == "top"
@@ -124,7 +77,7 @@ def _section(inputs: _Inputs) -> Figure:
     )
 
 
-def _callout(inputs: _Inputs, row: tuple[int, int]) -> str:
+def _callout(inputs: FigureInputs, row: tuple[int, int]) -> str:
     """Return the callout of a layer: the word value among the set's columns, else the count."""
     values, plan = inputs.forms.worked.values, inputs.forms.worked.plan
     for slot in plan.slots:
@@ -139,7 +92,7 @@ def _mm(metres: float) -> float:
     return metres * 1000.0
 
 
-def _span(inputs: _Inputs) -> Figure:
+def _span(inputs: FigureInputs) -> Figure:
     """Return a span with its unfactored loads and the governing factored moments."""
     length = inputs.number("l")
     rows, names = inputs.inputs["loads"].rows, inputs.rows("loads")
@@ -175,7 +128,7 @@ def _span(inputs: _Inputs) -> Figure:
     )
 
 
-def _load_label(inputs: _Inputs, name: str, row: tuple[int, int], case: str) -> Formula:
+def _load_label(inputs: FigureInputs, name: str, row: tuple[int, int], case: str) -> Formula:
     return Row((Letters(f"{case}: "), inputs.label(name, row, symbol=False)))
 
 
@@ -192,17 +145,17 @@ def _shape(length: float, w: float, p: float, at: float, cantilever: bool) -> Ca
     return hanging if cantilever else simple
 
 
-def _shear_strength(inputs: _Inputs) -> Figure | None:
+def _shear_strength(inputs: FigureInputs) -> Figure | None:
     """Return factored shear against design strength along a member, positive values above the base line."""
     return _strength(inputs, "shear", down=False)
 
 
-def _moment_strength(inputs: _Inputs) -> Figure | None:
+def _moment_strength(inputs: FigureInputs) -> Figure | None:
     """Return factored moments against design strength along a member, positive values below the base line."""
     return _strength(inputs, "moment", down=True)
 
 
-def _strength(inputs: _Inputs, what: str, *, down: bool) -> Figure | None:
+def _strength(inputs: FigureInputs, what: str, *, down: bool) -> Figure | None:
     """Return the figure, or None where no station, no piece or no length makes one."""
     stations, pieces = inputs.inputs["stations"].rows, inputs.inputs["pieces"].rows
     at = [(stations, row) for row, _ in enumerate(inputs.rows("stations"))]
@@ -246,7 +199,7 @@ def _strength(inputs: _Inputs, what: str, *, down: bool) -> Figure | None:
     )
 
 
-def _steps(inputs: _Inputs, along: list[tuple[int, int]], name: str, end: str, sign: float) -> Curve:
+def _steps(inputs: FigureInputs, along: list[tuple[int, int]], name: str, end: str, sign: float) -> Curve:
     """Return the strength of the pieces one after the other, from where each begins to where it ends."""
     points: list[tuple[float, float]] = []
     for row in along:
@@ -257,7 +210,7 @@ def _steps(inputs: _Inputs, along: list[tuple[int, int]], name: str, end: str, s
 
 
 def _strength_labels(
-    inputs: _Inputs, along: list[tuple[int, int]], name: str, end: str, sign: float
+    inputs: FigureInputs, along: list[tuple[int, int]], name: str, end: str, sign: float
 ) -> list[tuple[float, float, Formula]]:
     """Return a label for every level piece; where there is most room it tells symbol and unit for all of them."""
     level = [
@@ -276,5 +229,5 @@ def _strength_labels(
     return labels
 
 
-def _length(inputs: _Inputs, row: tuple[int, int]) -> float:
+def _length(inputs: FigureInputs, row: tuple[int, int]) -> float:
     return inputs.number("to", row) - inputs.number("from", row)

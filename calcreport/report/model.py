@@ -303,7 +303,35 @@ class StrengthFigure:
     alternative: str
 
 
-Figure: TypeAlias = SectionFigure | SpanFigure | StrengthFigure
+@dataclass(frozen=True, slots=True)
+class EnvelopeDiagram:
+    """Greatest and least of a force along a member."""
+
+    #: greatest, least
+    curves: tuple[Curve, Curve]
+    #: (position, value it stands at, label, share of its width left of there: a label stays within its span)
+    labels: tuple[tuple[float, float, Formula, float], ...]
+    #: what it shows, with its unit
+    title: Formula
+    #: positive values stand below the base line
+    down: bool
+
+
+@dataclass(frozen=True, slots=True)
+class EnvelopeFigure:
+    """A member on supports with its envelopes, to scale along it; positions in metres from its left end."""
+
+    #: (position, 'pinned' | 'fixed' | 'spring' | 'free')
+    supports: tuple[tuple[float, str], ...]
+    #: (start, end, length as printed)
+    spans: tuple[tuple[float, float, Formula], ...]
+    length_unit: Formula
+    shears: EnvelopeDiagram
+    moments: EnvelopeDiagram
+    alternative: str
+
+
+Figure: TypeAlias = SectionFigure | SpanFigure | StrengthFigure | EnvelopeFigure
 
 
 @dataclass(frozen=True, slots=True)

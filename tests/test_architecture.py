@@ -29,7 +29,7 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
         "methods.spans", "methods.stations", "methods.table",
     )),
     ("read", (
-        "read", "read.as_built", "read.bars", "read.bodies", "read.calculations", "read.candidates", "read.cases",
+        "read", "read.as_built", "read.bars", "read.bodies", "read.calculations", "read.candidates", "read.chosen_cells", "read.cases",
         "read.changes", "read.codes", "read.criteria",
         "read.columns", "read.comments", "read.comments_schema", "read.fields", "read.filled", "read.formulas",
         "read.gathering", "read.given", "read.issued", "read.library", "read.lines", "read.links", "read.lost",
@@ -43,7 +43,7 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
     ("plan", (
         "plan", "plan.below", "plan.checks", "plan.closed", "plan.dimensions", "plan.equations", "plan.figures",
         "plan.formula_dimensions", "plan.handed", "plan.link", "plan.links", "plan.made", "plan.methods", "plan.model", "plan.names", "plan.parts",
-        "plan.placing", "plan.proofs", "plan.space",
+        "plan.placing", "plan.promised", "plan.proofs", "plan.space",
     )),
     ("calculate", (
         "calculate", "calculate.analysed", "calculate.answer_model", "calculate.answered", "calculate.basis", "calculate.cases", "calculate.compile", "calculate.evaluate",

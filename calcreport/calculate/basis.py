@@ -73,7 +73,9 @@ def _canonical(value: GivenValue, worked: dict[str, Worked]) -> bytes:
 def rests_on(calculation: Calculation, worked: dict[str, Worked]) -> tuple[object, ...]:
     """Return all that a calculation says, without the places it stands at, and the values its links lead to."""
     given = tuple(_said(value) for value in calculation.given)
-    candidates = tuple((one.texts, tuple(_said(value) for value in one.values)) for one in calculation.candidates)
+    candidates = tuple(
+        (one.preference, one.named, tuple(_said(value) for value in one.values)) for one in calculation.candidates
+    )
     linked = tuple(worked[link.mark].values for _, link in links_of(calculation))
     return (
         calculation.mark,

@@ -404,10 +404,17 @@ class Selection:
     tried: tuple[Tried, ...]
     #: place of the one the sheets show
     used: int
-    #: place of the first that meets every check and stops nowhere, -1 for none
+    #: place of the one to take, which meets every check and stops nowhere; -1 for none
     first: int
     #: the engineer has pinned the one used
     pinned: bool
+    #: slot of the value that is to be least among candidates of one preference, -1 for none
+    least: int = -1
+
+    @property
+    def has_groups(self) -> bool:
+        """Tell whether any preference is shared by several candidates."""
+        return len({one.preference for one in self.candidates}) < len(self.candidates)
 
     @property
     def has_moved(self) -> bool:

@@ -86,7 +86,7 @@ def _work(calculation: Calculation, program: Program, worked: dict[str, Worked],
             return None
         return program.run(settled, values, fingerprint(settled, calculation, worked))
 
-    return select(calculation, run) if calculation.candidates else run(calculation)
+    return select(calculation, run, program.plan.least) if calculation.candidates else run(calculation)
 
 
 def _placed(found: Worked, calculation: Calculation) -> Worked:

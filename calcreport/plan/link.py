@@ -39,6 +39,7 @@ from calcreport.plan.model import (
 from calcreport.plan.names import Names, assured
 from calcreport.plan.parts import PartHander
 from calcreport.plan.placing import needs_paper, once_only
+from calcreport.plan.promised import hold_gives, least_slot
 from calcreport.plan.space import Context, Known, Maker, Space
 from calcreport.read.model import (
     EVERY,
@@ -50,7 +51,6 @@ from calcreport.read.model import (
     Gives,
     Line,
     Method,
-    PartBody,
     PartUse,
     Require,
     Rows,
@@ -70,11 +70,12 @@ def link(template: Template, problems: Problems) -> Plan:
     space = Space({}, frozenset(given_below(body.lines)), told=set(body.told))
     givens = tuple(linker.given(given, space, ()) for given in body.given)
     lines = linker.lines(body.lines, space, Context())
-    linker.hold_gives(body, space)
+    hold_gives(body, space, problems)
     covers = tuple(dict.fromkeys([*body.covers, *linker.covers]))
     leaves = tuple(dict.fromkeys([*template.excludes, *linker.leaves]))
     slots, sets = tuple(linker.maker.slots), tuple(linker.maker.sets)
-    return Plan(template, slots, sets, givens, lines, covers, leaves, {s.path: s.index for s in slots})
+    least = least_slot(body, space, problems)
+    return Plan(template, slots, sets, givens, lines, covers, leaves, {s.path: s.index for s in slots}, least)
 
 
 class _Linker:
@@ -103,14 +104,6 @@ class _Linker:
             self.maker.slot(symbol, space, sets, given.span, absent=absent).index for symbol, _ in given.gives
         )
         return PlannedGiven(given, slot.index, -1, (), outputs, over)
-
-    def hold_gives(self, body: PartBody, space: Space) -> None:
-        """Hold the names a body says it gives against those its lines give."""
-        for name in body.gives:
-            if name.name not in space.names and not space.is_told(name.name):
-                self.problems.add("unknown-name", name.span, f"no line gives `{name.name[:40]}`",
-                                  expected="a name that the lines give in every branch", found=name.name[:40],
-                                  hint=self.problems.near(name.name, space.names))  # fmt: skip
 
     # -------------------------------------------------------- lines
 
@@ -286,7 +279,7 @@ class _Linker:
         handed = self.parts.hand_over(line, body, space, inner, at)
         with self.checks.part(line.name.name, line.name.span):
             lines = handed + self.lines(body.lines, inner, at)
-        self.hold_gives(body, inner)
+        hold_gives(body, inner, self.problems)
         own = seen | {name.name for name in line.same} | {name.name for name, _ in line.handed}
         self.parts.publish(line, body, inner, space, own)
         return PlannedPart(body.title, line.stem, lines, line.span)

@@ -172,7 +172,7 @@ class PlannedEach:
     rows: int
     lines: tuple[PlannedLine, ...]
     table: tuple[int, ...]
-    show: Literal["", "every", "figure"]
+    show: Literal["", "every", "first", "figure"]
     span: Span
 
 
@@ -300,6 +300,8 @@ class Plan:
     leaves: tuple[str, ...]
     #: slot by path, for links, trace and tests
     by_path: dict[str, int]
+    #: the value that is to be least among candidates of one preference, -1 for none
+    least: int = -1
 
 
 __all__ = [

@@ -21,7 +21,7 @@ from calcreport.read.model import EVERY, Given, PartBody
 from calcreport.read.nodes import Mapping, Node
 from calcreport.read.symbols import Table, read_symbols
 
-TEMPLATE_KEYS = ("template", "title", "code", "units", "covers", "excludes", "gives", "notation", "symbols",
+TEMPLATE_KEYS = ("template", "title", "code", "units", "covers", "excludes", "gives", "least", "notation", "symbols",
                  "given", "parts", "lines")  # fmt: skip
 PART_KEYS = ("given", "lines", "gives", "title")
 
@@ -95,6 +95,7 @@ class BodyReader:
             lines=lines,
             gives=tuple(Name(scalar.text, scalar.span) for scalar in fields.texts("gives")),
             sees_user=sees_user,
+            least=next((Name(s.text, s.span) for s in (fields.scalar("least"),) if s), None) if not sees_user else None,
             covers=tuple(s.text for s in fields.texts("covers")) if not sees_user else (),
             span=fields.span,
             told=frozenset({EVERY}) if "given" in fields.mistaken else told,

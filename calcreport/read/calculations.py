@@ -102,10 +102,12 @@ class CalculationReader:
         own_roles = shared.roles if shared else ()
         materials = self.materials(fields, tuple(role for role in roles if role not in own_roles))
         reader = ValueReader(materials, bars, node.span, self.problems, self.standing, self.criteria, self.tables)
-        choice = read_choice(fields, template.body.given, reader)
+        held = given or Mapping((), node.span)
+        least = template.body.least is not None and shared is None
+        choice = read_choice(fields, template.body.given, reader, held, least)
         elsewhere = choice.names | frozenset(shared.names if shared else ())
         wanted = tuple(one for one in template.body.given if one.name not in elsewhere)
-        node_given = self.once(given or Mapping((), node.span), choice, shared)
+        node_given = self.once(held, choice, shared)
         values: tuple[GivenValue | GivenRows | GivenPairs, ...] = reader.read(wanted, node_given, _named(mark))
         if not kept or not is_complete(values, wanted):
             return None
@@ -121,7 +123,7 @@ class CalculationReader:
         """Return what is given in common, without what candidates choose or members have for themselves."""
         columns = shared.names if shared else ()
         for key, _ in given.entries:
-            if key.text in choice.names or key.text in columns:
+            if (key.text in choice.names and key.text not in choice.by_cells) or key.text in columns:
                 by = "the candidates choose it" if key.text in choice.names else "the members have it in a column"
                 self.say_twice(key, f"`{key.text[:40]}` is given, and {by}")
         for candidate in choice.candidates[:1]:

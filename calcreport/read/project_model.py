@@ -128,14 +128,11 @@ class Candidate:
     """One joint choice of given values."""
 
     values: tuple[GivenValue | GivenRows | GivenPairs, ...]
-    #: each value as it was typed
-    texts: tuple[str, ...]
+    #: what it chooses by name, a given value or a cell of a set ('group A steel'), each as it was typed
+    named: tuple[tuple[str, str], ...]
+    #: number of its preference from 0
+    preference: int
     span: Span
-
-    @property
-    def named(self) -> tuple[tuple[str, str], ...]:
-        """What it chooses, by name, as it was typed."""
-        return tuple((value.given.name, text) for value, text in zip(self.values, self.texts, strict=True))
 
 
 @dataclass(frozen=True, slots=True)

@@ -84,7 +84,7 @@ def _definitions(library: Library) -> dict[str, Schema]:
     takes = _takes(library)
     calculation = {
         "mark": text(_MARK), "title": text(), "member": text(_MARK), "template": _template(takes),
-        "units": choice(SYSTEMS), "given": mapping(named("value")), "choose": items(mapping(named("value"))) | _few(),
+        "units": choice(SYSTEMS), "given": mapping(named("value")), "choose": _chosen(mapping(named("value"))),
         "pinned": mapping(named("value")), "members": items(mapping(named("value"))), "table": texts(),
     }  # fmt: skip
     table = {
@@ -95,7 +95,7 @@ def _definitions(library: Library) -> dict[str, Schema]:
     linked = {"from": text(), "at": mapping(text()), "columns": mapping(text())}
     schedule = table | {
         "template": _template(takes), "mark": text(), "title": text(), "member": role_of_row, "units": choice(SYSTEMS),
-        "given": mapping(ANY), "choose": items(mapping(ANY)) | _few(), "pinned": mapping(ANY),
+        "given": mapping(ANY), "choose": _chosen(mapping(ANY)), "pinned": mapping(ANY),
         "together": text(), "table": texts(),
     }  # fmt: skip
     return {
@@ -138,6 +138,11 @@ def _definitions(library: Library) -> dict[str, Schema]:
 
 def _texts(keys: tuple[str, ...]) -> dict[str, Schema]:
     return {key: text() for key in keys}
+
+
+def _chosen(candidate: Schema) -> Schema:
+    """Return a list of candidates, among them lists of those of one preference."""
+    return items({"anyOf": [candidate, items(candidate) | _few()]}) | _few()
 
 
 def _few() -> Schema:
@@ -201,7 +206,9 @@ def _calculation_of(name: str, takes: _Takes) -> Schema:
     """Return what a calculation of one template may hold: its roles, and its given values by their names."""
     values = {one.name: _value(one) | {"description": _says(one)} for one in takes.givens}
     given = {"properties": values, "propertyNames": {"enum": list(values)}}
-    chosen = items(given)
+    cells = mapping(mapping(named("value")))
+    either = {one.name: {"anyOf": [values[one.name], cells]} for one in takes.givens if one.kind == "rows"}
+    chosen = _chosen(given | {"properties": values | either})
     # a member has its mark, and roles of its own where the calculation names none for all
     member = {"propertyNames": {"enum": [together.MARK, *values, *calculations.roles_of(takes.givens)]},
               "properties": values, "required": [together.MARK]}  # fmt: skip

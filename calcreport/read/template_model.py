@@ -217,7 +217,7 @@ class Each:
     rows: Name
     lines: tuple[Line, ...]
     table: tuple[Name, ...]
-    show: Literal["", "every", "figure"]
+    show: Literal["", "every", "first", "figure"]
     span: Span
 
 
@@ -364,6 +364,8 @@ class PartBody:
     span: Span
     #: names of givens that could not be read
     told: frozenset[str] = frozenset()
+    #: the value that is to be least among candidates of one preference
+    least: Name | None = None
 
 
 @dataclass(frozen=True, slots=True)

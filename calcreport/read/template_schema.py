@@ -38,7 +38,8 @@ def template_schema() -> Schema:
     """Return the schema of a template file."""
     shapes = {
         "template": text(), "title": text(), "code": named("code"), "units": _served(),
-        "covers": _settled_texts(), "excludes": _settled_texts(), "gives": _each(texts()), "notation": text(),
+        "covers": _settled_texts(), "excludes": _settled_texts(), "gives": _each(texts()), "least": _each(text()),
+        "notation": text(),
         "symbols": _each(mapping(_each(named("symbol")))),
         "given": _each(mapping(_each(maybe(named("given"))))),
         "parts": _each(mapping(_each(named("part")))),

@@ -152,7 +152,9 @@ def _given(template: Template, shared: Shared) -> tuple[Given, ...]:
 def _over_members(template: Template, shared: Shared, table: tuple[Name, ...]) -> Template:
     shown = table or tuple(_results(template.body.lines, {given.name for given in template.body.given}))
     each = Each(Name(MEMBER, shared.span), template.body.lines, shown, "", shared.span)
-    return replace(template, body=replace(template.body, given=_given(template, shared), lines=(each,), gives=()))
+    return replace(
+        template, body=replace(template.body, given=_given(template, shared), lines=(each,), gives=(), least=None)
+    )
 
 
 def _results(lines: Iterable[Line], given: set[str]) -> Iterator[Name]:

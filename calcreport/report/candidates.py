@@ -5,9 +5,9 @@ A calculation as told in, blocks out; and the headline where the pinned candidat
 
 from __future__ import annotations
 
-from calcreport.calculate.model import Candidate, GivenPairs, GivenRows, GivenValue, Selection, Tried, Worked
-from calcreport.report.digits import number_text
-from calcreport.report.forms import CalculationForms, ratio_figure
+from calcreport.calculate.model import Candidate, Selection, Tried, Worked
+from calcreport.report.digits import make_figure, number_text
+from calcreport.report.forms import ratio_figure
 from calcreport.report.governing import governing
 from calcreport.report.items import SayChoice
 from calcreport.report.model import Block, Column, Emphasis, Paragraph, SourceLane, Strong, Table, TableRow, Words
@@ -17,22 +17,27 @@ from calcreport.report.told import Told
 def candidate_blocks(item: SayChoice, told: Told) -> tuple[Block, ...]:
     """Return the table of those worked, and what the sheet has to say of the one used."""
     selection = item.selection
-    chosen = selection.candidates[0].values
-    columns = [Column(("no.",), "right"), *(Column(_heading(value, told)) for value in chosen)]
-    columns += [Column(("worst check",), stretch=1.0), Column(("ratio",), "right"), Column(("outcome",), "right")]
-    rows = tuple(_row(one, selection, told.forms) for one in sorted(selection.tried, key=lambda one: one.place))
-    title: Words = ("candidates, in the engineer's order of preference",)
+    columns = [Column(("no.",), "right")]
+    columns += [Column(("preference",), "right")] if selection.has_groups else []
+    columns += [Column(_heading(name, told)) for name, _ in selection.candidates[0].named]
+    columns += [Column(("worst check",), stretch=1.0), Column(("ratio",), "right")]
+    columns += [told.column(selection.least)] if selection.has_groups else []
+    columns += [Column(("outcome",), "right")]
+    rows = tuple(_row(one, selection, told) for one in sorted(selection.tried, key=lambda one: one.place))
+    says = f"; of one preference, the least {told.slots[selection.least].symbol.says}" if selection.has_groups else ""
+    title: Words = (f"candidates, in the engineer's order of preference{says}",)
     table = Table(tuple(columns), rows, title, item.number, told.anchor(item.number), SourceLane("project file"))
     return (table, *_remarks(selection))
 
 
-def _heading(value: GivenValue | GivenRows | GivenPairs, told: Told) -> Words:
-    planned = next(one for one in told.worked.plan.givens if one.given.name == value.given.name)
-    return (told.shared.symbol(planned.slot),) if planned.slot >= 0 else (value.given.name,)
+def _heading(name: str, told: Told) -> Words:
+    slots = (one.slot for one in told.worked.plan.givens if one.given.name == name)
+    slot = next(slots, -1)
+    return (told.shared.symbol(slot),) if slot >= 0 else (name,)
 
 
-def _row(one: Tried, selection: Selection, forms: CalculationForms) -> TableRow:
-    used = one.place == selection.used
+def _row(one: Tried, selection: Selection, told: Told) -> TableRow:
+    used, forms, candidate = one.place == selection.used, told.forms, selection.candidates[one.place]
     worked = forms.worked if used else one.worked
     check = governing(worked)
     ratio, words = "", worked.stop.told if worked.stop else ""
@@ -41,9 +46,23 @@ def _row(one: Tried, selection: Selection, forms: CalculationForms) -> TableRow:
         figure = forms.ratio(check) if used else own
         ratio, words = number_text(figure) if figure else "", check.line.name
     outcome = "stopped" if worked.stop else worked.verdict
-    cells = (f"{one.place + 1}", *selection.candidates[one.place].texts, words, ratio, outcome)
+    cells: list[Words] = [(f"{one.place + 1}",)]
+    cells += [(f"{candidate.preference + 1}",)] if selection.has_groups else []
+    cells += [(text,) for text in (*dict(candidate.named).values(), words, ratio)]
+    cells += [_least(one, selection, told)] if selection.has_groups else []
     emphasis: Emphasis = "governing" if used and worked.verdict == "OK" else "loud" if used else ""
-    return TableRow(tuple((cell,) for cell in cells), emphasis)
+    return TableRow((*cells, (outcome,)), emphasis)
+
+
+def _least(one: Tried, selection: Selection, told: Told) -> Words:
+    """Return the value wanted least of a candidate that meets every check; the others have none to compare."""
+    if one.worked.verdict != "OK":
+        return ("–",)
+    if one.place == selection.used:
+        return told.cell(selection.least, ())
+    value, unit = one.worked.values.get(selection.least), told.slots[selection.least].symbol.unit
+    assert isinstance(value, float) and unit is not None
+    return (number_text(make_figure(value / unit.size, unit.size)),)
 
 
 def _remarks(selection: Selection) -> tuple[Block, ...]:
@@ -53,9 +72,15 @@ def _remarks(selection: Selection) -> tuple[Block, ...]:
     if selection.first < 0:
         words = f"none of the {last} candidates meets every check; number {used} is the nearest, and is worked here."
         return (Paragraph((Strong("No selection: "), words), "caution"),)
-    rest = f"; those after number {used} are not worked" if used < last and not selection.pinned else ""
+    tried = max(one.place for one in selection.tried) + 1
+    rest = f"; those after number {tried} are not worked" if tried < last and not selection.pinned else ""
     how = "pinned, and it is" if selection.pinned else "used:"
-    return (Paragraph((f"Number {used} is {how} the first that meets every check and stops nowhere{rest}.",), "note"),)
+    of = selection.candidates[selection.used].preference
+    shared = sum(
+        1 for one in selection.tried if one.worked.verdict == "OK" and selection.candidates[one.place].preference == of
+    )
+    which = "the least of the first preference with one that" if shared > 1 else "the first that"
+    return (Paragraph((f"Number {used} is {how} {which} meets every check and stops nowhere{rest}.",), "note"),)
 
 
 def moved_words(selection: Selection) -> str:

@@ -127,6 +127,10 @@ def _each(writer: Writer, each: WorkedEach) -> None:
     elif all(_plain(row) for row in rows):
         _formulas_once(writer, each)
         _table(writer, each, -1)
+    elif each.line.show == "first":
+        _rows_in_full(writer, each, name, [0])
+        _number_rest(writer, each)
+        _table(writer, each, 0)
     else:
         _rows_in_full(writer, each, name, range(len(rows)))
         if each.line.table:
@@ -152,7 +156,8 @@ def _worst(lines: tuple[WorkedLine, ...]) -> tuple[bool, float]:
 
 
 def _rows_in_full(writer: Writer, each: WorkedEach, name: str, rows: range | list[int]) -> None:
-    governs = ", which governs" if len(rows) < len(each.rows) else ""
+    told = any(below(row, WorkedCheck) for row in each.rows)
+    governs = ", which governs" if told and len(rows) < len(each.rows) else ""
     for row in rows:
         if len(each.rows) > 1:
             writer.items.append(SayHeading(f"{name} {each.names[row]}{governs}", 3))

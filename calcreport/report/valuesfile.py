@@ -10,7 +10,7 @@ import hashlib
 import json
 from typing import Any
 
-from calcreport.calculate.model import Selection, Worked, WorkedCheck, WorkedProject
+from calcreport.calculate.model import Selection, Tried, Worked, WorkedCheck, WorkedProject
 from calcreport.core.methods import METHODS
 from calcreport.core.units import ONE
 from calcreport.core.version import PROGRAM
@@ -171,13 +171,24 @@ def _selection(selection: Selection) -> dict[str, Any]:
             "governing": check.line.name if check else None,
             "ratio": check.ratio if check else None,
             "stopped": one.worked.stop.told if one.worked.stop else None,
-        })  # fmt: skip
+        } | _least(selection, one))  # fmt: skip
     return {
         "candidates": len(selection.candidates),
         "used": selection.used + 1,
         "first": selection.first + 1 if selection.first >= 0 else None,
         "pinned": selection.pinned,
         "tried": tried,
+    }
+
+
+def _least(selection: Selection, one: Tried) -> dict[str, Any]:
+    """Return what tells candidates of one preference apart, in base units, where any preference is shared."""
+    if not selection.has_groups:
+        return {}
+    preference = selection.candidates[one.place].preference + 1
+    return {
+        "preference": preference,
+        "least": one.worked.values.get(selection.least) if one.worked.verdict == "OK" else None,
     }
 
 

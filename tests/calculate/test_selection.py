@@ -87,6 +87,67 @@ def test_the_second_path_works_every_candidate_that_was_worked(tmp_path: Path) -
     assert (agreement.values, agreement.verdicts) == (15, 3)
 
 
+# the weight of a plate a foot long, which is b t (12 in)(490 pcf): what is to be least among plates of one preference
+WEIGHED = TEMPLATE.replace("symbols:\n", "least: W\nsymbols:\n  W: {unit: lb, says: weight}\n") + (
+    "  - {gives: W, formula: 'b*t*12 in*qty(490, pcf)', cite: geometry}\n"
+)
+
+
+def weighed(folder: Path, candidates: str) -> Worked:
+    return work_small(folder, WEIGHED, f"{{P: 20 kip}}, choose: {candidates}")
+
+
+def test_of_one_preference_the_one_with_least_is_taken_and_the_next_preference_is_not_worked(tmp_path: Path) -> None:
+    # areas 0.8 and 1.6 fail (25 and 12.5 ksi); 2.4 and 2.0 serve (8.3 and 10 ksi), 2.0 weighs less
+    first = "[{b: 2 in, t: 0.4 in}, {b: 4 in, t: 0.4 in}, {b: 4 in, t: 0.6 in}, {b: 4 in, t: 0.5 in}]"
+    one = weighed(tmp_path, f"[{first}, {{b: 20 in, t: 0.2 in}}]")
+    assert found(one) == (3, 3, [(0, "NG"), (1, "NG"), (2, "OK"), (3, "OK")])
+    assert one.selection is not None
+    assert [one.preference for one in one.selection.candidates] == [0, 0, 0, 0, 1]
+
+
+def test_a_preference_that_serves_goes_before_less_of_a_later_one(tmp_path: Path) -> None:
+    # 4.0 in2 of the second preference serves; 2.0 in2 of the third would be less
+    one = weighed(tmp_path, "[[{b: 1 in, t: 0.4 in}], [{b: 8 in, t: 0.5 in}], [{b: 4 in, t: 0.5 in}]]")
+    assert found(one)[:2] == (1, 1)
+
+
+def test_of_two_alike_the_engineers_order_decides(tmp_path: Path) -> None:
+    # 5 by 0.4 and 4 by 0.5 are both 2.0 in2
+    assert found(weighed(tmp_path, "[[{b: 5 in, t: 0.4 in}, {b: 4 in, t: 0.5 in}]]"))[:2] == (0, 0)
+    assert found(weighed(tmp_path, "[[{b: 4 in, t: 0.5 in}, {b: 5 in, t: 0.4 in}]]"))[:2] == (0, 0)
+
+
+ROWS = """\
+symbols:
+  A: {unit: in^2, says: area}
+  P: {unit: kip, says: force}
+given: {P: , plate: {rows: {A: }, least: 1, says: plates}}
+lines:
+  - {check: stress, holds: 'P/sum(A over plate) <= 10 ksi', cite: statics}
+"""
+
+
+def test_cells_are_chosen_by_row_and_the_other_rows_stay(tmp_path: Path) -> None:
+    # 20 kip over 1 + 0.5 is 13.3 ksi; over 1 + 1 it is 10
+    rows = "[{name: top, A: 1 in^2}, {name: web, A: 9 in^2}]"
+    choose = "[{plate: {web: {A: 0.5 in^2}}}, {plate: {web: {A: 1 in^2}}}]"
+    one = work_small(tmp_path, ROWS, f"{{P: 20 kip, plate: {rows}}}, choose: {choose}")
+    assert found(one) == (1, 1, [(0, "NG"), (1, "OK")])
+    assert [check.ratio for check in one.checks] == [pytest.approx(1.0)]
+    assert one.selection is not None
+    assert [one.named for one in one.selection.candidates] == [
+        (("plate web A", "0.5 in^2"),),
+        (("plate web A", "1 in^2"),),
+    ]
+
+
+def test_cells_are_pinned_as_they_are_chosen(tmp_path: Path) -> None:
+    choose = "[{plate: {1: {A: 2 in^2}}}, {plate: {1: {A: 4 in^2}}}], pinned: {plate: {1: {A: 4.0 in^2}}}"
+    one = work_small(tmp_path, ROWS, f"{{P: 20 kip, plate: [{{A: 9 in^2}}]}}, choose: {choose}")
+    assert found(one)[:2] == (1, 0)
+
+
 def test_a_final_status_wants_it_pinned(tmp_path: Path) -> None:
     def slugs(pin: str) -> list[str]:
         path = write_small(tmp_path, TEMPLATE, f"{{P: 20 kip, b: 4 in}}, choose: {CANDIDATES}{pin}")

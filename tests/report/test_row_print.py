@@ -162,6 +162,22 @@ def test_show_every_tells_all_rows_in_full(tmp_path: Path) -> None:
         assert f"point {row}" in text and substituted in text
 
 
+def test_show_first_tells_one_row_in_full_and_names_those_by_other_branches(tmp_path: Path) -> None:
+    lines = (
+        "  - each: point\n    table: [z, B]\n    show: first\n    lines:\n"
+        "      - branches:\n"
+        "          - {when: 'z < 10 in', lines: [{gives: B, formula: 'z*h', cite: geometry}]}\n"
+        "          - {otherwise: [{gives: B, formula: 'z*h/2', cite: geometry}]}\n"
+    )
+    work_small(tmp_path, SYMBOLS + SPACED + lines + CHECK, "{h: 20 in}")
+    text = printed(tmp_path)
+    # 20 times 2 and 8, half of 20 times 14 and 20: only the first is set out
+    assert "2 (20)" in text and "8 (20)" not in text and "14 (20)" not in text
+    assert "1 2 40 2 8 160 3 14 140 4 20 200" in text
+    assert "By other branches than 1 above: 3, 4." in text and "governs" not in text
+    agreed(tmp_path)
+
+
 def test_a_dash_stands_for_what_another_arm_gives(tmp_path: Path) -> None:
     lines = (
         "  - each: point\n    table: [z, F, G]\n    lines:\n"

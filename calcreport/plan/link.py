@@ -75,7 +75,10 @@ def link(template: Template, problems: Problems) -> Plan:
     leaves = tuple(dict.fromkeys([*template.excludes, *linker.leaves]))
     slots, sets = tuple(linker.maker.slots), tuple(linker.maker.sets)
     least = least_slot(body, space, problems)
-    return Plan(template, slots, sets, givens, lines, covers, leaves, {s.path: s.index for s in slots}, least)
+    # a name that stands here goes before one inside a part, which nobody sees
+    known = {name: found.index for name, found in (space.partial | space.names).items() if isinstance(found, Slot)}
+    paths = {slot.path: slot.index for slot in slots} | known
+    return Plan(template, slots, sets, givens, lines, covers, leaves, paths, least)
 
 
 class _Linker:

@@ -295,6 +295,9 @@ UNSEEN = {
     "missing-key-twin": "whether two outputs of a method have the dimension of the value",
     "unknown-key-method-word": "which inputs of a method go with a word",
     "unknown-key-gives": "whether a given value is of bars",
+    "wrong-shape-cells-of-candidate": "whether rows of the set stand under `given`",
+    "wrong-shape-least": "whether a name is a number",
+    "wrong-shape-one-preference": "whether the template says what is to be least",
 }
 
 

@@ -215,7 +215,7 @@ class Digits:
                     result.settled = True
                     return changed
         while not self._confirmed(line):
-            name = self._most_telling(line)
+            name = self.root(line.result) if _halfway(result) else self._most_telling(line)
             if name is None:
                 break
             self._gain(name)
@@ -272,21 +272,19 @@ class Digits:
         return changed
 
 
+def _halfway(figure: Figure) -> bool:
+    """Tell whether a value lies in the middle between two printed ones: no digits of the inputs tell which."""
+    large = abs(figure.number) / 10.0 ** (figure.exponent - figure.places)
+    return not figure.exact and abs(large % 1.0 - 0.5) <= 1e-9 * max(large, 1.0)
+
+
 def _reads(left: float, right: float, sign: str) -> bool:
     near = abs(left - right) <= 1e-12 * max(abs(left), abs(right))
-    match sign:
-        case "<":
-            return left < right and not near
-        case ">":
-            return left > right and not near
-        case "<=":
-            return left < right or near
-        case ">=":
-            return left > right or near
-        case "!=":
-            return not near
-        case _:
-            return True
+    if sign in ("<", ">"):
+        return not near and (left < right) == (sign == "<")
+    if sign in ("<=", ">="):
+        return near or (left < right) == (sign == "<=")
+    return sign != "!=" or not near
 
 
 def number_text(figure: Figure, *, unsigned: bool = False) -> str:

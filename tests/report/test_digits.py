@@ -176,3 +176,16 @@ def test_ratio_just_above_one_never_prints_one() -> None:
     assert number_text(ratio_figure(0.99996)) == "0.99996"
     assert number_text(ratio_figure(1.0)) == "1.000"
     assert rounded(0.9123, 3) == 0.912
+
+
+def test_a_result_halfway_between_two_printed_ones_gains_a_digit_before_its_inputs() -> None:
+    # 39.6 - 2.58(21.5/12) = 34.9775 exactly; another line, 34.9775 - 34.97 = 0.0075, asks for its third decimal
+    found = Digits()
+    for name, number in (("x", 21.5 / 12), ("V", 34.9775)):
+        found.add(name, make_figure(number, 1.0))
+    found.figures["V"].places, found.figures["V"].settled = 3, True
+    found.need(Sum(lambda at: 39.6 - 2.58 * at("x"), ("x",), "V"))
+    found.solve()
+    # 39.6 - 2.58(1.79167) = 34.97749, which rounds to 34.9775
+    assert number_text(found.figure("V")) == "34.9775"
+    assert number_text(found.figure("x")) == "1.79167"

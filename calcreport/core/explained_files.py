@@ -15,6 +15,13 @@ The package is written beside its place first and then moved there, so an earlie
 reason given: a missing folder, no permission, a full disk. To write elsewhere, name the file after -o.
 
     calcreport build samples/mill-lane -o out/mill-lane.pdf""",
+    "comma-in-braces": """A comma inside braces ends an entry, and what follows it is no entry.
+Between { and } commas part the entries, each `key: value`. So a comma inside a number or a title splits it. Write
+thousands without a sign, or put the text in quotes; on a line of its own a value needs neither.
+
+    C4: {f_c: 4,000 psi}          wrong
+    C4: {f_c: 4000 psi}           right
+    C4: {f_c: '4,000 psi'}        right""",
     "comment-cut": """The rest of a line is read as a comment, and part of a value is lost with it.
 In these files a # after a space, or at the beginning of a value, starts a comment. Put text that holds such a # in
 quotes; in a true comment put a space after the #.

@@ -68,6 +68,28 @@ _KNOWN: tuple[tuple[str, _Words], ...] = (
 _OPEN = re.compile(r"(?:^|(?<=[\s\[{,]))(?<!# )(?P<quote>['\"])")
 _CLOSED = re.compile(r"'(?:[^'\n]|'')*'(?!')|\"[^\"\n]*\"")
 _LOST = re.compile(r"[\s\[{,]#(?=\w)")
+#: a text parted by commas inside braces, up to the next entry with a key; numbers with commas, for thousands or not
+_PARTED = re.compile(r"[^,{}\[\]]*(?:,[^,:{}\[\]]+(?=[,}]))+")
+_THOUSANDS = re.compile(r"[+-]?[0-9]{1,3}(?:,[0-9]{3})+(?![0-9,])[^,]*")
+_DECIMALS = re.compile(r"[+-]?[0-9]+,[0-9]")
+
+
+def say_parted(source: Source, start: int, key: Span, problems: Problems) -> None:
+    """Add `comma-in-braces`: in `{f_c: 4,000 psi}` the comma ends the entry, and the key `000 psi` has no value.
+
+    The text cut in two begins at `start`.
+    """
+    match = _PARTED.match(source.text, start)
+    end = start + len(match[0].rstrip()) if match else key.end
+    whole = " ".join(source.text[start:end].split())[:60]
+    hint = f"write '{whole}'"
+    if _THOUSANDS.fullmatch(whole):
+        hint = f"write {whole.replace(',', '')}, or '{whole}'"
+    elif _DECIMALS.match(whole):
+        hint = "write decimals with a point, thousands without a sign"
+    problems.add("comma-in-braces", Span(source, start, end), "a comma inside braces ends the entry",
+                 expected="`key: value` after each comma, or the text in quotes",
+                 found=f"`{key.text[:40]}`, which has no value", hint=hint)  # fmt: skip
 
 
 def say_malformed(error: Exception, source: Source, text: str, cuts: Iterable[int], problems: Problems) -> int:

@@ -14,7 +14,7 @@ import yaml
 
 from calcreport.core.problems import Problems
 from calcreport.core.source import Source, Span
-from calcreport.read.malformed import say_malformed
+from calcreport.read.malformed import say_malformed, say_parted
 
 #: bounds against files made to exhaust: characters, nodes, depth
 LARGEST, MOST_NODES, DEEPEST = 2_000_000, 200_000, 30
@@ -73,6 +73,7 @@ _ODD_WORDS = {
 _CUT = re.compile(r"[ \t]*#\w")
 #: text that is the same with quotes and without
 _PLAIN = re.compile(r"[^\W_](?:[\w /.()+;–-]*[\w.)])?")
+_COLON = re.compile(r"\s*:")
 _LOADER = getattr(yaml, "CSafeLoader", yaml.SafeLoader)
 
 
@@ -269,6 +270,9 @@ class _Reader:
             if key.text == "<<" and not key.quoted:
                 self.stop("yaml-feature", event, "merge keys are not read", "the keys themselves", "`<<`")
             value = self.node(next(self.events), depth + 1)
+            if self.is_parted(entries, key, value):
+                entries[-1] = (entries[-1][0], Told(entries[-1][1].span))
+                continue
             if key.text in seen:
                 self.problems.add("repeated-key", key.span, f"`{key.text[:40]}` stands twice",
                                   expected="every key once", found="a second value",
@@ -277,6 +281,19 @@ class _Reader:
             seen[key.text] = key.span
             entries.append((key, value))
         return Mapping(tuple(entries), self.closed(start, event))
+
+    def is_parted(self, entries: list[tuple[Scalar, Node]], key: Scalar, value: Node) -> bool:
+        """Refuse `{f_c: 4,000 psi}`, once for all commas of a text."""
+        before = entries[-1][1] if entries and self.flow else None
+        if not isinstance(before, Scalar | Told) or key.quoted or not isinstance(value, Scalar) or value.quoted:
+            return False
+        if value.text or before.span.start == before.span.end or _COLON.match(self.source.text, key.span.end):
+            return False
+        if isinstance(before, Scalar):
+            if before.quoted:
+                return False
+            say_parted(self.source, before.span.start, key.span, self.problems)
+        return True
 
     def closed(self, start: yaml.Event, end: yaml.Event) -> Span:
         first, last = self.span(start), self.span(end)

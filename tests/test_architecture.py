@@ -35,7 +35,7 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
         "read.gathering", "read.given", "read.issued", "read.library", "read.lines", "read.links", "read.lost",
         "read.made_rows", "read.malformed", "read.method_lines", "read.model", "read.nodes", "read.project",
         "read.project_model", "read.project_schema", "read.review_model", "read.revision_record", "read.row_tables",
-        "read.schedules", "read.shapes",
+        "read.roles", "read.schedules", "read.shapes",
         "read.sheets", "read.single_values", "read.symbols", "read.tables", "read.template_model",
         "read.template_schema", "read.template_tables", "read.together", "read.values", "read.variants", "read.words",
         "read.workbook",

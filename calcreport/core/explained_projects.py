@@ -100,6 +100,13 @@ prints what a template takes.
 
     given: {bw: 16 in}      wrong where the template takes b
     given: {b: 16 in}       right""",
+    "wrong-material": """A material stands for a role it has no properties for, and serves another.
+A template reads each role from a material: bars need a yield strength, concrete its strength. A material that has
+nothing of what the role needs is most often a mark in the wrong place. Name one that has it; those that do are listed.
+
+    materials: {C4: {f_c: 4000 psi}, G60: {f_y: 60 ksi, E_s: 29000 ksi}}
+    bars: C4       wrong
+    bars: G60      right""",
     "not-ready": """Something is open, and the status says that nothing is.
 Under `for permit` and `issued for construction` these stop the build: a check that is NG or not evaluated, a limit
 state nobody covers, an assumption to be verified, a selection among candidates that is not pinned. Settle it, give the

@@ -17,9 +17,9 @@ from calcreport.read.criteria import Criteria
 from calcreport.read.fields import Fields, is_empty
 from calcreport.read.gathering import Gathered
 from calcreport.read.library import Editions, Library
-from calcreport.read.model import SYSTEMS, Calculation, Given, GivenPairs, GivenRows, GivenValue, System
+from calcreport.read.model import SYSTEMS, Calculation, GivenPairs, GivenRows, GivenValue, System
 from calcreport.read.nodes import Mapping, Scalar, Sequence
-from calcreport.read.single_values import Material
+from calcreport.read.roles import RoleReader, roles_of
 from calcreport.read.together import Gatherings, Shared, read_members, read_rows
 from calcreport.read.values import RowSource, ValueReader, is_complete
 
@@ -46,10 +46,12 @@ class CalculationReader:
     #: the shared calculation of every member that has none of its own
     standing: dict[str, str] = field(default_factory=dict)
     gatherings: Gatherings = field(init=False)
+    roles: RoleReader = field(init=False)
     _marks: dict[str, Span] = field(default_factory=dict)
 
     def __post_init__(self) -> None:
         self.gatherings = Gatherings()
+        self.roles = RoleReader(self.gathered.materials, self.gathered.calculations, KEYS, self.problems)
         for node in self.gathered.calculations:
             mark, members = node.get("mark"), node.get("members")
             for item in members.items if isinstance(members, Sequence) else ():
@@ -100,7 +102,8 @@ class CalculationReader:
         bars = self.library.bar_table(template.name, system)
         shared = read_members(fields, template.body.given, roles, self.mark)
         own_roles = shared.roles if shared else ()
-        materials = self.materials(fields, tuple(role for role in roles if role not in own_roles))
+        common = tuple(role for role in roles if role not in own_roles)
+        materials = self.roles.named(fields, common, template.body.given)
         reader = ValueReader(materials, bars, node.span, self.problems, self.standing, self.criteria, self.tables)
         held = given or Mapping((), node.span)
         least = template.body.least is not None and shared is None
@@ -113,7 +116,7 @@ class CalculationReader:
             return None
         table = self.table(fields, shared)
         if shared is not None:
-            values = (*values, read_rows(shared, template, reader, self.materials))
+            values = (*values, read_rows(shared, template, reader, self.roles))
             template = self.gatherings.template(template, shared, table)
         return Calculation(mark.text, title, template, values, node.span.text, mark.span,
                            choice.candidates, choice.pinned, shared.marks if shared else (),
@@ -163,34 +166,8 @@ class CalculationReader:
         self._marks[mark.text] = mark.span
         return True
 
-    def materials(self, fields: Fields, roles: tuple[str, ...]) -> dict[str, Material | None]:
-        """Return the materials a calculation names, by role; None for one that is not there."""
-        found: dict[str, Material | None] = {}
-        known = self.gathered.materials
-        for role in roles:
-            scalar = fields.scalar(role)
-            if scalar is None:
-                if fields.node_of(role) is not None or role in fields.mistaken:
-                    found[role] = None
-                continue
-            if scalar.text not in known:
-                self.problems.add("unknown-name", scalar.span, f"there is no material `{scalar.text[:40]}`",
-                                  expected="a mark of `materials`", found=scalar.text[:40],
-                                  hint=self.problems.near(scalar.text, known))  # fmt: skip
-                found[role] = None
-                continue
-            key, properties = known[scalar.text]
-            found[role] = (key, properties) if properties is not None else None
-        return found
-
 
 def _named(mark: Scalar) -> str:
     """Return what problems call a calculation; what all rows of a schedule lack is told once."""
     source = mark.span.source
     return f"a row of {source.name[:60]}" if isinstance(source, TableSource) else mark.text[:12]
-
-
-def roles_of(givens: tuple[Given, ...]) -> tuple[str, ...]:
-    """Return the material roles of a template, once each."""
-    roles = (one.material for given in givens for one in (given, *given.columns) if one.material)
-    return tuple(dict.fromkeys(roles))

@@ -25,6 +25,7 @@ from calcreport.read.library import ANY as ANY_EDITION
 from calcreport.read.library import Library
 from calcreport.read.model import SYSTEMS, Given
 from calcreport.read.nodes import Mapping, Scalar, Sequence
+from calcreport.read.roles import roles_of
 from calcreport.read.shapes import (
     ANY,
     Schema,
@@ -210,7 +211,7 @@ def _calculation_of(name: str, takes: _Takes) -> Schema:
     either = {one.name: {"anyOf": [values[one.name], cells]} for one in takes.givens if one.kind == "rows"}
     chosen = _chosen(given | {"properties": values | either})
     # a member has its mark, and roles of its own where the calculation names none for all
-    member = {"propertyNames": {"enum": [together.MARK, *values, *calculations.roles_of(takes.givens)]},
+    member = {"propertyNames": {"enum": [together.MARK, *values, *roles_of(takes.givens)]},
               "properties": values, "required": [together.MARK]}  # fmt: skip
     then = _roles(calculations.KEYS, takes) | {
         "properties": {"given": given, "choose": chosen, "pinned": given, "members": items(member)}
@@ -236,7 +237,7 @@ def _where_template(name: str, then: Schema) -> Schema:
 
 
 def _roles(keys: tuple[str, ...], takes: _Takes) -> Schema:
-    return {"propertyNames": {"enum": [*keys, *calculations.roles_of(takes.givens)]}}
+    return {"propertyNames": {"enum": [*keys, *roles_of(takes.givens)]}}
 
 
 def _value(given: Given) -> Schema:

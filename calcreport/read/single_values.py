@@ -17,11 +17,13 @@ from calcreport.read.criteria import Criteria
 from calcreport.read.fields import Fields, as_scalar, say_not_a_word
 from calcreport.read.links import read_at, read_link
 from calcreport.read.model import BarCallout, Given, GivenValue, Handed, ValueOrigin
-from calcreport.read.nodes import Mapping, Node, Scalar
+from calcreport.read.nodes import Mapping, Node, Scalar, written
 
 #: mark of a material and its properties, None for one about which a problem was told
 Material: TypeAlias = tuple[Scalar, dict[str, Scalar | None]]
 VALUE_KEYS = ("value", "source", "from", "at")
+#: characters of a symbol in which one letter more or less makes another symbol
+_SHORT = 4
 FILE = ValueOrigin("project file", "")
 NONE = ValueOrigin("none", "")
 
@@ -155,11 +157,12 @@ class SingleReader:
         if given.property in properties and scalar is None:
             return None
         if scalar is None:
-            near = self.problems.close(given.property, properties)
+            near = _misspelt(given.property, self.problems.close(given.property, properties))
             self.problems.add(
                 "missing-value", mark.span, f"the material `{mark.text[:40]}` has no `{given.property}`",
-                expected=wanted(given), found=", ".join(properties) or "no properties",
-                hint=f"write {given.property} for {near[0]}, if that is meant" if near else "",
+                expected=wanted(given) + (f", {given.range.words(given.property)}" if given.range else ""),
+                found=", ".join(properties) or "no properties",
+                hint=f"write {given.property} for {near[0]}, if that is meant" if near else _added(given, material),
                 related=((self.home.part(0, 1), f"{what} needs it"),),
             )  # fmt: skip
             return None
@@ -198,6 +201,28 @@ def origin_at(span: Span) -> ValueOrigin:
     """Return the origin of a value by the file it stands in: the project's, or a row of a schedule."""
     source = span.source
     return ValueOrigin("schedule", source.row_words(span.start)) if isinstance(source, TableSource) else FILE
+
+
+def _misspelt(name: str, close: list[str]) -> list[str]:
+    """Return the spellings that are no symbols of their own: `fc` is a slip for `f_c`, but `w_c` is another symbol."""
+    return [one for one in close if len(name) > _SHORT or _letters(one) == _letters(name)]
+
+
+def _letters(name: str) -> str:
+    return "".join(filter(str.isalnum, name)).lower()
+
+
+def _added(given: Given, material: Material) -> str:
+    """Return how a material is written with a property it lacks; what the value is nobody can guess."""
+    mark, properties = material
+    unit = given.symbol.unit.text if given.symbol and given.symbol.unit else "1"
+    kept = [f"{name[:20]}: {written(value.text)[:20]}" for name, value in properties.items() if value is not None]
+    entry = f"{given.property}: …" + (f" {unit}" if unit != "1" else "")
+    words = "a number without unit" if unit == "1" else "the number"
+    none = ", or write none" if given.if_none is not None else ""
+    return (
+        f"add it to the material, as in {mark.text[:40]}: {{{', '.join([*kept[:3], entry])}}}, where … is {words}{none}"
+    )
 
 
 def wanted(given: Given) -> str:

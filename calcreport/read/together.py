@@ -27,7 +27,8 @@ from calcreport.read.model import (
     ValueOrigin,
 )
 from calcreport.read.nodes import Mapping, Scalar, Told
-from calcreport.read.single_values import FILE, Material
+from calcreport.read.roles import RoleReader
+from calcreport.read.single_values import FILE
 from calcreport.read.values import ValueReader
 
 #: the key under which a member has its mark
@@ -112,7 +113,7 @@ def read_rows(
     shared: Shared,
     template: Template,
     reader: ValueReader,
-    materials: Callable[[Fields, tuple[str, ...]], dict[str, Material | None]],
+    materials: RoleReader,
 ) -> GivenRows:
     """Return the rows of the set of members, typed as the template declares them."""
     columns = _columns(template, shared)
@@ -120,7 +121,8 @@ def read_rows(
     for mark, row in zip(shared.marks, shared.rows, strict=True):
         own = Mapping(tuple(entry for entry in row.entries if entry[0].text not in shared.roles), row.span)
         roles = Mapping(tuple(entry for entry in row.entries if entry[0].text in shared.roles), row.span)
-        named = materials(Fields(roles, shared.roles, "a member", reader.problems), shared.roles)
+        fields = Fields(roles, shared.roles, "a member", reader.problems)
+        named = materials.named(fields, shared.roles, template.body.given)
         member = replace(reader, materials={**reader.materials, **named}, home=row.span)
         found = member.read(columns, own, mark)
         cells.append(tuple(value for value in found if isinstance(value, GivenValue | GivenRows)))

@@ -200,6 +200,9 @@ def _formulas_once(writer: Writer, each: WorkedEach) -> None:
 def _table(writer: Writer, each: WorkedEach, governing: int) -> None:
     columns = each.line.table or tuple(_slots_given(each))
     checks = tuple(dict.fromkeys(check.line.name for row in each.rows for check in below(row, WorkedCheck)))
+    if not columns and not checks:
+        # guards that are met leave nothing to tell
+        return
     writer.items.append(SayTable(writer.next(), each, columns, checks, governing))
 
 

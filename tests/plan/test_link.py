@@ -151,3 +151,20 @@ Z = "  - {gives: z, formula: 'FORMULA', cite: geometry}\n"
 )
 def test_told_once(tmp_path: Path, lines: str, slugs: list[str]) -> None:
     assert [problem.slug for problem in _problems(tmp_path, lines)] == slugs
+
+
+def test_a_name_of_a_template_goes_before_a_like_one_inside_a_part_of_it(tmp_path: Path) -> None:
+    inner = (
+        "template: inner\ntitle: Inner\ncode: {name: ACI 318, years: ['2019']}\nunits: [us]\ncovers: []\nexcludes: []\n"
+        "gives: [z]\nsymbols:\n  x: {unit: in, says: length}\n  z: {unit: in, says: length}\ngiven: {x: }\n"
+        "lines: [{gives: z, formula: '3*x', cite: geometry}]\n"
+    )
+    (tmp_path / "inner.yaml").write_text(inner, encoding="utf-8")
+    lines = (
+        "symbols:\n  x: {unit: in, says: length}\ngiven: {x: }\nlines:\n  - {part: inner, with: {x: '2*x'}}\n"
+        "  - {check: room, holds: 'z <= 100 in', cite: geometry}\n"
+    )
+    worked = work_small(tmp_path, lines, "{x: 1 in}")
+    # x is 1 in here and 2 in inside, whose z is 3 times 2: links, cases and questions mean the one here
+    assert number(worked, "x") == pytest.approx(1.0)
+    assert number(worked, "z") == pytest.approx(6.0)

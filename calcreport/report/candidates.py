@@ -33,7 +33,8 @@ def candidate_blocks(item: SayChoice, told: Told) -> tuple[Block, ...]:
 def _heading(name: str, told: Told) -> Words:
     slots = (one.slot for one in told.worked.plan.givens if one.given.name == name)
     slot = next(slots, -1)
-    return (told.shared.symbol(slot),) if slot >= 0 else (name,)
+    # a cell goes by its row and column: the table is short of room, and the set stands above it
+    return (told.shared.symbol(slot),) if slot >= 0 else (name.partition(" ")[2] or name,)
 
 
 def _row(one: Tried, selection: Selection, told: Told) -> TableRow:

@@ -71,6 +71,9 @@ def _lines(writer: Writer, lines: tuple[WorkedLine, ...]) -> None:
                 writer.line_of[line.line.slot, line.key] = number
             case WorkedText():
                 writer.items.append(SayText(line))
+            case WorkedPart() if only_words(line.lines) and _stands(writer, line):
+                # a part of a part that says what another said: once is enough
+                pass
             case WorkedPart():
                 title = ": ".join(words for words in (line.line.title, line.line.stem) if words)
                 if title and not only_words(line.lines):
@@ -105,6 +108,16 @@ def _lines(writer: Writer, lines: tuple[WorkedLine, ...]) -> None:
                 writer.items.append(SayFigure(line))
             case WorkedMethod():
                 tell_method(writer, line)
+
+
+def _stands(writer: Writer, part: WorkedPart) -> bool:
+    """Tell whether the words a part comes to, without values in them, stand above already; keep them if not."""
+    said = tuple((text.line.kind, text.line.pieces) for text in below(part.lines, WorkedText))
+    if any(isinstance(piece, int) for _, pieces in said for piece in pieces):
+        return False
+    stands = said in writer.said
+    writer.said.add(said)
+    return stands
 
 
 def _plain(lines: tuple[WorkedLine, ...]) -> bool:

@@ -30,6 +30,8 @@ class Writer:
     line_of: dict[tuple[int, Key], int] = field(default_factory=dict)
     check_line: dict[int, int] = field(default_factory=dict)
     number: int = 0
+    #: what parts came to that are words alone
+    said: set[tuple[tuple[str, tuple[str | int, ...]], ...]] = field(default_factory=set)
 
     def next(self) -> int:
         self.number += 1

@@ -178,6 +178,16 @@ def test_show_first_tells_one_row_in_full_and_names_those_by_other_branches(tmp_
     agreed(tmp_path)
 
 
+def test_parts_that_come_to_the_same_words_are_told_once(tmp_path: Path) -> None:
+    parts = "parts:\n  dry: {lines: [{note: Kept dry.}]}\n  wet: {lines: [{note: Kept wet.}]}\n  deep: {lines: [{note: 'Depth {h}.'}]}\n"
+    lines = "  - {part: dry}\n  - {part: deep}\n  - {part: wet}\n  - {part: dry}\n  - {part: deep}\n"
+    template = SYMBOLS.replace("lines:\n", parts + "lines:\n") + SPACED + lines + CHECK
+    work_small(tmp_path, template, "{h: 20 in}")
+    text = printed(tmp_path)
+    # words with a value in them may say another value the next time
+    assert [text.count(words) for words in ("Kept dry.", "Kept wet.", "Depth 20 in.")] == [1, 1, 2]
+
+
 def test_a_dash_stands_for_what_another_arm_gives(tmp_path: Path) -> None:
     lines = (
         "  - each: point\n    table: [z, F, G]\n    lines:\n"

@@ -99,8 +99,8 @@ def _row(compared: Compared, mark: str, change: Change) -> TableRow:
     cells: tuple[Words, ...] = (
         (str(number) if number else "–",),
         what_differs(side.told[mark], change.entry, side.place(mark, change.entry)),
-        _cell(compared.design, mark, first, change),
-        _cell(compared.other, mark, second, change),
+        side_words(compared.design, mark, first, change),
+        side_words(compared.other, mark, second, change),
         (change_words(compared, mark, change),),
     )
     return TableRow(cells, "governing" if "verdict" in change.differs else "")
@@ -118,7 +118,7 @@ def what_differs(told: Told, entry: Entry, place: Place) -> Words:
     return (lead, told.shared.symbol(slot)) if lead else (told.shared.symbol(slot),)
 
 
-def _cell(side: Side, mark: str, entry: Entry | None, change: Change) -> Words:
+def side_words(side: Side, mark: str, entry: Entry | None, change: Change) -> Words:
     """Return one edition's line: its value, and where they differ its formula, case and citation."""
     if entry is None:
         return ("no such line",)

@@ -1,8 +1,10 @@
-"""Two editions held against each other, as a terminal shows it and as an object for machines."""
+"""Two editions held against each other, as a terminal shows it and as an object for machines.
+
+The terminal reads as the sheets do; the object keeps formulas as the templates spell them, for who looks them up.
+"""
 
 from __future__ import annotations
 
-import re
 from typing import Any
 
 from calcreport.core.version import PROGRAM
@@ -17,12 +19,12 @@ from calcreport.report.compared import (
     unchanged,
     verdict_words,
 )
+from calcreport.report.editions import side_words, what_differs
 from calcreport.report.fronts import counted
 from calcreport.report.model import Strong
+from calcreport.report.plain import plain_words
 
 FORMAT = 1
-#: a formula that is the value itself
-_NUMBER = re.compile(r"-?[0-9.]+")
 
 
 def editions_lines(compared: Compared) -> list[str]:
@@ -56,28 +58,12 @@ def editions_lines(compared: Compared) -> list[str]:
 def _change(compared: Compared, mark: str, change: Change) -> list[str]:
     number = compared.design.line(mark, change.first) if change.first is not None else 0
     moved = change_words(compared, mark, change)
-    kind = change.entry.kind
-    name = (
-        "required" if kind == "requirement" else f"check {change.entry.path}" if kind == "check" else change.entry.path
-    )
+    side = compared.design if change.first is not None else compared.other
+    name = plain_words(what_differs(side.told[mark], change.entry, side.place(mark, change.entry)))
     head = f"  {f'{mark}.{number}' if number else '':<8}{name}{f'  {moved}' if moved else ''}"
     width = max(len(compared.design.code), len(compared.other.code))
-    return [head, *(f"          {side.code:<{width}}  {_side(side, mark, entry, change)}"
+    return [head, *(f"          {side.code:<{width}}  {plain_words(side_words(side, mark, entry, change))}"
                     for side, entry in ((compared.design, change.first), (compared.other, change.second)))]  # fmt: skip
-
-
-def _side(side: Side, mark: str, entry: Entry | None, change: Change) -> str:
-    if entry is None:
-        return "no such line"
-    alone = change.first is None or change.second is None
-    words = printed_value(side, mark, entry)
-    if entry.formula and not _NUMBER.fullmatch(entry.formula) and (alone or {"formula", "case"} & set(change.differs)):
-        words += f"  {entry.formula}" if entry.kind in ("check", "requirement") else f" = {entry.formula}"
-    if entry.case and (alone or {"formula", "case"} & set(change.differs)):
-        words += f"  ({'when ' if entry.case != 'otherwise' else ''}{entry.case})"
-    if entry.cite and (alone or "citation" in change.differs):
-        words += f"  [{entry.cite}]"
-    return words
 
 
 def editions_object(compared: Compared) -> dict[str, Any]:

@@ -102,6 +102,17 @@ def test_a_section_between_the_two_limits(tmp_path: Path) -> None:
     assert found[REQUIRED]["differs"] == ["formula", "citation"]
 
 
+def test_the_terminal_reads_as_the_sheets_do(tmp_path: Path) -> None:
+    # values as in the section between the two limits above; symbols as the notation of the trade has them
+    ran = run("editions", make(tmp_path, section("B1", "4.30 in^2")), "B1", "--concrete", "ACI 318-14")
+    rows = [" ".join(row.split()) for row in ran.out.split("\n")]
+    at = next(i for i, row in enumerate(rows) if row.endswith("ε_tl −1.4 %"))
+    assert rows[at + 1 : at + 3] == ["ACI 318-19 0.005069 = ε_ty + 0.003", "ACI 318-14 0.005"]
+    # (0.9 - 0.899682)/0.899682 is 0.035 %
+    assert any(row.endswith("φM_n under 0.1 %") for row in rows)
+    assert "eps_t" not in ran.out and "phi" not in ran.out and "*" not in ran.out, "no template spelling"
+
+
 def test_a_section_beyond_both_limits_keeps_its_strength(tmp_path: Path) -> None:
     # by hand: a = 2(60)/(0.85(4)(12)) = 2.941; c = 3.460; eps_t = 0.003(20 - c)/c = 0.0143: phi is 0.90 by both limits
     _, told = compared(make(tmp_path, section("B1", "2 in^2")))
@@ -115,7 +126,7 @@ def test_a_stronger_bar_stops_the_earlier_edition(tmp_path: Path) -> None:
     stopped = told["calculations"]["B1"]["stopped"]
     assert code == 1 and stopped[0] is None and REQUIRED in stopped[1]
     ran = run("editions", folder, "all", "--concrete", "ACI 318-14")
-    assert "to ACI 318-14 stopped" in ran.out and "phiM_n" not in ran.out, "lines not reached are counted, not listed"
+    assert "to ACI 318-14 stopped" in ran.out and "M_n" not in ran.out, "lines not reached are counted, not listed"
 
 
 def test_lines_and_checks_of_one_edition_and_a_verdict_that_flips(tmp_path: Path) -> None:

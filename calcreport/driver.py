@@ -29,7 +29,8 @@ from calcreport.read.cases import read_cases
 from calcreport.read.changes import AsBuilt
 from calcreport.read.codes import CODES
 from calcreport.read.criteria import CRITERIA
-from calcreport.read.library import ANY, Library
+from calcreport.read.editions import ANY
+from calcreport.read.library import Library
 from calcreport.read.model import Inputs, Template
 from calcreport.read.project import ProjectReader
 

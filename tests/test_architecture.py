@@ -31,7 +31,7 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
     ("read", (
         "read", "read.as_built", "read.bars", "read.bodies", "read.calculations", "read.candidates", "read.chosen_cells", "read.cases",
         "read.changes", "read.codes", "read.criteria",
-        "read.columns", "read.comments", "read.comments_schema", "read.fields", "read.filled", "read.formulas",
+        "read.columns", "read.comments", "read.comments_schema", "read.editions", "read.fields", "read.filled", "read.formulas",
         "read.gathering", "read.given", "read.issued", "read.library", "read.lines", "read.links", "read.lost",
         "read.made_rows", "read.malformed", "read.method_lines", "read.model", "read.nodes", "read.project",
         "read.project_model", "read.project_schema", "read.review_model", "read.revision_record", "read.row_tables",

@@ -10,7 +10,8 @@ from calcreport.core.problems import Problems
 from calcreport.driver import make_plan
 from calcreport.filesystem import Disk, library_folder
 from calcreport.plan.model import Plan, PlannedGiven
-from calcreport.read.library import Library, TemplateHead
+from calcreport.read.editions import TemplateHead
+from calcreport.read.library import Library
 
 
 def run(arguments: Namespace) -> int:

@@ -14,9 +14,10 @@ from calcreport.core.problems import Problems
 from calcreport.core.source import Span, TableSource
 from calcreport.read.candidates import Choice, read_choice
 from calcreport.read.criteria import Criteria
+from calcreport.read.editions import Editions
 from calcreport.read.fields import Fields, is_empty
 from calcreport.read.gathering import Gathered
-from calcreport.read.library import Editions, Library
+from calcreport.read.library import Library
 from calcreport.read.model import SYSTEMS, Calculation, GivenPairs, GivenRows, GivenValue, System
 from calcreport.read.nodes import Mapping, Scalar, Sequence
 from calcreport.read.roles import RoleReader, roles_of

@@ -10,8 +10,9 @@ from calcreport.core.problems import Problems
 from calcreport.core.quantity import Amount, read_amount
 from calcreport.core.source import Source
 from calcreport.core.units import dimension_words
+from calcreport.read.editions import ANY
 from calcreport.read.fields import Fields, as_items, as_mapping
-from calcreport.read.library import ANY, Library
+from calcreport.read.library import Library
 from calcreport.read.model import EVERY, SYSTEMS, Calculation, Case, CaseFile, Expected, Reason, Template
 from calcreport.read.nodes import Mapping, Node, Scalar, read_tree
 from calcreport.read.roles import roles_of

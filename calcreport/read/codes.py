@@ -5,11 +5,13 @@ Mappings in, editions and rows for the front sheets out. `codes.yaml` says which
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 
 from calcreport.core.problems import Problems
+from calcreport.core.source import Span
+from calcreport.read.editions import INCOMPLETE, split_code
 from calcreport.read.fields import Fields
-from calcreport.read.library import INCOMPLETE, Library, split_code
+from calcreport.read.library import Library
 from calcreport.read.nodes import Mapping, Scalar, Sequence
 
 #: file of the library that says which editions belong together
@@ -30,6 +32,8 @@ class Codes:
     amendments: str
     #: what the adopted code refers to instead of an edition asked for to compare with; '' where it refers to that
     foreign: str = ""
+    #: (key, place) by code name
+    places: dict[str, tuple[str, Span]] = field(default_factory=dict)
 
 
 def read_codes(
@@ -52,8 +56,9 @@ def read_codes(
         amendments = entry.text("amendments", required=True)
     rows = [("adopted code", f"{name} {year}")]
     editions: dict[str, str] = {}
-    for field in ("concrete", "loads", *OTHER_FIELDS):
-        scalar = fields.scalar(field, required=field in ("concrete", "loads"))
+    places: dict[str, tuple[str, Span]] = {}
+    for key in ("concrete", "loads", *OTHER_FIELDS):
+        scalar = fields.scalar(key, required=key in ("concrete", "loads"))
         if scalar is None:
             continue
         parts = split_code(scalar.text)
@@ -62,27 +67,44 @@ def read_codes(
                          expected="name and edition, such as NAME-19", found=scalar.text[:40])  # fmt: skip
             continue
         text = scalar.text
-        if instead is not None and instead[0] == field:
-            other = _other_edition(scalar, parts, instead[1], problems)
+        if instead is not None and instead[0] == key:
+            other = _other_edition(key, parts, instead[1], library, problems)
             text, parts = (instead[1], other) if other is not None else (text, parts)
         editions[parts[0]] = parts[1]
-        rows.append((field, text))
+        rows.append((key, text))
+        places[parts[0]] = key, scalar.span
     for code in _mixed(f"{name} {year}", node, library, problems):
         editions.pop(code, None)
     if problems.met > before:
         editions[INCOMPLETE] = ""
-    return Codes(editions, tuple(rows), amendments, _foreign(f"{name} {year}", library, instead))
+    return Codes(editions, tuple(rows), amendments, _foreign(f"{name} {year}", library, instead), places)
 
 
-def _other_edition(stated: Scalar, parts: tuple[str, str], asked: str, problems: Problems) -> tuple[str, str] | None:
-    """Return name and year of the edition asked for; None after adding why it is no other edition of the code."""
+def _other_edition(
+    key: str, parts: tuple[str, str], asked: str, library: Library, problems: Problems
+) -> tuple[str, str] | None:
+    """Return name and year of the edition asked for; None after adding why it is no other edition of the code.
+
+    It was asked for on the command line: no file is at fault.
+    """
     found = split_code(asked)
     if found is not None and found[0] == parts[0] and found != parts:
         return found
     what = "is the edition the project states" if found == parts else f"is no edition of {parts[0][:40]}"
-    problems.add("edition-mix", stated.span, f"`{asked[:40]}` {what}", expected=f"another edition of {parts[0][:40]}",
-                 found=asked[:40])  # fmt: skip
+    known = [text for text in _known(key, library) if (named := split_code(text)) and named[0] == parts[0]]
+    others = [text for text in known if split_code(text) != parts]
+    such = f", such as {' or '.join(others)}" if others else ""
+    problems.add("edition-mix", None, f"`{asked[:40]}` {what}",
+                 expected=f"another edition of {parts[0][:40]}{such}", found=f"--{key} '{asked[:40]}'")  # fmt: skip
     return None
+
+
+def _known(key: str, library: Library) -> list[str]:
+    """Return every edition that some adopted code refers to in a field."""
+    tree = library.tree(CODES)
+    known = tree.get("adopted") if tree else None
+    adopted = [name.text for name, _ in known.entries] if isinstance(known, Mapping) else []
+    return list(dict.fromkeys(text for name in adopted for text in _permitted(name, library).get(key, ())))
 
 
 def _permitted(adopted: str, library: Library) -> dict[str, tuple[str, ...]]:

@@ -17,21 +17,16 @@ from calcreport.core.world import NO_SUCH_FILE, World
 from calcreport.read.bars import BarTable, read_bar_table
 from calcreport.read.bodies import TEMPLATE_KEYS, BodyReader
 from calcreport.read.criteria import hold_criteria
+from calcreport.read.editions import ANY, NOWHERE, Editions, StatedCodes, TemplateHead, code_label, hold_served
 from calcreport.read.fields import Fields, as_mapping
 from calcreport.read.model import SYSTEMS, PartBody, System, Template
 from calcreport.read.nodes import Mapping, Scalar, read_tree
 from calcreport.read.symbols import Table, read_symbols
 from calcreport.read.variants import settle
 
-_CODE = re.compile(r"(.+?)-([0-9]{2}|[0-9]{4})")
 YEAR = re.compile(r"(19|20)[0-9]{2}")
 CODE_KEYS = ("name", "years")
 DEEPEST_PART = 8
-#: stands among the editions where the newest edition a part offers may be taken: a template linted alone, a case
-ANY = "*"
-#: stands among the editions where a problem was told about the project's codes
-INCOMPLETE = "?"
-Editions = tuple[tuple[str, str], ...]
 
 
 def _alike(one: Source | str, other: Source | str) -> bool:
@@ -41,43 +36,14 @@ def _alike(one: Source | str, other: Source | str) -> bool:
     return one == other
 
 
-def split_code(text: str) -> tuple[str, str] | None:
-    """Split 'ACI 318-19' into name and year '2019'; None where the text names no edition."""
-    match = _CODE.fullmatch(text.strip())
-    if match is None:
-        return None
-    return match[1], match[2] if len(match[2]) == 4 else f"20{match[2]}"
-
-
-def code_label(name: str, year: str) -> str:
-    """Return a code with its edition as the trade writes it: 'ACI 318-19'."""
-    return f"{name}-{year[2:]}" if year else name
-
-
-@dataclass(frozen=True, slots=True)
-class TemplateHead:
-    """What a template file offers before it is settled."""
-
-    name: str
-    title: str
-    #: code name by system
-    codes: tuple[tuple[System, str], ...]
-    years: tuple[str, ...]
-    systems: tuple[System, ...]
-    tree: Mapping
-    source: Source
-
-    def code(self, system: System) -> str:
-        """Return the code's name in one unit system."""
-        return dict(self.codes)[system]
-
-
 @dataclass(slots=True)
 class Library:
     """Reads files on demand and keeps them for one run."""
 
     world: World
     problems: Problems
+    #: where a project states the codes it is worked to
+    stated: StatedCodes = NOWHERE
     _found: dict[str, Source | str] = field(default_factory=dict)
     _trees: dict[str, Mapping | None] = field(default_factory=dict)
     _heads: dict[str, TemplateHead | None] = field(default_factory=dict)
@@ -204,7 +170,7 @@ class Library:
     ) -> Template | None:
         """Return a template for a system and the editions adopted; None after adding why not."""
         head = self.head(name, span)
-        if head is None or not self._covers(head, system, dict(editions), span):
+        if head is None or not self._serves(head, system, dict(editions), span):
             return None
         if name in self._open or len(self._open) >= DEEPEST_PART:
             self.problems.add("part-loop", span, "parts use one another without end",
@@ -226,26 +192,9 @@ class Library:
         wanted = set(files)
         return {name: found for name, found in self._found.items() if isinstance(found, Source) and found in wanted}
 
-    def _covers(self, head: TemplateHead, system: System, editions: dict[str, str], span: Span | None) -> bool:
-        """Tell whether a template serves a unit system and the edition adopted; adds `edition-mix`."""
+    def _serves(self, head: TemplateHead, system: System, editions: dict[str, str], span: Span | None) -> bool:
         at = span or head.tree.span.part(0, 1)
-        if system not in head.systems:
-            self.problems.add("edition-mix", at, f"`{head.name}` does not serve {system} units",
-                              expected=" and ".join(head.systems) + " units", found=f"{system} units",
-                              hint="" if self._open else "a calculation may have `units` of its own")  # fmt: skip
-            return False
-        code = head.code(system)
-        year = editions.get(code, "")
-        if not head.years or year in head.years:
-            return True
-        if not year and INCOMPLETE in editions:
-            return False
-        offered = " or ".join(code_label(code, y) for y in head.years)
-        self.problems.add(
-            "edition-mix", at, f"`{head.name}` is written for another edition", expected=offered,
-            found=code_label(code, year) if year else f"no edition of {code} among the codes",
-        )  # fmt: skip
-        return False
+        return hold_served(head, system, editions, self.stated, at, bool(self._open), self.problems)
 
     def _read(self, head: TemplateHead, system: System, editions: dict[str, str], document: str) -> Template | None:
         code = head.code(system)

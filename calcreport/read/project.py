@@ -17,6 +17,7 @@ from calcreport.core.world import World
 from calcreport.read.calculations import CalculationReader
 from calcreport.read.codes import Codes, read_codes
 from calcreport.read.criteria import CRITERIA, Criteria, read_criteria
+from calcreport.read.editions import StatedCodes
 from calcreport.read.fields import Fields, as_mapping
 from calcreport.read.gathering import Gathered, Gatherer
 from calcreport.read.library import Library
@@ -55,6 +56,8 @@ class ProjectReader:
         stated = fields.choice("units", SYSTEMS, required=True)
         system: System = "si" if stated == "si" else "us"
         codes = read_codes(fields.mapping("codes", required=True), self.library, self.problems, self.instead)
+        units = fields.node_of("units")
+        self.library.stated = StatedCodes(units.span if units is not None else None, codes.places)
         criteria = read_criteria(
             fields.mapping("criteria", required=True), self.library.tree(CRITERIA), system, self.problems
         )

@@ -21,7 +21,7 @@ from calcreport.read import (
     together,
 )
 from calcreport.read.criteria import CRITERIA
-from calcreport.read.library import ANY as ANY_EDITION
+from calcreport.read.editions import ANY as ANY_EDITION
 from calcreport.read.library import Library
 from calcreport.read.model import SYSTEMS, Given
 from calcreport.read.nodes import Mapping, Scalar, Sequence

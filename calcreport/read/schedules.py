@@ -12,10 +12,11 @@ from calcreport.core.problems import Problems
 from calcreport.core.record import record, state
 from calcreport.core.units import NONE
 from calcreport.read.columns import Table, Use, is_use, read_use, take, text_use
+from calcreport.read.editions import Editions
 from calcreport.read.fields import Fields
 from calcreport.read.filled import Filled, fill, prepare, prepare_use, schedule_columns, uses
 from calcreport.read.gathering import MOST_CALCULATIONS, Gathered
-from calcreport.read.library import Editions, Library
+from calcreport.read.library import Library
 from calcreport.read.model import SYSTEMS, Given, System, Template
 from calcreport.read.nodes import Mapping, Node, Scalar, Sequence, Told
 from calcreport.read.roles import roles_of

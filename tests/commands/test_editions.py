@@ -194,6 +194,19 @@ def test_what_is_no_comparison(tmp_path: Path, mark: str, edition: str, said: st
     assert not target.exists()
 
 
+def test_an_edition_that_is_none_is_a_mistake_of_the_command_line(tmp_path: Path) -> None:
+    # what the codes of templates/codes.yaml refer to: ACI 318 of 2014 and 2019
+    folder = make(tmp_path, section("B1", "2 in^2"))
+    for asked, what in (("foo", "is no edition of ACI 318"), ("ACI 318-19", "is the edition the project states")):
+        ran = run("editions", folder, "B1", "--concrete", asked)
+        assert ran.code == 2
+        assert ran.err.splitlines()[:3] == [
+            f"error[edition-mix]: `{asked}` {what}",
+            "  expected  another edition of ACI 318, such as ACI 318-14",
+            f"  found     --concrete '{asked}'",
+        ]
+
+
 def test_a_beam_under_an_earlier_edition(tmp_path: Path) -> None:
     # by hand, d = 19.01 - 1.5 - 0.375 - 0.635 = 16.5 in: a = 3.81(60)/(0.85(4)(12)) = 5.603, c = 6.592,
     # eps_t = 0.003(16.5 - 6.592)/6.592 = 0.00451: above the least of 0.004 (318-14, 9.3.3.1), below 0.00507 (318-19)

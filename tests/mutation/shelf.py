@@ -15,7 +15,8 @@ from calcreport.core.world import World
 from calcreport.driver import make_plan
 from calcreport.read.bars import BarTable
 from calcreport.read.cases import read_cases
-from calcreport.read.library import ANY, Library
+from calcreport.read.editions import ANY
+from calcreport.read.library import Library
 from calcreport.read.model import Case, Template
 from calcreport.read.nodes import Mapping, Node, Scalar, Sequence, read_tree
 

@@ -12,7 +12,7 @@ from fractions import Fraction
 
 from calcreport.calculate.evaluate import Program
 from calcreport.calculate.handing import empty_values
-from calcreport.calculate.model import Key, Margin, PlannedGiven, Values, Worked, WorkedProject
+from calcreport.calculate.model import Key, Margin, Member, PlannedGiven, Values, Worked, WorkedProject
 
 #: a value is moved down to a quarter and up to four times itself
 WIDEST = 4.0
@@ -33,7 +33,8 @@ def find_margins(worked: Worked) -> tuple[Margin, ...]:
         if not isinstance(value, float) or value == 0.0 or worked.plan.slots[slot].symbol.kind == "count":
             continue
         own = _moved_by(worked, slot, key, base)
-        ways = [_flips(worked, program, (slot, key, value), own, way) for way in (1 / WIDEST, WIDEST)]
+        one, place = _own_work(worked, slot, key)
+        ways = [_flips(one, program, (slot, place, value), own, way) for way in (1 / WIDEST, WIDEST)]
         for check in own:
             found.append(Margin(check, slot, value, ways[0].get(check), ways[1].get(check), key))
     return tuple(found)
@@ -41,9 +42,48 @@ def find_margins(worked: Worked) -> tuple[Margin, ...]:
 
 def _moved_by(worked: Worked, slot: int, key: Key, base: dict[str, bool]) -> dict[str, bool]:
     """Return the checks that a given value can move: those of its member, where it is of one."""
+    owner = _owner(worked, slot, key)
+    return {name: ok for name, ok in base.items() if name.startswith(f"{owner.mark} ")} if owner else base
+
+
+def _owner(worked: Worked, slot: int, key: Key) -> Member | None:
+    """Return the one of like members that a value belongs to."""
     rows = tuple(zip(worked.values.sets[slot], key, strict=True))
-    owners = [member.mark for member in worked.members if member.place in rows]
-    return {name: ok for name, ok in base.items() if name.startswith(f"{owners[0]} ")} if owners else base
+    return next((member for member in worked.members if member.place in rows), None)
+
+
+def _own_work(worked: Worked, slot: int, key: Key) -> tuple[Worked, Key]:
+    """Return the calculation as though it had only the member a value belongs to, and the value's key in it.
+
+    What one member is given changes nothing for the others, so a trial need not work them.
+    """
+    owner = _owner(worked, slot, key)
+    if owner is None:
+        return worked, key
+    old, (index, row) = worked.values, owner.place
+
+    def alone(sets: tuple[int, ...], key: Key) -> Key | None:
+        pairs = tuple(zip(sets, key, strict=True))
+        theirs = any(one == index and there != row for one, there in pairs)
+        return None if theirs else tuple(0 if one == index else there for one, there in pairs)
+
+    values = empty_values(worked.plan)
+    values.plain[:] = old.plain
+    for place, sets in enumerate(old.sets):
+        kept = ((alone(sets, there), value) for there, value in old.rows[place].items())
+        values.rows[place] = {there: value for there, value in kept if there is not None}
+    for place, outer in enumerate(old.outer):
+        named = ((alone(outer, there), names) for there, names in old.names[place].items())
+        values.names[place] = {there: names for there, names in named if there is not None}
+    values.names[index] = {(): (owner.mark,)}
+    for (place, there), amount in old.given.items():
+        kept_key = alone(old.sets[place], there)
+        if kept_key is not None:
+            values.given[place, kept_key] = amount
+    own = replace(worked, calculation=replace(worked.calculation, members=(owner.mark,)), values=values)
+    moved = alone(old.sets[slot], key)
+    assert moved is not None
+    return own, moved
 
 
 def least_margins(project: WorkedProject, progress: Callable[[int, int], None]) -> tuple[tuple[str, Margin], ...]:
@@ -69,7 +109,8 @@ def least_margins(project: WorkedProject, progress: Callable[[int, int], None]) 
 
 def is_judged(margin: Margin, end: float, worked: Worked) -> bool:
     """Tell whether the check has a verdict where a value is moved to; False where the calculation stops before it."""
-    return margin.check in _moved(worked, Program(worked.plan), (margin.slot, margin.key), end)
+    one, key = _own_work(worked, margin.slot, margin.key)
+    return margin.check in _moved(one, Program(worked.plan), (margin.slot, key), end)
 
 
 def _judged(margin: Margin, worked: Worked, program: Program) -> Margin | None:

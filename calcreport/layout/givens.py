@@ -33,7 +33,8 @@ class _Columns:
 
 def set_givens(kit: Kit, givens: Givens, lane: Lane) -> tuple[Piece, ...]:
     """Set the table; it may break between rows, but not off its first or last one."""
-    symbols = max((min(kit.math(row.symbol, SIZE).width, SYMBOL_CAP) for row in givens.rows), default=0.0)
+    wide = (kit.math(row.symbol, SIZE).width for row in givens.rows)
+    symbols = max((width for width in wide if width <= SYMBOL_CAP), default=0.0)
     equals = lane.left + INDENT + symbols + EQUALS_GAP
     start = equals + kit.equals.width + EQUALS_GAP
     most = min(COLUMN, lane.right - start - LEAST_WORDS)

@@ -1,7 +1,8 @@
 """Numbered lines: symbol = formula = substitution = result, statements and boxed results.
 
 `report.model` Line, Statement, ResultBox + lane -> one `Piece` each. Words, formula, substitution and
-result share a row when they fit, else take two rows, three or four; equals signs stand under one another
+result share a row when they fit, else take two rows, three or four, the formula behind the words where that saves a
+row; equals signs stand under one another
 down the sheet, at a tab behind the words or near the left edge; results end at one edge. Checks are in
 `layout.checks`.
 """
@@ -19,6 +20,8 @@ from calcreport.report.model import Formula, Line, ResultBox, Statement
 
 #: Least height of a formula row; share of the lane at which chains behind words have their equals signs.
 ROW, TAB = 11.5, 0.40
+#: A chain is parted behind the words only where that makes the line lower by this much.
+LEAST_SAVED = 4.0
 
 
 @dataclass(frozen=True, slots=True)
@@ -59,13 +62,55 @@ def set_line(kit: Kit, line: Line, lane: Lane) -> Piece:
     if chain:
         first = rows.row((*head.last, *chain), PLAIN.leading, 1.0)
     else:
-        first = rows.row(head.last, PLAIN.leading, 0.0) if head.last else -1.0
-        start = max(kit.equals_at(lane), lane.left + INDENT + symbol.width + EQUALS_GAP)
-        inner = Lane(start if sides else _bare(kit, result, lane.right), lane.right)
-        under = set_chain(kit, rows, symbol, chain_of(kit, sides, inner), result, inner)
-        first = first if first >= 0 else under
+        split = rows.twin()
+        first = _under(kit, rows, head, symbol, sides, result, lane)
+        beside = _split(kit, split, head, symbol, sides, result, lane)
+        if beside >= 0 and split.y < rows.y - LEAST_SAVED:
+            rows, first = split, beside
     baseline = first if baseline < 0 else baseline
     return kit.marks.numbered(rows, baseline, line.number, line.anchor, line.source, line.delta, lane)
+
+
+def _under(
+    kit: Kit, rows: Rows, head: _Head, symbol: Box, sides: tuple[Formula, ...], result: Box, lane: Lane
+) -> float:
+    """Set the chain under the words; return the first baseline."""
+    first = rows.row(head.last, PLAIN.leading, 0.0) if head.last else -1.0
+    start = max(kit.equals_at(lane), lane.left + INDENT + symbol.width + EQUALS_GAP)
+    inner = Lane(start if sides else _bare(kit, result, lane.right), lane.right)
+    under = set_chain(kit, rows, symbol, chain_of(kit, sides, inner), result, inner)
+    return first if first >= 0 else under
+
+
+def _split(
+    kit: Kit, rows: Rows, head: _Head, symbol: Box, sides: tuple[Formula, ...], result: Box, lane: Lane
+) -> float:
+    """Set the formula behind the words and the rest under it, equals signs under one another where there is room.
+
+    Returns the first baseline, or -1 where there is no room for that.
+    """
+    if len(sides) < 2 or not head.last or head.above:
+        return -1.0
+    sign = kit.equals.width + EQUALS_GAP
+    boxes = tuple(kit.math(side) for side in sides)
+    first, rest = sign + boxes[0].width, sum(box.width + sign + EQUALS_GAP for box in boxes[1:])
+    rest += RESULT_GAP + sign + result.width
+    least, tab = head.end + RESULT_GAP + symbol.width + EQUALS_GAP, lane.left + TAB * lane.width
+    start = max(least, min(tab, lane.right - max(first, rest)))
+    x = start
+    if start + rest > lane.right + 0.01:
+        # the rest begins where chains under their words do
+        start, x = max(least, min(tab, lane.right - first)), kit.equals_at(lane)
+    if max(start + first, x + rest) > lane.right + 0.01:
+        return -1.0
+    placed: list[tuple[float, Box]] = [*head.last, (start - EQUALS_GAP - symbol.width, symbol)]
+    _put(placed, Part(boxes[0], kit.equals), start)
+    baseline = rows.row(placed, PLAIN.leading, 1.0)
+    placed = []
+    for box in boxes[1:]:
+        x = _put(placed, Part(box, kit.equals), x)
+    rows.row((*placed, *_after_equals(kit, result, lane.right)), ROW, 1.4)
+    return baseline
 
 
 def _head(kit: Kit, line: Line, lane: Lane) -> _Head:

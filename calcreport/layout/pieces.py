@@ -60,6 +60,12 @@ class Rows:
         self.items: list[Item] = []
         self.y = y
 
+    def twin(self) -> Rows:
+        """Return the same rows once more, for another way to go on."""
+        found = Rows(self.y)
+        found.items = list(self.items)
+        return found
+
     def words(self, lines: tuple[Box, ...], style: TextStyle, x: float) -> float:
         """Add text lines; return the baseline of the first."""
         first = self.y

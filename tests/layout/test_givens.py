@@ -7,7 +7,7 @@ from specimen import given, m, unit, value
 
 from calcreport.layout.fonts import Fonts
 from calcreport.layout.givens import PITCH, SIZE, set_givens
-from calcreport.layout.kit import EQUALS_GAP, INDENT, Kit
+from calcreport.layout.kit import EQUALS_GAP, INDENT, SYMBOL_CAP, Kit
 from calcreport.layout.model import Anchor, Circle
 from calcreport.layout.pieces import flat
 from calcreport.layout.sheet import Lane
@@ -39,6 +39,15 @@ def test_symbols_end_at_one_equals_sign_as_far_in_as_the_widest(kit: Kit, fonts:
     xs = {round(next(ink.left for ink in letters(piece, fonts) if ink.text == "="), 2) for piece in pieces}
     widest = max(kit.math(row.symbol, SIZE).width for row in ROWS)
     assert xs == {round(kit.sheet.text.left + INDENT + widest + EQUALS_GAP, 2)}
+
+
+def test_a_symbol_of_words_beyond_the_cap_moves_no_other(kit: Kit, fonts: Fonts) -> None:
+    wide = given(5, "roundedyieldstrain", "yield strain taken as 0.002", value("yes"), "project file", "B1")
+    pieces = set_givens(kit, Givens((*ROWS, wide)), kit.sheet.text)
+    xs = [round(next(ink.left for ink in letters(piece, fonts) if ink.text == "="), 2) for piece in pieces]
+    widest = max(kit.math(row.symbol, SIZE).width for row in ROWS)
+    assert kit.math(wide.symbol, SIZE).width > SYMBOL_CAP
+    assert set(xs[:-1]) == {round(kit.sheet.text.left + INDENT + widest + EQUALS_GAP, 2)} and xs[-1] > xs[0]
 
 
 def test_first_and_last_row_are_never_left_alone(kit: Kit) -> None:

@@ -53,6 +53,24 @@ def test_a_longer_line_takes_two_rows_and_a_narrow_lane_three(kit: Kit, fonts: F
     assert len(baselines(set_line(kit, LONG, narrow), kit, fonts)) >= 3
 
 
+def test_a_chain_of_two_rows_begins_behind_its_words_where_that_saves_a_row(kit: Kit, fonts: Fonts) -> None:
+    # words, formula, and a rest that fills the lane: three rows where the words stand alone, two where they do not
+    text = kit.sheet.text
+    rest = m("1,548(420)(539.4 − 72.85) + 1,548(420)(539.4 − 72.85)")
+    one = line(
+        25, ("Strength",), "M_n", m("A_s f_y (d − a) + A_s f_y (d − a)"), rest, value("327", "kN·m"), source("1")
+    )
+    piece = set_line(kit, one, text)
+    assert len(baselines(piece, kit, fonts)) == 2 and clashes(letters(piece, fonts)) == []
+    words = [ink for ink in letters(piece, fonts) if ink.left == text.left]
+    assert words and {round(ink.foot, 2) for ink in words} <= {signs(piece, fonts)[0][0]}, "the formula is in their row"
+    assert max(ink.right for ink in letters(piece, fonts) if ink.left < kit.sheet.source) <= text.right + 0.5
+    # words that leave the formula no room stand above it
+    long = replace(one, says=("Nominal flexural strength of the whole section about its stronger axis",))
+    assert len({round(ink.foot, 2) for ink in letters(set_line(kit, long, text), fonts) if ink.text == "="}) == 2
+    assert set_line(kit, long, text).height > piece.height + 10.0
+
+
 def test_equals_signs_stand_under_one_another(kit: Kit, fonts: Fonts) -> None:
     other = replace(LONG, symbol=m("V_s"))
     rows: dict[tuple[int, float], float] = {}

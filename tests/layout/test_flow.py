@@ -111,18 +111,16 @@ def test_lines_fill_a_sheet_before_the_next_begins(kit: Kit) -> None:
 
 
 def test_a_figure_stands_right_of_the_lines_that_follow_it(kit: Kit, fonts: Fonts) -> None:
-    (body,) = flow(
-        kit, (FigureBlock(section()), a_line(1), a_line(2), a_line(3), a_line(4), a_line(5)), kit.sheet.body_top
-    )
+    (body,) = flow(kit, (FigureBlock(section()), *(a_line(n) for n in range(1, 8))), kit.sheet.body_top)
     inks = [ink for ink in inked(body.items, fonts) if ink.text]
     first = next(ink for ink in inks if "words1x" in ink.text)
-    last = next(ink for ink in inks if "words5x" in ink.text)
+    last = next(ink for ink in inks if "words7x" in ink.text)
     label = next(ink for ink in inks if "4-#9" in ink.text)
     assert first.right < label.left
     assert first.top < label.top < last.top
-    results = {n: next(ink.right for ink in inks if f"result{n}x" in ink.text) for n in (1, 5)}
+    results = {n: next(ink.right for ink in inks if f"result{n}x" in ink.text) for n in (1, 7)}
     assert results[1] < label.left  # narrowed lane
-    assert results[5] == pytest.approx(kit.sheet.text.right, abs=0.2)  # full lane again
+    assert results[7] == pytest.approx(kit.sheet.text.right, abs=0.2)  # full lane again
 
 
 def test_a_figure_without_room_waits_while_its_lines_go_on(kit: Kit) -> None:

@@ -186,7 +186,10 @@ def _over(node: Over, sets: tuple[tuple[int, ...], ...]) -> Work:
 
 
 def _linear(node: Over, where: Compare, body: Work, otherwise: Work | None, sets: tuple[tuple[int, ...], ...]) -> Work:
-    """Read y on the straight lines between rows, in rising order of x; outside them is no value."""
+    """Read y on the straight lines between rows, in rising order of x; outside them is no value.
+
+    Rows at one x are a step, in the order they are given: up to it the first holds, past it the last.
+    """
     x, at, index = formula(where.left, sets), formula(where.right, sets), node.bound
 
     def work(values: Values) -> float:
@@ -198,7 +201,7 @@ def _linear(node: Over, where: Compare, body: Work, otherwise: Work | None, sets
             values.open[index] = row
             points.append((x(values), body(values)))
         values.open[index] = before
-        points.sort()
+        points.sort(key=lambda point: point[0])
         slack = TIE * abs(place)
         for (x1, y1), (x2, y2) in pairwise(points):
             if x1 - slack <= place <= x2 + slack:

@@ -193,7 +193,7 @@ def _over(node: Over, values: Values) -> Fraction:
     if node.function == "sum":
         return _short(sum(kept, Fraction(0)))
     if node.function == "linear":
-        return _between(sorted(points), at, node, values)
+        return _between(sorted(points, key=lambda point: point[0]), at, node, values)
     if not kept:
         assert node.otherwise is not None
         return work(node.otherwise, values)

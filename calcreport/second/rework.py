@@ -372,16 +372,16 @@ class Rework:
         return kept[0] if node.function == "pick" else self.call(node.function, kept) if len(kept) > 1 else kept[0]
 
     def between(self, points: list[tuple[Any, Any]], at: Any, node: Over) -> Any:
-        """Read on the straight line between the two rows that enclose a place."""
+        """Read on the straight line between two rows around a place: the last row before it, the first after."""
         lower = [p for p in points if self.difference(p[0], at) <= 0]
         upper = [p for p in points if self.difference(p[0], at) >= 0]
         if not lower or not upper:
             if node.otherwise is None:
                 raise Stopped(f"outside the rows of `{node.rows}`")
             return self.work(node.otherwise)
-        (x1, y1), (x2, y2) = max(lower, key=lambda p: p[0]), min(upper, key=lambda p: p[0])
+        (x1, y1), (x2, y2) = max(reversed(lower), key=lambda p: p[0]), min(upper, key=lambda p: p[0])
         if self.difference(x1, x2) == 0:
-            return y1
+            return y2
         return y1 + (y2 - y1) * ((at - x1) / (x2 - x1)).to("").magnitude
 
     # -------------------------------------------------------- conditions

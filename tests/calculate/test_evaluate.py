@@ -141,3 +141,34 @@ lines:
     assert worked.verdict == "not evaluated"
     # the row worked before it stands on the sheet
     assert [type(line).__name__ for line in worked.lines] == ["WorkedEach"]
+
+
+@pytest.mark.parametrize(
+    ("place", "expected"),
+    [
+        ("1 in", 30.0),  # halfway from 40 to 20
+        ("2 in", 20.0),  # at the step the row that stands first
+        ("3 in", -15.0),  # halfway from -10 to -20
+        ("5 in", 5.0),  # halfway from -20 to 30: the first of two at 6
+        ("7 in", 0.0),  # halfway from 10 to -10: the last of two at 6
+    ],
+)
+def test_between_rows_a_step_holds_on_its_own_side(tmp_path: Path, place: str, expected: float) -> None:
+    lines = """\
+lines:
+  - rows: station
+    cite: geometry
+    columns: {b_i: , c: }
+    list:
+      - {b_i: '0 in', c: '40 in'}
+      - {b_i: '2 in', c: '20 in'}
+      - {b_i: '2 in', c: '-10 in'}
+      - {b_i: '4 in', c: '-20 in'}
+      - {b_i: '6 in', c: '30 in'}
+      - {b_i: '6 in', c: '10 in'}
+      - {b_i: '8 in', c: '-10 in'}
+  - {gives: d, formula: 'linear(c over station where b_i = a)', cite: geometry}
+"""
+    symbols = SYMBOLS.replace("symbols:\n", "symbols:\n  b_i: {unit: in, says: place}\n  d: {unit: in, says: there}\n")
+    worked = work_small(tmp_path, symbols + lines, f"{{a: {place}, b: 1 in}}")
+    assert number(worked, "d") == pytest.approx(expected, rel=1e-12, abs=1e-12)

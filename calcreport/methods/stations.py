@@ -6,6 +6,7 @@ of what every span alone adds to it.
 
 from __future__ import annotations
 
+import math
 from dataclasses import dataclass
 from itertools import pairwise
 from typing import Any
@@ -92,43 +93,40 @@ def _turning(
 ) -> float:
     """Return where the greatest (or least) moment of all combinations and arrangements stands.
 
-    `weights` has the factor of every loading for each combination. From the best place of a grid on: the
-    arrangement that is worst there, then the place that is worst for that arrangement, until neither moves.
+    `weights` has the factor of every loading for each combination. From every arrangement that is worst somewhere on
+    a grid: the place that is worst for it, then the arrangement that is worst there, until neither moves.
     """
     length = member.lengths[span]
     breaks = {place for loading in member.loadings for place in loading.on.get(span, Loads()).breaks()}
     places = sorted({0.0, length, *breaks, *(length * part / parts for part in range(1, parts))})
     at = {place: forces_at(member, solved, span, Station("", place)).moment for place in places}
-    best, where = 0.0, 0.0
-    chosen = False
+    best, where = -math.inf, 0.0
     for factors in weights:
-        value, x = max(((_worst(member, factors, at[x], sign), x) for x in places), key=lambda one: one[0])
-        for _ in range(20):
-            acting = _acting(member, factors, forces_at(member, solved, span, Station("", x)).moment, sign)
-            moved, further = _worst_place(member, solved, span, acting, sign, places)
-            if moved <= value + 1e-14 * abs(value):
-                break
-            value, x = moved, further
-        if not chosen or value > best:
-            best, where, chosen = value, x, True
+        tried: set[tuple[float, ...]] = set()
+        for place in places:
+            value, x, acting = -math.inf, place, _acting(member, factors, at[place], sign)
+            while acting not in tried:
+                tried.add(acting)
+                moved, further = _worst_place(member, solved, span, acting, sign, places)
+                if moved <= value + 1e-14 * abs(value):
+                    break
+                value, x = moved, further
+                acting = _acting(member, factors, forces_at(member, solved, span, Station("", x)).moment, sign)
+            if value > best:
+                best, where = value, x
     return where
 
 
-def _acting(member: Member, factors: tuple[float, ...], moment: Any, sign: float) -> list[float]:
+def _acting(member: Member, factors: tuple[float, ...], moment: Any, sign: float) -> tuple[float, ...]:
     """Return the factors of what acts in the worst arrangement at a place: all of a case, or spans that add."""
-    return [
+    return tuple(
         factor if not loading.patterned or sign * factor * float(m) > 0 else 0.0
         for loading, factor, m in zip(member.loadings, factors, moment, strict=True)
-    ]
-
-
-def _worst(member: Member, factors: tuple[float, ...], moment: Any, sign: float) -> float:
-    acting = _acting(member, factors, moment, sign)
-    return sign * sum(factor * float(m) for factor, m in zip(acting, moment, strict=True))
+    )
 
 
 def _worst_place(
-    member: Member, solved: Solved, span: int, acting: list[float], sign: float, places: list[float]
+    member: Member, solved: Solved, span: int, acting: tuple[float, ...], sign: float, places: list[float]
 ) -> tuple[float, float]:
     """Return the greatest moment of one arrangement along a span, times the sign, and its place."""
     numpy = load("numpy")

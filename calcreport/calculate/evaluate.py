@@ -70,7 +70,7 @@ FORMED = 1e-12
 _NOWHERE = Citation("", "")
 
 
-class _Stopped(Exception):
+class Stopped(Exception):
     """Leaves a calculation that cannot go on."""
 
     def __init__(self, stop: Stop) -> None:
@@ -97,7 +97,7 @@ class Program:
 
     def run(self, calculation: Calculation, values: Values, fingerprint: str) -> Worked:
         """Work all lines; returns what was worked even where the calculation stops."""
-        run = _Run(self, values)
+        run = Run(self, values)
         stop: Stop | None = None
         lines = run.top
         try:
@@ -105,13 +105,13 @@ class Program:
                 found = run.line(line)
                 if found is not None:
                     lines.append(found)
-        except _Stopped as stopped:
+        except Stopped as stopped:
             stop = stopped.stop
             lines.extend(run.rescued())
         checks = list(run.checks)
         if stop is not None:
             reached = {id(check.line) for check in checks}
-            left = [check for check in _planned_checks(self.plan.lines) if id(check) not in reached]
+            left = [check for check in planned_checks(self.plan.lines) if id(check) not in reached]
             checks += [_not_evaluated(check, stop) for check in left]
         return Worked(
             calculation, self.plan, values, tuple(lines), tuple(checks), stop, fingerprint, self.work, self.test,
@@ -143,7 +143,8 @@ class Program:
         return found
 
 
-def _planned_checks(lines: tuple[PlannedLine, ...]) -> list[PlannedCheck]:
+def planned_checks(lines: tuple[PlannedLine, ...]) -> list[PlannedCheck]:
+    """Return the checks of some lines, those of every arm and block among them."""
     found: list[PlannedCheck] = []
     for line in lines:
         match line:
@@ -151,9 +152,9 @@ def _planned_checks(lines: tuple[PlannedLine, ...]) -> list[PlannedCheck]:
                 found.append(line)
             case PlannedBranches(arms):
                 for arm in arms:
-                    found += _planned_checks(arm.lines)
+                    found += planned_checks(arm.lines)
             case PlannedEach(_, inner) | PlannedPart(_, _, inner) | PlannedUnknown(lines=inner):
-                found += _planned_checks(inner)
+                found += planned_checks(inner)
     return found
 
 
@@ -161,7 +162,7 @@ def _not_evaluated(check: PlannedCheck, stop: Stop, opened: tuple[tuple[int, int
     return WorkedCheck(check, "not evaluated", None, None, "condition", stop.told, None, opened)
 
 
-class _Run:
+class Run:
     """One run of a program; `checks` gathers every check as it is judged."""
 
     def __init__(self, program: Program, values: Values) -> None:
@@ -193,7 +194,7 @@ class _Run:
         try:
             self.values.spend(_LINE_COST)
         except NoValue as error:
-            raise _Stopped(Stop(line.span, str(error), "")) from error
+            raise Stopped(Stop(line.span, str(error), "")) from error
         match line:
             case PlannedGives():
                 return self.gives(line)
@@ -226,11 +227,11 @@ class _Run:
         try:
             found = self.program.work(node)(self.values)
         except NoValue as error:
-            raise _Stopped(Stop(at, str(error), cite.printed)) from error
+            raise Stopped(Stop(at, str(error), cite.printed)) from error
         except OverflowError as error:
-            raise _Stopped(Stop(at, "a value beyond all bounds", cite.printed)) from error
+            raise Stopped(Stop(at, "a value beyond all bounds", cite.printed)) from error
         if not math.isfinite(found) or abs(found) > 1e100:
-            raise _Stopped(Stop(at, "a value beyond all bounds", cite.printed))
+            raise Stopped(Stop(at, "a value beyond all bounds", cite.printed))
         return found
 
     def holds(self, node: Condition, at: Span, cite: Citation) -> bool:
@@ -238,7 +239,7 @@ class _Run:
         try:
             return self.program.test(node)(self.values)
         except (NoValue, OverflowError) as error:
-            raise _Stopped(Stop(at, str(error), cite.printed)) from error
+            raise Stopped(Stop(at, str(error), cite.printed)) from error
 
     def store(self, slot: int, value: float | str, worked: Expression) -> tuple[int, ...]:
         if self.values.sets[slot]:
@@ -276,7 +277,7 @@ class _Run:
         for other, passed in enumerate(line.arms):
             if other != number:
                 because = line.arms[number].when or line.arms[0].when
-                for check in _planned_checks(passed.lines):
+                for check in planned_checks(passed.lines):
                     self.checks.append(
                         WorkedCheck(check, "not applicable", None, None, "condition", "", because, self.opened)
                     )
@@ -293,7 +294,7 @@ class _Run:
             judged = len(self.checks)
             try:
                 rows.append(self.lines(line, line.lines))
-            except _Stopped as stopped:
+            except Stopped as stopped:
                 where = f"{self.program.plan.sets[line.rows].name} {names[row]}"
                 stop = replace(stopped.stop, where=f"{where}, {stopped.stop.where}".rstrip(", "))
                 self.stop_rows(line, row, {id(check.line) for check in self.checks[judged:]}, opened, stop)
@@ -301,7 +302,7 @@ class _Run:
                     # the rows before it stand where the whole block would
                     around = self.unfinished[depth - 1][1] if depth else self.top
                     around.append(WorkedEach(line, names[:row], tuple(rows), opened))
-                raise _Stopped(stop) from stopped
+                raise Stopped(stop) from stopped
         self.values.open[line.rows], self.opened = before, opened
         return WorkedEach(line, names, tuple(rows), self.opened)
 
@@ -309,7 +310,7 @@ class _Run:
         self, line: PlannedEach, row: int, reached: set[int], opened: tuple[tuple[int, int], ...], stop: Stop
     ) -> None:
         """Say of every check that the stopped row and the rows after it leave: not evaluated, in that row."""
-        planned = _planned_checks(line.lines)
+        planned = planned_checks(line.lines)
         for other in range(row, len(self.values.row_names(line.rows))):
             left = planned if other > row else [check for check in planned if id(check) not in reached]
             self.checks += [_not_evaluated(check, stop, (*opened, (line.rows, other))) for check in left]
@@ -334,10 +335,10 @@ class _Run:
             solved = self.closed(line, difference, low, high) if line.closed else None
             root, larger = solved[:2] if solved else find_root(difference, low, high)
         except NoRoot as error:
-            raise _Stopped(Stop(line.span, f"no {symbol} found: {error}", "")) from error
+            raise Stopped(Stop(line.span, f"no {symbol} found: {error}", "")) from error
         left_over = abs(difference(root))
         if left_over > JUMP * larger:
-            raise _Stopped(Stop(line.span, f"no {symbol} found: the two sides jump past one another", ""))
+            raise Stopped(Stop(line.span, f"no {symbol} found: the two sides jump past one another", ""))
         key = self.values.key(line.slot)
         self.values.worked.pop((line.slot, key), None)
         formed: WorkedGives | None = None
@@ -373,7 +374,7 @@ class _Run:
         try:
             result = WORKS[line.kind](handed, self.values.spend)
         except (NoResult, NoValue) as error:
-            raise _Stopped(Stop(line.span, f"{line.kind}: {error}", line.cite.printed)) from error
+            raise Stopped(Stop(line.span, f"{line.kind}: {error}", line.cite.printed)) from error
         keep_result(line, result, self.values, self.put)
         self.values.results[id(line), tuple(sorted(self.opened))] = result
         return WorkedMethod(line, result, self.opened)
@@ -395,7 +396,7 @@ class _Run:
         for number, entry in enumerate(line.entries):
             for pairing in self.pairings(line, number):
                 if len(names) >= MOST_ROWS:
-                    raise _Stopped(Stop(line.span, f"more than {MOST_ROWS} rows", line.cite.printed))
+                    raise Stopped(Stop(line.span, f"more than {MOST_ROWS} rows", line.cite.printed))
                 self.values.open[line.rows] = len(names)
                 if entry.when is not None and not self.holds(entry.when, entry.span, line.cite):
                     continue
@@ -431,7 +432,7 @@ class _Run:
             for row, name in enumerate(self.values.row_names(column.over)):
                 node = mapped.get(name, column.other)
                 if node is None:
-                    raise _Stopped(Stop(line.span, f"no value for the row {name}", line.cite.printed))
+                    raise Stopped(Stop(line.span, f"no value for the row {name}", line.cite.printed))
                 self.values.open[column.over] = row
                 self.fill(column.slot, node, line.span, line.cite)
             self.values.open[column.over] = before
@@ -440,7 +441,7 @@ class _Run:
 
     def require(self, line: PlannedRequire) -> WorkedLine | None:
         if not self.holds(line.condition, line.span, line.cite):
-            raise _Stopped(Stop(line.span, line.stops_with, line.cite.printed))
+            raise Stopped(Stop(line.span, line.stops_with, line.cite.printed))
         if line.silent or line.quiet:
             return None
         return WorkedRequire(line, self.compared(line.condition, line.span, line.cite), self.opened)
@@ -451,7 +452,7 @@ class _Run:
             try:
                 left, right = side.left(self.values), side.right(self.values)
             except (NoValue, OverflowError) as error:
-                raise _Stopped(Stop(at, str(error), cite.printed)) from error
+                raise Stopped(Stop(at, str(error), cite.printed)) from error
             found.append(Comparison(side.test, left, right, side.left, side.right))
         return tuple(found)
 

@@ -37,14 +37,14 @@ def _met(expected: Expected, worked: Worked) -> bool:
         return True
     if checks and expected.name not in worked.plan.by_path:
         ratios = [check.ratio for check in checks if check.ratio is not None]
-        return _within(expected, max(ratios) if ratios else None)
+        return within(expected, max(ratios) if ratios else None)
     place = find_path(worked, expected.name, expected.span, Problems())
     if place is None:
         return False
     value = worked.values.get(*place)
     if isinstance(expected.value, str):
         return value == expected.value
-    return _within(expected, value if isinstance(value, float) else None)
+    return within(expected, value if isinstance(value, float) else None)
 
 
 def _worst(verdicts: list[str]) -> str:
@@ -57,7 +57,8 @@ def _worst(verdicts: list[str]) -> str:
     return judged[0] if judged and verdicts[0] == "not applicable" else verdicts[0]
 
 
-def _within(expected: Expected, value: float | None) -> bool:
+def within(expected: Expected, value: float | None) -> bool:
+    """Tell whether a number is the one expected, within its tolerance."""
     assert isinstance(expected.value, Amount)
     if value is None:
         return False

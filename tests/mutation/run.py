@@ -6,8 +6,11 @@ A shelf, a list of equivalents and names in, a report out; no printing.
 from __future__ import annotations
 
 from collections import Counter
+from collections.abc import Callable, Iterator
 from dataclasses import dataclass
+from multiprocessing import get_context
 from time import process_time
+from typing import TypeAlias
 
 from .equivalents import Equivalents
 from .handed import bar_mutants, worth_mutants
@@ -15,6 +18,13 @@ from .mutants import mutants_of
 from .shelf import Shelf
 from .sources import OUTSIDE
 from .trial import Fate, Mutant, Trial
+
+#: a file, and the number of the first of some of its mutants
+Task: TypeAlias = tuple[str, int]
+#: mutants put to the cases in one go
+TASK = 25
+
+_at_work: list[Callable[[Task], tuple[list[tuple[Fate, str]], float]]] = []
 
 
 @dataclass(frozen=True, slots=True)
@@ -69,19 +79,51 @@ class Report:
         return not self.open and not self.stale
 
 
-def run(shelf: Shelf, equivalents: Equivalents, names: tuple[str, ...]) -> Report:
-    """Put every mutant of the named files to the cases; no names: all templates and bar tables."""
-    trial = Trial(shelf, {})
+def run(shelf: Shelf, equivalents: Equivalents, names: tuple[str, ...], jobs: int = 1) -> Report:
+    """Put every mutant of the named files to the cases, in some processes; no names: all templates and bar tables."""
     bars = {file: [m for m in bar_mutants(shelf) if m.file == file] for file, _ in shelf.bars}
-    files = names or (*shelf.names, *bars)
-    sheets: list[Sheet] = []
-    for file in files:
+    mutants = {
+        file: bars.get(file) or [*mutants_of(file, shelf), *worth_mutants(file, shelf)]
+        for file in names or (*shelf.names, *bars)
+    }
+    found: dict[str, list[Told]] = {file: [] for file in mutants}
+    seconds = dict.fromkeys(mutants, 0.0)
+    for (file, first), (fates, spent) in _worked(shelf, mutants, jobs):
+        seconds[file] += spent
+        for mutant, fate in zip(mutants[file][first:], fates, strict=False):
+            found[file].append(Told(mutant, *fate, equivalents.reason(mutant)))
+    told = [t for file in found for t in found[file] if t.fate != "no mutant"]
+    sheets = tuple(
+        Sheet(file, tuple(t for t in found[file] if t.fate != "no mutant"), seconds[file]) for file in mutants
+    )
+    return Report(sheets, tuple(equivalents.stale([(t.mutant, t.fate) for t in told], set(mutants))))
+
+
+def _worked(
+    shelf: Shelf, mutants: dict[str, list[Mutant]], jobs: int
+) -> Iterator[tuple[Task, tuple[list[tuple[Fate, str]], float]]]:
+    """Yield the fates of a task's mutants, with the seconds they took, task by task in order."""
+    tasks = [(file, first) for file, those in mutants.items() for first in range(0, len(those), TASK)]
+    trial = Trial(shelf, {}, {}, {})
+
+    def work(task: Task) -> tuple[list[tuple[Fate, str]], float]:
         start = process_time()
-        mutants = bars.get(file) or [*mutants_of(file, shelf), *worth_mutants(file, shelf)]
-        told = tuple(Told(m, *trial.fate(m), equivalents.reason(m)) for m in mutants)
-        sheets.append(Sheet(file, tuple(t for t in told if t.fate != "no mutant"), process_time() - start))
-    fates = [(t.mutant, t.fate) for sheet in sheets for t in sheet.told]
-    return Report(tuple(sheets), tuple(equivalents.stale(fates, set(files))))
+        file, first = task
+        fates = [trial.fate(mutant) for mutant in mutants[file][first : first + TASK]]
+        return fates, process_time() - start
+
+    if jobs == 1:
+        yield from ((task, work(task)) for task in tasks)
+        return
+    # a mutant holds functions, which no process can send to another: all are made before the processes part
+    _at_work.append(work)
+    with get_context("fork").Pool(jobs) as pool:
+        yield from zip(tasks, pool.imap(_work, tasks), strict=True)
+    _at_work.clear()
+
+
+def _work(task: Task) -> tuple[list[tuple[Fate, str]], float]:
+    return _at_work[-1](task)
 
 
 def table(report: Report) -> list[str]:

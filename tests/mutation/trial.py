@@ -1,6 +1,7 @@
 """One mutant put to the cases: refused by the planner, noticed by a case with an outside source, or not.
 
-A mutant and the shelf in, its fate out. A mutant lives in every template that holds the rule; its own cases come first.
+A mutant and the shelf in, its fate out. A mutant lives in every template that holds the rule; its own cases come
+first, and only those in which an altered line comes to something else are worked.
 """
 
 from __future__ import annotations
@@ -26,9 +27,13 @@ from .judge import STOP, missed
 from .places import Key, altered
 from .shelf import Held, Shelf, Variant
 from .sources import OUTSIDE
+from .standing import Standing
 
 #: 'own' is noticed only by expectations whose source is no outside one; 'no mutant' names a thing not visible there
 Fate: TypeAlias = Literal["killed", "refused", "own", "survived", "no mutant"]
+
+#: what the planner says of a name that is not visible, wherever in a stretch of a formula it stands
+_HIDDEN = ("used-before-given", "row-leak")
 
 
 @dataclass(frozen=True, slots=True)
@@ -56,17 +61,31 @@ class Trial:
 
     shelf: Shelf
     last: dict[str, Held]
+    standing: dict[int, Standing]
+    #: names that a stretch of a formula does not see
+    hidden: dict[tuple[object, ...], str]
 
     def fate(self, mutant: Mutant) -> tuple[Fate, str]:
         """Return what became of a mutant, and the case or problem that noticed it."""
-        own = ""
+        own, stretch = "", _stretch(mutant)
+        if stretch in self.hidden:
+            return "no mutant", self.hidden[stretch]
         readers = self.shelf.readers(mutant.file) if mutant.handed else self.shelf.users(mutant.file, mutant.key)
         for variant in readers:
             plan, why = planned(variant, mutant)
             if plan is None:
+                if stretch and why in _HIDDEN:
+                    self.hidden[stretch] = why
                 return ("no mutant" if mutant.renames else "refused"), why
-            program = Program(plan)
+            program, standing = Program(plan), self.standing_of(variant)
+            pairs = None if mutant.handed else standing.altered(plan)
             for held in self.ordered(variant):
+                seen = "perhaps" if mutant.handed else standing.seen(held, pairs, program)
+                if seen == "no":
+                    continue
+                if seen == "missed":
+                    self.last[variant.words + variant.name] = held
+                    return "killed", f"{variant.name}: {held.case.name}"
                 handed = mutant.apply(held.case.calculation) if mutant.handed else held.case.calculation
                 if mutant.handed and handed is held.case.calculation:
                     continue
@@ -77,12 +96,33 @@ class Trial:
                 own = own or (f"{variant.name}: {held.case.name}" if kind else "")
         return ("own", own) if own else ("survived", "")
 
+    def standing_of(self, variant: Variant) -> Standing:
+        """Return a variant as it stands, planned when first asked for."""
+        found = self.standing.get(id(variant))
+        if found is None:
+            found = self.standing[id(variant)] = Standing(variant)
+        return found
+
     def ordered(self, variant: Variant) -> Iterator[Held]:
         """Yield the cases of a variant, the one that noticed last first."""
         first = self.last.get(variant.words + variant.name)
         if first is not None:
             yield first
         yield from (held for held in variant.cases if held is not first)
+
+
+def _stretch(mutant: Mutant) -> tuple[object, ...]:
+    """Return what all names of one stretch of a formula share, with the name taken; () for what names nothing else.
+
+    What such a stretch sees does not depend on which of its names is taken for another: a stretch is what stands
+    under the same rows.
+    """
+    file, _, _, kind, steps = mutant.key
+    if not mutant.renames or kind != "Name":
+        return ()
+    parts = [number for number, step in enumerate(steps) if step in ("body", "where", "otherwise")]
+    other = mutant.says.split(" → ")[1].split()[0]
+    return file, mutant.line, mutant.formula, steps[: parts[-1] + 1] if parts else (), other
 
 
 def planned(variant: Variant, mutant: Mutant) -> tuple[Plan | None, str]:

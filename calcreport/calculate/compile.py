@@ -156,13 +156,13 @@ def _over(node: Over, sets: tuple[tuple[int, ...], ...]) -> Work:
     index, function = node.bound, node.function
 
     def found(values: Values) -> list[float]:
-        before = values.open[index]
+        before, judge = values.open[index], values.judge or values
         kept: list[float] = []
         rows = len(values.row_names(index))
         values.spend(rows)
         for row in range(rows):
             values.open[index] = row
-            if where is None or where(values):
+            if where is None or where(judge):
                 kept.append(body(values))
                 if function == "pick":
                     break
@@ -193,19 +193,22 @@ def _linear(node: Over, where: Compare, body: Work, otherwise: Work | None, sets
     x, at, index = formula(where.left, sets), formula(where.right, sets), node.bound
 
     def work(values: Values) -> float:
-        before, place = values.open[index], at(values)
-        points: list[tuple[float, float]] = []
+        before, judge = values.open[index], values.judge or values
+        place = at(judge)
+        points: list[tuple[float, float, float]] = []
         rows = len(values.row_names(index))
         values.spend(rows)
         for row in range(rows):
             values.open[index] = row
-            points.append((x(values), body(values)))
+            points.append((x(judge), x(values), body(values)))
         values.open[index] = before
         points.sort(key=lambda point: point[0])
         slack = TIE * abs(place)
-        for (x1, y1), (x2, y2) in pairwise(points):
-            if x1 - slack <= place <= x2 + slack:
-                return y1 if x2 == x1 else y1 + (y2 - y1) * (place - x1) / (x2 - x1)
+        for (here, x1, y1), (there, x2, y2) in pairwise(points):
+            if abs(here - place) <= slack:
+                return y1
+            if here < place <= there + slack:
+                return y2 if abs(there - place) <= slack or x2 == x1 else y1 + (y2 - y1) * (at(values) - x1) / (x2 - x1)
         if otherwise is None:
             raise NoValue(f"outside the rows of `{node.rows}`")
         return otherwise(values)

@@ -96,6 +96,8 @@ class Values:
     by_method: dict[tuple[int, Key], PlannedMethod] = field(default_factory=dict)
     #: what a method came to, by identity of its line and the rows open around it, in order of their sets
     results: dict[tuple[int, tuple[tuple[int, int], ...]], Result] = field(default_factory=dict)
+    #: the values by which rows are chosen, with the same open rows, where these here are printed figures
+    judge: Values | None = None
 
     def spend(self, work: int) -> None:
         """Count work; raises `NoValue` beyond the bound."""

@@ -98,16 +98,18 @@ def _solved(group: tuple[Worked, ...], shared: dict[int, PlanForms]) -> dict[str
 
 
 def _copied(values: Values) -> Values:
+    """Return values to write printed figures into; rows are chosen by the values themselves."""
     return Values(
         list(values.plain),
         [dict(rows) for rows in values.rows],
-        list(values.open),
+        values.open,
         values.names,
         values.sets,
         values.outer,
         values.given,
         values.worked,
         values.exact,
+        judge=values,
     )
 
 
@@ -349,7 +351,8 @@ class _Lines:
             for row in range(len(self.values.names[node.bound].get(outer, ()))):
                 inner = {**opened, node.bound: row}
                 self.collect(node.body, inner, found)
-                if node.where is not None:
+                # rows are chosen by the values themselves; a line read between rows takes their places too
+                if node.where is not None and node.function == "linear":
                     self.collect(node.where, inner, found)
             if node.otherwise is not None:
                 self.collect(node.otherwise, opened, found)
@@ -463,7 +466,9 @@ class _Lines:
 
         def ratio(values: Values) -> float:
             demand, capacity = (by.work_right, by.work_left) if required else (by.work_left, by.work_right)
-            return max(demand(values), 0.0) / capacity(values)
+            asked = demand(values)
+            # what asks for nothing is held by any capacity, by none too
+            return asked / capacity(values) if asked > 0 else 0.0
 
         if inputs:
             self.digits.need(Sum(self.confirming(ratio, inputs, check.open), tuple(i for _, _, i in inputs), name))

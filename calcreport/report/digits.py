@@ -214,14 +214,19 @@ class Digits:
                 if self._confirmed(line):
                     result.settled = True
                     return changed
+        gained: list[Id] = []
         while not self._confirmed(line):
             name = self.root(line.result) if _halfway(result) else self._most_telling(line)
             if name is None:
+                # digits that confirm nothing are digits for nothing
+                for name in gained:
+                    self.figures[name].places -= 1
+                gained.clear()
                 break
             self._gain(name)
-            changed.append(name)
+            gained.append(name)
         result.settled = True
-        return changed
+        return changed + gained
 
     def _most_telling(self, line: Sum) -> Id | None:
         """Return the input whose rounding moves the line most; None where all are printed in full."""

@@ -8,7 +8,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
-from calcreport.calculate.model import Comparison, Member, Worked, WorkedCheck, WorkedProject
+from calcreport.calculate.model import Comparison, Member, WorkedCheck, WorkedProject
 from calcreport.core.units import ONE
 from calcreport.report.candidates import headlines
 from calcreport.report.digits import number_text
@@ -17,10 +17,10 @@ from calcreport.report.forms import CalculationForms, is_size, side_unit
 from calcreport.report.fronts import RegisterEntry, counted
 from calcreport.report.governing import governing, rank, worst_checks
 from calcreport.report.items import Script
+from calcreport.report.limit_states import limit_states
 from calcreport.report.model import (
     Block,
     Column,
-    Formula,
     Heading,
     Paragraph,
     Reference,
@@ -29,7 +29,6 @@ from calcreport.report.model import (
     TableRow,
     Words,
 )
-from calcreport.report.notation import Notation
 
 CLOSING = "Computed demand does not exceed computed capacity for the checks listed"
 
@@ -120,7 +119,7 @@ class SummarySheets:
         blocks: list[Block] = [Paragraph(counts, "plain")]
         blocks += self.attention(summary, entries)
         blocks += self.members()
-        blocks += self.grid()
+        blocks += limit_states(self.project, self.ratio)
         blocks.append(Paragraph((_closing(summary),), "plain"))
         return tuple(blocks)
 
@@ -203,55 +202,6 @@ class SummarySheets:
                 Paragraph((f"Without checks of their own, giving values to others: {', '.join(silent)}.",), "note")
             )
         return blocks
-
-    def grid(self) -> list[Block]:
-        """Return every check of every calculation by template, and who covers what a template leaves out."""
-        blocks: list[Block] = []
-        groups: dict[str, list[Member]] = {}
-        for member in self.project.members:
-            if member.checks:
-                groups.setdefault(member.worked.calculation.template.title, []).append(member)
-        for title, members in groups.items():
-            names = list(dict.fromkeys(check.line.name for member in members for check in worst_checks(member)))
-            notes: dict[Formula, str] = {}
-            rows = [self.grid_row(member, names, notes) for member in members]
-            blocks.append(Heading(title, 2))
-            blocks.append(Table((Column(("Mark",)), *(Column((name,), "right", 1.0) for name in names)), tuple(rows)))
-            for condition, note in notes.items():
-                blocks.append(Paragraph((f"{note} not applicable: ", condition, " does not hold."), "note"))
-        said = [d for d in self.project.project.dispositions if d.limit_state]
-        if said:
-            rows = [TableRow(((d.limit_state,), (d.says,))) for d in said]
-            blocks.append(Heading("Limit states covered elsewhere, by the engineer's word", 2))
-            blocks.append(Table((Column(("Limit state",)), Column(("Covered by",), stretch=1.0)), tuple(rows)))
-        return blocks
-
-    def grid_row(self, member: Member, names: list[str], notes: dict[Formula, str]) -> TableRow:
-        mark, chief = member.worked.calculation.mark, governing(member)
-        cells: list[Words] = [(member.mark,)]
-        by_name = {check.line.name: check for check in worst_checks(member)}
-        for name in names:
-            check = by_name.get(name)
-            if check is None:
-                cells.append(("–",))
-                continue
-            text = self.ratio(check, mark) or check.verdict
-            if check.verdict == "NG":
-                cells.append((Strong(f"{text} NG"),))
-            elif check is chief:
-                cells.append((Strong(text),))
-            else:
-                cells.append(
-                    (text if check.verdict != "not applicable" else self.not_applicable(member.worked, check, notes),)
-                )
-        return TableRow(tuple(cells), "loud" if member.verdict == "NG" else "")
-
-    def not_applicable(self, worked: Worked, check: WorkedCheck, notes: dict[Formula, str]) -> str:
-        """Return the mark of the note that says why a check is not applicable."""
-        if check.excluded_by is None:
-            return "n.a."
-        condition = Notation(worked.plan.slots).condition(check.excluded_by)
-        return notes.setdefault(condition, f"n{len(notes) + 1}")
 
     # -------------------------------------------------------- pieces
 

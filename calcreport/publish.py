@@ -6,7 +6,7 @@ from dataclasses import dataclass, field, replace
 from functools import partial
 from typing import Any, Literal, TypeAlias
 
-from calcreport.calculate.margins import least_margins
+from calcreport.calculate.margins import is_searched, least_margins
 from calcreport.calculate.model import WorkedProject
 from calcreport.calculate.release import hold_release
 from calcreport.core.kept import FRESH, Fresh
@@ -141,7 +141,8 @@ def build(
     pages = lay_out(told.composed.report, fonts, kept)
     if sampled != "no":
         margins = least_margins(told.worked, lambda done, total: progress("finding margins", done, total))
-        sample = Sampled(told.worked, told.composed, margins, sheets_of(pages), linked=sampled == "added")
+        unmoved = tuple(w.calculation.mark for w in told.worked.calculations if w.checks and not is_searched(w))
+        sample = Sampled(told.worked, told.composed, margins, unmoved, sheets_of(pages), linked=sampled == "added")
         part = _fitted(sample, fonts)
         whole = sampler_alone(sample, part) if sampled == "alone" else with_sampler(told.composed.report, part)
         pages = lay_out(whole, fonts)

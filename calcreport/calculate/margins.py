@@ -18,19 +18,20 @@ from calcreport.calculate.model import Key, Margin, Member, PlannedGiven, Values
 WIDEST = 4.0
 #: steps in which each way is searched, and halvings of the step in which a verdict flips
 STEPS, HALVINGS = 24, 30
+#: values of a calculation worked anew for its margins at most, where nobody asked for them by its mark
+MOST_TRIED = 1_000_000
 
 
-def find_margins(worked: Worked) -> tuple[Margin, ...]:
-    """Return the margins of every judged check against every given number that is not zero, those in rows too.
+def find_margins(worked: Worked, *, rows: bool = True) -> tuple[Margin, ...]:
+    """Return the margins of every judged check against every given number that is not zero; `rows`: those in rows too.
 
     Like members have checks of their own, named with their marks; what one of them is given moves its checks alone.
     """
     program = Program(worked.plan)
     base = _verdicts(worked)
     found: list[Margin] = []
-    for (slot, key), _ in sorted(worked.values.given.items()):
-        value = worked.values.get(slot, key)
-        if not isinstance(value, float) or value == 0.0 or worked.plan.slots[slot].symbol.kind == "count":
+    for slot, key, value in _movable(worked):
+        if key and not rows:
             continue
         own = _moved_by(worked, slot, key, base)
         one, place = _own_work(worked, slot, key)
@@ -38,6 +39,25 @@ def find_margins(worked: Worked) -> tuple[Margin, ...]:
         for check in own:
             found.append(Margin(check, slot, value, ways[0].get(check), ways[1].get(check), key))
     return tuple(found)
+
+
+def _movable(worked: Worked) -> list[tuple[int, Key, float]]:
+    """Return every given number that may move."""
+    found = []
+    for slot, key in sorted(worked.values.given):
+        value = worked.values.get(slot, key)
+        if isinstance(value, float) and value != 0.0 and worked.plan.slots[slot].symbol.kind != "count":
+            found.append((slot, key, value))
+    return found
+
+
+def is_searched(worked: Worked) -> bool:
+    """Tell whether the margins of a calculation's own values are among the least of a project.
+
+    Those of like members are not, and where there is too much to work for every trial they are not either.
+    """
+    alone = sum(1 for _, key, _ in _movable(worked) if not key)
+    return not worked.calculation.members and alone * len(worked.values.worked) * 2 * STEPS <= MOST_TRIED
 
 
 def _moved_by(worked: Worked, slot: int, key: Key, base: dict[str, bool]) -> dict[str, bool]:
@@ -96,8 +116,7 @@ def least_margins(project: WorkedProject, progress: Callable[[int, int], None]) 
         narrowest: dict[str, Margin] = {}
         program = Program(worked.plan)
         # a value in rows, or of one of like members, has no place of its own in a table of margins
-        alone = find_margins(worked) if worked.checks and not worked.calculation.members else ()
-        for margin in (margin for margin in alone if not margin.key):
+        for margin in find_margins(worked, rows=False) if worked.checks and is_searched(worked) else ():
             before = narrowest.get(margin.check)
             judged = _judged(margin, worked, program) if before is None or margin.share < before.share else None
             if judged is not None and (before is None or judged.share < before.share):

@@ -72,6 +72,8 @@ class Sampled:
     composed: Composed
     #: the narrowest margin of each check with its mark, the narrowest first
     margins: tuple[tuple[str, Margin], ...]
+    #: calculations whose values were not moved
+    unmoved: tuple[str, ...]
     #: sheet by the anchor of a line
     sheets: dict[str, str]
     #: lines and sheets are linked; not where the sheet stands alone in a file
@@ -208,7 +210,7 @@ class _Sampler:
         words = (
             f"{many} of the least margin among {counted(len(self.sampled.margins), 'check')} that one given value "
             "flips: the value is moved alone, everything else as given, until the verdict changes; of each check its "
-            "narrowest value."
+            f"narrowest value.{self.unmoved()}"
         )
         columns = (
             Column(("Where",)),
@@ -220,6 +222,11 @@ class _Sampler:
         )
         rows = tuple(self.margin(mark, margin) for mark, margin in taken)
         return [Heading("Least margin", 2), Paragraph((words,), "note"), Table(columns, rows)]
+
+    def unmoved(self) -> str:
+        """Return a sentence on the calculations in which no value was moved, or ''."""
+        marks = ", ".join(self.sampled.unmoved)
+        return f" Not moved, for their many lines or members: the values of {marks}." if marks else ""
 
     def margin(self, mark: str, margin: Margin) -> TableRow:
         """Return one margin; how far the value moves follows from the two numbers printed."""

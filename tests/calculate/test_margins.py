@@ -6,7 +6,8 @@ from pathlib import Path
 
 import pytest
 
-from calcreport.calculate.margins import find_margins, least_margins
+from calcreport.calculate import margins
+from calcreport.calculate.margins import find_margins, is_searched, least_margins
 from calcreport.calculate.model import WorkedProject
 from calcreport.commands.desk import Opened, open_project
 from calcreport.driver import work
@@ -107,3 +108,21 @@ def test_a_value_of_one_of_like_members_moves_its_own_checks(tmp_path: Path) -> 
     assert found["S1 area", "b", ()].upper == pytest.approx(4 * 0.0254, rel=1e-7)
     assert found["S2 area", "b", ()].upper == pytest.approx(2.4 * 0.0254, rel=1e-7)
     assert ("S1 area", "a", (1, 0)) not in found
+
+
+def test_values_in_rows_are_moved_only_where_asked_for(tmp_path: Path) -> None:
+    project = worked_project(tmp_path, ROWS, "{b: 4 in, bar: [{a: 1 in}, {a: 2 in}]}")
+    (worked,) = project.calculations
+    assert any(margin.key for margin in find_margins(worked))
+    assert not any(margin.key for margin in find_margins(worked, rows=False))
+
+
+def test_a_calculation_of_too_many_values_is_left_out_and_like_members_are(
+    tmp_path: Path, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    project = worked_project(tmp_path, STOPPING, "{b: 4 in, k: 1}")
+    (worked,) = project.calculations
+    assert is_searched(worked)
+    # two numbers may move, each on two ways of 24 steps, and the calculation works so many values
+    monkeypatch.setattr(margins, "MOST_TRIED", 2 * 2 * 24 * len(worked.values.worked) - 1)
+    assert not is_searched(worked) and least_margins(project, lambda done, total: None) == ()

@@ -19,7 +19,7 @@ WIDEST = 4.0
 #: steps in which each way is searched, and halvings of the step in which a verdict flips
 STEPS, HALVINGS = 24, 30
 #: values of a calculation worked anew for its margins at most, where nobody asked for them by its mark
-MOST_TRIED = 1_000_000
+MOST_TRIED = 250_000
 
 
 def find_margins(worked: Worked, *, rows: bool = True) -> tuple[Margin, ...]:

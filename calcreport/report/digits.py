@@ -215,17 +215,15 @@ class Digits:
                     result.settled = True
                     return changed
         gained: list[Id] = []
+        result.settled = True
         while not self._confirmed(line):
             name = self.root(line.result) if _halfway(result) else self._most_telling(line)
             if name is None:
-                # digits that confirm nothing are digits for nothing
-                for name in gained:
+                for name in gained:  # digits that confirm nothing are digits for nothing
                     self.figures[name].places -= 1
-                gained.clear()
-                break
+                return changed
             self._gain(name)
             gained.append(name)
-        result.settled = True
         return changed + gained
 
     def _most_telling(self, line: Sum) -> Id | None:

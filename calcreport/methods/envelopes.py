@@ -9,7 +9,7 @@ from __future__ import annotations
 from typing import Any
 
 from calcreport.core.late import load
-from calcreport.methods.members import Member, Solved, curvature_terms, member_handed, parts_of, solve
+from calcreport.methods.members import Member, Solved, curvature_terms, member_handed, parts_of, solve, summed
 from calcreport.methods.results import Handed, Key, NoResult, Proof, Result, Spend, rows_of
 from calcreport.methods.stations import Station, drop_at, forces_at, stations_of
 
@@ -80,16 +80,16 @@ class _Found:
             v, m = forces.shear[self.of_case[case]], forces.moment[self.of_case[case]]
             v_hi, m_with_v_hi, v_lo, m_with_v_lo = self.ends(case, v, m)
             m_hi, v_with_m_hi, m_lo, v_with_m_lo = self.ends(case, m, v)
-            self.put((span, row, case), V=v.sum(), M=m.sum(), V_hi=v_hi, V_lo=v_lo, M_hi=m_hi, M_lo=m_lo,
+            self.put((span, row, case), V=summed(v), M=summed(m), V_hi=v_hi, V_lo=v_lo, M_hi=m_hi, M_lo=m_lo,
                      M_with_V_hi=m_with_v_hi, M_with_V_lo=m_with_v_lo, V_with_M_hi=v_with_m_hi,
-                     V_with_M_lo=v_with_m_lo, drop=drops[self.of_case[case]].sum())  # fmt: skip
+                     V_with_M_lo=v_with_m_lo, drop=summed(drops[self.of_case[case]]))  # fmt: skip
 
     def ends(self, case: int, leading: Any, other: Any) -> tuple[float, float, float, float]:
         """Return greatest and least of the leading force over all arrangements, each with the other force then."""
         if not self.patterned[case]:
-            return leading.sum(), other.sum(), leading.sum(), other.sum()
+            return (summed(leading), summed(other)) * 2
         up, down = leading > 0, leading < 0
-        return leading[up].sum(), other[up].sum(), leading[down].sum(), other[down].sum()
+        return leading[up].sum(), summed(other[up]), leading[down].sum(), summed(other[down])
 
     def spans(self, span: int, names: tuple[str, ...]) -> None:
         """Repeat by span what its faces and midspan come to, as deflections are taken from."""
@@ -112,7 +112,7 @@ class _Found:
                 r, t = solved.reactions[self.of_case[case], node], solved.taken[self.of_case[case], node]
                 r_hi, _, r_lo, _ = self.ends(case, r, t)
                 t_hi, _, t_lo, _ = self.ends(case, t, r)
-                self.put((node, case), R=r.sum(), R_hi=r_hi, R_lo=r_lo, T=t.sum(), T_hi=t_hi, T_lo=t_lo)
+                self.put((node, case), R=summed(r), R_hi=r_hi, R_lo=r_lo, T=summed(t), T_hi=t_hi, T_lo=t_lo)
 
 
 def _proofs(member: Member, solved: Solved) -> tuple[Proof, Proof, Proof]:

@@ -17,6 +17,8 @@ from calcreport.methods.spans import Loads, Spread
 
 #: spans at most
 MOST_SPANS = 50
+#: what is left of terms that cancel is rounding below this share of their sizes
+NOISE = 1e-13
 
 
 @dataclass(frozen=True, slots=True)
@@ -153,7 +155,16 @@ def solve(member: Member) -> Solved:
     slopes = numpy.zeros((count + 1, size))
     if free and size:
         slopes[free] = numpy.linalg.solve(matrix[numpy.ix_(free, free)], forces[free])
+        slopes[abs(slopes) <= NOISE * abs(slopes).max(axis=0)] = 0.0
     return _ends_of(member, slopes.T, fixed)
+
+
+def summed(terms: Any) -> Any:
+    """Return sums of terms, the first axis; of terms that cancel to the last bits nothing is left."""
+    numpy = load("numpy")
+    terms = numpy.asarray(terms)
+    found = terms.sum(axis=0)
+    return numpy.where(abs(found) > NOISE * abs(terms).sum(axis=0), found, 0.0)
 
 
 def _ends(loads: Loads, length: float, side: str) -> tuple[float, float]:
@@ -170,22 +181,23 @@ def _ends_of(member: Member, slopes: Any, fixed: Any) -> Solved:
     numpy = load("numpy")
     count, size = len(member.lengths), len(member.loadings)
     left, right, shear = (numpy.zeros((size, count)) for _ in range(3))
-    reactions, taken = numpy.zeros((size, count + 1)), numpy.zeros((size, count + 1))
+    # by what acts on a node: the span left of it, and that right of it
+    pushed, turning = numpy.zeros((3, size, count + 1)), numpy.zeros((2, size, count + 1))
     for span, length in enumerate(member.lengths):
         stiff = 0.0 if member.hangs(span) else 2 * member.stiffness[span] / length
-        left[:, span] = -(fixed[:, span, 0] + stiff * (2 * slopes[:, span] + slopes[:, span + 1]))
-        right[:, span] = fixed[:, span, 1] + stiff * (slopes[:, span] + 2 * slopes[:, span + 1])
-        for number_, loading in enumerate(member.loadings):
-            loads = loading.on.get(span, Loads())
-            whole = loads.effect(length, 0)
-            turned = right[number_, span] - left[number_, span] + loads.effect(length, 1)
-            side = member.hangs(span)
-            shear[number_, span] = 0.0 if side == "left" else whole if side == "right" else turned / length
-            reactions[number_, span + 1] += whole
-        reactions[:, span] += shear[:, span]
-        reactions[:, span + 1] -= shear[:, span]
-        taken[:, span] += left[:, span]
-        taken[:, span + 1] -= right[:, span]
+        start, end = stiff * slopes[:, span], stiff * slopes[:, span + 1]
+        left[:, span] = -summed([fixed[:, span, 0], 2 * start, end])
+        right[:, span] = summed([fixed[:, span, 1], start, 2 * end])
+        side, own = member.hangs(span), [loading.on.get(span, Loads()) for loading in member.loadings]
+        whole = [loads.effect(length, 0) for loads in own]
+        turned = summed([right[:, span], -left[:, span], [loads.effect(length, 1) for loads in own]])
+        shear[:, span] = 0.0 if side == "left" else whole if side == "right" else turned / length
+        pushed[0, :, span + 1] = whole
+        pushed[1, :, span] = shear[:, span]
+        pushed[2, :, span + 1] = -shear[:, span]
+        turning[0, :, span] = left[:, span]
+        turning[1, :, span + 1] = -right[:, span]
+    reactions, taken = summed(pushed), summed(turning)
     for node, word in enumerate(member.hold):
         if word in ("free", "pinned"):
             taken[:, node] = 0.0

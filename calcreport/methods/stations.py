@@ -12,12 +12,10 @@ from itertools import pairwise
 from typing import Any
 
 from calcreport.core.late import load
-from calcreport.methods.members import Member, Solved, curvature_terms
+from calcreport.methods.members import Member, Solved, curvature_terms, summed
 from calcreport.methods.results import Handed, NoResult, rows_of
 from calcreport.methods.spans import Loads, turning_places
 
-#: what is left of terms that cancel is rounding below this share of their sizes
-NOISE = 1e-13
 #: stations closer than this share of a span are one
 CLOSE = 1e-9
 
@@ -49,12 +47,7 @@ def forces_at(member: Member, solved: Solved, span: int, station: Station) -> Fo
             own_shear[which] = loading.on[span].effect(x, 0, past=station.past)
             own_moment[which] = loading.on[span].effect(x, 1)
     left, shear = solved.left[:, span], solved.shear[:, span]
-    return Forces(_clean(numpy, shear, -own_shear), _clean(numpy, left, shear * x, -own_moment))
-
-
-def _clean(numpy: Any, *terms: Any) -> Any:
-    found, sizes = sum(terms), sum(map(abs, terms))
-    return numpy.where(abs(found) > NOISE * sizes, found, 0.0)
+    return Forces(summed([shear, -own_shear]), summed([left, shear * x, -own_moment]))
 
 
 def stations_of(

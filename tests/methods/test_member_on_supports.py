@@ -236,6 +236,18 @@ def test_four_equal_spans_as_in_every_handbook() -> None:
     assert at(result, "x", 0, "greatest") == pytest.approx(11 / 28)
 
 
+def test_what_symmetry_makes_nothing_is_nothing() -> None:
+    # two like spans under like loads turn nothing at their middle support, whose columns then take no moment (statics)
+    for placing in ("everywhere", "patterned"):
+        spring = [F(0), F(1461, 10), F(0)]
+        beam = Beam([F(27)] * 2, ["pinned", "spring", "pinned"], [[F(669, 1000)]] * 2, springs=spring)
+        beam.placing = [placing]
+        assert work(beam).by_row["T"][1, 0] == 0.0
+    ends = [F(1461, 10)] * 4
+    beam = Beam([F(27), F(31), F(27)], ["spring"] * 4, [[F(71, 100)]] * 3, springs=ends)
+    assert at(work(beam), "V", 1, "middle") == 0.0
+
+
 #: load, the size of the fixed-end moment near (left) and far (right): fractions of w l^2 or P l
 TABLE = [
     ({"w": F(1)}, F(1, 12), F(1, 12)),

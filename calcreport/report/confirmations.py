@@ -52,6 +52,7 @@ from calcreport.report.forms import (
 )
 from calcreport.report.notation import has_values
 from calcreport.report.spaced import is_printed
+from calcreport.report.taken import rows_taken
 
 
 def find_forms(project: WorkedProject, kept: Fresh = FRESH) -> dict[str, CalculationForms]:
@@ -290,7 +291,7 @@ class _Lines:
             # what is held against one another stands with as many digits
             for _, _, other in inputs:
                 self.digits.figure(other).dropped = True
-        copied = self.copied(node, inputs, slot, key)
+        copied = self.copied(node, inputs, slot, key, opened)
         if copied is not None:
             self.digits.join(name, copied)
             self.forms.copied.add(name)
@@ -306,6 +307,9 @@ class _Lines:
             self.digits.add(middle, make_figure(self.values.number(slot, key) / coherent.size, coherent.size))
             self.digits.need(Sum(confirm, ids, middle))
             self.digits.need(Sum(lambda printed: printed(middle), (middle,), name))
+            if opened:
+                # a row of a table shows no result between, and is worked without
+                self.digits.need(Sum(confirm, ids, name))
         else:
             self.digits.need(Sum(confirm, ids, name))
 
@@ -360,7 +364,9 @@ class _Lines:
         for child in children(node):
             self.collect(child, opened, found)
 
-    def copied(self, node: Expression, inputs: list[tuple[int, Key, Id]], slot: int, key: Key) -> Id | None:
+    def copied(
+        self, node: Expression, inputs: list[tuple[int, Key, Id]], slot: int, key: Key, opened: Opened
+    ) -> Id | None:
         """Return the value a choosing formula copies: a name, or the row or argument that a max, min or pick takes."""
         chooses = isinstance(node, Name) or (
             isinstance(node, Over) and node.function in ("max", "min", "pick") and isinstance(node.body, Name)
@@ -369,12 +375,24 @@ class _Lines:
             chooses = all(isinstance(argument, Name) for argument in node.arguments)
         if not chooses:
             return None
+        if isinstance(node, Over):
+            inputs = self.row_taken(node, opened) or inputs
         value, unit = self.values.number(slot, key), self.slots[slot].symbol.unit or ONE
         for other, other_key, name in inputs:
             other_unit = self.slots[other].symbol.unit or ONE
             if self.values.number(other, other_key) == value and other_unit.scale == unit.scale:
                 return name
         return None
+
+    def row_taken(self, node: Over, opened: Opened) -> list[tuple[int, Key, Id]]:
+        """Return the number of the row that an extreme takes: other rows may come to the same."""
+        for index, row in opened:
+            self.values.open[index] = row
+        rows = rows_taken(node, self.values, self.forms.worked.compiled, self.forms.worked.tested)
+        found: dict[Id, tuple[int, Key, Id]] = {}
+        for row in rows[:1]:
+            self.collect(node.body, {**dict(opened), node.bound: row}, found)
+        return list(found.values())
 
     def order_chosen(self, node: Expression, inputs: list[tuple[int, Key, Id]], chosen: Id) -> None:
         """Let the value that a max or min takes be the greatest or least in print too."""

@@ -267,14 +267,20 @@ class Notation:
             case Logic("and", left, right) if found := self.chain(left, right):
                 return chain_row(found, lambda _, __, node: items_of(self.formula(node)))
             case Logic(op, left, right):
-                return Row((self.condition(left), Letters(f" {op} "), self.condition(right)))
+                return Row((self.part(op, left), Letters(f" {op} "), self.part(op, right)))
             case Not(body):
-                return Row((Letters("not "), self.condition(body)))
+                return Row((Letters("not "), self.part("not", body)))
             case Is(name, word, _, bound):
                 shown = Letters(name.name) if bound >= 0 else self.name(name).formula
                 return Row((shown, Letters(f" is {word}")))
             case IsGiven(name):
                 return Row((self.name(name).formula, Letters(" is given")))
+
+    def part(self, op: str, node: Condition) -> Formula:
+        """Print a condition within another; in parentheses where it would be read otherwise without them."""
+        shown = self.condition(node)
+        looser = isinstance(node, Logic) and (op == "not" or (op == "and" and node.op == "or"))
+        return Fence("(", shown, ")") if looser else shown
 
 
 def chain_row(chain: Chain, shown: Callable[[Compare, Side, Expression], tuple[Formula, ...]]) -> Formula:

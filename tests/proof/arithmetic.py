@@ -6,6 +6,7 @@ with dimensions. `Unknown` where a symbol is not on the sheet, `Mixed` where dim
 
 from __future__ import annotations
 
+import itertools
 import math
 from collections.abc import Sequence
 from dataclasses import dataclass
@@ -13,8 +14,8 @@ from decimal import Context, Decimal, localcontext
 from fractions import Fraction as F
 from typing import Protocol
 
-from .expressions import Node, Number, Over, Symbol, Unread
-from .letters import Token
+from .expressions import Node, Number, Over, Symbol, Unread, parse, split
+from .letters import Token, plain
 from .units import Dimension, Printed, unit
 
 NONE: Dimension = (F(0), F(0))
@@ -23,6 +24,14 @@ PRECISE = Context(prec=50)
 
 class Unknown(Exception):
     """The value of a symbol is not on the sheet."""
+
+
+class NoRows(Unknown):
+    """An extreme over rows of which there are none."""
+
+
+class Drawn(Unknown):
+    """The value stands in a figure alone: at a station that a method makes."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -37,6 +46,8 @@ class Sheet(Protocol):
     """Where symbols get their values."""
 
     def value(self, name: str) -> Value: ...
+
+    def root(self, name: str) -> Value: ...
 
     def rows(self, name: str, where: tuple[Token, ...]) -> Sequence[Sheet]: ...
 
@@ -127,13 +138,47 @@ def _valued(node: Node, sheet: Sheet) -> Value:
         return _over(node, sheet)
     if node.name == "sqrt" and isinstance(node.inputs[0], Symbol):
         try:
-            return sheet.value("√" + node.inputs[0].name)
+            return sheet.root(node.inputs[0].name)
         except Unknown:
             pass
-    return _combine(node.name, [_valued(child, sheet) for child in node.inputs])
+    return _combine(node.name, [_inner(child, sheet) for child in node.inputs])
+
+
+def _inner(node: Node, sheet: Sheet) -> Value:
+    """Work a part of an expression; an extreme over no rows is substituted as 0."""
+    try:
+        return _valued(node, sheet)
+    except NoRows:
+        if not isinstance(node, Over):
+            raise
+        return Value(Decimal(0))
+
+
+def _read(node: Over, sheet: Sheet) -> Value:
+    """Read a value between two rows on a straight line: `read` over `station: x = x_c`."""
+    along, marks = split(node.where, "relation")
+    if marks != ["="]:
+        raise Unread(f"read over {plain(node.where)}")
+    place = _valued(parse(along[1]), sheet)
+    rows = [(_valued(parse(along[0]), row), row) for row in sheet.rows(node.rows, ())]
+    rows.sort(key=lambda pair: pair[0].number)
+    for (x1, one), (x2, other) in itertools.pairwise(rows):
+        if x1.number <= place.number <= x2.number:
+            first = _valued(node.body, one)
+            if x1.number == place.number:
+                return first
+            second = _valued(node.body, other)
+            if x2.number == place.number:
+                return second
+            share = (place.number - x1.number) / (x2.number - x1.number)
+            rise = _combine("*", [_combine("-", [second, first]), Value(share)])
+            return _combine("+", [first, rise])
+    raise Unknown(f"{plain(node.where)} lies outside the rows of {node.rows}")
 
 
 def _over(node: Over, sheet: Sheet) -> Value:
+    if node.name == "read":
+        return _read(node, sheet)
     found = [_valued(node.body, row) for row in sheet.rows(node.rows, node.where)]
     if node.name == "∑":
         if not found:
@@ -143,8 +188,8 @@ def _over(node: Over, sheet: Sheet) -> Value:
             total = _combine("+", [total, other])
         return total
     if not found:
-        raise Unknown(f"{node.name} over no rows of {node.rows}")
-    if node.name == "pick":
+        raise NoRows(f"{node.name} over no rows of {node.rows}")
+    if node.name == "pick" or len(found) == 1:
         return found[0]
     return _combine(node.name, found)
 

@@ -7,7 +7,7 @@ from __future__ import annotations
 
 import re
 from collections import defaultdict
-from collections.abc import Sequence
+from collections.abc import Iterator, Sequence
 from dataclasses import dataclass, field, replace
 from typing import NamedTuple
 
@@ -20,7 +20,9 @@ from .tables import Table
 from .units import Printed, is_number
 
 #: words of a line of values given as none, or of answers that are no
-LEFT_OUT = re.compile(r"none, counted as (\S+)|no")
+LEFT_OUT = re.compile(r"none(?:, counted as (\S+))?|no")
+#: stations that a method makes on a span, by name
+STATIONS = {"start", "left", "left_d", "middle", "greatest", "least", "right_d", "right", "end"}
 #: (set, row) pairs that stand open
 Rows = tuple[tuple[str, str], ...]
 
@@ -62,8 +64,8 @@ class TableHere:
 
     def rows_of(self, row: list[str], column: int) -> frozenset[tuple[str, str]]:
         """Return the rows that a cell belongs to."""
-        first, _, second = self.table.set_name.partition(" / ")
-        found = {pair for pair in self.open if pair[0] not in (first, second)} | {(first, row[0])}
+        second = self.table.set_name.partition(" / ")[2]
+        found = {pair for pair in self.open if pair[0] not in (*self.table.sets, second)} | set(self.table.named(row))
         if self.inner:
             found.add((self.inner, row[1]))
         return frozenset(found | {(second, self.table.columns[column].name)} if second else found)
@@ -93,6 +95,12 @@ class Calculation:
     #: printed forms of values, and of words
     forms: dict[Key, list[tuple[Printed, Place]]] = field(default_factory=lambda: defaultdict(list))
     words: dict[str, list[tuple[str, Place]]] = field(default_factory=lambda: defaultdict(list))
+    #: words in the columns of tables, by symbol: rows and word
+    row_words: dict[str, list[tuple[frozenset[tuple[str, str]], str]]] = field(
+        default_factory=lambda: defaultdict(list)
+    )
+    #: sets of which one row alone tells a symbol, in full
+    told_once: dict[str, set[str]] = field(default_factory=lambda: defaultdict(set))
     #: keys by the name of the symbol
     keys: dict[str, list[Key]] = field(default_factory=lambda: defaultdict(list))
     #: every number with its unit that stands on a sheet as a value
@@ -106,8 +114,10 @@ class Calculation:
         """Return the rows of every set, in order of print."""
         found: dict[str, list[str]] = defaultdict(list)
         for here in self.tables:
-            first, _, second = here.table.set_name.partition(" / ")
-            found[first] += [row[0] for row in here.table.rows if row[0] not in found[first]]
+            second = here.table.set_name.partition(" / ")[2]
+            for row in here.table.rows:
+                for name, one in here.table.named(row):
+                    found[name] += [one] if one not in found[name] else []
             if here.inner:
                 found[here.inner] = list(dict.fromkeys([*found[here.inner], *(row[1] for row in here.table.rows)]))
             if second:
@@ -121,10 +131,20 @@ class Calculation:
         found = {item.set_name for item in self.inline if item.name == name} | self.worded.get(name, set())
         for here in self.tables:
             if here.pairs is not None and here.pairs[0] == name:
-                found.update(here.table.set_name.split(" / "))
+                found.update((*here.table.sets, here.table.set_name.partition(" / ")[2]))
             elif here.table.column(name) is not None:
-                found |= {here.table.set_name, *(set_name for set_name, _ in here.open)}
+                found |= {*here.table.sets, *(set_name for set_name, _ in here.open)}
         return found
+
+    def empty_sets(self) -> bool:
+        """Tell whether a set of rows is given as none; its name is printed in words."""
+        return any(plain(s.tokens) == "none" for line in self.lines for s in line.statements if s.kind == "formula")
+
+    def drawn(self, name: str) -> bool:
+        """Tell whether a symbol is of a station of a member on supports, and such values are drawn, not printed."""
+        base, _, row = name.partition(",") if "," in name else name.partition("_")
+        made = any("Stations are at" in " ".join(line.words) for line in self.lines)
+        return made and row in STATIONS and base not in self.keys
 
     def note(self, key: Key, printed: Printed, place: Place) -> None:
         """Register one printed form."""
@@ -169,12 +189,13 @@ def _carry(line: NumberedLine, carried: NumberedLine) -> None:
 
 def _open_rows(calculation: Calculation) -> None:
     """Follow the headings down the sheets: which row of which set stands open at each statement and table."""
+    over = {name for line in calculation.lines for s in line.statements for name in _gone_over(s.tokens)}
     for line in calculation.lines:
         calculation.tables += [TableHere(table, line, (), _pairs(line, table)) for table in line.tables]
         for table in line.tables:
             _fill_down(table)
         for statement in line.statements:
-            calculation.inline += _inline_row(statement)
+            calculation.inline += _inline_row(statement, over)
     sets = calculation.set_rows()
     heading: Rows = ()
     governs = False
@@ -190,12 +211,41 @@ def _open_rows(calculation: Calculation) -> None:
             elif event.kind == "heading":
                 row = _row_named(sets, event.words)
                 if row or not governs:
-                    heading, governs = (row,) if row else (), bool(row) and event.words.endswith(_GOVERNS)
+                    heading = (row,) if row else ()
+                    governs = row is not None and (event.words.endswith(_GOVERNS) or _tabled(calculation, line, row))
             else:
                 row = _row_named(sets, event.words.partition(":")[0]) if ":" in event.words else None
                 event.context = (*heading, row) if row else heading
                 if row and event.kind == "formula":
                     calculation.worded[symbol_of(split(event.tokens, "relation")[0][0]) or ""].add(row[0])
+
+
+def _tabled(calculation: Calculation, line: NumberedLine, row: tuple[str, str]) -> bool:
+    """Tell whether a table of all rows follows a row told in full: no other row of its set is told before it."""
+    at = calculation.lines.index(line)
+
+    def first(lines: Sequence[NumberedLine]) -> str:
+        for other in lines:
+            if any(row[0] in table.sets for table in other.tables):
+                return "table"
+            if any(s.kind == "heading" and _other_row(s.words, row) for s in other.statements):
+                return "row"
+        return ""
+
+    return first(calculation.lines[at + 1 :]) == "table" and first(calculation.lines[at::-1]) != "row"
+
+
+def _other_row(words: str, row: tuple[str, str]) -> bool:
+    return words.startswith(row[0] + " ") and words.removeprefix(row[0] + " ").removesuffix(_GOVERNS) != row[1]
+
+
+def _gone_over(tokens: Sequence[Token]) -> Iterator[str]:
+    """Yield the sets that sums and extremes in a row of tokens go over."""
+    for token in tokens:
+        if token.kind == "over" and token.parts[0]:
+            yield token.parts[0][0].text
+        for part in token.parts:
+            yield from _gone_over(part)
 
 
 def _pairs(line: NumberedLine, table: Table) -> tuple[str, str] | None:
@@ -208,11 +258,14 @@ def _pairs(line: NumberedLine, table: Table) -> tuple[str, str] | None:
     return tokens[0].text, "".join(token.text for token in tokens[comma + 1 :])
 
 
-def _inline_row(statement: Statement) -> list[InlineRow]:
-    """Read a row on a line, its set and name as words: `layer first   2-#7, A_s,i = 1.20 in.², n = 2`."""
+def _inline_row(statement: Statement, over: set[str]) -> list[InlineRow]:
+    """Read a row on a line, its set and name as words: `layer first   2-#7, A_s,i = 1.20 in.², n = 2`.
+
+    A row of one value is known by its set, which a sum or an extreme of the calculation goes over.
+    """
     parts, _ = split(statement.tokens, "comma")
     set_name, _, row = statement.words.partition(" ")
-    if statement.kind != "formula" or len(parts) < 2 or not row:
+    if statement.kind != "formula" or (len(parts) < 2 and set_name not in over) or not row:
         return []
     found = []
     for sides, marks in (split(part, "relation") for part in parts):
@@ -248,7 +301,8 @@ def _register(calculation: Calculation) -> None:
                 for item in rows:
                     _note(calculation, item.name, ((item.set_name, item.row),), item.tokens, place)
             elif statement.kind == "formula":
-                for name, tokens in assignments(statement):
+                # an arm is for the rows of a table, each of which goes by its own
+                for name, tokens in () if is_arm(statement) else assignments(statement):
                     _note(calculation, name, statement.context, tokens, place)
                 _left_out(calculation, statement, place)
             elif statement.kind in ("required", "condition", "arm"):
@@ -258,6 +312,11 @@ def _register(calculation: Calculation) -> None:
     for page in calculation.pages:
         for _, tokens in page.labels:
             _from_label(calculation, tokens, Place(page.name, 0, "figure"))
+
+
+def is_arm(statement: Statement) -> bool:
+    """Tell whether a formula is one of several, of which every row of a table takes one."""
+    return statement.because == "where" or statement.words == "otherwise"
 
 
 def _left_out(calculation: Calculation, statement: Statement, place: Place) -> None:
@@ -279,6 +338,7 @@ def _note(calculation: Calculation, name: str, context: Rows, tokens: Sequence[T
     if printed is not None:
         # every line told for one of like members is of that member
         sets = calculation.belongs(name) | {"member"}
+        calculation.told_once[name].update(set_name for set_name, _ in context if set_name not in sets)
         calculation.note(Key(name, frozenset(pair for pair in context if pair[0] in sets)), printed, place)
     elif tokens:
         calculation.words[name].append((plain(tokens), place))
@@ -301,6 +361,8 @@ def _from_table(calculation: Calculation, here: TableHere, place: Place) -> None
     for row in here.table.rows:
         for at, column in enumerate(here.table.columns[1:], start=1):
             if not is_number(row[at]):
+                if here.pairs is None and row[at]:
+                    calculation.row_words[column.name].append((here.rows_of(row, at), row[at]))
                 continue
             name, unit = here.pairs if here.pairs is not None else (column.name, column.unit)
             if here.pairs is not None or column.math:

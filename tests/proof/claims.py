@@ -5,21 +5,22 @@ In: a `Desk`. Out: findings on it. `examine` runs these and the claims of tables
 
 from __future__ import annotations
 
+import re
 from collections.abc import Sequence
 from decimal import Decimal, DivisionByZero, InvalidOperation, localcontext
 from fractions import Fraction
 
 from .account import Account, Desk
-from .arithmetic import NONE, PRECISE, Mixed, Unknown, bare, valued, with_unit
+from .arithmetic import NONE, PRECISE, Drawn, Mixed, NoRows, Unknown, bare, valued, with_unit
 from .calculations import Calculation
 from .conditions import chain, compare, in_unit, judge
 from .equations import printed_of, symbol_of
 from .expressions import Node, Number, Symbol, Unread, Work, as_printed, parse, split, symbols
 from .feet import agrees
-from .forms import callouts, digits_used, left_symbol, one_form, short, shown_elsewhere, substituted_forms
+from .forms import callouts, digits_used, juxtaposed, left_symbol, one_form, short, shown_elsewhere, substituted_forms
 from .letters import Token, plain
 from .rows import is_row_formula, other_rows, ratio_columns, row_formula, row_named
-from .scope import Scope
+from .scope import Scope, within
 from .sources import sources
 from .statements import NumberedLine, Statement
 from .units import Printed, rounds_to, unit
@@ -41,7 +42,7 @@ def examine(calculation: Calculation) -> Account:
         _line(desk, line)
     for here in calculation.tables:
         desk.line, desk.sheet = here.line.number, calculation.sheet(here.table.page)
-        other_rows(desk, here.table)
+        other_rows(desk, here)
         of_line = [other.table for other in calculation.tables if other.line.number == here.line.number]
         if of_line[0] is here.table:
             ratio_columns(desk, of_line)
@@ -70,12 +71,16 @@ def _line(desk: Desk, line: NumberedLine) -> None:
         if statement in arms or statement.kind in ("heading", "title"):
             continue
         try:
-            proved += _statement(desk, statement)
+            proved += _statement(desk, statement, line)
+        except Drawn:
+            desk.count("values of stations, drawn")
         except UNWORKED as error:
             desk.unread(f"{type(error).__name__} {error}: {statement}")
     for name in dict.fromkeys(left_symbol(s) for s in arms):
         try:
             proved += row_formula(desk, name, [s for s in arms if left_symbol(s) == name], line)
+        except Drawn:
+            desk.count("values of stations, drawn")
         except UNWORKED as error:
             desk.unread(f"{type(error).__name__} {error}: rows of {name}")
     after = len(account.findings), len(account.unread)
@@ -84,9 +89,9 @@ def _line(desk: Desk, line: NumberedLine) -> None:
         account.confirmed += after == before
 
 
-def _statement(desk: Desk, statement: Statement) -> int:
+def _statement(desk: Desk, statement: Statement, line: NumberedLine) -> int:
     """Work one statement; returns how much was proved."""
-    scope = Scope(desk.calculation, statement.context)
+    scope = within(Scope(desk.calculation, statement.context), line)
     if statement.unread:
         raise Unread(statement.unread)
     if any(item.statement is statement for item in desk.calculation.inline):
@@ -112,6 +117,10 @@ def _statement(desk: Desk, statement: Statement) -> int:
     try:
         if not judge(tokens, scope):
             desk.found("printed comparisons are true", plain(tokens))
+    except Drawn:
+        desk.count("values of stations, drawn")
+    except NoRows:
+        desk.count("extremes over no rows")
     except Unknown as error:
         desk.found("a condition names what the sheet shows", f"{error} stands nowhere: {plain(tokens)}")
     return 1
@@ -145,11 +154,13 @@ def _formula(desk: Desk, statement: Statement, scope: Scope) -> int:
         return 0
     first = next((i for i, node in enumerate(nodes) if not symbols(node)), None)
     if first is None:
+        # a formula for rows that no table prints: a later line follows it
+        valued(nodes[0], scope)
         raise Unread("no result")
     if any(symbols(node) for node in nodes[first:]):
         raise Unread("symbols after numbers")
     _chain(desk, nodes[first:], parts[1 + first :])
-    formula = nodes[first - 1] if first else _juxtaposed(desk, symbol_of(parts[0]) or "")
+    formula = nodes[first - 1] if first else juxtaposed(desk, symbol_of(parts[0]) or "")
     if formula is not None:
         _compare_formula(desk, formula, nodes[first:], scope)
         last = as_printed(nodes[-1])
@@ -160,8 +171,13 @@ def _formula(desk: Desk, statement: Statement, scope: Scope) -> int:
 
 def _is_value(desk: Desk, tokens: Sequence[Token]) -> bool:
     known = desk.calculation.keys
-    words = all(t.kind == "word" and t.text not in known and "_" not in t.text for t in tokens)
+    words = all(t.kind == "word" and t.text not in known and _word(t.text) for t in tokens)
     return words or printed_of(tokens) is not None
+
+
+def _word(text: str) -> bool:
+    """Tell a word, with a low line of its own, from a symbol with a subscript."""
+    return "_" not in text or re.fullmatch(r"[a-z]{3,}_[a-z]+", text) is not None
 
 
 def _closure(desk: Desk, tokens: Sequence[Token]) -> None:
@@ -202,15 +218,6 @@ def _spelled(tokens: Sequence[Token]) -> Decimal:
     return total
 
 
-def _juxtaposed(desk: Desk, name: str) -> Node | None:
-    """Return a symbol that reads as the product of two known ones, φM_n, as that product."""
-    known = desk.calculation.keys
-    for cut in range(1, len(name)):
-        if name[:cut] in known and name[cut:] in known:
-            return Work("*", (Symbol(name[:cut]), Symbol(name[cut:])))
-    return None
-
-
 def _chain(desk: Desk, nodes: Sequence[Node], parts: Sequence[Sequence[Token]]) -> None:
     """Each number of a chain of equals gives the next to its last printed digit."""
     for at, shown in enumerate(map(as_printed, nodes[1:])):
@@ -233,7 +240,8 @@ def _compare_formula(desk: Desk, formula: Node, numeric: Sequence[Node], scope: 
     substituted = as_printed(numeric[0]) is None or (len(numeric) > 1 and _plain_substitution(formula, numeric))
     if substituted:
         substituted_forms(desk, formula, numeric[0], scope)
-    shown = as_printed(numeric[1] if substituted else numeric[0])
+    result = numeric[1:2] if substituted else numeric[:1]
+    shown = as_printed(result[0]) if result else None
     if shown is None:
         raise Unread("no printed result")
     try:
@@ -242,6 +250,11 @@ def _compare_formula(desk: Desk, formula: Node, numeric: Sequence[Node], scope: 
         if not substituted:
             raise
         desk.count("empirical formulas, by substitution only")
+        return
+    except NoRows:
+        desk.count("extremes over no rows")
+        if shown.number:
+            desk.found("a formula gives its result", f"there are no rows, printed {shown}")
         return
     desk.count("formulas with symbols")
     if not substituted:
@@ -288,7 +301,11 @@ def _check(desk: Desk, statement: Statement, scope: Scope) -> int:
     if relations != ["="] or not statement.ratio:
         raise Unread(f"a check of another form: {statement}")
     formula, numeric = parse(parts[0]), parse(parts[1])
-    ratio, shown = bare(numeric), Printed(statement.ratio)
+    shown = Printed(statement.ratio)
+    if not shown.number and bare_demand(numeric) == 0:
+        desk.count("ratios")
+        return 1  # what asks for nothing is held by any capacity, by none too
+    ratio = bare(numeric)
     desk.count("ratios")
     if not rounds_to(ratio, shown):
         desk.found("a ratio is its quotient", f"{plain(parts[1])} is {short(ratio)}, printed {statement.ratio}")
@@ -300,6 +317,11 @@ def _check(desk: Desk, statement: Statement, scope: Scope) -> int:
             desk.found("a substitution is its formula", f"ratio {short(value.number)}, substitution {short(ratio)}")
     substituted_forms(desk, formula, numeric, scope)
     return 1
+
+
+def bare_demand(node: Node) -> Decimal | None:
+    """Return the number above a fraction bar; None where there is none."""
+    return bare(node.inputs[0]) if isinstance(node, Work) and node.name == "/" else None
 
 
 def _stated_check(desk: Desk, shown: Sequence[Token], failed: bool) -> int:

@@ -29,8 +29,10 @@ def judge(tokens: Sequence[Token], ground: Ground) -> bool:
 
 def _split(tokens: Sequence[Token], word: str) -> list[list[Token]]:
     parts: list[list[Token]] = [[]]
+    depth = 0
     for token in tokens:
-        if token.kind == "word" and token.text == word:
+        depth += (token.kind == "open") - (token.kind == "close")
+        if token.kind == "word" and token.text == word and not depth:
             parts.append([])
         else:
             parts[-1].append(token)
@@ -41,6 +43,8 @@ def _atom(tokens: list[Token], ground: Ground) -> bool:
     if tokens and tokens[0].text == "not":
         return not _atom(tokens[1:], ground)
     texts = [token.text for token in tokens]
+    if tokens and tokens[0].kind == "open" and tokens[-1].kind == "close" and {"or", "and"} & set(texts):
+        return judge(tokens[1:-1], ground)
     if "is" in texts:
         at = texts.index("is")
         rest = texts[at + 1 :]

@@ -12,6 +12,9 @@ from .letters import Token, plain
 from .statements import Statement
 from .units import Printed
 
+#: words that begin or join formulas and conditions
+_READ = {"min", "max", "exp", "ln", "sin", "cos", "tan", "atan", "round", "sqrt", "is", "and", "or", "not"}
+
 
 def symbol_of(tokens: Sequence[Token]) -> str | None:
     """Return the symbol that a row of tokens is, if it is one."""
@@ -22,10 +25,12 @@ def symbol_of(tokens: Sequence[Token]) -> str | None:
     words = [token.text for token in tokens if token.kind == "word"]
     if (
         len(words) > 1
-        and all(len(word) > 2 for word in words)
-        and all(t.kind == "word" or t.text == "-" for t in tokens)
+        and all(word.isalpha() for word in words)
+        and any(len(word) > 2 for word in words)
+        and not set(words) & _READ
+        and all((t.kind == "word" and not t.raised) or t.text == "-" for t in tokens)
     ):
-        return plain(tokens)  # a name in words: `one-third excess`
+        return plain(tokens)  # a name in words: `one-third excess`, `at d left`
     return None
 
 

@@ -10,15 +10,17 @@ from collections.abc import Sequence
 from decimal import Decimal
 
 from .account import Desk
+from .calculations import Key, Place
 from .equations import assignments, printed_of, symbol_of
-from .expressions import Node, Number, Over, Work, as_printed, numbers, split, symbols, walk
+from .expressions import Node, Number, Over, Symbol, Work, as_printed, numbers, split, symbols, walk
 from .letters import Token, plain
 from .scope import Scope
 from .statements import Statement
 from .units import Printed
 
 #: what a visible unit factor may be: inches in a foot, its square and cube, powers of ten
-FACTORS = frozenset({"12", "144", "1,728", "10", "100", "1,000", "1,000,000", "1,000,000,000", "0.001"})
+FACTORS = frozenset({"12", "144", "1,728", "10", "100", "1,000", "1,000,000", "1,000,000,000", "0.001",
+                     "1,728,000"})  # fmt: skip
 #: nominal area and diameter of deformed bars, ASTM A615/A615M Table 1 (from memory): in.² and in., mm² and mm
 BARS = {
     "#3": ("0.11", "0.375"), "#4": ("0.20", "0.500"), "#5": ("0.31", "0.625"), "#6": ("0.44", "0.750"),
@@ -36,6 +38,15 @@ def short(value: Decimal) -> str:
     return f"{value:.12g}"
 
 
+def juxtaposed(desk: Desk, name: str) -> Node | None:
+    """Return a symbol that reads as the product of two known ones, φM_n, as that product."""
+    known = desk.calculation.keys
+    for cut in range(1, len(name)):
+        if name[:cut] in known and name[cut:] in known:
+            return Work("*", (Symbol(name[:cut]), Symbol(name[cut:])))
+    return None
+
+
 def left_symbol(statement: Statement) -> str:
     """Return the symbol before the first equals sign, or nothing."""
     return symbol_of(split(statement.tokens, "relation")[0][0]) or ""
@@ -45,12 +56,14 @@ def substituted_forms(desk: Desk, formula: Node, substitution: Node, scope: Scop
     """Each number substituted is the printed form of a symbol of the formula, or stands in the formula."""
     allowed = {shown.text.lstrip("−") for shown in numbers(formula)} | FACTORS | {"0"}
     inside = {name for node in walk(formula) if isinstance(node, Over) for name in symbols(node)}
-    for name in symbols(formula) | {"√" + name for name in symbols(formula)}:
+    places = {t.text for n in walk(formula) if isinstance(n, Over) and n.name == "read" for t in n.where}
+    inside |= places
+    for name in symbols(formula) | {"√" + name for name in symbols(formula)} | places:
         found = scope.printed(name)
         allowed |= {found.text.lstrip("−")} if found is not None else set()
         if name in inside:
             forms = desk.calculation.forms
-            allowed |= {forms[key][0][0].text.lstrip("−") for key in desk.calculation.keys.get(name, [])}
+            allowed |= {form.text.lstrip("−") for key in desk.calculation.keys.get(name, []) for form, _ in forms[key]}
             allowed |= set(scope.factors(name))
     for shown in numbers(substitution):
         if shown.text.lstrip("−") not in allowed:
@@ -80,11 +93,30 @@ def one_form(desk: Desk) -> None:
         kinds: dict[tuple[str, int, str], list[str]] = {}
         for shown, place in forms:
             kinds.setdefault((shown.text, shown.power, shown.unit), []).append(str(place))
-        if len(kinds) > 1:
+        if len(kinds) > 1 and not _several(desk, key, forms):
             row = " ".join(sorted(row for _, row in key.rows))
             text = "; ".join(f"{Printed(*kind)} at {', '.join(places[:3])}" for kind, places in kinds.items())
             desk.sheet, desk.line = forms[0][1].sheet, forms[0][1].line
             desk.found("one printed form of a value", f"{key.name} {row}".strip() + f": {text}")
+
+
+def _several(desk: Desk, key: Key, forms: Sequence[tuple[Printed, Place]]) -> bool:
+    """Tell whether lines of their own give a symbol in several senses: parts of a calculation name what they use.
+
+    Every other place then repeats one of them; a figure repeats any row.
+    """
+    given: dict[int, set[Printed]] = {}
+    for shown, place in forms:
+        if place.kind == "formula":
+            given.setdefault(place.line, set()).add(shown)
+    told = {shown for one in given.values() for shown in one}
+    rows = {shown for other in desk.calculation.keys[key.name] for shown, _ in desk.calculation.forms[other]}
+    if not told or any(len(one) > 1 for one in given.values()):
+        return False
+    repeated = all(
+        shown in told or (place.kind == "figure" and shown in rows) for shown, place in forms if place.kind != "formula"
+    )
+    return repeated
 
 
 def digits_used(desk: Desk) -> None:

@@ -24,6 +24,10 @@ Matrix = tuple[float, float, float, float, float, float]
 UNIT: Matrix = (1.0, 0.0, 0.0, 1.0, 0.0, 0.0)
 
 
+#: a bar over a letter
+BAR = "\u0304"
+
+
 class Glyph(NamedTuple):
     """A glyph on a page; `left` to `right` is the advance, `x0 y0 x1 y1` the ink (the advance where none is known)."""
 
@@ -106,6 +110,19 @@ class Reader:
         if key not in self._faces:
             self._faces[key] = read_face(reference)
         return self._faces[key]
+
+
+def with_bars(found: list[Glyph]) -> list[Glyph]:
+    """Return glyphs with every bar over a letter in the text of that letter: the nearest whose ink is under it."""
+    glyphs = list(found)
+    for bar in [g for g in glyphs if g.text == BAR]:
+        middle = (bar.x0 + bar.x1) / 2
+        under = [g for g in glyphs if g.text != BAR and abs(g.y - bar.y) < 0.6 * bar.size and g.size >= bar.size - 0.1]
+        letter = min(under, key=lambda g: abs((g.x0 + g.x1) / 2 - middle), default=None)
+        if letter is not None:
+            glyphs.remove(bar)
+            glyphs[glyphs.index(letter)] = letter._replace(text=letter.text + BAR)
+    return glyphs
 
 
 def tokens(data: bytes) -> Iterator[tuple[str, Any]]:

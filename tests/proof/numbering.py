@@ -12,10 +12,9 @@ from functools import partial
 from typing import Any
 
 from .account import Finding
-from .equations import printed_of
-from .expressions import split
 from .package import Package, Page
 from .sampler import mark_of
+from .source_lane import source_numbers
 from .statements import NumberedLine
 
 
@@ -191,18 +190,3 @@ def _links_there(package: Package) -> Iterator[Finding]:
                         line_.number,
                         str(word),
                     )
-
-
-def source_numbers(line: NumberedLine) -> list[int]:
-    """Return the line numbers that stand in the source lane after the citation; a given value has none."""
-    formulas = [split(s.tokens, "relation")[0] for s in line.statements if s.kind == "formula"]
-    if formulas and all(len(p) < 2 or (len(p) == 2 and printed_of(p[1]) is not None) for p in formulas):
-        return []
-    found = []
-    if re.search(r"\brows? \d", " ".join(line.source)):
-        return []  # rows of a table, which is no sheet
-    for text in line.source:
-        numbers = re.search(r"((?:(?<=\s)|^)\d{1,3}(?:\s+\d{1,3})*)$", text)
-        if numbers and not re.search(r"line \d+$", text) and not re.search(r"(material|row) \S*$", text):
-            found += [int(word) for word in numbers[1].split()]
-    return found

@@ -16,8 +16,8 @@ from .statements import NumberedLine, Statement
 
 
 def squeeze(text: str) -> str:
-    """Return text without blanks."""
-    return re.sub("[\\s\u200b]", "", text)
+    """Return text without blanks; a low line stands in names of words, and is written for a subscript here."""
+    return re.sub("[\\s\u200b_]", "", text)
 
 
 def out_of_order(text: str, lines: Sequence[NumberedLine], page: int) -> list[str]:
@@ -43,6 +43,9 @@ def out_of_order(text: str, lines: Sequence[NumberedLine], page: int) -> list[st
 
 def _head(line: NumberedLine) -> str:
     """Return the number with what stands first beside it."""
+    title = next((s for s in line.statements if s.kind == "heading" and abs(s.y - line.y) < 2), None)
+    if title is not None and title.page == line.page:
+        return f"{line.number}{_said(title.words)}"
     first = next((s for s in line.statements if s.kind not in ("heading", "arm")), None)
     table = line.tables[0] if line.tables else None
     if table is not None and (first is None or table.y > first.y):

@@ -59,6 +59,8 @@ def _joined(one: Glyph, other: Glyph) -> bool:
         return True
     if abs(one.y - other.y) < 0.01:
         return abs(one.right - other.left) < 1.6
+    if -1.0 < other.left - one.right < 0.6 and abs(one.y - other.y) < 0.4 * one.size:
+        return True  # a script in the smallest type is no smaller than its letter
     scripted = min(one.size, other.size) < 0.85 * max(one.size, other.size)
     return scripted and abs(one.right - other.left) < 6 and abs(one.y - other.y) < 0.5 * max(one.size, other.size)
 

@@ -211,7 +211,7 @@ def find_labels(runs: Sequence[list[Glyph]]) -> list[Label]:
     clusters: list[list[list[Glyph]]] = []
     for run in small:
         for cluster in clusters:
-            if any(_beside(other, run) for other in cluster):
+            if any(_beside(other, run) for other in cluster) and _on_row(cluster, run):
                 cluster.append(run)
                 break
         else:
@@ -240,7 +240,14 @@ def _beside(one: list[Glyph], other: list[Glyph]) -> bool:
     shared = min(max(g.y1 for g in one), max(g.y1 for g in other)) - max(
         min(g.y0 for g in one), min(g.y0 for g in other)
     )
-    return shared > 0.3 and -1.0 < other[0].left - one[-1].right < 4.0
+    within = one[0].left < other[0].left < one[-1].right
+    return shared > 0.3 and (within or -1.0 < other[0].left - one[-1].right < 4.0)
+
+
+def _on_row(cluster: list[list[Glyph]], run: list[Glyph]) -> bool:
+    """Tell whether a run is a script in a label or stands on its row: labels side by side have rows of their own."""
+    first, edge = cluster[0][0], max(other[-1].right for other in cluster)
+    return run[0].size < 0.95 * first.size or abs(run[0].y - first.y) < 0.6 or run[0].left - edge < 1.0
 
 
 def _raise_labels(boxes: list[_Box]) -> list[_Box]:

@@ -8,17 +8,17 @@ from __future__ import annotations
 import re
 from collections import Counter
 from collections.abc import Sequence
-from decimal import Decimal
+from decimal import Decimal, DivisionByZero, InvalidOperation
 
 from .account import Desk
-from .arithmetic import Mixed, Unknown, valued
-from .calculations import Calculation, Rows
+from .arithmetic import Drawn, Mixed, NoRows, Unknown, valued
+from .calculations import Calculation, TableHere, is_arm
 from .conditions import in_unit, judge, matches
 from .equations import symbol_of
-from .expressions import Node, Over, Unread, parse, split, symbols
-from .forms import left_symbol, short
+from .expressions import Node, Over, Unread, parse, split, symbols, walk
+from .forms import juxtaposed, left_symbol, short
 from .letters import Token
-from .scope import Scope
+from .scope import Scope, within
 from .statements import NumberedLine, Statement
 from .tables import Table
 from .units import Printed, is_number
@@ -30,6 +30,8 @@ def is_row_formula(calculation: Calculation, statement: Statement) -> bool:
     name = symbol_of(parts[0])
     if relations != ["="] or name is None or not calculation.belongs(name):
         return False
+    if is_arm(statement):
+        return True
     try:
         return bool(symbols(parse(parts[1])))
     except Unread:
@@ -46,34 +48,59 @@ def row_formula(desk: Desk, name: str, arms: list[Statement], line: NumberedLine
             continue
         for row in table.rows:
             if is_number(row[place]):
-                _cell(desk, name, arms, table, place, row)
+                _cell(desk, name, arms, here, place, row, line)
                 done += 1
     if not done:
         raise Unread(f"no table prints {name}")
     return done
 
 
-def _cell(desk: Desk, name: str, arms: list[Statement], table: Table, place: int, row: list[str]) -> None:
+def _cell(
+    desk: Desk, name: str, arms: list[Statement], here: TableHere, place: int, row: list[str], line: NumberedLine
+) -> None:
+    table = here.table
     for arm in arms:
-        open_: Rows = (*arm.context, (table.set_name, row[0]))
-        if not arm.condition or judge(arm.condition, Scope(desk.calculation, open_)):
+        open_ = (*arm.context, *table.named(row))
+        scope = within(Scope(desk.calculation, open_, beside=here.line.number), line)
+        if not arm.condition or judge(arm.condition, scope):
             _work(
                 desk,
                 split(arm.tokens, "relation")[0][1],
                 name,
-                open_,
+                scope,
                 Printed(row[place], 0, table.columns[place].unit),
             )
             return
     raise Unread(f"no arm of {name} holds for row {row[0]}")
 
 
-def _work(desk: Desk, formula: list[Token], name: str, open_: Rows, shown: Printed) -> None:
-    value = valued(parse(formula), Scope(desk.calculation, open_))
+def _work(desk: Desk, formula: list[Token], name: str, scope: Scope, shown: Printed) -> None:
+    node = parse(formula)
+    if not symbols(node):
+        node = juxtaposed(desk, name) or node
     desk.count("table cells")
+    try:
+        value = valued(node, scope)
+    except NoRows:
+        desk.count("extremes over no rows")
+        return
     if not matches(value, shown):
-        text = f"{name}, row {open_[-1][1]}: worth {short(in_unit(value, shown.unit))}, printed {shown}"
+        if _told_once(desk, node, scope):
+            desk.count("cells that rest on what one row alone tells")
+            return
+        text = f"{name}, row {scope.open[-1][1]}: worth {short(in_unit(value, shown.unit))}, printed {shown}"
         desk.found("a row formula gives its cells", text)
+
+
+def _told_once(desk: Desk, node: Node, scope: Scope) -> bool:
+    """Tell whether a formula takes a symbol that is told of one row alone, in full, and stands in no table of all."""
+    sets = {set_name for set_name, _ in scope.open}
+    names = symbols(node) | {t.text for over in walk(node) if isinstance(over, Over) for t in over.where}
+    if "member" in sets:
+        # of like members the tables show results, and not all that leads to them
+        pair = next(pair for pair in scope.open if pair[0] == "member")
+        return not all(any(pair in key.rows for key in desk.calculation.keys.get(name, [])) for name in names)
+    return any(desk.calculation.told_once.get(name, set()) & sets for name in names)
 
 
 def row_named(desk: Desk, statement: Statement, formula: Node, shown: Printed, scope: Scope) -> None:
@@ -95,12 +122,13 @@ def _in_full(calculation: Calculation, table: Table) -> list[tuple[Statement, Nu
         (statement, line)
         for line in calculation.lines
         for statement in line.statements
-        if any(set_name == table.set_name for set_name, _ in statement.context)
+        if any(set_name in table.sets for set_name, _ in statement.context)
     ]
 
 
-def other_rows(desk: Desk, table: Table) -> None:
+def other_rows(desk: Desk, here: TableHere) -> None:
     """Rows in a table follow the formula printed in full for one of them, unless that one says `since`."""
+    table = here.table
     shown = [(s, line) for s, line in _in_full(desk.calculation, table) if s.kind == "formula" and s.tokens]
     names = Counter(left_symbol(s) for s, _ in shown)
     elsewhere = _other_branches(desk.calculation)
@@ -110,11 +138,14 @@ def other_rows(desk: Desk, table: Table) -> None:
         if place is None or len(parts) < 3 or names[name] > 1 or any(s.because == "since" for s in line.statements):
             continue
         for row in table.rows:
-            set_out = row[0] in elsewhere or (table.set_name, row[0]) in statement.context
+            set_out = row[0] in elsewhere or set(table.named(row)) <= set(statement.context)
             if is_number(row[place]) and not set_out:
                 try:
                     unit = table.columns[place].unit
-                    _work(desk, parts[1], name, ((table.set_name, row[0]),), Printed(row[place], 0, unit))
+                    scope = within(Scope(desk.calculation, tuple(table.named(row)), beside=here.line.number), line)
+                    _work(desk, parts[1], name, scope, Printed(row[place], 0, unit))
+                except Drawn:
+                    desk.count("values of stations, drawn")
                 except (Unread, Unknown, Mixed) as error:
                     _unread(desk, table, f"row {row[0]} of {name}: {error}")
 
@@ -139,16 +170,16 @@ def ratio_columns(desk: Desk, tables: Sequence[Table]) -> None:
     """
     rates: dict[str, list[Decimal]] = {}
     shown = ""
-    for statement, _ in _in_full(desk.calculation, tables[0]):
+    for statement, line in _in_full(desk.calculation, tables[0]):
         title = statement.words.removeprefix("CHECK").strip()
         if statement.kind != "check" or not any(not c.math and c.name == title for c in tables[0].columns):
             continue
         formula = split(statement.tokens, "relation")[0][0]
-        shown = next(row for set_name, row in statement.context if set_name == tables[0].set_name)
+        shown = next(row for set_name, row in statement.context if set_name in tables[0].sets)
         for table in tables:
             place = next(i for i, c in enumerate(table.columns) if not c.math and c.name == title)
             for row in table.rows:
-                rate = _rated(desk, formula, table, row, row[place])
+                rate = _rated(desk, formula, table, row, row[place], line)
                 rates.setdefault(row[0], []).extend([rate] if rate is not None else [])
     worst = max((rate for row in rates.values() for rate in row), default=None)
     # headings of checks over two lines are read in part: like members are held in `members`
@@ -157,7 +188,9 @@ def ratio_columns(desk: Desk, tables: Sequence[Table]) -> None:
         desk.found("the row shown in full is the worst", f"shown {shown}, ratios {text}")
 
 
-def _rated(desk: Desk, formula: Sequence[Token], table: Table, row: list[str], cell: str) -> Decimal | None:
+def _rated(
+    desk: Desk, formula: Sequence[Token], table: Table, row: list[str], cell: str, line: NumberedLine
+) -> Decimal | None:
     """Return a printed ratio held against its formula; infinite where there is none above zero; None without check."""
     words = cell.split()
     if not words or words[0] in ("–", "n.a."):
@@ -170,10 +203,19 @@ def _rated(desk: Desk, formula: Sequence[Token], table: Table, row: list[str], c
         desk.found("a verdict follows from print", f"row {row[0]}: {cell}")
     if any(token.kind == "fraction" or token.text == "/" for token in formula):
         try:
-            value = valued(parse(formula), Scope(desk.calculation, ((table.set_name, row[0]),)))
+            node, scope = parse(formula), within(Scope(desk.calculation, tuple(table.named(row))), line)
+            value = valued(node, scope)
             # a demand at or below zero is ratio zero
-            if not matches(value, shown) and not (value.number < 0 and shown.number == 0):
+            if matches(value, shown) or (value.number < 0 and shown.number == 0):
+                return shown.number
+            if _told_once(desk, node, scope):
+                desk.count("cells that rest on what one row alone tells")
+            else:
                 desk.found("a ratio is its quotient", f"row {row[0]}: worth {short(value.number)}, printed {cell}")
+        except (DivisionByZero, InvalidOperation):
+            # what asks for nothing is held by any capacity, by none too
+            if shown.number:
+                desk.found("a ratio is its quotient", f"row {row[0]}: of a capacity of nothing, printed {cell}")
         except (Unread, Unknown, Mixed) as error:
             _unread(desk, table, f"ratio of row {row[0]}: {error}")
     return shown.number

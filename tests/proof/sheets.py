@@ -13,7 +13,7 @@ from dataclasses import dataclass
 
 from .formulas import read_tokens
 from .frames import Frame, find_frame, sheet_name
-from .glyphs import Area, Glyph, Line, PageInk
+from .glyphs import Area, Glyph, Line, PageInk, with_bars
 from .letters import Token
 from .pieces import Piece, find_pieces, spaced
 from .rules import Rule, find_rules
@@ -61,7 +61,7 @@ class _Page:
     def __init__(self, ink: PageInk, frame: Frame, lanes: tuple[float, float], index: int) -> None:
         self.frame, self.index = frame, index
         self.left, self.right = lanes
-        body = [g for g in ink.glyphs if g.text != " " and g.y > frame.block + 0.5]
+        body = [g for g in with_bars(ink.glyphs) if g.text != " " and g.y > frame.block + 0.5]
         across = [ln.y0 for ln in ink.lines if ln.y0 == ln.y1 and ln.width >= 1.5 and ln.x0 <= frame.left + 0.5]
         strips = [y for y in across if y > frame.top - 30]
         self.roof = min(strips, default=frame.top)

@@ -11,7 +11,7 @@ from .account import Desk
 from .calculations import LEFT_OUT, Calculation
 from .equations import assignments, symbol_of
 from .expressions import Unread, parse, split, symbols
-from .numbering import source_numbers
+from .source_lane import source_numbers
 from .statements import Statement
 
 
@@ -22,7 +22,9 @@ def sources(desk: Desk) -> None:
         named = set(source_numbers(line)) | {line.number}
         for statement in line.statements:
             for name in sorted(_taken(statement)):
-                lines = givers.get(name) or givers.get(name.rpartition(",")[0], set())
+                base = name.rpartition(",")[0]
+                lines = givers.get(name) or (givers.get(base, set()) if base else set())
+                lines = lines | givers.get("√" + name, set())
                 earlier = {number for number in lines if number <= line.number}
                 desk.count("sources")
                 if earlier and not earlier & named:

@@ -53,6 +53,8 @@ class NumberedLine:
     words: list[str] = field(default_factory=list)
     tables: list[Table] = field(default_factory=list)
     source: list[str] = field(default_factory=list)
+    #: "since" or "where" at the end of a row, before a condition on the next
+    waiting: str = ""
 
 
 @dataclass(slots=True)
@@ -76,6 +78,11 @@ def rows_of(pieces: list[Piece]) -> list[Row]:
     return rows
 
 
+def _condition(tokens: list[Token]) -> bool:
+    """Tell a condition from words that go on after "where"."""
+    return any(token.kind == "relation" or token.text == "is" for token in tokens)
+
+
 class RowReader:
     """Reads rows into the statements of a line."""
 
@@ -85,16 +92,18 @@ class RowReader:
     def read(self, row: Row) -> None:
         """Add what a row says to the line."""
         because: tuple[str, list[Token]] | None = None
+        joined, self.line.waiting = self.line.waiting, ""
         for piece in row.pieces:
             if piece.words:
-                self._words(piece, row.y)
+                joined = self._words(piece, row.y)
                 continue
             try:
                 tokens = read_tokens(piece.glyphs, piece.rules)
             except ValueError as error:
                 self._statement("unread", row.y).unread = f"{error}: {piece.text}"
                 continue
-            tokens, found = self._because(tokens)
+            tokens, found = ([], (joined, tokens)) if joined and _condition(tokens) else self._because(tokens)
+            joined = ""
             if found is not None:
                 because = found
                 if found[0] == "since":
@@ -104,6 +113,7 @@ class RowReader:
             if tokens:
                 self._math(tokens, row.y, because)
                 because = None
+        self.line.waiting = joined
         if because is not None:
             self._statement("condition", row.y).condition = because[1]
             self.line.statements[-1].because = because[0]
@@ -114,8 +124,11 @@ class RowReader:
         self.line.statements.append(found)
         return found
 
-    def _words(self, piece: Piece, y: float) -> None:
-        text = piece.text
+    def _words(self, piece: Piece, y: float) -> str:
+        """Read words; returns the "since" or "where" they end with, before a condition."""
+        text, _, joined = piece.text.rpartition(" ")
+        if joined not in ("since", "where"):
+            text, joined = piece.text, ""
         checks = [s for s in self.line.statements if s.kind == "check"]
         if text in VERDICTS and checks:
             checks[-1].verdict = text
@@ -133,11 +146,12 @@ class RowReader:
             if bold:
                 self._statement("heading", y).words = text
                 self.line.words = []
+        return joined
 
     def _because(self, tokens: list[Token]) -> tuple[list[Token], tuple[str, list[Token]] | None]:
         """Part words and a condition after "since" or "where" from the mathematics that follows."""
-        for place, token in enumerate(tokens):
-            if token.words and token.text in ("since", "where"):
+        for place, token in reversed(list(enumerate(tokens))):
+            if token.words and token.text in ("since", "where") and _condition(tokens[place + 1 :]):
                 self.line.words += [plain(tokens[:place])] if place else []
                 return [], (token.text, tokens[place + 1 :])
         if tokens and tokens[0].words and tokens[0].text == "Since" and tokens[-1].kind == "colon":
@@ -174,6 +188,11 @@ class RowReader:
                     return
         found = self._statement("formula", y)
         found.tokens = tokens
+        above = statements[-2] if len(statements) > 1 else None
+        if above is not None and above.because == "where" and above.kind == "condition" and above.words == found.words:
+            # the condition of an arm stands on the row above
+            because = above.because, above.condition
+            statements.remove(above)
         if because is not None:
             found.because, found.condition = because
         self.line.words = []

@@ -18,6 +18,8 @@ from .pieces import Piece, find_pieces
 
 #: type of table heads and of cells is no larger, in points
 HEAD, CELL = 7.8, 8.7
+#: gap that parts two cells, in type sizes: columns of wide tables stand close
+CELL_GAP = 0.5
 
 
 @dataclass(slots=True)
@@ -43,6 +45,17 @@ class Table:
     @property
     def set_name(self) -> str:
         return self.columns[0].name
+
+    @property
+    def sets(self) -> list[str]:
+        """The sets whose rows the first column names: one, or several as in `span, load`."""
+        return self.set_name.partition(" / ")[0].split(", ")
+
+    def named(self, row: list[str]) -> list[tuple[str, str]]:
+        """Return the rows of sets that a row of the table belongs to: `AB, D` of `span, load`."""
+        sets = self.sets
+        names = row[0].rsplit(", ", len(sets) - 1) if len(sets) > 1 else [row[0]]
+        return list(zip(sets, names, strict=False))
 
     @property
     def given(self) -> bool:
@@ -91,8 +104,10 @@ def _stretches(bands: Sequence[Band]) -> list[tuple[int, int]]:
     at = 0
     while at < len(bands):
         last = at + 1
-        if bands[at][2] and max(g.size for g in bands[at][2]) <= HEAD:
-            while last < len(bands) and bands[last][2] and HEAD < max(g.size for g in bands[last][2]) <= CELL:
+        head = max((g.size for g in bands[at][2]), default=CELL)
+        if head <= HEAD:
+            # wide tables are set smaller, head and cells alike
+            while last < len(bands) and bands[last][2] and head + 0.3 < max(g.size for g in bands[last][2]) <= CELL:
                 last += 1
             if last > at + 1:
                 found.append((at, last))
@@ -101,23 +116,40 @@ def _stretches(bands: Sequence[Band]) -> list[tuple[int, int]]:
 
 
 def _table(head: Band, body: Sequence[Band], page: int) -> Table:
-    columns = []
-    for piece in sorted(find_pieces(head[2], []), key=lambda p: p.left):
-        tokens = read_tokens(piece.glyphs, []) if piece.math else []
-        if tokens and not tokens[0].words:
-            unit = "".join(t.text + _power(t) for t in tokens[1:])
-            columns.append(Column(tokens[0].text, unit, True, piece.left, piece.right))
-        else:
-            columns.append(Column(piece.text, "", False, piece.left, piece.right))
+    columns = [_heading(pieces) for pieces in _over_each_other(find_pieces(head[2], []))]
     rows = []
     for _, _, glyphs in body:
         cells = [""] * len(columns)
-        for piece in find_pieces(glyphs, []):
+        for piece in find_pieces(glyphs, [], CELL_GAP):
             place = _column(columns, piece)
             text = plain(read_tokens(piece.glyphs, [])) if piece.math else piece.text
             cells[place] = f"{cells[place]} {text}".strip()
         rows.append(cells)
     return Table(columns, rows, page, max(g.y for g in head[2]))
+
+
+def _over_each_other(pieces: Sequence[Piece]) -> list[list[Piece]]:
+    """Gather the pieces of a head by column, each from the top down: a head may run over several lines."""
+    found: list[list[Piece]] = []
+    edge = float("-inf")
+    for piece in sorted(pieces, key=lambda p: p.left):
+        if piece.left < edge - 0.5:
+            found[-1].append(piece)
+        else:
+            found.append([piece])
+        edge = max(edge, piece.right)
+    return [sorted(column, key=lambda p: -p.baseline) for column in found]
+
+
+def _heading(pieces: Sequence[Piece]) -> Column:
+    """Read the head of one column: a symbol and its unit, or words."""
+    left, right = min(p.left for p in pieces), max(p.right for p in pieces)
+    for at, piece in enumerate(pieces):
+        tokens = read_tokens(piece.glyphs, []) if piece.math else []
+        if tokens and not tokens[0].words:
+            unit = "".join(t.text + _power(t) for t in tokens[1:])
+            return Column(tokens[0].text, unit + "".join(p.text for p in pieces[at + 1 :]), True, left, right)
+    return Column(" ".join(piece.text for piece in pieces), "", False, left, right)
 
 
 def _power(token: Token) -> str:

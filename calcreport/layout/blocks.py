@@ -13,11 +13,12 @@ from calcreport.layout.figures import draw
 from calcreport.layout.givens import set_givens
 from calcreport.layout.kit import Kit
 from calcreport.layout.lines import set_line, set_result_box, set_statement
-from calcreport.layout.model import Item, Placed, Stroke
+from calcreport.layout.model import Box, Item, Placed, Stroke
 from calcreport.layout.pieces import Piece, Rows
+from calcreport.layout.sharing import set_lines
 from calcreport.layout.sheet import FRAME, HAIRLINE, Lane
 from calcreport.layout.tables import set_table
-from calcreport.layout.words import HEADINGS, PLAIN, QUIET, TextStyle
+from calcreport.layout.words import HEADINGS, PLAIN, QUIET, SMALL, TextStyle
 from calcreport.report.model import (
     Block,
     CheckLine,
@@ -25,17 +26,21 @@ from calcreport.report.model import (
     Givens,
     Heading,
     Line,
+    Lines,
     Listing,
     Paragraph,
     ResultBox,
     Statement,
     Table,
+    Words,
 )
 
 #: Words set wider than this are tiring to read.
 MEASURE = 430.0
 #: Paragraphs of more lines than this may part between sheets, two lines at least on each.
 WHOLE = 6
+#: Gap between headings that share a row.
+APART = 16.0
 #: Style of a file's lines, and room for their numbers.
 FILE = TextStyle("regular", 7.5, 8.8)
 NUMBERS = 26.0
@@ -46,6 +51,8 @@ def set_block(kit: Kit, block: Block, lane: Lane) -> tuple[Piece, ...]:
     match block:
         case Line():
             return (set_line(kit, block, lane),)
+        case Lines():
+            return (set_lines(kit, block, lane),)
         case CheckLine():
             return (set_check(kit, block, lane),)
         case Statement():
@@ -73,10 +80,24 @@ def stands_alone(block: Block) -> bool:
 
 
 def set_heading(kit: Kit, heading: Heading, lane: Lane) -> Piece:
-    """Set a heading; it stays with what follows."""
+    """Set a heading, those that follow it at once and their condition in its row; it stays with what follows."""
     style = HEADINGS.get(heading.level, HEADINGS[3])
-    rows = Rows()
-    rows.words(kit.lettering.set((heading.text,), style, lane.width), style, lane.left)
+    rows, x = Rows(), lane.left
+    boxes: list[tuple[float, Box]] = []
+    stretches: list[tuple[Words, TextStyle]] = [((text,), style) for text in (heading.text, *heading.then)]
+    stretches += [(heading.since, SMALL)] if heading.since else []
+    for words, own in stretches:
+        lines = kit.lettering.set(words, own, lane.width)
+        fits = len(lines) == 1 and x + lines[0].width <= lane.right
+        if boxes and not fits:
+            rows.row(boxes, style.leading, 0.0)
+            boxes, x = [], lane.left
+        if len(lines) > 1:
+            rows.words(lines[:-1], own, lane.left)
+        boxes.extend((x, line) for line in lines[-1:])
+        x += lines[-1].width + APART if lines else 0.0
+    if boxes:
+        rows.row(boxes, style.leading, 0.0)
     return Piece(rows.y, tuple(rows.items), 7.5 - 1.5 * heading.level, keep=True)
 
 

@@ -18,6 +18,9 @@ WIDEST = 178.0
 SPARSE = 0.5
 
 OPEN = Manner(1.0, WIDEST)
+#: A part of more sheets than this is set closer: what it takes in paper it takes of a reader's overview.
+LONG = 4
+CLOSE = Manner(0.5, WIDEST)
 #: Manners tried, in order, to bring a sparse last sheet back.
 CLOSER = (Manner(0.75, WIDEST), *(Manner(gaps, 168.0) for gaps in (0.75, 0.6, 0.5, 0.42, 0.36, 0.25)))
 
@@ -27,6 +30,8 @@ def flow(kit: Kit, blocks: tuple[Block, ...], top: float) -> tuple[Body, ...]:
     measured: Measured = ({}, {})
     order = tuple(range(len(blocks)))
     bodies = _run(kit, blocks, order, top, measured, OPEN)
+    if len(bodies) > LONG:
+        bodies = _run(kit, blocks, order, top, measured, CLOSE)
     room = kit.sheet.body_foot - top
     if len(bodies) > 1 and bodies[-1].foot - top < SPARSE * room:
         filled, gaps = _extent(measured)

@@ -50,6 +50,12 @@ def set_line(kit: Kit, line: Line, lane: Lane) -> Piece:
     Words, formula, substitution and result share one row where they fit, equals signs at a tab; else
     the words stand above.
     """
+    rows, baseline = rows_of_line(kit, line, lane)
+    return kit.marks.numbered(rows, baseline, line.number, line.anchor, line.source, line.delta, lane)
+
+
+def rows_of_line(kit: Kit, line: Line, lane: Lane) -> tuple[Rows, float]:
+    """Return the rows of a line and the baseline its number stands on."""
     rows = Rows()
     head = _head(kit, line, lane)
     symbol, result = kit.math(line.symbol), kit.math(line.result)
@@ -67,8 +73,7 @@ def set_line(kit: Kit, line: Line, lane: Lane) -> Piece:
         beside = _split(kit, split, head, symbol, sides, result, lane)
         if beside >= 0 and split.y < rows.y - LEAST_SAVED:
             rows, first = split, beside
-    baseline = first if baseline < 0 else baseline
-    return kit.marks.numbered(rows, baseline, line.number, line.anchor, line.source, line.delta, lane)
+    return rows, first if baseline < 0 else baseline
 
 
 def _under(
@@ -104,11 +109,11 @@ def _split(
     if max(start + first, x + rest) > lane.right + 0.01:
         return -1.0
     placed: list[tuple[float, Box]] = [*head.last, (start - EQUALS_GAP - symbol.width, symbol)]
-    _put(placed, Part(boxes[0], kit.equals), start)
+    put(placed, Part(boxes[0], kit.equals), start)
     baseline = rows.row(placed, PLAIN.leading, 1.0)
     placed = []
     for box in boxes[1:]:
-        x = _put(placed, Part(box, kit.equals), x)
+        x = put(placed, Part(box, kit.equals), x)
     rows.row((*placed, *_after_equals(kit, result, lane.right)), ROW, 1.4)
     return baseline
 
@@ -147,7 +152,7 @@ def _beside(
     placed: list[tuple[float, Box]] = [(start - EQUALS_GAP - symbol.width, symbol)]
     x = start
     for box in boxes:
-        x = _put(placed, Part(box, kit.equals), x)
+        x = put(placed, Part(box, kit.equals), x)
     return (*placed, *_after_equals(kit, result, lane.right))
 
 
@@ -206,7 +211,7 @@ def set_chain(kit: Kit, rows: Rows, symbol: Box, parts: list[Part], result: Box,
             placed.append((inner.left - EQUALS_GAP - symbol.width, symbol))
         x = inner.left
         for part in row:
-            x = _put(placed, part, x)
+            x = put(placed, part, x)
         if place == len(shared) - 1:
             placed.extend(_after_equals(kit, result, inner.right))
         baseline = rows.row(placed, ROW, 1.4)
@@ -214,7 +219,7 @@ def set_chain(kit: Kit, rows: Rows, symbol: Box, parts: list[Part], result: Box,
     return first
 
 
-def _put(placed: list[tuple[float, Box]], part: Part, x: float) -> float:
+def put(placed: list[tuple[float, Box]], part: Part, x: float) -> float:
     """Place one part with its sign at `x`; return where the next sign may stand."""
     if part.sign is None:
         placed.append((x + HANG, part.box))
@@ -226,24 +231,48 @@ def _put(placed: list[tuple[float, Box]], part: Part, x: float) -> float:
 
 
 def set_statement(kit: Kit, statement: Statement, lane: Lane) -> Piece:
-    """Set a requirement: words and formula in one row when they fit, else under one another."""
-    rows = Rows()
-    words = kit.lettering.set(statement.says, PLAIN, lane.width)
-    formula = kit.math(statement.formula)
-    if len(words) == 1 and words[0].width + RESULT_GAP + formula.width <= lane.width:
-        tab = lane.left + TAB * lane.width - kit.symbols - EQUALS_GAP
-        start = max(lane.left + words[0].width + RESULT_GAP, min(tab, lane.right - formula.width))
-        baseline = rows.row(((lane.left, words[0]), (start, formula)), PLAIN.leading)
-    else:
-        baseline = rows.words(words, PLAIN, lane.left) if words else -1.0
+    """Set a requirement: words and formula in one row when they fit, else under one another.
+
+    Further forms of a formula stand behind it where its row has room.
+    """
+    rows, baseline, end = Rows(), -1.0, lane.left
+    row: list[tuple[float, Box]] = []
+    for one in (statement, *statement.others):
+        words = kit.lettering.set(one.says, PLAIN, lane.width)
+        formula = kit.math(one.formula)
+        wide = (words[0].width + RESULT_GAP if words else 0.0) + formula.width
+        start = end + 2 * RESULT_GAP if row else lane.left
+        whole = len(words) == 1 and start + wide <= lane.right
+        if row and not whole:
+            baseline = _closing(rows, row, baseline)
+            start, whole = lane.left, len(words) == 1 and wide <= lane.width
+        if whole:
+            at = start + words[0].width + RESULT_GAP
+            tab = lane.left + TAB * lane.width - kit.symbols - EQUALS_GAP
+            at = at if row else max(at, min(tab, lane.right - formula.width))
+            row += [(start, words[0]), (at, formula)]
+            end = at + formula.width
+            continue
+        first = rows.words(words, PLAIN, lane.left) if words else -1.0
+        baseline = first if baseline < 0 else baseline
         room = lane.width - INDENT
-        for place, box in enumerate(kit.rows(statement.formula, room) if formula.width else ()):
+        for place, box in enumerate(kit.rows(one.formula, room) if formula.width else ()):
+            baseline = _closing(rows, row, baseline)
             x = lane.left + INDENT + (HANG if place else 0.0)
-            first = rows.row(((x, box),), ROW)
-            baseline = first if baseline < 0 else baseline
+            row, end = [(x, box)], x + box.width
+    baseline = _closing(rows, row, baseline)
     return kit.marks.numbered(
         rows, baseline, statement.number, statement.anchor, statement.source, statement.delta, lane
     )
+
+
+def _closing(rows: Rows, row: list[tuple[float, Box]], baseline: float) -> float:
+    """Set a row begun, which is empty then; return the first baseline of all rows."""
+    if not row:
+        return baseline
+    own = rows.row(tuple(row), PLAIN.leading if len(row) > 1 else ROW)
+    row.clear()
+    return own if baseline < 0 else baseline
 
 
 def set_result_box(kit: Kit, result: ResultBox, lane: Lane) -> Piece:

@@ -172,7 +172,7 @@ class PlannedEach:
     rows: int
     lines: tuple[PlannedLine, ...]
     table: tuple[int, ...]
-    show: Literal["", "every", "first", "figure"]
+    show: Literal["", "every", "first", "governing", "figure"]
     span: Span
 
 

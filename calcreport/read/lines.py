@@ -49,7 +49,7 @@ KINDS: dict[str, tuple[str, ...]] = {
 }  # fmt: skip
 #: keys of a case of one value, and of a case that holds lines
 ARM_KEYS, BRANCH_KEYS = ("when", "formula", "otherwise"), ("when", "lines", "otherwise", "says")
-SHOWN = ("every", "first", "figure")
+SHOWN = ("every", "first", "governing", "figure")
 #: a requirement may be printed only where it is not met
 REQUIRED_SHOWN = ("unmet",)
 MOST_LINES = 400

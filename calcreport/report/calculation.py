@@ -42,6 +42,7 @@ from calcreport.report.items import (
     SayUnknown,
     SayUnseen,
 )
+from calcreport.report.joining import joined
 from calcreport.report.method_blocks import MethodBlocks
 from calcreport.report.model import (
     Block,
@@ -93,7 +94,7 @@ class Composer:
         found: list[Block] = [self.opening()]
         for item in self.told.script.items:
             found.extend(marked(item, self.item(item), self.told, self.deltas))
-        return tuple(_figure_first(found))
+        return joined(tuple(_figure_first(found)))
 
     def opening(self) -> Block:
         """Say what is decided here and what is not."""
@@ -127,7 +128,9 @@ class Composer:
             case SayMade():
                 return self.rows.made(item)
             case SayTable():
-                return (self.rows.table(item), *self.rows.other_branches(item), *self.checks.dispositions_left(item))
+                table = (self.rows.table(item),) if len(item.rows) > 1 or item.governing < 0 else ()
+                notes = (*self.rows.other_branches(item), *self.rows.rows_left(item))
+                return (*table, *notes, *self.checks.dispositions_left(item))
             case SayUnknown():
                 return self.unknown(item)
             case SayEquation():

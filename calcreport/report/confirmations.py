@@ -50,6 +50,7 @@ from calcreport.report.forms import (
     reversed_sign,
     side_unit,
 )
+from calcreport.report.governing import telling_rows
 from calcreport.report.notation import has_values
 from calcreport.report.spaced import is_printed
 from calcreport.report.taken import rows_taken
@@ -187,8 +188,10 @@ class _Lines:
                     self.because(line.line, line.arm, line.open)
                     self.lines(line.lines)
                 case WorkedEach():
-                    before, self.unseen = self.unseen, self.unseen or line.line.show == "figure"
-                    for row in line.rows:
+                    before = self.unseen
+                    told = telling_rows(line)
+                    for place, row in enumerate(line.rows):
+                        self.unseen = before or line.line.show == "figure" or place not in told
                         self.lines(row)
                     self.unseen = before
                 case WorkedUnknown():

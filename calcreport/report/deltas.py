@@ -220,10 +220,10 @@ def _rows(block: Block, item: SayTable, told: Told, found: Deltas) -> Block:
     """Mark rows of a table of results."""
     each = item.worked
     rows: dict[int, str] = {}
-    for place in range(len(each.names)):
-        opened = (*each.open, (each.line.rows, place))
+    for place, row in enumerate(item.rows):
+        opened = (*each.open, (each.line.rows, row))
         slots = [(slot, told.key(slot, opened)) for slot in item.columns]
-        rows[place] = found.of(slots, below(each.rows[place], WorkedCheck))
+        rows[place] = found.of(slots, below(each.rows[row], WorkedCheck))
     return _table(block, rows)
 
 

@@ -102,13 +102,15 @@ class SayMade:
 
 @dataclass(frozen=True, slots=True)
 class SayTable:
-    """Results of every row of a set; `governing` is the row told in full, or -1."""
+    """Results of rows of a set; `governing` is the row told in full, or -1."""
 
     number: int
     worked: WorkedEach
     columns: tuple[int, ...]
     checks: tuple[str, ...]
     governing: int
+    #: the rows that stand in the table, all of them or those that tell what governs
+    rows: tuple[int, ...]
 
 
 @dataclass(frozen=True, slots=True)

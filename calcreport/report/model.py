@@ -74,6 +74,10 @@ class Heading:
 
     text: str
     level: int = 2
+    #: headings that follow it at once, in its row where the lane holds them
+    then: tuple[str, ...] = ()
+    #: the condition the lines below it go by, in the same row
+    since: Words = ()
 
 
 @dataclass(frozen=True, slots=True)
@@ -131,6 +135,17 @@ class Line:
 
 
 @dataclass(frozen=True, slots=True)
+class Lines:
+    """Short lines of one number that follow one another: values handed on, words, constants."""
+
+    number: int
+    anchor: str
+    lines: tuple[Line, ...]
+    source: SourceLane
+    delta: str = ""
+
+
+@dataclass(frozen=True, slots=True)
 class Statement:
     """A numbered condition or requirement that gives no value: `f_y <= 80 ksi: 60 <= 80`."""
 
@@ -140,6 +155,8 @@ class Statement:
     formula: Formula
     source: SourceLane
     delta: str = ""
+    #: further forms of a formula stated once for many rows: `otherwise  b = b_w`
+    others: tuple[Statement, ...] = ()
 
 
 @dataclass(frozen=True, slots=True)
@@ -344,7 +361,7 @@ class FigureBlock:
 
 
 Block: TypeAlias = (
-    Heading | Paragraph | Givens | Line | Statement | CheckLine | ResultBox | Table | Listing | FigureBlock
+    Heading | Paragraph | Givens | Line | Lines | Statement | CheckLine | ResultBox | Table | Listing | FigureBlock
 )
 
 

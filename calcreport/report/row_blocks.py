@@ -77,9 +77,9 @@ class RowBlocks:
         columns = [Column((name,)), *(self.told.column(slot) for slot in item.columns)]
         columns += [Column((check,), "right") for check in item.checks]
         rows = []
-        for place, row_name in enumerate(each.names):
+        for place in item.rows:
             opened = (*each.open, (each.line.rows, place))
-            cells: list[Words] = [(row_words(row_name),)]
+            cells: list[Words] = [(row_words(each.names[place]),)]
             for slot in item.columns:
                 cells.append(self.told.cell(slot, self.told.key(slot, opened)))
             # a check may stand in rows of its own inside this one: the worst of them is this row's
@@ -97,13 +97,22 @@ class RowBlocks:
             rows.append(TableRow(tuple(cells), emphasis))
         return Table(tuple(columns), tuple(rows), (), item.number, self.told.anchor(item.number))
 
+    def rows_left(self, item: SayTable) -> tuple[Block, ...]:
+        """Count the rows that are not told, none of which has a larger ratio of any check."""
+        left = len(item.worked.rows) - len(item.rows)
+        if not left:
+            return ()
+        name = self.worked.plan.sets[item.worked.line.rows].name
+        rows = f"{left} other rows of {name} have" if left > 1 else f"One other row of {name} has"
+        return (Paragraph((f"{rows} no larger ratio of any check.",), "note"),)
+
     def other_branches(self, item: SayTable) -> tuple[Block, ...]:
         """Name the rows that go by other branches than the one set out in full: their lines are not printed."""
         if item.governing < 0:
             return ()
         each = item.worked
         path = arms_below(each.rows[item.governing])
-        others = [name for name, row in zip(each.names, each.rows, strict=True) if arms_below(row) != path]
+        others = [each.names[row] for row in item.rows if arms_below(each.rows[row]) != path]
         if not others:
             return ()
         listed = ", ".join(row_words(name) for name in others)

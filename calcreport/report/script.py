@@ -22,7 +22,9 @@ from calcreport.calculate.model import (
     WorkedText,
     WorkedUnknown,
 )
-from calcreport.report.below import below, only_words, severity
+from calcreport.report.alike import runs_on
+from calcreport.report.below import below, only_words
+from calcreport.report.governing import governing_row, telling_rows
 from calcreport.report.items import (
     SayBranch,
     SayCheck,
@@ -63,10 +65,12 @@ def write_script(worked: Worked) -> Script:
 
 
 def _lines(writer: Writer, lines: tuple[WorkedLine, ...]) -> None:
+    before: WorkedLine | None = None
     for line in lines:
+        follows, before = before, line
         match line:
             case WorkedGives():
-                number = writer.next()
+                number = writer.number if runs_on(follows, line) else writer.next()
                 writer.items.append(SayLine(number, line))
                 writer.line_of[line.line.slot, line.key] = number
             case WorkedText():
@@ -133,7 +137,7 @@ def _each(writer: Writer, each: WorkedEach) -> None:
     elif each.line.show == "every" or len(rows) <= 1:
         _rows_in_full(writer, each, name, range(len(rows)))
     elif any(below(row, WorkedCheck) for row in rows):
-        governing = max(range(len(rows)), key=lambda row: _worst(rows[row]))
+        governing = governing_row(each)
         _rows_in_full(writer, each, name, [governing])
         _number_rest(writer, each)
         _table(writer, each, governing)
@@ -159,13 +163,6 @@ def _figures_only(writer: Writer, each: WorkedEach) -> None:
             writer.line_of.setdefault((unknown.line.slot, unknown.key), writer.number)
         writer.items.extend(SayFigure(figure) for figure in below(row, WorkedFigure))
     writer.items.append(SayUnseen(each))
-
-
-def _worst(lines: tuple[WorkedLine, ...]) -> tuple[bool, float]:
-    """Rank a row by its worst check: NG first, then by ratio."""
-    checks = below(lines, WorkedCheck)
-    failed = any(check.verdict == "NG" for check in checks)
-    return failed, max((severity(check) for check in checks), default=-1.0)
 
 
 def _rows_in_full(writer: Writer, each: WorkedEach, name: str, rows: range | list[int]) -> None:
@@ -216,7 +213,9 @@ def _table(writer: Writer, each: WorkedEach, governing: int) -> None:
     if not columns and not checks:
         # guards that are met leave nothing to tell
         return
-    writer.items.append(SayTable(writer.next(), each, columns, checks, governing))
+    rows = telling_rows(each)
+    number = writer.next() if len(rows) > 1 else writer.number
+    writer.items.append(SayTable(number, each, columns, checks, governing, rows))
 
 
 def _slots_given(each: WorkedEach) -> list[int]:

@@ -64,7 +64,7 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
         "report.candidates", "report.changes", "report.changes_text", "report.chains", "report.check_blocks", "report.compared",
         "report.compose", "report.confirmations", "report.deltas", "report.digits", "report.display", "report.drawings",
         "report.editions", "report.editions_text", "report.families", "report.forms", "report.formula_model",
-        "report.fronts", "report.given_blocks", "report.governing", "report.items", "report.limit_states", "report.members", "report.method_blocks", "report.model",
+        "report.fronts", "report.given_blocks", "report.governing", "report.items", "report.joining", "report.limit_states", "report.members", "report.method_blocks", "report.model",
         "report.moved", "report.notation", "report.plain", "report.premises", "report.response", "report.row_blocks", "report.sampler", "report.script", "report.spaced", "report.statuses",
         "report.substitution", "report.summary", "report.taken", "report.told", "report.traced", "report.value_lines",
         "report.valuesfile", "report.writer", "report.envelope", "report.figure_inputs",
@@ -74,7 +74,7 @@ LAYERS: tuple[tuple[str, tuple[str, ...]], ...] = (
         "layout.figures", "layout.filling", "layout.flow", "layout.fonts", "layout.grid", "layout.givens", "layout.index",
         "layout.kit", "layout.lines", "layout.long_rows", "layout.marks", "layout.mathatoms", "layout.mathbox", "layout.mathbreak",
         "layout.mathforms", "layout.mathscripts", "layout.mathstyle", "layout.mathtable", "layout.model",
-        "layout.opentype", "layout.paginate", "layout.pieces", "layout.places", "layout.section_figure", "layout.sheet",
+        "layout.opentype", "layout.paginate", "layout.pieces", "layout.places", "layout.section_figure", "layout.sharing", "layout.sheet",
         "layout.span_figure", "layout.strength_figure", "layout.tables", "layout.titleblock", "layout.words",
     )),
     ("output", (

@@ -22,12 +22,20 @@ from calcreport.report.model import Column, Table, TableRow, Words
 
 #: whole digits of a number, which a point, its decimals and a verdict may follow
 _WHOLE = re.compile(r"[−+]?\d[\d,]*(?=\.\d|$| )")
+#: A table of fewer columns is never set as two.
+LEAST_PARTED = 5
 #: A word wider than this share of the lane may part rather than keep other columns narrow.
 LONGEST = 0.3
 
 
 def set_table(kit: Kit, table: Table, lane: Lane) -> tuple[Piece, ...]:
-    """Set a table; rows stay whole, and neither the first two nor the last two part."""
+    """Set a table; rows stay whole, and neither the first two nor the last two part.
+
+    One that is too wide even in the smallest letters is set as two below one another, the row names in both.
+    """
+    halves = _halves(kit, table, lane)
+    if halves is not None:
+        return (*set_table(kit, halves[0], lane), *set_table(kit, halves[1], lane))
     grid = grid_of(kit, table, lane)
     title = _title(kit, table, lane, "")
     head = _head(kit, grid)
@@ -53,6 +61,31 @@ def set_table(kit: Kit, table: Table, lane: Lane) -> tuple[Piece, ...]:
     return tuple(pieces)
 
 
+def _halves(kit: Kit, table: Table, lane: Lane) -> tuple[Table, Table] | None:
+    """Return a table whose words and numbers would have to part as two of half its columns each, or None."""
+    columns = table.columns
+    if len(columns) < LEAST_PARTED or any(row.over for row in table.rows):
+        return None
+    room = lane.width - GUTTER * (len(columns) - 1)
+    least = _least(kit, table, LETTERS[-1], lane)
+    if sum(least) <= room:
+        return None
+    # the second half begins where the first has as much as it: row names stand in both
+    half, place = (sum(least[1:]) + GUTTER * (len(columns) - 1)) / 2, 1
+    while place < len(columns) - 1 and sum(wide + GUTTER for wide in least[1 : place + 1]) <= half:
+        place += 1
+    first = replace(
+        table, columns=columns[:place], rows=tuple(replace(row, cells=row.cells[:place]) for row in table.rows)
+    )
+    rest = tuple(replace(row, cells=(row.cells[0], *row.cells[place:]), anchor="", delta="") for row in table.rows)
+    return first, Table((columns[0], *columns[place:]), rest)
+
+
+def _least(kit: Kit, table: Table, letters: Letters, lane: Lane) -> tuple[float, ...]:
+    """Return each column's least width that parts no word, but one of a good share of the lane."""
+    return tuple(min(LONGEST * lane.width, wide) for wide in _widths(kit, table, letters, whole=False))
+
+
 def grid_of(kit: Kit, table: Table, lane: Lane) -> Grid:
     """Find the column widths of a table in a lane."""
     columns = table.columns
@@ -62,8 +95,7 @@ def grid_of(kit: Kit, table: Table, lane: Lane) -> Grid:
         if sum(natural) <= room:
             widths = _stretched(columns, natural, room)
             break
-        most = LONGEST * lane.width
-        least = tuple(min(most, wide) for wide in _widths(kit, table, letters, whole=False))
+        least = _least(kit, table, letters, lane)
         if sum(least) <= room:
             widths = _shrunk(natural, least, room)
             break

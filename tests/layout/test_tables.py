@@ -51,6 +51,22 @@ def test_the_heading_row_repeats_with_the_title(kit: Kit) -> None:
     assert [piece.keep for piece in pieces] == [True, True, True, False]  # heading, first two and last two rows
 
 
+def test_a_table_that_would_part_its_numbers_is_set_as_two_with_the_row_names_in_both(kit: Kit, fonts: Fonts) -> None:
+    # ten columns of sixteen digits at 6.5 points are about 600 points, a lane about 390
+    numbers = tuple(f"{n}234567.89012345" for n in range(1, 11))
+    wide = table((("left", *numbers), ("right", *numbers)), title=("Sides",), number=7, anchor="B1.7")
+    lane = kit.sheet.text
+    pieces = set_table(kit, wide, lane)
+    rows = [texts(piece.items) for piece in pieces]
+    assert [row.count("left") for row in rows] == [0, 1, 0, 0, 1, 0]
+    assert rows[1] + rows[4] == "left" + "".join(numbers[:5]) + "left" + "".join(numbers[5:])
+    assert all(row.find("Sides") < 0 for row in rows[3:])
+    right = max(ink.right for piece in pieces for ink in letters(piece, fonts))
+    assert right <= lane.right + 0.1
+    # a number stands on one row: no row of either half is higher than one of letters
+    assert all(piece.height < 2 * 8.0 for piece in (pieces[1], pieces[2], pieces[4], pieces[5]))
+
+
 def test_a_failing_row_is_barred_and_a_governing_one_heavier(kit: Kit, fonts: Fonts) -> None:
     rows = (TableRow((("a",),), "loud"), TableRow((("a",),), "governing"), TableRow((("a",),)))
     pieces = set_table(kit, Table((Column(("x",)),), rows), kit.sheet.text)

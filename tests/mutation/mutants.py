@@ -34,7 +34,15 @@ def mutants_of(name: str, shelf: Shelf) -> list[Mutant]:
 def _at(place: Place, name: str, names: Names) -> Iterator[Mutant]:
     for change, renames in _changes(place, names):
         yield Mutant(
-            name, place.key, place.line, place.formula, change.says, change.apply, renames, place.use == "cited"
+            name,
+            place.key,
+            place.line,
+            place.formula,
+            change.says,
+            change.apply,
+            renames,
+            place.use == "cited",
+            start=place.start,
         )
 
 

@@ -51,6 +51,8 @@ class Place:
     #: the formula as a whole, not a piece of it
     whole: bool
     use: Use
+    #: where the formula begins in its file
+    start: int = 0
 
 
 def altered(record: Any, steps: Steps, change: Callable[[Any], Any]) -> Any:
@@ -172,7 +174,7 @@ def _formula(root: Expression | Condition, steps: Steps, line: str, use: Use) ->
     for inner, node in _nodes(root, ()):
         span = node.span
         key = span.source.name, span.start, span.end, type(node).__name__, inner
-        yield Place(key, (*steps, *inner), node, line, text, not inner, use)
+        yield Place(key, (*steps, *inner), node, line, text, not inner, use, root.span.start)
 
 
 def _nodes(node: Node, steps: Steps) -> Iterator[tuple[Steps, Node]]:

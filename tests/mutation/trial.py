@@ -53,6 +53,8 @@ class Mutant:
     cited: bool = False
     #: it alters what a case hands over, not a rule: `apply` takes a calculation
     handed: bool = False
+    #: where its formula begins in its file
+    start: int = 0
 
 
 @dataclass(slots=True)
@@ -122,7 +124,7 @@ def _stretch(mutant: Mutant) -> tuple[object, ...]:
         return ()
     parts = [number for number, step in enumerate(steps) if step in ("body", "where", "otherwise")]
     other = mutant.says.split(" → ")[1].split()[0]
-    return file, mutant.line, mutant.formula, steps[: parts[-1] + 1] if parts else (), other
+    return file, mutant.start, steps[: parts[-1] + 1] if parts else (), other
 
 
 def planned(variant: Variant, mutant: Mutant) -> tuple[Plan | None, str]:

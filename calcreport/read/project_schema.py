@@ -206,7 +206,10 @@ def _takes(library: Library) -> dict[str, _Takes]:
 def _calculation_of(name: str, takes: _Takes) -> Schema:
     """Return what a calculation of one template may hold: its roles, and its given values by their names."""
     values = {one.name: _value(one) | {"description": _says(one)} for one in takes.givens}
-    given = {"properties": values, "propertyNames": {"enum": list(values)}}
+    # candidates may choose cells of rows that stand under given
+    sets = {one.name: values[one.name] for one in takes.givens if one.kind == "rows"}
+    parted = {one.name: _value(one, whole=False) | {"description": _says(one)} for one in takes.givens}
+    given = {"properties": values | parted, "propertyNames": {"enum": list(values)}}
     cells = mapping(mapping(named("value")))
     either = {one.name: {"anyOf": [values[one.name], cells]} for one in takes.givens if one.kind == "rows"}
     chosen = _chosen(given | {"properties": values | either})
@@ -218,7 +221,8 @@ def _calculation_of(name: str, takes: _Takes) -> Schema:
     }
     if takes.needed:
         # candidates may choose what is needed, and members have it for themselves
-        needed = {"required": ["given"], "properties": {"given": {"required": list(takes.needed)}}}
+        all_given = {"required": list(takes.needed)} | ({"properties": sets} if sets else {})
+        needed = {"required": ["given"], "properties": {"given": all_given}}
         then |= when({"not": {"anyOf": [has("choose"), has("members")]}}, needed)
     return _where_template(name, then)
 
@@ -240,11 +244,14 @@ def _roles(keys: tuple[str, ...], takes: _Takes) -> Schema:
     return {"propertyNames": {"enum": [*keys, *roles_of(takes.givens)]}}
 
 
-def _value(given: Given) -> Schema:
-    """Return what may be given: one value, rows of a set, or values for pairs of rows as deep as there are sets."""
+def _value(given: Given, *, whole: bool = True) -> Schema:
+    """Return what may be given: one value, rows of a set, or values for pairs of rows as deep as there are sets.
+
+    Rows that are not `whole` may lack cells.
+    """
     if given.kind == "rows":
         columns = {one.name: named("one value") | {"description": _says(one)} for one in given.columns}
-        row = closed((ROW_NAME, *columns), {ROW_NAME: text(), **columns}, columns)
+        row = closed((ROW_NAME, *columns), {ROW_NAME: text(), **columns}, columns if whole else ())
         needed = [one.name for one in given.columns if not one.elsewhere()]
         linked = _with_columns("rows of another", needed, list(columns))
         taken = when(has("from"), linked, _with_columns("rows of a table", needed, [ROW_NAME, *columns]))

@@ -20,6 +20,10 @@ from calcreport.methods.spans import Loads, turning_places
 CLOSE = 1e-9
 
 
+#: places closer than this share of a span are one
+SAME = 1e-12
+
+
 @dataclass(frozen=True, slots=True)
 class Station:
     """A place in a span; `past` counts a point load that stands there as left of it."""
@@ -77,6 +81,10 @@ def stations_of(
             found += [Station(f"{name} {word}", place) for word, place in ends]
     for name, sign in (("greatest", 1.0), ("least", -1.0)) if weights else ():
         found.append(Station(name, _turning(member, solved, span, weights, sign, parts)))
+    # a place within the last bits of a point load is that load's place
+    loads = [one.x for one in found if one.past and one.name.endswith(" +")]
+    near = [next((at for at in loads if abs(at - one.x) <= SAME * length), one.x) for one in found]
+    found = [Station(one.name, at, one.past) for one, at in zip(found, near, strict=True)]
     # what stands just left of a point load comes before what stands just right of it
     return sorted(found, key=lambda one: (one.x, one.past))
 

@@ -107,7 +107,7 @@ def test_status_alone(project: Project) -> None:
     found = compared(first, second)
     assert found.status_changed and found.differs and not found.calculations_differ and not found.facts
     assert set(revisions(second).values()) == {("1", "2026-11-16")}
-    assert "Status: for review, now for permit. Nothing else differs." in words(second, "CHANGES-1")
+    assert "Status for review, now for permit; nothing else differs." in words(second, "CHANGES-1")
 
 
 def test_a_line_inserted_in_the_template(project: Project) -> None:

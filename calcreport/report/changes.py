@@ -25,12 +25,12 @@ from calcreport.report.model import (
 )
 from calcreport.report.moved import (
     count_words,
-    fact_words,
     flip_words,
     headline,
     kind_words,
     listed,
     move_words,
+    package_words,
     value_words,
 )
 
@@ -96,7 +96,7 @@ def change_blocks(changes: Changes) -> tuple[Block, ...]:
     blocks: list[Block] = [Paragraph(opening, "plain")]
     blocks += [Paragraph((f"{unissued}{now}.",), "caution")] if unissued else []
     blocks += [Paragraph((_key(changes),), "note")] if changes.marks != "none" else []
-    facts = _package(comparison)
+    facts = [f"{words[:1].upper()}{words[1:]}." for words in package_words(comparison)]
     if facts:
         blocks += [Heading("The package", 2), *(Paragraph((words,), "plain") for words in facts)]
     blocks += _overview(comparison)
@@ -114,21 +114,6 @@ def _key(changes: Changes) -> str:
     )
     older = " Lines that last changed in an earlier revision keep its triangle without a cloud."
     return words + older if changes.marks == "all" else words
-
-
-def _package(comparison: Comparison) -> list[str]:
-    """Say what of the package as a whole differs."""
-    first, second = comparison.first, comparison.second
-    found = []
-    if comparison.status_changed:
-        alone = "" if comparison.calculations_differ or comparison.facts else " Nothing else differs."
-        found.append(f"Status: {first.status}, now {second.status}.{alone}")
-    if first.program != second.program:
-        found.append(f"Made by {first.program}, now by {second.program}; wording and layout are not compared.")
-    for change in comparison.facts:
-        words = fact_words(change)
-        found.append(f"{words[:1].upper()}{words[1:]}.")
-    return found
 
 
 def _overview(comparison: Comparison) -> list[Block]:

@@ -13,12 +13,12 @@ from calcreport.report.fronts import counted
 from calcreport.report.moved import (
     count_words,
     dated,
-    fact_words,
     flip_words,
     headline,
     kind_words,
     listed,
     move_words,
+    package_words,
     sheet_words,
     value_words,
 )
@@ -38,18 +38,6 @@ def changes_lines(comparison: Comparison) -> list[str]:
     found += [f"\nremoved: {d.first.mark}  {d.first.title}" for d in comparison.removed if d.first]
     found += ["", *_extent(comparison)]
     return found
-
-
-def package_words(comparison: Comparison) -> list[str]:
-    """Say what of the package as a whole differs."""
-    first, second = comparison.first, comparison.second
-    found = []
-    if comparison.status_changed:
-        alone = "" if comparison.calculations_differ or comparison.facts else "; nothing else differs"
-        found.append(f"status {first.status}, now {second.status}{alone}")
-    if first.program != second.program:
-        found.append(f"made by {first.program}, now by {second.program}: wording and layout are not compared")
-    return found + [fact_words(change) for change in comparison.facts]
 
 
 def _calculation(difference: Difference) -> list[str]:

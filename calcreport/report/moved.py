@@ -38,6 +38,18 @@ def dated(comparison: Comparison) -> tuple[str, str]:
     return one, two
 
 
+def package_words(comparison: Comparison) -> list[str]:
+    """Say what of the package as a whole differs."""
+    first, second = comparison.first, comparison.second
+    found = []
+    if comparison.status_changed:
+        alone = "" if comparison.calculations_differ or comparison.facts else "; nothing else differs"
+        found.append(f"status {first.status}, now {second.status}{alone}")
+    if first.program != second.program:
+        found.append(f"made by {first.program}, now by {second.program}: wording and layout are not compared")
+    return found + [fact_words(change) for change in comparison.facts]
+
+
 def listed(difference: Difference) -> tuple[Change, ...]:
     """Return the changes worth a row: lines that take other values and come to the same are counted only."""
     return tuple(change for change in difference.changes if not change.quiet)
